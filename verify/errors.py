@@ -1,0 +1,58 @@
+"""What can go wrong, in one tree.
+
+SidecheckError
+├── InputError        the input cannot be used (exit status 2)
+├── UndecidedError    a question was left open within its budget (exit status 3)
+└── NotRational       an exact rational value was asked of a number that has none (internal)
+
+A *refuted* claim or derivation is a result, never an exception.
+"""
+
+from __future__ import annotations
+
+
+class SidecheckError(Exception):
+    """Root of every exception that this package raises on purpose."""
+
+
+class InputError(SidecheckError):
+    """The input cannot be used: says the file, the key, what is wrong and what would be right.
+
+    Parameters
+    ----------
+    wrong : str
+        What is wrong, without a final stop.
+    right : str
+        What would be right, e.g. an example.
+    key : str
+        The key of the case file (``"problem.alpha"``) or the name of the argument.
+    file : str
+        The file, when there is one.
+
+    Examples
+    --------
+    >>> print(InputError("a level outside (0, 1): 5", 'write "0.05"', key="problem.alpha", file="lot.case.toml"))
+    lot.case.toml: problem.alpha: a level outside (0, 1): 5; write "0.05"
+    """
+
+    def __init__(self, wrong: str, right: str = "", *, key: str = "", file: str = "") -> None:
+        super().__init__(wrong, right, key, file)
+        self.wrong, self.right, self.key, self.file = wrong, right, key, file
+
+    def at(self, *, key: str = "", file: str = "") -> InputError:
+        """Return the same complaint with the file and the key filled in where they were missing."""
+        return InputError(self.wrong, self.right, key=self.key or key, file=self.file or file)
+
+    def __str__(self) -> str:
+        place = ": ".join(part for part in (self.file, self.key) if part)
+        text = self.wrong + (f"; {self.right}" if self.right else "")
+        line = f"{place}: {text}" if place else text
+        return line.replace("\n", " ")
+
+
+class UndecidedError(SidecheckError):
+    """A question was left open: the reason says what was tried and what would help."""
+
+
+class NotRational(SidecheckError):  # noqa: N818 (a condition, not a mistake)
+    """An exact rational value was asked for where there is none."""

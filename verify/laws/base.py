@@ -1,0 +1,82 @@
+"""What every law of the statistic offers (METHODS section 7).
+
+A law is data plus formulas. Its formulas are written once and take the arithmetic ``A`` in which they are to be
+evaluated: balls, mpmath numbers or exact fractions (``verify.arithmetic``). ``A.real(x)`` brings an exact number into it.
+"""
+
+from __future__ import annotations
+
+from abc import ABC, abstractmethod
+from dataclasses import dataclass, fields, replace
+from typing import TYPE_CHECKING, Any, ClassVar, Self
+
+if TYPE_CHECKING:
+    from verify.problem.numbers import Exact
+
+Number = Any
+"""A number of the arithmetic in use: an arb ball, an mpf or a Fraction."""
+
+
+@dataclass(frozen=True)
+class Law(ABC):
+    """The law of a statistic V, at one parameter value or with symbolic parameters.
+
+    The dataclass fields of a subclass are its parameters: exact numbers (Fraction, or a SymPy expression where the number is
+    irrational), or SymPy expressions in the family's parameter before a value is put in.
+
+    A lattice law lives on integers; its cutoffs are Python ints. A continuous law's cutoffs are numbers of ``A``.
+    """
+
+    name: ClassVar[str]
+    source: ClassVar[str]
+    lattice: ClassVar[bool]
+
+    @property
+    def parameters(self) -> dict[str, Exact]:
+        """Name and value of each parameter, in the order of the definition."""
+        return {field.name: getattr(self, field.name) for field in fields(self)}
+
+    def map_parameters(self, change: Any) -> Self:
+        """Return the law with ``change`` applied to every parameter (e.g. a substitution)."""
+        return replace(self, **{name: change(value) for name, value in self.parameters.items()})
+
+    @abstractmethod
+    def sum_of(self, n: Any) -> Self:
+        """Return the law of the sum of n independent copies (n an int, or a symbol)."""
+
+    @property
+    @abstractmethod
+    def support(self) -> tuple[Any, Any]:
+        """Smallest and largest support point; None where there is none. Exact numbers (ints on a lattice)."""
+
+    @abstractmethod
+    def density(self, A: Any, v: Any) -> Number:
+        """Mass at v (lattice) or density at v (continuous)."""
+
+    @abstractmethod
+    def cdf(self, A: Any, v: Any) -> Number:
+        """P(V <= v)."""
+
+    @abstractmethod
+    def sf(self, A: Any, v: Any) -> Number:
+        """P(V > v), computed without cancellation."""
+
+    @abstractmethod
+    def partial_mean(self, A: Any, v: Any) -> Number:
+        """E[V; V <= v]."""
+
+    @abstractmethod
+    def upper_partial_mean(self, A: Any, v: Any) -> Number:
+        """E[V; V > v], computed without cancellation."""
+
+    @abstractmethod
+    def mean(self, A: Any) -> Number:
+        """E[V]."""
+
+    @abstractmethod
+    def variance(self, A: Any) -> Number:
+        """Variance of V."""
+
+    def __str__(self) -> str:
+        inside = ", ".join(f"{name} = {value}" for name, value in self.parameters.items())
+        return f"{self.name}({inside})"
