@@ -62,12 +62,16 @@ class Law(ABC):
         """P(V > v), computed without cancellation."""
 
     @abstractmethod
+    def shortfall(self, A: Any, v: Any) -> Number:
+        """E[(m - V); V <= v] with m = E[V]: never negative, and equal to E[(V - m); V > v], so it serves both tails."""
+
     def partial_mean(self, A: Any, v: Any) -> Number:
         """E[V; V <= v]."""
+        return self.mean(A) * self.cdf(A, v) - self.shortfall(A, v)
 
-    @abstractmethod
     def upper_partial_mean(self, A: Any, v: Any) -> Number:
-        """E[V; V > v], computed without cancellation."""
+        """E[V; V > v]."""
+        return self.mean(A) * self.sf(A, v) + self.shortfall(A, v)
 
     @abstractmethod
     def mean(self, A: Any) -> Number:

@@ -1,0 +1,225 @@
+"""The door to python-flint: the arithmetic of balls (midpoint and radius), in which everything printed is proved.
+
+A ball contains the true value, always; nothing may be concluded from its midpoint alone. Arb's precision is global to
+the process: it is set in one place, the ``with balls(prec)`` block.
+
+Source: F. Johansson, "Arb: efficient arbitrary-precision midpoint-radius interval arithmetic", IEEE Trans. Comput. 66
+(2017) 1281-1292.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Iterator
+from contextlib import contextmanager
+from fractions import Fraction
+from math import comb
+from typing import Any
+
+from flint import acb, arb, ctx, fmpq
+
+from verify.arithmetic.enclosure import Enclosure
+from verify.arithmetic.evaluate import evaluate
+
+Ball = Any
+"""A real ball (``flint.arb``)."""
+
+SMALLEST_EXPONENT = -300_000
+"""Powers of two below this are widened to an interval from zero when a ball becomes a pair of rationals."""
+
+EXACT_BINOMIAL = 2000
+"""Up to so many trials a binomial coefficient is computed as an integer; beyond, through the gamma function."""
+
+
+class Balls:
+    """Real arithmetic in balls at a fixed precision; see :func:`balls`.
+
+    Parameters
+    ----------
+    prec : int
+        Bits of the midpoints.
+    """
+
+    def __init__(self, prec: int) -> None:
+        self.prec = prec
+
+    def real(self, x: Any) -> Ball:
+        """Return the ball of an exact number (int, Fraction or SymPy number); balls pass unchanged."""
+        if isinstance(x, Fraction):
+            return arb(fmpq(x.numerator, x.denominator))
+        if isinstance(x, int):
+            return arb(x)
+        if isinstance(x, arb):
+            return x
+        return evaluate(x, self, {})
+
+    def interval(self, enclosure: Enclosure) -> Ball:
+        """Return a ball that contains both ends of an enclosure."""
+        return self.real(enclosure.lower).union(self.real(enclosure.upper))
+
+    @property
+    def pi(self) -> Ball:
+        """The number pi."""
+        return arb.pi()
+
+    def exp(self, x: Ball) -> Ball:
+        """Exponential."""
+        return arb(x).exp()
+
+    def log(self, x: Ball) -> Ball:
+        """Natural logarithm."""
+        return arb(x).log()
+
+    def sqrt(self, x: Ball) -> Ball:
+        """Square root."""
+        return arb(x).sqrt()
+
+    def power(self, x: Ball, k: Any) -> Ball:
+        """X to the power k."""
+        return arb(x) ** (k if isinstance(k, int) else self.real(k))
+
+    def gamma(self, x: Any) -> Ball:
+        """Gamma function."""
+        return self.real(x).gamma()
+
+    def factorial(self, k: Any) -> Ball:
+        """K! = Gamma(k + 1)."""
+        return arb.fac_ui(k) if isinstance(k, int) and k < EXACT_BINOMIAL else (self.real(k) + 1).gamma()
+
+    def binomial(self, N: Any, k: Any) -> Ball:
+        """Binomial coefficient N over k; zero outside 0..N."""
+        if isinstance(N, int) and isinstance(k, int):
+            if k < 0 or k > N:
+                return arb(0)
+            if N <= EXACT_BINOMIAL:
+                return arb(comb(N, k))
+        N, k = self.real(N), self.real(k)
+        return (N + 1).gamma() / ((k + 1).gamma() * (N - k + 1).gamma())
+
+    def rising(self, r: Any, k: Any) -> Ball:
+        """Rising factorial r (r+1) ... (r+k-1) = Gamma(r + k) / Gamma(r)."""
+        r = self.real(r)
+        return (r + k).gamma() / r.gamma()
+
+    def gamma_q(self, a: Any, x: Any) -> Ball:
+        """Regularised upper incomplete gamma function Q(a, x). Source: DLMF 8.2.4."""
+        return self.real(x).gamma_upper(self.real(a), regularized=1)
+
+    def gamma_p(self, a: Any, x: Any) -> Ball:
+        """Regularised lower incomplete gamma function P(a, x) = 1 - Q(a, x).
+
+        Arb's own lower function loses all its bits from a = 1000; the difference loses only the bits of the tail's
+        size, which the precision loop makes good. For small a and x it is computed directly.
+        """
+        if isinstance(a, Fraction | int) and a < 200 and self.real(x) < 50:
+            return self.real(x).gamma_lower(self.real(a), regularized=1)
+        return 1 - self.gamma_q(a, x)
+
+    def beta_p(self, x: Any, a: Any, b: Any) -> Ball:
+        """Regularised incomplete beta function I_x(a, b).
+
+        As x^a (1-x)^(b-1) / (a B(a, b)) times 2F1(1, 1-b; a+1; -x/(1-x)), whose terms are all positive and finite
+        in number when b is a whole number; otherwise times (1-x) 2F1(a+b, 1; a+1; x). Source: DLMF 8.17.8 and 15.8.1.
+        """
+        x, top = self.real(x), self.real(a)
+        other = self.real(b)
+        front = x**top * (top + other).gamma() / ((top + 1).gamma() * other.gamma())
+        if isinstance(b, int) or (isinstance(b, Fraction) and b.denominator == 1):
+            whole = int(b)
+            return front * (1 - x) ** (whole - 1) * (-x / (1 - x)).hypgeom_2f1(arb(1), arb(1 - whole), top + 1)
+        return front * (1 - x) ** other * x.hypgeom_2f1(top + other, arb(1), top + 1)
+
+    def beta_q(self, x: Any, a: Any, b: Any) -> Ball:
+        """1 - I_x(a, b) = I_{1-x}(b, a). Source: DLMF 8.17.4."""
+        return self.beta_p(1 - self.real(x), b, a)
+
+    def erfc(self, x: Ball) -> Ball:
+        """Complementary error function."""
+        return arb(x).erfc()
+
+    def function(self, name: str, *args: Ball) -> Ball:
+        """Evaluate a named function of a formula (the names of :mod:`verify.arithmetic.evaluate`)."""
+        from verify.arithmetic.ball_functions import REAL_FUNCTIONS
+
+        return REAL_FUNCTIONS[name](*args)
+
+
+@contextmanager
+def balls(prec: int) -> Iterator[Balls]:
+    """Set Arb's precision for a block and hand out its arithmetic.
+
+    Examples
+    --------
+    >>> with balls(64) as A:
+    ...     print(to_enclosure(A.real(Fraction(1, 3))).text(10))
+    0.3333333333
+    """
+    before = ctx.prec
+    ctx.prec = prec
+    try:
+        yield Balls(prec)
+    finally:
+        ctx.prec = before
+
+
+def to_fraction(x: Ball) -> Fraction:
+    """Return the exact rational value of a ball of radius zero (such as a midpoint or an end)."""
+    mantissa, exponent = x.man_exp()
+    man, exp = int(mantissa), int(exponent)
+    return Fraction(man << exp) if exp >= 0 else Fraction(man, 1 << -exp)
+
+
+def to_enclosure(x: Ball, *, low: Fraction | None = None, high: Fraction | None = None) -> Enclosure:
+    """Return a ball as an enclosure with rational ends, cut to [low, high] where those are known bounds.
+
+    Raises
+    ------
+    ArithmeticError
+        When the ball is not finite and no bounds are given.
+    """
+    if not x.is_finite():
+        if low is None or high is None:
+            raise ArithmeticError(f"not a finite ball: {x}")
+        return Enclosure(low, high)
+    lower, upper = _end(x.lower(), up=False), _end(x.upper(), up=True)
+    if low is not None:
+        lower, upper = max(lower, low), max(upper, low)
+    if high is not None:
+        lower, upper = min(lower, high), min(upper, high)
+    return Enclosure(lower, upper)
+
+
+def _end(x: Ball, *, up: bool) -> Fraction:
+    """One end as a rational; an end too close to zero for a rational of sensible size is moved outward."""
+    if x.is_zero():
+        return Fraction(0)
+    _, exponent = x.abs_upper().mid().man_exp()
+    bits = x.bits()
+    if int(exponent) + bits < SMALLEST_EXPONENT:
+        tiny = Fraction(1, 1 << -SMALLEST_EXPONENT)
+        return (tiny if up else Fraction(0)) if x > 0 else (Fraction(0) if up else -tiny)
+    return to_fraction(x.mid())
+
+
+def accuracy_bits(x: Ball) -> int:
+    """Bits of relative accuracy that a ball guarantees (large when exact, negative when it contains zero)."""
+    return int(x.rel_accuracy_bits())
+
+
+def midpoint(x: Ball) -> Ball:
+    """Midpoint of a ball, as a ball of radius zero."""
+    return x.mid()
+
+
+def radius(x: Ball) -> Ball:
+    """Radius of a ball, as a ball of radius zero."""
+    return arb(x.rad())
+
+
+def around(x: Ball, r: Ball) -> Ball:
+    """Ball around a midpoint with a given radius."""
+    return arb(x.mid(), arb(r).abs_upper())
+
+
+def complex_ball(x: Any, y: Any = 0) -> Any:
+    """Complex ball x + i y."""
+    return acb(x, y)

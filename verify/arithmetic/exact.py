@@ -1,0 +1,66 @@
+"""The exact arithmetic of rationals, in which ties are decided."""
+
+from __future__ import annotations
+
+from fractions import Fraction
+from math import comb, factorial
+from typing import Any
+
+from verify.errors import NotRational
+
+
+class Rationals:
+    """Exact rational arithmetic; every function without a rational value raises :class:`NotRational`.
+
+    Examples
+    --------
+    >>> Rationals().binomial(10, 3)
+    Fraction(120, 1)
+    """
+
+    def real(self, x: Any) -> Fraction:
+        """Return an exact rational number."""
+        if isinstance(x, Fraction | int):
+            return Fraction(x)
+        raise NotRational(f"{x} is not rational")
+
+    def power(self, x: Fraction, k: Any) -> Fraction:
+        """X to a whole power."""
+        if not isinstance(k, int):
+            k = self.real(k)
+            if k.denominator != 1:
+                raise NotRational("a power that is not whole")
+            k = k.numerator
+        return x**k
+
+    def factorial(self, k: int) -> Fraction:
+        """K! as an exact number."""
+        return Fraction(factorial(self._whole(k)))
+
+    def binomial(self, N: Any, k: Any) -> Fraction:
+        """Binomial coefficient, zero outside 0..N."""
+        N, k = self._whole(N), self._whole(k)
+        return Fraction(comb(N, k)) if k >= 0 else Fraction(0)
+
+    def rising(self, r: Any, k: int) -> Fraction:
+        """Rising factorial r (r+1) ... (r+k-1)."""
+        value, start = Fraction(1), self.real(r)
+        for i in range(k):
+            value *= start + i
+        return value
+
+    def _whole(self, x: Any) -> int:
+        value = self.real(x)
+        if value.denominator != 1:
+            raise NotRational(f"{value} is not whole")
+        return value.numerator
+
+    def __getattr__(self, name: str) -> Any:
+        if name.startswith("__"):
+            raise AttributeError(name)
+        raise NotRational(f"{name} has no rational value")
+
+
+def rationals() -> Rationals:
+    """Return the exact arithmetic."""
+    return Rationals()
