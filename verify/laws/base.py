@@ -67,19 +67,19 @@ class Law(ABC):
 
     def partial_mean(self, A: Any, v: Any) -> Number:
         """E[V; V <= v]."""
-        return self.mean(A) * self.cdf(A, v) - self.shortfall(A, v)
+        return self.expectation(A) * self.cdf(A, v) - self.shortfall(A, v)
 
     def upper_partial_mean(self, A: Any, v: Any) -> Number:
         """E[V; V > v]."""
-        return self.mean(A) * self.sf(A, v) + self.shortfall(A, v)
+        return self.expectation(A) * self.sf(A, v) + self.shortfall(A, v)
 
     @abstractmethod
-    def mean(self, A: Any) -> Number:
-        """E[V]."""
+    def expectation(self, A: Any) -> Number:
+        """E[V]. (Not called ``mean``: some laws have a parameter of that name.)"""
 
     @abstractmethod
-    def variance(self, A: Any) -> Number:
-        """Variance of V."""
+    def spread(self, A: Any) -> Number:
+        """Standard deviation of V."""
 
     def __str__(self) -> str:
         inside = ", ".join(f"{name} = {value}" for name, value in self.parameters.items())

@@ -1,0 +1,71 @@
+"""The gamma law."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import TYPE_CHECKING, Any, ClassVar, Self
+
+from verify.laws.base import Law, Number
+
+if TYPE_CHECKING:
+    from verify.problem.numbers import Exact
+
+
+@dataclass(frozen=True)
+class Gamma(Law):
+    """Gamma law on the positive reals.
+
+    Parameters
+    ----------
+    shape : Exact
+        Shape, positive.
+    rate : Exact
+        Rate (the inverse of the scale), positive.
+
+    Examples
+    --------
+    >>> from fractions import Fraction
+    >>> Gamma(Fraction(1, 2), Fraction(2)).sum_of(4)
+    Gamma(shape=Fraction(2, 1), rate=Fraction(2, 1))
+    """
+
+    shape: Exact
+    rate: Exact
+
+    name: ClassVar[str] = "gamma"
+    source: ClassVar[str] = "DLMF 8.2.4; partial mean by P(a+1, x) = P(a, x) - x^a exp(-x) / Gamma(a+1), DLMF 8.8.5"
+    lattice: ClassVar[bool] = False
+
+    def sum_of(self, n: Any) -> Self:
+        """Shapes add."""
+        return type(self)(n * self.shape, self.rate)
+
+    @property
+    def support(self) -> tuple[Any, Any]:
+        """The positive reals."""
+        return 0, None
+
+    def density(self, A: Any, v: Any) -> Number:
+        """Density rate^a v^(a-1) exp(-rate v) / Gamma(a)."""
+        x = A.real(self.rate) * v
+        return A.power(x, self.shape) * A.exp(-x) / (v * A.gamma(self.shape))
+
+    def cdf(self, A: Any, v: Any) -> Number:
+        """P(V <= v) = P(a, rate v)."""
+        return A.gamma_p(self.shape, A.real(self.rate) * v)
+
+    def sf(self, A: Any, v: Any) -> Number:
+        """P(V > v) = Q(a, rate v)."""
+        return A.gamma_q(self.shape, A.real(self.rate) * v)
+
+    def shortfall(self, A: Any, v: Any) -> Number:
+        """E[(m - V); V <= v] = v f(v) / rate."""
+        return v * self.density(A, v) / A.real(self.rate)
+
+    def expectation(self, A: Any) -> Number:
+        """The mean a / rate."""
+        return A.real(self.shape) / A.real(self.rate)
+
+    def spread(self, A: Any) -> Number:
+        """Standard deviation sqrt(a) / rate."""
+        return A.sqrt(A.real(self.shape)) / A.real(self.rate)
