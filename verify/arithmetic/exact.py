@@ -42,12 +42,19 @@ class Rationals:
         N, k = self._whole(N), self._whole(k)
         return Fraction(comb(N, k)) if k >= 0 else Fraction(0)
 
-    def rising(self, r: Any, k: int) -> Fraction:
+    def rising(self, r: Any, k: Any) -> Fraction:
         """Rising factorial r (r+1) ... (r+k-1)."""
         value, start = Fraction(1), self.real(r)
-        for i in range(k):
+        for i in range(self._whole(k)):
             value *= start + i
         return value
+
+    def function(self, name: str, *args: Any) -> Fraction:
+        """Evaluate a named function of a formula, where its value is rational."""
+        known = {"binomial": self.binomial, "RisingFactorial": self.rising, "Abs": abs}
+        if name not in known:
+            raise NotRational(f"{name} has no rational value")
+        return known[name](*args)
 
     def _whole(self, x: Any) -> int:
         value = self.real(x)

@@ -129,15 +129,9 @@ def _dirichlet(left: list[Any], right: list[Any]) -> list[Any]:
 
 def up_to(bound: Any) -> Any:
     """Return the ball that contains [0, bound] for a non-negative ball ``bound``."""
-    return arb(0).union(abs(bound).abs_upper())
+    return arb(0).union(bound.abs_upper())
 
 
-def upper_fraction(ball: Any) -> Fraction:
-    """Return an exact rational upper bound of a ball."""
-    return ball_fraction(ball.upper())
-
-
-def ball_fraction(ball: Any) -> Fraction:
-    """Return the midpoint of a ball as an exact rational."""
-    mantissa, exponent = ball.mid().man_exp()
-    return Fraction(int(mantissa)) * Fraction(2) ** int(exponent)
+def either_sign(bound: Any) -> Any:
+    """Return the ball that contains [-bound, bound]."""
+    return arb(0, bound.abs_upper())
