@@ -1,0 +1,110 @@
+"""Entry point: read the command line, run one command, turn every outcome into an exit status."""
+
+from __future__ import annotations
+
+import argparse
+import os
+import sys
+import traceback
+from collections.abc import Sequence
+from importlib import import_module
+from types import ModuleType
+from typing import NoReturn
+
+import verify
+from verify.cli import status
+from verify.cli.output import complain
+from verify.cli.registry import COMMANDS
+from verify.errors import InputError, UndecidedError
+
+EPILOG = """\
+example:
+  sidecheck solve casebook/demo/lot-release.case.toml
+
+exit status:
+  0 all agrees or is proved      1 something differs or is refuted
+  2 the input cannot be used     3 undecided within the budget
+
+'sidecheck COMMAND --help' shows the options of a command and an example."""
+
+
+class Parser(argparse.ArgumentParser):
+    """An argument parser whose complaint is one line."""
+
+    def error(self, message: str) -> NoReturn:
+        """Say on one line what is wrong with the command line, and leave with status 2."""
+        text = " ".join(message.split())
+        raise InputError(f"{self.prog}: {text}", f"see {self.prog} --help")
+
+
+def build_parser(chosen: str | None) -> tuple[Parser, ModuleType | None]:
+    """Return the parser, with the arguments of the chosen command only, and that command's module."""
+    parser = Parser(
+        prog="sidecheck",
+        description="Check the derivation of an optimal test, and prove the digits of its cutoffs.",
+        epilog=EPILOG,
+        formatter_class=argparse.RawDescriptionHelpFormatter,
+        allow_abbrev=False,
+    )
+    parser.add_argument("--version", action="version", version=f"sidecheck {verify.__version__}")
+    commands = parser.add_subparsers(dest="command", metavar="COMMAND", required=True)
+    module = None
+    for name, (where, line) in COMMANDS.items():
+        if name != chosen:
+            commands.add_parser(name, help=line, add_help=False)
+            continue
+        module = import_module(where)
+        sub = commands.add_parser(
+            name, help=line, description=line[0].upper() + line[1:] + ".", allow_abbrev=False,
+            epilog=f"example:\n  {module.EXAMPLE}", formatter_class=argparse.RawDescriptionHelpFormatter,
+        )  # fmt: skip
+        module.add(sub)
+    return parser, module
+
+
+def dispatch(argv: Sequence[str]) -> int:
+    """Run the command that the arguments ask for and return its exit status."""
+    chosen = next((word for word in argv if not word.startswith("-")), None)
+    parser, module = build_parser(chosen)
+    args = parser.parse_args(argv)
+    if module is None:  # argparse refuses an unknown or missing command before this
+        raise InputError("no command", "see sidecheck --help")
+    return int(module.run(args))
+
+
+def main(argv: Sequence[str] | None = None) -> int:
+    """Run ``sidecheck`` and return its exit status; no exception and no traceback leaves it.
+
+    Examples
+    --------
+    >>> main(["no-such-command"])
+    2
+    """
+    words = list(sys.argv[1:] if argv is None else argv)
+    as_json = "--json" in words
+    try:
+        code = dispatch(words)
+        sys.stdout.flush()
+    except SystemExit as leaving:  # --help and --version
+        code = leaving.code if isinstance(leaving.code, int) else status.OK
+    except InputError as error:
+        code = complain(error, status.UNUSABLE, as_json)
+    except UndecidedError as error:
+        code = complain(error, status.UNDECIDED, as_json)
+    except KeyboardInterrupt:
+        print("sidecheck: interrupted", file=sys.stderr)
+        code = status.INTERRUPTED
+    except BrokenPipeError:
+        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())  # nothing is left to fail at exit
+        code = status.BROKEN_PIPE
+    except Exception as error:
+        code = complain(_internal(error), status.INTERNAL, as_json)
+    return code
+
+
+def _internal(error: Exception) -> str:
+    """Describe a mistake of this program on one line, with the place where it happened."""
+    frames = traceback.extract_tb(error.__traceback__)
+    place = f"{os.path.basename(frames[-1].filename)}:{frames[-1].lineno}" if frames else "?"
+    text = " ".join(str(error).split())[:200]
+    return f"internal error ({type(error).__name__} at {place}: {text}), please report it with the input"

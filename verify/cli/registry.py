@@ -1,0 +1,14 @@
+"""Which commands there are.
+
+A command is a module with ``EXAMPLE`` (one command line), ``add(parser)`` (its arguments) and ``run(args) -> int`` (its exit
+status). To add one: write that module beside this file and add its line below. Nothing of it is imported until
+it is the command asked for.
+"""
+
+from __future__ import annotations
+
+COMMANDS: dict[str, tuple[str, str]] = {
+    "derive": ("verify.cli.derive", "show, step by step, that a density is an exponential family and which law its statistic has"),
+    "solve": ("verify.cli.solve", "derive, then find the cutoffs and fractions of the optimal test, with proved digits"),
+}
+"""Name of the command -> its module, and what it does in one line."""

@@ -1,0 +1,88 @@
+"""One case through the pipeline: asked, derived, solved, compared."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import TYPE_CHECKING
+
+from verify.derivation.ledger import Grade, weakest
+from verify.errors import InputError
+
+if TYPE_CHECKING:
+    from verify.comparison.compare import Comparison
+    from verify.derivation.derive import Derivation
+    from verify.problem.casefile import Case
+    from verify.solution.solve import Solution
+
+CLAIMS = "claims"
+"""Name of the step that judges what the case file claims; the solution does not lean on it."""
+
+
+@dataclass(frozen=True)
+class CaseRun:
+    """What came of one case.
+
+    Attributes
+    ----------
+    case : Case
+        What was asked.
+    derivation : Derivation
+        The ledger.
+    solution : Solution or None
+        None when the derivation does not carry one (a step is refuted or undecided).
+    comparison : Comparison or None
+        The double-precision opinions; None when there is no solution or they were not wanted.
+    """
+
+    case: Case
+    derivation: Derivation
+    solution: Solution | None = None
+    comparison: Comparison | None = None
+
+    @property
+    def grade(self) -> Grade:
+        """Weakest grade of the derivation and of the solution; undecided when there is no solution and nothing is refuted."""
+        if self.solution is None:
+            return weakest([self.derivation.grade, Grade.UNDECIDED])
+        return weakest([self.derivation.grade, self.solution.grade])
+
+
+def derive_case(case: Case, *, budget: float = 10.0) -> Derivation:
+    """Derive the density of a case, with the limits, n and claims that the case states."""
+    from verify.derivation.derive import derive
+
+    problem = case.problem
+    limits = problem.hypothesis.limits if problem else ()
+    return derive(case.density, limits=limits, claim=case.claim, n=problem.n if problem else None, budget=budget)
+
+
+def carries_solution(derivation: Derivation) -> bool:
+    """Whether a solution can lean on this derivation: the law is known and no step but the claims is refuted."""
+    refuted = any(step.grade is Grade.REFUTED for step in derivation.steps if step.name != CLAIMS)
+    return derivation.family is not None and not refuted
+
+
+def run_case(case: Case, *, digits: int = 50, budget: float = 10.0, with_comparison: bool = True) -> CaseRun:
+    """Take one case as far as it goes.
+
+    Raises
+    ------
+    InputError
+        When the case asks no question about the parameter (it has no ``[problem]``).
+    UndecidedError
+        When the solution cannot be proved within its precision.
+    """
+    if case.problem is None:
+        raise InputError("nothing to solve", 'add [problem] with null = "...", alpha = "0.05", n = 10',
+                         key="problem", file=str(case.path))  # fmt: skip
+    derivation = derive_case(case, budget=budget)
+    if not carries_solution(derivation):
+        return CaseRun(case, derivation)
+    from verify.solution.solve import solve
+
+    solution = solve(case.problem, digits=digits, derivation=derivation)
+    if not with_comparison:
+        return CaseRun(case, derivation, solution)
+    from verify.comparison.compare import compare
+
+    return CaseRun(case, derivation, solution, compare(solution))

@@ -1,0 +1,172 @@
+"""A derivation and a solution as text that a statistician can paste into a review."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+from verify.derivation.ledger import Grade
+from verify.problem.numbers import exact_text
+from verify.report.equations import equation_lines
+from verify.report.layout import field, heading, number, table, wrapped
+
+if TYPE_CHECKING:
+    from verify.comparison.compare import Comparison
+    from verify.derivation.derive import Derivation
+    from verify.derivation.ledger import Step
+    from verify.problem.casefile import Case
+    from verify.problem.problem import Problem
+    from verify.report.pipeline import CaseRun
+    from verify.solution.solve import Solution
+
+CAUTION = (
+    "Choosing the limits, the level and the design, and interpreting the result, belongs to qualified "
+    "statisticians under the guidance that applies. This text shows that the numbers follow from what was asked."
+)
+
+OPTIMALITY = {
+    "one-sided": "uniformly most powerful (Lehmann and Romano 2005, Theorem 3.4.1)",
+    "outside null": "uniformly most powerful (Lehmann and Romano 2005, Theorem 3.7.1)",
+    "interval null": "uniformly most powerful unbiased (Lehmann and Romano 2005, section 4.2)",
+    "point null": "uniformly most powerful unbiased (Lehmann and Romano 2005, section 4.2)",
+}
+"""In which sense the test of each form is optimal, and by which theorem."""
+
+REJECTS = {
+    "inside": "reject when c1 < V < c2",
+    "outside": "reject when V < c1 or V > c2",
+    "above": "reject when V > c",
+    "below": "reject when V < c",
+}
+
+
+def derivation_text(derivation: Derivation, case: Case) -> str:
+    """Return the derivation of a case: what was asked, then the ledger."""
+    return "\n\n".join([_title(case), _asked(case), _derived(derivation, case.problem), wrapped(CAUTION)])
+
+
+def run_text(run: CaseRun) -> str:
+    """Return one case through the pipeline: asked, derived, solved, compared."""
+    parts = [_title(run.case), _asked(run.case), _derived(run.derivation, run.case.problem)]
+    if run.solution is None:
+        parts.append(heading(3, "Not solved", run.grade.value) + "\n" + field("Because", _obstacle(run.derivation)))
+    else:
+        parts.append(_solved(run.solution))
+    if run.comparison is not None:
+        parts.append(_compared(run.comparison))
+    return "\n\n".join([*parts, wrapped(CAUTION)])
+
+
+def _title(case: Case) -> str:
+    lines = [case.title or case.name]
+    if case.source:
+        lines.append(wrapped(case.source, first="Source: ", rest="        "))
+    return "\n".join(lines)
+
+
+def _asked(case: Case) -> str:
+    density, problem = case.density, case.problem
+    constants = ", ".join(f"{name} = {value}" for name, value in density.constants.items())
+    lines = [
+        heading(1, "Asked"),
+        field("Density", f"f({density.variable}; {density.parameter}) = {density.text}"),
+        field("Support", f"{density.variable} in {density.support}"),
+        field("Parameter", f"{density.parameter} in {density.space}" + (f"; known: {constants}" if constants else "")),
+    ]
+    if problem is not None:
+        hypothesis = problem.hypothesis
+        lines += [
+            field("Null", f"{hypothesis.text(density.parameter)}   ({hypothesis.form.value})"),
+            field("Alternative", hypothesis.alternative_text(density.parameter)),
+            field("Level", " and ".join(exact_text(level) for level in problem.levels)),
+            field("Sample", f"n = {problem.n} independent observation{'s' if problem.n > 1 else ''}"),
+        ]
+    return "\n".join(lines)
+
+
+def _derived(derivation: Derivation, problem: Problem | None) -> str:
+    density, lines = derivation.density, [heading(2, "Derived", derivation.grade.value)]
+    x, t = density.variable, density.parameter
+    if derivation.natural_parameter is not None:
+        direction = {True: ", increasing", False: ", decreasing", None: ""}[derivation.rising]
+        lines += [
+            field("Form", f"f({x}; {t}) = h({x}) exp(Q({t}) T({x}) - A({t}))"),
+            field(f"Q({t})", f"= {derivation.natural_parameter}{direction}"),
+            field(f"T({x})", f"= {derivation.statistic}"),
+            field(f"A({t})", f"= {derivation.log_normaliser}"),
+        ]
+    if derivation.family is not None:
+        lines.append(field("Law", law_line(derivation, problem.n if problem else None)))
+    lines += ["", *(_step(step) for step in derivation.steps)]
+    return "\n".join(lines)
+
+
+def law_line(derivation: Derivation, n: int | None) -> str:
+    """Return the law of V = T(X1) + ... + T(Xn), or of one T(X), with what maps it to the named law."""
+    family = derivation.family
+    if family is None:
+        return "not known"
+    many = n is not None and n > 1
+    law = family.law.sum_of(n) if many else family.law
+    shift = family.shift * (n if many and n is not None else 1)
+    whole = f"V = T(X1) + ... + T(X{n})" if many else "V = T(X)"
+    if family.scale == 1 and shift == 0:
+        return f"{whole} is {law}"
+    tail = "" if shift == 0 else f" + ({exact_text(shift)})"
+    return f"{whole} = ({exact_text(family.scale)}) Y{tail}, where Y is {law}"
+
+
+def _step(step: Step) -> str:
+    lines = [wrapped(f"{step.name}: {step.statement}", first=f"  [{step.grade.value}] ", rest="      ")]
+    if step.reason:
+        lines.append(wrapped(step.reason, first="      by: ", rest="          "))
+    if step.witness:
+        lines.append(wrapped(step.witness, first="      witness: ", rest="          "))
+    return "\n".join(lines)
+
+
+def _obstacle(derivation: Derivation) -> str:
+    worst = [step.name for step in derivation.steps if step.grade is derivation.grade]
+    verb = "is refuted" if derivation.grade is Grade.REFUTED else "is undecided"
+    if derivation.grade in (Grade.REFUTED, Grade.UNDECIDED):
+        return f"the step {' and '.join(worst)} {verb}; no test can lean on it"
+    return "the law of the statistic is not one with a closed form"
+
+
+def _solved(solution: Solution) -> str:
+    random = solution.gamma1 is not None or solution.gamma is not None
+    rule = REJECTS[solution.rejects]
+    if random:
+        one = solution.c is not None
+        rule += "; with probability gamma at V = c" if one else "; with probability gamma1 at V = c1, gamma2 at V = c2"
+    lines = [heading(3, f"Solved to {solution.digits} digits", solution.grade.value),
+             field("Optimal", OPTIMALITY[solution.form.value]), field("Test", rule), ""]  # fmt: skip
+    lines += [number(name, value.text(solution.digits), 6) for name, value in named_numbers(solution)]
+    lines += ["", *equation_lines(solution)]
+    return "\n".join(lines)
+
+
+def named_numbers(solution: Solution) -> list[tuple[str, Enclosure]]:  # noqa: F821
+    """Return the cutoffs and fractions that this form of test has, by name."""
+    named = [(name, getattr(solution, name)) for name in ("c", "gamma", "c1", "c2", "gamma1", "gamma2")]
+    return [(name, value) for name, value in named if value is not None]
+
+
+def _compared(comparison: Comparison) -> str:
+    lines = [heading(4, "Compared with double precision")]
+    names = list(dict.fromkeys(name for opinion in comparison.opinions for name in opinion.numbers))
+    rows = [["", *(opinion.route for opinion in comparison.opinions)]]
+    for name in names:
+        rows.append([name, *(_cell(opinion.numbers.get(name), opinion.digits.get(name)) for opinion in comparison.opinions)])
+    lines.append(table(rows))
+    lines += [wrapped(o.note, first=f"  {o.route}: ", rest="      ") for o in comparison.opinions if o.note]
+    if comparison.flags:
+        lines += [wrapped(f"{flag.kind}: {flag.text}", first="  ! ", rest="    ") for flag in comparison.flags]
+    else:
+        lines.append("  No flag: double precision can be trusted on this problem to the digits shown.")
+    return "\n".join(lines)
+
+
+def _cell(value: str | None, digits: int | None) -> str:
+    if value is None:
+        return "none"
+    return value if digits is None else f"{value}  ({digits} digits agree)"
