@@ -40,11 +40,11 @@ def total(parts: Sequence[Closed]) -> Closed:
     return Closed(sp.Add(*(part.value for part in parts)), tuple(conditions), tuple(sources))
 
 
-def _by_gamma(expr: Expr) -> Expr:
+def by_gamma(expr: Expr) -> Expr:
     """Write beta functions, factorials and binomial coefficients by gamma functions, and the like."""
     expr = expr.replace(sp.beta, lambda a, b=None: sp.gamma(a) * sp.gamma(b) / sp.gamma(a + b))
     expr = expr.replace(sp.factorial, lambda n: sp.gamma(n + 1))
-    expr = expr.replace(sp.binomial, lambda n, k: sp.gamma(n + 1) / sp.gamma(k + 1) / sp.gamma(n - k + 1))
+    expr = expr.replace(sp.binomial, _binomial_by_gamma)
     expr = expr.replace(sp.RisingFactorial, lambda a, k: sp.gamma(a + k) / sp.gamma(a))
     expr = expr.replace(sp.FallingFactorial, lambda a, k: sp.gamma(a + 1) / sp.gamma(a - k + 1))
     expr = expr.replace(sp.erfc, lambda z: 1 - sp.erf(z))
@@ -53,14 +53,17 @@ def _by_gamma(expr: Expr) -> Expr:
     return expr
 
 
+def _binomial_by_gamma(n: Expr, k: Expr) -> Expr:
+    """C(n, k); for negative n by C(-r, k) = (-1)**k * C(r + k - 1, k) (DLMF 1.2.6)."""
+    if n.is_negative:
+        return (-1) ** k * _binomial_by_gamma(k - n - 1, k)
+    return sp.gamma(n + 1) / sp.gamma(k + 1) / sp.gamma(n - k + 1)
+
+
 def _plain_arguments(expr: Expr, domain: Domain) -> Expr:
     """Bring the arguments of special functions to one form, and open Bessel functions of half-integer order."""
-    def bessel(kind: type[sp.Function]) -> None:
-        nonlocal expr
-        expr = expr.replace(kind, lambda n, z: _bessel(kind, n, z, domain))
-
     for kind in (sp.besselk, sp.besseli):
-        bessel(kind)
+        expr = expr.replace(kind, lambda n, z, f=kind: _bessel(f, n, z, domain))
     for kind in (sp.gamma, sp.erf, sp.zeta, sp.cos, sp.sin):
         expr = expr.replace(kind, lambda *z, f=kind: f(*(sp.expand(sp.cancel(w)) if w.is_rational_function()
                                                       else sp.expand(w) for w in z)))
@@ -90,15 +93,23 @@ def normal_form(value: Expr, domain: Domain) -> Expr:
     >>> normal_form(sp.exp(-t) * sp.sqrt(t * sp.exp(2 * t)) / sp.sqrt(t), Domain())
     1
     """
-    plain = _plain_arguments(_by_gamma(sp.sympify(value)), domain)
-    product = rebuild(split(plain, domain))
+    plain = by_gamma(_plain_arguments(sp.sympify(value), domain))
+    product = _product(plain, domain)
     if product.is_number or not product.has(sp.gamma, sp.Add):
         return product
     if product.has(sp.gamma):
-        product = rebuild(split(sp.gammasimp(product), domain))
+        product = _product(sp.gammasimp(product), domain)
     if product.has(sp.Add) and not product.is_number:
-        product = rebuild(split(sp.cancel(sp.together(sp.expand(product))), domain))
+        product = _product(sp.cancel(sp.together(sp.expand(product))), domain)
     return product
+
+
+def _product(expr: Expr, domain: Domain) -> Expr:
+    """Split into powers; in sums, every term first."""
+    def each_term(terms: Expr) -> Expr:
+        return sp.Add(*(rebuild(split(term, domain)) for term in terms.args))
+
+    return rebuild(split(expr.replace(lambda g: g.is_Add, each_term), domain))
 
 
 def is_one(value: Expr, domain: Domain) -> bool:

@@ -40,7 +40,7 @@ def integral(f: Expr, x: Symbol, lower: Expr, upper: Expr, domain: Domain) -> Fo
 
 
 def _integral(f: Expr, x: Symbol, lower: Expr, upper: Expr, domain: Domain, depth: int) -> Found:
-    if depth == 0:
+    if depth == 0 or lower == oo or upper == -oo:
         return None
     here = domain.having(x, lower, upper)
     logs = log_terms(f, x, here)
@@ -362,9 +362,8 @@ def _exponential(f: Expr, logs: LogTerms, x: Symbol, lower: Expr, upper: Expr, d
         if not sign:
             continue
         moved = sp.Mul(*(sp.exp(c * g.subs(x, sp.log(v) / k)) for g, c in logs.terms.items())) / v
-        ends = [sp.exp(sign * k * end) if end.is_finite else sp.exp(sign * end) for end in (lower, upper)]
-        ends = ends if sign > 0 else [1 / end if end != 0 else oo for end in ends][::-1]
-        found = _integral(moved, v, *ends, domain, depth)
+        ends = [sp.exp(sign * end if end.is_infinite else k * end) for end in (lower, upper)]
+        found = _integral(moved, v, *ends[::sign], domain, depth)
         if found is not None:
             return found.times(logs.constant / (sign * k))
     return None

@@ -68,6 +68,10 @@ class Domain:
             charts[symbol] = _chart((lower.xreplace(charts), upper.xreplace(charts)))
         return charts
 
+    @cached_property
+    def _known(self) -> dict[Expr, bool]:
+        return {}
+
     def having(self, symbol: Symbol, lower: Expr, upper: Expr) -> Domain:
         """Return this domain with one more symbol."""
         return Domain({**self.ranges, symbol: (lower, upper)})
@@ -81,7 +85,10 @@ class Domain:
         >>> Domain({p: (sp.Integer(0), sp.Integer(1))}).positive(1 - (1 - p)**3)
         True
         """
-        return _positive(sp.sympify(expr), self, 8)
+        expr = sp.sympify(expr)
+        if expr not in self._known:
+            self._known[expr] = _positive(expr, self, 8)
+        return self._known[expr]
 
     def negative(self, expr: Expr) -> bool:
         """Tell whether ``expr < 0`` is proved on the whole domain."""

@@ -58,9 +58,19 @@ def _split(expr: Expr, exponent: Expr, domain: Domain, out: Powers, keep: Symbol
         if factored.is_Mul or factored.is_Pow:
             _split(factored, exponent, domain, out, keep)
         else:
-            out[expr] += exponent
+            _add_sum(expr, exponent, domain, out)
     else:
         out[expr] += exponent
+
+
+def _add_sum(expr: Expr, exponent: Expr, domain: Domain, out: Powers) -> None:
+    """A sum as a base: of a and -a keep the positive one, so that their powers meet."""
+    if exponent.is_integer:
+        sign = domain.sign(expr) or (-1 if expr.could_extract_minus_sign() else 1)
+        if sign < 0:
+            out[sp.S.NegativeOne] += exponent
+            expr = sp.expand(-expr) if expr.is_polynomial() else -expr
+    out[expr] += exponent
 
 
 def _is_binomial(expr: Expr, x: Symbol | None) -> bool:
