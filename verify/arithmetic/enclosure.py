@@ -36,6 +36,14 @@ def _plain_or_scientific(number: Decimal) -> str:
     return f"{'-' if sign else ''}{head}e{lead}"
 
 
+def _short(bound: Fraction) -> str:
+    """A bound with two digits, rounded up, in scientific form."""
+    context = Context(prec=2, rounding=ROUND_CEILING, Emin=-10**9, Emax=10**9)
+    number = context.divide(Decimal(bound.numerator), Decimal(bound.denominator))
+    figures = "".join(map(str, number.as_tuple().digits)).ljust(2, "0")
+    return f"{figures[0]}.{figures[1:]}e{number.adjusted()}"
+
+
 @dataclass(frozen=True)
 class Enclosure:
     """A closed interval with rational ends that contains one real number.
@@ -89,8 +97,8 @@ class Enclosure:
         if self.lower <= 0 <= self.upper:
             return 0
         ratio = size / width
-        digits = len(str(ratio.numerator // ratio.denominator)) - 1
-        return max(digits, 0)
+        rough = Context(prec=9, rounding=ROUND_FLOOR, Emin=-10**9, Emax=10**9)
+        return max(rough.divide(Decimal(ratio.numerator), Decimal(ratio.denominator)).adjusted(), 0)
 
     def contains(self, value: Fraction | int) -> bool:
         """Whether a rational lies between the ends."""
@@ -104,16 +112,37 @@ class Enclosure:
         }
 
     def text(self, digits: int | None = None) -> str:
-        """Return the guaranteed digits: the number cut (never rounded) to the digits both ends share.
+        """Return the number with no digit that is not guaranteed.
 
-        Where the ends share no digit, both ends are printed.
+        The digits that both ends share, cut (never rounded), at most ``digits`` of them; where the ends lie on two sides of a
+        short decimal, that decimal and a bound for the distance from it; where they share no digit, both ends.
+
+        Examples
+        --------
+        >>> Enclosure(Fraction(49999, 10**6), Fraction(50001, 10**6)).text()
+        '0.05 +- 1.0e-6'
         """
         if self.exact:
             return decimal_text(self.lower, digits or 50, up=False)
-        for k in range(min(self.digits + 1, digits or 10_000_000), 0, -1):
-            low = decimal_text(abs(self.lower), k, up=False)
-            if low == decimal_text(abs(self.upper), k, up=False) and self.lower * self.upper > 0:
-                return ("-" if self.lower < 0 else "") + low
+        most = min(self.digits + 1, digits or 10_000_000)
+        if self.lower * self.upper > 0:
+            sign, small, large = (1, self.lower, self.upper) if self.lower > 0 else (-1, -self.upper, -self.lower)
+            for k in (most, most - 1, most - 2):
+                low = decimal_text(small, k, up=False) if k > 0 else ""
+                if low and low == decimal_text(large, k, up=False):
+                    return ("-" if sign < 0 else "") + low
+        return self._near(most) if self.digits > 2 or self.contains(0) else self._both()
+
+    def _near(self, digits: int) -> str:
+        """The decimal in the middle, with a bound for the distance of the number from it."""
+        centre = Fraction(0)
+        if not self.contains(0):
+            near = Context(prec=max(digits - 1, 1), Emin=-10**9, Emax=10**9)
+            centre = Fraction(near.divide(Decimal(self.mid.numerator), Decimal(self.mid.denominator)))
+        bound = max(abs(self.upper - centre), abs(self.lower - centre))
+        return f"{decimal_text(centre, digits, up=False)} +- {_short(bound)}"
+
+    def _both(self) -> str:
         ends = self.strings(3)
         return f"[{ends['lower']}, {ends['upper']}]"
 

@@ -1,0 +1,255 @@
+"""The window of a lattice law: a cell search, then a proof in balls, then ties in exact fractions.
+
+Every pair of cutoffs (a cell) has exactly one pair of end fractions that satisfies the side conditions; a cell whose
+fractions both lie in [0, 1] is the test, and it is the only one (the power function of the window moves one way as the window
+slides, because the likelihood ratio is monotone). So nothing has to be believed about the search.
+
+Source: Lehmann and Romano 2005, Theorem 3.7.1; S. Karlin, Total Positivity (1968), for the variation-diminishing property.
+"""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass
+from typing import Any
+
+from verify.arithmetic.ball import accuracy_bits, balls, to_enclosure
+from verify.arithmetic.enclosure import Enclosure
+from verify.arithmetic.exact import rationals
+from verify.errors import InputError, NotRational, UndecidedError
+from verify.solution.conditions import Conditions, end_fractions, exact_fractions
+from verify.solution.precision import bits_for
+from verify.solution.sliding import out_of_reach, slide
+from verify.solution.start import Rough, extend, window_start
+from verify.solution.window import Window
+
+MOST_STEPS = 40
+"""Steps of the fast search before the bracketing one takes over."""
+
+MOST_EXACT_ATOMS = 20_000
+"""A tie is decided exactly when the window has at most so many atoms."""
+
+Cell = tuple[int, int]
+
+
+@dataclass(frozen=True)
+class LatticeSearch:
+    """Search for the cell of the window.
+
+    Attributes
+    ----------
+    conditions : Conditions
+        The side conditions.
+    rough : tuple of Rough
+        Rough moments of the laws.
+    rising : bool
+        Whether the second law has the larger mean.
+    prec : int
+        Bits of the search.
+    """
+
+    conditions: Conditions
+    rough: tuple[Rough, ...]
+    rising: bool
+    prec: int
+
+    def cell(self) -> Cell:
+        """Return the cell, or the best guess that a proof may still move by a little."""
+        with balls(self.prec) as A:
+            found = self._fast(A)
+        return found if found is not None else self._bracket()
+
+    def _first(self) -> Cell:
+        level = float(self.conditions.levels[0])
+        a, b = window_start(self.rough, level, self.conditions.outside)
+        low, high = self.conditions.laws[0].support
+        c1 = math.floor(a) + 1
+        c2 = max(math.ceil(b), c1 + 1)
+        return self._inside_support(c1, c2, low, high)
+
+    @staticmethod
+    def _inside_support(c1: int, c2: int, low: int | None, high: int | None) -> Cell:
+        if low is not None:
+            c1, c2 = max(c1, low), max(c2, low + 1)
+        if high is not None:
+            c1, c2 = min(c1, high - 1), min(c2, high)
+        return c1, max(c2, c1 + 1)
+
+    def _fast(self, A: Any) -> Cell | None:
+        """Newton's method on the piecewise linear side conditions: each step solves the 2 x 2 system of a cell."""
+        cell, seen = self._first(), set()
+        low, high = self.conditions.laws[0].support
+        for _ in range(MOST_STEPS):
+            if cell in seen:
+                return None
+            seen.add(cell)
+            weights = window_fractions(self.conditions, A, *cell)
+            if any(math.isnan(w) for w in weights):
+                return None
+            if all(-1e-9 <= w <= 1 + 1e-9 for w in weights):
+                return cell
+            c1 = cell[0] - self._move(A, cell[0], weights[0], -1)
+            c2 = cell[1] + self._move(A, cell[1], weights[1], +1)
+            if c1 >= c2:
+                middle = (cell[0] + cell[1]) // 2
+                c1, c2 = min(c1, middle), max(c2, middle + 1)
+                c2 = max(c2, c1 + 1)
+            cell = self._inside_support(c1, c2, low, high)
+        return None
+
+    def _move(self, A: Any, c: int, weight: float, side: int) -> int:
+        """Cells by which an end must go outward (negative: inward) to gather the weight it wants."""
+        if 0 <= weight <= 1:
+            return 0
+        law = self.conditions.laws[0]
+        outward, here = law.density(A, c + side), law.density(A, c)
+        ratio = float(outward / here) if here > 0 and outward > 0 else 0.0
+        cap = 4 * max(r.spread for r in self.rough) + 2
+        slope = math.log(ratio) if 0.0 < ratio < math.inf else -50.0
+        wanted = weight - 1 if weight > 1 else weight
+        cells = extend(max(-1e300, min(1e300, wanted)), slope, cap)
+        return max(1, math.ceil(cells)) if weight > 1 else min(-1, math.floor(cells))
+
+    def _bracket(self) -> Cell:
+        """Bisection on the lower end: the other condition rises as a window of the right size slides up."""
+        return slide(self.conditions, self.rough, self.rising, self.prec)
+
+
+def window_fractions(conditions: Conditions, A: Any, c1: int, c2: int) -> tuple[float, float]:
+    """Return the fraction of each end that belongs to the window, in floating point (nan when unknown)."""
+    first, second = (_as_float(g) for g in end_fractions(conditions, A, c1, c2))
+    return (1 - first, 1 - second) if conditions.outside else (first, second)
+
+
+def _as_float(x: Any) -> float:
+    if not x.is_finite() or x.rad() > 0.2 + abs(x.mid()) / 4:
+        return math.nan
+    return float(x.mid())
+
+
+def solve_lattice_window(search: LatticeSearch, digits: int) -> Window:
+    """Find the window of a lattice law and prove it.
+
+    Parameters
+    ----------
+    search : LatticeSearch
+        The side conditions with what the search needs to know.
+    digits : int
+        Significant digits wanted of the fractions.
+
+    Raises
+    ------
+    UndecidedError
+        When a tie can be decided neither in balls nor in exact fractions.
+    """
+    conditions, wanted, cell = search.conditions, bits_for(digits), search.cell()
+    bits, tried = wanted + search.prec - 56, {cell}
+    cap = 8 * bits + 4096
+    while bits <= cap:
+        with balls(bits) as A:
+            fractions = end_fractions(conditions, A, *cell)
+            moves = [_side(g, conditions.outside) for g in fractions]
+            if moves == [0, 0]:
+                reached = min(accuracy_bits(g) for g in fractions)
+                if reached >= wanted:
+                    return _window(conditions, A, cell, fractions, bits)
+                bits += wanted - reached + 8
+                continue
+        if None in moves:
+            exact = _exact_tie(conditions, cell, bits)
+            if exact is not None:
+                return exact
+            bits *= 2
+        else:
+            cell = _neighbour(search, cell, moves, tried, bits)
+    raise UndecidedError(f"an end fraction at {cell} could not be told from 0 or 1 within {cap} bits")
+
+
+def _neighbour(search: LatticeSearch, cell: Cell, moves: list[Any], tried: set[Cell], bits: int) -> Cell:
+    """Next cell to try, where this one is certainly wrong: one step each way, else the sure search at this precision."""
+    step = (cell[0] - moves[0], cell[1] + moves[1])
+    low, high = search.conditions.laws[0].support
+    possible = step[0] < step[1] and (low is None or step[0] >= low) and (high is None or step[1] <= high)
+    if step in tried or not possible:
+        step = slide(search.conditions, search.rough, search.rising, bits)
+        if step in tried:
+            raise out_of_reach()
+    tried.add(step)
+    return step
+
+
+def _side(g: Any, outside: bool) -> int | None:
+    """0 when 0 < g < 1 is certain; +1 (-1) when the window certainly wants more (less) here; None when open."""
+    if g > 0 and g < 1:
+        return 0
+    if g > 1:
+        return -1 if outside else 1
+    if g < 0:
+        return 1 if outside else -1
+    return None
+
+
+def _window(conditions: Conditions, A: Any, cell: Cell, fractions: Any, bits: int) -> Window:
+    whole, first, second = (
+        conditions.whole(A, *cell), conditions.unit(A, cell[0]), conditions.unit(A, cell[1])
+    )
+    sides = tuple(to_enclosure(whole[i] + fractions[0] * first[i] + fractions[1] * second[i]) for i in (0, 1))
+    ends = [to_enclosure(g, low=_ZERO, high=_ONE) for g in fractions]
+    return Window(cell[0], cell[1], ends[0], ends[1], sides, bits)
+
+
+def _exact_tie(conditions: Conditions, cell: Cell, bits: int) -> Window | None:
+    """Decide a tie in exact rational arithmetic; None when the masses are irrational or the window too long."""
+    if cell[1] - cell[0] > MOST_EXACT_ATOMS:
+        return None
+    try:
+        g1, g2 = exact_fractions(conditions, rationals(), *cell)
+        targets = conditions.targets(rationals())
+    except NotRational:
+        return _exact_centre(conditions, cell, bits)
+    if not (0 <= g1 <= 1 and 0 <= g2 <= 1):
+        return None
+    return canonical(cell, g1, g2, conditions.outside, tuple(Enclosure.of(t) for t in targets))
+
+
+def _exact_centre(conditions: Conditions, cell: Cell, bits: int) -> Window | None:
+    """One atom, at the mean itself, for a point null: there the moment condition holds whatever the fraction is."""
+    if not conditions.point:
+        return None
+    mean = getattr(conditions.laws[0], "mean", None)
+    if mean not in cell:
+        return None
+    centre = int(mean)
+    with balls(2 * bits) as A:
+        mass = conditions.laws[0].density(A, centre)
+        fraction = 1 - (1 - A.real(conditions.levels[0])) / mass
+        if not (fraction > 0 and fraction < 1):
+            return None
+        phi = to_enclosure(fraction, low=_ZERO, high=_ONE)
+        first = to_enclosure(1 - mass + fraction * mass)
+    return Window(centre, centre, phi, phi, (first, Enclosure.of(0)), 2 * bits)
+
+
+def canonical(cell: Cell, g1: Any, g2: Any, outside: bool, conditions: tuple[Enclosure, ...]) -> Window:
+    """Bring exact end fractions to the canonical form: an end that belongs wholly to the other side moves inward.
+
+    Rejecting inside, the ends are the outermost points where phi > 0; rejecting outside, where phi < 1.
+    """
+    gone = 1 if outside else 0
+    c1, c2 = cell
+    if g1 == gone and g2 == gone:
+        if c2 - c1 == 1:
+            raise InputError("the window is empty", "ask for a level above 0", key="problem.alpha")
+        return Window(c1 + 1, c2 - 1, *(Enclosure.of(1 - gone),) * 2, conditions, 0)
+    if g1 == gone:
+        c1, g1 = c1 + 1, 1 - gone
+        if c1 == c2:
+            g1 = g2
+    elif g2 == gone:
+        c2, g2 = c2 - 1, 1 - gone
+        if c1 == c2:
+            g2 = g1
+    return Window(c1, c2, Enclosure.of(g1), Enclosure.of(g2), conditions, 0)
+
+
+_ZERO, _ONE = Enclosure.of(0).lower, Enclosure.of(1).lower

@@ -1,0 +1,71 @@
+"""A solved two-sided test on the scale of its own law: two ends and two fractions, in canonical form."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from typing import Any
+
+from verify.arithmetic.ball import balls
+from verify.arithmetic.enclosure import Enclosure
+from verify.errors import UndecidedError
+from verify.laws import Law
+from verify.solution.start import Rough
+
+MOST_CLOSENESS = 1 << 16
+"""Bits at which two laws that still look alike are given up."""
+
+
+@dataclass(frozen=True)
+class Window:
+    """Ends and fractions of a two-sided critical function.
+
+    Attributes
+    ----------
+    c1, c2 : int or Enclosure
+        The ends: ints on a lattice, enclosures for a continuous law.
+    phi1, phi2 : Enclosure or None
+        The critical function at the ends; None for a continuous law. Equal when c1 = c2.
+    conditions : tuple of Enclosure
+        The left-hand sides of the side conditions, enclosed at this solution.
+    prec : int
+        Bits at which the proof succeeded.
+    """
+
+    c1: Any
+    c2: Any
+    phi1: Enclosure | None
+    phi2: Enclosure | None
+    conditions: tuple[Enclosure, ...]
+    prec: int
+
+
+def rough_laws(laws: tuple[Law, ...]) -> tuple[tuple[Rough, ...], int, bool]:
+    """Return rough moments, the bits by which the laws lie close together, and whether the second has the larger mean.
+
+    Raises
+    ------
+    UndecidedError
+        When the two laws cannot be told apart.
+    """
+    bits = 64
+    while bits <= MOST_CLOSENESS:
+        with balls(bits) as A:
+            moments = [(law.expectation(A), law.spread(A)) for law in laws]
+            rough = tuple(Rough(float(m.mid()), float(s.mid())) for m, s in moments)
+            if len(laws) == 1:
+                return rough, 0, True
+            gap = (moments[1][0] - moments[0][0]) / moments[0][1]
+            if gap > 0 or gap < 0:
+                closeness = abs(gap).log() / A.log(A.real(2))
+                return rough, max(0, -int(float(closeness.mid()))), bool(gap > 0)
+        bits *= 2
+    raise UndecidedError("the laws at the two limits cannot be told apart")
+
+
+def search_precision(rough: tuple[Rough, ...], smallest_level: Any, closeness: int) -> int:
+    """Bits for the search: enough to see a tail of the level's size, a mass beside the sums of many, two close laws."""
+    scale = max(abs(law.mean) + law.spread for law in rough)
+    with balls(64) as A:
+        depth = -A.log(A.real(smallest_level)) / A.log(A.real(2))
+        size = A.log(A.real(int(scale) + 2)) / A.log(A.real(2))
+        return 64 + int(float((depth + 3 * size / 2).mid())) + 2 * closeness
