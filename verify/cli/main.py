@@ -81,25 +81,33 @@ def main(argv: Sequence[str] | None = None) -> int:
     2
     """
     words = list(sys.argv[1:] if argv is None else argv)
-    as_json = "--json" in words
     try:
-        code = dispatch(words)
+        code = _outcome(words)
         sys.stdout.flush()
-    except SystemExit as leaving:  # --help and --version
-        code = leaving.code if isinstance(leaving.code, int) else status.OK
-    except InputError as error:
-        code = complain(error, status.UNUSABLE, as_json)
-    except UndecidedError as error:
-        code = complain(error, status.UNDECIDED, as_json)
-    except KeyboardInterrupt:
-        print("sidecheck: interrupted", file=sys.stderr)
-        code = status.INTERRUPTED
     except BrokenPipeError:
         os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())  # nothing is left to fail at exit
         code = status.BROKEN_PIPE
-    except Exception as error:
-        code = complain(_internal(error), status.INTERNAL, as_json)
+    except KeyboardInterrupt:
+        print("sidecheck: interrupted", file=sys.stderr)
+        code = status.INTERRUPTED
     return code
+
+
+def _outcome(words: list[str]) -> int:
+    """Run the command, with every complaint turned into one line and a status."""
+    as_json = "--json" in words
+    try:
+        return dispatch(words)
+    except SystemExit as leaving:  # --help and --version
+        return leaving.code if isinstance(leaving.code, int) else status.OK
+    except InputError as error:
+        return complain(error, status.UNUSABLE, as_json)
+    except UndecidedError as error:
+        return complain(error, status.UNDECIDED, as_json)
+    except BrokenPipeError:
+        raise
+    except Exception as error:
+        return complain(_internal(error), status.INTERNAL, as_json)
 
 
 def _internal(error: Exception) -> str:

@@ -8,7 +8,7 @@ it is the command asked for.
 from __future__ import annotations
 
 COMMANDS: dict[str, tuple[str, str]] = {
-    "derive": ("verify.cli.derive", "show, step by step, that a density is an exponential family and which law its statistic has"),
-    "solve": ("verify.cli.solve", "derive, then find the cutoffs and fractions of the optimal test, with proved digits"),
+    "derive": ("verify.cli.derive", "show step by step which law a density's statistic has"),
+    "solve": ("verify.cli.solve", "derive, then prove the cutoffs of the optimal test"),
 }
 """Name of the command -> its module, and what it does in one line."""
