@@ -1,0 +1,218 @@
+"""The window of a continuous law: Newton's method, then interval Newton as the proof.
+
+Let F be the two side conditions less their targets and J their derivative. If N(X) = m - J(X)^-1 F(m) lies in the interior of a
+box X around m, then F has exactly one zero in X, and it lies in N(X). That the test has no other window at all follows from the
+monotone likelihood ratio.
+
+Source: Moore, Kearfott and Cloud (2009), Theorem 8.2 (interval Newton); Lehmann and Romano 2005, Theorem 3.7.1.
+"""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass
+from fractions import Fraction
+from typing import Any
+
+from verify.arithmetic.ball import accuracy_bits, around, balls, midpoint, min_abs, to_enclosure
+from verify.errors import UndecidedError
+from verify.solution.conditions import Conditions, end_fractions, solve_two_by_two
+from verify.solution.coordinate import Coordinate
+from verify.solution.precision import bits_for
+from verify.solution.sliding_continuous import slide_continuous
+from verify.solution.start import Rough, extend, window_start
+from verify.solution.window import Window
+
+MOST_STEPS = 60
+MOST_ROUNDS = 30
+NARROW = 1e-4
+"""Below this level a window that rejects inside is narrow: both ends are sought from one centre."""
+
+Ends = tuple[Any, Any]
+
+
+@dataclass(frozen=True)
+class ContinuousSearch:
+    """Search for the window of a continuous law.
+
+    Attributes
+    ----------
+    conditions : Conditions
+        The side conditions.
+    rough : tuple of Rough
+        Rough moments of the laws.
+    rising : bool
+        Whether the second law has the larger mean.
+    prec : int
+        Bits of the search.
+    """
+
+    conditions: Conditions
+    rough: tuple[Rough, ...]
+    rising: bool
+    prec: int
+
+    @property
+    def coordinate(self) -> Coordinate:
+        """The coordinate in which the search moves."""
+        return Coordinate(*self.conditions.laws[0].support)
+
+    def ends(self) -> Ends:
+        """Return two approximate ends; nothing is claimed of them."""
+        with balls(self.prec) as A:
+            found = self._newton(A, self._first(A))
+            if found is None:
+                found = self._newton(A, slide_continuous(self.conditions, self.rough, self.rising, self.coordinate, A))
+            if found is None:
+                raise UndecidedError("the search for the cutoffs did not settle")
+            return found
+
+    def _first(self, A: Any) -> Ends:
+        level = float(A.real(self.conditions.levels[0]).mid())
+        coordinate = self.coordinate
+        moved = tuple(coordinate.rough(A, law) for law in self.rough)
+        if level < NARROW and not self.conditions.outside:
+            return self._narrow(A)
+        a, b = window_start(moved, max(level, 1e-300), self.conditions.outside)
+        return midpoint(coordinate.place(A, A.real(Fraction(a)))), midpoint(coordinate.place(A, A.real(Fraction(b))))
+
+    def _narrow(self, A: Any) -> Ends:
+        """Window around the point where the densities are as the levels; their log ratio is linear in the statistic."""
+        first, second = self.conditions.laws
+        a, b = (A.real(Fraction(law.mean)) for law in self.rough)
+
+        def log_ratio(c: Any) -> Any:
+            return A.log(second.density(A, c) / first.density(A, c))
+
+        wanted = A.log(A.real(self.conditions.levels[1]) / A.real(self.conditions.levels[0]))
+        centre = midpoint(a + (b - a) * (wanted - log_ratio(a)) / (log_ratio(b) - log_ratio(a)))
+        half = A.real(self.conditions.levels[0]) / first.density(A, centre) / 2
+        return midpoint(centre - half), midpoint(centre + half)
+
+    def _newton(self, A: Any, ends: Ends) -> Ends | None:
+        """Damped Newton steps in the coordinate; settled when a step is far below the window's own width."""
+        c1, c2 = ends
+        settled = A.power(A.real(2), -(self.prec // 3))
+        for _ in range(MOST_STEPS):
+            e1, e2 = (midpoint(e) for e in outward_steps(self.conditions, A, c1, c2))
+            speeds = [abs(float(self.coordinate.speed(A, c).mid())) for c in (c1, c2)]
+            if not (e1.is_finite() and e2.is_finite() and all(0.0 < v < math.inf for v in speeds)):
+                return None
+            width = abs(c2 - c1)
+            small = [(min_abs(width, self.coordinate.speed(A, c)) * settled).mid() for c in (c1, c2)]
+            if abs(e1) <= small[0] and abs(e2) <= small[1]:
+                return midpoint(c1 - e1), midpoint(c2 + e2)
+            c1, c2 = self._moved(A, c1, e1, -1), self._moved(A, c2, e2, +1)
+        return None
+
+    def _moved(self, A: Any, c: Any, e: Any, side: int) -> Any:
+        """Move an end outward by e, gathering mass geometrically where e is not small."""
+        speed = self.coordinate.speed(A, c)
+        u = e / speed
+        size = abs(float(u.mid()))
+        spread = max(r.spread for r in self.rough)
+        cap = 4.0 * spread / abs(float(speed.mid()))
+        cap = min(max(cap, 1e-12), 40.0) if self.coordinate.low is not None or self.coordinate.high is not None else cap
+        if size < 1e-3 * min(cap, 1.0):
+            return midpoint(c + side * e)
+        slope = side * self._log_slope(A, c)
+        distance = extend(float(u.mid()), slope, cap)
+        return midpoint(self.coordinate.place(A, self.coordinate.of(A, c) + side * A.real(Fraction(distance))))
+
+    def _log_slope(self, A: Any, c: Any) -> float:
+        """Derivative of log(density * dc/du) along the coordinate, by a difference: only a guide."""
+        law, coordinate = self.conditions.laws[0], self.coordinate
+        h = 1e-6 * (1.0 if coordinate.low is not None or coordinate.high is not None else self.rough[0].spread)
+        next_c = midpoint(coordinate.place(A, coordinate.of(A, c) + A.real(Fraction(h))))
+        here = law.density(A, c) * coordinate.speed(A, c)
+        there = law.density(A, next_c) * coordinate.speed(A, next_c)
+        ratio = A.log(there / here)
+        return float(ratio.mid()) / h if ratio.is_finite() else 0.0
+
+
+def outward_steps(conditions: Conditions, A: Any, c1: Any, c2: Any) -> Ends:
+    """Return the Newton step of both ends, outward: what must be added to the window at each end."""
+    g1, g2 = end_fractions(conditions, A, c1, c2)
+    return (-g1, -g2) if conditions.outside else (g1, g2)
+
+
+def solve_continuous_window(search: ContinuousSearch, digits: int) -> Window:
+    """Find the window of a continuous law and prove it by interval Newton.
+
+    Parameters
+    ----------
+    search : ContinuousSearch
+        The side conditions with what the search needs to know.
+    digits : int
+        Significant digits wanted of the cutoffs.
+
+    Raises
+    ------
+    UndecidedError
+        When no box could be proved to hold the window.
+    """
+    centre, conditions, wanted = search.ends(), search.conditions, bits_for(digits)
+    bits = max(search.prec, min(2 * search.prec, wanted + search.prec - 64))
+    box: Ends | None = None
+    for _ in range(MOST_ROUNDS):
+        with balls(bits) as A:
+            box = _sharpen(conditions, A, centre, box)
+            reached = min(accuracy_bits(end) for end in box) if box is not None else 0
+            if box is not None:
+                if reached >= wanted:
+                    return _window(conditions, A, box, bits)
+                centre = midpoint(box[0]), midpoint(box[1])
+        bits = _next_bits(bits, reached, wanted)
+    raise UndecidedError("no box around the cutoffs could be proved to contain them")
+
+
+def _sharpen(conditions: Conditions, A: Any, centre: Ends, box: Ends | None) -> Ends | None:
+    """One round: prove a first box around the centre, or shrink a box that is known to contain the window."""
+    target, whole = conditions.targets(A), conditions.whole(A, *centre)
+    lack = (target[0] - whole[0], target[1] - whole[1])
+    if box is None:
+        step = _newton_step(conditions, A, centre, lack)
+        if step is None:
+            return None
+        grain = A.power(A.real(2), 8 - A.prec)
+        trial = tuple(around(c, 2 * abs(e).upper() + abs(c) * grain) for c, e in zip(centre, step, strict=True))
+        image = _image(conditions, A, centre, (trial[0], trial[1]), lack)
+        proved = image is not None and all(t.contains_interior(i) for t, i in zip(trial, image, strict=True))
+        return image if proved else None
+    image = _image(conditions, A, centre, box, lack)
+    if image is None:
+        return box
+    return box[0].intersection(image[0]), box[1].intersection(image[1])
+
+
+def _next_bits(bits: int, reached: int, wanted: int) -> int:
+    """Precision of the next round: the accuracy doubles each round, until the loss of the last one is known."""
+    if reached <= 0:
+        return bits + bits // 4 + 64
+    loss = max(bits - reached, 0)
+    return max(bits, min(2 * reached, wanted) + min(loss, bits) + 16) if 2 * reached < wanted else wanted + loss + 32
+
+
+def _newton_step(conditions: Conditions, A: Any, box: Ends, lack: Ends) -> Ends | None:
+    """Return -J(X)^-1 F(m), the step of both ends to the right; None when J(X) may be singular."""
+    left, right = conditions.unit(A, box[0]), conditions.unit(A, box[1])
+    determinant = left[0] * right[1] - right[0] * left[1]
+    if not determinant.is_finite() or determinant.contains(0):
+        return None
+    first, second = solve_two_by_two(left, right, lack)
+    return (first, -second) if conditions.outside else (-first, second)
+
+
+def _image(conditions: Conditions, A: Any, centre: Ends, box: Ends, lack: Ends) -> Ends | None:
+    """Return the interval Newton image N(X), X the box and m its centre."""
+    step = _newton_step(conditions, A, box, lack)
+    return None if step is None else (centre[0] + step[0], centre[1] + step[1])
+
+
+def _window(conditions: Conditions, A: Any, box: Ends, bits: int) -> Window:
+    whole = conditions.whole(A, *box)
+    target = conditions.targets(A)
+    sides = tuple(to_enclosure(value) for value in whole)
+    if not all(value.contains(t) or value.overlaps(t) for value, t in zip(whole, target, strict=True)):
+        raise ArithmeticError("the proved window misses its own side conditions")
+    return Window(to_enclosure(box[0]), to_enclosure(box[1]), None, None, sides, bits)

@@ -1,0 +1,65 @@
+"""A coordinate on the support in which a search can move freely: its logarithm where the support has an end.
+
+A first cutoff of 1e-26 makes absolute steps meaningless; in log c it is an ordinary number.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from fractions import Fraction
+from typing import Any
+
+from verify.solution.start import Rough
+
+
+@dataclass(frozen=True)
+class Coordinate:
+    """Map between the support of a continuous law and the whole line.
+
+    Attributes
+    ----------
+    low, high : Exact or None
+        Ends of the support.
+    """
+
+    low: Any
+    high: Any
+
+    def place(self, A: Any, u: Any) -> Any:
+        """Return the point of the support at coordinate u."""
+        if self.low is None and self.high is None:
+            return u
+        if self.high is None:
+            return A.real(self.low) + A.exp(u)
+        if self.low is None:
+            return A.real(self.high) - A.exp(-u)
+        low, high = A.real(self.low), A.real(self.high)
+        return (low + high * A.exp(u)) / (1 + A.exp(u))
+
+    def of(self, A: Any, c: Any) -> Any:
+        """Return the coordinate of a point of the support."""
+        if self.low is None and self.high is None:
+            return c
+        if self.high is None:
+            return A.log(c - A.real(self.low))
+        if self.low is None:
+            return -A.log(A.real(self.high) - c)
+        return A.log((c - A.real(self.low)) / (A.real(self.high) - c))
+
+    def speed(self, A: Any, c: Any) -> Any:
+        """Return dc/du at a point of the support."""
+        if self.low is None and self.high is None:
+            return A.real(1)
+        if self.high is None:
+            return c - A.real(self.low)
+        if self.low is None:
+            return A.real(self.high) - c
+        low, high = A.real(self.low), A.real(self.high)
+        return (c - low) * (high - c) / (high - low)
+
+    def rough(self, A: Any, law: Rough) -> Rough:
+        """Return rough moments in the coordinate, by the delta method."""
+        m = A.real(Fraction(law.mean))
+        spread = law.spread / float(self.speed(A, m).mid())
+        shift = spread * spread / 2 if self.high is None and self.low is not None else 0.0
+        return Rough(float(self.of(A, m).mid()) - shift, spread)

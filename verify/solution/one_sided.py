@@ -1,0 +1,221 @@
+"""One-sided tests: one cutoff, one fraction, one side condition.
+
+Source: Lehmann and Romano 2005, Theorem 3.4.1: the uniformly most powerful test of a family with monotone likelihood ratio
+rejects far out on one side, with the fraction gamma at the cutoff that makes the level exact.
+"""
+
+from __future__ import annotations
+
+import math
+from dataclasses import dataclass
+from fractions import Fraction
+from typing import Any
+
+from verify.arithmetic.ball import accuracy_bits, around, balls, midpoint, to_enclosure
+from verify.arithmetic.enclosure import Enclosure
+from verify.arithmetic.exact import rationals
+from verify.errors import NotRational, UndecidedError
+from verify.laws import Law
+from verify.solution.coordinate import Coordinate
+from verify.solution.precision import bits_for
+from verify.solution.start import Rough, upper_point
+
+MOST_ROUNDS = 200
+
+
+@dataclass(frozen=True)
+class Tail:
+    """A solved one-sided test on the scale of its own law.
+
+    Attributes
+    ----------
+    c : int or Enclosure
+        The cutoff.
+    phi : Enclosure or None
+        The critical function at the cutoff; None for a continuous law.
+    condition : Enclosure
+        The left-hand side of the side condition at this solution.
+    prec : int
+        Bits at which the proof succeeded (0: exact fractions).
+    """
+
+    c: Any
+    phi: Enclosure | None
+    condition: Enclosure
+    prec: int
+
+
+@dataclass(frozen=True)
+class TailProblem:
+    """Find the cutoff beyond which the test rejects.
+
+    Attributes
+    ----------
+    law : Law
+        Law at the limit of the null.
+    level : Exact
+        The level.
+    above : bool
+        Whether the test rejects large values.
+    rough : Rough
+        Rough moments of the law.
+    prec : int
+        Bits of the search.
+    """
+
+    law: Law
+    level: Any
+    above: bool
+    rough: Rough
+    prec: int
+
+    def beyond(self, A: Any, c: Any) -> Any:
+        """Probability of values strictly beyond c."""
+        if self.above:
+            return self.law.sf(A, c)
+        return self.law.cdf(A, c - 1 if self.law.lattice else c)
+
+    @property
+    def outward(self) -> int:
+        """Direction of rejection."""
+        return 1 if self.above else -1
+
+    def solve(self, digits: int) -> Tail:
+        """Return the proved cutoff (and fraction)."""
+        return self._lattice(digits) if self.law.lattice else self._continuous(digits)
+
+    def _lattice(self, digits: int) -> Tail:
+        """Bracket and bisect the cutoff, then prove 0 < gamma <= 1 there."""
+        with balls(self.prec) as A:
+            c = self._lattice_cutoff(A)
+        wanted = bits_for(digits)
+        bits = wanted + self.prec - 56
+        cap = 8 * bits + 4096
+        while bits <= cap:
+            with balls(bits) as A:
+                beyond, mass = self.beyond(A, c), self.law.density(A, c)
+                gamma = (A.real(self.level) - beyond) / mass
+                if gamma > 0 and gamma < 1:
+                    reached = accuracy_bits(gamma)
+                    if reached >= wanted:
+                        return Tail(c, _unit(gamma), to_enclosure(beyond + gamma * mass), bits)
+                    bits += wanted - reached + 8
+                    continue
+            if gamma > 1:
+                c -= self.outward
+            elif gamma < 0:
+                c += self.outward
+            else:
+                exact = self._exact(c)
+                if exact is not None:
+                    return exact
+                bits *= 2
+        raise UndecidedError(f"the fraction at {c} could not be told from 0 or 1 within {cap} bits")
+
+    def _lattice_cutoff(self, A: Any) -> int:
+        """Innermost lattice point beyond which less than the level lies (on midpoints)."""
+        level = A.real(self.level).mid()
+        low, high = self.law.support
+        z = upper_point(max(float(level), 1e-300))
+        start = round(self.rough.mean + self.outward * z * self.rough.spread)
+        start = max(start, low) if low is not None else start
+        start = min(start, high) if high is not None else start
+
+        def enough(c: int) -> bool:
+            return bool(self.beyond(A, c).mid() < level)
+
+        step = max(1, int(self.rough.spread / 8))
+        inner, outer = start, start
+        while not enough(outer):
+            inner, outer, step = outer, outer + self.outward * step, 2 * step
+        while enough(inner) and (low is None or inner >= low) and (high is None or inner <= high):
+            inner, outer, step = inner - self.outward * step, inner, 2 * step
+        while abs(outer - inner) > 1:
+            middle = (inner + outer) // 2
+            inner, outer = (inner, middle) if enough(middle) else (middle, outer)
+        return int(outer)
+
+    def _exact(self, c: int) -> Tail | None:
+        """Decide a tie in exact fractions; None when the masses are irrational or the sum too long."""
+        low, high = self.law.support
+        A = rationals()
+        try:
+            level = A.real(self.level)
+            if self.above and high is not None:
+                beyond = sum((self.law.density(A, k) for k in range(c + 1, high + 1)), A.real(0))
+            elif self.above:
+                beyond = 1 - sum((self.law.density(A, k) for k in range(low, c + 1)), A.real(0))
+            else:
+                beyond = sum((self.law.density(A, k) for k in range(low, c)), A.real(0))
+            gamma = (level - beyond) / self.law.density(A, c)
+        except (NotRational, TypeError):
+            return None
+        if gamma == 0:
+            return Tail(c + self.outward, Enclosure.of(1), Enclosure.of(level), 0)
+        return Tail(c, Enclosure.of(gamma), Enclosure.of(level), 0) if 0 < gamma <= 1 else None
+
+    def _continuous(self, digits: int) -> Tail:
+        """Bisect in the coordinate of the support, then interval Newton in one dimension."""
+        wanted = bits_for(digits)
+        with balls(self.prec) as A:
+            centre = self._continuous_cutoff(A)
+        bits, box = max(self.prec, min(2 * self.prec, wanted + self.prec - 64)), None
+        for _ in range(40):
+            with balls(bits) as A:
+                box = self._sharpen(A, centre, box)
+                reached = accuracy_bits(box) if box is not None else 0
+                if box is not None:
+                    if reached >= wanted:
+                        return Tail(to_enclosure(box), None, to_enclosure(self.beyond(A, box)), bits)
+                    centre = midpoint(box)
+            bits = min(2 * bits, wanted + (bits - reached) + 32) if reached > 0 else bits + bits // 4 + 64
+        raise UndecidedError("no interval around the cutoff could be proved to contain it")
+
+    def _sharpen(self, A: Any, centre: Any, box: Any) -> Any:
+        lack = A.real(self.level) - self.beyond(A, centre)
+        density = self.law.density(A, centre if box is None else box)
+        if density.contains(0) or not density.is_finite():
+            return box
+        step = -self.outward * lack / density
+        if box is not None:
+            return box.intersection(centre + step)
+        trial = around(centre, 2 * abs(step).upper() + abs(centre) * A.power(A.real(2), 8 - A.prec))
+        slope = self.law.density(A, trial)
+        if slope.contains(0) or not slope.is_finite():
+            return None
+        image = centre - self.outward * lack / slope
+        return image if trial.contains_interior(image) else None
+
+    def _continuous_cutoff(self, A: Any) -> Any:
+        coordinate = Coordinate(*self.law.support)
+        rough = coordinate.rough(A, self.rough)
+        level = A.real(self.level).mid()
+        z = upper_point(max(float(level), 1e-300))
+        inner = rough.mean + self.outward * z * rough.spread
+        step = max(rough.spread / 4, 1e-9)
+
+        def enough(u: Any) -> bool:
+            return bool(self.beyond(A, midpoint(coordinate.place(A, A.real(u)))).mid() < level)
+
+        inner = outer = Fraction(inner)
+        reach = Fraction(step)
+        for _ in range(MOST_ROUNDS):
+            if enough(outer):
+                break
+            inner, outer, reach = outer, outer + self.outward * reach, 2 * reach
+        for _ in range(MOST_ROUNDS):
+            if not enough(inner):
+                break
+            inner, outer, reach = inner - self.outward * reach, inner, 2 * reach
+        for _ in range(60):
+            middle = (inner + outer) / 2
+            inner, outer = (inner, middle) if enough(middle) else (middle, outer)
+        centre = midpoint(coordinate.place(A, A.real((inner + outer) / 2)))
+        for _ in range(int(math.log2(self.prec)) + 2):
+            step_ball = (A.real(self.level) - self.beyond(A, centre)) / self.law.density(A, centre)
+            centre = midpoint(centre - self.outward * step_ball)
+        return centre
+
+
+def _unit(gamma: Any) -> Enclosure:
+    return to_enclosure(gamma, low=Fraction(0), high=Fraction(1))
