@@ -8,7 +8,18 @@ import pytest
 
 import verify
 
-NAMES = ["Density", "Enclosure", "InputError", "Problem", "SidecheckError", "UndecidedError", "compare", "derive", "read_case", "solve"]
+NAMES = [
+    "Density",
+    "Enclosure",
+    "InputError",
+    "Problem",
+    "SidecheckError",
+    "UndecidedError",
+    "compare",
+    "derive",
+    "read_case",
+    "solve",
+]
 
 
 @pytest.mark.parametrize("name", NAMES)
@@ -30,7 +41,9 @@ def test_unknown_name_is_an_attribute_error() -> None:
 def test_import_is_light() -> None:
     code = "import sys, verify, verify.cli.main; print([m for m in HEAVY if m in sys.modules])"
     heavy = ["sympy", "mpmath", "flint", "numpy", "scipy", "rich", "tomllib"]
-    done = subprocess.run([sys.executable, "-c", f"HEAVY = {heavy}; {code}"], capture_output=True, text=True, check=True)
+    done = subprocess.run(
+        [sys.executable, "-c", f"HEAVY = {heavy}; {code}"], capture_output=True, text=True, check=True
+    )
     assert done.stdout.strip() == "[]"
 
 

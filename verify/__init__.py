@@ -51,7 +51,7 @@ __version__ = "0.1.0"
 
 
 class _Package(ModuleType):
-    """This package, in which a sub-package never hides a public function of the same name."""
+    """The package ``verify``, in which a sub-package never hides a public function of the same name."""
 
     def __setattr__(self, name: str, value: Any) -> None:
         if not (name in PUBLIC and isinstance(value, ModuleType)):

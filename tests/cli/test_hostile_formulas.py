@@ -1,4 +1,4 @@
-"""Formulas written to run something, or never to end: one line, status 2, bounded time and memory, nothing run."""
+"""Formulas written to run something, or never to end: one line, status 2, bounded, nothing run."""
 
 import json
 import resource

@@ -12,7 +12,9 @@ def digits(text: str) -> int:
     """Read the value of ``--digits``."""
     low, high = DIGITS
     if not (text.isascii() and text.isdigit() and len(text) <= 6 and low <= int(text) <= high):
-        raise argparse.ArgumentTypeError(f"{text[:40]!r} is not a whole number of digits from {low} to {high}")
+        raise argparse.ArgumentTypeError(
+            f"{text[:40]!r} is not a whole number of digits from {low} to {high}"
+        )
     return int(text)
 
 
@@ -34,7 +36,9 @@ def add_case(parser: argparse.ArgumentParser) -> None:
 
 def add_json(parser: argparse.ArgumentParser) -> None:
     """Add ``--json``."""
-    parser.add_argument("--json", action="store_true", help="print one JSON object on stdout and nothing else there")
+    parser.add_argument(
+        "--json", action="store_true", help="print one JSON object on stdout and nothing else there"
+    )
 
 
 def add_digits(parser: argparse.ArgumentParser, default: int = 50) -> None:

@@ -20,7 +20,7 @@ def note(text: str) -> None:
 
 
 def complain(error: Exception | str, code: int, as_json: bool) -> int:
-    """Say on one line of stderr why there is no result, as an object on stdout too with ``--json``; return the status."""
+    """Say on one line of stderr why there is no result (with ``--json`` on stdout too); return the status."""
     line = " ".join(str(error).split())
     print(line if line.startswith("sidecheck") else f"sidecheck: {line}", file=sys.stderr)
     if as_json:

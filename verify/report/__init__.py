@@ -1,0 +1,1 @@
+"""What came of a case, as text and as JSON."""

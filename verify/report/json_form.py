@@ -32,7 +32,7 @@ def step_json(step: Step) -> dict[str, str]:
 
 
 def law_json(family: LawFamily | None, n: int | None) -> dict[str, Any] | None:
-    """Write the law of Y in V = scale * Y + shift, as the law of the sum of n (of one observation when n is None)."""
+    """Write the law of Y, where V = scale * Y + shift is the sum over n (or one) observations."""
     if family is None:
         return None
     law = family.law if n is None else family.law.sum_of(n)
@@ -46,14 +46,14 @@ def law_json(family: LawFamily | None, n: int | None) -> dict[str, Any] | None:
 
 def density_json(density: Density) -> dict[str, str]:
     """Write what was asked about one observation."""
-    return {"formula": str(density.expr), "variable": density.variable, "support": density.support,
+    return {"formula": exact_text(density.expr), "variable": density.variable, "support": density.support,
             "parameter": density.parameter, "space": density.space}  # fmt: skip
 
 
 def derivation_json(derivation: Derivation, n: int | None = None) -> dict[str, Any]:
     """Write a derivation (``derive.schema.json``)."""
     parts = (derivation.natural_parameter, derivation.statistic, derivation.log_normaliser)
-    natural, statistic, normaliser = (None if part is None else str(part) for part in parts)
+    natural, statistic, normaliser = (None if part is None else exact_text(part) for part in parts)
     return {
         "density": density_json(derivation.density),
         "natural_parameter": natural,
@@ -69,7 +69,9 @@ def derivation_json(derivation: Derivation, n: int | None = None) -> dict[str, A
 def cutoffs_json(solution: Solution) -> dict[str, dict[str, str]]:
     """Write the cutoffs and fractions that the form of the test has."""
     named = {name: getattr(solution, name) for name in ("c", "gamma", "c1", "c2", "gamma1", "gamma2")}
-    return {name: enclosure_json(value, solution.digits) for name, value in named.items() if value is not None}
+    return {
+        name: enclosure_json(value, solution.digits) for name, value in named.items() if value is not None
+    }
 
 
 def side_conditions_json(solution: Solution) -> list[dict[str, Any]]:
@@ -91,7 +93,12 @@ def comparison_json(comparison: Comparison | None) -> dict[str, Any] | None:
         return None
     return {
         "opinions": [
-            {"route": opinion.route, "numbers": opinion.numbers, "digits": opinion.digits, "note": opinion.note}
+            {
+                "route": opinion.route,
+                "numbers": opinion.numbers,
+                "digits": opinion.digits,
+                "note": opinion.note,
+            }
             for opinion in comparison.opinions
         ],
         "flags": [{"kind": flag.kind, "number": flag.number, "text": flag.text} for flag in comparison.flags],

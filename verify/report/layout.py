@@ -42,7 +42,12 @@ def field(label: str, text: str, indent: int = 2) -> str:
 def wrapped(text: str, *, first: str = "", rest: str = "") -> str:
     """Wrap text to the width behind ``first``, further lines behind ``rest``."""
     lines = textwrap.wrap(
-        text, WIDTH, initial_indent=first, subsequent_indent=rest, break_long_words=True, break_on_hyphens=False
+        text,
+        WIDTH,
+        initial_indent=first,
+        subsequent_indent=rest,
+        break_long_words=True,
+        break_on_hyphens=False,
     )
     return "\n".join(lines) if lines else first.rstrip()
 

@@ -41,7 +41,7 @@ class CaseRun:
 
     @property
     def grade(self) -> Grade:
-        """Weakest grade of the derivation and of the solution; undecided when there is no solution and nothing is refuted."""
+        """Weakest grade; without a solution, undecided unless a step is refuted."""
         if self.solution is None:
             return weakest([self.derivation.grade, Grade.UNDECIDED])
         return weakest([self.derivation.grade, self.solution.grade])
@@ -53,11 +53,13 @@ def derive_case(case: Case, *, budget: float = 10.0) -> Derivation:
 
     problem = case.problem
     limits = problem.hypothesis.limits if problem else ()
-    return derive(case.density, limits=limits, claim=case.claim, n=problem.n if problem else None, budget=budget)
+    return derive(
+        case.density, limits=limits, claim=case.claim, n=problem.n if problem else None, budget=budget
+    )
 
 
 def carries_solution(derivation: Derivation) -> bool:
-    """Whether a solution can lean on this derivation: the law is known and no step but the claims is refuted."""
+    """Whether a solution can lean on it: the law is known and no step but the claims is refuted."""
     refuted = any(step.grade is Grade.REFUTED for step in derivation.steps if step.name != CLAIMS)
     return derivation.family is not None and not refuted
 

@@ -10,8 +10,10 @@ from verify.report.equations import equation_lines
 from verify.report.layout import field, heading, number, table, wrapped
 
 if TYPE_CHECKING:
+    from verify.arithmetic.enclosure import Enclosure
     from verify.comparison.compare import Comparison
     from verify.derivation.derive import Derivation
+    from verify.derivation.family import LawFamily
     from verify.derivation.ledger import Step
     from verify.problem.casefile import Case
     from verify.problem.problem import Problem
@@ -20,7 +22,8 @@ if TYPE_CHECKING:
 
 CAUTION = (
     "Choosing the limits, the level and the design, and interpreting the result, belongs to qualified "
-    "statisticians under the guidance that applies. This text shows that the numbers follow from what was asked."
+    "statisticians under the guidance that applies. This text shows that the numbers follow from "
+    "what was asked."
 )
 
 OPTIMALITY = {
@@ -48,7 +51,9 @@ def run_text(run: CaseRun) -> str:
     """Return one case through the pipeline: asked, derived, solved, compared."""
     parts = [_title(run.case), _asked(run.case), _derived(run.derivation, run.case.problem)]
     if run.solution is None:
-        parts.append(heading(3, "Not solved", run.grade.value) + "\n" + field("Because", _obstacle(run.derivation)))
+        parts.append(
+            heading(3, "Not solved", run.grade.value) + "\n" + field("Because", _obstacle(run.derivation))
+        )
     else:
         parts.append(_solved(run.solution))
     if run.comparison is not None:
@@ -70,7 +75,10 @@ def _asked(case: Case) -> str:
         heading(1, "Asked"),
         field("Density", f"f({density.variable}; {density.parameter}) = {density.text}"),
         field("Support", f"{density.variable} in {density.support}"),
-        field("Parameter", f"{density.parameter} in {density.space}" + (f"; known: {constants}" if constants else "")),
+        field(
+            "Parameter",
+            f"{density.parameter} in {density.space}" + (f"; known: {constants}" if constants else ""),
+        ),
     ]
     if problem is not None:
         hypothesis = problem.hypothesis
@@ -90,29 +98,22 @@ def _derived(derivation: Derivation, problem: Problem | None) -> str:
         direction = {True: ", increasing", False: ", decreasing", None: ""}[derivation.rising]
         lines += [
             field("Form", f"f({x}; {t}) = h({x}) exp(Q({t}) T({x}) - A({t}))"),
-            field(f"Q({t})", f"= {derivation.natural_parameter}{direction}"),
-            field(f"T({x})", f"= {derivation.statistic}"),
-            field(f"A({t})", f"= {derivation.log_normaliser}"),
+            field(f"Q({t})", f"= {exact_text(derivation.natural_parameter)}{direction}"),
+            field(f"T({x})", f"= {exact_text(derivation.statistic)}"),
+            field(f"A({t})", f"= {exact_text(derivation.log_normaliser)}"),
         ]
     if derivation.family is not None:
-        lines.append(field("Law", law_line(derivation, problem.n if problem else None)))
+        lines.append(field("Law", law_line(derivation.family, problem.n if problem else None)))
     lines += ["", *(_step(step) for step in derivation.steps)]
     return "\n".join(lines)
 
 
-def law_line(derivation: Derivation, n: int | None) -> str:
-    """Return the law of V = T(X1) + ... + T(Xn), or of one T(X), with what maps it to the named law."""
-    family = derivation.family
-    if family is None:
-        return "not known"
-    many = n is not None and n > 1
-    law = family.law.sum_of(n) if many else family.law
-    shift = family.shift * (n if many and n is not None else 1)
-    whole = f"V = T(X1) + ... + T(X{n})" if many else "V = T(X)"
-    if family.scale == 1 and shift == 0:
-        return f"{whole} is {law}"
-    tail = "" if shift == 0 else f" + ({exact_text(shift)})"
-    return f"{whole} = ({exact_text(family.scale)}) Y{tail}, where Y is {law}"
+def law_line(family: LawFamily, n: int | None) -> str:
+    """Return the law of V = T(X1) + ... + T(Xn), or of one T(X) when n is not given."""
+    if n is None or n == 1:
+        return f"V = T(X) is {family.text()}"
+    whole = "T(X1) + T(X2)" if n == 2 else f"T(X1) + ... + T(X{n})"
+    return f"V = {whole} is {family.text(n=n)}"
 
 
 def _step(step: Step) -> str:
@@ -137,7 +138,11 @@ def _solved(solution: Solution) -> str:
     rule = REJECTS[solution.rejects]
     if random:
         one = solution.c is not None
-        rule += "; with probability gamma at V = c" if one else "; with probability gamma1 at V = c1, gamma2 at V = c2"
+        rule += (
+            "; with probability gamma at V = c"
+            if one
+            else "; with probability gamma1 at V = c1, gamma2 at V = c2"
+        )
     lines = [heading(3, f"Solved to {solution.digits} digits", solution.grade.value),
              field("Optimal", OPTIMALITY[solution.form.value]), field("Test", rule), ""]  # fmt: skip
     lines += [number(name, value.text(solution.digits), 6) for name, value in named_numbers(solution)]
@@ -145,7 +150,7 @@ def _solved(solution: Solution) -> str:
     return "\n".join(lines)
 
 
-def named_numbers(solution: Solution) -> list[tuple[str, Enclosure]]:  # noqa: F821
+def named_numbers(solution: Solution) -> list[tuple[str, Enclosure]]:
     """Return the cutoffs and fractions that this form of test has, by name."""
     named = [(name, getattr(solution, name)) for name in ("c", "gamma", "c1", "c2", "gamma1", "gamma2")]
     return [(name, value) for name, value in named if value is not None]
@@ -156,11 +161,21 @@ def _compared(comparison: Comparison) -> str:
     names = list(dict.fromkeys(name for opinion in comparison.opinions for name in opinion.numbers))
     rows = [["", *(opinion.route for opinion in comparison.opinions)]]
     for name in names:
-        rows.append([name, *(_cell(opinion.numbers.get(name), opinion.digits.get(name)) for opinion in comparison.opinions)])
+        rows.append(
+            [
+                name,
+                *(
+                    _cell(opinion.numbers.get(name), opinion.digits.get(name))
+                    for opinion in comparison.opinions
+                ),
+            ]
+        )
     lines.append(table(rows))
     lines += [wrapped(o.note, first=f"  {o.route}: ", rest="      ") for o in comparison.opinions if o.note]
     if comparison.flags:
-        lines += [wrapped(f"{flag.kind}: {flag.text}", first="  ! ", rest="    ") for flag in comparison.flags]
+        lines += [
+            wrapped(f"{flag.kind}: {flag.text}", first="  ! ", rest="    ") for flag in comparison.flags
+        ]
     else:
         lines.append("  No flag: double precision can be trusted on this problem to the digits shown.")
     return "\n".join(lines)
