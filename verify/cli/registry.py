@@ -1,8 +1,8 @@
 """Which commands there are.
 
 A command is a module with ``EXAMPLE`` (one command line), ``add(parser)`` (its arguments) and
-``run(args) -> int`` (its exit status). To add one: write that module beside this file and add its line below. Nothing of it is
-imported until it is the command asked for.
+``run(args) -> int`` (its exit status). To add one: write that module beside this file and add its line
+below. Nothing of it is imported until it is the command asked for.
 """
 
 from __future__ import annotations
