@@ -1,0 +1,193 @@
+"""Derive a density: every step of the argument from the density to the law of its statistic, graded."""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Mapping
+from dataclasses import dataclass, field
+from typing import Any
+
+import sympy as sp
+from sympy import Expr
+
+from verify.derivation.budget import Worker
+from verify.derivation.claims import Derived, claims_steps
+from verify.derivation.factorisation_step import factorisation_step
+from verify.derivation.factorisation import Factorisation
+from verify.derivation.family import LawFamily
+from verify.derivation.kernel import with_normaliser
+from verify.derivation.law_step import law_step
+from verify.derivation.ledger import Grade, Step, weakest
+from verify.derivation.monotonicity import monotonicity_step
+from verify.derivation.nonnegativity import nonnegativity_step
+from verify.derivation.normalisation import total_mass
+from verify.derivation.numerical_look import numerical_look
+from verify.derivation.points import domain_of, parameter_points
+from verify.derivation.support_step import support_step
+from verify.errors import UndecidedError
+from verify.problem.density import Density
+from verify.problem.numbers import Exact, as_expr
+
+
+@dataclass(frozen=True)
+class Derivation:
+    """The outcome of :func:`derive`: ``f = h(x) exp(Q(t) T(x) - A(t))``, the law of T, and the ledger.
+
+    Attributes
+    ----------
+    density : Density
+        What was derived.
+    natural_parameter, statistic, log_normaliser, base : Expr or None
+        Q(t), T(x), A(t) and h(x); None where the factorisation failed.
+    rising : bool or None
+        True when Q increases, False when it decreases, None when that is open.
+    family : LawFamily or None
+        The law of T in closed form, when there is one.
+    steps : tuple of Step
+        The ledger, in order.
+    """
+
+    density: Density
+    natural_parameter: Expr | None
+    statistic: Expr | None
+    log_normaliser: Expr | None
+    base: Expr | None
+    rising: bool | None
+    family: LawFamily | None
+    steps: tuple[Step, ...]
+
+    @property
+    def grade(self) -> Grade:
+        """The weakest grade of all steps but the numerical look, which is a second opinion unless it fails."""
+        return weakest(
+            step.grade
+            for step in self.steps
+            if step.name != "numerical look" or step.grade is Grade.REFUTED
+        )
+
+    @property
+    def law(self) -> str:
+        """The law of one T as a line to read; empty when it has no closed form here."""
+        return "" if self.family is None else self.family.text()
+
+    def step(self, name: str) -> Step | None:
+        """Return the first step of that name."""
+        return next((step for step in self.steps if step.name == name), None)
+
+    def __str__(self) -> str:
+        return "\n".join(map(str, self.steps))
+
+
+@dataclass
+class _Ledger:
+    """Runs steps in the worker and collects them."""
+
+    worker: Worker
+    steps: list[Step] = field(default_factory=list)
+
+    def run(self, name: str, function: Callable[..., Any], *arguments: Any) -> Any:
+        """Run one step, a function that returns a Step or (Step, more); return what is more, or None."""
+        try:
+            result = self.worker.run(function, *arguments)
+        except UndecidedError as error:
+            self.steps.append(Step(name, Grade.UNDECIDED, f"the step {name} stayed open", str(error)))
+            return None
+        step, more = result if isinstance(result, tuple) else (result, None)
+        self.steps.extend(step if isinstance(step, tuple) else (step,))
+        return more
+
+    def grades(self, *names: str) -> Grade:
+        return weakest(step.grade for step in self.steps if step.name in names)
+
+
+def derive(
+    density: Density,
+    *,
+    limits: tuple[Exact, ...] = (),
+    claim: Mapping[str, str] | None = None,
+    n: int | None = None,
+    budget: float = 10.0,
+) -> Derivation:
+    """Show step by step that a density is a one-parameter exponential family, and which law its statistic has.
+
+    Parameters
+    ----------
+    density : Density
+        The density of one observation.
+    limits : tuple of Exact
+        Limits of the hypothesis; where no symbolic proof of monotonicity is found, these are covered by balls.
+    claim : mapping
+        A colleague's ``natural_parameter``, ``statistic`` and ``law``, each optional.
+    n : int
+        Number of observations, for the claimed law.
+    budget : float
+        Seconds that each symbolic step may take; it is then stopped, graded undecided, and the rest goes on.
+
+    Returns
+    -------
+    Derivation
+        With the ledger in ``steps``. A refuted step is a result, not an exception.
+
+    Raises
+    ------
+    InputError
+        When a formula cannot be read.
+
+    Examples
+    --------
+    >>> density = Density("exp(-lam)*lam**x/factorial(x)", variable="x", support="integers >= 0",
+    ...                   parameter="lam", space="lam > 0")
+    >>> derivation = derive(density)
+    >>> derivation.statistic, derivation.natural_parameter, derivation.law, derivation.grade.value
+    (x, log(lam), 'Poisson(mean = lam)', 'proved')
+    """
+    exact_limits = tuple(as_expr(limit) for limit in limits)
+    with Worker(budget) as worker:
+        ledger = _Ledger(worker)
+        ledger.run("support", support_step, density)
+        if ledger.grades("support") is Grade.REFUTED:
+            return Derivation(density, None, None, None, None, None, None, tuple(ledger.steps))
+        ledger.run("nonnegativity", nonnegativity_step, density)
+        found = _factorised(ledger, density)
+        rising = family = None
+        if found is not None:
+            rising, family = _law(ledger, density, found, exact_limits)
+            if claim:
+                grade = ledger.grades("law")
+                derived = Derived(density, found.statistic, found.natural_parameter, family, grade, n)
+                ledger.run("claims", _claims, dict(claim), derived)
+    parts = (
+        (found.natural_parameter, found.statistic, found.log_normaliser, found.base) if found else (None,) * 4
+    )
+    return Derivation(density, *parts, rising, family, tuple(ledger.steps))
+
+
+def _factorised(ledger: _Ledger, density: Density) -> Factorisation | None:
+    """Normalisation and factorisation; a kernel is factorised before it is summed, the ledger keeps the order of the argument."""
+    found: Factorisation | None = ledger.run("factorisation", factorisation_step, density)
+    factorisation = ledger.steps.pop()
+    if density.is_kernel:
+        found = ledger.run("normalisation", with_normaliser, density, found)
+    else:
+        ledger.run("normalisation", total_mass, density)
+    ledger.steps.append(factorisation)
+    return found
+
+
+def _law(
+    ledger: _Ledger, density: Density, found: Factorisation, limits: tuple[Expr, ...]
+) -> tuple[bool | None, LawFamily | None]:
+    points = parameter_points(density, limits)
+    rising = ledger.run(
+        "monotonicity", monotonicity_step, found.natural_parameter, density.t, domain_of(density), points, limits
+    )
+    leaning = ledger.grades("support", "nonnegativity", "normalisation", "factorisation")
+    if leaning is Grade.REFUTED or ledger.grades("monotonicity") is Grade.REFUTED:
+        return rising, None
+    family = ledger.run("law", law_step, density, found, leaning)
+    if family is not None:
+        ledger.run("numerical look", numerical_look, density, found.statistic, family, points[0])
+    return rising, family
+
+
+def _claims(claim: dict[str, str], derived: Derived) -> tuple[tuple[Step, ...], None]:
+    return claims_steps(claim, derived), None

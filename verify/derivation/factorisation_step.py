@@ -1,0 +1,47 @@
+"""The step ``factorisation``: cheap separation, then a search for a witness, then the general identity."""
+
+from __future__ import annotations
+
+from verify.derivation.factorisation import Factorisation, factorise, factorise_by_difference
+from verify.derivation.ledger import Grade, Step
+from verify.derivation.points import domain_of, parameter_points, support_points
+from verify.derivation.witness import rank_witness
+from verify.errors import SidecheckError
+from verify.problem.density import Density
+
+REASON = "log f is parted into a function of x, a function of the parameter, and one product; an identity of both sides"
+
+
+def factorisation_step(density: Density) -> tuple[Step, Factorisation | None]:
+    """Return the step ``factorisation`` and the parts of ``h(x) exp(Q T - A)`` when the identity was proved."""
+    x, t, domain = density.x, density.t, domain_of(density)
+    xs, ts = support_points(density.parsed_support), parameter_points(density)
+    if not density.expr.has(t):
+        statement = f"the density does not depend on the parameter {t}"
+        return Step("factorisation", Grade.REFUTED, statement, "", f"{t} does not occur in {density.expr}"), None
+    found = factorise(density.expr, x, t, domain, (xs[0], ts[0]))
+    if found is not None:
+        return _proved(density, found)
+    try:
+        witness = rank_witness(density.expr, x, t, xs, ts)
+        searched = "no witness was found at the points tried"
+    except (SidecheckError, ArithmeticError) as error:
+        witness, searched = "", f"no witness could be looked for: {error}"
+    if witness:
+        statement = "the density is not a one-parameter exponential family: D(x,t) D(x1,t1) = D(x1,t) D(x,t1) fails"
+        return Step("factorisation", Grade.REFUTED, statement, "certain in ball arithmetic", witness), None
+    found = factorise_by_difference(density.expr, x, t, domain, (xs[0], ts[0]))
+    if found is not None:
+        return _proved(density, found)
+    statement = "whether the density is a one-parameter exponential family stayed open"
+    return Step("factorisation", Grade.UNDECIDED, statement, f"no form h(x) exp(Q T - A) was found, and {searched}"), None
+
+
+def _proved(density: Density, found: Factorisation) -> tuple[Step, Factorisation]:
+    t = density.t
+    parts = f"T(x) = {found.statistic}, Q({t}) = {found.natural_parameter}, h(x) = {found.base}"
+    if density.is_kernel:
+        statement = f"the kernel is h(x) exp(Q T - B) with {parts}, B({t}) = {found.log_normaliser}"
+    else:
+        statement = f"f = h(x) exp(Q T - A) with {parts}, A({t}) = {found.log_normaliser}"
+    return Step("factorisation", Grade.PROVED, statement, REASON), found

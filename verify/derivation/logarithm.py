@@ -1,0 +1,85 @@
+"""The logarithm of a density, expanded without a branch mistake.
+
+``log |a b| = log |a| + log |b|`` and ``log |a**e| = e log |a|`` (e real) hold for all real a, b other than 0, so the
+expansion is of log of the absolute value; for a density the two are the same once it is shown non-negative.
+"""
+
+from __future__ import annotations
+
+import sympy as sp
+
+from verify.derivation.positivity import Domain
+from verify.derivation.signs import sign_of
+
+
+def log_absolute(expr: sp.Expr, domain: Domain) -> sp.Expr:
+    """Return log |expr| as a sum of logarithms of its parts.
+
+    Parameters
+    ----------
+    expr : Expr
+        Real on the domain, and not zero where the logarithm is used.
+    domain : Domain
+        Where its symbols live; used to write log(1 - p) rather than log((1 - p)**2)/2.
+
+    Examples
+    --------
+    >>> x, t = sp.Symbol("x", integer=True, nonnegative=True), sp.Symbol("t", positive=True)
+    >>> log_absolute(sp.exp(-t) * t**x / sp.factorial(x), Domain())
+    -t + x*log(t) - log(factorial(x))
+    """
+    if isinstance(expr, sp.Mul):
+        return sp.Add(*(log_absolute(factor, domain) for factor in expr.args))
+    if isinstance(expr, sp.exp):
+        return expr.exp
+    if isinstance(expr, sp.Pow):
+        return sp.Mul(expr.exp, log_absolute(expr.base, domain))
+    if isinstance(expr, sp.Abs):
+        return log_absolute(expr.args[0], domain)
+    if isinstance(expr, sp.beta):
+        a, b = expr.args[0], expr.args[1]
+        return (
+            log_absolute(sp.gamma(a), domain)
+            + log_absolute(sp.gamma(b), domain)
+            - log_absolute(sp.gamma(a + b), domain)
+        )
+    if isinstance(expr, sp.Add):
+        factored = sp.factor(sp.together(expr)) if expr.free_symbols else expr
+        if not isinstance(factored, sp.Add):
+            return log_absolute(factored, domain)
+    return _log_atom(expr, domain)
+
+
+def _log_atom(expr: sp.Expr, domain: Domain) -> sp.Expr:
+    sign = sign_of(expr, domain)
+    if sign == 0:
+        return sp.log(expr**2) / 2
+    return sp.log(expr if sign > 0 else -expr)
+
+
+def combine_logs(expr: sp.Expr) -> sp.Expr:
+    """Write c log a - c log b as c log(a/b), where every argument stands in a real logarithm already.
+
+    Examples
+    --------
+    >>> p = sp.Symbol("p", positive=True)
+    >>> combine_logs(sp.log(p) - sp.log(1 - p))
+    log(p/(1 - p))
+    """
+    if not isinstance(expr, sp.Add):
+        return expr
+    groups: dict[sp.Expr, list[sp.Expr]] = {}
+    rest: list[sp.Expr] = []
+    for term in expr.args:
+        coefficient, factors = term.as_coeff_Mul()
+        if isinstance(factors, sp.log) and coefficient.is_Rational:
+            argument = factors.args[0] if coefficient > 0 else 1 / factors.args[0]
+            groups.setdefault(abs(coefficient), []).append(argument)
+        else:
+            rest.append(term)
+    combined = [size * sp.log(sp.Mul(*arguments)) for size, arguments in groups.items()]
+    if len(combined) == 1 and not rest and len(groups) == 1:
+        (size, arguments), = groups.items()
+        if sp.Mul(*arguments).as_numer_denom()[0] == 1:
+            return -size * sp.log(1 / sp.Mul(*arguments))
+    return sp.Add(*combined, *rest)
