@@ -30,6 +30,8 @@ class Law(ABC):
     name: ClassVar[str]
     source: ClassVar[str]
     lattice: ClassVar[bool]
+    plain_points: ClassVar[bool] = True
+    """Whether a support point is the value of V there; False where points are numbered otherwise (:meth:`value`)."""
 
     @property
     def parameters(self) -> dict[str, Exact]:
@@ -48,6 +50,10 @@ class Law(ABC):
     @abstractmethod
     def support(self) -> tuple[Any, Any]:
         """Smallest and largest support point; None where there is none. Exact numbers (ints on a lattice)."""
+
+    def value(self, A: Any, v: Any) -> Number:
+        """The value of V at a support point; other than the point itself only where points are numbered otherwise."""
+        return A.real(v) if self.lattice else v
 
     @abstractmethod
     def density(self, A: Any, v: Any) -> Number:

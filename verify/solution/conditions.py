@@ -108,8 +108,9 @@ class Conditions:
     def unit(self, A: Any, c: Any) -> Row:
         """Contribution of one unit of phi at c (per unit length where the law is continuous)."""
         if self.point:
-            mass = self.laws[0].density(A, c)
-            return mass, (c - self.laws[0].expectation(A)) * mass
+            law = self.laws[0]
+            mass = law.density(A, c)
+            return mass, (law.value(A, c) - law.expectation(A)) * mass
         return self.laws[0].density(A, c), self.laws[1].density(A, c)
 
     def total(self, A: Any) -> Row:

@@ -96,7 +96,7 @@ class _Sliding:
         spare = self.outside_mass - law.cdf(A, c1 - 1) - law.sf(A, c2)
         if self.conditions.point:
             centre = law.expectation(A)
-            moment = law.shortfall(A, c2) - law.shortfall(A, c1 - 1) + spare * (c2 - centre)
+            moment = law.shortfall(A, c2) - law.shortfall(A, c1 - 1) + spare * (law.value(A, c2) - centre)
             return -moment.mid()
         other = self.conditions.laws[1]
         part = spare / law.density(A, c2) * other.density(A, c2)

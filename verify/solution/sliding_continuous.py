@@ -47,7 +47,7 @@ def slide_continuous(
 
     c1 = _bisect(A, coordinate, reach, too_low)
     c2 = end(c1)
-    if not (c1 < c2) or abs(excess(conditions, rising, A, c1, c2)) > A.real(min(level_of(A, conditions))) * ROUGHLY:
+    if not (c1 < c2) or abs(excess(conditions, rising, A, c1, c2)) > A.real(min(level_of(A, conditions)) * ROUGHLY):
         raise out_of_reach()
     return c1, c2
 

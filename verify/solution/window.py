@@ -62,13 +62,13 @@ def rough_laws(laws: tuple[Law, ...]) -> tuple[tuple[Rough, ...], int, bool]:
     raise UndecidedError("the laws at the two limits cannot be told apart")
 
 
-def search_precision(rough: tuple[Rough, ...], smallest_level: Any, closeness: int, *, narrow: bool = False) -> int:
+def search_precision(rough: tuple[Rough, ...], levels: tuple[Any, ...], closeness: int, *, narrow: bool = False) -> int:
     """Bits for the search: enough to see a tail of the level's size, a mass beside the sums of many, two close laws.
 
     A narrow window of a continuous law has both ends in nearly the same place, which costs the level's size once more.
     """
     scale = max(abs(law.mean) + law.spread for law in rough)
     with balls(64) as A:
-        depth = -A.log(A.real(smallest_level)) / A.log(A.real(2))
-        size = A.log(A.real(int(scale) + 2)) / A.log(A.real(2))
-        return 64 + int(float(((2 if narrow else 1) * depth + 3 * size / 2).mid())) + 2 * closeness
+        depth = max((float((-A.log(A.real(level)) / A.log(A.real(2))).mid()) for level in levels), default=0.0)
+        size = float((A.log(A.real(int(scale) + 2)) / A.log(A.real(2))).mid())
+        return 64 + int((2 if narrow else 1) * depth + 1.5 * size) + 2 * closeness
