@@ -16,28 +16,26 @@ from verify.derivation.products import rebuild, split
 class Closed:
     """A closed form: the value, what must be positive for convergence, and where it is published.
 
-    The conditions are necessary as well as sufficient: where one of them is negative, the sum or integral of the
-    (positive) terms diverges.
+    The conditions suffice. Unless the form was put together from terms of mixed sign (``sharp`` is False) they are
+    necessary too: where one of them is negative, the sum or integral of the positive terms diverges.
     """
 
     value: Expr
     conditions: tuple[Expr, ...]
     sources: tuple[str, ...]
+    sharp: bool = True
 
     def times(self, factor: Expr) -> Closed:
         """Return the closed form multiplied by a factor free of the variable."""
         return replace(self, value=factor * self.value)
 
-    def plus(self, other: Closed) -> Closed:
-        """Return the sum of two closed forms."""
-        return total((self, other))
 
-
-def total(parts: Sequence[Closed]) -> Closed:
+def total(parts: Sequence[Closed], *, sharp: bool) -> Closed:
     """Add closed forms; conditions and sources are put together without repetition."""
     conditions = dict.fromkeys(condition for part in parts for condition in part.conditions)
     sources = dict.fromkeys(source for part in parts for source in part.sources)
-    return Closed(sp.Add(*(part.value for part in parts)), tuple(conditions), tuple(sources))
+    sharp = sharp and all(part.sharp for part in parts)
+    return Closed(sp.Add(*(part.value for part in parts)), tuple(conditions), tuple(sources), sharp)
 
 
 def by_gamma(expr: Expr) -> Expr:
@@ -72,9 +70,22 @@ def _plain_arguments(expr: Expr, domain: Domain) -> Expr:
 
 def _bessel(kind: type[sp.Function], order: Expr, z: Expr, domain: Domain) -> Expr:
     plain = rebuild(split(z, domain))
-    if order.is_Rational and order.q == 2:
-        return sp.expand_func(kind(order, plain)) if kind is not sp.besselk else _half_integer_k(order, plain)
+    if order.is_Rational and order.q == 2 and abs(order) < 20:
+        return _half_integer_k(order, plain) if kind is sp.besselk else _half_integer_i(order, plain)
     return kind(order, plain)
+
+
+def _half_integer_i(order: sp.Rational, z: Expr) -> Expr:
+    """I of order n + 1/2 by recurrence from orders -1/2 and 1/2 (DLMF 10.29.1 with 10.49.9 and 10.49.13)."""
+    half = sp.Rational(1, 2)
+    here, there = (sp.sqrt(2 / (sp.pi * z)) * f(z) for f in (sp.sinh, sp.cosh))
+    step = 1 if order > 0 else -1
+    if order < 0:
+        here, there = there, here
+    at = step * half
+    while at != order:
+        here, there, at = there - step * 2 * at / z * here, here, at + step
+    return here
 
 
 def _half_integer_k(order: sp.Rational, z: Expr) -> Expr:

@@ -286,7 +286,7 @@ def _split_at_kink(f: Expr, logs: LogTerms, x: Symbol, lower: Expr, upper: Expr,
         if part is None:
             return None
         parts.append(part)
-    return total(parts)
+    return total(parts, sharp=True)
 
 
 def _open_abs(g: Expr, x: Symbol, y: Symbol, corner: Expr, sign: int, domain: Domain) -> Expr:
@@ -400,4 +400,4 @@ def _term_by_term(f: Expr, x: Symbol, lower: Expr, upper: Expr, domain: Domain, 
         if part is None:
             return None
         parts.append(part)
-    return total(parts)
+    return total(parts, sharp=False)

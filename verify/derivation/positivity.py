@@ -19,6 +19,8 @@ from sympy import Expr, Symbol
 
 Interval = tuple[Expr, Expr]
 
+HALF = sp.Rational(1, 2)
+
 FRACTIONS = tuple(sp.Rational(p, q) for p, q in ((1, 3), (1, 2), (6, 7), (1, 11), (98, 99), (1, 60)))
 DISTANCES = tuple(sp.Rational(p, q) for p, q in ((5, 7), (2, 1), (7, 2), (1, 9), (12, 1), (1, 40)))
 
@@ -166,6 +168,9 @@ def _positive_function(expr: Expr, domain: Domain, depth: int) -> bool:
         return holds(argument)
     if isinstance(expr, sp.factorial):
         return holds(argument + 1)
+    if isinstance(expr, sp.binomial):
+        n, k = expr.args
+        return bool(k.is_integer) and holds(k + HALF) and holds(n - k + HALF)
     if isinstance(expr, sp.Abs):
         return holds(argument) or holds(-argument)
     if isinstance(expr, sp.besselk):

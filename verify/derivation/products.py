@@ -19,6 +19,10 @@ Powers = dict[Expr, Expr]
 """Base -> exponent; the key ``E`` collects the exponentials."""
 
 
+PROVABLE_SIZE = 12
+"""Up to so many operations the sign of a sum is worth a proof when nothing but its written form depends on it."""
+
+
 def rebuild(powers: Mapping[Expr, Expr]) -> Expr:
     """Multiply the powers together again."""
     return sp.Mul(*(base**exponent for base, exponent in powers.items()))
@@ -66,7 +70,8 @@ def _split(expr: Expr, exponent: Expr, domain: Domain, out: Powers, keep: Symbol
 def _add_sum(expr: Expr, exponent: Expr, domain: Domain, out: Powers) -> None:
     """A sum as a base: of a and -a keep the positive one, so that their powers meet."""
     if exponent.is_integer:
-        sign = domain.sign(expr) or (-1 if expr.could_extract_minus_sign() else 1)
+        known = domain.sign(expr) if expr.count_ops() <= PROVABLE_SIZE else 0
+        sign = known or (-1 if expr.could_extract_minus_sign() else 1)
         if sign < 0:
             out[sp.S.NegativeOne] += exponent
             expr = sp.expand(-expr) if expr.is_polynomial() else -expr

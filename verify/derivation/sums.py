@@ -41,7 +41,7 @@ def series(f: Expr, x: Symbol, lower: Expr, upper: Expr, domain: Domain) -> Foun
     found = _one_sided(f, x, lower, upper, domain)
     if found is None and upper.is_Integer and upper - lower <= LONGEST_PREFIX:
         terms = (f.subs(x, lower + k) for k in range(int(upper - lower) + 1))
-        return Closed(sp.Add(*terms), (), ("added term by term",))
+        return Closed(sp.Add(*terms), (), ("finitely many terms, added",))
     return found
 
 
@@ -69,7 +69,7 @@ def _term_by_term(f: Expr, x: Symbol, lower: Expr, upper: Expr, domain: Domain) 
         if part is None:
             return None
         parts.append(part)
-    return total(parts)
+    return total(parts, sharp=False)
 
 
 # ---- the ratio of neighbouring terms
@@ -97,7 +97,8 @@ def term_ratio(f: Expr, x: Symbol, domain: Domain) -> Ratio | None:
     Ratio(scale=t, above=(), below=(1,))
     """
     scale, rational = sp.S.One, sp.S.One
-    for base, exponent in split(by_gamma(f), domain).items():
+    moving = f.as_independent(x, as_Add=False)[1]
+    for base, exponent in split(by_gamma(moving), domain).items():
         if not base.has(x):
             step = sp.expand(exponent.subs(x, x + 1) - exponent)
             if step.has(x):
@@ -324,7 +325,7 @@ def _two_sided(f: Expr, x: Symbol, upper: Expr, domain: Domain) -> Found:
     z = sp.Dummy("z", integer=True, nonnegative=True)
     right = series(f.subs(x, z), z, sp.S.Zero, oo, domain)
     left = series(f.subs(x, -y), y, sp.S.One, oo, domain) if right is not None else None
-    return total((right, left)) if right is not None and left is not None else None
+    return total((right, left), sharp=True) if right is not None and left is not None else None
 
 
 def _bessel_generating(f: Expr, x: Symbol, domain: Domain) -> Found:
