@@ -97,7 +97,7 @@ def term_ratio(f: Expr, x: Symbol, domain: Domain) -> Ratio | None:
     Ratio(scale=t, above=(), below=(1,))
     """
     scale, rational = sp.S.One, sp.S.One
-    moving = f.as_independent(x, as_Add=False)[1]
+    moving = f.as_independent(x, as_Add=False)[1].replace(sp.binomial, lambda n, k: _binomial_up_to_constant(n, k, x))
     for base, exponent in split(by_gamma(moving), domain).items():
         if not base.has(x):
             step = sp.expand(exponent.subs(x, x + 1) - exponent)
@@ -112,6 +112,13 @@ def term_ratio(f: Expr, x: Symbol, domain: Domain) -> Ratio | None:
             return None
         rational *= part**exponent
     return _factored(scale, rational, x)
+
+
+def _binomial_up_to_constant(n: Expr, k: Expr, x: Symbol) -> Expr:
+    """C(n, k) without n!, which cancels in the ratio and is huge for many trials."""
+    if n.has(x) or not n.is_nonnegative:
+        return sp.binomial(n, k)
+    return 1 / (sp.gamma(k + 1) * sp.gamma(n - k + 1))
 
 
 def _gamma_step(base: Expr, x: Symbol) -> Expr | None:
