@@ -39,6 +39,9 @@ class InputError(SidecheckError):
         super().__init__(wrong, right, key, file)
         self.wrong, self.right, self.key, self.file = wrong, right, key, file
 
+    def __reduce__(self) -> tuple[object, ...]:
+        return _input_error, (self.wrong, self.right, self.key, self.file)
+
     def at(self, *, key: str = "", file: str = "") -> InputError:
         """Return the same complaint with the file and the key filled in where they were missing."""
         return InputError(self.wrong, self.right, key=self.key or key, file=self.file or file)
@@ -56,3 +59,8 @@ class UndecidedError(SidecheckError):
 
 class NotRational(SidecheckError):  # noqa: N818 (a condition, not a mistake)
     """An exact rational value was asked for where there is none."""
+
+
+def _input_error(wrong: str, right: str, key: str, file: str) -> InputError:
+    """Rebuild the complaint on the other side of a process boundary."""
+    return InputError(wrong, right, key=key, file=file)

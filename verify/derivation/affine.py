@@ -5,10 +5,11 @@ from __future__ import annotations
 from collections.abc import Sequence
 from dataclasses import dataclass
 
+import sympy as sp
 from sympy import Expr, Symbol
 
 from verify.derivation.certain import sign_at
-from verify.derivation.zero import is_zero, normal
+from verify.derivation.zero import is_constant
 
 
 @dataclass(frozen=True)
@@ -21,35 +22,38 @@ class Affine:
 
 
 def affine_map(claimed: Expr, ours: Expr, symbol: Symbol, points: Sequence[Expr]) -> Affine:
-    """Compare two functions up to scale and shift.
+    """Compare two functions up to scale and shift: their slopes must have a constant ratio.
 
     Parameters
     ----------
     points : sequence of Expr
-        At least three exact points, at the first two of which ``ours`` differs.
+        At least three exact points, where a witness is looked for.
 
     Examples
     --------
-    >>> import sympy as sp
     >>> t = sp.Symbol("t", positive=True)
     >>> affine_map(3*t + 1, t, t, [sp.Integer(1), sp.Integer(2), sp.Integer(3)])
     Affine(scale=3, shift=1, witness='')
-    >>> affine_map(t**2, t, t, [sp.Integer(1), sp.Integer(2), sp.Integer(3)]).witness[:11]
-    't = 1, 2, 3'
+    >>> affine_map(t**2, t, t, [sp.Integer(1), sp.Integer(2), sp.Integer(3)]).witness
+    'the values at t = 1, 2, 3 do not lie on one line'
     """
-    first, second = points[0], points[1]
-    scale = normal((_at(claimed, symbol, second) - _at(claimed, symbol, first))
-                   / (_at(ours, symbol, second) - _at(ours, symbol, first)))
-    shift = normal(_at(claimed, symbol, first) - scale * _at(ours, symbol, first))
-    rest = claimed - scale * ours - shift
-    if scale == 0 or is_zero(scale, thorough=False):
+    scale = is_constant(sp.diff(claimed, symbol) / sp.diff(ours, symbol), symbol)
+    if scale is not None and scale != 0:
+        return Affine(scale, _plain(_at(claimed, symbol, points[0]) - scale * _at(ours, symbol, points[0])))
+    first, second, *others = points
+    if scale == 0:
         return Affine(witness=f"the claimed function takes the same value at {symbol} = {first} and {second}")
-    for third in points[2:]:
+    claimed_step, our_step = (_at(f, symbol, second) - _at(f, symbol, first) for f in (claimed, ours))
+    rest = (claimed - _at(claimed, symbol, first)) * our_step - claimed_step * (ours - _at(ours, symbol, first))
+    for third in others:
         if sign_at(rest, {symbol: third}):
-            return Affine(witness=f"{symbol} = {first}, {second}, {third} do not lie on one line")
-    if is_zero(rest):
-        return Affine(scale, shift)
+            return Affine(witness=f"the values at {symbol} = {first}, {second}, {third} do not lie on one line")
     return Affine()
+
+
+def _plain(shift: Expr) -> Expr:
+    """Write a constant with the logarithms of primes, so that equal ones cancel."""
+    return sp.simplify(sp.expand(sp.expand_log(shift, factor=True))) if shift.has(sp.log) else sp.simplify(shift)
 
 
 def _at(expr: Expr, symbol: Symbol, point: Expr) -> Expr:

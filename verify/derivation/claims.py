@@ -66,15 +66,7 @@ def claims_steps(claim: Mapping[str, str], derived: Derived) -> tuple[Step, ...]
 
 
 def _read(text: str, density: Density, symbol: Symbol, key: str) -> Expr:
-    constants = {name: as_expr(value) for name, value in _constants(density).items()}
-    symbols = {symbol.name: symbol, **{name: sp.Symbol(name, real=True) for name in constants}}
-    return parse_formula(text, symbols, key).subs({symbols[name]: value for name, value in constants.items()})
-
-
-def _constants(density: Density) -> dict[str, Any]:
-    from verify.problem.numbers import exact
-
-    return {name: exact(value, f"density.constants.{name}") for name, value in density.constants.items()}
+    return parse_formula(text, {**density.constant_symbols, symbol.name: symbol}, key)
 
 
 def _affine_step(what: str, text: str, ours: Expr, found: Affine) -> Step:
@@ -101,9 +93,7 @@ def _product_step(natural: Affine, statistic: Affine) -> list[Step]:
 
 def _law_step(text: str, derived: Derived, statistic: Affine) -> Step:
     density, n = derived.density, derived.n or COUNT
-    names = {density.t.name: density.t, "n": COUNT, **{name: sp.Symbol(name, real=True) for name in density.constants}}
-    values = {names[name]: as_expr(value) for name, value in _constants(density).items()} | {COUNT: sp.sympify(n)}
-    claimed = read_law(text, names).map_parameters(lambda parameter: sp.sympify(parameter).subs(values))
+    claimed = read_law(text, {"n": sp.sympify(n), **density.constant_symbols, density.t.name: density.t})
     if derived.family is None or statistic.scale is None:
         reason = "no law in closed form was derived" if derived.family is None else "the claimed statistic does not agree"
         return Step("claims", Grade.UNDECIDED, f"the claimed law {text} was not compared", reason)

@@ -2,10 +2,12 @@
 
 from __future__ import annotations
 
-from sympy import Expr, Symbol
+from sympy import Expr, Sum, Symbol
 
+from verify.derivation.cumulants import certainly_another
 from verify.derivation.factorisation import Factorisation
 from verify.derivation.family import LawFamily
+from verify.derivation.kernel import kernel_certainly_another, written_out
 from verify.derivation.law_of_variance import name_law
 from verify.derivation.ledger import Grade, Step
 from verify.derivation.points import domain_of, parameter_points
@@ -26,20 +28,44 @@ def law_step(density: Density, found: Factorisation, leaning: Grade) -> tuple[St
         The weakest grade of the steps on which this one leans.
     """
     t, points = density.t, parameter_points(density)
-    variance = variance_function(found.log_normaliser, found.natural_parameter, t, tuple(points[1:4]))
+    if _certainly_another(density, found, points[1:4]):
+        statement = "the variance function of T is neither quadratic nor a cube, so that no law in closed form is named"
+        return general_law(density, found, Step("law", leaning, statement, "certain in ball arithmetic; Morris 1982"))
+    variance = variance_function(_written_out(density, found), found.natural_parameter, t)
     if variance is None:
-        statement = "the variance function of T is not quadratic or a cube, so that no law in closed form is named"
-        return Step("law", leaning, statement, "Morris 1982; Letac and Mora 1990"), None
+        statement = "whether the variance function of T is quadratic or a cube stayed open"
+        return general_law(density, found, Step("law", Grade.UNDECIDED, statement))
     named = name_law(variance, t, domain_of(density))
     shown = f"variance function V(m) = {_formula(variance)}"
-    if named.family is None and named.word == SECANT:
-        return Step("law", leaning, f"T has a {SECANT} law with r = {1 / variance.v2}", f"{shown}; Morris 1982"), None
+    if named.family is None and named.word == SECANT and isinstance(variance, Quadratic):
+        statement = f"T has a {SECANT} law with r = {1 / variance.v2}"
+        return general_law(density, found, Step("law", leaning, statement, f"{shown}; Morris 1982"))
     if named.family is None:
         return Step("law", Grade.UNDECIDED, "the law of T stayed open", f"{shown}; {named.word}"), None
     source = "Letac and Mora 1990" if isinstance(variance, Cube) else "Morris 1982"
     law = named.family.text()
     statement = f"T = {law}" if "Y of law" in law else f"T has the law {law}"
     return Step("law", leaning, statement, f"{shown}, which determines the family: {source}"), named.family
+
+
+def _certainly_another(density: Density, found: Factorisation, points: list[Expr]) -> bool:
+    if density.is_kernel:
+        return kernel_certainly_another(density, found.statistic, points)
+    return certainly_another(found.log_normaliser, found.natural_parameter, density.t, points)
+
+
+def _written_out(density: Density, found: Factorisation) -> Expr:
+    """The log normaliser, with the sum of a kernel written out."""
+    sums = found.log_normaliser.atoms(Sum)
+    return found.log_normaliser.xreplace({total: written_out(density) for total in sums})
+
+
+def general_law(density: Density, found: Factorisation, step: Step) -> tuple[Step, LawFamily | None]:
+    """The one place where a law without closed form joins: return the step and its family.
+
+    So far no such family is made here, and the step says what is known.
+    """
+    return step, None
 
 
 def _formula(variance: Quadratic | Cube) -> Expr:

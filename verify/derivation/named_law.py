@@ -6,7 +6,7 @@ import re
 from collections.abc import Callable, Mapping
 
 import sympy as sp
-from sympy import Expr, Symbol
+from sympy import Expr
 
 from verify.errors import InputError
 from verify.laws.base import Law
@@ -42,7 +42,7 @@ OTHER_NAMES: dict[str, tuple[str, Callable[[Expr], Expr]]] = {
 }
 
 
-def read_law(text: str, symbols: Mapping[str, Symbol], key: str = "claim.law") -> Law:
+def read_law(text: str, symbols: Mapping[str, Expr], key: str = "claim.law") -> Law:
     """Return the law that a text names.
 
     Parameters

@@ -7,7 +7,7 @@ from sympy import Expr
 
 from verify.derivation.certain import sign_at, value_text
 from verify.derivation.ledger import Grade, Step
-from verify.derivation.points import domain_of, parameter_points, support_points
+from verify.derivation.points import domain_of, mass_at, parameter_points, support_points
 from verify.derivation.positivity import Domain
 from verify.derivation.signs import factors, sign_of
 from verify.problem.density import Density
@@ -60,9 +60,7 @@ def _nonnegative(factor: Expr, domain: Domain) -> bool:
 
 def _point_by_point(density: Density, domain: Domain) -> bool:
     support = density.parsed_support
-    if support.kind != "integers" or not (support.lower.is_finite and support.upper.is_finite):
+    if not support.is_finite or len(support.points) > LARGEST_LIST:
         return False
-    if not (support.upper - support.lower).is_Integer or support.upper - support.lower > LARGEST_LIST:
-        return False
-    values = (density.expr.subs(density.x, support.lower + k) for k in range(int(support.upper - support.lower) + 1))
+    values = (mass_at(density, sp.Integer(k)) for k in support.points)
     return all(value == 0 or sign_of(value, domain) == 1 for value in values)

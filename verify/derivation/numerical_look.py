@@ -16,7 +16,7 @@ from verify.derivation.branches import inverse_branches
 from verify.derivation.certain import sign_of_ball
 from verify.derivation.family import LawFamily
 from verify.derivation.ledger import Grade, Step
-from verify.derivation.points import support_points
+from verify.derivation.points import mass_at, support_points
 from verify.derivation.quadrature import integral_below, integral_from_zero
 from verify.problem.density import Density
 from verify.problem.numbers import as_exact, as_expr
@@ -29,6 +29,9 @@ ENOUGH = 10
 
 POINTS = 24
 """Support points that enter a lattice convolution."""
+
+ALL_POINTS = 100_000
+"""A kernel needs all of its points for its normaliser."""
 
 
 def numerical_look(density: Density, statistic: Expr, family: LawFamily, at: Expr) -> Step:
@@ -72,26 +75,30 @@ def _agreement(difference: Any, size: Any) -> int:
 
 def _lattice(density: Density, statistic: Expr, family: LawFamily, at: Expr, value: Any) -> tuple[int, int, str] | None:
     """Finite sums in ball arithmetic: every way to write v as a sum of two or three values of Y."""
-    xs = support_points(density.parsed_support, POINTS)
+    xs = support_points(density.parsed_support, ALL_POINTS if density.is_kernel else POINTS)
     places = [(statistic.subs(density.x, x) - as_expr(family.shift)) / as_expr(family.scale) for x in xs]
     if not all(place.is_Integer for place in places):
         return None
     masses: dict[int, Any] = {}
     with balls(160) as A:
         parameter = A.real(at)
+        total = A.real(0)
         for x, place in zip(xs, places, strict=True):
-            mass = evaluate(density.expr, A, {density.x.name: A.real(x), density.t.name: parameter})
+            mass = evaluate(mass_at(density, x), A, {density.t.name: parameter})
             masses[int(place)] = masses.get(int(place), A.real(0)) + mass
-        worst, total = DIGITS, dict(masses)
+            total = total + mass
+        if density.is_kernel:
+            masses = {place: masses[place] / total for place in sorted(masses)[:POINTS]}
+        worst, table = DIGITS, dict(masses)
         for number in (2, 3):
-            total = _convolved(total, masses, A)
+            table = _convolved(table, masses, A)
             law = family.at(value, number)
-            for v in sorted(total)[:6]:
+            for v in sorted(table)[:6]:
                 mass = law.density(A, v)
-                if sign_of_ball(total[v] - mass):
+                if sign_of_ball(table[v] - mass):
                     return -1, number, f"the mass at {v} on the scale of Y, n = {number}"
-                worst = min(worst, _agreement(total[v] - mass, mass))
-    return worst, 3, f"in ball arithmetic, at V = {', '.join(map(str, sorted(total)[:6]))} on the scale of Y, n = 2 and 3"
+                worst = min(worst, _agreement(table[v] - mass, mass))
+    return worst, 3, f"in ball arithmetic, at V = {', '.join(map(str, sorted(table)[:6]))} on the scale of Y, n = 2 and 3"
 
 
 def _convolved(left: dict[int, Any], right: dict[int, Any], A: Any) -> dict[int, Any]:

@@ -9,6 +9,7 @@ from sympy import Expr
 
 from verify.derivation.positivity import Domain, points_inside
 from verify.problem.density import Density
+from verify.problem.numbers import as_expr
 from verify.problem.support import Support
 
 
@@ -45,3 +46,11 @@ def domain_of(density: Density) -> Domain:
     if support.kind == "reals" and not (support.lower.has(density.t) or support.upper.has(density.t)):
         ranges[density.x] = (support.lower, support.upper)
     return Domain(ranges)
+
+
+def mass_at(density: Density, point: Expr) -> Expr:
+    """Return the density or kernel at one point of the support, a function of the parameter; a table is looked up."""
+    if density.table is None:
+        return density.expr.subs(density.x, point)
+    weight = density.table[int(point - density.parsed_support.lower)]
+    return as_expr(weight) * density.t**point

@@ -14,9 +14,7 @@ from dataclasses import dataclass
 import sympy as sp
 from sympy import Expr, Symbol
 
-from verify.derivation.certain import sign_at
 from verify.derivation.zero import is_constant, normal
-from verify.errors import SidecheckError
 
 
 @dataclass(frozen=True)
@@ -38,17 +36,13 @@ class Cube:
     root: Expr
 
 
-def variance_function(
-    log_normaliser: Expr, natural: Expr, t: Symbol, points: tuple[Expr, ...] = ()
-) -> Quadratic | Cube | None:
-    """Return the variance function when it is proved to be quadratic or c (m - b)**3, else None.
+def variance_function(log_normaliser: Expr, natural: Expr, t: Symbol) -> Quadratic | Cube | None:
+    """Return the variance function when it is proved to be quadratic or c (m - b)**3; None when that was not proved.
 
     Parameters
     ----------
     log_normaliser, natural : Expr
         A(t) and Q(t).
-    points : tuple of Expr
-        Exact parameter values; where v2 certainly differs between two of them, no algebra is tried.
 
     Examples
     --------
@@ -67,26 +61,10 @@ def variance_function(
     k2 = step(k1)
     first = normal(step(k2) / k2)
     half = normal(step(first) / (2 * k2))
-    v2 = _constant(half, t, points)
+    v2 = is_constant(half, t)
     if v2 is not None:
         return _quadratic(k1, k2, first, v2, t)
-    return _cube(k1, k2, first, half, normal(step(half) / (3 * k2)), t, points)
-
-
-def _constant(expr: Expr, t: Symbol, points: tuple[Expr, ...]) -> Expr | None:
-    if not expr.has(t):
-        return expr
-    if len(points) > 1 and _certainly_varies(expr, t, points):
-        return None
-    return is_constant(expr, t)
-
-
-def _certainly_varies(expr: Expr, t: Symbol, points: tuple[Expr, ...]) -> bool:
-    first = expr.subs(t, points[0])
-    try:
-        return any(sign_at(expr - first, {t: point}) for point in points[1:3])
-    except (SidecheckError, ArithmeticError):
-        return False  # a function that balls do not know: leave it to algebra
+    return _cube(k1, k2, first, half, normal(step(half) / (3 * k2)), t)
 
 
 def _quadratic(k1: Expr, k2: Expr, first: Expr, v2: Expr, t: Symbol) -> Quadratic | None:
@@ -97,10 +75,8 @@ def _quadratic(k1: Expr, k2: Expr, first: Expr, v2: Expr, t: Symbol) -> Quadrati
     return Quadratic(k1, *(v if v.is_Rational else sp.simplify(v) for v in (v0, v1, v2)))
 
 
-def _cube(
-    k1: Expr, k2: Expr, first: Expr, half: Expr, third: Expr, t: Symbol, points: tuple[Expr, ...]
-) -> Cube | None:
-    c = _constant(third, t, points)
+def _cube(k1: Expr, k2: Expr, first: Expr, half: Expr, third: Expr, t: Symbol) -> Cube | None:
+    c = is_constant(third, t)
     if c is None or c == 0:
         return None
     root = is_constant(k1 - half / (3 * c), t)
