@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from sympy import Expr, Sum, Symbol
 
-from verify.derivation.cumulants import certainly_another
+from verify.derivation.variance_numbers import certainly_another
 from verify.derivation.factorisation import Factorisation
 from verify.derivation.family import LawFamily
 from verify.derivation.kernel import kernel_certainly_another, written_out
