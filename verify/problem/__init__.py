@@ -1,0 +1,1 @@
+"""What is asked: exact numbers, safe formulas, density, hypothesis, and the case file that holds them."""

@@ -68,7 +68,7 @@ class Case:
 
 @dataclass(frozen=True)
 class CaseText:
-    """A case file whose keys are checked but whose density and problem are not yet read (they may be meant to be refused)."""
+    """A case file whose keys are checked; its density and problem are not yet read (some must fail)."""
 
     name: str
     path: str
@@ -96,7 +96,9 @@ class CaseText:
     def _read(self) -> Case:
         tables = self.tables
         if "density" not in tables:
-            raise InputError("the table [density] is missing", "describe one observation there", key="density")
+            raise InputError(
+                "the table [density] is missing", "describe one observation there", key="density"
+            )
         density = _density(tables["density"])
         problem = _problem(density, tables["problem"]) if "problem" in tables else None
         return Case(
@@ -154,8 +156,12 @@ def read_case_text(path: str | Path, text: str | None = None) -> CaseText:
 
 
 _TABLES = {
-    "density": DENSITY_KEYS, "problem": PROBLEM_KEYS, "claim": CLAIM_KEYS, "expect": EXPECT_KEYS, "table": TABLE_KEYS,
-}  # fmt: skip
+    "density": DENSITY_KEYS,
+    "problem": PROBLEM_KEYS,
+    "claim": CLAIM_KEYS,
+    "expect": EXPECT_KEYS,
+    "table": TABLE_KEYS,
+}
 
 
 def _name(place: str) -> str:
@@ -170,7 +176,9 @@ def _bytes(place: str) -> bytes:
             return stream.read(MAX_BYTES + 1)
     except (OSError, ValueError) as error:
         reason = error.strerror if isinstance(error, OSError) and error.strerror else "not a path"
-        raise InputError(f"the file cannot be read: {reason}", "give the path of a case file", file=place) from None
+        raise InputError(
+            f"the file cannot be read: {reason}", "give the path of a case file", file=place
+        ) from None
 
 
 def _parse(data: bytes) -> dict[str, Any]:
@@ -183,7 +191,9 @@ def _parse(data: bytes) -> dict[str, Any]:
     except tomllib.TOMLDecodeError as error:
         raise InputError(f"the file is not TOML: {error}", "see a case file of the case book") from None
     except (ValueError, RecursionError):
-        raise InputError("the file is not TOML that can be read", "a number is too long or the nesting too deep") from None
+        raise InputError(
+            "the file is not TOML that can be read", "a number is too long or the nesting too deep"
+        ) from None
 
 
 def _density(table: Mapping[str, Any]) -> Density:
@@ -193,5 +203,7 @@ def _density(table: Mapping[str, Any]) -> Density:
 def _problem(density: Density, table: Mapping[str, Any]) -> Problem:
     n = table["n"]
     if isinstance(n, DecimalText):
-        raise InputError(f"n = {n} is written as a decimal", "write a whole number, e.g. n = 10", key="problem.n")
+        raise InputError(
+            f"n = {n} is written as a decimal", "write a whole number, e.g. n = 10", key="problem.n"
+        )
     return Problem(density, table["null"], table["alpha"], n, table.get("alternative"))

@@ -7,6 +7,7 @@ from dataclasses import dataclass, field
 from decimal import Decimal
 from fractions import Fraction
 from functools import cached_property
+from typing import TypeAlias
 
 import sympy
 
@@ -20,7 +21,7 @@ from verify.problem.support import Support, parse_support
 MAX_POINTS = 100_000
 """Points of a finite support that is summed over."""
 
-Given = str | int | Fraction | Decimal | sympy.Expr
+Given: TypeAlias = str | int | Fraction | Decimal | sympy.Expr
 
 
 @dataclass(frozen=True)
@@ -30,9 +31,10 @@ class Density:
     Exactly one of ``formula``, ``kernel`` and ``weights`` is given:
 
     - ``formula`` is the whole density, with its normalising factor.
-    - ``kernel`` is a density up to a factor that may depend on the parameter; its support is finite, so that the factor is a sum.
-    - ``weights`` is a table h(a), ..., h(b) over the support "integers a..b"; the kernel is then h(x) * t**x, a power-series
-      family in the positive parameter t.
+    - ``kernel`` is a density up to a factor that may depend on the parameter; its support is finite, so that
+      the factor is a sum.
+    - ``weights`` is a table h(a), ..., h(b) over the support "integers a..b"; the kernel is then h(x) * t**x,
+      a power-series family in the positive parameter t.
 
     Parameters
     ----------
@@ -54,7 +56,8 @@ class Density:
 
     Examples
     --------
-    >>> d = Density("exp(-lam)*lam**x/factorial(x)", variable="x", support="integers >= 0", parameter="lam", space="lam > 0")
+    >>> d = Density("exp(-lam)*lam**x/factorial(x)", variable="x", support="integers >= 0",
+    ...             parameter="lam", space="lam > 0")
     >>> d.expr, d.t.is_positive, d.x.is_integer
     (lam**x*exp(-lam)/factorial(x), True, True)
     """
@@ -72,7 +75,11 @@ class Density:
         given = [name for name in ("formula", "kernel", "weights") if getattr(self, name) is not None]
         if len(given) != 1:
             found = " and ".join(given) or "none"
-            raise InputError(f"one of formula, kernel and weights is needed, found {found}", "give exactly one", key="density")
+            raise InputError(
+                f"one of formula, kernel and weights is needed, found {found}",
+                "give exactly one",
+                key="density",
+            )
         if self.weights is not None:
             object.__setattr__(self, "weights", _weight_tuple(self.weights))
         self._check_names()
@@ -80,7 +87,8 @@ class Density:
             self._check_finite()
         if self.t not in self.expr.free_symbols | self.parsed_support.free_symbols:
             raise InputError(
-                f"the {given[0]} does not depend on the parameter {self.parameter}", "write it in the parameter",
+                f"the {given[0]} does not depend on the parameter {self.parameter}",
+                "write it in the parameter",
                 key=f"density.{given[0]}",
             )  # fmt: skip
 
@@ -111,10 +119,14 @@ class Density:
             return
         if len(self.weights) != len(support.points):
             raise InputError(
-                f"{len(self.weights)} weights for {len(support.points)} support points", "give one weight a point", key=key
+                f"{len(self.weights)} weights for {len(support.points)} support points",
+                "give one weight a point",
+                key=key,
             )
         if not self.t.is_positive:
-            raise InputError("weights are for a positive parameter", f'write space = "{self.parameter} > 0"', key=key)
+            raise InputError(
+                "weights are for a positive parameter", f'write space = "{self.parameter} > 0"', key=key
+            )
 
     @cached_property
     def constant_values(self) -> dict[str, Exact]:
@@ -173,7 +185,7 @@ class Density:
     @cached_property
     def table(self) -> tuple[Fraction, ...] | None:
         """The weights over the support, in its order; None for a formula or kernel."""
-        return None if self.weights is None else tuple(self.weights)  # type: ignore[arg-type]
+        return None if self.weights is None else tuple(Fraction(weight) for weight in self.weights)
 
 
 def _weight_tuple(weights: object) -> tuple[Fraction, ...]:
@@ -185,9 +197,13 @@ def _weight_tuple(weights: object) -> tuple[Fraction, ...]:
     values = tuple(exact(weight, key) for weight in weights)
     for value in values:
         if not isinstance(value, Fraction) or value < 0:
-            raise InputError(f"the weight {value} is not a nonnegative rational number", 'write e.g. "3" or "1/2"', key=key)
+            raise InputError(
+                f"the weight {value} is not a nonnegative rational number", 'write e.g. "3" or "1/2"', key=key
+            )
     if sum(value != 0 for value in values) < 2:
-        raise InputError("fewer than two weights are positive", "an observation needs two possible values", key=key)
+        raise InputError(
+            "fewer than two weights are positive", "an observation needs two possible values", key=key
+        )
     return tuple(value for value in values if isinstance(value, Fraction))
 
 

@@ -1,8 +1,8 @@
 """Formulas: text to SymPy expression through a whitelist of our own, and back.
 
-The text is scanned (``scan``), parsed by Python's grammar into a syntax tree that is never compiled or run, and walked: only
-numbers, known names, ``+ - * / **``, signs and calls of the functions in ``functions`` are understood. Decimals are exact
-rationals, taken from the text.
+The text is scanned (``scan``), parsed by Python's grammar into a syntax tree that is never compiled or run,
+and walked: only numbers, known names, ``+ - * / **``, signs and calls of the functions in ``functions`` are
+understood. Decimals are exact rationals, taken from the text.
 """
 
 from __future__ import annotations
@@ -22,8 +22,9 @@ from verify.problem.functions import CONSTANTS, FUNCTIONS
 from verify.problem.guards import MAX_BITS, Budget, bits
 from verify.problem.scan import MAX_DEPTH, NUMBER, scan_formula, shorten
 
-MAX_TREE = 3 * MAX_DEPTH
-"""Depth of the syntax tree, brackets, powers and signs together."""
+MAX_TREE = 2 * MAX_DEPTH
+"""Depth of the syntax tree, where an exponent or a function counts ``DEEP`` times."""
+DEEP = 10
 
 
 def parse_formula(text: str, symbols: Mapping[str, sympy.Expr], key: str = "") -> sympy.Expr:
@@ -46,7 +47,7 @@ def parse_formula(text: str, symbols: Mapping[str, sympy.Expr], key: str = "") -
     Raises
     ------
     InputError
-        For anything else: one line that says what is not understood, or which bound it passes. Nothing is run.
+        For anything else: one line that says what is not understood, or which bound is passed.
 
     Examples
     --------
@@ -70,13 +71,17 @@ def _syntax_tree(source: str, key: str) -> ast.expr:
             return ast.parse(source, mode="eval").body
     except SyntaxError as error:
         place = f" near position {error.offset}" if error.offset else ""
-        raise InputError(f"{shorten(source)} is not a formula{place}", "write products with *", key=key) from None
+        raise InputError(
+            f"{shorten(source)} is not a formula{place}", "write products with *", key=key
+        ) from None
     except (ValueError, MemoryError, RecursionError, OverflowError):
         raise InputError("the formula cannot be parsed", "simplify it", key=key) from None
 
 
 def _require_real(expr: sympy.Expr, key: str) -> sympy.Expr:
-    if expr.has(sympy.I, sympy.nan, sympy.zoo, sympy.oo, -sympy.oo) or (expr.is_number and expr.is_real is False):
+    if expr.has(sympy.I, sympy.nan, sympy.zoo, sympy.oo, -sympy.oo) or (
+        expr.is_number and expr.is_real is False
+    ):
         raise InputError("the formula is not a real number", "use real, finite numbers", key=key)
     if any(bits(number) > MAX_BITS for number in expr.atoms(sympy.Rational)):
         raise InputError("a number in the formula is too large", "use smaller numbers", key=key)
@@ -92,7 +97,7 @@ class _Walker:
 
     def build(self, node: ast.expr, depth: int) -> sympy.Expr:
         if depth > MAX_TREE:
-            self.refuse("the formula is nested too deeply", "simplify it")
+            raise self.error("the formula is nested too deeply", "simplify it")
         match node:
             case ast.Constant():
                 return self.number(node)
@@ -106,14 +111,14 @@ class _Walker:
             case ast.BinOp(op=ast.Mult() | ast.Div()):
                 return self.product(node, depth)
             case ast.BinOp(op=ast.Pow()):
-                return self.power(self.build(node.left, depth + 1), self.build(node.right, depth + 1))
+                return self.power(self.build(node.left, depth + 1), self.build(node.right, depth + DEEP))
             case ast.Call():
                 return self.call(node, depth)
-        self.refuse(f"{self.segment(node)} is not understood in a formula", "use numbers, names, + - * / ** and functions")
-        raise AssertionError("unreachable")
+        wrong = f"{self.segment(node)} is not understood in a formula"
+        raise self.error(wrong, "use numbers, names, + - * / ** and functions")
 
-    def refuse(self, wrong: str, right: str) -> None:
-        raise InputError(wrong, right, key=self.key)
+    def error(self, wrong: str, right: str) -> InputError:
+        return InputError(wrong, right, key=self.key)
 
     def segment(self, node: ast.expr) -> str:
         return shorten(ast.get_source_segment(self.source, node) or "")
@@ -121,7 +126,7 @@ class _Walker:
     def number(self, node: ast.Constant) -> sympy.Expr:
         text = self.source[node.col_offset : node.end_col_offset]
         if not NUMBER.fullmatch(text):
-            self.refuse(f"{shorten(text)} is not a number", "write numbers like 12, 0.05 or 1e-200")
+            raise self.error(f"{shorten(text)} is not a number", "write numbers like 12, 0.05 or 1e-200")
         value = Fraction(text)
         result = sympy.Rational(value.numerator, value.denominator)
         self.budget.spend(bits(result), "a number")
@@ -133,11 +138,10 @@ class _Walker:
         if name in CONSTANTS:
             return CONSTANTS[name]
         if name in FUNCTIONS:
-            self.refuse(f"the function {name} has no argument", f"write {name}(...)")
+            raise self.error(f"the function {name} has no argument", f"write {name}(...)")
         known = sorted({*self.symbols, *CONSTANTS})
         hint = "write exp(1)" if name in ("e", "E") else f"known here: {', '.join(known)}"
-        self.refuse(f"unknown name {shorten(name, 30)}", hint)
-        raise AssertionError("unreachable")
+        raise self.error(f"unknown name {shorten(name, 30)}", hint)
 
     def sum(self, node: ast.expr, depth: int) -> sympy.Expr:
         terms: list[sympy.Expr] = []
@@ -152,36 +156,44 @@ class _Walker:
         factors: list[sympy.Expr] = []
         while isinstance(node, ast.BinOp) and isinstance(node.op, ast.Mult | ast.Div):
             factor = self.build(node.right, depth + 1)
-            factors.append(self.power(factor, sympy.S.NegativeOne) if isinstance(node.op, ast.Div) else factor)
+            factors.append(
+                self.power(factor, sympy.S.NegativeOne) if isinstance(node.op, ast.Div) else factor
+            )
             node = node.left
         factors.append(self.build(node, depth + 1))
         return self.finite(sympy.Mul(*reversed(factors)))
 
     def power(self, base: sympy.Expr, exponent: sympy.Expr) -> sympy.Expr:
         if base.is_zero and exponent.is_negative:
-            self.refuse("division by zero", "use a denominator that is not zero")
+            raise self.error("division by zero", "use a denominator that is not zero")
         if exponent is not sympy.S.NegativeOne:
             self.budget.power(base, exponent)
         return self.finite(sympy.Pow(base, exponent))
 
     def call(self, node: ast.Call, depth: int) -> sympy.Expr:
         if not isinstance(node.func, ast.Name) or node.keywords:
-            self.refuse(f"{self.segment(node)} is not understood in a formula", "call functions by name, e.g. exp(x)")
-        name = node.func.id  # type: ignore[attr-defined]
+            raise self.error(
+                f"{self.segment(node)} is not understood in a formula", "call functions by name, e.g. exp(x)"
+            )
+        name = node.func.id
         function = FUNCTIONS.get(name)
         if function is None:
             close = difflib.get_close_matches(name, [*FUNCTIONS], 1) if len(name) < 40 else []
             known = f"did you mean {close[0]}?" if close else f"known: {', '.join(FUNCTIONS)}"
-            raise InputError(f"unknown function {shorten(name, 30)}", known, key=self.key)
+            raise self.error(f"unknown function {shorten(name, 30)}", known)
         if len(node.args) != function.arity:
-            self.refuse(f"{name} takes {function.arity} argument(s), got {len(node.args)}", "check the commas")
-        arguments = tuple(self.build(argument, depth + 1) for argument in node.args)
+            raise self.error(
+                f"{name} takes {function.arity} argument(s), got {len(node.args)}", "check the commas"
+            )
+        arguments = tuple(self.build(argument, depth + DEEP) for argument in node.args)
         function.guard(self.budget, name, arguments)
         return self.finite(function.build(*arguments))
 
     def finite(self, value: sympy.Expr) -> sympy.Expr:
         if value in (sympy.zoo, sympy.oo, -sympy.oo, sympy.nan):
-            self.refuse("a part of the formula is infinite or undefined", "check for a division by zero or log(0)")
+            raise self.error(
+                "a part of the formula is infinite or undefined", "check for a division by zero or log(0)"
+            )
         self.budget.number(value)
         return value
 

@@ -12,6 +12,11 @@ from verify.problem.guards import Budget
 Guard = Callable[[Budget, str, tuple[sympy.Expr, ...]], None]
 
 
+def _bounded(budget: Budget, name: str, arguments: tuple[sympy.Expr, ...]) -> None:
+    for argument in arguments:
+        budget.argument(name, argument)
+
+
 @dataclass(frozen=True)
 class Function:
     """A function of the formula language.
@@ -28,7 +33,7 @@ class Function:
 
     build: Callable[..., sympy.Expr]
     arity: int = 1
-    guard: Guard = lambda budget, name, arguments: [budget.argument(name, a) for a in arguments] and None
+    guard: Guard = _bounded
 
 
 def _no_guard(budget: Budget, name: str, arguments: tuple[sympy.Expr, ...]) -> None:
@@ -88,7 +93,7 @@ FUNCTIONS: dict[str, Function] = {
     "atanh": Function(sympy.atanh),
     "sech": Function(sympy.sech),
 }
-"""Name in a formula -> function. To add one: a line here, with the guard that bounds what SymPy would compute."""
+"""Name in a formula -> function. To add one: a line with the guard that bounds what SymPy would compute."""
 
 CONSTANTS: dict[str, sympy.Expr] = {"pi": sympy.pi}
 """Names of constants."""

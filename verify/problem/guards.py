@@ -1,8 +1,9 @@
 """Bounds on what building an expression would compute, checked before it is built.
 
-SymPy evaluates as it builds: ``Integer(9)**9**9`` or ``factorial(10**12)`` would never come back. Each guard here bounds the
-size of the result from the sizes of its parts, and refuses in microseconds. The bounds are upper bounds: log2 of a product
-is at most the sum of the bit lengths, k! <= k**k, binomial(n, k) <= n**min(k, n - k).
+SymPy evaluates as it builds: ``Integer(9)**9**9`` or ``factorial(10**12)`` would never come back. Each
+guard bounds the size of the result from the sizes of its parts, and refuses at once. The bounds are upper
+bounds: log2 of a product is at most the sum of the bit lengths, k! <= k**k, binomial(n, k) <=
+n**min(k, n - k).
 """
 
 from __future__ import annotations
@@ -18,8 +19,10 @@ TOTAL_BITS = 20 * MAX_BITS
 """Bits of all the numbers that one formula writes or computes, together."""
 MAX_EXPONENT = 1_000_000
 """Size of a numeric exponent, and of the numeric argument of a function."""
-MAX_ROOT = 1_000
+MAX_ROOT = 100
 """Denominator of a numeric exponent of a numeric base (which root is taken)."""
+MAX_ROOT_BITS = 2_000
+"""Bits of a rational of which a root is taken: SymPy looks for its small prime factors."""
 MAX_ZETA = 200
 """Size of a whole argument of the zeta function (its value there needs a Bernoulli number)."""
 
@@ -58,12 +61,21 @@ class Budget:
         for part in _numeric_parts(exponent):
             if size(part) > MAX_EXPONENT:
                 self.refuse("an exponent is too large", f"at most {MAX_EXPONENT} in absolute value")
-            if base.is_number and part.is_Rational and int(part.q) > MAX_ROOT:
-                self.refuse("a root of a number has too high an order", f"at most {MAX_ROOT}")
+            self._root(base, part)
             steps = int(size(part)) + 1
             base_bits = sum(_factor_bits(factor) for factor in sympy.Mul.make_args(base))
             if base_bits > 1:
                 self.spend(base_bits * steps, "a power")
+
+    def _root(self, base: sympy.Expr, exponent: sympy.Expr) -> None:
+        if not base.is_number or exponent.is_Integer or not exponent.is_Rational:
+            return
+        if int(exponent.q) > MAX_ROOT:
+            self.refuse("a root of a number has too high an order", f"at most {MAX_ROOT}")
+        if bits(base) > MAX_ROOT_BITS:
+            self.refuse(
+                "a root of a number that is too large", f"at most about {MAX_ROOT_BITS * 3 // 10} digits"
+            )
 
     def exponential(self, argument: sympy.Expr) -> None:
         """Check exp before it is built: exp(k*log(a)) becomes a**k."""

@@ -1,4 +1,4 @@
-"""The four forms of null, read from text (Lehmann and Romano 2005, Theorems 3.4.1 and 3.7.1, and section 4.2)."""
+"""The four forms of null, read from text (Lehmann and Romano 2005, Theorems 3.4.1 and 3.7.1, section 4.2)."""
 
 from __future__ import annotations
 
@@ -10,6 +10,7 @@ from enum import Enum
 import sympy
 
 from verify.errors import InputError
+from verify.problem.formula import formula_text
 from verify.problem.numbers import Exact, as_exact, as_expr
 from verify.problem.order import compare
 from verify.problem.relation import Interval, interval_text, read_chain
@@ -107,7 +108,8 @@ def parse_null(
     Raises
     ------
     InputError
-        When the text is not one of the four forms, a limit lies outside the space, or limits are equal or exchanged.
+        When the text is not one of the four forms, a limit lies outside the space, or limits are equal or
+        exchanged.
     """
     intervals = _read_set(text, parameter, symbols, key)
     for interval in intervals:
@@ -129,7 +131,17 @@ def _read_set(text: str, parameter: str, symbols: Mapping[str, sympy.Expr], key:
     pieces = re.split(r"\bor\b", plain)
     if len(pieces) > 2:
         raise InputError(f"{shorten(text)} has more than two parts", RIGHT, key=key)
-    return [read_chain(piece, parameter, symbols, key, RIGHT) for piece in pieces]
+    intervals = [read_chain(piece, parameter, symbols, key, RIGHT) for piece in pieces]
+    for piece, interval in zip(pieces, intervals, strict=True):
+        if interval.is_point and re.search("[<>]", piece):
+            raise _equal_limits(interval.lower, parameter, key)
+    return intervals
+
+
+def _equal_limits(limit: sympy.Expr, parameter: str, key: str) -> InputError:
+    return InputError(
+        "the two limits are equal", f'for one value write "{parameter} = {formula_text(limit)}"', key=key
+    )
 
 
 def _require_closed(interval: Interval, parameter: str, key: str) -> None:
@@ -158,21 +170,29 @@ def _limits(ends: tuple[sympy.Expr, ...], parameter: str, space: Space, key: str
     for limit, end in zip(limits, ends, strict=True):
         if not space.contains(limit):
             raise InputError(
-                f"the limit {end} lies outside the parameter space {space.text}", f"{parameter} must lie inside it", key=key
+                f"the limit {end} lies outside the parameter space {space.text}",
+                f"{parameter} must lie inside it",
+                key=key,
             )
     if len(limits) == 2:
         order = compare(limits[0], limits[1])
         if order == 0:
-            raise InputError("the two limits are equal", f'for one value write "{parameter} = {ends[0]}"', key=key)
+            raise _equal_limits(ends[0], parameter, key)
         if order > 0:
             raise InputError(
-                f"the limits are in the wrong order: {ends[0]} is above {ends[1]}", "write the smaller limit first", key=key
+                f"the limits are in the wrong order: {ends[0]} is above {ends[1]}",
+                "write the smaller limit first",
+                key=key,
             )
     return limits
 
 
 def check_alternative(
-    text: str, null: Hypothesis, parameter: str, symbols: Mapping[str, sympy.Expr], key: str = "problem.alternative"
+    text: str,
+    null: Hypothesis,
+    parameter: str,
+    symbols: Mapping[str, sympy.Expr],
+    key: str = "problem.alternative",
 ) -> None:
     """Refuse an alternative that is not the complement of the null.
 
@@ -189,7 +209,9 @@ def check_alternative(
         )
 
 
-def _read_alternative(text: str, parameter: str, symbols: Mapping[str, sympy.Expr], key: str) -> list[Interval]:
+def _read_alternative(
+    text: str, parameter: str, symbols: Mapping[str, sympy.Expr], key: str
+) -> list[Interval]:
     plain = plain_signs(require_text(text, key, RIGHT))
     if plain.count("!=") == 1 and " or " not in plain:
         (point,) = _read_set(plain.replace("!=", "=="), parameter, symbols, key)

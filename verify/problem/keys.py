@@ -40,11 +40,16 @@ LEVELS = Kind(
     lambda v: _is_number(v) or (isinstance(v, list) and len(v) == 2 and all(map(_is_number, v))),
     'a level, e.g. "0.05", or two of them, ["0.02", "0.05"]',
 )
-NUMBERS = Kind(lambda v: isinstance(v, list) and all(map(_is_number, v)), 'a list of exact numbers, e.g. ["1", "1/2"]')
-CONSTANTS = Kind(
-    lambda v: isinstance(v, dict) and all(map(_is_number, v.values())), 'a table of exact numbers, e.g. { m = "10" }'
+NUMBERS = Kind(
+    lambda v: isinstance(v, list) and all(map(_is_number, v)), 'a list of exact numbers, e.g. ["1", "1/2"]'
 )
-TEXTS = Kind(lambda v: _is_text(v) or (isinstance(v, list) and all(map(_is_text, v))), "text or a list of texts")
+CONSTANTS = Kind(
+    lambda v: isinstance(v, dict) and all(map(_is_number, v.values())),
+    'a table of exact numbers, e.g. { m = "10" }',
+)
+TEXTS = Kind(
+    lambda v: _is_text(v) or (isinstance(v, list) and all(map(_is_text, v))), "text or a list of texts"
+)
 TABLE = Kind(lambda v: isinstance(v, dict), "a table")
 WINDOW = Kind(lambda v: v in ("closed", "open"), '"closed" or "open"')
 REGION = Kind(lambda v: v in ("reject inside", "accept inside"), '"reject inside" or "accept inside"')
@@ -68,7 +73,8 @@ CASE_KEYS = Keys(
 )  # fmt: skip
 DENSITY_KEYS = Keys(
     {
-        "formula": TEXT, "kernel": TEXT, "weights": NUMBERS, "variable": TEXT, "support": TEXT, "parameter": TEXT,
+        "formula": TEXT, "kernel": TEXT, "weights": NUMBERS,
+        "variable": TEXT, "support": TEXT, "parameter": TEXT,
         "space": TEXT, "constants": CONSTANTS,
     },
     ("variable", "support", "parameter", "space"),
@@ -80,11 +86,18 @@ PROBLEM_KEYS = Keys(
 _HOW_MEANT = {"reported_as": REPORTED, "window": WINDOW, "region": REGION}
 _CUTOFFS = ("c1", "c2", "gamma1", "gamma2", "c", "gamma")
 CLAIM_KEYS = Keys(
-    {"natural_parameter": TEXT, "statistic": TEXT, "law": TEXT, **dict.fromkeys(_CUTOFFS, NUMBER), **_HOW_MEANT}
+    {
+        "natural_parameter": TEXT,
+        "statistic": TEXT,
+        "law": TEXT,
+        **dict.fromkeys(_CUTOFFS, NUMBER),
+        **_HOW_MEANT,
+    }
 )
 EXPECT_KEYS = Keys(
     {
-        "verdict": TEXT, "error": TEXT, "key": TEXT, "grade": TEXT, "status": NUMBER, "form": TEXT, "law": TEXT,
+        "verdict": TEXT, "error": TEXT, "key": TEXT, "grade": TEXT, "status": NUMBER,
+        "form": TEXT, "law": TEXT,
         "natural_parameter": TEXT, "statistic": TEXT, "step": TEXT, "witness": TEXT,
         "flags": TEXTS, "slips": TEXTS, **dict.fromkeys(_CUTOFFS, NUMBER),
     }
@@ -108,7 +121,7 @@ def check_table(table: Mapping[str, Any], keys: Keys, place: str) -> None:
         dotted = f"{place}.{name}" if place else name
         kind = keys.kinds.get(name)
         if kind is None:
-            raise InputError(f"unknown key{inside}: {ascii(name[:40])}", _suggestion(name, keys), key=dotted[:80])
+            raise InputError(f"unknown key{inside}: {name[:40]!a}", _suggestion(name, keys), key=dotted[:80])
         if not kind.fits(value):
             raise InputError(f"{name} is {_type_name(value)}", f"write {kind.name}", key=dotted)
     for name in keys.required if table else ():
@@ -122,5 +135,12 @@ def _suggestion(name: str, keys: Keys) -> str:
 
 
 def _type_name(value: Any) -> str:
-    names = {DecimalText: "a decimal", str: "a text that is not known here", int: "a whole number", bool: "true or false"}
-    return names.get(type(value), {list: "a list", dict: "a table"}.get(type(value), f"a {type(value).__name__}"))
+    names: dict[type, str] = {
+        list: "a list",
+        dict: "a table",
+        DecimalText: "a decimal",
+        str: "a text that is not known here",
+        int: "a whole number",
+        bool: "true or false",
+    }
+    return names.get(type(value), f"a {type(value).__name__}")

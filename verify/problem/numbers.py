@@ -27,7 +27,8 @@ def exact(value: str | int | Fraction | Decimal | sympy.Expr, key: str = "") -> 
     Parameters
     ----------
     value : str, int, Fraction, Decimal or SymPy number
-        Text may use decimals, fractions, ``pi`` and the functions of a formula. A decimal text is exact: "0.05" is 1/20.
+        Text may use decimals, fractions, ``pi`` and the functions of a formula. A decimal text is exact:
+        "0.05" is 1/20.
     key : str
         Where it came from, for messages.
 
@@ -72,7 +73,7 @@ def _from_text(text: str, key: str) -> Exact:
 
 
 def as_exact(expr: sympy.Expr | int, key: str = "") -> Exact:
-    """Bring a SymPy number into the exact form: a Rational becomes a Fraction, an irrational one stays as it is.
+    """Bring a SymPy number into the exact form: a rational becomes a Fraction, an irrational one stays.
 
     Raises
     ------

@@ -1,6 +1,7 @@
 """Order of exact numbers: below, equal or above, decided; never guessed from rounded digits.
 
-Rationals are compared as such. For others the difference is evaluated with an error that SymPy tracks, at rising precision;
+Rationals are compared as such. For others the difference is evaluated with an error that
+SymPy tracks, at rising precision;
 two numbers are called equal only when a symbolic simplification brings their difference to 0.
 """
 
@@ -53,9 +54,7 @@ def sign(expr: sympy.Expr) -> int:
             return seen
         if digits == PRECISIONS[0] and shown_zero(expr):
             return 0
-    raise UndecidedError(
-        f"whether {expr} is zero: {PRECISIONS[-1]} digits do not show a difference and no simplification shows equality"
-    )
+    raise UndecidedError(f"whether {expr} is zero: {PRECISIONS[-1]} digits and no simplification decide")
 
 
 def _numeric_sign(expr: sympy.Expr, digits: int) -> int:
@@ -63,14 +62,14 @@ def _numeric_sign(expr: sympy.Expr, digits: int) -> int:
         value = expr.evalf(digits, maxn=2 * digits, strict=True)
     except sympy.core.evalf.PrecisionExhausted:
         return 0
-    if not value.is_Float or abs(value) < sympy.Float(10) ** (-2 * digits):
+    if not value.is_Float:
         return 0
-    return 1 if value > 0 else -1
+    return 1 if bool(value > 0) else -1
 
 
 def shown_zero(expr: sympy.Expr) -> bool:
     """Whether a symbolic simplification shows that a number is 0. False means: not shown."""
-    if expr.count_ops() > 200 or any(abs(p.exp) > 50 for p in expr.atoms(sympy.Pow) if p.exp.is_Integer):
+    if expr.count_ops() > 60 or any(abs(p.exp) > 50 for p in expr.atoms(sympy.Pow) if p.exp.is_Integer):
         return bool(expr.is_zero)
     steps = (sympy.expand, lambda e: sympy.expand_log(sympy.logcombine(e)), sympy.radsimp, sympy.simplify)
     return bool(expr.is_zero) or any(step(expr) == 0 for step in steps) or _minimal_polynomial_zero(expr)
@@ -84,7 +83,7 @@ def _minimal_polynomial_zero(expr: sympy.Expr) -> bool:
 
 
 def find_rational(expr: sympy.Expr) -> Fraction | None:
-    """Return the rational that a number in disguise is equal to, e.g. (1 + sqrt(2))*(1 - sqrt(2)); None when none is shown.
+    """Return the rational that a number in disguise is shown to be equal to, or None.
 
     Examples
     --------
@@ -94,14 +93,21 @@ def find_rational(expr: sympy.Expr) -> Fraction | None:
     value = expr.evalf(60)
     if not value.is_Float:
         return Fraction(0) if shown_zero(expr) else None
+    if not sympy.Float(10) ** -15 < abs(value) < sympy.Float(10) ** 15:
+        return None
     number = sympy.Rational(value)
     candidate = Fraction(int(number.p), int(number.q)).limit_denominator(10**12)
+    # the best candidate for an irrational number is typically about 10**-24 away
     gap = abs(Fraction(int(number.p), int(number.q)) - candidate)
-    if gap > Fraction(1, 10**45) * max(1, abs(candidate)):
+    if gap > Fraction(1, 10**40):
         return None
     rational = sympy.Rational(candidate.numerator, candidate.denominator)
     return candidate if shown_zero(expr - rational) else None
 
 
 def _expr(value: Fraction | sympy.Expr) -> sympy.Expr:
-    return sympy.Rational(value.numerator, value.denominator) if isinstance(value, Fraction) else sympy.sympify(value)
+    return (
+        sympy.Rational(value.numerator, value.denominator)
+        if isinstance(value, Fraction)
+        else sympy.sympify(value)
+    )

@@ -8,6 +8,7 @@ from dataclasses import dataclass
 from decimal import Decimal
 from fractions import Fraction
 from functools import cached_property
+from typing import TypeAlias
 
 import sympy
 
@@ -18,7 +19,7 @@ from verify.problem.numbers import Exact, exact
 from verify.problem.order import compare
 from verify.problem.scan import shorten
 
-Level = str | int | Fraction | Decimal | sympy.Expr
+Level: TypeAlias = str | int | Fraction | Decimal | sympy.Expr
 
 
 @dataclass(frozen=True)
@@ -45,7 +46,8 @@ class Problem:
 
     Examples
     --------
-    >>> d = Density("exp(-lam)*lam**x/factorial(x)", variable="x", support="integers >= 0", parameter="lam", space="lam > 0")
+    >>> d = Density("exp(-lam)*lam**x/factorial(x)", variable="x", support="integers >= 0",
+    ...             parameter="lam", space="lam > 0")
     >>> p = Problem(d, null="lam <= 8 or lam >= 12", alpha="0.05", n=10)
     >>> p.hypothesis.form.value, p.levels, p.n
     ('outside null', (Fraction(1, 20), Fraction(1, 20)), 10)
@@ -65,7 +67,9 @@ class Problem:
             object.__setattr__(self, "alpha", tuple(self.alpha))
         hypothesis, _ = self.hypothesis, self.levels
         if self.alternative is not None:
-            check_alternative(self.alternative, hypothesis, self.density.parameter, self.density.constant_symbols)
+            check_alternative(
+                self.alternative, hypothesis, self.density.parameter, self.density.constant_symbols
+            )
 
     @cached_property
     def hypothesis(self) -> Hypothesis:
@@ -81,9 +85,11 @@ class Problem:
         if isinstance(self.alpha, tuple):
             if len(self.alpha) != 2 or not two:
                 right = "give two levels, one for each limit, or one" if two else "give one level"
-                raise InputError(f"{len(self.alpha)} levels for a null with {1 + two} limit(s)", right, key=key)
+                raise InputError(
+                    f"{len(self.alpha)} levels for a null with {1 + two} limit(s)", right, key=key
+                )
             return tuple(_level(value, key) for value in self.alpha)
-        return (_level(self.alpha, key),) * (1 + two)  # type: ignore[arg-type]
+        return (_level(self.alpha, key),) * (1 + two)
 
 
 def _level(value: Level, key: str) -> Exact:
@@ -98,7 +104,9 @@ def _whole_number(value: object) -> int:
     if isinstance(value, bool) or not isinstance(value, int | str):
         raise InputError(f"the number of observations is not a whole number: {value!r}", right, key=key)
     if isinstance(value, str) and not re.fullmatch(r"\s*\d{1,18}\s*", value, re.ASCII):
-        raise InputError(f"the number of observations is not a whole number: {shorten(value)}", right, key=key)
+        raise InputError(
+            f"the number of observations is not a whole number: {shorten(value)}", right, key=key
+        )
     number = int(value)
     if number < 1:
         raise InputError(f"the number of observations is {number}, below 1", right, key=key)

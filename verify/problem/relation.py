@@ -1,4 +1,4 @@
-"""Chains of inequalities in one name: "8 <= lam <= 12", "12 >= lam", "lam = 8" as an interval with exact ends."""
+"""Chains of inequalities in one name, "8 <= lam <= 12", "12 >= lam", "lam = 8", as exact intervals."""
 
 from __future__ import annotations
 
@@ -115,7 +115,10 @@ def read_brackets(text: str, symbols: Mapping[str, sympy.Expr], key: str, right:
     left, low, high, end = match.groups()
     lower, upper = read_bound(low, symbols, key), read_bound(high, symbols, key)
     return Interval(
-        lower, upper, left == "[" and lower.is_infinite is not True, end == "]" and upper.is_infinite is not True
+        lower,
+        upper,
+        left == "[" and lower.is_infinite is not True,
+        end == "]" and upper.is_infinite is not True,
     )
 
 

@@ -1,7 +1,7 @@
-"""A look at a text before any parser sees it: characters, length, brackets, operators, size of the numbers in it.
+"""A look at a text before any parser sees it: characters, length, brackets, operators, size of its numbers.
 
-Everything that could make a parser slow, or make it see something else than the reader sees (look-alike letters), is
-refused here, in time proportional to the length of the text.
+Everything that could make a parser slow, or make it see something else than the reader sees (look-alike
+letters), is refused here, in time proportional to the length of the text.
 """
 
 from __future__ import annotations
@@ -79,7 +79,8 @@ def scan_formula(text: object, key: str = "") -> str:
     """Return a formula's text in plain ASCII with ``**`` for powers, or refuse it.
 
     Guaranteed of the result: only letters, digits and ``_ + - * / ( ) . ,``; brackets balanced and at most
-    ``MAX_DEPTH`` deep; at most ``MAX_OPERATORS`` operators; no number of more than ``MAX_DIGITS`` digits; no Python keyword.
+    ``MAX_DEPTH`` deep; at most ``MAX_OPERATORS`` operators; no number of more than ``MAX_DIGITS`` digits;
+    no Python keyword.
 
     Raises
     ------
@@ -111,7 +112,8 @@ def refuse_character(character: str, position: int, key: str) -> NoReturn:
     """Raise the InputError that names a character and where it stands (counted from 1)."""
     name = unicodedata.name(character, f"U+{ord(character):04X}")
     shown = character if character.isprintable() and character.isascii() else ascii(character)[1:-1]
-    hint = "write names in plain letters, e.g. lam" if not character.isascii() else _HINTS.get(character, "")
+    plain = "write names in plain letters, e.g. lam" if character.isalpha() else "use plain ASCII"
+    hint = _HINTS.get(character, "use numbers, names, + - * / ** and ( )") if character.isascii() else plain
     raise InputError(f"character {shown} ({name}) at position {position} is not understood", hint, key=key)
 
 
@@ -120,7 +122,9 @@ def _check_brackets(text: str, key: str) -> None:
     for position, character in enumerate(text, start=1):
         depth += (character == "(") - (character == ")")
         if depth < 0:
-            raise InputError(f"the bracket ) at position {position} closes nothing", "balance the brackets", key=key)
+            raise InputError(
+                f"the bracket ) at position {position} closes nothing", "balance the brackets", key=key
+            )
         if depth > MAX_DEPTH:
             raise InputError("brackets are nested too deeply", f"at most {MAX_DEPTH} deep are read", key=key)
     if depth:
@@ -128,7 +132,7 @@ def _check_brackets(text: str, key: str) -> None:
 
 
 def _check_operators(text: str, key: str) -> None:
-    count = sum(text.count(sign) for sign in "+-*/^,")
+    count = sum(text.replace("**", "^").count(sign) for sign in "+-*/^,")
     if count > MAX_OPERATORS:
         raise InputError(f"{count} operators are too many", f"at most {MAX_OPERATORS} are read", key=key)
 
@@ -146,11 +150,13 @@ def _check_numbers(text: str, key: str) -> None:
 
 
 def check_literal(token: str, key: str) -> None:
-    """Refuse a decimal text whose exact value would have more than ``MAX_DIGITS`` digits, before it is computed."""
+    """Refuse a decimal text whose exact value would have more than ``MAX_DIGITS`` digits, uncomputed."""
     mantissa, _, exponent = token.lower().partition("e")
     shift = int(exponent) if len(exponent) < 8 and exponent else 0
     if len(exponent) >= 8 or len(mantissa) + abs(shift) > MAX_DIGITS:
-        raise InputError(f"the number {shorten(token, 20)} is too long", f"at most {MAX_DIGITS} digits are read", key=key)
+        raise InputError(
+            f"the number {shorten(token, 20)} is too long", f"at most {MAX_DIGITS} digits are read", key=key
+        )
 
 
 def _check_words(text: str, key: str) -> None:

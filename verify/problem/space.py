@@ -21,8 +21,8 @@ RIGHT = 'write "lam > 0", "0 < p < 1", "t in (0, 1)" or "reals"'
 class Space:
     """An open interval of parameter values.
 
-    A closed end in the text, as in "0 <= p <= 1", is read, but only the interior is used: a law at the end itself is a
-    limit that the theory of exponential families does not cover.
+    A closed end in the text, as in "0 <= p <= 1", is read, but only the interior is used: a law at the end
+    itself is a limit that the theory of exponential families does not cover.
 
     Attributes
     ----------
@@ -51,7 +51,9 @@ class Space:
         return self.text
 
 
-def parse_space(text: str, parameter: str, symbols: Mapping[str, sympy.Expr], key: str = "density.space") -> Space:
+def parse_space(
+    text: str, parameter: str, symbols: Mapping[str, sympy.Expr], key: str = "density.space"
+) -> Space:
     """Read a parameter space.
 
     Parameters
@@ -83,6 +85,6 @@ def _read_interval(plain: str, parameter: str, symbols: Mapping[str, sympy.Expr]
             return Interval()
         case "positive reals" | "reals > 0":
             return Interval(lower=sympy.S.Zero)
-    if rest != plain or rest[0] in "([" and rest[-1] in ")]" and "," in rest:
+    if rest != plain or (rest[0] in "([" and rest[-1] in ")]" and "," in rest):
         return read_brackets(rest, symbols, key, RIGHT)
     return read_chain(rest, parameter, symbols, key, RIGHT)

@@ -16,7 +16,7 @@ from verify.problem.order import compare
 from verify.problem.relation import Interval, read_bound, read_brackets, read_chain
 from verify.problem.scan import plain_signs, require_text, shorten
 
-RIGHT = 'write "integers >= 0", "integers 0..10", "integers", "reals", "reals > 0", "reals >= a" or "reals in (0, 1)"'
+RIGHT = 'write "integers >= 0", "integers 0..10", "integers", "reals", "reals > 0" or "reals in (0, 1)"'
 _SYNONYMS = (
     (r"(the )?(non-?negative|natural) (integers|numbers)( with 0)?", "integers >= 0"),
     (r"(the )?positive integers", "integers > 0"),
@@ -35,8 +35,8 @@ class Support:
     kind : {"integers", "reals"}
         Which numbers.
     lower, upper : sympy.Expr
-        The ends, -oo and oo where there are none. Finite numeric ends of integers are whole. An end may contain the
-        parameter: that is for the derivation to refute.
+        The ends, -oo and oo where there are none. Finite numeric ends of integers are whole. An end may
+        contain the parameter: that is for the derivation to refute.
     lower_closed, upper_closed : bool
         Whether an end belongs to the support.
     text : str
@@ -53,7 +53,7 @@ class Support:
     @property
     def free_symbols(self) -> set[sympy.Symbol]:
         """The symbols in the ends."""
-        return self.lower.free_symbols | self.upper.free_symbols
+        return {*self.lower.free_symbols, *self.upper.free_symbols}
 
     @property
     def is_finite(self) -> bool:
@@ -73,7 +73,9 @@ class Support:
         if self.kind == "integers" and not (isinstance(value, Fraction) and value.denominator == 1):
             return False
         low, high = compare(value, self.lower), compare(value, self.upper)
-        return (low > 0 or (low == 0 and self.lower_closed)) and (high < 0 or (high == 0 and self.upper_closed))
+        return (low > 0 or (low == 0 and self.lower_closed)) and (
+            high < 0 or (high == 0 and self.upper_closed)
+        )
 
     def __str__(self) -> str:
         return self.text
@@ -149,4 +151,6 @@ def _require_more_than_a_point(kind: str, interval: Interval, text: str, key: st
     if order > 0:
         raise InputError(f"the support {shorten(text)} is empty", "write the smaller end first", key=key)
     if order == 0:
-        raise InputError(f"the support {shorten(text)} has at most one point", "a support needs two points", key=key)
+        raise InputError(
+            f"the support {shorten(text)} has at most one point", "a support needs two points", key=key
+        )
