@@ -10,17 +10,21 @@ from fractions import Fraction
 def decimal_text(value: Fraction, digits: int, *, up: bool) -> str:
     """Write a rational with so many significant digits, rounded up or down (never to nearest).
 
+    A whole number of at most 40 digits is written out.
+
     Examples
     --------
     >>> decimal_text(Fraction(1, 3), 5, up=False), decimal_text(Fraction(1, 3), 5, up=True)
     ('0.33333', '0.33334')
-    >>> decimal_text(Fraction(91), 5, up=True)
-    '91'
+    >>> decimal_text(Fraction(1234567), 5, up=True)
+    '1234567'
     """
+    if value.denominator == 1 and abs(value) < 10**40:
+        return str(value.numerator)
     context = Context(prec=max(digits, 1), rounding=ROUND_CEILING if up else ROUND_FLOOR, Emin=-10**9, Emax=10**9)
     number = context.divide(Decimal(value.numerator), Decimal(value.denominator))
     if number == number.to_integral_value() and abs(number) < Decimal(10) ** (digits + 3):
-        return str(number.to_integral_value())
+        return format(number, ".0f")
     return _plain_or_scientific(number)
 
 
