@@ -10,7 +10,7 @@ Examples
 >>> problem = verify.Problem(density, null="lam <= 8 or lam >= 12", alpha="0.05", n=10)
 >>> solution = verify.solve(problem, digits=20)
 >>> int(solution.c1.lower), int(solution.c2.lower)
-(93, 107)
+(94, 103)
 """
 
 from __future__ import annotations

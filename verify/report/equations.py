@@ -7,8 +7,9 @@ from typing import TYPE_CHECKING, Any
 
 from verify.arithmetic.ball import balls, to_enclosure
 from verify.arithmetic.enclosure import Enclosure, decimal_text
-from verify.problem.numbers import as_expr, exact_text
+from verify.problem.numbers import exact_text
 from verify.report.layout import wrapped
+from verify.solution.conditions import interior
 
 if TYPE_CHECKING:
     from verify.laws.base import Law
@@ -35,32 +36,27 @@ LEFT_SIDES = {
 def equation_lines(solution: Solution) -> list[str]:
     """Return the lines of the side conditions: the equation, then one paragraph for each limit."""
     lattice = solution.laws[0].lattice
-    lines = [f"  Side conditions: E[phi] = {LEFT_SIDES[solution.rejects, lattice]}"]
-    if any(condition.of != "phi" for condition in solution.side_conditions):
-        lines.append("                   E[V phi] = level * E[V]")
-    parameter = solution.problem.density.parameter
-    for condition, law in zip(solution.side_conditions, _laws(solution), strict=True):
-        lines += _condition(solution, condition, law, parameter)
+    lines = [
+        "  Side conditions" + (f" (of each number, {SHOWN} digits are shown)" if lattice else ""),
+        f"    E[phi] = {LEFT_SIDES[solution.rejects, lattice]}",
+    ]
+    laws = list(solution.laws) * (len(solution.side_conditions) // len(solution.laws))
+    for condition, law in zip(solution.side_conditions, laws, strict=True):
+        lines += _condition(solution, condition, law)
     return lines
 
 
-def _laws(solution: Solution) -> list[Law]:
-    """The law that belongs to each side condition: a point null has one law and two conditions."""
-    laws = list(solution.laws)
-    return laws * len(solution.side_conditions) if len(laws) == 1 else laws
-
-
-def _condition(solution: Solution, condition: SideCondition, law: Law, parameter: str) -> list[str]:
-    scale, shift = solution.family.scale, solution.family.shift
-    plain = scale == 1 and shift == 0
-    where = f"at {parameter} = {exact_text(condition.at)}"
+def _condition(solution: Solution, condition: SideCondition, law: Law) -> list[str]:
+    """Return where an expectation is taken, its numbers, and how closely it is enclosed."""
+    head, rest = f"      E[{condition.of}] = ", " " * 8
+    lines = []
     if condition.of == "phi":
-        where += f", {'V' if plain else 'Y'} is {law}"
-    symbol = "E[phi]" if condition.of == "phi" else "E[V phi]"
-    lines = [wrapped(where + ":", first="    ", rest="      ")]
-    if condition.of == "phi" and law.lattice:
-        lines.append(wrapped(_numbers(solution, law), first=f"      {symbol} = ", rest="        "))
-    lines.append(wrapped(closeness(condition), first=f"      {symbol} = ", rest="        "))
+        plain = solution.family.scale == 1 and solution.family.shift == 0
+        where = f"at {solution.problem.density.parameter} = {exact_text(condition.at)}"
+        lines.append(wrapped(f"{where}, {'V' if plain else 'Y'} is {law}:", first="    ", rest="      "))
+        if law.lattice:
+            lines.append(wrapped(_numbers(solution, law), first=head, rest=rest))
+    lines.append(wrapped(closeness(condition), first=head, rest=rest))
     return lines
 
 
@@ -87,47 +83,33 @@ def closeness(condition: SideCondition) -> str:
 
 def _numbers(solution: Solution, law: Law) -> str:
     """Write the sum of a lattice test with its numbers, each cut to the digits shown."""
+    critical = solution.critical
+    ends = [(critical.c1, critical.phi1), (critical.c2, critical.phi2)]
+    if critical.c1 == critical.c2:
+        ends = ends[:1]
+    if (solution.c1 is not None) and solution.c1 != solution._on_scale(critical.c1):
+        ends.reverse()
     with balls(PREC) as A:
-        terms = [_shown(value) for value in _whole(solution, law, A)]
-        for end, fraction in _ends(solution):
-            mass = law.density(A, _of_y(solution, end))
-            terms.append(f"{fraction.text(SHOWN)} * {_shown(mass)}")
+        terms = [_shown(value) for value in _certain(solution, law, A)]
+        terms += [f"{_short(fraction)} * {_shown(law.density(A, end))}" for end, fraction in ends if fraction]
     return " + ".join(terms)
 
 
-def _ends(solution: Solution) -> list[tuple[Enclosure, Enclosure]]:
-    """The cutoffs with their fractions."""
-    pairs = [(solution.c, solution.gamma), (solution.c1, solution.gamma1), (solution.c2, solution.gamma2)]
-    found = [(end, fraction) for end, fraction in pairs if end is not None and fraction is not None]
-    return found[:1] if solution.c1 is not None and solution.c1 == solution.c2 else found
-
-
-def _whole(solution: Solution, law: Law, A: Any) -> list[Any]:
+def _certain(solution: Solution, law: Law, A: Any) -> list[Any]:
     """The probabilities of the points at which phi is 1, in the order of the equation."""
-    scale = solution.family.scale
-    flipped = _negative(scale)
-    points = [_of_y(solution, end) for end, _ in _ends(solution)]
-    low, high = min(points), max(points)
-    below, above = law.cdf(A, low - 1), law.sf(A, high)
-    if solution.rejects == "inside":
-        return [1 - below - above - law.density(A, low) - (law.density(A, high) if high > low else 0)]
-    if solution.rejects == "outside":
-        return [above, below] if flipped else [below, above]
-    return [above if (solution.rejects == "above") is not flipped else below]
-
-
-def _negative(scale: Any) -> bool:
-    return bool(scale < 0) if isinstance(scale, Fraction) else bool(as_expr(scale).is_negative)
-
-
-def _of_y(solution: Solution, end: Enclosure) -> int:
-    """Return the lattice point of Y that belongs to a cutoff of V = scale * Y + n * shift."""
-    from verify.problem.numbers import as_exact
-
-    family, n = solution.family, solution.problem.n
-    y = as_exact((as_expr(end.lower) - n * as_expr(family.shift)) / as_expr(family.scale))
-    return round(y)
+    critical = solution.critical
+    if critical.region == "inside":
+        centre = float(law.expectation(A).mid())
+        return [interior(law, A, critical.c1, critical.c2, centre)] if critical.c1 < critical.c2 else []
+    tails = {"below": law.cdf(A, critical.c1 - 1), "above": law.sf(A, critical.c2)}
+    wanted = ["below", "above"] if critical.region == "outside" else [critical.region]
+    return [tails[side] for side in wanted]
 
 
 def _shown(value: Any) -> str:
-    return to_enclosure(value).text(SHOWN)
+    return _short(to_enclosure(value))
+
+
+def _short(value: Enclosure) -> str:
+    """Return a number as the equation shows it: without its radius, which is far below the digits shown."""
+    return value.text(SHOWN).partition(" +- ")[0]

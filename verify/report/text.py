@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from typing import TYPE_CHECKING
 
 from verify.derivation.ledger import Grade
@@ -16,6 +17,7 @@ if TYPE_CHECKING:
     from verify.derivation.family import LawFamily
     from verify.derivation.ledger import Step
     from verify.problem.casefile import Case
+    from verify.problem.density import Density
     from verify.problem.problem import Problem
     from verify.report.pipeline import CaseRun
     from verify.solution.solve import Solution
@@ -33,6 +35,11 @@ OPTIMALITY = {
     "point null": "uniformly most powerful unbiased (Lehmann and Romano 2005, section 4.2)",
 }
 """In which sense the test of each form is optimal, and by which theorem."""
+
+TWO_LEVELS = (
+    "most powerful at every alternative among the tests with these two expectations at the limits "
+    "(Lehmann and Romano 2005, Theorem 3.6.1)"
+)
 
 REJECTS = {
     "inside": "reject when c1 < V < c2",
@@ -73,22 +80,37 @@ def _asked(case: Case) -> str:
     constants = ", ".join(f"{name} = {value}" for name, value in density.constants.items())
     lines = [
         heading(1, "Asked"),
-        field("Density", f"f({density.variable}; {density.parameter}) = {density.text}"),
+        field("Density", f"f({density.variable}; {density.parameter}) = {_formula(density)}"),
         field("Support", f"{density.variable} in {density.support}"),
-        field(
-            "Parameter",
-            f"{density.parameter} in {density.space}" + (f"; known: {constants}" if constants else ""),
-        ),
+        field("Parameter", _space(density) + (f"; known: {constants}" if constants else "")),
     ]
     if problem is not None:
-        hypothesis = problem.hypothesis
+        hypothesis, t = problem.hypothesis, density.parameter
         lines += [
-            field("Null", f"{hypothesis.text(density.parameter)}   ({hypothesis.form.value})"),
-            field("Alternative", hypothesis.alternative_text(density.parameter)),
-            field("Level", " and ".join(exact_text(level) for level in problem.levels)),
+            field("Null", f"{hypothesis.text(t)}   ({hypothesis.form.value})"),
+            field("Alternative", hypothesis.alternative_text(t)),
+            field("Level", _levels(problem)),
             field("Sample", f"n = {problem.n} independent observation{'s' if problem.n > 1 else ''}"),
         ]
     return "\n".join(lines)
+
+
+def _space(density: Density) -> str:
+    written_out = re.search(rf"\b{re.escape(density.parameter)}\b", density.space)
+    return density.space if written_out else f"{density.parameter} in {density.space}"
+
+
+def _levels(problem: Problem) -> str:
+    if len(set(problem.levels)) == 1:
+        return exact_text(problem.levels[0])
+    t, pairs = problem.density.parameter, zip(problem.levels, problem.hypothesis.limits, strict=True)
+    return ", ".join(f"{exact_text(level)} at {t} = {exact_text(limit)}" for level, limit in pairs)
+
+
+def _formula(density: Density) -> str:
+    if density.formula is not None:
+        return density.formula
+    return f"{exact_text(density.expr)} up to a factor" if density.is_kernel else exact_text(density.expr)
 
 
 def _derived(derivation: Derivation, problem: Problem | None) -> str:
@@ -134,20 +156,42 @@ def _obstacle(derivation: Derivation) -> str:
 
 
 def _solved(solution: Solution) -> str:
-    random = solution.gamma1 is not None or solution.gamma is not None
-    rule = REJECTS[solution.rejects]
-    if random:
-        one = solution.c is not None
-        rule += (
-            "; with probability gamma at V = c"
-            if one
-            else "; with probability gamma1 at V = c1, gamma2 at V = c2"
-        )
-    lines = [heading(3, f"Solved to {solution.digits} digits", solution.grade.value),
-             field("Optimal", OPTIMALITY[solution.form.value]), field("Test", rule), ""]  # fmt: skip
+    lines = [
+        heading(3, f"Solved to {solution.digits} digits", solution.grade.value),
+        field("Optimal", _optimality(solution)),
+        field("Test", _rule(solution)),
+        "",
+    ]
     lines += [number(name, value.text(solution.digits), 6) for name, value in named_numbers(solution)]
-    lines += ["", *equation_lines(solution)]
-    return "\n".join(lines)
+    return "\n".join([*lines, "", *equation_lines(solution)])
+
+
+def _optimality(solution: Solution) -> str:
+    if len(set(solution.problem.levels)) > 1:
+        return TWO_LEVELS
+    return OPTIMALITY[solution.form.value]
+
+
+def _rule(solution: Solution) -> str:
+    """Say when the test rejects."""
+    rule = REJECTS[solution.rejects]
+    if solution.gamma is not None:
+        return f"{rule}; at V = c with probability gamma"
+    if solution.gamma1 is None:
+        return rule
+    if _two_atoms(solution):
+        return "reject with probability alpha whatever is observed: V has two values only"
+    if solution.c1 == solution.c2:
+        other = "never" if solution.rejects == "inside" else "always"
+        return f"at V = c1 = c2 reject with probability gamma1 = gamma2; {other} elsewhere"
+    return f"{rule}; at V = c1, c2 with probability gamma1, gamma2"
+
+
+def _two_atoms(solution: Solution) -> bool:
+    """Whether V has two values and the levels are equal, which leaves nothing but phi = alpha."""
+    low, high = solution.laws[0].support
+    few = low is not None and high is not None and high - low == 1
+    return solution.laws[0].lattice and few and len(set(solution.problem.levels)) == 1
 
 
 def named_numbers(solution: Solution) -> list[tuple[str, Enclosure]]:
