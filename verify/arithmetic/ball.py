@@ -17,6 +17,7 @@ from typing import Any
 
 from flint import acb, arb, ctx, fmpq
 
+from verify.arithmetic.beta_series import incomplete_beta
 from verify.arithmetic.enclosure import Enclosure
 from verify.arithmetic.evaluate import evaluate
 
@@ -75,6 +76,8 @@ class Balls:
 
     def power(self, x: Ball, k: Any) -> Ball:
         """X to the power k."""
+        if isinstance(k, int) and k > 0 and arb(x).contains(0):
+            return _power_across_zero(arb(x), k)
         return arb(x) ** (k if isinstance(k, int) else self.real(k))
 
     def gamma(self, x: Any) -> Ball:
@@ -115,18 +118,8 @@ class Balls:
         return 1 - self.gamma_q(a, x)
 
     def beta_p(self, x: Any, a: Any, b: Any) -> Ball:
-        """Regularised incomplete beta function I_x(a, b).
-
-        As x^a (1-x)^(b-1) / (a B(a, b)) times 2F1(1, 1-b; a+1; -x/(1-x)), whose terms are all positive and finite
-        in number when b is a whole number; otherwise times (1-x) 2F1(a+b, 1; a+1; x). Source: DLMF 8.17.8 and 15.8.1.
-        """
-        x, top = self.real(x), self.real(a)
-        other = self.real(b)
-        front = x**top * (top + other).gamma() / ((top + 1).gamma() * other.gamma())
-        if isinstance(b, int) or (isinstance(b, Fraction) and b.denominator == 1):
-            whole = int(b)
-            return front * (1 - x) ** (whole - 1) * (-x / (1 - x)).hypgeom_2f1(arb(1), arb(1 - whole), top + 1)
-        return front * (1 - x) ** other * x.hypgeom_2f1(top + other, arb(1), top + 1)
+        """Regularised incomplete beta function I_x(a, b); see :mod:`verify.arithmetic.beta_series`."""
+        return incomplete_beta(self.real(x), a, b, self.prec)
 
     def beta_q(self, x: Any, a: Any, b: Any) -> Ball:
         """1 - I_x(a, b) = I_{1-x}(b, a). Source: DLMF 8.17.4."""
@@ -141,6 +134,12 @@ class Balls:
         from verify.arithmetic.ball_functions import REAL_FUNCTIONS
 
         return REAL_FUNCTIONS[name](*args)
+
+
+def _power_across_zero(x: Ball, k: int) -> Ball:
+    """Positive whole power of a ball that contains zero: from its ends, since x^k is monotone on either side."""
+    low, high = x.lower() ** k if x.lower() != 0 else arb(0), x.upper() ** k if x.upper() != 0 else arb(0)
+    return low.union(high).union(arb(0))
 
 
 @contextmanager
@@ -218,6 +217,12 @@ def radius(x: Ball) -> Ball:
 def around(x: Ball, r: Ball) -> Ball:
     """Ball around a midpoint with a given radius."""
     return arb(x.mid(), arb(r).abs_upper())
+
+
+def min_abs(x: Ball, y: Ball) -> Ball:
+    """The smaller of two absolute values, by their midpoints: a guide for searches, not a proof."""
+    x, y = abs(x), abs(y)
+    return x if x.mid() < y.mid() else y
 
 
 def complex_ball(x: Any, y: Any = 0) -> Any:

@@ -121,13 +121,18 @@ class ContinuousSearch:
 
     def _log_slope(self, A: Any, c: Any) -> float:
         """Derivative of log(density * dc/du) along the coordinate, by a difference: only a guide."""
-        law, coordinate = self.conditions.laws[0], self.coordinate
+        coordinate = self.coordinate
+        law = max(self.conditions.laws, key=lambda candidate: _log(candidate.density(A, c)))
         h = 1e-6 * (1.0 if coordinate.low is not None or coordinate.high is not None else self.rough[0].spread)
         next_c = midpoint(coordinate.place(A, coordinate.of(A, c) + A.real(Fraction(h))))
         here = law.density(A, c) * coordinate.speed(A, c)
         there = law.density(A, next_c) * coordinate.speed(A, next_c)
         ratio = A.log(there / here)
         return float(ratio.mid()) / h if ratio.is_finite() else 0.0
+
+
+def _log(density: Any) -> float:
+    return float(density.log().mid()) if density > 0 else -math.inf
 
 
 def outward_steps(conditions: Conditions, A: Any, c1: Any, c2: Any) -> Ends:

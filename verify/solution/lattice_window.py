@@ -10,7 +10,7 @@ Source: Lehmann and Romano 2005, Theorem 3.7.1; S. Karlin, Total Positivity (196
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Any
 
 from verify.arithmetic.ball import accuracy_bits, balls, to_enclosure
@@ -19,12 +19,15 @@ from verify.arithmetic.exact import rationals
 from verify.errors import InputError, NotRational, UndecidedError
 from verify.solution.conditions import Conditions, end_fractions, exact_fractions
 from verify.solution.precision import bits_for
-from verify.solution.sliding import out_of_reach, slide
+from verify.solution.sliding import slide
 from verify.solution.start import Rough, extend, window_start
 from verify.solution.window import Window
 
 MOST_STEPS = 40
 """Steps of the fast search before the bracketing one takes over."""
+
+NEIGHBOURS = 4
+"""Cells tried one step at a time before searching again at a higher precision."""
 
 MOST_EXACT_ATOMS = 20_000
 """A tie is decided exactly when the window has at most so many atoms."""
@@ -57,7 +60,7 @@ class LatticeSearch:
         """Return the cell, or the best guess that a proof may still move by a little."""
         with balls(self.prec) as A:
             found = self._fast(A)
-        return found if found is not None else self._bracket()
+        return found if found is not None else self.bracket(self.prec)
 
     def _first(self) -> Cell:
         level = float(self.conditions.levels[0])
@@ -101,7 +104,7 @@ class LatticeSearch:
         """Cells by which an end must go outward (negative: inward) to gather the weight it wants."""
         if 0 <= weight <= 1:
             return 0
-        law = self.conditions.laws[0]
+        law = max(self.conditions.laws, key=lambda candidate: float(_log(candidate.density(A, c))))
         outward, here = law.density(A, c + side), law.density(A, c)
         ratio = float(outward / here) if here > 0 and outward > 0 else 0.0
         cap = 4 * max(r.spread for r in self.rough) + 2
@@ -110,15 +113,20 @@ class LatticeSearch:
         cells = extend(max(-1e300, min(1e300, wanted)), slope, cap)
         return max(1, math.ceil(cells)) if weight > 1 else min(-1, math.floor(cells))
 
-    def _bracket(self) -> Cell:
-        """Bisection on the lower end: the other condition rises as a window of the right size slides up."""
-        return slide(self.conditions, self.rough, self.rising, self.prec)
+    def bracket(self, bits: int) -> Cell:
+        """Return the cell by the sure, slow search."""
+        return slide(self.conditions, self.rough, self.rising, bits)
 
 
 def window_fractions(conditions: Conditions, A: Any, c1: int, c2: int) -> tuple[float, float]:
     """Return the fraction of each end that belongs to the window, in floating point (nan when unknown)."""
     first, second = (_as_float(g) for g in end_fractions(conditions, A, c1, c2))
     return (1 - first, 1 - second) if conditions.outside else (first, second)
+
+
+def _log(mass: Any) -> float:
+    """Logarithm of a mass as a rough float: tells which law rules at a place."""
+    return float(mass.log().mid()) if mass > 0 else -math.inf
 
 
 def _as_float(x: Any) -> float:
@@ -166,14 +174,14 @@ def solve_lattice_window(search: LatticeSearch, digits: int) -> Window:
 
 
 def _neighbour(search: LatticeSearch, cell: Cell, moves: list[Any], tried: set[Cell], bits: int) -> Cell:
-    """Next cell to try, where this one is certainly wrong: one step each way, else the sure search at this precision."""
+    """Next cell to try, where this one is certainly wrong: one step each way, else a search at this precision."""
     step = (cell[0] - moves[0], cell[1] + moves[1])
     low, high = search.conditions.laws[0].support
     possible = step[0] < step[1] and (low is None or step[0] >= low) and (high is None or step[1] <= high)
-    if step in tried or not possible:
-        step = slide(search.conditions, search.rough, search.rising, bits)
+    if step in tried or not possible or len(tried) % NEIGHBOURS == 0:
+        step = replace(search, prec=bits).cell() if len(tried) <= NEIGHBOURS else search.bracket(bits)
         if step in tried:
-            raise out_of_reach()
+            raise UndecidedError(f"no pair of cutoffs near {cell} could be proved")
     tried.add(step)
     return step
 

@@ -14,21 +14,14 @@ from collections.abc import Callable
 from typing import Any
 
 from verify.arithmetic.ball import balls
-from verify.errors import InputError
 from verify.laws import Law
 from verify.solution.conditions import Conditions
 from verify.solution.start import Rough
 
-OUT_OF_REACH = "no test has these two levels: the power at the second limit cannot be had together with the first level"
-
-
 def slide(conditions: Conditions, rough: tuple[Rough, ...], rising: bool, prec: int) -> tuple[int, int]:
     """Return the cell (c1, c2) of a lattice law.
 
-    Raises
-    ------
-    InputError
-        When no test has the two levels asked for.
+    The two levels are taken to be attainable (:mod:`verify.solution.attainable`).
     """
     with balls(2 * prec) as A:
         window = _Sliding(conditions, rough, rising, A)
@@ -62,7 +55,7 @@ class _Sliding:
         while b - a > 1:
             middle = (a + b) // 2
             a, b = (middle, b) if self.law.cdf(self.A, middle - 1) < self.outside_mass else (a, middle)
-        return low - 1 if self.excess(low) > 0 else low, b
+        return low, b
 
     def _first(self, holds: Callable[[int], Any], start: int, step: int) -> int:
         while holds(start) and abs(step) < 1 << 62:
@@ -104,7 +97,3 @@ class _Sliding:
         difference = (self.second_outside - outside).mid()
         return difference if self.rising else -difference
 
-
-def out_of_reach() -> InputError:
-    """Return the complaint that no test has the two levels."""
-    return InputError(OUT_OF_REACH, "bring the two levels closer together", key="problem.alpha")

@@ -13,6 +13,7 @@ from verify.derivation.ledger import Grade, Step, weakest
 from verify.errors import InputError, UndecidedError
 from verify.problem.hypothesis import Form
 from verify.problem.numbers import Exact, exact
+from verify.solution.attainable import require_attainable
 from verify.solution.conditions import Conditions
 from verify.solution.continuous_window import ContinuousSearch, solve_continuous_window
 from verify.solution.critical import CriticalFunction, Region
@@ -270,6 +271,7 @@ def solve(problem: Problem, digits: int = 50, derivation: Derivation | None = No
 def _solve_two_sided(problem: Problem, derivation: Derivation, laws: tuple[Law, ...], digits: int) -> Solution:
     outside = problem.hypothesis.form is not Form.OUTSIDE
     rough, closeness, rising = rough_laws(laws)
+    require_attainable(laws, problem.levels, rough)
     conditions = Conditions(laws, problem.levels, outside, tuple(law.mean for law in rough))
     narrow = not outside and not laws[0].lattice
     prec = search_precision(rough, problem.levels, closeness, narrow=narrow)
