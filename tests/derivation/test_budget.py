@@ -17,7 +17,7 @@ def _sleep_in_one_c_call(seconds):
 
 
 def _never_ends():
-    return pow(7, 10**9, 10**(10**5) + 1)
+    return pow(7, 10**9, 10 ** (10**5) + 1)
 
 
 def _eat():
@@ -96,7 +96,8 @@ def _inside(connection):
 
 
 def test_inside_a_daemonic_process():
-    """Workers of a cluster are daemonic, and such a process may not start children through multiprocessing."""
+    """Workers of a cluster are daemonic, and such a process may not start children through
+    multiprocessing."""
     mine, theirs = multiprocessing.Pipe()
     process = multiprocessing.get_context("fork").Process(target=_inside, args=(theirs,), daemon=True)
     process.start()

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import importlib.util
 from fractions import Fraction
-from functools import lru_cache
+from functools import cache
 from pathlib import Path
 
 import pytest
@@ -26,7 +26,7 @@ BUDGET = 40.0
 """Generous, because the machine may be shared."""
 
 
-@lru_cache(maxsize=None)
+@cache
 def _derived(name: str) -> Derivation:
     return derive(Density(**next(known for known in zoo.KNOWN if known.name == name).density), budget=BUDGET)
 
@@ -45,7 +45,12 @@ def test_known_law_with_every_step_proved(known):
     derivation = _derived(known.name)
     symbolic = [step for step in derivation.steps if step.name != "numerical look"]
     assert [step.name for step in symbolic] == [
-        "support", "nonnegativity", "normalisation", "factorisation", "monotonicity", "law"
+        "support",
+        "nonnegativity",
+        "normalisation",
+        "factorisation",
+        "monotonicity",
+        "law",
     ]
     assert all(step.grade is Grade.PROVED for step in symbolic), str(derivation)
     assert derivation.step("numerical look").grade is Grade.CHECKED, str(derivation)
@@ -61,7 +66,8 @@ def test_known_law_with_every_step_proved(known):
 
 @pytest.mark.parametrize("known", zoo.KNOWN, ids=lambda known: known.name)
 def test_factorisation_is_the_density_in_numbers(known):
-    """The identity that was proved, evaluated at points by SymPy's own numerics (another route than log f)."""
+    """The identity that was proved, evaluated at points by SymPy's own numerics (another route than log
+    f)."""
     derivation = _derived(known.name)
     density = derivation.density
     product = derivation.base * sp.exp(
@@ -70,13 +76,18 @@ def test_factorisation_is_the_density_in_numbers(known):
     lower = density.parsed_support.lower
     offset = sp.Integer(0) if density.parsed_support.kind == "integers" else sp.Rational(2, 7)
     start = lower if lower.is_finite else sp.Integer(-2)
-    for x in (start + offset, start + offset + (1 if density.parsed_support.upper != 1 else sp.Rational(1, 3))):
+    for x in (
+        start + offset,
+        start + offset + (1 if density.parsed_support.upper != 1 else sp.Rational(1, 3)),
+    ):
         for t in (sp.Rational(1, 3), sp.Rational(4, 5)):
             point = {density.x: x, density.t: t}
             assert abs(sp.N((density.expr - product).subs(point), 30)) < sp.Float("1e-25")
 
 
-@pytest.mark.parametrize(("name", "density"), zoo.NO_CLOSED_FORM, ids=lambda value: value if isinstance(value, str) else "")
+@pytest.mark.parametrize(
+    ("name", "density"), zoo.NO_CLOSED_FORM, ids=lambda value: value if isinstance(value, str) else ""
+)
 def test_exponential_family_without_closed_form(name, density):
     derivation = derive(Density(**density), budget=BUDGET)
     assert derivation.family is None
@@ -96,7 +107,9 @@ def test_refused_with_a_witness(refused):
 
 
 def test_kernel_of_a_binomial_is_named():
-    density = Density(kernel="binomial(10,x)*t**x", variable="x", support="integers 0..10", parameter="t", space="t > 0")
+    density = Density(
+        kernel="binomial(10,x)*t**x", variable="x", support="integers 0..10", parameter="t", space="t > 0"
+    )
     derivation = derive(density)
     assert derivation.grade is Grade.PROVED
     assert derivation.law == "binomial(trials = 10, probability = t/(t + 1))"
@@ -109,14 +122,25 @@ def test_law_of_the_sum_at_a_value():
 
 def test_hyperbolic_secant_is_recognised():
     """Morris 1982: V(m) = 1 + m**2 belongs to the density exp(t x) cos(t) sech(pi x/2)/2."""
-    density = Density("exp(t*x)*cos(t)/(2*cosh(pi*x/2))", variable="x", support="reals", parameter="t",
-                      space="-pi/2 < t < pi/2")
+    density = Density(
+        "exp(t*x)*cos(t)/(2*cosh(pi*x/2))",
+        variable="x",
+        support="reals",
+        parameter="t",
+        space="-pi/2 < t < pi/2",
+    )
     step = derive(density, budget=BUDGET).step("law")
     assert "generalised hyperbolic secant law with r = 1" in step.statement
 
 
 def test_a_step_whose_budget_is_spent_is_undecided_and_the_rest_goes_on():
-    density = Density("exp(-lam)*lam**x/factorial(x)", variable="x", support="integers >= 0", parameter="lam", space="lam > 0")
+    density = Density(
+        "exp(-lam)*lam**x/factorial(x)",
+        variable="x",
+        support="integers >= 0",
+        parameter="lam",
+        space="lam > 0",
+    )
     derivation = derive(density, budget=0.0)
     assert derivation.grade is Grade.UNDECIDED
     assert "budget of 0 s" in derivation.steps[0].reason

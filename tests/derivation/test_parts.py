@@ -40,17 +40,27 @@ def test_a_proved_sign_holds_at_every_point(coefficients, lower, width):
         assert sign == 0 or sp.sign(value) == sign
 
 
-@pytest.mark.parametrize(("natural", "rising"), [
-    (R**3, True), (R**3 + R, True), (-sp.exp(R), False), (R**5 - R**4 + R**3, True), (sp.atan(R), True),
-    (sp.exp(R) / (1 + sp.exp(R)), True), (-(R - 1)**3, False),
-])
+@pytest.mark.parametrize(
+    ("natural", "rising"),
+    [
+        (R**3, True),
+        (R**3 + R, True),
+        (-sp.exp(R), False),
+        (R**5 - R**4 + R**3, True),
+        (sp.atan(R), True),
+        (sp.exp(R) / (1 + sp.exp(R)), True),
+        (-((R - 1) ** 3), False),
+    ],
+)
 def test_monotone_on_the_line(natural, rising):
     step, found = monotonicity_step(natural, R, LINE, [], [])
     assert (step.grade, found) == (Grade.PROVED, rising)
 
 
 def test_monotone_on_an_interval_only_by_balls():
-    step, rising = monotonicity_step(2 * R + sp.sin(R) * sp.cos(R / 2), R, LINE, [], [sp.Integer(-1), sp.sqrt(2)])
+    step, rising = monotonicity_step(
+        2 * R + sp.sin(R) * sp.cos(R / 2), R, LINE, [], [sp.Integer(-1), sp.sqrt(2)]
+    )
     assert (step.grade, rising) == (Grade.ENCLOSED, True)
     assert "<= t <=" in step.statement
 
@@ -69,23 +79,31 @@ def test_subdivision_finds_no_sign_across_a_zero():
 
 
 def test_variance_function_of_an_affine_inverse_gaussian():
-    """T = 5 - 2 Y with Y inverse Gaussian: A follows by the affine map; the law must be found through its mirror image."""
+    """T = 5 - 2 Y with Y inverse Gaussian: A follows by the affine map; the law must be found through its
+    mirror image."""
     natural = -1 / (2 * P**2)
     plain_a = -1 / P
     variance = variance_function(plain_a + 5 * natural, natural, P)
     assert variance == Cube(P + 5, sp.Integer(1), sp.Integer(5))
     mirrored = variance_function(plain_a - 5 * natural, -natural, P)
     named = name_law(mirrored, P, HALF)
-    assert (named.family.scale, named.family.shift, named.word) == (Fraction(-1), Fraction(5), "inverse Gaussian")
+    assert (named.family.scale, named.family.shift, named.word) == (
+        Fraction(-1),
+        Fraction(5),
+        "inverse Gaussian",
+    )
 
 
-@pytest.mark.parametrize(("variance", "word", "scale", "shift"), [
-    (Quadratic(P + 3, sp.Integer(-3), sp.Integer(1), sp.Integer(0)), "Poisson", 1, 3),
-    (Quadratic(3 - 2 * P, sp.Integer(6), sp.Integer(-2), sp.Integer(0)), "Poisson", -2, 3),
-    (Quadratic(-P, sp.Integer(0), sp.Integer(0), sp.Rational(1, 2)), "gamma", -1, 0),
-    (Quadratic(-3 * P, sp.Integer(0), sp.Integer(-3), sp.Rational(1, 2)), "negative binomial", -3, 0),
-    (Quadratic(10 * P / (1 + P), sp.Integer(0), sp.Integer(1), sp.Rational(-1, 10)), "binomial", 1, 0),
-])
+@pytest.mark.parametrize(
+    ("variance", "word", "scale", "shift"),
+    [
+        (Quadratic(P + 3, sp.Integer(-3), sp.Integer(1), sp.Integer(0)), "Poisson", 1, 3),
+        (Quadratic(3 - 2 * P, sp.Integer(6), sp.Integer(-2), sp.Integer(0)), "Poisson", -2, 3),
+        (Quadratic(-P, sp.Integer(0), sp.Integer(0), sp.Rational(1, 2)), "gamma", -1, 0),
+        (Quadratic(-3 * P, sp.Integer(0), sp.Integer(-3), sp.Rational(1, 2)), "negative binomial", -3, 0),
+        (Quadratic(10 * P / (1 + P), sp.Integer(0), sp.Integer(1), sp.Rational(-1, 10)), "binomial", 1, 0),
+    ],
+)
 def test_affine_maps_of_the_table(variance, word, scale, shift):
     named = name_law(variance, P, HALF)
     assert (named.word, named.family.scale, named.family.shift) == (word, scale, shift)
@@ -97,12 +115,25 @@ def test_binomial_needs_a_whole_number_of_trials():
     assert "not a whole number" in named.word
 
 
-@pytest.mark.parametrize(("density", "wrong"), [
-    (Density("exp(-t)*t**x/factorial(x)", variable="x", support="integers >= 0", parameter="t", space="t > 0"),
-     lambda t: Poisson(t + sp.Rational(1, 10**6))),
-    (Density("t*exp(-t*x)", variable="x", support="reals > 0", parameter="t", space="t > 0"),
-     lambda t: Gamma(Fraction(1), t + sp.Rational(1, 10**6))),
-])
+@pytest.mark.parametrize(
+    ("density", "wrong"),
+    [
+        (
+            Density(
+                "exp(-t)*t**x/factorial(x)",
+                variable="x",
+                support="integers >= 0",
+                parameter="t",
+                space="t > 0",
+            ),
+            lambda t: Poisson(t + sp.Rational(1, 10**6)),
+        ),
+        (
+            Density("t*exp(-t*x)", variable="x", support="reals > 0", parameter="t", space="t > 0"),
+            lambda t: Gamma(Fraction(1), t + sp.Rational(1, 10**6)),
+        ),
+    ],
+)
 def test_the_look_notices_a_wrong_law(density, wrong):
     family = LawFamily(wrong(density.t), Fraction(1), Fraction(0), density.t)
     assert numerical_look(density, density.x, family, sp.Integer(2)).grade in (Grade.REFUTED, Grade.UNDECIDED)
@@ -114,7 +145,9 @@ def test_affine_map_of_logarithms():
 
 
 def test_a_mean_squared_over_positive_values_is_fine():
-    density = Density("exp(-(x-t**2)**2/2)/sqrt(2*pi)", variable="x", support="reals", parameter="t", space="t > 0")
+    density = Density(
+        "exp(-(x-t**2)**2/2)/sqrt(2*pi)", variable="x", support="reals", parameter="t", space="t > 0"
+    )
     derivation = derive(density)
     assert derivation.grade is Grade.PROVED
     assert derivation.law == "normal(mean = t**2, variance = 1)"

@@ -61,6 +61,8 @@ def _of_quotient(statistic: Expr, x: Symbol, y: Expr) -> list[Expr] | None:
         return None
     a, b, c = polynomial.all_coeffs()
     root = sp.sqrt(sp.expand(b**2 - 4 * a * c))
-    return [2 * c / (-b - root), (-b - root) / (2 * a)] if b.could_extract_minus_sign() is False else [
-        (-b + root) / (2 * a), 2 * c / (-b + root)
-    ]
+    return (
+        [2 * c / (-b - root), (-b - root) / (2 * a)]
+        if b.could_extract_minus_sign() is False
+        else [(-b + root) / (2 * a), 2 * c / (-b + root)]
+    )

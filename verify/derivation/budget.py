@@ -1,7 +1,7 @@
 """Run symbolic steps in a child process that is really stopped when its time or memory is spent.
 
-Computer algebra has calls that never return (C loops ignore alarms), so a step runs where it can be killed. One child
-serves all steps of a derivation and is started anew only after a kill.
+Computer algebra has calls that never return (C loops ignore alarms), so a step runs where it can be killed.
+One child serves all steps of a derivation and is started anew only after a kill.
 """
 
 from __future__ import annotations
@@ -37,7 +37,8 @@ class Worker:
     memory : int
         Bytes that the child may take beyond what it starts with (where the system can limit it).
     method : str
-        ``"fork"`` (the child starts with everything imported) or ``"spawn"``; the default is fork where there is one.
+        ``"fork"`` (the child starts with everything imported) or ``"spawn"``; the default is fork where
+        there is one.
 
     Examples
     --------
@@ -71,8 +72,8 @@ class Worker:
         Raises
         ------
         UndecidedError
-            When the time or the memory is spent, when the child dies, or when the algebra system gives up with an
-            exception of its own: the reason says which.
+            When the time or the memory is spent, when the child dies, or when the algebra system gives up
+            with an exception of its own: the reason says which.
         SidecheckError
             What the function itself raised on purpose.
         """
@@ -162,19 +163,25 @@ def _answer(function: Callable[..., Any], arguments: tuple[Any, ...]) -> tuple[s
         if not _is_surrender(error):
             return "raised", error
         words = str(error).splitlines()
-        return "gave up", f"the algebra system gave up: {type(error).__name__}: {words[0][:200] if words else ''}"
+        return (
+            "gave up",
+            f"the algebra system gave up: {type(error).__name__}: {words[0][:200] if words else ''}",
+        )
 
 
 def _is_surrender(error: Exception) -> bool:
-    """Whether a library gave up, rather than that this package made a mistake: by its kind, or by where it was raised."""
+    """Whether a library gave up, rather than that this package made a mistake."""
     if isinstance(error, (ArithmeticError, NotImplementedError, RecursionError)):
         return True
     frames = traceback.extract_tb(error.__traceback__)
-    return not frames or Path(frames[-1].filename).resolve().parent.parent != Path(__file__).resolve().parent.parent
+    return (
+        not frames
+        or Path(frames[-1].filename).resolve().parent.parent != Path(__file__).resolve().parent.parent
+    )
 
 
 def limit_memory(extra: int) -> None:
-    """Let this process take at most so many bytes more than it has (where the system can say and limit it)."""
+    """Let this process take at most so many bytes more than it has, where the system can limit it."""
     try:
         import resource
     except ImportError:
@@ -186,4 +193,6 @@ def limit_memory(extra: int) -> None:
         return
     _, hard = resource.getrlimit(resource.RLIMIT_AS)
     limit = now + extra
-    resource.setrlimit(resource.RLIMIT_AS, (limit if hard == resource.RLIM_INFINITY else min(limit, hard), hard))
+    resource.setrlimit(
+        resource.RLIMIT_AS, (limit if hard == resource.RLIM_INFINITY else min(limit, hard), hard)
+    )

@@ -6,15 +6,15 @@ from collections.abc import Callable, Mapping
 from dataclasses import dataclass, field
 from typing import Any
 
-import sympy as sp
 from sympy import Expr
 
 from verify.derivation.budget import Worker
 from verify.derivation.claims import Derived, claims_steps
-from verify.derivation.factorisation_step import factorisation_step
 from verify.derivation.factorisation import Factorisation
+from verify.derivation.factorisation_step import factorisation_step
 from verify.derivation.family import LawFamily
 from verify.derivation.kernel import with_normaliser
+from verify.derivation.law_of_variance import CLOSED_FORMS
 from verify.derivation.law_step import law_step
 from verify.derivation.ledger import Grade, Step, weakest
 from verify.derivation.monotonicity import monotonicity_step
@@ -57,11 +57,9 @@ class Derivation:
 
     @property
     def grade(self) -> Grade:
-        """The weakest grade of all steps but the numerical look, which is a second opinion unless it fails."""
+        """The weakest grade of all steps; the numerical look, a second opinion, counts when it fails."""
         return weakest(
-            step.grade
-            for step in self.steps
-            if step.name != "numerical look" or step.grade is Grade.REFUTED
+            step.grade for step in self.steps if step.name != "numerical look" or step.grade is Grade.REFUTED
         )
 
     @property
@@ -107,14 +105,16 @@ def derive(
     n: int | None = None,
     budget: float = 10.0,
 ) -> Derivation:
-    """Show step by step that a density is a one-parameter exponential family, and which law its statistic has.
+    """Show step by step that a density is a one-parameter exponential family, and which law its statistic
+    has.
 
     Parameters
     ----------
     density : Density
         The density of one observation.
     limits : tuple of Exact
-        Limits of the hypothesis; where no symbolic proof of monotonicity is found, these are covered by balls.
+        Limits of the hypothesis; where no symbolic proof of monotonicity is found, these are covered by
+        balls.
     claim : mapping
         A colleague's ``natural_parameter``, ``statistic`` and ``law``, each optional.
     n : int
@@ -145,7 +145,7 @@ def derive(
         ledger = _Ledger(worker)
         ledger.run("support", support_step, density)
         if ledger.grades("support") is Grade.REFUTED:
-            return Derivation(density, None, None, None, None, None, None, tuple(ledger.steps))
+            return _finished(density, None, None, None, ledger.steps)
         ledger.run("nonnegativity", nonnegativity_step, density)
         found = _factorised(ledger, density)
         rising = family = None
@@ -155,14 +155,24 @@ def derive(
                 grade = ledger.grades("law")
                 derived = Derived(density, found.statistic, found.natural_parameter, family, grade, n)
                 ledger.run("claims", _claims, dict(claim), derived)
-    parts = (
-        (found.natural_parameter, found.statistic, found.log_normaliser, found.base) if found else (None,) * 4
-    )
-    return Derivation(density, *parts, rising, family, tuple(ledger.steps))
+    return _finished(density, found, rising, family, ledger.steps)
+
+
+def _finished(
+    density: Density,
+    found: Factorisation | None,
+    rising: bool | None,
+    family: LawFamily | None,
+    steps: list[Step],
+) -> Derivation:
+    if found is None:
+        return Derivation(density, None, None, None, None, rising, family, tuple(steps))
+    parts = found.natural_parameter, found.statistic, found.log_normaliser, found.base
+    return Derivation(density, *parts, rising, family, tuple(steps))
 
 
 def _factorised(ledger: _Ledger, density: Density) -> Factorisation | None:
-    """Normalisation and factorisation; a kernel is factorised before it is summed, the ledger keeps the order of the argument."""
+    """Normalisation and factorisation; a kernel is factorised before it is summed."""
     found: Factorisation | None = ledger.run("factorisation", factorisation_step, density)
     factorisation = ledger.steps.pop()
     if density.is_kernel:
@@ -178,13 +188,19 @@ def _law(
 ) -> tuple[bool | None, LawFamily | None]:
     points = parameter_points(density, limits)
     rising = ledger.run(
-        "monotonicity", monotonicity_step, found.natural_parameter, density.t, domain_of(density), points, limits
+        "monotonicity",
+        monotonicity_step,
+        found.natural_parameter,
+        density.t,
+        domain_of(density),
+        points,
+        limits,
     )
     leaning = ledger.grades("support", "nonnegativity", "normalisation", "factorisation")
     if leaning is Grade.REFUTED or ledger.grades("monotonicity") is Grade.REFUTED:
         return rising, None
     family = ledger.run("law", law_step, density, found, leaning)
-    if family is not None:
+    if family is not None and isinstance(family.law, CLOSED_FORMS):
         ledger.run("numerical look", numerical_look, density, found.statistic, family, points[0])
     return rising, family
 

@@ -1,7 +1,8 @@
-"""Is a density of the form h(x) exp(Q(t) T(x) - A(t))? The rank-one test, the plain T and Q, and the identity.
+"""Is a density of the form h(x) exp(Q(t) T(x) - A(t))? The rank-one test, the plain T and Q, and the
+identity.
 
-With ``L = log f`` and ``D(x, t) = L(x, t) - L(x0, t) - L(x, t0) + L(x0, t0)`` the family is one-parameter exponential
-exactly when D has rank one: ``D(x, t) D(x1, t1) = D(x1, t) D(x, t1)``.
+With ``L = log f`` and ``D(x, t) = L(x, t) - L(x0, t) - L(x, t0) + L(x0, t0)`` the family is one-parameter
+exponential exactly when D has rank one: ``D(x, t) D(x1, t1) = D(x1, t) D(x, t1)``.
 
 Source: Lehmann and Romano 2005, section 2.7; the rank-one test: if L = log h + Q T - A then
 D = (Q(t) - Q(t0)) (T(x) - T(x0)), and conversely a rank-one D gives L = D + L(x0, t) + L(x, t0) - L(x0, t0).
@@ -36,8 +37,11 @@ class Factorisation:
         return sp.exp(self.log_base)
 
 
-def factorise(expr: Expr, x: Symbol, t: Symbol, domain: Domain, points: tuple[Expr, Expr]) -> Factorisation | None:
-    """Return the factorisation of a density that multiplying out its logarithm shows, proved as an identity, or None.
+def factorise(
+    expr: Expr, x: Symbol, t: Symbol, domain: Domain, points: tuple[Expr, Expr]
+) -> Factorisation | None:
+    """Return the factorisation of a density that multiplying out its logarithm shows, proved as an
+    identity, or None.
 
     Parameters
     ----------
@@ -67,7 +71,8 @@ def factorise_by_difference(
 ) -> Factorisation | None:
     """Return the factorisation that D(x, t1) and D(x1, t) suggest, proved by general simplification, or None.
 
-    For densities whose logarithm resists multiplying out; slow, so run it under a budget. Parameters as in :func:`factorise`.
+    For densities whose logarithm resists multiplying out; slow, so run it under a budget. Parameters as in
+    :func:`factorise`.
     """
     logarithm = log_absolute(expr, domain)
     pair = _rank_one_by_difference(logarithm, x, t, points)
@@ -81,7 +86,9 @@ def _rank_one(parts: Separated, t: Symbol, t0: Expr) -> tuple[Expr, Expr] | None
     (first, lead), *others = parts.products.items()
     statistic = first
     for part, coefficient in others:
-        ratio = is_constant(normal((coefficient - coefficient.subs(t, t0)) / (lead - lead.subs(t, t0))), t, thorough=False)
+        ratio = is_constant(
+            normal((coefficient - coefficient.subs(t, t0)) / (lead - lead.subs(t, t0))), t, thorough=False
+        )
         if ratio is None:
             return None
         statistic += ratio * part
@@ -94,7 +101,10 @@ def _rank_one_by_difference(
     """T(x) ~ D(x, t1) and Q(t) ~ D(x1, t), when the terms could not be parted by multiplying out."""
     x0, t0 = points
     difference = (
-        logarithm - logarithm.subs(x, x0) - logarithm.subs(t, t0) + logarithm.subs({x: x0, t: t0}, simultaneous=True)
+        logarithm
+        - logarithm.subs(x, x0)
+        - logarithm.subs(t, t0)
+        + logarithm.subs({x: x0, t: t0}, simultaneous=True)
     )
     for t1 in (t0 + 1, t0 / 2, t0 / 3):
         statistic = difference.subs(t, t1)
@@ -111,7 +121,7 @@ def _rank_one_by_difference(
 def _identity(
     logarithm: Expr, statistic: Expr, natural: Expr, x: Symbol, t: Symbol, domain: Domain
 ) -> Factorisation | None:
-    """Prove log f = log h + Q T - A for the chosen Q and T by parting the difference; None when it resists."""
+    """Prove log f = log h + Q T - A for the chosen Q and T by parting the difference, or return None."""
     product = sp.expand(_opened(natural, domain) * _opened(statistic, domain))
     rest = separate(sp.expand(logarithm) - product, x, t)
     if any(not is_zero(coefficient) for coefficient in rest.products.values()) or not is_zero(rest.tangled):

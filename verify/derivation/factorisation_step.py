@@ -9,16 +9,18 @@ from verify.derivation.witness import rank_witness
 from verify.errors import SidecheckError
 from verify.problem.density import Density
 
-REASON = "log f is parted into a function of x, a function of the parameter, and one product; an identity of both sides"
+REASON = "log f is parted into a function of x, a function of the parameter, and one product"
 
 
 def factorisation_step(density: Density) -> tuple[Step, Factorisation | None]:
-    """Return the step ``factorisation`` and the parts of ``h(x) exp(Q T - A)`` when the identity was proved."""
+    """Return the step ``factorisation``, and the parts of ``h(x) exp(Q T - A)`` when that was proved."""
     x, t, domain = density.x, density.t, domain_of(density)
     xs, ts = support_points(density.parsed_support), parameter_points(density)
     if not density.expr.has(t):
         statement = f"the density does not depend on the parameter {t}"
-        return Step("factorisation", Grade.REFUTED, statement, "", f"{t} does not occur in {density.expr}"), None
+        return Step(
+            "factorisation", Grade.REFUTED, statement, "", f"{t} does not occur in {density.expr}"
+        ), None
     found = factorise(density.expr, x, t, domain, (xs[0], ts[0]))
     if found is not None:
         return _proved(density, found)
@@ -28,13 +30,17 @@ def factorisation_step(density: Density) -> tuple[Step, Factorisation | None]:
     except (SidecheckError, ArithmeticError) as error:
         witness, searched = "", f"no witness could be looked for: {error}"
     if witness:
-        statement = "the density is not a one-parameter exponential family: D(x,t) D(x1,t1) = D(x1,t) D(x,t1) fails"
+        statement = (
+            "the density is not a one-parameter exponential family: D(x,t) D(x1,t1) = D(x1,t) D(x,t1) fails"
+        )
         return Step("factorisation", Grade.REFUTED, statement, "certain in ball arithmetic", witness), None
     found = factorise_by_difference(density.expr, x, t, domain, (xs[0], ts[0]))
     if found is not None:
         return _proved(density, found)
     statement = "whether the density is a one-parameter exponential family stayed open"
-    return Step("factorisation", Grade.UNDECIDED, statement, f"no form h(x) exp(Q T - A) was found, and {searched}"), None
+    return Step(
+        "factorisation", Grade.UNDECIDED, statement, f"no form h(x) exp(Q T - A) was found, and {searched}"
+    ), None
 
 
 def _proved(density: Density, found: Factorisation) -> tuple[Step, Factorisation]:

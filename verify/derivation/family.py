@@ -5,7 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import Any
 
-from sympy import Expr, Symbol
+from sympy import Symbol
 
 from verify.laws.base import Law
 from verify.problem.numbers import Exact, as_exact, as_expr, exact_text
@@ -13,7 +13,8 @@ from verify.problem.numbers import Exact, as_exact, as_expr, exact_text
 
 @dataclass(frozen=True)
 class LawFamily:
-    """``T = scale * Y + shift`` with Y of a named law whose parameters are functions of the family's parameter.
+    """``T = scale * Y + shift`` with Y of a named law whose parameters are functions of the family's
+    parameter.
 
     Attributes
     ----------
@@ -48,11 +49,9 @@ class LawFamily:
 
         return self.law.map_parameters(put).sum_of(n)
 
-    def text(self, statistic: Expr | str = "T", n: Any = 1) -> str:
+    def text(self, n: Any = 1) -> str:
         """Return the law of V = sum of T over n observations as a line to read."""
-        total = self.law.sum_of(n)
-        inside = ", ".join(f"{name} = {value}" for name, value in total.parameters.items())
-        law = f"{total.name}({inside})"
+        law = str(self.law.sum_of(n))
         scale, shift = as_expr(self.scale), as_expr(self.shift) * n
         if (scale, shift) == (1, 0):
             return law

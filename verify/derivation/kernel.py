@@ -32,16 +32,22 @@ PRECISION = 256
 
 
 def with_normaliser(density: Density, found: Factorisation | None) -> tuple[Step, Factorisation | None]:
-    """Return the step ``normalisation`` of a kernel and its factorisation with the sum in the log normaliser."""
+    """Return the step ``normalisation`` of a kernel, and its factorisation with log(sum) put into A."""
     t, count = density.t, len(density.parsed_support.points)
     if not _somewhere_positive(density):
         statement = f"whether the sum of the kernel is positive for every {t} stayed open"
         return Step("normalisation", Grade.UNDECIDED, statement), None
-    statement = f"the normaliser is the sum of the kernel over {count} points, finite and positive for every {t}"
-    step = Step("normalisation", Grade.PROVED, statement, "a finite sum of non-negative terms, one of them positive")
+    statement = (
+        f"the normaliser is the sum of the kernel over {count} points, finite and positive for every {t}"
+    )
+    step = Step(
+        "normalisation", Grade.PROVED, statement, "a finite sum of non-negative terms, one of them positive"
+    )
     if found is None:
         return step, None
-    total = written_out(density) if count <= WRITTEN_OUT else sp.Sum(density.expr, (density.x, *_ends(density)))
+    total = (
+        written_out(density) if count <= WRITTEN_OUT else sp.Sum(density.expr, (density.x, *_ends(density)))
+    )
     return step, replace(found, log_normaliser=found.log_normaliser + sp.log(total))
 
 
@@ -56,14 +62,17 @@ def _somewhere_positive(density: Density) -> bool:
 
 def written_out(density: Density) -> Expr:
     """Return the sum of a kernel over its support, written out and factored."""
-    return sp.factor(normal(sp.Add(*(mass_at(density, sp.Integer(k)) for k in density.parsed_support.points))))
+    return sp.factor(
+        normal(sp.Add(*(mass_at(density, sp.Integer(k)) for k in density.parsed_support.points)))
+    )
 
 
 def kernel_certainly_another(density: Density, statistic: Expr, points: Sequence[Expr]) -> bool:
-    """Tell whether the variance function of a kernel is certainly neither quadratic nor a cube, from its moments in balls.
+    """Tell whether the variance function of a kernel is certainly neither quadratic nor a cube, from its
+    moments in balls.
 
-    With central moments as cumulants K2..K5: v2 = (K4 K2 - K3**2)/(2 K2**3), and the cubic coefficient is its derivative
-    along the mean divided by 3.
+    With central moments as cumulants K2..K5: v2 = (K4 K2 - K3**2)/(2 K2**3), and the cubic coefficient is
+    its derivative along the mean divided by 3.
     """
     places = [sp.Integer(k) for k in density.parsed_support.points]
     masses = [mass_at(density, place) for place in places]
@@ -81,7 +90,8 @@ def _coefficients(A: Any, masses: list[Expr], values: list[Any], name: str, t: A
     total = _sum(weights)
     mean = _sum(w * v for w, v in zip(weights, values, strict=True)) / total
     k2, k3, m4, m5 = (
-        _sum(w * A.power(v - mean, k) for w, v in zip(weights, values, strict=True)) / total for k in (2, 3, 4, 5)
+        _sum(w * A.power(v - mean, k) for w, v in zip(weights, values, strict=True)) / total
+        for k in (2, 3, 4, 5)
     )
     k4, k5 = m4 - 3 * k2 * k2, m5 - 10 * k3 * k2
     v2 = (k4 * k2 - k3 * k3) / (2 * k2 * k2 * k2)

@@ -35,6 +35,9 @@ from verify.laws.normal import Normal
 from verify.laws.poisson import Poisson
 from verify.problem.numbers import as_exact
 
+CLOSED_FORMS = (Poisson, Binomial, NegativeBinomial, Gamma, Normal, InverseGaussian)
+"""The laws that the table names."""
+
 
 @dataclass(frozen=True)
 class Named:
@@ -50,7 +53,8 @@ def name_law(variance: Quadratic | Cube, t: Symbol, domain: Domain) -> Named:
     Examples
     --------
     >>> t = sp.Symbol("t", positive=True)
-    >>> law = name_law(Quadratic(t, sp.Integer(0), sp.Integer(1), sp.Integer(0)), t, Domain({t: (sp.Integer(0), sp.oo)}))
+    >>> variance = Quadratic(mean=t, v0=sp.Integer(0), v1=sp.Integer(1), v2=sp.Integer(0))
+    >>> law = name_law(variance, t, Domain({t: (sp.Integer(0), sp.oo)}))
     >>> str(law.family), law.word
     ('Poisson(mean = t)', 'Poisson')
     """

@@ -4,7 +4,6 @@ from __future__ import annotations
 
 from sympy import Expr, Sum, Symbol
 
-from verify.derivation.variance_numbers import certainly_another
 from verify.derivation.factorisation import Factorisation
 from verify.derivation.family import LawFamily
 from verify.derivation.kernel import kernel_certainly_another, written_out
@@ -12,6 +11,7 @@ from verify.derivation.law_of_variance import name_law
 from verify.derivation.ledger import Grade, Step
 from verify.derivation.points import domain_of, parameter_points
 from verify.derivation.variance_function import Cube, Quadratic, variance_function
+from verify.derivation.variance_numbers import certainly_another
 from verify.problem.density import Density
 
 SECANT = "generalised hyperbolic secant"
@@ -29,8 +29,12 @@ def law_step(density: Density, found: Factorisation, leaning: Grade) -> tuple[St
     """
     t, points = density.t, parameter_points(density)
     if _certainly_another(density, found, points[1:4]):
-        statement = "the variance function of T is neither quadratic nor a cube, so that no law in closed form is named"
-        return general_law(density, found, Step("law", leaning, statement, "certain in ball arithmetic; Morris 1982"))
+        statement = (
+            "the variance function of T is neither quadratic nor a cube: no law in closed form is named"
+        )
+        return general_law(
+            density, found, Step("law", leaning, statement, "certain in ball arithmetic; Morris 1982")
+        )
     variance = variance_function(_written_out(density, found), found.natural_parameter, t)
     if variance is None:
         statement = "whether the variance function of T is quadratic or a cube stayed open"

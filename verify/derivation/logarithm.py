@@ -1,7 +1,8 @@
 """The logarithm of a density, expanded without a branch mistake.
 
-``log |a b| = log |a| + log |b|`` and ``log |a**e| = e log |a|`` (e real) hold for all real a, b other than 0, so the
-expansion is of log of the absolute value; for a density the two are the same once it is shown non-negative.
+``log |a b| = log |a| + log |b|`` and ``log |a**e| = e log |a|`` (e real) hold for all real a, b other than
+0, so the expansion is of log of the absolute value; for a density the two are the same once it is shown
+non-negative.
 """
 
 from __future__ import annotations
@@ -79,7 +80,7 @@ def combine_logs(expr: sp.Expr) -> sp.Expr:
             rest.append(term)
     combined = [size * sp.log(sp.Mul(*arguments)) for size, arguments in groups.items()]
     if len(combined) == 1 and not rest and len(groups) == 1:
-        (size, arguments), = groups.items()
+        ((size, arguments),) = groups.items()
         if sp.Mul(*arguments).as_numer_denom()[0] == 1:
             return -size * sp.log(1 / sp.Mul(*arguments))
     return sp.Add(*combined, *rest)

@@ -32,7 +32,8 @@ LAWS: dict[str, tuple[tuple[str, ...], Builder]] = {
     "normal": (("mean", "variance"), Normal),
     "inversegaussian": (("mean", "shape"), InverseGaussian),
 }
-"""Name without blanks and hyphens -> names of its parameters in order, and what builds it. Geometric counts failures from 0."""
+"""Name without blanks and hyphens -> names of its parameters in order, and what builds it. Geometric counts
+failures from 0."""
 
 OTHER_NAMES: dict[str, tuple[str, Callable[[Expr], Expr]]] = {
     "scale": ("rate", lambda value: 1 / value),
@@ -48,8 +49,8 @@ def read_law(text: str, symbols: Mapping[str, Expr], key: str = "claim.law") -> 
     Parameters
     ----------
     text : str
-        Name and parameters; positional in the order of ``LAWS``, or by name (``scale`` for 1/rate, ``sd`` for the root of
-        the variance).
+        Name and parameters; positional in the order of ``LAWS``, or by name (``scale`` for 1/rate, ``sd``
+        for the root of the variance).
     symbols : mapping
         What the parameters may mention.
 
@@ -67,7 +68,11 @@ def read_law(text: str, symbols: Mapping[str, Expr], key: str = "claim.law") -> 
     match = re.fullmatch(r"\s*([A-Za-z][A-Za-z _-]*?)\s*\((.*)\)\s*", text, re.DOTALL)
     name = re.sub(r"[ _-]", "", match.group(1)).lower() if match else ""
     if match is None or name not in LAWS:
-        raise InputError(f"{text!r} names no law known here", 'write e.g. "Poisson(10*lam)" or "Gamma(shape, rate)"', key=key)
+        raise InputError(
+            f"{text!r} names no law known here",
+            'write e.g. "Poisson(10*lam)" or "Gamma(shape, rate)"',
+            key=key,
+        )
     names, build = LAWS[name]
     given: dict[str, Expr] = {}
     for place, part in enumerate(_split(match.group(2))):
@@ -75,10 +80,16 @@ def read_law(text: str, symbols: Mapping[str, Expr], key: str = "claim.law") -> 
         slot = label.strip() if equals else (names[place] if place < len(names) else "")
         slot, change = OTHER_NAMES.get(slot, (slot, lambda value: value))
         if slot not in names or slot in given:
-            raise InputError(f"{text!r} has parameters that do not fit", f"{match.group(1)} takes {', '.join(names)}", key=key)
+            raise InputError(
+                f"{text!r} has parameters that do not fit",
+                f"{match.group(1)} takes {', '.join(names)}",
+                key=key,
+            )
         given[slot] = change(parse_formula(body if equals else part, symbols, key))
     if len(given) != len(names):
-        raise InputError(f"{text!r} has too few parameters", f"{match.group(1)} takes {', '.join(names)}", key=key)
+        raise InputError(
+            f"{text!r} has too few parameters", f"{match.group(1)} takes {', '.join(names)}", key=key
+        )
     return build(*(given[slot] for slot in names))
 
 

@@ -1,4 +1,4 @@
-"""An independent look at the law of V: the convolution of the density itself against the named law, at a few points."""
+"""An independent look: the convolution of the density itself against the named law, at a few points."""
 
 from __future__ import annotations
 
@@ -53,15 +53,21 @@ def numerical_look(density: Density, statistic: Expr, family: LawFamily, at: Exp
     found = look(density, statistic, family, at, value)
     where = f"{density.t} = {at}"
     if found is None:
-        return Step("numerical look", Grade.UNDECIDED, f"no look at the law at {where} was possible", "T has no simple inverse")
+        return Step(
+            "numerical look",
+            Grade.UNDECIDED,
+            f"no look at the law at {where} was possible",
+            "T has no simple inverse",
+        )
     digits, number, place = found
+    law = family.at(value, number)
     if digits < 0:
-        statement = f"the convolution of f differs from {family.at(value, number)} at {where}"
+        statement = f"the convolution of f differs from {law} at {where}"
         return Step("numerical look", Grade.REFUTED, statement, "finite sums in ball arithmetic", place)
     if digits >= ENOUGH:
-        statement = f"the {number}-fold convolution of f agrees with {family.at(value, number)} to {digits} digits at {where}"
+        statement = f"the {number}-fold convolution of f agrees with {law} to {digits} digits at {where}"
         return Step("numerical look", Grade.CHECKED, statement, place)
-    statement = f"the {number}-fold convolution of f agrees with {family.at(value, number)} to {digits} digits only at {where}"
+    statement = f"the {number}-fold convolution of f agrees with {law} to {digits} digits only at {where}"
     return Step("numerical look", Grade.UNDECIDED, statement, place)
 
 
@@ -73,7 +79,9 @@ def _agreement(difference: Any, size: Any) -> int:
     return 0
 
 
-def _lattice(density: Density, statistic: Expr, family: LawFamily, at: Expr, value: Any) -> tuple[int, int, str] | None:
+def _lattice(
+    density: Density, statistic: Expr, family: LawFamily, at: Expr, value: Any
+) -> tuple[int, int, str] | None:
     """Finite sums in ball arithmetic: every way to write v as a sum of two or three values of Y."""
     xs = support_points(density.parsed_support, ALL_POINTS if density.is_kernel else POINTS)
     places = [(statistic.subs(density.x, x) - as_expr(family.shift)) / as_expr(family.scale) for x in xs]
@@ -98,7 +106,11 @@ def _lattice(density: Density, statistic: Expr, family: LawFamily, at: Expr, val
                 if sign_of_ball(table[v] - mass):
                     return -1, number, f"the mass at {v} on the scale of Y, n = {number}"
                 worst = min(worst, _agreement(table[v] - mass, mass))
-    return worst, 3, f"in ball arithmetic, at V = {', '.join(map(str, sorted(table)[:6]))} on the scale of Y, n = 2 and 3"
+    return (
+        worst,
+        3,
+        f"in ball arithmetic, at V = {', '.join(map(str, sorted(table)[:6]))} on the scale of Y, n = 2 and 3",
+    )
 
 
 def _convolved(left: dict[int, Any], right: dict[int, Any], A: Any) -> dict[int, Any]:
@@ -113,7 +125,7 @@ def _convolved(left: dict[int, Any], right: dict[int, Any], A: Any) -> dict[int,
 def _continuous(
     density: Density, statistic: Expr, family: LawFamily, at: Expr, value: Any
 ) -> tuple[int, int, str] | None:
-    """The integral of g(y) g(v - y) by double-exponential quadrature, g the density of Y made from f by its branches."""
+    """The integral of g(y) g(v - y) by quadrature, with g the density of Y made from f by its branches."""
     A = high(DIGITS)
     g = _density_of_y(density, statistic, family, at, A)
     if g is None:
@@ -124,14 +136,18 @@ def _continuous(
     for share in (Fraction(-1, 2), Fraction(3, 4)):
         v = centre + A.real(share) * spread
         if one.support[0] is None:
-            found = 2 * integral_below(A, lambda y, v=v: g(y) * g(v - y), v / 2)
+            found = 2 * integral_below(A, _product(g, v), v / 2)
         else:
             v = centre * A.exp(A.real(share))
-            found = 2 * integral_from_zero(A, lambda y, v=v: g(y) * g(v - y), v / 2)
+            found = 2 * integral_from_zero(A, _product(g, v), v / 2)
         wanted = two.density(A, v)
         worst = min(worst, _agreement(found - wanted, wanted))
         shown.append(str(v)[:8])
     return worst, 2, f"by double-exponential quadrature at V = {', '.join(shown)} on the scale of Y, n = 2"
+
+
+def _product(g: Callable[[Any], Any], v: Any) -> Callable[[Any], Any]:
+    return lambda y: g(y) * g(v - y)
 
 
 def _density_of_y(

@@ -1,6 +1,7 @@
 """Choose the plain statistic and natural parameter among all that differ by scale and shift.
 
-``Q T = (c Q)(T/c)`` and ``Q T = Q (T - a) + a Q``: scale and shift are free, so T = x is preferred to T = 3 - 2 x.
+``Q T = (c Q)(T/c)`` and ``Q T = Q (T - a) + a Q``: scale and shift are free, so T = x is preferred to T = 3
+- 2 x.
 """
 
 from __future__ import annotations

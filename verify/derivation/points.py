@@ -25,8 +25,8 @@ def support_points(support: Support, count: int = 6) -> list[Expr]:
     if support.kind == "reals":
         return list(islice(points_inside((support.lower, support.upper)), count))
     if support.lower.is_finite:
-        points = [support.lower + k for k in range(count)]
-        return [point for point in points if not (point > support.upper) == True]  # noqa: E712
+        points = (support.lower + k for k in range(count))
+        return [point for point in points if bool(point <= support.upper)]
     if support.upper.is_finite:
         return [support.upper - k for k in range(count)]
     return [sp.Integer((k + 1) // 2 * (-1) ** k) for k in range(count)]
@@ -49,7 +49,7 @@ def domain_of(density: Density) -> Domain:
 
 
 def mass_at(density: Density, point: Expr) -> Expr:
-    """Return the density or kernel at one point of the support, a function of the parameter; a table is looked up."""
+    """Return the density or kernel at one point of the support, looked up where there is a table."""
     if density.table is None:
         return density.expr.subs(density.x, point)
     weight = density.table[int(point - density.parsed_support.lower)]

@@ -1,6 +1,7 @@
 """Double-exponential quadrature in any arithmetic, for numerical looks only: it encloses nothing.
 
-Source: H. Takahasi and M. Mori, "Double exponential formulas for numerical integration", Publ. RIMS 9 (1974) 721-741.
+Source: H. Takahasi and M. Mori, "Double exponential formulas for numerical integration", Publ. RIMS 9
+(1974) 721-741.
 """
 
 from __future__ import annotations
@@ -31,7 +32,8 @@ def integral_from_zero(A: Any, f: Integrand, end: Any, step: Fraction = Fraction
 
 
 def integral_below(A: Any, f: Integrand, end: Any, step: Fraction = Fraction(1, 24)) -> Any:
-    """Return the integral of f over (-oo, end), for an f that falls off like a normal density and is smooth up to the end.
+    """Return the integral of f over (-oo, end), for an f that falls off like a normal density and is smooth
+    up to the end.
 
     Examples
     --------

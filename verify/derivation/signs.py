@@ -1,10 +1,11 @@
 """The sign of an expression on a whole region, proved, or 0.
 
-The algebra system's own monotonicity questions are not used. An expression is factored; the sign of a factor is proved
-by structure (:mod:`verify.derivation.positivity`) or, for a polynomial with rational coefficients in one symbol, by
-counting its real roots.
+The algebra system's own monotonicity questions are not used. An expression is factored; the sign of a
+factor is proved by structure (:mod:`verify.derivation.positivity`) or, for a polynomial with rational
+coefficients in one symbol, by counting its real roots.
 
-Source: Sturm's theorem, as in Basu, Pollack and Roy, *Algorithms in Real Algebraic Geometry* (2006), Theorem 2.50.
+Source: Sturm's theorem, as in Basu, Pollack and Roy, *Algorithms in Real Algebraic Geometry* (2006),
+Theorem 2.50.
 """
 
 from __future__ import annotations

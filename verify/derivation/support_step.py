@@ -21,7 +21,12 @@ def support_step(density: Density) -> Step:
             "support",
             Grade.REFUTED,
             f"the support {support.text} depends on {t}",
-            "the law of the data is not dominated by one measure that is free of the parameter (Lehmann and Romano 2005, 2.7)",
-            f"its end {end} is {end.subs(t, first)} at {t} = {first} and {end.subs(t, second)} at {t} = {second}",
+            "all laws of an exponential family have one support (Lehmann and Romano 2005, section 2.7)",
+            f"its end {end} is {end.subs(t, first)} at {first} and {end.subs(t, second)} at {second}",
         )
-    return Step("support", Grade.PROVED, f"the support {support.text} does not depend on {t}", "its ends are free of the parameter")
+    return Step(
+        "support",
+        Grade.PROVED,
+        f"the support {support.text} does not depend on {t}",
+        "its ends are free of the parameter",
+    )

@@ -1,10 +1,10 @@
 """The variance function of the statistic's family, from the cumulants, without inverting the mean map.
 
-With d/d eta = (1/Q'(t)) d/dt: K1 = dA, K2 = dK1, K3 = dK2; then V'(mean) = K3/K2, V''(mean)/2 = d(K3/K2)/(2 K2) = v2 and
-V'''(mean)/6 = d(v2)/(3 K2).
+With d/d eta = (1/Q'(t)) d/dt: K1 = dA, K2 = dK1, K3 = dK2; then V'(mean) = K3/K2, V''(mean)/2 = d(K3/K2)/(2
+K2) = v2 and V'''(mean)/6 = d(v2)/(3 K2).
 
-Source: Morris 1982, section 2 (a natural exponential family is determined by its variance function on an interval);
-Letac and Mora 1990 (the cubic case). The chain rule through Q is a short derivation.
+Source: Morris 1982, section 2 (a natural exponential family is determined by its variance function on an
+interval); Letac and Mora 1990 (the cubic case). The chain rule through Q is a short derivation.
 """
 
 from __future__ import annotations
@@ -37,7 +37,8 @@ class Cube:
 
 
 def variance_function(log_normaliser: Expr, natural: Expr, t: Symbol) -> Quadratic | Cube | None:
-    """Return the variance function when it is proved to be quadratic or c (m - b)**3; None when that was not proved.
+    """Return the variance function when it is proved to be quadratic or c (m - b)**3; None when that was
+    not proved.
 
     Parameters
     ----------
@@ -82,6 +83,8 @@ def _cube(k1: Expr, k2: Expr, first: Expr, half: Expr, third: Expr, t: Symbol) -
     root = is_constant(k1 - half / (3 * c), t)
     if root is None:
         return None
-    if any(is_constant(rest, t) != 0 for rest in (first - 3 * c * (k1 - root) ** 2, k2 - c * (k1 - root) ** 3)):
+    if any(
+        is_constant(rest, t) != 0 for rest in (first - 3 * c * (k1 - root) ** 2, k2 - c * (k1 - root) ** 3)
+    ):
         return None
     return Cube(k1, c, root)

@@ -1,8 +1,8 @@
 """Numbers that tell quickly that a variance function is neither quadratic nor a cube, in ball arithmetic.
 
-The derivatives of A and Q at a point give the first terms of their Taylor series; K1 = A'/Q', K2 = K1'/Q', ... are then
-truncated power series, and v2 and the cubic coefficient are numbers. Where they certainly differ between two points,
-no algebra is needed to know that they are not constant.
+The derivatives of A and Q at a point give the first terms of their Taylor series; K1 = A'/Q', K2 = K1'/Q',
+... are then truncated power series, and v2 and the cubic coefficient are numbers. Where they certainly
+differ between two points, no algebra is needed to know that they are not constant.
 """
 
 from __future__ import annotations

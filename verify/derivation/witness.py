@@ -1,4 +1,4 @@
-"""A witness that a density is not of one-parameter exponential form: four numbers, and a difference that is certain."""
+"""A witness that a density is not of one-parameter exponential form: numbers with a certain difference."""
 
 from __future__ import annotations
 
@@ -16,7 +16,8 @@ PRECISION = 192
 
 
 def rank_witness(expr: Expr, x: Symbol, t: Symbol, xs: Sequence[Expr], ts: Sequence[Expr]) -> str:
-    """Return a text with x, x1, t, t1 at which ``D(x,t) D(x1,t1)`` and ``D(x1,t) D(x,t1)`` certainly differ, or "".
+    """Return a text with x, x1, t, t1 at which ``D(x,t) D(x1,t1)`` and ``D(x1,t) D(x,t1)`` certainly
+    differ, or "".
 
     Parameters
     ----------
@@ -36,13 +37,17 @@ def rank_witness(expr: Expr, x: Symbol, t: Symbol, xs: Sequence[Expr], ts: Seque
     """
     with balls(PRECISION) as A:
         table = [[_log_at(expr, A, {x.name: A.real(a), t.name: A.real(b)}) for b in ts] for a in xs]
-        d = [[table[i][j] - table[0][j] - table[i][0] + table[0][0] for j in range(len(ts))] for i in range(len(xs))]
+        d = [
+            [table[i][j] - table[0][j] - table[i][0] + table[0][0] for j in range(len(ts))]
+            for i in range(len(xs))
+        ]
         for i, i1 in combinations(range(1, len(xs)), 2):
             for j, j1 in combinations(range(1, len(ts)), 2):
                 left, right = d[i][j] * d[i1][j1], d[i1][j] * d[i][j1]
                 if sign_of_ball(left - right):
                     return (
-                        f"x = {xs[i]}, x1 = {xs[i1]}, t = {ts[j]}, t1 = {ts[j1]} (with x0 = {xs[0]}, t0 = {ts[0]}): "
+                        f"x = {xs[i]}, x1 = {xs[i1]}, t = {ts[j]}, t1 = {ts[j1]} "
+                        f"(with x0 = {xs[0]}, t0 = {ts[0]}): "
                         f"D(x,t) D(x1,t1) = {_text(left)} but D(x1,t) D(x,t1) = {_text(right)}"
                     )
     return ""

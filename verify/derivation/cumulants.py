@@ -1,0 +1,24 @@
+"""Mean and variance of the statistic from the log normaliser."""
+
+from __future__ import annotations
+
+import sympy as sp
+from sympy import Expr, Symbol
+
+from verify.derivation.zero import normal
+
+
+def cumulants(log_normaliser: Expr, natural: Expr, t: Symbol) -> tuple[Expr, Expr]:
+    """Return the first two cumulants of T: with d/d eta = (1/Q'(t)) d/dt, the mean dA and the variance d(dA).
+
+    Source: Lehmann and Romano 2005, section 2.7 (derivatives of the log normaliser in the natural parameter).
+
+    Examples
+    --------
+    >>> t = Symbol("t", positive=True)
+    >>> cumulants(-sp.log(t), -t, t)
+    (1/t, t**(-2))
+    """
+    slope = sp.diff(natural, t)
+    mean = normal(sp.diff(log_normaliser, t) / slope)
+    return mean, normal(sp.diff(mean, t) / slope)
