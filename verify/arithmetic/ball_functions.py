@@ -5,7 +5,7 @@ from __future__ import annotations
 from collections.abc import Callable
 from typing import Any
 
-from flint import arb
+from flint import acb, arb, arb_series, ctx
 
 Ball = Any
 
@@ -20,6 +20,21 @@ def _binomial(n: Ball, k: Ball) -> Ball:
 
 def _zeta(s: Ball, a: Ball | None = None) -> Ball:
     return s.zeta() if a is None else s.zeta(a)
+
+
+def _polygamma(m: Ball, x: Ball) -> Ball:
+    return acb(x).polygamma(acb(m)).real
+
+
+def _zeta_derivative(k: Ball, s: Ball) -> Ball:
+    """K-th derivative of zeta at s: k! times a Taylor coefficient."""
+    order = int(k.unique_fmpz())
+    kept = ctx.cap
+    ctx.cap = order + 1
+    try:
+        return arb_series([s, 1], order + 1).zeta()[order] * arb.fac_ui(order)
+    finally:
+        ctx.cap = kept
 
 
 def _sign(x: Ball) -> Ball:
@@ -43,6 +58,8 @@ REAL_FUNCTIONS: dict[str, Callable[..., Ball]] = {
     "besselk": lambda nu, z: z.bessel_k(nu),
     "bessely": lambda nu, z: z.bessel_y(nu),
     "zeta": _zeta,
+    "zeta_derivative": _zeta_derivative,
+    "polygamma": _polygamma,
     "erf": lambda x: x.erf(),
     "erfc": lambda x: x.erfc(),
     "floor": lambda x: x.floor(),

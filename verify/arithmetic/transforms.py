@@ -1,0 +1,272 @@
+"""Transforms of one observation whose size is known in a half-plane, so that their inversion can be cut with proof.
+
+With N(z) = integral of h exp(z T) (the exponential of the log normaliser at the natural parameter z), each class here writes N(z)**n
+in the upper half-plane as a sum of terms, the term with rate r growing like exp(r Re z). On a ray Im z = H to the left
+(or right) a term with r > v (or r < v) makes N(z)**n exp(-z v) fall exponentially. ``bound`` proves how small it is beyond a point:
+|term at z| <= bound(...) * exp(r Re z) for all z further out on the ray.
+
+Constant factors of N are left out everywhere: they cancel, because laws only need N(z) / N(eta).
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable, Iterable
+from dataclasses import dataclass, field
+from math import comb
+from typing import Any
+
+from flint import acb, arb
+
+from verify.arithmetic.ball import Balls, balls
+
+ComplexBall = Any
+Cache = dict[Any, Any]
+
+REMEMBERED = 50_000
+"""Function values kept: integrals along one path at many points v meet the same nodes."""
+
+
+def _remembered(cache: Cache, z: ComplexBall, prec: int, compute: Callable[[ComplexBall], Any]) -> Any:
+    """Return ``compute`` at the midpoint of a ball, which is exact."""
+    middle = z.mid()
+    (m, e), (k, f) = middle.real.man_exp(), middle.imag.man_exp()
+    key = prec, int(m), int(e), int(k), int(f)
+    if key not in cache:
+        if len(cache) >= REMEMBERED:
+            cache.clear()
+        cache[key] = compute(middle)
+    return cache[key]
+
+
+class Transform:
+    """A transform N(z), and how N(z)**n splits into terms in the upper half-plane."""
+
+    def domain(self) -> tuple[Any, Any]:
+        """Real interval on which N is finite, None for an infinite end."""
+        return None, None
+
+    def value(self, A: Balls, z: ComplexBall, analytic: bool) -> ComplexBall:
+        """N(z) off the cuts of the formula."""
+        raise NotImplementedError
+
+    def size(self, A: Balls, z: ComplexBall) -> Any:
+        """Bound of |N| over a ball: |N(z)| <= N(Re z), which is convex, so its ends decide."""
+        low, high = z.real.lower(), z.real.upper()
+        ends = [self.value(A, acb(x), False).real for x in (low, high)]
+        if not all(end > 0 for end in ends):
+            return arb("nan")
+        return ends[0].max(ends[1]).upper()
+
+    def rates(self, A: Balls, n: int) -> list[Any]:
+        """Rate of each term of N(z)**n; empty where N falls exponentially on vertical lines."""
+        raise NotImplementedError
+
+    def term_size(self, A: Balls, z: ComplexBall, n: int, which: int) -> Any:
+        """Bound of |term| exp(-rate Re z) over a ball in the upper half-plane (not finite: none is known)."""
+        raise NotImplementedError
+
+    def terms(self, A: Balls, z: ComplexBall, n: int, which: Iterable[int]) -> ComplexBall:
+        """Sum of some of the terms at z."""
+        raise NotImplementedError
+
+    def bound(self, A: Balls, n: int, which: int, x: Any, height: Any) -> Any:
+        """Bound of |term| exp(-rate Re z) for all Im z = height and Re z beyond x (on the side of x's sign)."""
+        raise NotImplementedError
+
+    def vertical_bound(self, A: Balls, n: int, height: Any) -> tuple[Any, Any]:
+        """Return (B, k) with |N(z)|**n <= B exp(-k (Im z - height)) for Im z >= height, where rates() is empty."""
+        raise NotImplementedError
+
+
+@dataclass(frozen=True)
+class Bessel(Transform):
+    """N(z) = I0(z): the cosine of a direction.
+
+    I0(z) = (K0(-z) - K0(z)) / (pi i) in the upper half-plane (DLMF 10.34.2). For abs(z) >= 1 and abs(ph z) <= pi:
+    |K0(z)| <= sqrt(pi / (2 |z|)) exp(-Re z) (1 + (pi/8) exp(pi/8)) < 2 exp(-Re z) / sqrt(|z|) (DLMF 10.40.10-12 with
+    one term, 2 |a_1| chi(1) = pi/8), and the same for K0(-z).
+    """
+
+    cache: Cache = field(default_factory=dict, compare=False, repr=False)
+
+    def value(self, A: Balls, z: ComplexBall, analytic: bool) -> ComplexBall:
+        """I0, an entire function."""
+        return z.bessel_i(acb(0))
+
+    def rates(self, A: Balls, n: int) -> list[Any]:
+        """n - 2j for the term with j factors K0(z)."""
+        return [A.real(n - 2 * j) for j in range(n + 1)]
+
+    def terms(self, A: Balls, z: ComplexBall, n: int, which: Iterable[int]) -> ComplexBall:
+        """Sum over j of C(n, j) K0(-z)**(n-j) (-K0(z))**j / (pi i)**n."""
+        if not z.imag > 0:
+            return acb(arb("nan"), arb("nan"))
+        up, down = _remembered(self.cache, z, A.prec, lambda middle: (_k0(-middle, A.prec), -_k0(middle, A.prec)))
+        up, down = up + _k0_moved(-z), down + _k0_moved(z)
+        total = acb(0)
+        for j in which:
+            total += comb(n, j) * up ** (n - j) * down**j
+        return total / acb(0, arb.pi()) ** n
+
+    def term_size(self, A: Balls, z: ComplexBall, n: int, which: int) -> Any:
+        """C(n, j) (2 / (pi sqrt|z|))**n where |z| >= 1."""
+        least = z.abs_lower()
+        return self._size(A, n, which, least) if z.imag > 0 and least >= 1 else arb("nan")
+
+    def bound(self, A: Balls, n: int, which: int, x: Any, height: Any) -> Any:
+        """The same with |z| >= |x|."""
+        return self._size(A, n, which, abs(x))
+
+    def _size(self, A: Balls, n: int, which: int, least: Any) -> Any:
+        return comb(n, which) * (2 / (A.pi * least.sqrt())) ** n
+
+
+def _k0(z: ComplexBall, prec: int) -> ComplexBall:
+    """K0 to full relative accuracy: the convergent series cancels by exp(2 |z|), and is then given as many more bits."""
+    value = z.bessel_k(acb(0))
+    if value.rel_accuracy_bits() < prec - 16:
+        with balls(prec + 16 + int(3 * float(abs(z).upper()))):
+            value = z.bessel_k(acb(0))
+    return value
+
+
+def _k0_moved(z: ComplexBall) -> ComplexBall:
+    """What K0 can change between the midpoint of a ball and its other points.
+
+    The derivative is -K1, and |K1(z)| <= 6.2 exp(-Re z) / sqrt(|z|) for |z| >= 1, |ph z| <= pi (DLMF 10.40.10-12 with one term).
+    """
+    slope = 7 * (-z.real).exp() / z.abs_lower().sqrt() if z.abs_lower() >= 1 else arb("nan")
+    reach = arb(0, (abs(z - z.mid()) * slope).abs_upper())
+    return acb(reach, reach)
+
+
+@dataclass(frozen=True)
+class GammaRatio(Transform):
+    """N(z) = Gamma(z + a) / Gamma(z + b), b > a: the logarithm of a beta variable.
+
+    On the left: N(z) = Gamma(w) sin pi(z + b) / (Gamma(w + d) sin pi(z + a)), w = 1 - z - b, d = b - a (DLMF 5.5.3). The
+    quotient of sines is at most coth(pi H), and |Gamma(w) / Gamma(w + d)| = |B(w, d)| / Gamma(d) <= Gamma(u) / Gamma(u + d)
+    for u = Re w > 0 (DLMF 5.12.1), which falls as u grows.
+    """
+
+    a: Any
+    b: Any
+
+    def domain(self) -> tuple[Any, Any]:
+        """Re z > -a."""
+        return -self.a, None
+
+    def value(self, A: Balls, z: ComplexBall, analytic: bool) -> ComplexBall:
+        """Quotient of gamma functions."""
+        return (z + A.real(self.a)).gamma() * (z + A.real(self.b)).rgamma()
+
+    def rates(self, A: Balls, n: int) -> list[Any]:
+        """One term, of rate 0."""
+        return [A.real(0)]
+
+    def terms(self, A: Balls, z: ComplexBall, n: int, which: Iterable[int]) -> ComplexBall:
+        """N(z)**n, through the reflected form, which is stable on the left."""
+        value = self._reflected(A, z)
+        return sum((value**n for _ in which), acb(0))
+
+    def _reflected(self, A: Balls, z: ComplexBall) -> ComplexBall:
+        a, b = A.real(self.a), A.real(self.b)
+        return (1 - z - b).gamma() * (1 - z - a).rgamma() * (z + b).sin_pi() / (z + a).sin_pi()
+
+    def term_size(self, A: Balls, z: ComplexBall, n: int, which: int) -> Any:
+        """A bound of N(z)**n: shifted to the right by the recurrence, or reflected when far on the left."""
+        if not z.imag > 0:
+            return arb("nan")
+        a, b = A.real(self.a), A.real(self.b)
+        k = max(0, 1 - int(float((z.real + a).lower()) // 1))
+        if k > 8 + float(b):
+            return self.bound(A, n, which, z.real.upper(), z.imag.lower())
+        u = (z.real + a).lower() + k
+        shifted = u.gamma() / (u + b - a).gamma()
+        for i in range(k):
+            shifted = shifted * abs((z + b + i) / (z + a + i)).upper()
+        return shifted**n
+
+    def bound(self, A: Balls, n: int, which: int, x: Any, height: Any) -> Any:
+        """(coth(pi H) Gamma(u) / Gamma(u + d))**n; no bound on the right or before u > 0."""
+        a, b = A.real(self.a), A.real(self.b)
+        u = 1 - x - b
+        if not (x < 0 and u > 0):
+            return arb("inf")
+        return ((A.pi * height).coth() * u.gamma() / (u + b - a).gamma()) ** n
+
+
+@dataclass(frozen=True)
+class Interval(Transform):
+    """N(z) = (exp(b z) - exp(a z)) / z: a constant weight on (a, b), such as the truncated exponential law."""
+
+    a: Any
+    b: Any
+
+    def value(self, A: Balls, z: ComplexBall, analytic: bool) -> ComplexBall:
+        """The quotient; balls that touch 0 are not finite, and are cut further."""
+        return ((z * A.real(self.b)).exp() - (z * A.real(self.a)).exp()) / z
+
+    def rates(self, A: Balls, n: int) -> list[Any]:
+        """(n - j) b + j a."""
+        return [(n - j) * A.real(self.b) + j * A.real(self.a) for j in range(n + 1)]
+
+    def terms(self, A: Balls, z: ComplexBall, n: int, which: Iterable[int]) -> ComplexBall:
+        """C(n, j) (-1)**j exp(rate z) / z**n."""
+        rates = self.rates(A, n)
+        return sum(((-1) ** j * comb(n, j) * (z * rates[j]).exp() for j in which), acb(0)) / z**n
+
+    def term_size(self, A: Balls, z: ComplexBall, n: int, which: int) -> Any:
+        """C(n, j) / |z|**n."""
+        return comb(n, which) / z.abs_lower() ** n
+
+    def bound(self, A: Balls, n: int, which: int, x: Any, height: Any) -> Any:
+        """C(n, j) / abs(x)**n."""
+        return comb(n, which) / abs(x) ** n
+
+
+@dataclass(frozen=True)
+class Secant(Transform):
+    """N(z) = exp(shift z) / cos(omega z + phase)**r: the generalised hyperbolic secant law.
+
+    |cos(x + iy)| >= sinh(abs(y)) >= exp(abs(y)) * (1 - exp(-2 abs(y))) / 2.
+
+    Source: Morris 1982, section 4.
+    """
+
+    r: Any
+    omega: Any
+    phase: Any
+    shift: Any
+    low: Any
+    high: Any
+
+    def domain(self) -> tuple[Any, Any]:
+        """Where the cosine is positive: the ends are given."""
+        return self.low, self.high
+
+    def value(self, A: Balls, z: ComplexBall, analytic: bool) -> ComplexBall:
+        """A power of the secant; the real part of the cosine is positive in the strip."""
+        cosine = (z * A.real(self.omega) + A.real(self.phase)).cos()
+        front = (z * A.real(self.shift)).exp()
+        if isinstance(self.r, int):
+            return front / cosine**self.r
+        return front * (-A.real(self.r) * _log_cosine(A, z * A.real(self.omega) + A.real(self.phase), analytic)).exp()
+
+    def rates(self, A: Balls, n: int) -> list[Any]:
+        """None: N falls exponentially on vertical lines."""
+        return []
+
+    def vertical_bound(self, A: Balls, n: int, height: Any) -> tuple[Any, Any]:
+        """(exp(-k H) (2 / (1 - exp(-2 omega H)))**(n r), k) with k = n r omega; the factor exp(shift z) apart."""
+        omega, power = abs(A.real(self.omega)), n * A.real(self.r)
+        front = (2 / (1 - (-2 * omega * height).exp())) ** power
+        return front * (-power * omega * height).exp(), power * omega
+
+
+def _log_cosine(A: Balls, w: ComplexBall, analytic: bool) -> ComplexBall:
+    """A logarithm of cos w that is analytic in the strip abs(Re w) < pi/2, Im w >= 0 and real on the real axis.
+
+    cos w = exp(-i w) (1 + exp(2 i w)) / 2, and 1 + exp(2 i w) has no negative value for Im w > 0, nor in the strip.
+    """
+    return acb(0, -1) * w + (1 + (acb(0, 2) * w).exp()).log(analytic=analytic) - A.real(2).log()

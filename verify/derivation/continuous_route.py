@@ -1,0 +1,43 @@
+"""From a continuous density to the law of its statistic, by quadrature of the density itself."""
+
+from __future__ import annotations
+
+import sympy as sp
+
+from verify.derivation.cumulants import cumulants
+from verify.derivation.factorisation import Factorisation
+from verify.derivation.family import LawFamily
+from verify.derivation.lattice_route import space_ends
+from verify.derivation.monotone_pieces import monotone_pieces
+from verify.derivation.transforms import transform_of
+from verify.laws.continuous import OneObservation
+from verify.laws.shape import DEVIATION, Shape
+from verify.problem.density import Density
+from verify.problem.numbers import as_exact
+
+
+def continuous_family(density: Density, found: Factorisation) -> tuple[LawFamily, str] | str:
+    """Return the family with the reason, or what stands in the way.
+
+    Parameters
+    ----------
+    density : Density
+        A normalised density on an interval.
+    found : Factorisation
+        Its statistic, natural parameter and log normaliser.
+    """
+    if density.is_kernel:
+        return "a kernel on an interval has no known normaliser: give the normalised density as a formula"
+    x, t, support = density.x, density.t, density.parsed_support
+    pieces = monotone_pieces(found.statistic, x, support.lower, support.upper)
+    if isinstance(pieces, str):
+        return pieces
+    constant, core = density.expr.as_independent(x, as_Add=False)
+    mean, variance = cumulants(found.log_normaliser, found.natural_parameter, t)
+    centred = (sp.Symbol(DEVIATION) - found.statistic) * core
+    shape = Shape(
+        constant, core, found.statistic, sp.diff(found.statistic, x), centred, x.name, t.name, pieces,
+        space_ends(density), mean, variance, found.natural_parameter, transform_of(density, found),
+    )
+    word = "monotone" if len(pieces) == 1 else f"monotone on {len(pieces)} pieces"
+    return LawFamily(OneObservation(shape, t), as_exact(1), as_exact(0), t), f"T is {word} of the support"

@@ -1,0 +1,43 @@
+"""Laws without a closed form: which route leads from a density to the law of its statistic.
+
+| statistic | law |
+|---|---|
+| whole multiples of a span | powers of the weight series (:mod:`verify.laws.lattice`) |
+| logarithm of a whole number | convolution over products (:mod:`verify.laws.multiplicative`) |
+| continuous, one observation | quadrature of the density (:mod:`verify.laws.continuous`) |
+| continuous, several observations | inversion of the transform, where its decay is known (:mod:`verify.laws.inversion`) |
+
+Any other is left undecided, with what would help.
+"""
+
+from __future__ import annotations
+
+from verify.derivation.continuous_route import continuous_family
+from verify.derivation.factorisation import Factorisation
+from verify.derivation.family import LawFamily
+from verify.derivation.lattice_route import lattice_family
+from verify.derivation.ledger import Grade, Step
+from verify.problem.density import Density
+
+
+def general_family(
+    density: Density, found: Factorisation, leaning: Grade = Grade.PROVED
+) -> tuple[Step, LawFamily | None]:
+    """Return the step ``law`` and the family whose law is built from the formula itself.
+
+    Parameters
+    ----------
+    density : Density
+        The density of one observation.
+    found : Factorisation
+        Its statistic, natural parameter and log normaliser.
+    leaning : Grade
+        The weakest grade of the steps on which this one leans (the upper tail leans on the normalisation).
+    """
+    route = lattice_family if density.parsed_support.kind == "integers" else continuous_family
+    answer = route(density, found)
+    if isinstance(answer, str):
+        return Step("law", Grade.UNDECIDED, "the law of T stayed open", answer), None
+    family, why = answer
+    statement = f"the law of the sum is computed from the density itself: {family.law.name}"
+    return Step("law", leaning, statement, f"{why}; {family.law.source}"), family

@@ -1,0 +1,205 @@
+"""One continuous observation, cut into pieces on which its statistic is monotone.
+
+Source: E. L. Lehmann and J. P. Romano, *Testing Statistical Hypotheses* (3rd ed., 2005), section 2.7.
+"""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, field
+from fractions import Fraction
+from typing import TYPE_CHECKING, Any
+
+from verify.arithmetic.ball import balls, midpoint, to_fraction
+from verify.arithmetic.evaluate import evaluate
+from verify.errors import UndecidedError
+from verify.laws.tilting import RATIO_BITS, candidates
+
+if TYPE_CHECKING:
+    from verify.arithmetic.transforms import Transform
+    from verify.problem.numbers import Exact
+
+Number = Any
+
+REGULAR, FAR, SINGULAR = "regular", "far", "singular"
+"""Ends of a piece: the density is bounded there; the statistic runs to infinity; neither (or not shown)."""
+
+DEVIATION = "mean_"
+"""Name of the symbol that stands for E[T(X)] in ``Shape.centred``."""
+
+FARTHEST = 1 << 22
+"""How far towards an end (in powers of two, or units) a cut is looked for."""
+
+
+@dataclass(frozen=True)
+class Piece:
+    """An interval of x on which the statistic is strictly monotone.
+
+    Attributes
+    ----------
+    low, high : Exact or None
+        Its ends; None for an infinite one.
+    at_low, at_high : Exact or None
+        Limits of the statistic there; None for an infinite one.
+    rising : bool
+        Whether the statistic increases.
+    inverse : SymPy expression
+        x as a function of the symbol v.
+    """
+
+    low: Any
+    high: Any
+    at_low: Any
+    at_high: Any
+    rising: bool
+    inverse: Any
+
+
+@dataclass(frozen=True, eq=False)
+class Shape:
+    """The density of one observation and its statistic.
+
+    Attributes
+    ----------
+    constant, core : SymPy expressions
+        The density is their product; ``constant`` does not contain the variable.
+    statistic, slope : SymPy expressions
+        T(x) and T'(x).
+    centred : SymPy expression
+        (mean_ - T) * core.
+    variable, parameter : str
+        Names.
+    pieces : tuple of Piece
+        They cover the support.
+    space : pair
+        Ends of the parameter interval; None for an infinite one.
+    mean, variance : SymPy expressions
+        Of T(X), in terms of the parameter.
+    natural : SymPy expression
+        The natural parameter in terms of the parameter.
+    transform : Transform or None
+        For sums of several observations.
+    """
+
+    constant: Any
+    core: Any
+    statistic: Any
+    slope: Any
+    centred: Any
+    variable: str
+    parameter: str
+    pieces: tuple[Piece, ...]
+    space: tuple[Any, Any]
+    mean: Any
+    variance: Any
+    natural: Any = None
+    transform: Transform | None = None
+    cache: dict[Any, Any] = field(default_factory=dict, repr=False)
+
+    @property
+    def text(self) -> str:
+        """The density of one observation as text."""
+        return str(self.constant * self.core)
+
+    @property
+    def ends(self) -> tuple[Any, Any]:
+        """Smallest and largest value of the statistic; None for an infinite one."""
+        lows = [p.at_low if p.rising else p.at_high for p in self.pieces]
+        highs = [p.at_high if p.rising else p.at_low for p in self.pieces]
+        return _extreme(lows, largest=False), _extreme(highs, largest=True)
+
+    def density(self, A: Any, at: Exact, x: Number) -> Number:
+        """Density of one observation at x."""
+        names = {self.parameter: A.real(at), self.variable: x}
+        return evaluate(self.constant, A, names) * evaluate(self.core, A, names)
+
+    def end_kind(self, at: Exact, piece: Piece, *, upper: bool) -> str:
+        """Return what kind of end a piece has at one parameter value."""
+        end, value = (piece.high, piece.at_high) if upper else (piece.low, piece.at_low)
+        if value is None:
+            return FAR
+        if end is None:
+            return SINGULAR
+        key = ("end", at, piece, upper)
+        if key not in self.cache:
+            with balls(RATIO_BITS) as A:
+                self.cache[key] = REGULAR if self.density(A, at, A.real(end)).is_finite() else SINGULAR
+        kind: str = self.cache[key]
+        return kind
+
+    def likelihood_ratio(self, A: Any, at: Exact, other: Exact, x: Number) -> Number:
+        """Density at ``at`` over density at ``other``."""
+        return self.density(A, at, x) / self.density(A, other, x)
+
+    def far_cut(self, at: Exact, piece: Piece, bits: int, *, upper: bool) -> tuple[Fraction, Any]:
+        """Return x near a far end, and a ball bounding the mass between it and the end.
+
+        The likelihood ratio against a second parameter value is monotone in the statistic; where it falls towards the
+        end, the mass beyond x is at most its value at x, because the density at the second value has mass at most 1.
+
+        Raises
+        ------
+        UndecidedError
+            When no second parameter value bounds this tail.
+        """
+        key = ("cut", at, piece, bits, upper)
+        if key not in self.cache:
+            self.cache[key] = self._search_cut(at, piece, bits, upper=upper)
+        found: tuple[Fraction, Any] = self.cache[key]
+        return found
+
+    def _search_cut(self, at: Exact, piece: Piece, bits: int, *, upper: bool) -> tuple[Fraction, Any]:
+        best: tuple[int, Fraction, Any] | None = None
+        with balls(RATIO_BITS) as A:
+            goal = A.power(A.real(2), -bits)
+            for other in candidates(at, self.space):
+                found = self._march(A, at, other, piece, goal, upper=upper)
+                if found is not None and (best is None or found[0] < best[0]):
+                    best = found
+        if best is None:
+            raise UndecidedError("no bound was found for a tail of one observation inside the parameter space")
+        return best[1], best[2]
+
+    def _march(
+        self, A: Any, at: Exact, other: Exact, piece: Piece, goal: Any, *, upper: bool
+    ) -> tuple[int, Fraction, Any] | None:
+        first = self.likelihood_ratio(A, at, other, A.real(_place(A, piece, 1, upper=upper)))
+        second = self.likelihood_ratio(A, at, other, A.real(_place(A, piece, 2, upper=upper)))
+        if not second < first:
+            return None
+        step = 1
+        while step <= FARTHEST:
+            x = _place(A, piece, step, upper=upper)
+            bound = self.likelihood_ratio(A, at, other, A.real(x))
+            if bound < goal:
+                return step, x, bound.upper()
+            step += max(1, step // 4)
+        return None
+
+
+def _place(A: Any, piece: Piece, step: int, *, upper: bool) -> Fraction:
+    """Return the step-th point on the way to an end of a piece."""
+    end, other = (piece.high, piece.low) if upper else (piece.low, piece.high)
+    start = _rational(A, other)
+    if end is None:
+        base = Fraction(0) if start is None else start
+        return base + step if upper else base - step
+    stop = _rational(A, end)
+    assert stop is not None  # noqa: S101 (an end that is not None has a value)
+    gap = Fraction(1) if start is None else abs(stop - start)
+    shift = gap * Fraction(1, 2**step)
+    return stop - shift if upper else stop + shift
+
+
+def _rational(A: Any, end: Any) -> Fraction | None:
+    return None if end is None else to_fraction(midpoint(A.real(end)))
+
+
+def _extreme(ends: list[Any], *, largest: bool) -> Any:
+    if any(end is None for end in ends):
+        return None
+    best = ends[0]
+    with balls(128) as A:
+        for end in ends[1:]:
+            if (A.real(end) > A.real(best)) if largest else (A.real(end) < A.real(best)):
+                best = end
+    return best
