@@ -20,12 +20,16 @@ from flint import acb, arb, ctx, fmpq
 from verify.arithmetic.beta_series import incomplete_beta
 from verify.arithmetic.enclosure import Enclosure
 from verify.arithmetic.evaluate import evaluate
+from verify.errors import SidecheckError
 
 Ball = Any
 """A real ball (``flint.arb``)."""
 
 SMALLEST_EXPONENT = -300_000
 """Powers of two below this are widened to an interval from zero when a ball becomes a pair of rationals."""
+
+DIRECT_GAMMA_P = 60
+"""Up to this first parameter Arb's lower incomplete gamma function is tried first (it may give up: then it says so)."""
 
 EXACT_BINOMIAL = 2000
 """Up to so many trials a binomial coefficient is computed as an integer; beyond, through the gamma function."""
@@ -113,8 +117,10 @@ class Balls:
         Arb's own lower function loses all its bits from a = 1000; the difference loses only the bits of the tail's
         size, which the precision loop makes good. For small a and x it is computed directly.
         """
-        if isinstance(a, Fraction | int) and a < 200 and self.real(x) < 50:
-            return self.real(x).gamma_lower(self.real(a), regularized=1)
+        if isinstance(a, Fraction | int) and a < DIRECT_GAMMA_P and self.real(x) < self.real(a):
+            direct = self.real(x).gamma_lower(self.real(a), regularized=1)
+            if direct.rel_accuracy_bits() > self.prec // 2:
+                return direct
         return 1 - self.gamma_q(a, x)
 
     def beta_p(self, x: Any, a: Any, b: Any) -> Ball:
@@ -133,6 +139,8 @@ class Balls:
         """Evaluate a named function of a formula (the names of :mod:`verify.arithmetic.evaluate`)."""
         from verify.arithmetic.ball_functions import REAL_FUNCTIONS
 
+        if name not in REAL_FUNCTIONS:
+            raise SidecheckError(f"no ball function {name} is known")
         return REAL_FUNCTIONS[name](*args)
 
 

@@ -72,12 +72,17 @@ class ContinuousSearch:
         coordinate = self.coordinate
         moved = tuple(coordinate.rough(A, law) for law in self.rough)
         if level < NARROW and not self.conditions.outside:
-            return self._narrow(A)
+            narrow = self._narrow(A)
+            if narrow is not None:
+                return narrow
         a, b = window_start(moved, max(level, 1e-300), self.conditions.outside)
         return midpoint(coordinate.place(A, A.real(Fraction(a)))), midpoint(coordinate.place(A, A.real(Fraction(b))))
 
-    def _narrow(self, A: Any) -> Ends:
-        """Window around the point where the densities are as the levels; their log ratio is linear in the statistic."""
+    def _narrow(self, A: Any) -> Ends | None:
+        """Window around the point where the densities are as the levels; their log ratio is linear in the statistic.
+
+        None where the window would not be narrow after all.
+        """
         first, second = self.conditions.laws
         a, b = (A.real(Fraction(law.mean)) for law in self.rough)
 
@@ -87,6 +92,8 @@ class ContinuousSearch:
         wanted = A.log(A.real(self.conditions.levels[1]) / A.real(self.conditions.levels[0]))
         centre = midpoint(a + (b - a) * (wanted - log_ratio(a)) / (log_ratio(b) - log_ratio(a)))
         half = A.real(self.conditions.levels[0]) / first.density(A, centre) / 2
+        if not half.mid() < A.real(Fraction(self.rough[0].spread)) / 16:
+            return None
         return midpoint(centre - half), midpoint(centre + half)
 
     def _newton(self, A: Any, ends: Ends) -> Ends | None:
@@ -108,22 +115,29 @@ class ContinuousSearch:
     def _moved(self, A: Any, c: Any, e: Any, side: int) -> Any:
         """Move an end outward by e, gathering mass geometrically where e is not small."""
         speed = self.coordinate.speed(A, c)
-        u = e / speed
-        size = abs(float(u.mid()))
-        spread = max(r.spread for r in self.rough)
-        cap = 4.0 * spread / abs(float(speed.mid()))
-        cap = min(max(cap, 1e-12), 40.0) if self.coordinate.low is not None or self.coordinate.high is not None else cap
-        if size < 1e-3 * min(cap, 1.0):
+        u = float((e / speed).mid())
+        cap = self._reach(A, c, side, outward=u > 0)
+        if abs(u) < 1e-3 * min(cap, 1.0):
             return midpoint(c + side * e)
-        slope = side * self._log_slope(A, c)
-        distance = extend(float(u.mid()), slope, cap)
+        distance = extend(u, side * self._log_slope(A, c), cap)
         return midpoint(self.coordinate.place(A, self.coordinate.of(A, c) + side * A.real(Fraction(distance))))
+
+    def _reach(self, A: Any, c: Any, side: int, *, outward: bool) -> float:
+        """Longest step worth taking: outward a few standard deviations, inward as far as the mean on that side."""
+        spread = max(law.spread for law in self.rough)
+        speed = abs(float(self.coordinate.speed(A, c).mid()))
+        few = max(4.0 * spread / speed, 1e-12)
+        few = few if self.coordinate.free else min(few, 2.0)
+        if outward:
+            return few
+        mean = A.real(Fraction((min if side < 0 else max)(law.mean for law in self.rough)))
+        return max(few, abs(float((self.coordinate.of(A, c) - self.coordinate.of(A, mean)).mid())))
 
     def _log_slope(self, A: Any, c: Any) -> float:
         """Derivative of log(density * dc/du) along the coordinate, by a difference: only a guide."""
         coordinate = self.coordinate
         law = max(self.conditions.laws, key=lambda candidate: _log(candidate.density(A, c)))
-        h = 1e-6 * (1.0 if coordinate.low is not None or coordinate.high is not None else self.rough[0].spread)
+        h = 1e-6 * (self.rough[0].spread if coordinate.free else 1.0)
         next_c = midpoint(coordinate.place(A, coordinate.of(A, c) + A.real(Fraction(h))))
         here = law.density(A, c) * coordinate.speed(A, c)
         there = law.density(A, next_c) * coordinate.speed(A, next_c)

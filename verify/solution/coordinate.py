@@ -25,9 +25,14 @@ class Coordinate:
     low: Any
     high: Any
 
+    @property
+    def free(self) -> bool:
+        """Whether the support is the whole line, so that the coordinate is the point itself."""
+        return self.low is None and self.high is None
+
     def place(self, A: Any, u: Any) -> Any:
         """Return the point of the support at coordinate u."""
-        if self.low is None and self.high is None:
+        if self.free:
             return u
         if self.high is None:
             return A.real(self.low) + A.exp(u)
@@ -38,7 +43,7 @@ class Coordinate:
 
     def of(self, A: Any, c: Any) -> Any:
         """Return the coordinate of a point of the support."""
-        if self.low is None and self.high is None:
+        if self.free:
             return c
         if self.high is None:
             return A.log(c - A.real(self.low))
@@ -48,7 +53,7 @@ class Coordinate:
 
     def speed(self, A: Any, c: Any) -> Any:
         """Return dc/du at a point of the support."""
-        if self.low is None and self.high is None:
+        if self.free:
             return A.real(1)
         if self.high is None:
             return c - A.real(self.low)
