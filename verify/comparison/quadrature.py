@@ -1,0 +1,202 @@
+"""One observation of a continuous formula as a set of Gauss nodes, and the law of T(x) by integrating over regions of x.
+
+The variable is x = x(w) with w on the whole line (exp, sinh or logistic, by the support), so that an end of the support or a
+far tail is a place where the integrand merely dies out. The panels break at the mode under each limit (a kink usually sits
+there) and where T turns.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass
+from typing import Any
+
+import numpy as np
+from scipy.optimize import brentq, minimize_scalar
+from scipy.special import expit
+
+Array = Any
+PANELS, ORDER = 40, 16
+_NODES, _WEIGHTS = np.polynomial.legendre.leggauss(ORDER)
+
+
+@dataclass(frozen=True)
+class Change:
+    """x as a function of w on the whole line, with log|dx/dw|."""
+
+    x: Callable[[Array], Array]
+    log_jacobian: Callable[[Array], Array]
+
+
+def change_of_variable(lower: float, upper: float, centre: float = 0.0, width: float = 1.0) -> Change:
+    """The map from the whole line onto the support; ``centre`` and ``width`` are used on the real line only."""
+    if np.isfinite(lower) and np.isfinite(upper):
+        span = upper - lower
+        return Change(lambda w: lower + span * expit(w), lambda w: np.log(span * expit(w)) + np.log(expit(-w)))
+    if np.isfinite(lower):
+        return Change(lambda w: lower + np.exp(w), lambda w: w + 0.0)
+    if np.isfinite(upper):
+        return Change(lambda w: upper - np.exp(-w), lambda w: -w)
+    return Change(lambda w: centre + width * np.sinh(w), lambda w: np.log(width) + np.logaddexp(w, -w) - np.log(2.0))
+
+
+def run_of_interest(height: Callable[[Array], Array], depth: float) -> tuple[float, float, float]:
+    """Where a log-integrand on the line is within ``depth`` of its peak: left end, mode, right end."""
+    grid = np.linspace(-690.0, 690.0, 2761)
+    mode, peak = _climb(height, grid)
+    left = _edge(height, grid[grid < mode][::-1], mode, peak - depth)
+    right = _edge(height, grid[grid > mode], mode, peak - depth)
+    return left, mode, right
+
+
+def _climb(height: Callable[[Array], Array], grid: Array) -> tuple[float, float]:
+    while True:
+        heights = np.nan_to_num(height(grid), nan=-np.inf, posinf=-np.inf)
+        best = int(np.argmax(heights))
+        if not np.isfinite(heights[best]):
+            raise ArithmeticError("the formula gives no positive density at any place looked at")
+        left, right = grid[max(best - 1, 0)], grid[min(best + 1, len(grid) - 1)]
+        if right - left <= 1e-9 * max(1.0, abs(grid[best])):
+            return float(grid[best]), float(heights[best])
+        grid = np.linspace(left, right, 65)
+
+
+def _edge(height: Callable[[Array], Array], outward: Array, mode: float, floor: float) -> float:
+    """First place outward where the integrand is below the floor, bisected."""
+    heights = np.nan_to_num(height(outward), nan=-np.inf, posinf=-np.inf)
+    low = np.flatnonzero(heights < floor)
+    if not len(low):
+        return float(outward[-1])
+    outer = float(outward[low[0]])
+    inner = float(outward[low[0] - 1]) if low[0] else mode
+    for _ in range(40):
+        middle = (inner + outer) / 2
+        inner, outer = (inner, middle) if not height(np.array([middle]))[0] > floor else (middle, outer)
+        if not height(np.array([inner]))[0] > floor:
+            inner, outer = outer, inner
+    return outer
+
+
+@dataclass(frozen=True)
+class Nodes:
+    """Gauss panels over w for one observation.
+
+    Attributes
+    ----------
+    edges : array
+        Ends of the panels, ascending.
+    w, weights, places : array of shape (panels, ORDER)
+        Nodes, quadrature weights, and T at the nodes.
+    densities : list of array of that shape
+        f(x(w); t) dx/dw under each limit.
+    turns : array
+        Ends of the stretches of w on which T is monotone.
+    """
+
+    edges: Array
+    w: Array
+    weights: Array
+    places: Array
+    densities: list[Array]
+    turns: Array
+
+
+def gauss_panels(edges: Array) -> tuple[Array, Array]:
+    """Nodes and weights of the panels between the edges, one row a panel."""
+    half = np.diff(edges)[:, None] / 2
+    return edges[:-1, None] + half * (1 + _NODES), half * _WEIGHTS
+
+
+def nodes(heights: list[Callable[[Array], Array]], place: Callable[[Array], Array], depth: float) -> Nodes:
+    """Lay panels where some limit's density matters and T's turning points are known.
+
+    Parameters
+    ----------
+    heights : list of callables
+        log of f dx/dw under each limit.
+    place : callable
+        T(x(w)).
+    depth : float
+        How far below the peak a density still matters, in natural logarithms.
+    """
+    marks = np.unique(np.array([run_of_interest(height, depth) for height in heights]))
+    turns = _turning_points(place, marks[0], marks[-1])
+    breaks = np.unique(np.concatenate([marks, turns]))
+    breaks = breaks[np.concatenate([[True], np.diff(breaks) > 1e-12 * (breaks[-1] - breaks[0])])]
+    edges = np.unique(np.concatenate([np.linspace(a, b, PANELS + 1) for a, b in zip(breaks, breaks[1:], strict=False)]))
+    w, weights = gauss_panels(edges)
+    densities = [np.exp(height(w)) for height in heights]
+    ends = np.concatenate([[edges[0]], turns, [edges[-1]]])
+    return Nodes(edges, w, weights, place(w), densities, ends)
+
+
+def _turning_points(place: Callable[[Array], Array], left: float, right: float) -> Array:
+    """Interior extrema of T between two places."""
+    grid = np.linspace(left, right, 801)
+    slopes = np.sign(np.diff(place(grid)))
+    found = []
+    for k in np.flatnonzero(slopes[:-1] * slopes[1:] < 0):
+        sign = slopes[k]
+        best = minimize_scalar(lambda w, s=sign: float(-s * place(w)), bounds=(grid[k], grid[k + 2]), method="bounded",
+                               options={"xatol": 1e-12})  # fmt: skip
+        found.append(float(best.x))
+    return np.array(found)
+
+
+@dataclass(frozen=True)
+class OneObservation:
+    """The law of T(x) for one observation, by integrating over the x with T(x) on one side of a cutoff.
+
+    ``weight`` is what is integrated besides the density: 1, or T - mean for the second condition of a point null.
+    """
+
+    nodes: Nodes
+    height: Callable[[Array], Array]
+    place: Callable[[Array], Array]
+    row: int
+    weight: Callable[[Array], Array]
+
+    def tail(self, c: float, above: bool) -> float:
+        """Integral over T > c (or T <= c), summed without taking differences."""
+        total = 0.0
+        for a, b in zip(self.nodes.turns, self.nodes.turns[1:], strict=False):
+            w = self._crossing(c, a, b)
+            rising = self.place(b) > self.place(a)
+            start, stop = (w, b) if rising == above else (a, w)
+            total += self._integral(start, stop)
+        return total
+
+    def density(self, c: float) -> float:
+        """Density of T at c, times the weight."""
+        total = 0.0
+        for a, b in zip(self.nodes.turns, self.nodes.turns[1:], strict=False):
+            w = self._crossing(c, a, b)
+            if a < w < b:
+                step = 1e-5 * min(w - a, b - w, 1.0)
+                slope = abs(float(self.place(w + step) - self.place(w - step))) / (2 * step)
+                total += float(np.exp(self.height(w)) * self.weight(self.place(w))) / slope
+        return total
+
+    def _crossing(self, c: float, a: float, b: float) -> float:
+        """Place in a monotone stretch where T passes c; the end nearer to it where it does not."""
+        at_a, at_b = float(self.place(a)), float(self.place(b))
+        if (at_a - c) * (at_b - c) > 0:
+            return a if abs(at_a - c) < abs(at_b - c) else b
+        return float(brentq(lambda w: float(self.place(w)) - c, a, b, xtol=1e-300, rtol=8.9e-16))
+
+    def _integral(self, start: float, stop: float) -> float:
+        if stop <= start:
+            return 0.0
+        edges = self.nodes.edges
+        first, last = int(np.searchsorted(edges, start)), int(np.searchsorted(edges, stop, side="right")) - 1
+        if first > last:
+            return self._partial(start, stop)
+        n = self.nodes
+        whole = n.weights[first:last] * n.densities[self.row][first:last] * self.weight(n.places[first:last])
+        return self._partial(start, edges[first]) + float(np.sum(whole)) + self._partial(edges[last], stop)
+
+    def _partial(self, start: float, stop: float) -> float:
+        if stop <= start:
+            return 0.0
+        w, weights = gauss_panels(np.array([start, stop]))
+        return float(np.sum(weights * np.exp(self.height(w)) * self.weight(self.place(w))))
