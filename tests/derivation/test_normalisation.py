@@ -55,6 +55,7 @@ SUMS = {
     "Bessel": ("t**x/(factorial(x)**2*besseli(0,2*sqrt(t)))", HALF, POSITIVE),
     "even Poisson": ("t**(2*x)/factorial(2*x)/cosh(t)", HALF, POSITIVE),
     "Yule": ("t*beta(x,t+1)", ("1", "oo"), POSITIVE),
+    "Sibuya": ("t*gamma(x-t)/(gamma(1-t)*factorial(x))", ("1", "oo"), UNIT),
     "polylogarithm": ("t**x*x**(-3)/polylog(3,t)", ("1", "oo"), UNIT),
     "mixture": ("exp(-t)*t**x/factorial(x)/3+Rational(2,3)*exp(-2*t)*(2*t)**x/factorial(x)", HALF, POSITIVE),
     "cut geometric": ("t**x*(1-t)/(1-t**5)", ("0", "4"), UNIT),
@@ -211,14 +212,8 @@ def test_divergence_is_refuted(kind: str, text: str, support: tuple[str, str], s
     assert "where" in found.step.witness
 
 
-@pytest.mark.parametrize(
-    ("text", "total"),
-    [
-        ("exp(-t*Abs(x)**3)*cosh(x)*0 + exp(-x**4 - t*x**2)", 1),
-        ("2/(exp(x**4) + exp(x**2)) * t/t", 1),
-    ],
-)
-def test_without_a_closed_form_nothing_is_called_proved(text: str, total: int) -> None:
+@pytest.mark.parametrize("text", ["exp(-x**4 - t*x**2)", "2/(exp(x**4) + t*exp(x**2))"])
+def test_without_a_closed_form_nothing_is_called_proved(text: str) -> None:
     found = answer("reals", text, LINE, POSITIVE)
     assert found.step.grade is not Grade.PROVED
 

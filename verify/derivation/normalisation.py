@@ -118,7 +118,7 @@ def question_of(density: Density) -> Mass:
     ends = tuple(end.xreplace({density.t: t}) for end in (support.lower, support.upper))
     whole = {"integer": True} if support.kind == "integers" else {}
     x = Symbol(density.x.name, **whole, **_assumptions(*ends, closed=bool(whole)))
-    expr = density.expr.xreplace({density.x: x, density.t: t}).doit(deep=False)
+    expr = density.expr.xreplace({density.x: x, density.t: t})
     return Mass(expr, x, t, support.kind, (ends[0], ends[1]), (space.lower, space.upper))
 
 
@@ -193,10 +193,11 @@ def _divergence(question: Mass, found: Closed) -> TotalMass | None:
         if question.domain.positive(condition):
             continue
         for at in [*points_inside(question.space)]:
-            if sign_at(condition, {question.t: at}) < 0:
+            if condition.is_zero or sign_at(condition, {question.t: at}) < 0:
                 statement = f"the {question.word} of the density diverges"
-                statement += " for every " if question.domain.negative(condition) else " for some "
-                witness = f"{question.t} = {at}, where {sp.sstr(condition)} is negative"
+                everywhere = condition.is_zero or question.domain.negative(condition)
+                statement += " for every " if everywhere else " for some "
+                witness = f"{question.t} = {at}, where {sp.sstr(condition)} is not positive"
                 reason = f"{'; '.join(found.sources)}: finite only where {sp.sstr(condition)} > 0"
                 return TotalMass(Step(NAME, Grade.REFUTED, statement + str(question.t), reason, witness))
     return None

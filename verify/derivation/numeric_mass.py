@@ -19,12 +19,14 @@ from verify.arithmetic.ball import balls, to_enclosure
 from verify.arithmetic.evaluate import evaluate
 from verify.arithmetic.quadrature import integral, integrand
 
-PRECISION = 128
+PRECISION = 96
 REACH = 80
 """Pieces reach from 2**-REACH to 2**REACH."""
-SMALL = 70
+SMALL = 50
 """Pieces are enclosed to 2**-SMALL; several in a row below that end a side."""
 MOST_TERMS = 20_000
+MOST_EVALUATIONS = 10_000
+"""Evaluations of the density on one piece; beyond, the question is left open."""
 
 
 @dataclass(frozen=True)
@@ -78,11 +80,11 @@ def _side(g: Callable[[Any, bool], Any], reach: Expr, A: Any) -> tuple[Any, bool
     """Integral of g from 0 to ``reach`` by pieces, and whether the last ones were small."""
     total, quiet = A.real(0), 0
     for left, right in _cuts(reach, A):
-        piece = integral(g, left, right, tolerance=SMALL)
+        piece = integral(g, left, right, tolerance=SMALL, evaluations=MOST_EVALUATIONS)
         if not piece.is_finite():
             return None
         total += piece
-        quiet = quiet + 1 if abs(piece) < A.real(Fraction(1, 2**50)) else 0
+        quiet = quiet + 1 if abs(piece) < A.real(Fraction(1, 2**45)) else 0
         if quiet >= 12:
             break
     return total, quiet >= 3

@@ -220,6 +220,10 @@ def _exponential(above: list[Expr], below: list[Expr], z: Expr, stop: Expr) -> F
 
 
 def _binomial(above: list[Expr], below: list[Expr], z: Expr, stop: Expr) -> Found:
+    if stop == oo and z == 1:
+        return Closed(sp.S.Zero, (-above[0],), ("Gauss, DLMF 15.4.20",))
+    if stop == oo and z == -1:
+        return None
     name = "binomial theorem" if stop != oo else "geometric series" if above[0] == 1 else "binomial series"
     conditions = () if stop != oo else (1 - z, 1 + z)
     return Closed((1 - z) ** (-above[0]), conditions, (f"{name}, DLMF 15.4.6",))
@@ -239,6 +243,8 @@ def _gauss(above: list[Expr], below: list[Expr], z: Expr, stop: Expr) -> Found:
     if z == 1:
         value = sp.gamma(c) * sp.gamma(c - a - b) / (sp.gamma(c - a) * sp.gamma(c - b))
         return Closed(value, (c - a - b,), ("Gauss, DLMF 15.4.20",))
+    if z == -1 and stop == oo:
+        return None
     if (a, b, c) == (1, 1, 2):
         return Closed(-sp.log(1 - z) / z, (1 - z, 1 + z), ("logarithmic series, DLMF 15.4.1",))
     conditions = () if stop != oo else (1 - z, 1 + z)
