@@ -21,6 +21,7 @@ from verify.errors import InputError
 from verify.problem.functions import CONSTANTS, FUNCTIONS
 from verify.problem.guards import MAX_BITS, Budget, bits
 from verify.problem.scan import MAX_DEPTH, NUMBER, scan_formula, shorten
+from verify.problem.work import bounded_work
 
 MAX_TREE = 2 * MAX_DEPTH
 """Depth of the syntax tree, where an exponent or a function counts ``DEEP`` times."""
@@ -56,12 +57,11 @@ def parse_formula(text: str, symbols: Mapping[str, sympy.Expr], key: str = "") -
     2**x/(20*factorial(x))
     """
     source = scan_formula(text, key)
-    walker = _Walker(source, symbols, key)
-    try:
-        result = walker.build(_syntax_tree(source, key), 0)
-    except RecursionError:
-        raise InputError("the formula is nested too deeply", "simplify it", key=key) from None
-    return _require_real(result, key)
+    tree = _syntax_tree(source, key)
+    with bounded_work(
+        InputError(f"{shorten(source)} is too complicated to be built", "simplify it", key=key)
+    ):
+        return _require_real(_Walker(source, symbols, key).build(tree, 0), key)
 
 
 def _syntax_tree(source: str, key: str) -> ast.expr:

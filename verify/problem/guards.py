@@ -93,8 +93,12 @@ class Budget:
 
     def binomial(self, n: sympy.Expr, k: sympy.Expr) -> None:
         """Check a binomial coefficient before it is built."""
-        if not (n.is_Rational and k.is_Rational):
+        if not (n.is_number and k.is_number):
             return
+        if not (n.is_Rational and k.is_Integer):
+            self.refuse(
+                "a binomial coefficient of these numbers is not known exactly", "use a whole number below"
+            )
         steps = abs(int(k))
         if n.is_Integer and 0 <= int(n) - int(k) < steps:
             steps = int(n) - int(k)
@@ -113,12 +117,14 @@ def bits(value: sympy.Expr) -> int:
     return int(value.p).bit_length() + int(value.q).bit_length() - 1
 
 
-def size(value: sympy.Expr) -> float | int:
+def size(value: sympy.Expr) -> int:
     """Roughly the absolute value of a number, only good for refusing what is far too large."""
     if value.is_Rational:
         return abs(int(value.p)) // int(value.q)
     number = sympy.Abs(value.evalf(15)) if value.is_number else sympy.S.Zero
-    return int(number) if number.is_finite and number.is_real else 0
+    if not (number.is_finite and number.is_real):
+        return 0
+    return int(number) if number < 10 * MAX_EXPONENT else 10 * MAX_EXPONENT
 
 
 def _numeric_parts(exponent: sympy.Expr) -> tuple[sympy.Expr, ...]:

@@ -12,7 +12,8 @@ import sympy
 from verify.errors import InputError
 from verify.problem.formula import formula_text, parse_formula
 from verify.problem.order import find_rational
-from verify.problem.scan import NUMBER, check_literal
+from verify.problem.scan import NUMBER, check_literal, shorten
+from verify.problem.work import bounded_work
 
 Exact: TypeAlias = Fraction | sympy.Expr
 """A real number held exactly. Rational numbers are always a Fraction."""
@@ -92,6 +93,11 @@ def as_exact(expr: sympy.Expr | int, key: str = "") -> Exact:
         raise InputError(f"{expr} is not a number", _RIGHT, key=key)
     if expr.has(sympy.Float):
         raise InputError(f"{expr} holds a float, which is not the decimal it prints as", _RIGHT, key=key)
+    with bounded_work(InputError(f"{shorten(str(expr))} is too complicated", _RIGHT, key=key)):
+        return _irrational(expr, key)
+
+
+def _irrational(expr: sympy.Expr, key: str) -> Exact:
     if expr.is_real is False or expr.is_finite is False or expr is sympy.nan:
         raise InputError(f"{expr} is not a real, finite number", _RIGHT, key=key)
     found = find_rational(expr)

@@ -12,6 +12,7 @@ from fractions import Fraction
 import sympy
 
 from verify.errors import UndecidedError
+from verify.problem.work import SECONDS, bounded_work
 
 PRECISIONS = (30, 100, 400, 1600)
 """Decimal digits at which a difference is evaluated, one after the other."""
@@ -35,7 +36,9 @@ def compare(a: Fraction | sympy.Expr, b: Fraction | sympy.Expr) -> int:
     left, right = _expr(a), _expr(b)
     if left.is_infinite or right.is_infinite:
         return 0 if left == right else (1 if left == sympy.oo or right == -sympy.oo else -1)
-    return sign(left - right)
+    open_question = UndecidedError(f"the order of {left} and {right}: stopped after {SECONDS:g} s")
+    with bounded_work(open_question):
+        return sign(left - right)
 
 
 def sign(expr: sympy.Expr) -> int:
@@ -64,7 +67,7 @@ def _numeric_sign(expr: sympy.Expr, digits: int) -> int:
         return 0
     if not value.is_Float:
         return 0
-    return 1 if bool(value > 0) else -1
+    return 1 if bool(value.is_positive) else -1
 
 
 def shown_zero(expr: sympy.Expr) -> bool:
