@@ -6,6 +6,7 @@ from sympy import Expr, Sum, Symbol
 
 from verify.derivation.factorisation import Factorisation
 from verify.derivation.family import LawFamily
+from verify.derivation.general import general_family
 from verify.derivation.kernel import kernel_certainly_another, written_out
 from verify.derivation.law_of_variance import name_law
 from verify.derivation.ledger import Grade, Step
@@ -37,15 +38,17 @@ def law_step(density: Density, found: Factorisation, leaning: Grade) -> tuple[St
         )
     variance = variance_function(_written_out(density, found), found.natural_parameter, t)
     if variance is None:
-        statement = "whether the variance function of T is quadratic or a cube stayed open"
-        return general_law(density, found, Step("law", Grade.UNDECIDED, statement))
+        statement = "no quadratic or cubic variance function of T was found"
+        return general_law(density, found, Step("law", leaning, statement))
     named = name_law(variance, t, domain_of(density))
     shown = f"variance function V(m) = {_formula(variance)}"
     if named.family is None and named.word == SECANT and isinstance(variance, Quadratic):
         statement = f"T has a {SECANT} law with r = {1 / variance.v2}"
         return general_law(density, found, Step("law", leaning, statement, f"{shown}; Morris 1982"))
     if named.family is None:
-        return Step("law", Grade.UNDECIDED, "the law of T stayed open", f"{shown}; {named.word}"), None
+        return general_law(
+            density, found, Step("law", leaning, "T has no named law", f"{shown}; {named.word}")
+        )
     source = "Letac and Mora 1990" if isinstance(variance, Cube) else "Morris 1982"
     law = named.family.text()
     statement = f"T = {law}" if "Y of law" in law else f"T has the law {law}"
@@ -65,11 +68,16 @@ def _written_out(density: Density, found: Factorisation) -> Expr:
 
 
 def general_law(density: Density, found: Factorisation, step: Step) -> tuple[Step, LawFamily | None]:
-    """The one place where a law without closed form joins: return the step and its family.
+    """Return the step and the family of a law without closed form, built from the density itself.
 
-    So far no such family is made here, and the step says what is known.
+    Parameters
+    ----------
+    step : Step
+        What is known of the law so far; its grade is that of the steps on which the new law leans.
     """
-    return step, None
+    built, family = general_family(density, found, step.grade)
+    reason = f"{step.reason}; {built.reason}" if step.reason else built.reason
+    return Step("law", built.grade, f"{step.statement}; {built.statement}", reason), family
 
 
 def _formula(variance: Quadratic | Cube) -> Expr:
