@@ -56,7 +56,8 @@ def test_a_support_is_read(
 @pytest.mark.parametrize(
     "text",
     ["", "whole numbers", "integers 5..0", "integers 3..3", "reals in (1, 0)", "reals in [1, 1]",
-     "reals in 0, 1", "integers >= b", "reals > λ", "integers >= 0 and", "reals 0..1", "integersx", "reals in (0, 1",
+     "reals in 0, 1", "integers >= b", "reals > λ", "integers >= 0 and", "reals 0..1", "integersx",
+    "reals in (0, 1",
      "integers !", "reals >= __import__('os')", "integers in {1, 2}"],
 )  # fmt: skip
 def test_what_is_no_support_is_refused(text: str) -> None:

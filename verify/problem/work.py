@@ -1,8 +1,9 @@
 """A bound on the work that reading one text may cause, for what no bound on sizes foresees.
 
-Building an expression or deciding a sign calls SymPy, which may loop for minutes on absurd numbers. Inside
-``bounded_work`` every 64th function call looks at the thread's own CPU clock, and the block is left when the time is
-spent. One long call into C is not interrupted; the guards on sizes keep those short.
+Building an expression or deciding a sign calls SymPy, which may loop for minutes on absurd numbers.
+Inside ``bounded_work`` every 64th function call looks at the thread's own CPU clock, and the block is
+left when the time is spent. One long call into C is not interrupted; the guards on sizes keep those
+short.
 """
 
 from __future__ import annotations
