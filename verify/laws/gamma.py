@@ -5,7 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import TYPE_CHECKING, Any, ClassVar, Self
 
-from verify.laws.base import Law, Number
+from verify.laws.base import Law, Number, cube_root_score
 
 if TYPE_CHECKING:
     from verify.problem.numbers import Exact
@@ -69,3 +69,9 @@ class Gamma(Law):
     def spread(self, A: Any) -> Number:
         """Standard deviation sqrt(a) / rate."""
         return A.sqrt(A.real(self.shape)) / A.real(self.rate)
+
+    def normal_score(self, v: float, mean: float, spread: float) -> tuple[float, float]:
+        """Through the cube root of V."""
+        shape, rate = (mean / spread) ** 2, mean / spread**2
+        z, slope = cube_root_score(rate * v, shape)
+        return z, rate * slope

@@ -5,7 +5,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import TYPE_CHECKING, Any, ClassVar, Self
 
-from verify.laws.base import Law, Number
+from verify.laws.base import Law, Number, cube_root_score
 
 if TYPE_CHECKING:
     from verify.problem.numbers import Exact
@@ -68,3 +68,9 @@ class Poisson(Law):
     def spread(self, A: Any) -> Number:
         """Standard deviation sqrt(m)."""
         return A.sqrt(A.real(self.mean))
+
+    def normal_score(self, v: float, mean: float, spread: float) -> tuple[float, float]:
+        """Through the cube root: P(V <= v) is the upper tail at m of a gamma law of shape v + 1."""
+        shape = max(v + 1.0, 1e-3)
+        here, there = (-cube_root_score(mean, a)[0] for a in (shape, shape * 1.0001))
+        return here, (there - here) / (shape * 0.0001)

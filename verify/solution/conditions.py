@@ -17,6 +17,7 @@ from dataclasses import dataclass
 from typing import Any
 
 from verify.laws import Law
+from verify.solution.start import Rough, scored_window
 
 Row = tuple[Any, Any]
 
@@ -118,6 +119,19 @@ class Conditions:
         return A.real(1), A.real(0 if self.point else 1)
 
 
+def improved_start(
+    conditions: Conditions, rough: tuple[Rough, ...], levels: tuple[float, ...], ends: tuple[float, float]
+) -> tuple[float, float]:
+    """Return better rough ends, through the normal scores of the laws; a point null keeps the ones it has."""
+    if conditions.point or min(levels) < 1e-200:
+        return ends
+
+    def score(i: int, v: float) -> tuple[float, float]:
+        return conditions.laws[i].normal_score(v, rough[i].mean, rough[i].spread)
+
+    return scored_window(score, (levels[0], levels[-1]), ends, conditions.outside)
+
+
 def solve_two_by_two(first: Row, second: Row, right: Row) -> Row:
     """Solve g1 * first + g2 * second = right by Cramer's rule.
 
@@ -134,12 +148,43 @@ def solve_two_by_two(first: Row, second: Row, right: Row) -> Row:
     )
 
 
+@dataclass(frozen=True)
+class LinearSystem:
+    """The side conditions of one pair of cutoffs, evaluated: linear in the two end fractions.
+
+    Attributes
+    ----------
+    whole : Row
+        Contribution of the points that reject for certain.
+    first, second : Row
+        Contribution of one unit of phi at c1 and at c2.
+    fractions : Row
+        The fractions (phi at c1, phi at c2) that make both conditions hold.
+    """
+
+    whole: Row
+    first: Row
+    second: Row
+    fractions: Row
+
+    def left_hand_sides(self) -> Row:
+        """Return the two expectations at these fractions."""
+        g1, g2 = self.fractions
+        left, right = (self.whole[i] + g1 * self.first[i] + g2 * self.second[i] for i in (0, 1))
+        return left, right
+
+
+def linear_system(conditions: Conditions, A: Any, c1: Any, c2: Any) -> LinearSystem:
+    """Evaluate the side conditions at a pair of cutoffs and solve them for the end fractions."""
+    target, whole = conditions.targets(A), conditions.whole(A, c1, c2)
+    first, second = conditions.unit(A, c1), conditions.unit(A, c2)
+    fractions = solve_two_by_two(first, second, (target[0] - whole[0], target[1] - whole[1]))
+    return LinearSystem(whole, first, second, fractions)
+
+
 def end_fractions(conditions: Conditions, A: Any, c1: Any, c2: Any) -> Row:
     """Return the fractions (phi at c1, phi at c2) that make both side conditions hold for this pair of cutoffs."""
-    target, whole = conditions.targets(A), conditions.whole(A, c1, c2)
-    return solve_two_by_two(
-        conditions.unit(A, c1), conditions.unit(A, c2), (target[0] - whole[0], target[1] - whole[1])
-    )
+    return linear_system(conditions, A, c1, c2).fractions
 
 
 def exact_fractions(conditions: Conditions, A: Any, c1: int, c2: int) -> Row:

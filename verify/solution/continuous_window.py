@@ -15,8 +15,9 @@ from fractions import Fraction
 from typing import Any
 
 from verify.arithmetic.ball import accuracy_bits, around, balls, midpoint, min_abs, to_enclosure
+from verify.arithmetic.enclosure import Enclosure
 from verify.errors import UndecidedError
-from verify.solution.conditions import Conditions, end_fractions, solve_two_by_two
+from verify.solution.conditions import Conditions, Row, end_fractions, improved_start, solve_two_by_two
 from verify.solution.coordinate import Coordinate
 from verify.solution.precision import bits_for
 from verify.solution.sliding_continuous import slide_continuous
@@ -68,15 +69,18 @@ class ContinuousSearch:
             return found
 
     def _first(self, A: Any) -> Ends:
-        level = float(A.real(self.conditions.levels[0]).mid())
-        coordinate = self.coordinate
-        moved = tuple(coordinate.rough(A, law) for law in self.rough)
-        if level < NARROW and not self.conditions.outside:
+        levels = tuple(float(A.real(level).mid()) for level in self.conditions.levels)
+        if levels[0] < NARROW and not self.conditions.outside:
             narrow = self._narrow(A)
             if narrow is not None:
                 return narrow
-        a, b = window_start(moved, max(level, 1e-300), self.conditions.outside)
-        return midpoint(coordinate.place(A, A.real(Fraction(a)))), midpoint(coordinate.place(A, A.real(Fraction(b))))
+        coordinate = self.coordinate
+        moved = tuple(coordinate.rough(A, law) for law in self.rough)
+        rough_ends = window_start(moved, max(levels[0], 1e-300), self.conditions.outside)
+        c1, c2 = (float(coordinate.place(A, A.real(Fraction(end))).mid()) for end in rough_ends)
+        a, b = improved_start(self.conditions, self.rough, levels, (c1, c2))
+        inside = coordinate.free or (a > c1 / 2 and math.isfinite(b))
+        return A.real(Fraction(a if inside else c1)), A.real(Fraction(b if inside else c2))
 
     def _narrow(self, A: Any) -> Ends | None:
         """Window around the point where the densities are as the levels; their log ratio is linear in the statistic.
@@ -175,20 +179,20 @@ def solve_continuous_window(search: ContinuousSearch, digits: int) -> Window:
     box: Ends | None = None
     for _ in range(MOST_ROUNDS):
         with balls(bits) as A:
-            box = _sharpen(conditions, A, centre, box)
+            target, whole = conditions.targets(A), conditions.whole(A, *centre)
+            box = _sharpen(conditions, A, centre, box, (target[0] - whole[0], target[1] - whole[1]))
             reached = min(accuracy_bits(end) for end in box) if box is not None else 0
             if box is not None:
                 if reached >= wanted:
-                    return _window(conditions, A, box, bits)
+                    sides = _left_hand_sides(conditions, A, centre, box, whole)
+                    return Window(to_enclosure(box[0]), to_enclosure(box[1]), None, None, sides, bits)
                 centre = midpoint(box[0]), midpoint(box[1])
         bits = _next_bits(bits, reached, wanted)
     raise UndecidedError("no box around the cutoffs could be proved to contain them")
 
 
-def _sharpen(conditions: Conditions, A: Any, centre: Ends, box: Ends | None) -> Ends | None:
+def _sharpen(conditions: Conditions, A: Any, centre: Ends, box: Ends | None, lack: Row) -> Ends | None:
     """One round: prove a first box around the centre, or shrink a box that is known to contain the window."""
-    target, whole = conditions.targets(A), conditions.whole(A, *centre)
-    lack = (target[0] - whole[0], target[1] - whole[1])
     if box is None:
         step = _newton_step(conditions, A, centre, lack)
         if step is None:
@@ -228,10 +232,9 @@ def _image(conditions: Conditions, A: Any, centre: Ends, box: Ends, lack: Ends) 
     return None if step is None else (centre[0] + step[0], centre[1] + step[1])
 
 
-def _window(conditions: Conditions, A: Any, box: Ends, bits: int) -> Window:
-    whole = conditions.whole(A, *box)
-    target = conditions.targets(A)
-    sides = tuple(to_enclosure(value) for value in whole)
-    if not all(value.contains(t) or value.overlaps(t) for value, t in zip(whole, target, strict=True)):
-        raise ArithmeticError("the proved window misses its own side conditions")
-    return Window(to_enclosure(box[0]), to_enclosure(box[1]), None, None, sides, bits)
+def _left_hand_sides(conditions: Conditions, A: Any, centre: Ends, box: Ends, whole: Row) -> tuple[Enclosure, ...]:
+    """Enclose the two conditions over the box by the mean value form around its centre."""
+    left, right = conditions.unit(A, box[0]), conditions.unit(A, box[1])
+    grown = (centre[0] - box[0], box[1] - centre[1])
+    sign = -1 if conditions.outside else 1
+    return tuple(to_enclosure(whole[i] + sign * (left[i] * grown[0] + right[i] * grown[1])) for i in (0, 1))

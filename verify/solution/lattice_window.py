@@ -17,7 +17,7 @@ from verify.arithmetic.ball import accuracy_bits, balls, to_enclosure
 from verify.arithmetic.enclosure import Enclosure
 from verify.arithmetic.exact import rationals
 from verify.errors import InputError, NotRational, UndecidedError
-from verify.solution.conditions import Conditions, end_fractions, exact_fractions
+from verify.solution.conditions import Conditions, end_fractions, exact_fractions, improved_start, linear_system
 from verify.solution.precision import bits_for
 from verify.solution.sliding import slide
 from verify.solution.start import Rough, extend, window_start
@@ -63,8 +63,9 @@ class LatticeSearch:
         return found if found is not None else self.bracket(self.prec)
 
     def _first(self) -> Cell:
-        level = float(self.conditions.levels[0])
-        a, b = window_start(self.rough, level, self.conditions.outside)
+        levels = tuple(float(level) for level in self.conditions.levels)
+        ends = window_start(self.rough, max(levels[0], 1e-300), self.conditions.outside)
+        a, b = improved_start(self.conditions, self.rough, levels, ends)
         low, high = self.conditions.laws[0].support
         c1 = math.floor(a) + 1
         c2 = max(math.ceil(b), c1 + 1)
@@ -155,12 +156,14 @@ def solve_lattice_window(search: LatticeSearch, digits: int) -> Window:
     cap = 8 * bits + 4096
     while bits <= cap:
         with balls(bits) as A:
-            fractions = end_fractions(conditions, A, *cell)
-            moves = [_side(g, conditions.outside) for g in fractions]
+            system = linear_system(conditions, A, *cell)
+            moves = [_side(g, conditions.outside) for g in system.fractions]
             if moves == [0, 0]:
-                reached = min(accuracy_bits(g) for g in fractions)
+                reached = min(accuracy_bits(g) for g in system.fractions)
                 if reached >= wanted:
-                    return _window(conditions, A, cell, fractions, bits)
+                    ends = [to_enclosure(g, low=_ZERO, high=_ONE) for g in system.fractions]
+                    sides = tuple(to_enclosure(side) for side in system.left_hand_sides())
+                    return Window(*cell, ends[0], ends[1], sides, bits)
                 bits += wanted - reached + 8
                 continue
         if None in moves:
@@ -195,15 +198,6 @@ def _side(g: Any, outside: bool) -> int | None:
     if g < 0:
         return 1 if outside else -1
     return None
-
-
-def _window(conditions: Conditions, A: Any, cell: Cell, fractions: Any, bits: int) -> Window:
-    whole, first, second = (
-        conditions.whole(A, *cell), conditions.unit(A, cell[0]), conditions.unit(A, cell[1])
-    )
-    sides = tuple(to_enclosure(whole[i] + fractions[0] * first[i] + fractions[1] * second[i]) for i in (0, 1))
-    ends = [to_enclosure(g, low=_ZERO, high=_ONE) for g in fractions]
-    return Window(cell[0], cell[1], ends[0], ends[1], sides, bits)
 
 
 def _exact_tie(conditions: Conditions, cell: Cell, bits: int) -> Window | None:

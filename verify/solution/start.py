@@ -6,10 +6,15 @@ Nothing here needs to be right; a poor start costs time, never truth.
 from __future__ import annotations
 
 import math
+from collections.abc import Callable
 from dataclasses import dataclass
 from statistics import NormalDist
 
 STANDARD = NormalDist()
+ROOT_HALF = math.sqrt(0.5)
+INVERSE_ROOT_TWO_PI = 1 / math.sqrt(2 * math.pi)
+STEPS = 15
+"""Newton steps on normal scores before they are given up."""
 
 
 @dataclass(frozen=True)
@@ -65,11 +70,68 @@ def window_start(laws: tuple[Rough, ...], level: float, outside: bool) -> tuple[
 def _half_width(delta: float, level: float) -> float:
     """Half width h with P(abs(Z + delta) < h) = level, by bisection."""
     below, above = 0.0, delta + 45.0
-    for _ in range(60):
+    for _ in range(24):
         h = (below + above) / 2
-        inside = STANDARD.cdf(h - delta) - STANDARD.cdf(-h - delta)
+        inside = upper_tail(-h - delta) - upper_tail(h - delta)
         below, above = (h, above) if inside < level else (below, h)
     return above
+
+
+def scored_window(
+    score: Callable[[int, float], tuple[float, float]], levels: tuple[float, float], ends: tuple[float, float], outside: bool
+) -> tuple[float, float]:
+    """Improve rough ends by Newton's method on the normal scores of the two laws.
+
+    Parameters
+    ----------
+    score : callable
+        (which law, place) to (normal score, its derivative).
+    levels : tuple of float
+        Probability of rejecting under each law.
+    ends : tuple of float
+        Where to begin.
+    outside : bool
+        Whether the test rejects outside.
+
+    Returns
+    -------
+    tuple of float
+        Better ends, or the ends given where the method does not settle.
+    """
+    a, b = ends
+    for _ in range(STEPS):
+        left, right = [score(i, a) for i in (0, 1)], [score(i, b) for i in (0, 1)]
+        lack = [_lack(left[i][0], right[i][0], levels[i], outside) for i in (0, 1)]
+        d = [normal_density(z) * slope for z, slope in (*left, *right)]
+        determinant = d[0] * d[3] - d[1] * d[2]
+        if not abs(determinant) > 1e-280:
+            return ends
+        out_a, out_b = (lack[0] * d[3] - lack[1] * d[2]) / determinant, (lack[1] * d[0] - lack[0] * d[1]) / determinant
+        reach = 1.0 / min(abs(slope) for _, slope in (*left, *right))
+        out_a, out_b = (max(-reach, min(reach, step)) for step in (out_a, out_b))
+        a, b = a - out_a, b + out_b
+        if not a < b or math.isnan(a + b):
+            return ends
+        if abs(out_a) + abs(out_b) < 1e-9 * reach:
+            return a, b
+    return ends
+
+
+def _lack(z_left: float, z_right: float, level: float, outside: bool) -> float:
+    """Probability that the window lacks: positive when it must grow."""
+    if outside:
+        return upper_tail(-z_left) + upper_tail(z_right) - level
+    return level - (upper_tail(z_left) - upper_tail(z_right))
+
+
+def upper_tail(z: float) -> float:
+    """P(Z > z) of the standard normal law."""
+    return 0.5 * math.erfc(z * ROOT_HALF)
+
+
+def normal_density(z: float) -> float:
+    """Density of the standard normal law."""
+    return math.exp(-0.5 * z * z) * INVERSE_ROOT_TWO_PI
 
 
 def extend(amount: float, slope: float, cap: float) -> float:
