@@ -1,4 +1,4 @@
-"""The normalisation step over a zoo of densities: proved as they stand, refuted once a constant is changed."""
+"""The normalisation step over a zoo of densities: proved as they stand, refuted with a changed constant."""
 
 from __future__ import annotations
 
@@ -34,12 +34,19 @@ SUMS = {
     "negative binomial": ("binomial(x+3,x)*t**4*(1-t)**x", HALF, UNIT),
     "negative binomial, upside down": ("binomial(-4,x)*t**4*(t-1)**x", HALF, UNIT),
     "negative binomial, gamma": (
-        "gamma(x+Rational(5,2))/(gamma(Rational(5,2))*factorial(x))*t**Rational(5,2)*(1-t)**x", HALF, UNIT),
+        "gamma(x+Rational(5,2))/(gamma(Rational(5,2))*factorial(x))*t**Rational(5,2)*(1-t)**x",
+        HALF,
+        UNIT,
+    ),
     "negative binomial, real size": ("binomial(x+Rational(3,2),x)*t**Rational(5,2)*(1-t)**x", HALF, UNIT),
     "negative binomial, trials": ("binomial(x-1,2)*t**3*(1-t)**(x-3)", ("3", "oo"), UNIT),
     "negative binomial, mean": ("gamma(x+3)/(2*factorial(x))*(3/(3+t))**3*(t/(3+t))**x", HALF, POSITIVE),
     "zero-truncated Poisson": ("t**x/(factorial(x)*(exp(t)-1))", ("1", "oo"), POSITIVE),
-    "zero-truncated Poisson, other clothes": ("exp(-t)*t**x/(factorial(x)*(1-exp(-t)))", ("1", "oo"), POSITIVE),
+    "zero-truncated Poisson, other clothes": (
+        "exp(-t)*t**x/(factorial(x)*(1-exp(-t)))",
+        ("1", "oo"),
+        POSITIVE,
+    ),
     "Poisson without 0 and 1": ("exp(-t)*t**x/(factorial(x)*(1-exp(-t)*(1+t)))", ("2", "oo"), POSITIVE),
     "zero-truncated binomial": ("binomial(5,x)*t**x*(1-t)**(5-x)/(1-(1-t)**5)", ("1", "5"), UNIT),
     "logarithmic series": ("-t**x/(x*log(1-t))", ("1", "oo"), UNIT),
@@ -108,7 +115,10 @@ INTEGRALS = {
     "Topp-Leone": ("2*t*(1-x)*(2*x-x**2)**(t-1)", UNIT, POSITIVE),
     "hyperbolic secant": ("exp(t*x)*cos(t)/(2*cosh(pi*x/2))", LINE, ("-pi/2", "pi/2")),
     "truncated normal": (
-        "exp(-(x-t)**2/2)/(sqrt(pi/2)*(erf((2-t)/sqrt(2))-erf((-1-t)/sqrt(2))))", ("-1", "2"), ANY),
+        "exp(-(x-t)**2/2)/(sqrt(pi/2)*(erf((2-t)/sqrt(2))-erf((-1-t)/sqrt(2))))",
+        ("-1", "2"),
+        ANY,
+    ),
     "truncated exponential": ("t*exp(-t*x)/(1-exp(-2*t))", ("0", "2"), POSITIVE),
     "truncated gamma": ("x*exp(-t*x)*t**2/(1-exp(-3*t)*(1+3*t))", ("0", "3"), POSITIVE),
     "Cauchy, location": ("1/(pi*(1+(x-t)**2))", LINE, ANY),
@@ -128,8 +138,10 @@ INTEGRALS = {
     "linear": ("(1+t*x)/2", ("-1", "1"), ("-1", "1")),
     "quadratic": ("6*x*(1-x)*(1+t*(2*x-1))", UNIT, ("-1", "1")),
 }
-ZOO = {**{name: ("integers", *entry) for name, entry in SUMS.items()},
-       **{name: ("reals", *entry) for name, entry in INTEGRALS.items()}}
+ZOO = {
+    **{name: ("integers", *entry) for name, entry in SUMS.items()},
+    **{name: ("reals", *entry) for name, entry in INTEGRALS.items()},
+}
 
 
 def question(kind: str, text: str, support: tuple[str, str], space: tuple[str, str]) -> Mass:
@@ -182,7 +194,9 @@ def test_a_changed_constant_is_refuted_with_the_true_total(name: str) -> None:
         ("reals", "exp(-t*x - 1/x)/x", HALF, POSITIVE, "2*besselk(0,2*sqrt(t))"),
     ],
 )
-def test_the_true_total_is_shown(kind: str, text: str, support: tuple[str, str], space: tuple[str, str], total: str) -> None:
+def test_the_true_total_is_shown(
+    kind: str, text: str, support: tuple[str, str], space: tuple[str, str], total: str
+) -> None:
     asked = question(kind, text, support, space)
     found = decide(asked)
     assert found.step.grade is Grade.REFUTED, found.step
@@ -205,7 +219,9 @@ def test_the_true_total_is_shown(kind: str, text: str, support: tuple[str, str],
         ("reals", "exp(t*x)/cosh(x)", LINE, ANY),
     ],
 )
-def test_divergence_is_refuted(kind: str, text: str, support: tuple[str, str], space: tuple[str, str]) -> None:
+def test_divergence_is_refuted(
+    kind: str, text: str, support: tuple[str, str], space: tuple[str, str]
+) -> None:
     found = answer(kind, text, support, space)
     assert found.step.grade is Grade.REFUTED, found.step
     assert "diverges" in found.step.statement
@@ -237,33 +253,36 @@ def test_unknown_form_below_one_is_left_open() -> None:
 
 
 def test_discrete_unknown_form_is_checked_numerically() -> None:
-    # sum of exp(-pi x**2) over the integers is pi**(1/4)/Gamma(3/4) (DLMF 20.4.3 with 23.15.9; Whittaker and Watson)
+    # The sum of exp(-pi x**2) over the integers is pi**(1/4)/Gamma(3/4) (Whittaker and Watson, from memory).
     found = answer("integers", "exp(-pi*x**2)*gamma(Rational(3,4))/pi**Rational(1,4)", LINE, POSITIVE)
     assert found.step.grade is Grade.CHECKED, found.step
 
 
-@pytest.mark.parametrize("name", sorted(ZOO)[::3])
+ADDED_UP = (
+    "negative binomial, real size", "zero-truncated Poisson", "logarithmic series", "Borel", "Borel-Tanner",
+    "generalised Poisson", "Skellam", "even Poisson", "beta-binomial", "polylogarithm",
+    "log-normal, ratio", "Weibull, scale", "inverse Gaussian, shape", "von Mises, turned", "Topp-Leone",
+    "hyperbolic secant", "truncated normal", "Gompertz", "Gumbel, scale", "Student", "Lindley",
+)  # fmt: skip
+
+
+@pytest.mark.parametrize("name", ADDED_UP)
 def test_totals_agree_with_mpmath(name: str) -> None:
-    """The total of the density without a factor of its constant, against a quadrature that shares no code."""
+    """Mpmath adds the entry up at the first sample, by code that shares nothing with ours."""
     kind, text, support, space = ZOO[name]
     asked = question(kind, text, support, space)
     at = asked.samples[0]
-    lower, upper = (end.subs(asked.t, at) for end in asked.support)
-    if kind == "integers" and upper > 10**6:
-        return
+    mp = mpmath.MPContext()
     f = sp.lambdify(asked.x, asked.f.subs(asked.t, at), "mpmath")
     if kind == "integers":
-        low = int(lower) if lower.is_finite else -60
-        high = int(upper) if upper.is_finite else low + 400
-        if name in ("zeta", "Yule"):
-            return  # slowly converging; the closed form is the definition (zeta) or Gauss's theorem (Yule)
-        total = mpmath.fsum(f(mpmath.mpf(k)) for k in range(low, high + 1))
+        low = int(asked.support[0]) if asked.support[0].is_finite else -30
+        high = int(min(asked.support[1], 120))
+        total = mp.fsum(f(mpmath.mpf(k)) for k in range(low, high + 1))
     else:
-        ends = [mpmath.mpf(str(sp.N(end, 20))) if end.is_finite else mpmath.inf * (1 if end > 0 else -1)
-                for end in (lower, upper)]
-        middle = [m for m in (-3, 0, 1, 3, 10) if ends[0] < m < ends[1]]
-        total = mpmath.quad(f, [ends[0], *middle, ends[1]])
-    assert abs(total - 1) < 1e-6
+        ends = [mpmath.mpf(str(sp.N(end, 20)).replace("oo", "inf")) for end in asked.support]
+        inside = [m for m in (-3, 0, 1, 3, 10) if ends[0] < m < ends[1]]
+        total = mpmath.quad(f, [ends[0], *inside, ends[1]])
+    assert abs(total - 1) < 1e-8
 
 
 def test_kernel_normaliser() -> None:

@@ -16,8 +16,8 @@ from verify.derivation.products import rebuild, split
 class Closed:
     """A closed form: the value, what must be positive for convergence, and where it is published.
 
-    The conditions suffice. Unless the form was put together from terms of mixed sign (``sharp`` is False) they are
-    necessary too: where one of them is negative, the sum or integral of the positive terms diverges.
+    The conditions suffice. Unless the form was put together from terms of mixed sign (``sharp`` is False)
+    they are necessary too: where one of them is negative, the sum or integral of the positive terms diverges.
     """
 
     value: Expr
@@ -59,12 +59,16 @@ def _binomial_by_gamma(n: Expr, k: Expr) -> Expr:
 
 
 def _plain_arguments(expr: Expr, domain: Domain) -> Expr:
-    """Bring the arguments of special functions to one form, and open Bessel functions of half-integer order."""
+    """Bring the arguments of special functions to one form; open Bessel functions of half-integer order."""
     for kind in (sp.besselk, sp.besseli):
         expr = expr.replace(kind, lambda n, z, f=kind: _bessel(f, n, z, domain))
     for kind in (sp.gamma, sp.erf, sp.zeta, sp.cos, sp.sin):
-        expr = expr.replace(kind, lambda *z, f=kind: f(*(sp.expand(sp.cancel(w)) if w.is_rational_function()
-                                                      else sp.expand(w) for w in z)))
+        expr = expr.replace(
+            kind,
+            lambda *z, f=kind: f(
+                *(sp.expand(sp.cancel(w)) if w.is_rational_function() else sp.expand(w) for w in z)
+            ),
+        )
     return expr
 
 
@@ -91,7 +95,10 @@ def _half_integer_i(order: sp.Rational, z: Expr) -> Expr:
 def _half_integer_k(order: sp.Rational, z: Expr) -> Expr:
     """K of order n + 1/2 as a finite sum (DLMF 10.49.12 with 10.47.9)."""
     n = abs(order) - sp.Rational(1, 2)
-    terms = (sp.factorial(n + k) / (sp.factorial(k) * sp.factorial(n - k) * (2 * z) ** k) for k in range(int(n) + 1))
+    terms = (
+        sp.factorial(n + k) / (sp.factorial(k) * sp.factorial(n - k) * (2 * z) ** k)
+        for k in range(int(n) + 1)
+    )
     return sp.sqrt(sp.pi / (2 * z)) * sp.exp(-z) * sp.Add(*terms)
 
 
@@ -117,6 +124,7 @@ def normal_form(value: Expr, domain: Domain) -> Expr:
 
 def _product(expr: Expr, domain: Domain) -> Expr:
     """Split into powers; in sums, every term first."""
+
     def each_term(terms: Expr) -> Expr:
         return sp.Add(*(rebuild(split(term, domain)) for term in terms.args))
 
@@ -135,4 +143,4 @@ def is_one(value: Expr, domain: Domain) -> bool:
     found = normal_form(value, domain)
     if found.is_number:
         return bool(sp.simplify(found - 1) == 0)
-    return found.count_ops() < 60 and sp.simplify(found - 1) == 0
+    return bool(found.count_ops() < 60 and sp.simplify(found - 1) == 0)

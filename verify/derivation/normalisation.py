@@ -1,13 +1,14 @@
 """Is the total mass of a density one, for every parameter value?
 
-The total is found in closed form (:mod:`~verify.derivation.sums`, :mod:`~verify.derivation.integrals`), never by the algebra
-system's own summation and integration, which are slow and sometimes wrong. What has no closed form is added up in balls
-at a few parameter values: that is a check, not a proof.
+The total is found in closed form (:mod:`~verify.derivation.sums`, :mod:`~verify.derivation.integrals`),
+never by the algebra system's own summation and integration, which are slow and sometimes wrong. What has no
+closed form is added up in balls at a few parameter values: that is a check, not a proof.
 """
 
 from __future__ import annotations
 
 from dataclasses import dataclass
+from fractions import Fraction
 from itertools import islice
 from typing import TYPE_CHECKING
 
@@ -96,11 +97,12 @@ class TotalMass:
 def total_mass(density: Density) -> Step:
     """Return the step ``normalisation`` of a density (or of an unnormalised kernel).
 
-    Guarantees: *proved* only by a closed form whose convergence is proved on the whole parameter space and that is
-    identically one; *refuted* with the true total, or with a parameter value at which it diverges or certainly exceeds
-    one. Nothing is claimed about the sign of the density.
+    Guarantees: *proved* only by a closed form whose convergence is proved on the whole parameter space and
+    that is identically one; *refuted* with the true total, or with a parameter value at which it diverges or
+    certainly exceeds one. Nothing is claimed about the sign of the density.
 
-    Source: Petkovsek, Wilf and Zeilberger 1996, chapter 3 (sums); DLMF sections named in the step (integrals).
+    Source: Petkovsek, Wilf and Zeilberger 1996, chapter 3 (sums); DLMF sections named in the step
+    (integrals).
     """
     return total_mass_of(density).step
 
@@ -135,7 +137,9 @@ def _assumptions(lower: Expr, upper: Expr, *, closed: bool = False) -> dict[str,
 def decide(question: Mass) -> TotalMass:
     """Decide whether the total mass is identically one."""
     if not _sensible(question):
-        return _open(question, "the ends of the support depend on the parameter in a way that was not resolved")
+        return _open(
+            question, "the ends of the support were not shown to be in order for every parameter value"
+        )
     found = question.closed()
     if found is None:
         return _numerically(question, "no rule for a closed form fits")
@@ -151,20 +155,20 @@ def decide(question: Mass) -> TotalMass:
 def _sensible(question: Mass) -> bool:
     lower, upper = question.support
     if question.kind == "integers":
-        return all(end.is_integer or end.is_infinite for end in (lower, upper)) and not (upper - lower).has(question.t)
-    return oo_apart(lower, upper) or question.domain.positive(upper - lower)
+        whole = all(end.is_integer or end.is_infinite for end in (lower, upper))
+        return whole and not (lower.has(question.t) or upper.has(question.t))
+    return _unbounded(lower, upper) or question.domain.positive(upper - lower)
 
 
-def oo_apart(lower: Expr, upper: Expr) -> bool:
+def _unbounded(lower: Expr, upper: Expr) -> bool:
     """Tell whether an interval is unbounded on at least one side."""
     return bool(lower == -sp.oo or upper == sp.oo)
 
 
 def _judge(question: Mass, found: Closed) -> TotalMass:
     reason = "; ".join(found.sources)
-    if found.conditions:
-        reason += "; converges as " + ", ".join(f"{sp.sstr(c)} > 0" for c in found.conditions if c.free_symbols)
-        reason = reason.removesuffix("; converges as ")
+    told = [f"{sp.sstr(c)} > 0" for c in found.conditions if c.free_symbols and not c.is_Symbol]
+    reason += "; converges as " + ", ".join(told) if told else ""
     if is_one(found.value, question.domain):
         statement = f"the {question.word} of the density over its support is 1 for every {question.t}"
         return TotalMass(Step(NAME, Grade.PROVED, statement, reason), sp.S.One)
@@ -174,9 +178,11 @@ def _judge(question: Mass, found: Closed) -> TotalMass:
             statement = f"the {question.word} of the density over its support is {sp.sstr(value)}, not 1"
             witness = f"at {question.t} = {at} it is {value_text(found.value, {question.t: at})}"
             return TotalMass(Step(NAME, Grade.REFUTED, statement, reason, witness), value)
-    statement = f"the {question.word} of the density is {sp.sstr(value)}; it agrees with 1 to 100 digits at "
-    statement += f"{question.t} = " + ", ".join(map(str, question.samples))
-    return TotalMass(Step(NAME, Grade.CHECKED, statement, reason + "; no proof that this is identically 1"), value)
+    places = ", ".join(map(str, question.samples))
+    statement = f"the {question.word} of the density is {sp.sstr(value)}, which"
+    statement += f" cannot be told from 1 in balls of 512 bits at {question.t} = {places}"
+    reason += "; no proof that this is identically 1"
+    return TotalMass(Step(NAME, Grade.CHECKED, statement, reason), value)
 
 
 def shown(value: Expr, domain: Domain) -> Expr:
@@ -239,28 +245,29 @@ def _open(question: Mass, reason: str, witness: str = "") -> TotalMass:
 
 # ---- unnormalised kernels
 
-def normaliser(question: Mass, table: tuple[object, ...] | None) -> TotalMass:
+
+def normaliser(question: Mass, table: tuple[Fraction, ...] | None) -> TotalMass:
     """Prove that the weights of a kernel have a finite, positive sum, by which they are divided."""
     lower, upper = question.support
     if not (lower.is_Integer and upper.is_Integer):
         return _convergent(question)
     statement = f"the weights have a finite, positive sum for every {question.t}, by which they are divided"
     if _weights_positive(question, table):
-        count = int(upper - lower) + 1
-        return TotalMass(Step(NAME, Grade.PROVED, statement, f"{count} weights, none negative and not all zero"))
+        reason = f"{int(upper - lower) + 1} weights, none negative and not all zero"
+        return TotalMass(Step(NAME, Grade.PROVED, statement, reason))
     return _open(question, "the weights were not shown to be non-negative and not all zero")
 
 
-def _weights_positive(question: Mass, table: tuple[object, ...] | None) -> bool:
+def _weights_positive(question: Mass, table: tuple[Fraction, ...] | None) -> bool:
+    if table is not None:
+        return all(weight >= 0 for weight in table) and any(weight > 0 for weight in table)
     lower, upper = question.support
     here = question.domain.having(question.x, lower - sp.Rational(1, 2), upper + sp.Rational(1, 2))
-    if table is None and here.positive(question.f):
+    if here.positive(question.f):
         return True
     if upper - lower > LARGEST_LIST:
         return False
     weights = [question.f.subs(question.x, lower + k) for k in range(int(upper - lower) + 1)]
-    if table is not None:
-        return all(weight >= 0 for weight in table) and any(weight > 0 for weight in table)  # type: ignore[operator]
     signs = [0 if weight == 0 else question.domain.sign(weight) or -1 for weight in weights]
     return min(signs) >= 0 and max(signs) == 1
 
@@ -273,5 +280,7 @@ def _convergent(question: Mass) -> TotalMass:
     value = shown(found.value, question.domain)
     if not question.domain.positive(value):
         return _open(question, f"the sum of the kernel, {sp.sstr(value)}, was not shown to be positive")
-    statement = f"the kernel has the finite, positive {question.word} {sp.sstr(value)}, by which it is divided"
+    statement = (
+        f"the kernel is divided by its {question.word}, {sp.sstr(value)}, which is finite and positive"
+    )
     return TotalMass(Step(NAME, Grade.PROVED, statement, "; ".join(found.sources)), value)

@@ -1,8 +1,8 @@
 """The total mass of a density at one parameter value, by adding balls: a lower bound that is certain.
 
-The line is cut into pieces that double in length away from the middle and halve towards a finite end. Each piece is enclosed;
-what lies beyond the last piece is not. As a density is non-negative, the sum is a proved lower bound of the total, and
-agreement with one is a numerical check, not a proof.
+The line is cut into pieces that double in length away from the middle and halve towards a finite end. Each
+piece is enclosed; what lies beyond the last piece is not. As a density is non-negative, the sum is a proved
+lower bound of the total, and agreement with one is a numerical check, not a proof.
 """
 
 from __future__ import annotations
@@ -10,6 +10,7 @@ from __future__ import annotations
 from collections.abc import Callable, Iterator
 from dataclasses import dataclass
 from fractions import Fraction
+from itertools import pairwise
 from typing import Any
 
 import sympy as sp
@@ -36,7 +37,6 @@ class PartialMass:
     at: Expr
     lower: Fraction
     upper: Fraction
-    settled: bool
 
     @property
     def exceeds_one(self) -> bool:
@@ -51,7 +51,7 @@ class PartialMass:
 
     def text(self, digits: int = 10) -> str:
         """The added mass in decimals."""
-        return sp.sstr(sp.N(sp.Rational(str((self.lower + self.upper) / 2)), digits))
+        return str(sp.N(sp.Rational(str((self.lower + self.upper) / 2)), digits))
 
 
 def partial_integral(f: Expr, x: Symbol, lower: Expr, upper: Expr, t: Symbol, at: Expr) -> PartialMass | None:
@@ -63,21 +63,18 @@ def partial_integral(f: Expr, x: Symbol, lower: Expr, upper: Expr, t: Symbol, at
     pieces = f.subs(x, middle + x), f.subs(x, middle - x)
     with balls(PRECISION) as A:
         values = {t.name: A.real(at)}
-        sides = [
-            _side(integrand(g, x.name, values, PRECISION), reach, A)
-            for g, reach in zip(pieces, (high - middle, middle - low), strict=True)
-        ]
-        if any(side is None for side in sides):
-            return None
-        whole = sides[0][0] + sides[1][0]
-        if not whole.is_finite():
-            return None
+        whole = A.real(0)
+        for g, reach in zip(pieces, (high - middle, middle - low), strict=True):
+            side = _side(integrand(g, x.name, values, PRECISION), reach, A)
+            if side is None:
+                return None
+            whole += side
         found = to_enclosure(whole)
-    return PartialMass(at, found.lower, found.upper, sides[0][1] and sides[1][1])
+    return PartialMass(at, found.lower, found.upper)
 
 
-def _side(g: Callable[[Any, bool], Any], reach: Expr, A: Any) -> tuple[Any, bool] | None:
-    """Integral of g from 0 to ``reach`` by pieces, and whether the last ones were small."""
+def _side(g: Callable[[Any, bool], Any], reach: Expr, A: Any) -> Any | None:
+    """Integral of g from 0 to ``reach`` by pieces, until a dozen in a row are small."""
     total, quiet = A.real(0), 0
     for left, right in _cuts(reach, A):
         piece = integral(g, left, right, tolerance=SMALL, evaluations=MOST_EVALUATIONS)
@@ -87,7 +84,7 @@ def _side(g: Callable[[Any, bool], Any], reach: Expr, A: Any) -> tuple[Any, bool
         quiet = quiet + 1 if abs(piece) < A.real(Fraction(1, 2**45)) else 0
         if quiet >= 12:
             break
-    return total, quiet >= 3
+    return total
 
 
 def _cuts(reach: Expr, A: Any) -> Iterator[tuple[Any, Any]]:
@@ -96,7 +93,7 @@ def _cuts(reach: Expr, A: Any) -> Iterator[tuple[Any, Any]]:
     else:
         whole = A.real(Fraction(int(reach.p), int(reach.q)) if reach.is_Rational else reach)
         ends = [whole * (1 - A.real(2) ** -k) for k in range(REACH)]
-    yield from zip(ends, ends[1:], strict=False)
+    yield from pairwise(ends)
 
 
 def partial_sum(f: Expr, x: Symbol, lower: Expr, upper: Expr, t: Symbol, at: Expr) -> PartialMass | None:
@@ -111,9 +108,8 @@ def partial_sum(f: Expr, x: Symbol, lower: Expr, upper: Expr, t: Symbol, at: Exp
             quiet = quiet + 1 if abs(term) < A.real(Fraction(1, 2**60)) else 0
             if quiet >= 200:
                 break
-        ended = bool(lower.is_finite and upper.is_finite and upper - lower < MOST_TERMS)
         found = to_enclosure(total)
-    return PartialMass(at, found.lower, found.upper, ended or quiet >= 200)
+    return PartialMass(at, found.lower, found.upper)
 
 
 def _points(lower: Expr, upper: Expr) -> Iterator[int]:

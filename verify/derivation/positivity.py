@@ -1,9 +1,9 @@
 """Prove that an expression is positive wherever its symbols may roam.
 
-The symbols of a :class:`Domain` range over open intervals. Each is written as a rational map of a fresh positive
-symbol ("chart"); an expression is positive when, after the substitution, numerator and denominator are sums of
-positive terms. Everything else is structure: products, powers, monotone functions, and the difference of two
-positive terms compared by their logarithms.
+The symbols of a :class:`Domain` range over open intervals. Each is written as a rational map of a fresh
+positive symbol ("chart"); an expression is positive when, after the substitution, numerator and denominator
+are sums of positive terms. Everything else is structure: products, powers, monotone functions, and the
+difference of two positive terms compared by their logarithms.
 
 Only True is an answer: None means "not proved", never "not positive".
 """
@@ -181,9 +181,7 @@ def _positive_function(expr: Expr, domain: Domain, depth: int) -> bool:
         return holds(argument - 1)
     if isinstance(expr, sp.cos):
         return holds(sp.pi / 2 - argument) and holds(sp.pi / 2 + argument)
-    if isinstance(expr, sp.erfc):
-        return True
-    return False
+    return isinstance(expr, sp.erfc)
 
 
 def _positive_chart(expr: Expr, domain: Domain) -> bool:
@@ -202,7 +200,7 @@ def _positive_sum(expr: Expr, domain: Domain, depth: int) -> bool:
     terms = expr.args
     if all(_positive(term, domain, depth) for term in terms):
         return True
-    if len(terms) == 2 and _positive_difference(*terms, domain, depth):
+    if len(terms) == 2 and _positive_difference(terms[0], terms[1], domain, depth):
         return True
     factored = sp.factor_terms(sp.factor(expr)) if expr.is_rational_function() else sp.factor_terms(expr)
     return bool(factored.is_Mul) and factored != expr and _positive_product(factored, domain, depth)

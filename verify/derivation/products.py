@@ -1,7 +1,7 @@
 """Take a positive expression apart into a product of powers, and its logarithm into terms in one variable.
 
-Splitting ``(a*b)**s`` into ``a**s * b**s`` is only true for positive a and b when s is not a whole number; every
-split here is backed by a proof of positivity on a :class:`~verify.derivation.positivity.Domain`.
+Splitting ``(a*b)**s`` into ``a**s * b**s`` is only true for positive a and b when s is not a whole number;
+every split here is backed by a proof of positivity on a :class:`~verify.derivation.positivity.Domain`.
 """
 
 from __future__ import annotations
@@ -20,7 +20,7 @@ Powers = dict[Expr, Expr]
 
 
 PROVABLE_SIZE = 12
-"""Up to so many operations the sign of a sum is worth a proof when nothing but its written form depends on it."""
+"""Up to so many operations the sign of a sum is proved when only its written form depends on it."""
 
 
 def rebuild(powers: Mapping[Expr, Expr]) -> Expr:
@@ -169,8 +169,11 @@ def _collect(base: Expr, exponent: Expr, x: Symbol, domain: Domain, constant: Po
 def _open_logs(expr: Expr, x: Symbol, domain: Domain) -> Expr:
     """Write log(c*x) as log(c) + log(x) inside an exponent, where both are positive."""
     logs = [g for g in expr.atoms(sp.log) if g.has(x) and (g.args[0].is_Mul or g.args[0].is_Pow)]
-    opened = {g: sp.Add(*(e * sp.log(b) if b != sp.E else e for b, e in split(g.args[0], domain).items()))
-              for g in logs if domain.positive(g.args[0])}
+    opened = {
+        g: sp.Add(*(e * sp.log(b) if b != sp.E else e for b, e in split(g.args[0], domain).items()))
+        for g in logs
+        if domain.positive(g.args[0])
+    }
     return expr.xreplace(opened)
 
 

@@ -1,8 +1,9 @@
 """Closed forms of ``sum of f(x)`` over whole numbers, from the ratio of neighbouring terms.
 
-When f(x+1)/f(x) is a rational function of x, the sum is f(first) times a generalised hypergeometric series whose
-parameters can be read off the ratio (Petkovsek, Wilf and Zeilberger, "A = B", 1996, chapter 3). Zeta-like sums, Abel's
-sum and the generating function of the Bessel functions are recognised by the shape of log f.
+When f(x+1)/f(x) is a rational function of x, the sum is f(first) times a generalised hypergeometric series
+whose parameters can be read off the ratio (Petkovsek, Wilf and Zeilberger, "A = B", 1996, chapter 3).
+Zeta-like sums, Abel's sum and the generating function of the Bessel functions are recognised by the shape
+of log f.
 """
 
 from __future__ import annotations
@@ -74,6 +75,7 @@ def _term_by_term(f: Expr, x: Symbol, lower: Expr, upper: Expr, domain: Domain) 
 
 # ---- the ratio of neighbouring terms
 
+
 @dataclass(frozen=True)
 class Ratio:
     """``f(x+1)/f(x) = scale * prod (x + a) / prod (x + b)``, a in ``above`` and b in ``below``."""
@@ -97,7 +99,9 @@ def term_ratio(f: Expr, x: Symbol, domain: Domain) -> Ratio | None:
     Ratio(scale=t, above=(), below=(1,))
     """
     scale, rational = sp.S.One, sp.S.One
-    moving = f.as_independent(x, as_Add=False)[1].replace(sp.binomial, lambda n, k: _binomial_up_to_constant(n, k, x))
+    moving = f.as_independent(x, as_Add=False)[1].replace(
+        sp.binomial, lambda n, k: _binomial_up_to_constant(n, k, x)
+    )
     for base, exponent in split(by_gamma(moving), domain).items():
         if not base.has(x):
             step = sp.expand(exponent.subs(x, x + 1) - exponent)
@@ -155,8 +159,9 @@ def _factored(scale: Expr, rational: Expr, x: Symbol) -> Ratio | None:
 
 # ---- hypergeometric series
 
+
 def hypergeometric_sum(f: Expr, x: Symbol, lower: Expr, upper: Expr, domain: Domain) -> Found:
-    """Sum a hypergeometric term, extending it to its natural first point and taking the extra terms off again."""
+    """Sum a hypergeometric term: extend it to its natural first point, and take the extra terms off again."""
     ratio = term_ratio(f, x, domain)
     if ratio is None:
         return None
@@ -187,7 +192,7 @@ def _first_term(f: Expr, x: Symbol, lower: Expr, upper: Expr) -> tuple[Expr, Exp
 
 
 def _natural_start(ratio: Ratio, lower: Expr) -> Expr | None:
-    """The point before which all terms vanish, at or not far below ``lower``, reached without a zero ratio."""
+    """The point before which all terms vanish, not far below ``lower`` and reached without a zero ratio."""
     if not lower.is_Integer:
         return None
     starts = [1 - b for b in ratio.below if b.is_Integer and 0 <= lower - (1 - b) <= LONGEST_PREFIX]
@@ -256,11 +261,16 @@ def _entire(above: list[Expr], below: list[Expr], z: Expr, stop: Expr) -> Found:
 
 
 SERIES: dict[tuple[int, int], Callable[[list[Expr], list[Expr], Expr, Expr], Found]] = {
-    (0, 0): _exponential, (1, 0): _binomial, (0, 1): _bessel, (2, 1): _gauss, (1, 1): _entire,
+    (0, 0): _exponential,
+    (1, 0): _binomial,
+    (0, 1): _bessel,
+    (2, 1): _gauss,
+    (1, 1): _entire,
 }
 
 
 # ---- sums that are not hypergeometric
+
 
 def _zeta(logs: LogTerms, x: Symbol, lower: Expr, domain: Domain) -> Found:
     """(x + a)**(-s), and z**x * x**(-s): DLMF 25.2.1, 25.11.1, 25.12.10."""
@@ -285,7 +295,8 @@ def _zeta(logs: LogTerms, x: Symbol, lower: Expr, domain: Domain) -> Found:
 def _abel(logs: LogTerms, x: Symbol, lower: Expr, domain: Domain) -> Found:
     """Abel's sum: sum of r*(r + j)**(j - 1) * (m*exp(-m))**j / j! = exp(r*m) for 0 < m <= 1.
 
-    Source: Consul and Famoye, "Lagrangian Probability Distributions" (2006), section 2.2; Borel (1942) for r = 1.
+    Source: Consul and Famoye, "Lagrangian Probability Distributions" (2006), section 2.2; Borel 1942 for r
+    = 1.
     """
     terms = dict(logs.terms)
     mixed = [g for g in terms if g.is_Mul and x in g.args and len(g.args) == 2]
@@ -304,7 +315,9 @@ def _abel(logs: LogTerms, x: Symbol, lower: Expr, domain: Domain) -> Found:
     return _abel_value(sp.gammasimp(rest / wanted), rate, r, lower, slope, x, domain)
 
 
-def _abel_value(rest: Expr, rate: Expr, r: Expr, lower: Expr, slope: Expr, x: Symbol, domain: Domain) -> Found:
+def _abel_value(
+    rest: Expr, rate: Expr, r: Expr, lower: Expr, slope: Expr, x: Symbol, domain: Domain
+) -> Found:
     rest = sp.simplify(rest)
     if rest.has(x):
         return None
@@ -316,7 +329,9 @@ def _abel_value(rest: Expr, rate: Expr, r: Expr, lower: Expr, slope: Expr, x: Sy
 
 def _inverse_of_m_exp_minus_m(rate: Expr, domain: Domain) -> Expr:
     """The m in (0, 1] with m*exp(-m) = exp(rate)."""
-    for candidate in [sp.exp(part) for part in sp.Add.make_args(rate)] + [-part for part in sp.Add.make_args(rate)]:
+    for candidate in [sp.exp(part) for part in sp.Add.make_args(rate)] + [
+        -part for part in sp.Add.make_args(rate)
+    ]:
         if sp.expand_log(sp.log(candidate) - candidate - rate) == 0 and _at_most_one(candidate, domain):
             return candidate
     return -sp.LambertW(-sp.exp(rate))
@@ -342,10 +357,15 @@ def _two_sided(f: Expr, x: Symbol, upper: Expr, domain: Domain) -> Found:
 
 
 def _bessel_generating(f: Expr, x: Symbol, domain: Domain) -> Found:
-    """sum of w**x * I_x(z) = exp(z*(w + 1/w)/2), with I_{-x} = I_x: DLMF 10.35.1 and 10.27.1."""
+    """The sum of w**x * I_x(z) = exp(z*(w + 1/w)/2), with I_{-x} = I_x: DLMF 10.35.1 and 10.27.1."""
     scale, constant, z = sp.S.One, sp.S.One, None
     for base, exponent in split(f, domain).items():
-        if isinstance(base, sp.besseli) and base.args[0] in (x, -x, sp.Abs(x)) and exponent == 1 and z is None:
+        if (
+            isinstance(base, sp.besseli)
+            and base.args[0] in (x, -x, sp.Abs(x))
+            and exponent == 1
+            and z is None
+        ):
             z = base.args[1]
         elif base.has(x) or sp.expand(exponent).coeff(x, 2) != 0 or not exponent.is_polynomial(x):
             return None
