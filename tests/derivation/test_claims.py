@@ -45,6 +45,7 @@ def _claims(density, n=10, **claim):
         (EXPONENTIAL, {"statistic": "3*x", "law": "Gamma(10, 1/(3*t))"}),
         (NORMAL, {"statistic": "x", "law": "normal(10*mu, sd=s*sqrt(n))"}),
         (NORMAL, {"statistic": "x - 1", "law": "Normal(10*mu - 10, 90)"}),
+        (NORMAL, {"statistic": "x/n", "natural_parameter": "n*mu/s**2", "law": "Normal(mu, s**2/n)"}),
     ],
 )
 def test_agrees(density, claim):

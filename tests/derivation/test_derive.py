@@ -10,7 +10,9 @@ from pathlib import Path
 import pytest
 import sympy as sp
 
+from verify.arithmetic.ball import balls, to_enclosure
 from verify.derivation.derive import Derivation, derive
+from verify.derivation.law_of_variance import CLOSED_FORMS
 from verify.derivation.ledger import Grade
 from verify.problem.density import Density
 from verify.problem.formula import parse_formula
@@ -90,7 +92,9 @@ def test_factorisation_is_the_density_in_numbers(known):
 )
 def test_exponential_family_without_closed_form(name, density):
     derivation = derive(Density(**density), budget=BUDGET)
-    assert derivation.family is None
+    assert derivation.family is not None
+    assert not isinstance(derivation.family.law, CLOSED_FORMS)
+    assert derivation.step("numerical look") is None
     for step in ("support", "nonnegativity", "factorisation", "monotonicity"):
         assert derivation.step(step).grade is Grade.PROVED, str(derivation)
     assert "neither quadratic nor a cube" in derivation.step("law").statement
@@ -113,6 +117,20 @@ def test_kernel_of_a_binomial_is_named():
     derivation = derive(density)
     assert derivation.grade is Grade.PROVED
     assert derivation.law == "binomial(trials = 10, probability = t/(t + 1))"
+
+
+def test_table_of_weights():
+    density = Density(
+        weights=["1", "3", "0", "1"], variable="x", support="integers 0..3", parameter="t", space="t > 0"
+    )
+    derivation = derive(density)
+    assert derivation.grade is Grade.PROVED
+    assert (derivation.statistic, derivation.natural_parameter) == (density.x, sp.log(density.t))
+    with balls(100) as A:
+        law = derivation.family.at(Fraction(2), 1)
+        masses = [to_enclosure(law.density(A, v)) for v in range(4)]
+    for mass, wanted in zip(masses, (1, 6, 0, 8), strict=True):
+        assert mass.contains(Fraction(wanted, 15))
 
 
 def test_law_of_the_sum_at_a_value():

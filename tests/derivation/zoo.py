@@ -68,6 +68,20 @@ KNOWN = (
         "Bernoulli", _d("p**x*(1-p)**(1-x)", "integers 0..1", "p", "0 < p < 1"), "x", "binomial", ("1", "p")
     ),
     Known(
+        "Bernoulli as a sum",
+        _d("p*x + (1-p)*(1-x)", "integers 0..1", "p", "0 < p < 1"),
+        "x",
+        "binomial",
+        ("1", "p"),
+    ),
+    Known(
+        "Bernoulli by odds less one",
+        _d("(1+t*x)/(2+t)", "integers 0..1", "t", "t > 0"),
+        "x",
+        "binomial",
+        ("1", "(1+t)/(2+t)"),
+    ),
+    Known(
         "binomial",
         _d("binomial(m,x)*p**x*(1-p)**(m-x)", "integers 0..m", "p", "0 < p < 1", m="10"),
         "x",

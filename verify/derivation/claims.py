@@ -56,7 +56,7 @@ def claims_steps(claim: Mapping[str, str], derived: Derived) -> tuple[Step, ...]
         ("statistic", density.x, derived.statistic, support_points(density.parsed_support)),
     ):
         if key in claim:
-            claimed = _read(claim[key], density, symbol, f"claim.{key}")
+            claimed = _read(claim[key], derived, symbol, f"claim.{key}")
             maps[key] = affine_map(claimed, ours, symbol, points)
             steps.append(_affine_step(key.replace("_", " "), claim[key], ours, maps[key]))
     if len(maps) == 2:
@@ -66,8 +66,10 @@ def claims_steps(claim: Mapping[str, str], derived: Derived) -> tuple[Step, ...]
     return tuple(steps)
 
 
-def _read(text: str, density: Density, symbol: Symbol, key: str) -> Expr:
-    return parse_formula(text, {**density.constant_symbols, symbol.name: symbol}, key)
+def _read(text: str, derived: Derived, symbol: Symbol, key: str) -> Expr:
+    """Read a claimed function; n is known in it when the number of observations is."""
+    count = {} if derived.n is None else {"n": sp.Integer(derived.n)}
+    return parse_formula(text, {**count, **derived.density.constant_symbols, symbol.name: symbol}, key)
 
 
 def _affine_step(what: str, text: str, ours: Expr, found: Affine) -> Step:

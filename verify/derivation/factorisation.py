@@ -15,10 +15,11 @@ from dataclasses import dataclass
 import sympy as sp
 from sympy import Expr, Symbol
 
-from verify.derivation.logarithm import log_absolute
+from verify.derivation.logarithm import combine_logs, log_absolute, open_logs
 from verify.derivation.plain import plain_pair
 from verify.derivation.positivity import Domain
 from verify.derivation.separation import Separated, separate
+from verify.derivation.signs import sign_of
 from verify.derivation.zero import is_constant, is_zero, normal
 
 
@@ -79,6 +80,30 @@ def factorise_by_difference(
     return None if pair is None else _identity(logarithm, *plain_pair(*pair, x, t), x, t, domain)
 
 
+def factorise_two_points(
+    first: Expr, second: Expr, x: Symbol, t: Symbol, domain: Domain, places: tuple[Expr, Expr]
+) -> Factorisation | None:
+    """Return the factorisation of masses on two points, where every family is exponential, with T = x.
+
+    With f(a) and f(b) positive, ``f(x) = exp(Q x - A)`` at both points for Q = log(f(b)/f(a))/(b - a) and
+    A = a Q - log f(a).
+
+    Examples
+    --------
+    >>> x, t = sp.symbols("x t", positive=True)
+    >>> places = (sp.Integer(0), sp.Integer(1))
+    >>> found = factorise_two_points(1 - t, t, x, t, Domain({t: places}), places)
+    >>> found.natural_parameter, found.log_normaliser
+    (log(t/(1 - t)), -log(1 - t))
+    """
+    if sign_of(first, domain) != 1 or sign_of(second, domain) != 1:
+        return None
+    a, b = places
+    low, high = log_absolute(first, domain), log_absolute(second, domain)
+    natural = sp.expand((high - low) / (b - a))
+    return Factorisation(x, combine_logs(natural), sp.S.Zero, sp.expand(a * natural - low))
+
+
 def _rank_one(parts: Separated, t: Symbol, t0: Expr) -> tuple[Expr, Expr] | None:
     """Merge the products whose coefficients are proportional up to a constant."""
     if parts.tangled != 0 or not parts.products:
@@ -122,14 +147,8 @@ def _identity(
     logarithm: Expr, statistic: Expr, natural: Expr, x: Symbol, t: Symbol, domain: Domain
 ) -> Factorisation | None:
     """Prove log f = log h + Q T - A for the chosen Q and T by parting the difference, or return None."""
-    product = sp.expand(_opened(natural, domain) * _opened(statistic, domain))
+    product = sp.expand(open_logs(natural, domain) * open_logs(statistic, domain))
     rest = separate(sp.expand(logarithm) - product, x, t)
     if any(not is_zero(coefficient) for coefficient in rest.products.values()) or not is_zero(rest.tangled):
         return None
     return Factorisation(statistic, natural, sp.expand(rest.of_x), sp.factor_terms(-rest.of_t))
-
-
-def _opened(expr: Expr, domain: Domain) -> Expr:
-    """Open the logarithms that were combined for reading."""
-    logarithms = {log: log_absolute(log.args[0], domain) for log in expr.atoms(sp.log)}
-    return expr.xreplace(logarithms)

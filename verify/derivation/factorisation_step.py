@@ -2,9 +2,14 @@
 
 from __future__ import annotations
 
-from verify.derivation.factorisation import Factorisation, factorise, factorise_by_difference
+from verify.derivation.factorisation import (
+    Factorisation,
+    factorise,
+    factorise_by_difference,
+    factorise_two_points,
+)
 from verify.derivation.ledger import Grade, Step
-from verify.derivation.points import domain_of, parameter_points, support_points
+from verify.derivation.points import domain_of, mass_at, parameter_points, support_points
 from verify.derivation.witness import rank_witness
 from verify.errors import SidecheckError
 from verify.problem.density import Density
@@ -22,6 +27,10 @@ def factorisation_step(density: Density) -> tuple[Step, Factorisation | None]:
             "factorisation", Grade.REFUTED, statement, "", f"{t} does not occur in {density.expr}"
         ), None
     found = factorise(density.expr, x, t, domain, (xs[0], ts[0]))
+    if found is None and density.parsed_support.is_finite and len(density.parsed_support.points) == 2:
+        found = factorise_two_points(
+            mass_at(density, xs[0]), mass_at(density, xs[1]), x, t, domain, (xs[0], xs[1])
+        )
     if found is not None:
         return _proved(density, found)
     try:

@@ -7,6 +7,7 @@ from typing import Any
 
 from sympy import Symbol
 
+from verify.derivation.logarithm import combine_logs
 from verify.laws.base import Law
 from verify.problem.numbers import Exact, as_exact, as_expr, exact_text
 
@@ -52,11 +53,13 @@ class LawFamily:
     def text(self, n: Any = 1) -> str:
         """Return the law of V = sum of T over n observations as a line to read."""
         law = str(self.law.sum_of(n))
-        scale, shift = as_expr(self.scale), as_expr(self.shift) * n
+        scale, shift = as_expr(self.scale), combine_logs(as_expr(self.shift)) * n
         if (scale, shift) == (1, 0):
             return law
         factor = "" if scale == 1 else "-" if scale == -1 else f"{exact_text(self.scale)} * "
-        constant = "" if shift == 0 else f" - {-shift}" if shift.could_extract_minus_sign() else f" + {shift}"
+        shown = f"({shift})" if shift.is_Add else str(shift)
+        negative = shift.could_extract_minus_sign() and not shift.is_Add
+        constant = "" if shift == 0 else f" - {-shift}" if negative else f" + {shown}"
         return f"{factor}Y{constant} with Y of law {law}"
 
     def __str__(self) -> str:

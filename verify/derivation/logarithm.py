@@ -32,7 +32,7 @@ def log_absolute(expr: sp.Expr, domain: Domain) -> sp.Expr:
     if isinstance(expr, sp.Mul):
         return sp.Add(*(log_absolute(factor, domain) for factor in expr.args))
     if isinstance(expr, sp.exp):
-        return expr.exp
+        return open_logs(expr.exp, domain)
     if isinstance(expr, sp.Pow):
         return sp.Mul(expr.exp, log_absolute(expr.base, domain))
     if isinstance(expr, sp.Abs):
@@ -56,6 +56,23 @@ def _log_atom(expr: sp.Expr, domain: Domain) -> sp.Expr:
     if sign == 0:
         return sp.log(expr**2) / 2
     return sp.log(expr if sign > 0 else -expr)
+
+
+def open_logs(expr: sp.Expr, domain: Domain) -> sp.Expr:
+    """Expand the logarithms inside an expression whose arguments are proved positive.
+
+    Examples
+    --------
+    >>> p = sp.Symbol("p", positive=True)
+    >>> open_logs(sp.log(p/(1 - p)), Domain({p: (sp.Integer(0), sp.Integer(1))}))
+    log(p) - log(1 - p)
+    """
+    opened = {}
+    for logarithm in expr.atoms(sp.log):
+        argument = logarithm.args[0]
+        if argument.free_symbols and not argument.is_Symbol and sign_of(argument, domain) == 1:
+            opened[logarithm] = log_absolute(argument, domain)
+    return sp.expand_mul(expr.xreplace(opened)) if opened else expr
 
 
 def combine_logs(expr: sp.Expr) -> sp.Expr:

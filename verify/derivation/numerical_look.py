@@ -22,7 +22,10 @@ from verify.problem.density import Density
 from verify.problem.numbers import as_exact, as_expr
 
 DIGITS = 30
-"""Decimal digits of the look at a continuous law."""
+"""Decimal digits up to which agreement is counted."""
+
+WORKING_DIGITS = 80
+"""Decimal digits of the quadrature: its first nodes lie 1e-60 from the end, where a branch may cancel."""
 
 ENOUGH = 10
 """Digits that must agree."""
@@ -126,7 +129,7 @@ def _continuous(
     density: Density, statistic: Expr, family: LawFamily, at: Expr, value: Any
 ) -> tuple[int, int, str] | None:
     """The integral of g(y) g(v - y) by quadrature, with g the density of Y made from f by its branches."""
-    A = high(DIGITS)
+    A = high(WORKING_DIGITS)
     g = _density_of_y(density, statistic, family, at, A)
     if g is None:
         return None

@@ -52,8 +52,16 @@ def _derivatives(expr: Expr, t: Symbol) -> list[Expr]:
     derivatives = []
     for _ in range(ORDER):
         expr = sp.diff(expr, t)
-        derivatives.append(expr)
+        derivatives.append(expr.replace(sp.Derivative, _known_derivative))
     return derivatives
+
+
+def _known_derivative(function: Expr, variable: sp.Tuple) -> Expr:
+    """Name the derivatives that balls know: those of the zeta function."""
+    symbol, order = variable
+    if isinstance(function, sp.zeta) and function.args == (symbol,):
+        return sp.Function("zeta_derivative")(order, symbol)
+    return sp.Derivative(function, variable)
 
 
 def _coefficients(A: Any, slopes: list[list[Expr]], t: Symbol, point: Expr) -> tuple[Any, Any]:
