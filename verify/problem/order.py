@@ -50,7 +50,7 @@ def sign(expr: sympy.Expr) -> int:
         As in ``compare``.
     """
     if expr.is_Rational:
-        return (expr.p > 0) - (expr.p < 0)
+        return int(expr.p > 0) - int(expr.p < 0)
     for digits in PRECISIONS:
         seen = _numeric_sign(expr, digits)
         if seen:

@@ -16,7 +16,7 @@ from typing import Any
 
 from verify.errors import SidecheckError
 
-SECONDS = 2.0
+SECONDS = 1.5
 """CPU time for one text or one comparison."""
 
 
