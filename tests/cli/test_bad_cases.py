@@ -44,33 +44,34 @@ CHANGES = {
 }
 
 
-def test_the_good_case_is_good(sidecheck) -> None:
-    done = sidecheck("derive", "-", stdin=GOOD)
+def test_the_good_case_is_good(sidecheck_here) -> None:
+    done = sidecheck_here("derive", text=GOOD)
     assert (done.returncode, done.stderr) == (0, "")
 
 
 @pytest.mark.parametrize("name", CHANGES)
-def test_one_change_gives_one_line_and_status_2(sidecheck, name) -> None:
+def test_one_change_gives_one_line_and_status_2(sidecheck_here, name) -> None:
     old, new, key = CHANGES[name]
     assert old in GOOD
-    done = sidecheck("solve", "-", stdin=GOOD.replace(old, new))
+    done = sidecheck_here("solve", text=GOOD.replace(old, new))
     assert done.returncode == 2, done.stderr
     assert done.stdout == ""
     assert len(done.stderr.splitlines()) == 1
     assert key in done.stderr
+    assert "here.case.toml: " in done.stderr
 
 
-def test_no_problem_cannot_be_solved_but_can_be_derived(sidecheck) -> None:
+def test_no_problem_cannot_be_solved_but_can_be_derived(sidecheck_here) -> None:
     text = GOOD[: GOOD.index("[problem]")]
-    assert sidecheck("derive", "-", stdin=text).returncode == 0
-    done = sidecheck("solve", "-", stdin=text)
+    assert sidecheck_here("derive", text=text).returncode == 0
+    done = sidecheck_here("solve", text=text)
     assert done.returncode == 2
     assert "[problem]" in done.stderr
 
 
 @pytest.mark.parametrize("data", ["", "\ufeff", "\x00", "[[[[" * 2000, "a = 1\n" * 3])
-def test_what_is_no_case_file_at_all(sidecheck, data) -> None:
-    done = sidecheck("derive", "-", stdin=data)
+def test_what_is_no_case_file_at_all(sidecheck_here, data) -> None:
+    done = sidecheck_here("derive", text=data)
     assert done.returncode == 2
     assert len(done.stderr.splitlines()) == 1
     assert len(done.stderr) < 500

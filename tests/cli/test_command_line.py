@@ -19,8 +19,8 @@ def test_help_lists_every_command(sidecheck) -> None:
 
 
 @pytest.mark.parametrize("name", COMMANDS)
-def test_each_command_has_help_with_an_example(sidecheck, name) -> None:
-    done = sidecheck(name, "--help")
+def test_each_command_has_help_with_an_example(sidecheck_here, name) -> None:
+    done = sidecheck_here(name, "--help")
     assert done.returncode == 0
     assert f"example:\n  sidecheck {name}" in done.stdout
     assert "--json" in done.stdout
@@ -46,8 +46,8 @@ def test_each_command_has_help_with_an_example(sidecheck, name) -> None:
         ["derive", ""],
     ],
 )
-def test_unusable_command_line_is_one_line_and_status_2(sidecheck, words) -> None:
-    done = sidecheck(*words)
+def test_unusable_command_line_is_one_line_and_status_2(sidecheck_here, words) -> None:
+    done = sidecheck_here(*words)
     assert done.returncode == 2
     assert done.stdout == ""
     assert len(done.stderr.splitlines()) == 1

@@ -21,21 +21,9 @@ alpha = "0.05"
 n = 10
 """
 
-FORMULAS = {
+DANGEROUS = {
     "import": "__import__('os').system('touch HARMED')",
     "open": "open('HARMED', 'w')",
-    "attribute": "x.__class__.__mro__[1].__subclasses__()",
-    "attribute of a number": "(1).__class__",
-    "lambda": "(lambda: 1)()",
-    "comprehension": "[x for x in (1,)]",
-    "walrus": "(y := 1)",
-    "string": "'x' * 10",
-    "formatted string": "f'{x}'",
-    "subscript": "x[0]",
-    "comparison": "x < 1",
-    "conditional": "1 if x else 2",
-    "keyword argument": "exp(x, evaluate=False)",
-    "star argument": "exp(*x)",
     "tower of powers": "9**9**9**9",
     "tower of powers with a variable": "x**9**9**9",
     "large factorial": "factorial(10**12)",
@@ -48,11 +36,26 @@ FORMULAS = {
     "5 000 brackets": "(" * 5000 + "x" + ")" * 5000,
     "5 000 minus signs": "-" * 5000 + "x",
     "20 000 terms": "+".join(["x"] * 20_000),
+}
+"""Each in a process of its own, with little memory."""
+
+REFUSED = {
+    "attribute": "x.__class__.__mro__[1].__subclasses__()",
+    "attribute of a number": "(1).__class__",
+    "lambda": "(lambda: 1)()",
+    "comprehension": "[x for x in (1,)]",
+    "walrus": "(y := 1)",
+    "string": "'x' * 10",
+    "formatted string": "f'{x}'",
+    "subscript": "x[0]",
+    "comparison": "x < 1",
+    "conditional": "1 if x else 2",
+    "keyword argument": "exp(x, evaluate=False)",
+    "star argument": "exp(*x)",
     "look-alike letter": "exp(-lаm)",  # the second letter of lam is Cyrillic
     "look-alike digit": "exp(-lam)*x**٣",
     "full-width letters": "ｅｘｐ(-lam)",
     "null byte": "exp(-lam)\x00*x",
-    "newline": "exp(-lam)\n*x",
     "empty": "",
     "blank": "   ",
     "statement": "import os",
@@ -74,18 +77,27 @@ def limited() -> None:
     resource.setrlimit(resource.RLIMIT_AS, (2 * 1024**3, 2 * 1024**3))
 
 
-@pytest.mark.parametrize("name", FORMULAS)
-def test_hostile_formula(name, tmp_path) -> None:
-    text = CASE.format(formula=json.dumps(FORMULAS[name]))
-    command = [sys.executable, "-m", "verify", "solve", "-"]
-    root = Path(__file__).parents[2]
-    done = subprocess.run(
-        command, input=text, capture_output=True, text=True, timeout=30, preexec_fn=limited, cwd=tmp_path,
-        env={"PYTHONPATH": str(root), "PATH": ""},
-    )  # fmt: skip
+def refused(done) -> None:
     assert done.returncode == 2, done.stderr
     assert done.stdout == ""
     assert len(done.stderr.splitlines()) == 1
     assert len(done.stderr) < 600
     assert "density.formula" in done.stderr
+
+
+@pytest.mark.parametrize("name", DANGEROUS)
+def test_dangerous_formula(name, tmp_path) -> None:
+    text = CASE.format(formula=json.dumps(DANGEROUS[name]))
+    command = [sys.executable, "-m", "verify", "solve", "-"]
+    root = Path(__file__).parents[2]
+    done = subprocess.run(
+        command, input=text, capture_output=True, text=True, timeout=60, preexec_fn=limited, cwd=tmp_path,
+        env={"PYTHONPATH": str(root), "PATH": ""},
+    )  # fmt: skip
+    refused(done)
     assert list(tmp_path.iterdir()) == []
+
+
+@pytest.mark.parametrize("name", REFUSED)
+def test_refused_formula(name, sidecheck_here) -> None:
+    refused(sidecheck_here("solve", text=CASE.format(formula=json.dumps(REFUSED[name]))))

@@ -90,4 +90,4 @@ def test_a_wrong_claim_is_refuted_and_the_right_test_still_shown(sidecheck) -> N
     assert done.returncode == 1
     answer = json.loads(done.stdout)
     assert answer["cutoffs"] is not None
-    assert [step["grade"] for step in answer["steps"] if step["name"] == "claims"] == ["refuted"]
+    assert "refuted" in [step["grade"] for step in answer["steps"] if step["name"] == "claims"]

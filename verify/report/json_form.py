@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from typing import TYPE_CHECKING, Any
 
 from verify.problem.numbers import exact_text
@@ -88,22 +89,11 @@ def side_conditions_json(solution: Solution) -> list[dict[str, Any]]:
 
 
 def comparison_json(comparison: Comparison | None) -> dict[str, Any] | None:
-    """Write what double precision says about the same numbers."""
+    """Write what double precision says about the same numbers; an infinite condition number is null."""
     if comparison is None:
         return None
-    return {
-        "opinions": [
-            {
-                "route": opinion.route,
-                "numbers": opinion.numbers,
-                "digits": opinion.digits,
-                "note": opinion.note,
-            }
-            for opinion in comparison.opinions
-        ],
-        "flags": [{"kind": flag.kind, "number": flag.number, "text": flag.text} for flag in comparison.flags],
-        "condition": None if comparison.condition is None else f"{comparison.condition:.3g}",
-    }
+    form, condition = comparison.as_json(), comparison.condition
+    return form | {"condition": condition if condition is not None and math.isfinite(condition) else None}
 
 
 def run_json(run: CaseRun) -> dict[str, Any]:

@@ -201,31 +201,31 @@ def named_numbers(solution: Solution) -> list[tuple[str, Enclosure]]:
 
 
 def _compared(comparison: Comparison) -> str:
-    lines = [heading(4, "Compared with double precision")]
-    names = list(dict.fromkeys(name for opinion in comparison.opinions for name in opinion.numbers))
-    rows = [["", *(opinion.route for opinion in comparison.opinions)]]
-    for name in names:
-        rows.append(
-            [
-                name,
-                *(
-                    _cell(opinion.numbers.get(name), opinion.digits.get(name))
-                    for opinion in comparison.opinions
-                ),
-            ]
+    opinions = comparison.opinions
+    lines = [heading(4, "Compared with double precision"), table(_opinion_rows(comparison))]
+    remarks = [(opinion.route, opinion.failure or opinion.note) for opinion in opinions]
+    lines += [wrapped(text, first=f"  {route}: ", rest="    ") for route, text in remarks if text]
+    if comparison.condition is not None:
+        lines.append(
+            f"  A relative error e in a tail moves these numbers by up to {comparison.condition:.2g} e."
         )
-    lines.append(table(rows))
-    lines += [wrapped(o.note, first=f"  {o.route}: ", rest="      ") for o in comparison.opinions if o.note]
     if comparison.flags:
         lines += [
             wrapped(f"{flag.kind}: {flag.text}", first="  ! ", rest="    ") for flag in comparison.flags
         ]
-    else:
-        lines.append("  No flag: double precision can be trusted on this problem to the digits shown.")
+    elif all(opinion.numbers for opinion in opinions):
+        lines.append("  No flag: here double precision can be trusted to the digits shown.")
     return "\n".join(lines)
 
 
-def _cell(value: str | None, digits: int | None) -> str:
-    if value is None:
-        return "none"
-    return value if digits is None else f"{value}  ({digits} digits agree)"
+def _opinion_rows(comparison: Comparison) -> list[list[str]]:
+    """One row a number: what each route says, and how many of its digits are right."""
+    names = list(dict.fromkeys(name for opinion in comparison.opinions for name in opinion.numbers))
+    rows = [["", *(cell for opinion in comparison.opinions for cell in (opinion.route, "right digits"))]]
+    for name in names:
+        row = [name.replace("expectation", "condition ")]
+        for opinion in comparison.opinions:
+            value, digits = opinion.numbers.get(name), opinion.digits.get(name)
+            row += ["none" if value is None else value, "" if digits is None else str(digits)]
+        rows.append(row)
+    return rows

@@ -1,0 +1,205 @@
+"""``sidecheck review``: a colleague's derivation and cutoffs, confirmed or refuted with the reason."""
+
+from __future__ import annotations
+
+import argparse
+import contextlib
+import json
+import sys
+import tempfile
+from collections.abc import Callable, Iterable, Iterator
+from pathlib import Path
+from typing import TYPE_CHECKING, Any
+
+from verify.cli import status
+from verify.cli.options import add_budget, add_case, add_json, digits
+from verify.cli.output import note, show_json
+
+if TYPE_CHECKING:
+    from verify.problem.casefile import Case
+    from verify.review.cells import Table
+    from verify.review.journal import Journal
+    from verify.review.run import Job
+
+EXAMPLE = "sidecheck review casebook/demo/beads.case.toml casebook/demo/beads.csv -o reviewed.csv --memo memo.html"
+ROW_DIGITS, CLAIM_DIGITS = 20, 50
+Records = Callable[[], Iterable[dict[str, Any]]]
+
+
+def add(parser: argparse.ArgumentParser) -> None:
+    """Add the arguments of the command."""
+    add_case(parser)
+    parser.add_argument("table", metavar="TABLE", nargs="?", help="a table of claims: .csv, .tsv, .xlsx or .json; its columns are "
+                        "mapped in [table] of the case file. Without it the [claim] of the case file is reviewed")  # fmt: skip
+    parser.add_argument("-o", "--output", metavar="OUT", help="write a copy of the table with the verdicts beside its rows; an "
+                        "interrupted run goes on where it stopped")  # fmt: skip
+    parser.add_argument("--memo", metavar="FILE", help="write a review memo, .md or .html")
+    parser.add_argument("--digits", type=digits, metavar="N", default=None,
+                        help=f"significant digits to prove (default {CLAIM_DIGITS}; {ROW_DIGITS} for a table)")  # fmt: skip
+    parser.add_argument("--workers", type=_workers, default=1, metavar="N", help="processes for a long table (default 1)")
+    add_budget(parser)
+    add_json(parser)
+
+
+def _workers(text: str) -> int:
+    if not (text.isascii() and text.isdigit() and 1 <= int(text) <= 256):
+        raise argparse.ArgumentTypeError(f"{text[:20]!r} is not a number of processes from 1 to 256")
+    return int(text)
+
+
+def run(args: argparse.Namespace) -> int:
+    """Review, print, write what is wanted, and return the exit status."""
+    from verify.errors import InputError
+    from verify.problem.casefile import read_case
+
+    if args.memo and not args.memo.lower().endswith((".md", ".html", ".htm")):
+        raise InputError(f"a memo cannot be written as {args.memo}", "name it .md or .html", key="--memo")
+    case = read_case(args.case)
+    if args.table is None:
+        if args.output:
+            raise InputError("there is no table to write a copy of", "give the table after the case file", key="--output")
+        return _claim(case, args)
+    return _table(case, args)
+
+
+def _claim(case: Case, args: argparse.Namespace) -> int:
+    from verify.report.review_text import claim_text
+    from verify.review.reviewer import Reviewer
+
+    reviewer = Reviewer(case, digits=args.digits or CLAIM_DIGITS, budget=args.budget)
+    record = reviewer.claim()
+    if args.json:
+        show_json({"rows": [record]})
+    else:
+        print(claim_text(record))
+    if args.memo:
+        _write_memo(args.memo, case, "", [("", reviewer.derivation(case, case.problem))], lambda: [record])
+    return _status([record])
+
+
+def _table(case: Case, args: argparse.Namespace) -> int:
+    from verify.review.annotate import NUMBERS, write_annotated
+    from verify.review.cells import open_table
+    from verify.review.journal import Journal
+    from verify.review.mapping import map_columns
+    from verify.review.run import Job, fingerprint
+
+    table = open_table(args.table)
+    _refuse_same_file(args)
+    columns = map_columns(case.table, table.header, args.table)
+    job = Job(case, columns, Path(args.table).parent, args.digits or ROW_DIGITS, args.budget, args.workers)
+    with _journal_place(args.output) as place:
+        import verify
+
+        journal = Journal(place, fingerprint(job, Path(args.table), verify.__version__))
+        _run(job, table, journal)
+        code = _show(journal, args.json)
+        if args.output:
+            write_annotated(table, Path(args.output), journal.records(), [name for name in NUMBERS if name in columns.columns])
+        if args.memo:
+            _write_memo(args.memo, case, Path(args.table).name, _derivations(job, journal), journal.records)
+        if args.output:
+            journal.remove()
+    return code
+
+
+def _refuse_same_file(args: argparse.Namespace) -> None:
+    from verify.errors import InputError
+
+    for given, key in ((args.output, "--output"), (args.memo, "--memo")):
+        if given and Path(given).resolve() in (Path(args.table).resolve(), Path(args.case).resolve()):
+            raise InputError(f"{given} is an input", "write to another file", key=key)
+    if args.output and Path(args.output).suffix.lower() != Path(args.table).suffix.lower():
+        raise InputError(f"the copy of {args.table} has another ending", f"name it {Path(args.table).suffix}", key="--output")
+
+
+@contextlib.contextmanager
+def _journal_place(output: str | None) -> Iterator[Path]:
+    """Beside the output, where an interrupted run is found again; without an output, in a directory that goes away."""
+    if output:
+        yield Path(output + ".journal")
+        return
+    with tempfile.TemporaryDirectory(prefix="sidecheck-") as folder:
+        yield Path(folder) / "journal"
+
+
+def _run(job: Job, table: Table, journal: Journal) -> None:
+    from verify.review.run import run
+
+    if journal.done:
+        note(f"{journal.done} rows were done before; going on after them")
+    if not sys.stderr.isatty():
+        run(job, table, journal, _plain_progress())
+        return
+    from rich.console import Console
+    from rich.progress import MofNCompleteColumn, Progress, SpinnerColumn, TextColumn, TimeElapsedColumn
+
+    total = sum(1 for _ in table.rows())
+    columns = (SpinnerColumn(), TextColumn("rows"), MofNCompleteColumn(), TimeElapsedColumn())
+    with Progress(*columns, console=Console(stderr=True), transient=True) as bar:
+        task = bar.add_task("rows", total=total, completed=journal.done)
+        run(job, table, journal, lambda done: bar.update(task, completed=done))
+
+
+def _plain_progress() -> Callable[[int], None]:
+    """A line on stderr now and then: at 1000 rows, then each time the number has doubled or grown by 10 000."""
+    state = {"next": 1000}
+
+    def progress(done: int) -> None:
+        if done >= state["next"]:
+            note(f"{done} rows")
+            state["next"] = min(2 * done, done + 10_000)
+
+    return progress
+
+
+def _show(journal: Journal, as_json: bool) -> int:
+    from verify.report.review_text import print_rows
+
+    if not as_json:
+        print_rows(journal.records())
+        return _status(journal.records())
+    print('{"rows": [')
+    for index, record in enumerate(journal.records()):
+        print((",\n" if index else "") + json.dumps(record, ensure_ascii=False), end="")
+    print("\n]}")
+    return _status(journal.records())
+
+
+def _status(records: Iterable[dict[str, Any]]) -> int:
+    """1 when a row differs or is refuted, else 2 when one could not be used, else 3 when one is undecided, else 0.
+
+    A last digit that is rounded otherwise is no difference: it is 0, and the summary says it.
+    """
+    from verify.review.record import kind_of
+
+    kinds = {kind_of(record) for record in records}
+    if kinds & {"differs", "refuted"}:
+        return status.DIFFERS
+    if "unusable" in kinds:
+        return status.UNUSABLE
+    return status.UNDECIDED if "undecided" in kinds else status.OK
+
+
+def _derivations(job: Job, journal: Journal) -> list[tuple[str, Any]]:
+    """The derivations that the rows of a table lean on, each once."""
+    from verify.errors import InputError
+
+    reviewer, found = job.reviewer(), []
+    for name in dict.fromkeys(record["case"] for record in journal.records()):
+        with contextlib.suppress(InputError):  # a case that could not be read is reported at its rows
+            case = reviewer.case_named(name)
+            found.append((name, reviewer.derivation(case, case.problem)))
+    return found
+
+
+def _write_memo(path: str, case: Case, table: str, derivations: list[tuple[str, Any]], records: Records) -> None:
+    import verify
+    from verify.report.memo import Memo
+    from verify.report.memo_blocks import html, markdown
+
+    memo = Memo(case, table, verify.__version__, derivations)
+    blocks = memo.blocks(records)
+    pieces = markdown(blocks) if path.lower().endswith(".md") else html(blocks, f"Review memo: {case.title or case.name}")
+    with open(path, "w", encoding="utf-8") as stream:
+        stream.writelines(pieces)
