@@ -1,0 +1,117 @@
+"""Solve for the test of given laws and levels: what a slip changes is a law or a level, the machinery stays the same."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from fractions import Fraction
+from functools import cached_property
+from typing import Any
+
+from verify.arithmetic.ball import balls, to_enclosure
+from verify.laws import Law
+from verify.review.numbers import complement
+from verify.solution.conditions import Conditions, end_fractions
+from verify.solution.continuous_window import ContinuousSearch, solve_continuous_window
+from verify.solution.critical import CriticalFunction
+from verify.solution.lattice_window import LatticeSearch, solve_lattice_window
+from verify.solution.one_sided import TailProblem
+from verify.solution.precision import bits_for
+from verify.solution.start import Rough
+from verify.solution.window import rough_laws, search_precision
+
+
+@dataclass(frozen=True)
+class TwoSided:
+    """A two-sided problem on the scale of Y.
+
+    Attributes
+    ----------
+    laws : tuple of Law
+        At the two limits, or the one of a point null.
+    levels : tuple of Exact
+        One for each limit.
+    outside : bool
+        Whether the test rejects outside the window.
+    """
+
+    laws: tuple[Law, ...]
+    levels: tuple[Any, ...]
+    outside: bool
+
+    @cached_property
+    def _rough(self) -> tuple[tuple[Rough, ...], int, bool]:
+        return rough_laws(self.laws)
+
+    @cached_property
+    def conditions(self) -> Conditions:
+        """The side conditions."""
+        return Conditions(self.laws, self.levels, self.outside, tuple(law.mean for law in self._rough[0]))
+
+    @cached_property
+    def prec(self) -> int:
+        """Bits of the search."""
+        narrow = not self.outside and not self.laws[0].lattice
+        return search_precision(self._rough[0], self.levels, self._rough[1], narrow=narrow)
+
+    def solve(self, digits: int) -> CriticalFunction:
+        """Search for the window and prove it.
+
+        Raises
+        ------
+        UndecidedError, InputError
+            When the window cannot be proved, or none has these levels.
+        """
+        if not self.outside and len(self.laws) == 1:
+            return self._inside_at_one_point(digits)
+        rough, _, rising = self._rough
+        if self.laws[0].lattice:
+            window = solve_lattice_window(LatticeSearch(self.conditions, rough, rising, self.prec), digits)
+        else:
+            window = solve_continuous_window(ContinuousSearch(self.conditions, rough, rising, self.prec), digits)
+        region = "outside" if self.outside else "inside"
+        return CriticalFunction(region, window.c1, window.c2, window.phi1, window.phi2)  # type: ignore[arg-type]
+
+    def _inside_at_one_point(self, digits: int) -> CriticalFunction:
+        """The limit of two close limits: the complement of the test of the point at level 1 - alpha."""
+        other = TwoSided(self.laws, tuple(1 - level for level in self.levels), True).solve(digits)
+        return CriticalFunction("inside", other.c1, other.c2, complement(other.phi1), complement(other.phi2))
+
+    def confirm(self, c1: int, c2: int, digits: int) -> CriticalFunction | None:
+        """Look at one pair of lattice points: a pair whose fractions certainly lie inside (0, 1) is the test, no search needed.
+
+        Returns None when it is not, or when it is a tie or too few digits are reached.
+
+        Notes
+        -----
+        Source: Lehmann and Romano 2005, Theorem 3.7.1: a critical function of this shape that satisfies the side conditions is
+        the one.
+        """
+        low, high = self.laws[0].support
+        if c1 >= c2 or (low is not None and c1 < low) or (high is not None and c2 > high):
+            return None
+        wanted = bits_for(digits)
+        with balls(wanted + self.prec - 56) as A:
+            first, second = end_fractions(self.conditions, A, c1, c2)
+            certain = first > 0 and first < 1 and second > 0 and second < 1
+            if not certain or min(first.rel_accuracy_bits(), second.rel_accuracy_bits()) < wanted - 16:
+                return None
+            region = "outside" if self.outside else "inside"
+            ends = (to_enclosure(first), to_enclosure(second))
+        return CriticalFunction(region, c1, c2, *ends)  # type: ignore[arg-type]
+
+
+def solve_tail(law: Law, level: Any, *, above: bool, digits: int) -> CriticalFunction:
+    """Return the one-sided test that rejects above (or below) its cutoff with a probability of ``level``."""
+    rough, _, _ = rough_laws((law,))
+    tail = TailProblem(law, level, above, rough[0], search_precision(rough, (level,), 0)).solve(digits)
+    return CriticalFunction("above" if above else "below", tail.c, tail.c, tail.phi, tail.phi)
+
+
+def joined(lower: CriticalFunction, upper: CriticalFunction, region: str) -> CriticalFunction:
+    """Return the two-sided critical function with the ends of two one-sided ones."""
+    return CriticalFunction(region, lower.c1, upper.c1, lower.phi1, upper.phi1)  # type: ignore[arg-type]
+
+
+def half(level: Any) -> Any:
+    """Half of a level."""
+    return level * Fraction(1, 2)

@@ -1,0 +1,79 @@
+"""The journal of a long run: one line a row, in the order of the rows, so that an interrupted run goes on where it stopped."""
+
+from __future__ import annotations
+
+import json
+import os
+from collections.abc import Iterator
+from pathlib import Path
+from typing import IO
+
+from verify.review.record import Record
+
+
+class Journal:
+    """Records of the rows that are done.
+
+    Parameters
+    ----------
+    path : Path
+        The file.
+    fingerprint : str
+        Of everything that the records depend on; a journal with another one is not used.
+
+    Attributes
+    ----------
+    done : int
+        How many rows were found done when the journal was opened.
+    """
+
+    def __init__(self, path: Path, fingerprint: str) -> None:
+        self.path, self.fingerprint = path, fingerprint
+        self.done = self._keep_whole_lines()
+        self._stream: IO[str] | None = None
+
+    def _keep_whole_lines(self) -> int:
+        """Cut a journal to its whole lines and count its records; a journal of something else is begun anew."""
+        end = count = 0
+        if self.path.is_file():
+            with open(self.path, "rb") as stream:
+                first = stream.readline()
+                if first == self._first_line():
+                    end = len(first)
+                    for line in stream:
+                        if not line.endswith(b"\n"):
+                            break
+                        end, count = end + len(line), count + 1
+        with open(self.path, "ab") as stream:
+            stream.truncate(end)
+            if not end:
+                stream.write(self._first_line())
+        return count
+
+    def _first_line(self) -> bytes:
+        return (json.dumps({"fingerprint": self.fingerprint}) + "\n").encode()
+
+    def add(self, records: list[Record]) -> None:
+        """Append records; they are in the file when this returns."""
+        if self._stream is None:
+            self._stream = open(self.path, "a", encoding="utf-8")  # noqa: SIM115 (kept open over the run)
+        self._stream.writelines(json.dumps(record, ensure_ascii=False) + "\n" for record in records)
+        self._stream.flush()
+
+    def close(self) -> None:
+        """Close the file."""
+        if self._stream is not None:
+            self._stream.close()
+            self._stream = None
+
+    def records(self) -> Iterator[Record]:
+        """Yield the records from the beginning."""
+        with open(self.path, encoding="utf-8") as stream:
+            next(stream, None)
+            for line in stream:
+                yield json.loads(line)
+
+    def remove(self) -> None:
+        """Delete the file."""
+        self.close()
+        os.unlink(self.path)

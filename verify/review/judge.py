@@ -1,0 +1,197 @@
+"""From a claim and its setting to a verdict."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass, replace
+from fractions import Fraction
+
+from verify.arithmetic.enclosure import Enclosure
+from verify.derivation.ledger import Grade
+from verify.errors import UndecidedError
+from verify.problem.hypothesis import Form
+from verify.review.claim import Claim
+from verify.review.claimed import Claimed, claimed_test
+from verify.review.consequences import Consequences, consequences
+from verify.review.matching import Comparison, compare
+from verify.review.printed import Match
+from verify.review.setting import Setting
+from verify.review.size import sizes
+from verify.review.slip_table import TRUNCATED, TRUNCATED_WORDS
+from verify.review.slips import find_slips
+from verify.review.verdict import Outcome, SlipFound, Verdict
+from verify.solution.critical import CriticalFunction
+
+NO_SLIP = "No slip of the list reproduces every printed number."
+BY_MATCH = {
+    Match.SAME: Outcome.AGREES, Match.LAST: Outcome.LAST_DIGIT, Match.OTHER: Outcome.DIFFERS, Match.OPEN: Outcome.UNDECIDED,
+}  # fmt: skip
+
+
+@dataclass(frozen=True)
+class Options:
+    """How much is computed.
+
+    Attributes
+    ----------
+    loss : bool
+        Whether the power lost is computed for a claim that agrees too.
+    """
+
+    loss: bool = True
+
+
+def judge(setting: Setting, claim: Claim, options: Options | None = None) -> Verdict:
+    """Judge the printed numbers of one claim.
+
+    Raises
+    ------
+    InputError
+        When the printed numbers do not describe a test of this form.
+    """
+    verdict = Verdict(Outcome.UNDECIDED, setting.problem, claim, setting.derivation)
+    try:
+        return _leaning(_judged(verdict, setting, claim, options or Options()))
+    except UndecidedError as error:
+        return _leaning(replace(verdict, notes=(str(error),)))
+
+
+def _judged(verdict: Verdict, setting: Setting, claim: Claim, options: Options) -> Verdict:
+    notes: list[str] = []
+    if claim.fractions and not setting.lattice:
+        notes.append("the statistic is continuous: fractions at the cutoffs have no effect and were not judged")
+        claim = claim.without_fractions()
+    claimed = claimed_test(claim, setting)
+    if setting.lattice and not claim.fractions:
+        return _without_fractions(replace(verdict, notes=tuple(notes)), setting, claim, claimed)
+    right = setting.right(claimed.critical)
+    found = compare(claim, setting.numbers, setting.problem.n, setting.step)
+    outcome = BY_MATCH[found.match]
+    slips, more = _slips(claim, setting, found, outcome)
+    read = claimed if outcome is not Outcome.AGREES else Claimed(_as_read(claimed, right, found))
+    result = consequences(read.critical, setting, with_loss=options.loss or outcome is not Outcome.AGREES)
+    notes += [note for note in (found.note, *read.notes, *more, _rounding_note(outcome, result)) if note]
+    return replace(
+        verdict, outcome=outcome, solution=setting.solution_of(right), correct=found.report, off=_off(found),
+        consequences=result, slips=slips, notes=tuple(notes),
+    )  # fmt: skip
+
+
+def _as_read(claimed: Claimed, right: CriticalFunction, found: Comparison) -> CriticalFunction:
+    """The printed test of a claim that agrees: where the cutoffs were printed short, the right ones with the printed fractions."""
+    if not found.note and not claimed.notes:
+        return claimed.critical
+    return right
+
+
+def _off(found: Comparison) -> tuple[str, ...]:
+    return tuple(name for name, match in found.each.items() if match is not Match.SAME)
+
+
+def _slips(
+    claim: Claim, setting: Setting, found: Comparison, outcome: Outcome
+) -> tuple[tuple[SlipFound, ...], tuple[str, ...]]:
+    if outcome is Outcome.AGREES:
+        return (), ()
+    if found.truncated:
+        return (SlipFound(TRUNCATED, TRUNCATED_WORDS),), ()
+    slips, open_ones = find_slips(claim, setting)
+    notes = () if slips or outcome is not Outcome.DIFFERS else (NO_SLIP,)
+    if open_ones:
+        notes = (*notes, f"not computed: the numbers under {', '.join(open_ones)}")
+    return slips, notes
+
+
+def _rounding_note(outcome: Outcome, result: Consequences) -> str:
+    if outcome is not Outcome.AGREES or result.level_kept is not False:
+        return ""
+    return f"taken literally, the rounded numbers exceed the level by at most {_short(result.excess)}; that is rounding alone"
+
+
+def _short(x: Fraction) -> str:
+    return f"{Enclosure.of(x).strings(2)['upper']}"
+
+
+def _without_fractions(verdict: Verdict, setting: Setting, claim: Claim, claimed: Claimed) -> Verdict:
+    """Judge a claim that does not randomise: is the level kept, and is a larger rejection region also within it?"""
+    right, result = setting.right(), consequences(claimed.critical, setting)
+    larger = larger_within(claimed.critical, setting) if result.level_kept else ()
+    found = compare(claim, setting.numbers.without_fractions(), setting.problem.n, setting.step)
+    wrong_side = claimed.critical.region != right.region
+    right_way = result.level_kept is True and not larger and not wrong_side
+    outcome = Outcome.AGREES if right_way else Outcome.UNDECIDED if result.level_kept is None else Outcome.DIFFERS
+    notes = [*verdict.notes, *claimed.notes, "no fractions are printed: judged as a test that does not randomise"]
+    notes.append(_level_note(result))
+    notes += [f"the region that also rejects at {point} is within the level too" for point in larger]
+    if result.level_kept and not larger and not wrong_side:
+        notes.append("no region larger by one support point at either end is within the level")
+    slips: tuple[SlipFound, ...] = ()
+    if outcome is Outcome.DIFFERS and found.match is not Match.SAME:
+        slips, more = find_slips(claim, setting)
+        notes += [*more] if slips else [NO_SLIP, *more]
+    return replace(
+        verdict, outcome=outcome, solution=setting.solution_of(right), correct=_full_report(claim, setting),
+        off=_off(found) if outcome is Outcome.DIFFERS else (), consequences=result, slips=slips, notes=tuple(notes),
+    )  # fmt: skip
+
+
+def _full_report(claim: Claim, setting: Setting) -> dict[str, Enclosure]:
+    return claim.style.readings(setting.numbers, setting.problem.n, setting.step)[0][0]
+
+
+def _level_note(result: Consequences) -> str:
+    answer = {True: "the level is kept", False: "the level is not kept", None: "whether the level is kept stayed open"}
+    return answer[result.level_kept]
+
+
+def larger_within(test: CriticalFunction, setting: Setting) -> tuple[str, ...]:
+    """Return the support points of V that could be added to the rejection region at its ends with the level still kept."""
+    found = []
+    for grown, point in _grown(test, setting):
+        try:
+            parts = sizes(grown, setting)
+        except UndecidedError:
+            continue
+        if all(isinstance(part.level, Fraction) and part.value.upper <= part.level for part in parts):
+            found.append(_point_text(point, setting))
+    return tuple(dict.fromkeys(found))
+
+
+def _point_text(y: int, setting: Setting) -> str:
+    numbers = setting.numbers_of(CriticalFunction("inside", y, y, Enclosure.of(1), Enclosure.of(1)))
+    return f"V = {numbers.c1.text(12)}"
+
+
+def _grown(test: CriticalFunction, setting: Setting) -> list[tuple[CriticalFunction, int]]:
+    """The rejection region with one support point more, at each end in turn."""
+    one, out = Enclosure.of(1), []
+    sign = 1 if test.region == "inside" else -1
+    ends = [("c1", "phi1", -sign), ("c2", "phi2", sign)]
+    if setting.form is Form.ONE_SIDED:
+        ends = [("c1", "phi1", -1 if test.region == "above" else 1)]
+    low, high = setting.laws[0].support
+    for c, phi, outward in ends:
+        place = getattr(test, c)
+        point = place if getattr(test, phi) != one else place + outward
+        if (low is not None and point < low) or (high is not None and point > high):
+            continue
+        if setting.form is Form.ONE_SIDED:
+            out.append((replace(test, c1=point, c2=point, phi1=one, phi2=one), point))
+        elif test.c1 == test.c2 and test.phi1 != one:
+            out.append((replace(test, phi1=one, phi2=one), point))
+        else:
+            grown = replace(test, **{c: point, phi: one})
+            if grown.c1 < grown.c2:
+                out.append((grown, point))
+    return out
+
+
+def _leaning(verdict: Verdict) -> Verdict:
+    """A verdict is no firmer than the derivation that it leans on."""
+    refuted = verdict.refuted_steps
+    if refuted:
+        reasons = tuple(f"{step.name}: {step.statement}" + (f" ({step.witness})" if step.witness else "") for step in refuted)
+        return replace(verdict, outcome=Outcome.REFUTED, notes=(*reasons, *verdict.notes))
+    if verdict.derivation.grade is Grade.UNDECIDED and verdict.outcome in (Outcome.AGREES, Outcome.LAST_DIGIT):
+        open_steps = ", ".join(step.name for step in verdict.derivation.steps if step.grade is Grade.UNDECIDED)
+        return replace(verdict, outcome=Outcome.UNDECIDED, notes=(f"the derivation stayed open at: {open_steps}", *verdict.notes))
+    return verdict

@@ -1,0 +1,123 @@
+"""Review one claim: the colleague's derivation and printed numbers, confirmed or refuted with the reason."""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import replace
+from decimal import Decimal
+from fractions import Fraction
+from typing import TYPE_CHECKING, Any
+
+from verify.derivation.ledger import Grade
+from verify.review.claim import read_claim
+from verify.review.judge import Options, judge
+from verify.review.setting import Setting
+from verify.review.statistic import styled
+from verify.review.style import Style
+from verify.review.verdict import Outcome, Verdict
+
+if TYPE_CHECKING:
+    from verify.derivation.derive import Derivation
+    from verify.problem.problem import Problem
+
+CLAIMS = "claims"
+DERIVATION_KEYS = ("natural_parameter", "statistic", "law")
+NUMBER_KEYS = ("c1", "c2", "gamma1", "gamma2", "c", "gamma")
+STYLE_KEYS = ("reported_as", "window", "region", "fractions")
+Given = str | int | Fraction | Decimal | None
+
+
+def review(
+    problem: Problem,
+    *,
+    c1: Given = None,
+    c2: Given = None,
+    gamma1: Given = None,
+    gamma2: Given = None,
+    c: Given = None,
+    gamma: Given = None,
+    style: Style | None = None,
+    claim: Mapping[str, str] | None = None,
+    derivation: Derivation | None = None,
+    digits: int = 50,
+    budget: float = 10.0,
+) -> Verdict:
+    """Judge a claim about a problem.
+
+    Parameters
+    ----------
+    problem : Problem
+        What the claim is about.
+    c1, c2, gamma1, gamma2 : text or exact number, optional
+        Printed cutoffs and fractions of a two-sided test. The digits printed count: "0.320" claims more than "0.32".
+    c, gamma : text or exact number, optional
+        The same of a one-sided test.
+    style : Style, optional
+        How the numbers are reported; by default the cutoffs of the sum, with the fractions of rejection there.
+    claim : mapping, optional
+        The colleague's own ``natural_parameter``, ``statistic`` and ``law``.
+    derivation : Derivation, optional
+        A derivation of the same density with the same claim, when known.
+    digits : int
+        Significant digits to prove, from 15.
+    budget : float
+        Seconds for each symbolic step.
+
+    Returns
+    -------
+    Verdict
+
+    Raises
+    ------
+    InputError
+        When the printed numbers do not describe a test of this form.
+
+    Examples
+    --------
+    >>> from verify import Density, Problem, review
+    >>> density = Density("exp(-lam)*lam**x/factorial(x)", variable="x", support="integers >= 0", parameter="lam", space="lam > 0")
+    >>> problem = Problem(density, null="lam <= 8 or lam >= 12", alpha="0.05", n=10)
+    >>> verdict = review(problem, c1="94", c2="103", gamma1="0.515", gamma2="0.087")
+    >>> verdict.verdict, [slip.name for slip in verdict.slips], verdict.correct_printed["gamma1"]
+    ('differs', ['fractions-exchanged'], '0.087')
+    """
+    said = {key: text for key, text in (claim or {}).items() if key in DERIVATION_KEYS}
+    if derivation is None:
+        from verify.derivation.derive import derive
+
+        derivation = derive(problem.density, limits=problem.hypothesis.limits, claim=said, n=problem.n, budget=budget)
+    numbers = {"c1": c1, "c2": c2, "gamma1": gamma1, "gamma2": gamma2, "c": c, "gamma": gamma}
+    return review_numbers(Setting(problem, derivation, digits), numbers, style or Style(), said, Options())
+
+
+def review_numbers(
+    setting: Setting, numbers: Mapping[str, Any], style: Style, said: Mapping[str, str], options: Options
+) -> Verdict:
+    """Judge printed numbers in a setting; without any, the derivation alone."""
+    derivation = setting.derivation
+    if not carries_numbers(derivation):
+        return derivation_verdict(derivation, setting.problem)
+    if all(value is None or str(value).strip() == "" for value in numbers.values()):
+        return derivation_verdict(derivation, setting.problem)
+    style, remark = styled(style, said, derivation)
+    verdict = judge(setting, read_claim(numbers, style, setting.form), options)
+    return replace(verdict, notes=(*verdict.notes, remark)) if remark else verdict
+
+
+def carries_numbers(derivation: Derivation) -> bool:
+    """Whether the law is known and no step but the claims is refuted."""
+    refuted = any(step.grade is Grade.REFUTED for step in derivation.steps if step.name != CLAIMS)
+    return derivation.family is not None and not refuted
+
+
+def derivation_verdict(derivation: Derivation, problem: Problem | None) -> Verdict:
+    """Judge a derivation without numbers."""
+    outcome = {Grade.REFUTED: Outcome.REFUTED, Grade.UNDECIDED: Outcome.UNDECIDED}.get(derivation.grade, Outcome.AGREES)
+    if outcome is Outcome.AGREES and derivation.family is None:
+        outcome = Outcome.UNDECIDED
+    weak = [step for step in derivation.steps if step.grade in (Grade.REFUTED, Grade.UNDECIDED)]
+    notes = [f"{step.name}: {step.statement}" + (f" ({step.witness or step.reason})" if step.witness or step.reason else "")
+             for step in weak]  # fmt: skip
+    if outcome is Outcome.AGREES:
+        notes.append("no numbers are claimed: the derivation alone was judged")
+    return Verdict(outcome, problem, None, derivation, notes=tuple(notes))
