@@ -49,12 +49,13 @@ class Balls:
 
     def real(self, x: Any) -> Ball:
         """Return the ball of an exact number (int, Fraction or SymPy number); balls pass unchanged."""
-        if isinstance(x, Fraction):
-            return arb(fmpq(x.numerator, x.denominator))
-        if isinstance(x, int):
-            return arb(x)
-        if isinstance(x, arb):
+        kind = type(x)
+        if kind is arb:
             return x
+        if kind is int:
+            return arb(x)
+        if kind is Fraction:
+            return arb(fmpq(x.numerator, x.denominator))
         return evaluate(x, self, {})
 
     def interval(self, enclosure: Enclosure) -> Ball:
