@@ -24,12 +24,13 @@ from verify.derivation.numerical_look import numerical_look
 from verify.derivation.points import domain_of, parameter_points
 from verify.derivation.support_step import support_step
 from verify.errors import UndecidedError
+from verify.notebook import Shown
 from verify.problem.density import Density
 from verify.problem.numbers import Exact, as_expr
 
 
 @dataclass(frozen=True)
-class Derivation:
+class Derivation(Shown):
     """The outcome of :func:`derive`: ``f = h(x) exp(Q(t) T(x) - A(t))``, the law of T, and the ledger.
 
     Attributes

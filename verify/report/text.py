@@ -223,7 +223,7 @@ def _opinion_rows(comparison: Comparison) -> list[list[str]]:
     names = list(dict.fromkeys(name for opinion in comparison.opinions for name in opinion.numbers))
     rows = [["", *(cell for opinion in comparison.opinions for cell in (opinion.route, "right digits"))]]
     for name in names:
-        row = [name.replace("expectation", "condition ")]
+        row = [name]
         for opinion in comparison.opinions:
             value, digits = opinion.numbers.get(name), opinion.digits.get(name)
             row += ["none" if value is None else value, "" if digits is None else str(digits)]

@@ -11,6 +11,7 @@ from verify.arithmetic.ball import balls, to_enclosure
 from verify.arithmetic.enclosure import Enclosure
 from verify.derivation.ledger import Grade, Step, weakest
 from verify.errors import InputError, UndecidedError
+from verify.notebook import Shown
 from verify.problem.hypothesis import Form
 from verify.problem.numbers import Exact, exact
 from verify.solution.attainable import require_attainable
@@ -54,7 +55,7 @@ class SideCondition:
 
 
 @dataclass(frozen=True)
-class Solution:
+class Solution(Shown):
     """A proven optimal test.
 
     Attributes
@@ -161,6 +162,16 @@ class Solution:
     def gamma(self) -> Enclosure | None:
         """Critical function at c; None for a continuous law or a two-sided test."""
         return None if self._two_sided else self.critical.phi1
+
+    def __str__(self) -> str:
+        density, hypothesis = self.problem.density, self.problem.hypothesis
+        names = ("c", "gamma", "c1", "c2", "gamma1", "gamma2")
+        numbers = [(name, getattr(self, name)) for name in names]
+        lines = [
+            f"null: {hypothesis.text(density.parameter)}; n = {self.problem.n}; rejects {self.rejects}; {self.grade.value}",
+            *(f"{name.ljust(6)} = {value.text(self.digits)}" for name, value in numbers if value is not None),
+        ]
+        return "\n".join(lines)
 
     @property
     def expectations(self) -> tuple[Enclosure, ...]:
