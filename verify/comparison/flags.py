@@ -15,6 +15,8 @@ ENOUGH_FRACTION = 6
 ILL = 1e6
 """Condition from which more than six of a double's sixteen digits are lost, whatever the solver."""
 
+TIE = "tie: as 1/20 and as the stored double the answers differ (the level equals an attainable tail probability)"
+
 
 @dataclass(frozen=True)
 class Flag:
@@ -56,9 +58,10 @@ def _failures(truth: Truth, opinions: tuple[Opinion, ...]) -> list[Flag]:
         if opinion.failure:
             text = f"{opinion.route}: {opinion.failure}{_hint(opinion)}"
             found.append(Flag("solver failed", "all", text, opinion.route))
-        for name, text in opinion.numbers.items():
-            if text is not None and not math.isfinite(float(text)):
-                found.append(Flag("solver failed", name, f"{opinion.route}: {name} came out as {text}", opinion.route))
+        for name, number in opinion.numbers.items():
+            if number is not None and not math.isfinite(float(number)):
+                text = f"{opinion.route}: {name} came out as {number}"
+                found.append(Flag("solver failed", name, text, opinion.route))
     return found
 
 
@@ -78,7 +81,7 @@ def _cutoff_differs(name: str, opinion: Opinion, truth: Truth) -> bool:
 def _cutoffs_differ(name: str, opinion: Opinion, opinions: tuple[Opinion, ...], truth: Truth) -> Flag:
     text = f"{opinion.route}: {name} = {opinion.numbers[name]}, proved {truth.numbers[name]}"
     if is_tie(name, opinion, truth):
-        text += "; tie: as 1/20 and as the stored double the answers differ (the level equals an attainable tail probability)"
+        text += f"; {TIE}"
     return Flag("cutoffs differ", name, text + _who(name, opinion, opinions) + _hint(opinion), opinion.route)
 
 
@@ -140,5 +143,6 @@ def _ill_conditioned(truth: Truth) -> list[Flag]:
     if condition is None or condition < ILL:
         return []
     lost = math.log10(condition)
-    text = f"condition {condition:.3g}: double precision cannot give more than {max(0, int(15.95 - lost))} digits of every number"
+    most = max(0, int(15.95 - lost))
+    text = f"condition {condition:.3g}: double precision cannot give more than {most} digits of every number"
     return [Flag("ill-conditioned", "all", text)]

@@ -2,7 +2,7 @@
 
 M(s) = E exp(s T) is a sum over the Gauss nodes. Two inversions:
 
-- *tilted*: on the vertical line through a real point theta between 0 and the saddlepoint of the cutoff, P(V > c) is the integral of
+- *tilted*: on the vertical line through a real point theta near the saddlepoint of the cutoff, P(V > c) is the integral of
   exp(n log M(theta + iu) - (theta + iu) c) / (theta + iu) over u, by the trapezoidal rule, which converges exponentially
   (J. Abate and W. Whitt, "The Fourier-series method for inverting transforms of probability distributions", Queueing Systems
   10 (1992) 5-88, section 5). The tail in question keeps its relative accuracy.
@@ -26,7 +26,8 @@ _BLOCK = 64
 MOST_FREQUENCIES = 64 * _BLOCK
 EULER_DIGITS = 9
 """Decimals that the Euler summation claims: its discretisation error is exp(-A) = 1e-10."""
-_A, _PLAIN, _MIXED = 24.0, 40, 24
+_A, _SIDE, _MIXED = 24.0, 8, 24
+_PLAIN = _SIDE**2 - 1 - _MIXED
 _NEGLIGIBLE = 1e-18
 
 
@@ -65,48 +66,50 @@ class Transform:
         """Standard deviation of T."""
         return float(np.sqrt(np.sum(self.masses * (self.places - self.mean) ** 2)))
 
-    def line(self, c: float, above: bool) -> Line:
-        """The line for one tail, laid for the first cutoff that asks for it."""
+    def line(self, above: bool) -> Line:
+        """The line for one tail."""
         if above not in self.kept:
-            self.kept[above] = self._lay(c, above)
+            self.kept[above] = self._lay(above)
         found: Line = self.kept[above]
         return found
 
-    def _lay(self, c: float, above: bool) -> Line:
+    def _lay(self, above: bool) -> Line:
         n, root = self.n, float(np.sqrt(self.n))
-        least = 0.7 * root * self.spread * (1 if above else -1)
-        beyond = max(c - n * self.mean, least) if above else min(c - n * self.mean, least)
-        theta = self._saddle(self._reachable(self.mean + beyond / n))
+        theta = self._tilt(above)
         width = max((45.0 - np.log(self.alpha)) / abs(theta), 50 * root * self._tilted_spread(theta))
         step = float(2 * np.pi / width)
-        centre = c / n
+        centre = float(np.sum(self._tilted(theta) * self.places))
         t = self.places - centre
-        waves = np.exp(np.multiply.outer(1j * step * np.arange(_BLOCK), t))
         jumps = theta + 1j * step * _BLOCK * np.arange(MOST_FREQUENCIES // _BLOCK)
         weighted = np.exp(np.multiply.outer(t, jumps) + np.log(self.masses)[:, None])
-        s = theta + 1j * step * np.arange(MOST_FREQUENCIES)
+        sizes = np.abs(np.sum(weighted, axis=0))
+        small = np.flatnonzero((sizes / sizes[0]) ** n < _NEGLIGIBLE)
+        if not len(small):
+            return Line(jumps[:1], jumps[:1], jumps[:1], step, centre, False)
+        weighted = weighted[:, : int(small[0])]
+        waves = np.exp(np.multiply.outer(1j * step * np.arange(_BLOCK), t))
         one = (waves @ weighted).T.ravel()
         first = (waves @ (t[:, None] * weighted)).T.ravel()
-        sizes = np.abs(one / one[0]) ** n
-        end = np.flatnonzero(sizes < _NEGLIGIBLE)
-        dies_out = len(end) > 0
-        stop = int(end[0]) + 1 if dies_out else 1
-        return Line(s[:stop], one[:stop], first[:stop], step, centre, dies_out)
+        return Line(theta + 1j * step * np.arange(len(one)), one, first, step, centre, True)
 
-    def _saddle(self, mean: float) -> float:
-        """The real s at which the tilted mean of one T is ``mean``."""
+    def _tilt(self, above: bool) -> float:
+        """The real s where Chernoff's bound exp(n (K(s) - s K'(s))) of the tail is alpha, K = log E exp(s T)."""
+        side = 1.0 if above else -1.0
 
-        def excess(s: float) -> float:
-            tilted = self._tilted(s)
-            return float(np.sum(tilted * self.places)) - mean
+        def excess(size: float) -> float:
+            s = side * size
+            exponents = s * (self.places - self.mean) + np.log(self.masses)
+            top = float(np.max(exponents))
+            cumulant = top + float(np.log(np.sum(np.exp(exponents - top))))
+            slope = float(np.sum(self._tilted(s) * (self.places - self.mean)))
+            return self.n * (cumulant - s * slope) - float(np.log(self.alpha))
 
-        side = 1.0 if mean > self.mean else -1.0
-        far = side / self.spread
+        far = 1 / (self.spread * float(np.sqrt(self.n)))
         for _ in range(200):
-            if excess(far) * side > 0:
-                return float(brentq(excess, 0.0, far, rtol=1e-6))
+            if excess(far) < 0:
+                return side * float(brentq(excess, 0.0, far, rtol=1e-4))
             far *= 2
-        raise ArithmeticError(f"no tilt moves the mean of T to {mean:g}")
+        raise ArithmeticError(f"no tilt reaches a tail of {self.alpha:g}")
 
     def _tilted(self, s: float) -> Array:
         exponents = s * self.places + np.log(self.masses)
@@ -117,26 +120,22 @@ class Transform:
         tilted = self._tilted(s)
         return float(np.sqrt(np.sum(tilted * (self.places - np.sum(tilted * self.places)) ** 2)))
 
-    def _reachable(self, mean: float) -> float:
-        """A tilted mean strictly between the ends of T."""
-        low, high = float(self.places.min()), float(self.places.max())
-        return min(max(mean, low + 1e-6 * (self.mean - low)), high - 1e-6 * (high - self.mean))
-
     def euler(self, d: float, end: float, sign: float) -> tuple[Array, Array, Array]:
         """Points A/2d + i pi k/d, and the two expectations there of exp(sign s (T - end/n))."""
         key = (d, end, sign)
         if key not in self.kept:
-            s = (_A + 2j * np.pi * np.arange(_PLAIN + _MIXED + 1)) / (2 * d)
+            s = (_A + 2j * np.pi * np.arange(_SIDE**2)) / (2 * d)
             t = self.places - end / self.n
-            waves = np.exp(np.multiply.outer(sign * s, t)) * self.masses
-            self.kept[key] = (s, np.sum(waves, axis=-1), waves @ t)
+            waves = np.exp(np.multiply.outer(sign * (s[:_SIDE] - s[0]), t))
+            weighted = np.exp(np.multiply.outer(t, sign * s[::_SIDE])) * self.masses[:, None]
+            self.kept[key] = (s, (waves @ weighted).T.ravel(), (waves @ (t[:, None] * weighted)).T.ravel())
         found: tuple[Array, Array, Array] = self.kept[key]
         return found
 
 
 @dataclass(frozen=True)
 class SumOfObservations:
-    """Tails and density of V, or of its centred mean where ``centred``, under one limit.
+    """Tails of V, or of its centred mean where ``centred``, under one limit.
 
     ``lower`` and ``upper`` are the ends of T, infinite where there is none.
     """
@@ -148,26 +147,18 @@ class SumOfObservations:
 
     def tail(self, c: float, above: bool) -> float:
         """P(V > c) or P(V <= c); E[V - E V; ...] where centred."""
-        line = self.transform.line(c, above)
-        if not line.dies_out:
-            value = self._euler(c, density=False)
+        line = self.transform.line(above)
+        if self.slow:
+            value = self._euler(c)
             return value if not above else (0.0 if self.centred else 1.0) - value
         terms = self._powers(line, c) / line.s
         total = line.step / np.pi * float(np.sum(terms.real) - 0.5 * terms[0].real)
         return total if above else -total
 
-    def density(self, c: float) -> float:
-        """Density at c, times c - E V where centred."""
-        line = self.transform.line(c, True)
-        if not line.dies_out:
-            return self._euler(c, density=True)
-        terms = self._powers(line, c)
-        return line.step / np.pi * float(np.sum(terms.real) - 0.5 * terms[0].real)
-
     @property
     def slow(self) -> bool:
-        """Whether the tilted inversion was out of reach."""
-        return any(isinstance(line, Line) and not line.dies_out for line in self.transform.kept.values())
+        """Whether the tilted inversion is out of reach."""
+        return not (self.transform.line(True).dies_out and self.transform.line(False).dies_out)
 
     def _powers(self, line: Line, c: float) -> Array:
         """E[... exp(s (V - c))] along a line."""
@@ -182,8 +173,8 @@ class SumOfObservations:
             return one**n
         return one ** (n - 1) * (n * first + (about - n * self.transform.mean) * one)
 
-    def _euler(self, c: float, *, density: bool) -> float:
-        """Abate and Whitt's Euler summation, counted from the finite end of V: the lower tail, or the density."""
+    def _euler(self, c: float) -> float:
+        """Abate and Whitt's Euler summation of the lower tail, counted from the finite end of V."""
         n = self.transform.n
         flip = not np.isfinite(self.lower)
         end = n * (self.upper if flip else self.lower)
@@ -194,11 +185,11 @@ class SumOfObservations:
             return 0.0
         s, one, first = self.transform.euler(d, end, 1.0 if flip else -1.0)
         powers = self._power(one, first, end)
-        terms = (-1.0) ** np.arange(len(s)) * (powers if density else powers / s).real
+        terms = (-1.0) ** np.arange(len(s)) * (powers / s).real
         terms[0] /= 2
         partial = np.cumsum(terms)[_PLAIN:]
         mixed = sum(comb(_MIXED, j) * partial[j] for j in range(_MIXED + 1)) / 2.0**_MIXED
         value = float(np.exp(_A / 2) / d * mixed)
-        if density or not flip:
+        if not flip:
             return value
         return (0.0 if self.centred else 1.0) - value

@@ -16,7 +16,7 @@ from scipy.optimize import brentq, minimize_scalar
 from scipy.special import expit
 
 Array = Any
-PANELS, ORDER = 40, 16
+PANELS, FINE_PANELS, GRADED_PANELS, ORDER = 24, 18, 4, 16
 _NODES, _WEIGHTS = np.polynomial.legendre.leggauss(ORDER)
 
 
@@ -89,8 +89,8 @@ class Nodes:
         Nodes, quadrature weights, and T at the nodes.
     densities : list of array of that shape
         f(x(w); t) dx/dw under each limit.
-    turns : array
-        Ends of the stretches of w on which T is monotone.
+    turns, turning_places : array
+        Ends of the stretches of w on which T is monotone, and T there.
     """
 
     edges: Array
@@ -99,6 +99,7 @@ class Nodes:
     places: Array
     densities: list[Array]
     turns: Array
+    turning_places: Array
 
 
 def gauss_panels(edges: Array) -> tuple[Array, Array]:
@@ -107,7 +108,9 @@ def gauss_panels(edges: Array) -> tuple[Array, Array]:
     return edges[:-1, None] + half * (1 + _NODES), half * _WEIGHTS
 
 
-def nodes(heights: list[Callable[[Array], Array]], place: Callable[[Array], Array], depth: float) -> Nodes:
+def nodes(
+    heights: list[Callable[[Array], Array]], place: Callable[[Array], Array], depth: float, fine: bool
+) -> Nodes:
     """Lay panels where some limit's density matters and T's turning points are known.
 
     Parameters
@@ -118,16 +121,26 @@ def nodes(heights: list[Callable[[Array], Array]], place: Callable[[Array], Arra
         T(x(w)).
     depth : float
         How far below the peak a density still matters, in natural logarithms.
+    fine : bool
+        Lay more panels around the modes, for a transform whose waves the nodes have to resolve.
     """
-    marks = np.unique(np.array([run_of_interest(height, depth) for height in heights]))
+    levels = (1.0, 3.0, 8.0, 20.0, depth) if fine else (depth,)
+    marks = np.unique(np.array([run_of_interest(height, level) for height in heights for level in levels]))
     turns = _turning_points(place, marks[0], marks[-1])
-    breaks = np.unique(np.concatenate([marks, turns]))
-    breaks = breaks[np.concatenate([[True], np.diff(breaks) > 1e-12 * (breaks[-1] - breaks[0])])]
-    edges = np.unique(np.concatenate([np.linspace(a, b, PANELS + 1) for a, b in zip(breaks, breaks[1:], strict=False)]))
+    kink = [0.0] if marks[0] < 0 < marks[-1] else []  # the mode itself on the real line; harmless elsewhere
+    graded = turns[:, None] + np.array([-1, 1]) * 2.0 ** -np.arange(14)[:, None, None] if fine else turns
+    graded = graded[(graded > marks[0]) & (graded < marks[-1])]
+    breaks = np.unique(np.concatenate([marks, turns, kink, graded.ravel()]))
+    breaks = breaks[np.concatenate([[True], np.diff(breaks) > 1e-9 * (breaks[-1] - breaks[0])])]
+    panels = PANELS
+    if fine:  # panels graded towards a turn, where T has an end, resolve what decays fast from there
+        panels = FINE_PANELS // len(heights) if not len(turns) else GRADED_PANELS
+    pieces = [np.linspace(a, b, panels + 1) for a, b in zip(breaks, breaks[1:], strict=False)]
+    edges = np.unique(np.concatenate(pieces))
     w, weights = gauss_panels(edges)
     densities = [np.exp(height(w)) for height in heights]
     ends = np.concatenate([[edges[0]], turns, [edges[-1]]])
-    return Nodes(edges, w, weights, place(w), densities, ends)
+    return Nodes(edges, w, weights, place(w), densities, ends, place(ends))
 
 
 def _turning_points(place: Callable[[Array], Array], left: float, right: float) -> Array:
@@ -166,23 +179,15 @@ class OneObservation:
             total += self._integral(start, stop)
         return total
 
-    def density(self, c: float) -> float:
-        """Density of T at c, times the weight."""
-        total = 0.0
-        for a, b in zip(self.nodes.turns, self.nodes.turns[1:], strict=False):
-            w = self._crossing(c, a, b)
-            if a < w < b:
-                step = 1e-5 * min(w - a, b - w, 1.0)
-                slope = abs(float(self.place(w + step) - self.place(w - step))) / (2 * step)
-                total += float(np.exp(self.height(w)) * self.weight(self.place(w))) / slope
-        return total
-
     def _crossing(self, c: float, a: float, b: float) -> float:
         """Place in a monotone stretch where T passes c; the end nearer to it where it does not."""
         at_a, at_b = float(self.place(a)), float(self.place(b))
         if (at_a - c) * (at_b - c) > 0:
             return a if abs(at_a - c) < abs(at_b - c) else b
-        return float(brentq(lambda w: float(self.place(w)) - c, a, b, xtol=1e-300, rtol=8.9e-16))
+        root, _ = brentq(
+            lambda w: float(self.place(w)) - c, a, b, xtol=1e-40, rtol=8.9e-16, maxiter=80, full_output=True, disp=False
+        )
+        return float(root)
 
     def _integral(self, start: float, stop: float) -> float:
         if stop <= start:

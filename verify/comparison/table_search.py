@@ -41,7 +41,7 @@ def outside_ends(table: Table) -> tuple[int, int, float, float]:
     right = [np.concatenate([[0.0], np.cumsum(row[::-1])]) for row in (table.first, table.second)]
 
     def excess(s: Array) -> Array:
-        return np.interp(s, *left) + np.interp(alpha - s, *right) - target
+        return _along(s, left) + _along(alpha - s, right) - target
 
     s = _root(excess, np.concatenate([left[0], alpha - right[0]]), alpha)
     last = len(table.places) - 1
@@ -56,13 +56,18 @@ def inside_ends(table: Table) -> tuple[int, int, float, float]:
     left = [np.concatenate([[0.0], np.cumsum(row)]) for row in (table.first, table.second)]
 
     def excess(s: Array) -> Array:
-        return np.interp(s + alpha, *left) - np.interp(s, *left) - target
+        return _along(s + alpha, left) - _along(s, left) - target
 
     s = _root(excess, np.concatenate([left[0], left[0] - alpha]), 1 - alpha)
     last = len(table.places) - 1
     i = min(max(int(np.searchsorted(left[0], s, side="right")) - 1, 0), last)
     j = min(max(int(np.searchsorted(left[0], s + alpha)) - 1, i), last)
     return _best_pair(table, i, j)
+
+
+def _along(s: Array, row: list[Array]) -> Array:
+    """The second row's cumulative sum where the first row's is s."""
+    return np.interp(s, row[0], row[1])
 
 
 def _root(excess: Any, breaks: Array, end: float) -> float:

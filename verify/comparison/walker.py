@@ -1,8 +1,8 @@
 """A formula's value in NumPy doubles: a walk over its tree.
 
 Nothing is compiled and nothing is executed: a table says which function a node's class stands for. Two walks exist.
-``values`` gives the value of a node; ``log_values`` gives log|node|, so that a density whose factors overflow (a factorial,
-a power) is still a sum of moderate numbers.
+``values`` gives the value of a node; ``log_values`` gives log|node|, so that a density whose factors overflow (a
+factorial, a power) is still a sum of moderate numbers.
 """
 
 from __future__ import annotations
@@ -20,14 +20,18 @@ Array = Any
 """A NumPy array of doubles, or one double."""
 
 _CONSTANTS = {
-    "Pi": np.pi, "Exp1": np.e, "EulerGamma": np.euler_gamma, "GoldenRatio": (1 + 5**0.5) / 2, "Catalan": 0.9159655941772190,
-    "Infinity": np.inf, "NegativeInfinity": -np.inf,
-}  # fmt: skip
+    "Pi": np.pi,
+    "Exp1": np.e,
+    "EulerGamma": np.euler_gamma,
+    "Infinity": np.inf,
+    "NegativeInfinity": -np.inf,
+}
 
 _FUNCTIONS: dict[str, Callable[..., Array]] = {
     "exp": np.exp, "log": np.log, "Abs": np.abs, "sign": np.sign, "floor": np.floor, "ceiling": np.ceil,
     "sin": np.sin, "cos": np.cos, "tan": np.tan, "asin": np.arcsin, "acos": np.arccos, "atan": np.arctan,
-    "sinh": np.sinh, "cosh": np.cosh, "tanh": np.tanh, "asinh": np.arcsinh, "acosh": np.arccosh, "atanh": np.arctanh,
+    "sinh": np.sinh, "cosh": np.cosh, "tanh": np.tanh,
+    "asinh": np.arcsinh, "acosh": np.arccosh, "atanh": np.arctanh,
     "sech": lambda u: 1 / np.cosh(u), "csch": lambda u: 1 / np.sinh(u), "coth": lambda u: 1 / np.tanh(u),
     "sec": lambda u: 1 / np.cos(u), "csc": lambda u: 1 / np.sin(u), "cot": lambda u: 1 / np.tan(u),
     "factorial": lambda u: special.gamma(u + 1), "gamma": special.gamma, "loggamma": special.gammaln,
@@ -81,8 +85,8 @@ def values(node: Any, names: Mapping[str, Array]) -> Array:
     if kind in _CONSTANTS:
         return _CONSTANTS[kind]
     if kind == "Piecewise":
-        pieces = [(values(case, names), values(condition, names)) for case, condition in (pair.args for pair in node.args)]
-        return np.select([condition for _, condition in pieces], [case for case, _ in pieces], default=np.nan)
+        cases = [[values(part, names) for part in pair.args] for pair in node.args]
+        return np.select([condition for _, condition in cases], [case for case, _ in cases], default=np.nan)
     if kind == "BooleanTrue":
         return np.bool_(True)
     arguments = [values(argument, names) for argument in node.args]
