@@ -9,7 +9,7 @@ import sympy as sp
 from sympy import Expr
 
 from verify.derivation.positivity import Domain
-from verify.derivation.products import rebuild, split
+from verify.derivation.products import LARGEST_POWER, rebuild, split
 
 
 @dataclass(frozen=True)
@@ -117,9 +117,15 @@ def normal_form(value: Expr, domain: Domain) -> Expr:
         return product
     if product.has(sp.gamma):
         product = _product(sp.gammasimp(product), domain)
-    if product.has(sp.Add) and not product.is_number:
+    if product.has(sp.Add) and not product.is_number and _is_tame(product):
         product = _product(sp.cancel(sp.together(sp.expand(product))), domain)
     return product
+
+
+def _is_tame(expr: Expr) -> bool:
+    """Tell whether no power is too high to be multiplied out."""
+    powers = [power.exp for power in expr.atoms(sp.Pow) if power.exp.is_Integer]
+    return all(abs(exponent) <= LARGEST_POWER for exponent in powers)
 
 
 def _product(expr: Expr, domain: Domain) -> Expr:
@@ -143,4 +149,4 @@ def is_one(value: Expr, domain: Domain) -> bool:
     found = normal_form(value, domain)
     if found.is_number:
         return bool(sp.simplify(found - 1) == 0)
-    return bool(found.count_ops() < 60 and sp.simplify(found - 1) == 0)
+    return bool(_is_tame(found) and found.count_ops() < 60 and sp.simplify(found - 1) == 0)

@@ -149,6 +149,8 @@ def decide(question: Mass) -> TotalMass:
     unproved = [c for c in found.conditions if not question.domain.positive(c)]
     if unproved:
         return _numerically(question, f"convergence needs {sp.sstr(unproved[0])} > 0, which was not proved")
+    if found.value.has(sp.hyper):
+        return _numerically(question, "the total is a hypergeometric series without a plain form")
     return _judge(question, found)
 
 

@@ -82,7 +82,7 @@ def _side(g: Callable[[Any, bool], Any], reach: Expr, A: Any) -> Any | None:
             return None
         total += piece
         quiet = quiet + 1 if abs(piece) < A.real(Fraction(1, 2**45)) else 0
-        if quiet >= 12:
+        if quiet >= 12 or total > 2:
             break
     return total
 
@@ -106,7 +106,7 @@ def partial_sum(f: Expr, x: Symbol, lower: Expr, upper: Expr, t: Symbol, at: Exp
                 return None
             total += term
             quiet = quiet + 1 if abs(term) < A.real(Fraction(1, 2**60)) else 0
-            if quiet >= 200:
+            if quiet >= 200 or total > 2:
                 break
         found = to_enclosure(total)
     return PartialMass(at, found.lower, found.upper)

@@ -200,10 +200,19 @@ def _positive_sum(expr: Expr, domain: Domain, depth: int) -> bool:
     terms = expr.args
     if all(_positive(term, domain, depth) for term in terms):
         return True
+    if _positive_by_bounds(expr):
+        return True
     if len(terms) == 2 and _positive_difference(terms[0], terms[1], domain, depth):
         return True
     factored = sp.factor_terms(sp.factor(expr)) if expr.is_rational_function() else sp.factor_terms(expr)
     return bool(factored.is_Mul) and factored != expr and _positive_product(factored, domain, depth)
+
+
+def _positive_by_bounds(expr: Expr) -> bool:
+    """Replace c erf(u) and c tanh(u), u real, by -|c|, which they exceed."""
+    bounded = [f for f in expr.atoms(sp.erf, sp.tanh) if f.args[0].is_real and expr.coeff(f).is_number]
+    floor = sum((-abs(expr.coeff(f)) - expr.coeff(f) * f for f in bounded), start=expr)
+    return bool(bounded) and not floor.has(*bounded) and bool(floor.is_nonnegative)
 
 
 def _positive_difference(first: Expr, second: Expr, domain: Domain, depth: int) -> bool:

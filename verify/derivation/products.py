@@ -19,6 +19,9 @@ Powers = dict[Expr, Expr]
 """Base -> exponent; the key ``E`` collects the exponentials."""
 
 
+LARGEST_POWER = 40
+"""Sums to a higher power than this are not multiplied out."""
+
 PROVABLE_SIZE = 12
 """Up to so many operations the sign of a sum is proved when only its written form depends on it."""
 
@@ -88,7 +91,9 @@ def _is_binomial(expr: Expr, x: Symbol | None) -> bool:
 
 
 def _factor(expr: Expr) -> Expr:
-    """Pull a sum apart into factors, each of them in one fixed form."""
+    """Pull a sum apart into factors, each of them in one fixed form (not when that means high powers)."""
+    if any(abs(power.exp) > LARGEST_POWER for power in expr.atoms(sp.Pow) if power.exp.is_Integer):
+        return expr
     found = sp.factor(expr) if expr.is_rational_function() else sp.factor_terms(sp.together(expr))
     return found if found.is_Mul or found.is_Pow else expr
 
@@ -111,8 +116,10 @@ def _split_product(expr: Expr, exponent: Expr, domain: Domain, out: Powers, keep
     left = [factor for factor, sign in zip(expr.args, signs, strict=True) if sign == 0]
     rest = sp.Mul(*left) if signs.count(-1) % 2 == 0 else -sp.Mul(*left)
     for factor, sign in zip(expr.args, signs, strict=True):
-        if sign:
-            _split(sign * factor, exponent, domain, out, keep)
+        if sign < 0 and not factor.is_Number and not factor.is_Add:
+            out[-factor] += exponent
+        elif sign:
+            _split(sp.expand(-factor) if sign < 0 else factor, exponent, domain, out, keep)
     if rest != 1:
         out[rest] += exponent
 
