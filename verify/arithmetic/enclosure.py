@@ -23,17 +23,16 @@ def decimal_text(value: Fraction, digits: int, *, up: bool) -> str:
         return str(value.numerator)
     context = Context(prec=max(digits, 1), rounding=ROUND_CEILING if up else ROUND_FLOOR, Emin=-10**9, Emax=10**9)
     number = context.divide(Decimal(value.numerator), Decimal(value.denominator))
-    if number == number.to_integral_value() and abs(number) < Decimal(10) ** (digits + 3):
-        return format(number, ".0f")
-    return _plain_or_scientific(number)
+    return _plain_or_scientific(number, digits)
 
 
-def _plain_or_scientific(number: Decimal) -> str:
+def _plain_or_scientific(number: Decimal, precision: int) -> str:
+    """Plain notation where every figure written is one of the digits, else scientific."""
     sign, figures, exponent = number.normalize(Context(prec=len(number.as_tuple().digits), Emin=-10**9, Emax=10**9)).as_tuple()
     if not isinstance(exponent, int):
         raise ValueError(f"not a finite number: {number}")
     lead = exponent + len(figures) - 1
-    if -5 <= lead <= 20:
+    if -5 <= lead < max(precision, 1) or not number:
         return format(number, "f")
     text = "".join(map(str, figures))
     head = text[0] + ("." + text[1:] if len(text) > 1 else "")
