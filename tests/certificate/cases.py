@@ -35,7 +35,7 @@ TABLE = {"density": density(["1", "5/2", "0", "7/3", "1"], "integers 0..4", "t",
 KERNEL = {"density": density("binomial(4, x)*binomial(6, 5-x)*psi**x", "integers 0..4", "psi", "psi > 0", kind="kernel"), "Q": "log(psi)", "T": "x",
           "A": "", "rising": True, "law": {**law("lattice", base="psi"), "weights": ["6", "60", "120", "60", "6"], "first": 0}}
 TRUNCATED = {"density": density("lam**x/(factorial(x)*(exp(lam)-1))", "integers >= 1", "lam", "lam > 0"), "Q": "log(lam)", "T": "x",
-             "A": "log(exp(lam)-1)", "rising": True, "law": law("lattice", base="lam", total="exp(lam)-1", mean="lam*exp(lam)/(exp(lam)-1)")}
+             "A": "log(exp(lam)-1)", "rising": True, "law": law("lattice", base="lam", total="exp(lam)-1")}
 
 
 def factorials(count: int) -> list[str]:
@@ -47,6 +47,9 @@ def factorials(count: int) -> list[str]:
 
 
 TRUNCATED["law"] |= {"weights": factorials(60), "first": 1}
+
+
+MEAN = {**TRUNCATED, "law": {**TRUNCATED["law"], "parameters": {"base": "lam", "total": "exp(lam)-1", "mean": "lam*exp(lam)/(exp(lam)-1)"}}}
 
 
 def build(Case: Callable[..., Any], base: dict[str, Any], null: str, alpha: Any, n: int, start: tuple[Any, ...] = (), **more: Any) -> Any:
@@ -100,6 +103,6 @@ def all_cases(Case: Callable[..., Any]) -> dict[str, Any]:
         "kernel interval": c(KERNEL, "1/2 <= psi <= 2", two, 3),
         "kernel above": c(KERNEL, "psi <= 1", "1/20", 1),
         "truncated outside": c(TRUNCATED, "lam <= 1 or lam >= 2", two, 6),
-        "truncated point": c(TRUNCATED, "lam = 3/2", "1/20", 6),
+        "truncated point": c(MEAN, "lam = 3/2", "1/20", 6),
         "truncated above": c(TRUNCATED, "lam <= 1", "1/20", 6),
     }

@@ -33,3 +33,12 @@ def maker() -> ModuleType:
 @pytest.fixture(scope="session")
 def certificates(maker: ModuleType) -> dict[str, dict[str, Any]]:
     return {name: maker.make(case) for name, case in load("cases").all_cases(maker.Case).items()}
+
+
+@pytest.fixture(scope="session")
+def short(maker: ModuleType) -> dict[str, dict[str, Any]]:
+    """The same with few digits and a short rounding table, where many copies are checked."""
+    cases = load("cases").all_cases(maker.Case)
+    for case in cases.values():
+        case.digits, case.tolerance = 12, "1/200"
+    return {name: maker.make(case) for name, case in cases.items()}

@@ -284,12 +284,24 @@ def make(case: Case) -> dict[str, Any]:
         "test": {"form": case.form, "rejects": case.rejects, **test},
         "side_conditions": conditions,
         "rounding": {"tolerance": case.tolerance, "decimals": first, "rows": rows},
-        "double_precision": {"opinions": [], "flags": [], "condition": ""},
+        "double_precision": {"opinions": [opinion(values, test)], "flags": [{"kind": "few digits", "number": "c", "text": "an invented flag"}],
+                             "condition": "1e3"},
         "versions": {"sidecheck": "0.0", "build": "tests"},
         "issued": "",
         "assumptions": assumptions(case),
     }
     return statement(predicate)
+
+
+def opinion(values: dict[str, Any], test: dict[str, Any]) -> dict[str, Any]:
+    numbers = {key: decimals(v, 9, False) for key, v in values.items()}
+    digits = {}
+    for key, text in numbers.items():
+        claim = test[key]
+        ends = [Fraction(claim)] * 2 if isinstance(claim, str) else [Fraction(claim["lower"]), Fraction(claim["upper"])]
+        worst = max(abs(Fraction(text) - e) for e in ends)
+        digits[key] = max((d for d in range(18) if 2 * worst * 10**d <= min(map(abs, ends))), default=0)
+    return {"route": "invented", "numbers": numbers, "digits": digits, "note": ""}
 
 
 def assumptions(case: Case) -> list[str]:
