@@ -1,0 +1,82 @@
+"""The solved test as text: in which sense it is optimal, when it rejects, numbers, side conditions."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+from verify.report.equations import equation_lines
+from verify.report.layout import field, heading, number
+
+if TYPE_CHECKING:
+    from verify.arithmetic.enclosure import Enclosure
+    from verify.solution.solve import Solution
+
+OPTIMALITY = {
+    "one-sided": "uniformly most powerful (Lehmann and Romano 2005, Theorem 3.4.1)",
+    "outside null": "uniformly most powerful (Lehmann and Romano 2005, Theorem 3.7.1)",
+    "interval null": "uniformly most powerful unbiased (Lehmann and Romano 2005, section 4.2)",
+    "point null": "uniformly most powerful unbiased (Lehmann and Romano 2005, section 4.2)",
+}
+"""In which sense the test of each form is optimal, and by which theorem."""
+
+TWO_LEVELS = (
+    "most powerful at every alternative among the tests with these two expectations at the limits "
+    "(Lehmann and Romano 2005, Theorem 3.6.1)"
+)
+
+REJECTS = {
+    "inside": "reject when c1 < V < c2",
+    "outside": "reject when V < c1 or V > c2",
+    "above": "reject when V > c",
+    "below": "reject when V < c",
+}
+
+
+def solution_text(solution: Solution) -> str:
+    """Return the third section of a report."""
+    lines = [
+        heading(3, f"Solved to {solution.digits} digits", solution.grade.value),
+        field("Optimal", _optimality(solution)),
+        *cutoff_lines(solution),
+    ]
+    return "\n".join([*lines, "", *equation_lines(solution)])
+
+
+def cutoff_lines(solution: Solution) -> list[str]:
+    """Return the rule of the test and its numbers, a line each."""
+    numbers = [number(name, value.text(solution.digits), 6) for name, value in named_numbers(solution)]
+    return [field("Test", _rule(solution)), "", *numbers]
+
+
+def _optimality(solution: Solution) -> str:
+    if len(set(solution.problem.levels)) > 1:
+        return TWO_LEVELS
+    return OPTIMALITY[solution.form.value]
+
+
+def _rule(solution: Solution) -> str:
+    """Say when the test rejects."""
+    rule = REJECTS[solution.rejects]
+    if solution.gamma is not None:
+        return f"{rule}; at V = c with probability gamma"
+    if solution.gamma1 is None:
+        return rule
+    if _two_atoms(solution):
+        return "reject with probability alpha whatever is observed: V has two values only"
+    if solution.c1 == solution.c2:
+        other = "never" if solution.rejects == "inside" else "always"
+        return f"at V = c1 = c2 reject with probability gamma1 = gamma2; {other} elsewhere"
+    return f"{rule}; at V = c1, c2 with probability gamma1, gamma2"
+
+
+def _two_atoms(solution: Solution) -> bool:
+    """Whether V has two values and the levels are equal, which leaves nothing but phi = alpha."""
+    low, high = solution.laws[0].support
+    few = low is not None and high is not None and high - low == 1
+    return solution.laws[0].lattice and few and len(set(solution.problem.levels)) == 1
+
+
+def named_numbers(solution: Solution) -> list[tuple[str, Enclosure]]:
+    """Return the cutoffs and fractions that this form of test has, by name."""
+    named = [(name, getattr(solution, name)) for name in ("c", "gamma", "c1", "c2", "gamma1", "gamma2")]
+    return [(name, value) for name, value in named if value is not None]
