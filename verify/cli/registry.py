@@ -11,6 +11,8 @@ COMMANDS: dict[str, tuple[str, str]] = {
     "derive": ("verify.cli.derive", "show step by step which law a density's statistic has"),
     "review": ("verify.cli.review", "judge a colleague's derivation and cutoffs, or a table of them"),
     "solve": ("verify.cli.solve", "derive, then prove the cutoffs of the optimal test"),
+    "plan": ("verify.cli.plan", "find the smallest sample that reaches a power"),
+    "decide": ("verify.cli.decide", "apply the proven test to an observed statistic"),
     "recheck": ("verify.cli.recheck", "check a certificate with the small independent checker"),
 }
 """Name of the command -> its module, and what it does in one line."""

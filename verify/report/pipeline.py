@@ -12,6 +12,7 @@ if TYPE_CHECKING:
     from verify.comparison.compare import Comparison
     from verify.derivation.derive import Derivation
     from verify.problem.casefile import Case
+    from verify.problem.problem import Problem
     from verify.solution.solve import Solution
 
 CLAIMS = "claims"
@@ -64,6 +65,20 @@ def carries_solution(derivation: Derivation) -> bool:
     return derivation.family is not None and not refuted
 
 
+def problem_of(case: Case) -> Problem:
+    """Return what a case asks of the parameter.
+
+    Raises
+    ------
+    InputError
+        When the case asks nothing (it has no ``[problem]``).
+    """
+    if case.problem is None:
+        raise InputError("nothing to solve", 'add [problem] with null = "...", alpha = "0.05", n = 10',
+                         key="problem", file=str(case.path))  # fmt: skip
+    return case.problem
+
+
 def run_case(case: Case, *, digits: int = 50, budget: float = 10.0, with_comparison: bool = True) -> CaseRun:
     """Take one case as far as it goes.
 
@@ -74,15 +89,13 @@ def run_case(case: Case, *, digits: int = 50, budget: float = 10.0, with_compari
     UndecidedError
         When the solution cannot be proved within its precision.
     """
-    if case.problem is None:
-        raise InputError("nothing to solve", 'add [problem] with null = "...", alpha = "0.05", n = 10',
-                         key="problem", file=str(case.path))  # fmt: skip
+    problem = problem_of(case)
     derivation = derive_case(case, budget=budget)
     if not carries_solution(derivation):
         return CaseRun(case, derivation)
     from verify.solution.solve import solve
 
-    solution = solve(case.problem, digits=digits, derivation=derivation)
+    solution = solve(problem, digits=digits, derivation=derivation)
     if not with_comparison:
         return CaseRun(case, derivation, solution)
     from verify.comparison.compare import compare
