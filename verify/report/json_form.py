@@ -17,13 +17,24 @@ if TYPE_CHECKING:
     from verify.report.pipeline import CaseRun
     from verify.solution.solve import Solution
 
+GUARD = 3
+"""Figures written beyond the digits asked for."""
+
 
 def enclosure_json(value: Enclosure, digits: int) -> dict[str, str]:
     """Write an enclosure as two decimal strings rounded outward, equal when the number is exact.
 
-    A rational without a finite decimal form of so many digits gets the two neighbouring decimals.
+    Three figures more than the digits asked for are written, so that rounding outward spoils none of these. A rational
+    without a decimal form of that length gets the two neighbouring decimals.
+
+    Examples
+    --------
+    >>> from fractions import Fraction
+    >>> from verify.arithmetic.enclosure import Enclosure
+    >>> enclosure_json(Enclosure.of(Fraction(1, 20)), 15), enclosure_json(Enclosure.of(Fraction(1, 3)), 2)
+    ({'lower': '0.05', 'upper': '0.05'}, {'lower': '0.33333', 'upper': '0.33334'})
     """
-    return value.strings(digits)
+    return value.strings(digits + GUARD)
 
 
 def step_json(step: Step) -> dict[str, str]:
