@@ -1,0 +1,1 @@
+"""Second opinions in double precision, held against the proof."""

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Sequence
 from typing import Any
 
 import numpy as np
@@ -12,26 +12,23 @@ from verify.comparison.inversion import EULER_DIGITS, SumOfObservations, Transfo
 from verify.comparison.limits import NotAttempted
 from verify.comparison.quadrature import Nodes, OneObservation, change_of_variable, nodes, run_of_interest
 from verify.comparison.question import Answer, Question
-from verify.comparison.tail_search import Line, one_end, two_ends, window
+from verify.comparison.tail_search import Line, Measure, one_end, two_ends, window
 from verify.comparison.walker import values
 
 Array = Any
 Numbers = dict[str, float]
+EULER_NOTE = "the characteristic function falls slowly: Euler summation"
 LEAST_CLAIM = 3
 """A method that cannot claim so many digits is not worth running."""
 
 
 def continuous_opinion(ask: Question) -> Answer:
     """Cutoffs and expectations from the formula; see ``brute_force_opinion``."""
-    grid, heights, place = _panels(ask)
+    grid, heights, place = _panels(ask, int(ask.n > 1))
     rows = _rows(ask, grid, heights, place)
     slow = any(isinstance(row, SumOfObservations) and row.slow for row in rows)
-    note, claimed = "", None
-    if slow:
-        claimed = EULER_DIGITS - int(np.ceil(-np.log10(min(ask.levels))))
-        note = "the characteristic function falls slowly: Euler summation"
-        if claimed < LEAST_CLAIM:
-            raise NotAttempted(f"{note} cannot resolve tails of {min(ask.levels):g}")
+    if slow and _euler_claim(ask) < LEAST_CLAIM:
+        raise NotAttempted(f"{EULER_NOTE} cannot resolve tails of {min(ask.levels):g}")
     large = False
     if ask.form == "one-sided":
         x = place.x(np.quantile(grid.w, np.linspace(0.2, 0.8, 25)))
@@ -45,7 +42,35 @@ def continuous_opinion(ask: Question) -> Answer:
         targets = (ask.levels[0], 0.0 if ask.point else ask.levels[1])
         c1, c2 = two_ends(rows[0], rows[-1], line, targets, ask.inside)
         numbers = {"c1": c1, "c2": c2}
-    return Answer(numbers | _evaluate(ask, rows, large), note, claimed)
+    claimed = _claim(ask, rows, numbers, slow) if ask.n > 1 else None
+    return Answer(numbers | _evaluate(ask, rows, large), EULER_NOTE if slow else "", claimed)
+
+
+def _euler_claim(ask: Question) -> int:
+    """Digits of the smallest level that the Euler summation's decimals amount to."""
+    return EULER_DIGITS - int(np.ceil(-np.log10(min(ask.levels))))
+
+
+def _claim(ask: Question, rows: Sequence[Measure], numbers: Numbers, slow: bool) -> int:
+    """Digits of the tails that stay when the panels are doubled, and that the inversion claims.
+
+    Raises
+    ------
+    NotAttempted
+        When hardly any digit stays.
+    """
+    finer = _rows(ask, *_panels(ask, 2))
+    moved = max(
+        abs(row.tail(c, above) - other.tail(c, above)) / level
+        for row, other, level in zip(rows, finer, ask.levels, strict=False)
+        for c in numbers.values()
+        for above in (False, True)
+    )
+    stay = 16 if moved == 0 else int(np.floor(-np.log10(moved)))
+    claim = min(stay - 1, _euler_claim(ask) if slow else 14)
+    if claim < LEAST_CLAIM:
+        raise NotAttempted(f"the quadrature resolves the transform to {max(stay, 0)} digits of the level only")
+    return claim
 
 
 class _Place:
@@ -59,7 +84,7 @@ class _Place:
         return values(self._statistic, {self._name: self.x(w)}) + 0.0 * w
 
 
-def _panels(ask: Question) -> tuple[Nodes, list[Callable[[Array], Array]], _Place]:
+def _panels(ask: Question, fine: int) -> tuple[Nodes, list[Callable[[Array], Array]], _Place]:
     depth = 55.0 - float(np.log(min(ask.levels)))
     lower, upper = ends_of_support(ask, ask.limits[0])
     change = change_of_variable(lower, upper)
@@ -71,7 +96,7 @@ def _panels(ask: Question) -> tuple[Nodes, list[Callable[[Array], Array]], _Plac
 
     heights = [height(t) for t in ask.limits]
     place = _Place(ask, change)
-    grid = nodes(heights, place, depth, ask.n > 1)
+    grid = nodes(heights, place, depth, fine)
     for row, t in zip(grid.densities, ask.limits, strict=True):
         total = float(np.sum(grid.weights * row))
         if not abs(total - 1) < 1e-6:

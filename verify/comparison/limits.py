@@ -7,9 +7,11 @@ forked for the calls that are left.
 
 from __future__ import annotations
 
+import faulthandler
 import os
 import resource
 import signal
+import sys
 import time
 import warnings
 from collections.abc import Callable, Sequence
@@ -159,9 +161,11 @@ def _outcome(call: Callable[[], Any]) -> Outcome:
 
 def _be_quiet() -> None:
     """Let compiled code print into nowhere: stdout belongs to the parent."""
+    faulthandler.disable()
     nowhere = os.open(os.devnull, os.O_WRONLY)
     os.dup2(nowhere, 1)
     os.dup2(nowhere, 2)
+    sys.stdout = sys.stderr = open(os.devnull, "w", encoding="utf-8")  # noqa: SIM115 (the process ends with it)
     for number in (signal.SIGINT, signal.SIGTERM, signal.SIGALRM):
         signal.signal(number, signal.SIG_DFL)
 

@@ -16,7 +16,7 @@ from scipy.optimize import brentq, minimize_scalar
 from scipy.special import expit
 
 Array = Any
-PANELS, FINE_PANELS, GRADED_PANELS, ORDER = 24, 18, 4, 16
+PANELS, FINE_PANELS, GRADED_PANELS, ORDER = 24, 18, 5, 16
 _NODES, _WEIGHTS = np.polynomial.legendre.leggauss(ORDER)
 
 
@@ -109,7 +109,7 @@ def gauss_panels(edges: Array) -> tuple[Array, Array]:
 
 
 def nodes(
-    heights: list[Callable[[Array], Array]], place: Callable[[Array], Array], depth: float, fine: bool
+    heights: list[Callable[[Array], Array]], place: Callable[[Array], Array], depth: float, fine: int
 ) -> Nodes:
     """Lay panels where some limit's density matters and T's turning points are known.
 
@@ -121,8 +121,9 @@ def nodes(
         T(x(w)).
     depth : float
         How far below the peak a density still matters, in natural logarithms.
-    fine : bool
-        Lay more panels around the modes, for a transform whose waves the nodes have to resolve.
+    fine : int
+        0 for plain integrals; 1, 2, ... lays so many times more panels around the modes and towards the turns, for a
+        transform whose waves the nodes have to resolve.
     """
     levels = (1.0, 3.0, 8.0, 20.0, depth) if fine else (depth,)
     marks = np.unique(np.array([run_of_interest(height, level) for height in heights for level in levels]))
@@ -134,7 +135,7 @@ def nodes(
     breaks = breaks[np.concatenate([[True], np.diff(breaks) > 1e-9 * (breaks[-1] - breaks[0])])]
     panels = PANELS
     if fine:  # panels graded towards a turn, where T has an end, resolve what decays fast from there
-        panels = FINE_PANELS // len(heights) if not len(turns) else GRADED_PANELS
+        panels = fine * (FINE_PANELS // len(heights) if not len(turns) else GRADED_PANELS)
     pieces = [np.linspace(a, b, panels + 1) for a, b in zip(breaks, breaks[1:], strict=False)]
     edges = np.unique(np.concatenate(pieces))
     w, weights = gauss_panels(edges)

@@ -18,7 +18,8 @@ from verify.comparison.question import Answer, Question
 from verify.comparison.scipy_laws import lost_tail_hint, scipy_law, size_biased
 
 Numbers = dict[str, float]
-TINY = 1e-300
+MOST_U = 700.0
+"""exp(700) is near the largest double."""
 SMALL_TAIL = 1e-12
 """Below this level a class's generic tail functions matter: ppf(1 - q) sees q only to 1e-16."""
 
@@ -72,52 +73,51 @@ def _one_sided(ask: Question, law: Any, lattice: bool) -> Numbers:
 # -- two-sided -----------------------------------------------------------------------------------------------------
 
 
-def _search(law: Any, rest: float, excess: Callable[[float, float], float]) -> tuple[float, float]:
-    """Ends of the window at which the second side condition holds: brentq on the tail coordinate s in (0, rest)."""
+def _shares(rest: float, u: float) -> tuple[float, float]:
+    """The two tails s and rest - s, both to their own relative accuracy: s = rest / (1 + exp(-u))."""
+    return rest / (1 + np.exp(-u)), rest / (1 + np.exp(u))
 
-    def ends(s: float) -> tuple[float, float]:
-        low, high = law.support()
-        left = law.lower_quantile(s) if s > 0 else low
-        right = law.upper_quantile(rest - s) if s < rest else high
-        return max(left, low), min(right, high)
 
-    def f(s: float) -> float:
-        return _number(excess(*ends(s)), "the second side condition")
-
-    s = brentq(f, 0.0, rest, xtol=TINY, rtol=8.9e-16, maxiter=3000)
-    return ends(s)
+def _search(excess: Callable[[float], float]) -> float:
+    """Root of the second side condition on the scale u of :func:`_shares`: a bracket by doubling, then brentq."""
+    at_zero = excess(0.0)
+    span = 1.0
+    while span < MOST_U:
+        for u in (-span, span):
+            if excess(u) * at_zero <= 0:
+                return float(brentq(excess, min(u, 0.0), max(u, 0.0), xtol=1e-15, rtol=8.9e-16, maxiter=500))
+        span *= 2
+    raise ArithmeticError("the second side condition does not change its sign")
 
 
 def _window(law: Any, other: Any, targets: tuple[float, float], inside: bool) -> Numbers:
     """Continuous law."""
     rest = 1 - targets[0] if inside else targets[0]
 
-    def excess(c1: float, c2: float) -> float:
-        if inside:
-            return float(other.below(c2) - other.below(c1) - targets[1])
-        return float((other.below(c1) if np.isfinite(c1) and c1 > law.support()[0] else 0.0) + _above(other, c2) - targets[1])
+    def ends(u: float) -> tuple[float, float]:
+        left, right = _shares(rest, u)
+        return _number(law.lower_quantile(left), "c1"), _number(law.upper_quantile(right), "c2")
 
-    c1, c2 = _search(law, rest, excess)
-    return {"c1": _number(c1, "c1"), "c2": _number(c2, "c2")}
+    def excess(u: float) -> float:
+        c1, c2 = ends(u)
+        mass = other.below(c2) - other.below(c1) if inside else other.below(c1) + other.above(c2)
+        return _number(mass - targets[1], "the second side condition")
 
-
-def _above(law: Any, v: float) -> float:
-    return float(law.above(v)) if np.isfinite(v) else 0.0
+    c1, c2 = ends(_search(excess))
+    return {"c1": c1, "c2": c2}
 
 
 def _lattice_window(law: Any, other: Any, targets: tuple[float, float], inside: bool) -> Numbers:
     """Lattice law: the search with the fractions that the first condition gives, then the 2 x 2 system."""
     rest = 1 - targets[0] if inside else targets[0]
-    low, high = law.support()
 
-    def excess_at(s: float) -> float:
-        tails = (_left_tail(law, other, s) if s > 0 else 0.0) + (_right_tail(law, other, rest - s) if s < rest else 0.0)
+    def excess(u: float) -> float:
+        left, right = _shares(rest, u)
+        tails = _left_tail(law, other, left) + _right_tail(law, other, right)
         return _number((1 - tails if inside else tails) - targets[1], "the second side condition")
 
-    s = brentq(excess_at, 0.0, rest, xtol=TINY, rtol=8.9e-16, maxiter=3000)
-    left = law.lower_quantile(s) if s > 0 else low
-    right = law.upper_quantile(rest - s) if s < rest else high
-    first = _clip(left, low, high), _clip(right, low, high)
+    left, right = _shares(rest, _search(excess))
+    first = _clip(law.lower_quantile(left), *law.support()), _clip(law.upper_quantile(right), *law.support())
     return _nearest_pair(law, other, targets, inside, first)
 
 
