@@ -22,6 +22,8 @@ from typing import TYPE_CHECKING, Any
 
 if TYPE_CHECKING:
     from verify.arithmetic.enclosure import Enclosure as Enclosure
+    from verify.certificate.certify import certify as certify
+    from verify.certificate.certify import recheck as recheck
     from verify.comparison.compare import compare as compare
     from verify.derivation.derive import derive as derive
     from verify.errors import InputError as InputError
@@ -30,6 +32,7 @@ if TYPE_CHECKING:
     from verify.problem.casefile import read_case as read_case
     from verify.problem.density import Density as Density
     from verify.problem.problem import Problem as Problem
+    from verify.review.review import review as review
     from verify.solution.solve import solve as solve
 
 PUBLIC = {
@@ -39,6 +42,9 @@ PUBLIC = {
     "derive": "verify.derivation.derive",
     "solve": "verify.solution.solve",
     "compare": "verify.comparison.compare",
+    "review": "verify.review.review",
+    "certify": "verify.certificate.certify",
+    "recheck": "verify.certificate.certify",
     "Enclosure": "verify.arithmetic.enclosure",
     "InputError": "verify.errors",
     "UndecidedError": "verify.errors",

@@ -1,0 +1,106 @@
+"""Optional signatures: a DSSE envelope over the bytes of a certificate, Ed25519 (extra ``[sign]``).
+
+Source: in-toto DSSE v1 (pre-authentication encoding PAE); RFC 8032 (Ed25519). The certificate itself stays unsigned and
+unchanged; ``NAME.cert.dsse.json`` lies beside it.
+"""
+
+from __future__ import annotations
+
+import base64
+import binascii
+import hashlib
+import json
+from typing import TYPE_CHECKING, Any
+
+from verify.errors import InputError
+
+if TYPE_CHECKING:
+    from cryptography.hazmat.primitives.asymmetric.ed25519 import Ed25519PrivateKey, Ed25519PublicKey
+
+PAYLOAD_TYPE = "application/vnd.in-toto+json"
+
+
+def pre_authentication_encoding(data: bytes) -> bytes:
+    """Return what is signed: DSSEv1, and type and body each with its length.
+
+    Examples
+    --------
+    >>> pre_authentication_encoding(b"{}")
+    b'DSSEv1 28 application/vnd.in-toto+json 2 {}'
+    """
+    kind = PAYLOAD_TYPE.encode()
+    return b"DSSEv1 %d %b %d %b" % (len(kind), kind, len(data), data)
+
+
+def sign(data: bytes, private_key_pem: bytes, password: bytes | None = None) -> bytes:
+    """Return the envelope for a certificate's bytes, signed with an Ed25519 key in PEM form."""
+    serialization, ed25519 = _library()
+    try:
+        key: Ed25519PrivateKey = serialization.load_pem_private_key(private_key_pem, password)
+    except (ValueError, TypeError) as error:
+        raise InputError(f"the private key cannot be read: {error}", "give an Ed25519 key in PEM form", key="key") from None
+    if not isinstance(key, ed25519.Ed25519PrivateKey):
+        raise InputError("the private key is not Ed25519", "make one with: openssl genpkey -algorithm ed25519", key="key")
+    signature = key.sign(pre_authentication_encoding(data))
+    envelope = {
+        "payloadType": PAYLOAD_TYPE,
+        "payload": base64.b64encode(data).decode(),
+        "signatures": [{"keyid": key_id(key.public_key()), "sig": base64.b64encode(signature).decode()}],
+    }
+    return json.dumps(envelope, sort_keys=True, separators=(",", ":")).encode()
+
+
+def verify_signature(envelope: bytes, data: bytes, public_key_pem: bytes) -> bool:
+    """Whether an envelope holds exactly these bytes and a valid signature of this key.
+
+    Raises
+    ------
+    InputError
+        When the envelope or the key cannot be read.
+    """
+    serialization, ed25519 = _library()
+    from cryptography.exceptions import InvalidSignature
+
+    try:
+        key: Ed25519PublicKey = serialization.load_pem_public_key(public_key_pem)
+    except ValueError as error:
+        raise InputError(f"the public key cannot be read: {error}", "give an Ed25519 key in PEM form", key="key") from None
+    if not isinstance(key, ed25519.Ed25519PublicKey):
+        raise InputError("the public key is not Ed25519", "give the key of the signer", key="key")
+    payload, signatures = _open(envelope)
+    if payload != data:
+        return False
+    for signature in signatures:
+        try:
+            key.verify(signature, pre_authentication_encoding(data))
+        except InvalidSignature:
+            continue
+        return True
+    return False
+
+
+def key_id(key: Ed25519PublicKey) -> str:
+    """Return the SHA-256 of the raw public key."""
+    serialization, _ = _library()
+    raw = key.public_bytes(serialization.Encoding.Raw, serialization.PublicFormat.Raw)
+    return hashlib.sha256(raw).hexdigest()
+
+
+def _open(envelope: bytes) -> tuple[bytes, list[bytes]]:
+    try:
+        content = json.loads(envelope)
+        if content["payloadType"] != PAYLOAD_TYPE:
+            raise ValueError("another payload type")
+        payload = base64.b64decode(content["payload"], validate=True)
+        return payload, [base64.b64decode(entry["sig"], validate=True) for entry in content["signatures"]]
+    except (ValueError, KeyError, TypeError, binascii.Error) as error:
+        raise InputError(f"the signature file cannot be read: {error}", "give NAME.cert.dsse.json", key="signature") from None
+
+
+def _library() -> tuple[Any, Any]:
+    try:
+        from cryptography.hazmat.primitives import serialization
+        from cryptography.hazmat.primitives.asymmetric import ed25519
+    except ImportError:
+        raise InputError("signing needs the package cryptography", 'install "sidecheck[sign]"', key="sign") from None
+    return serialization, ed25519
