@@ -28,7 +28,7 @@ P = sp.Symbol("t", positive=True)
 LINE, HALF = Domain({R: (-sp.oo, sp.oo)}), Domain({P: (sp.Integer(0), sp.oo)})
 
 
-@settings(max_examples=60, deadline=None)
+@settings(max_examples=25, deadline=None)
 @given(st.lists(st.integers(-6, 6), min_size=1, max_size=5), st.integers(-3, 3), st.integers(1, 4))
 def test_a_proved_sign_holds_at_every_point(coefficients, lower, width):
     """Soundness: whatever sign is proved must hold at rational points of the interval."""
@@ -58,9 +58,7 @@ def test_monotone_on_the_line(natural, rising):
 
 
 def test_monotone_on_an_interval_only_by_balls():
-    step, rising = monotonicity_step(
-        2 * R + sp.sin(R) * sp.cos(R / 2), R, LINE, [], [sp.Integer(-1), sp.sqrt(2)]
-    )
+    step, rising = monotonicity_step(2 * R + sp.sin(R) * sp.cos(R / 2), R, LINE, [], [sp.Integer(-1), sp.sqrt(2)])
     assert (step.grade, rising) == (Grade.ENCLOSED, True)
     assert "<= t <=" in step.statement
 
@@ -145,9 +143,7 @@ def test_affine_map_of_logarithms():
 
 
 def test_a_mean_squared_over_positive_values_is_fine():
-    density = Density(
-        "exp(-(x-t**2)**2/2)/sqrt(2*pi)", variable="x", support="reals", parameter="t", space="t > 0"
-    )
+    density = Density("exp(-(x-t**2)**2/2)/sqrt(2*pi)", variable="x", support="reals", parameter="t", space="t > 0")
     derivation = derive(density)
     assert derivation.grade is Grade.PROVED
     assert derivation.law == "normal(mean = t**2, variance = 1)"

@@ -64,9 +64,7 @@ KNOWN = (
         "1",
         "3",
     ),
-    Known(
-        "Bernoulli", _d("p**x*(1-p)**(1-x)", "integers 0..1", "p", "0 < p < 1"), "x", "binomial", ("1", "p")
-    ),
+    Known("Bernoulli", _d("p**x*(1-p)**(1-x)", "integers 0..1", "p", "0 < p < 1"), "x", "binomial", ("1", "p")),
     Known(
         "Bernoulli as a sum",
         _d("p*x + (1-p)*(1-x)", "integers 0..1", "p", "0 < p < 1"),
@@ -102,9 +100,7 @@ KNOWN = (
         "binomial",
         ("12", "t/(1+t)"),
     ),
-    Known(
-        "geometric from 0", _d("p*(1-p)**x", WHOLE, "p", "0 < p < 1"), "x", "negative binomial", ("1", "p")
-    ),
+    Known("geometric from 0", _d("p*(1-p)**x", WHOLE, "p", "0 < p < 1"), "x", "negative binomial", ("1", "p")),
     Known(
         "geometric from 1",
         _d("p*(1-p)**(x-1)", "integers >= 1", "p", "0 < p < 1"),
@@ -325,11 +321,7 @@ REFUSED = (
     Refused("shifted exponential, unknown start", _d("exp(-(x-t))", "reals >= t", "t", "reals"), "support"),
     Refused("N(t^2, 1)", _d("exp(-(x-t**2)**2/2)/sqrt(2*pi)", REALS, "t", "reals"), "monotonicity"),
     Refused("negative somewhere", _d("exp(-x)*(1+t*(x-1))", POSITIVE, "t", "reals"), "nonnegativity"),
-    Refused(
-        "Poisson without its exponential", _d("lam**x/factorial(x)", WHOLE, "lam", "lam > 0"), "normalisation"
-    ),
-    Refused(
-        "exponential, rate and mean mixed up", _d("t*exp(-x/t)", POSITIVE, "t", "t > 0"), "normalisation"
-    ),
+    Refused("Poisson without its exponential", _d("lam**x/factorial(x)", WHOLE, "lam", "lam > 0"), "normalisation"),
+    Refused("exponential, rate and mean mixed up", _d("t*exp(-x/t)", POSITIVE, "t", "t > 0"), "normalisation"),
     Refused("normal without its root", _d("exp(-(x-t)**2/2)/(2*pi)", REALS, "t", "reals"), "normalisation"),
 )

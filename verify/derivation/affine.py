@@ -44,22 +44,16 @@ def affine_map(claimed: Expr, ours: Expr, symbol: Symbol, points: Sequence[Expr]
     if scale == 0:
         return Affine(witness=f"the claimed function takes the same value at {symbol} = {first} and {second}")
     claimed_step, our_step = (_at(f, symbol, second) - _at(f, symbol, first) for f in (claimed, ours))
-    rest = (claimed - _at(claimed, symbol, first)) * our_step - claimed_step * (
-        ours - _at(ours, symbol, first)
-    )
+    rest = (claimed - _at(claimed, symbol, first)) * our_step - claimed_step * (ours - _at(ours, symbol, first))
     for third in others:
         if sign_at(rest, {symbol: third}):
-            return Affine(
-                witness=f"the values at {symbol} = {first}, {second}, {third} do not lie on one line"
-            )
+            return Affine(witness=f"the values at {symbol} = {first}, {second}, {third} do not lie on one line")
     return Affine()
 
 
 def _plain(shift: Expr) -> Expr:
     """Write a constant with the logarithms of primes, so that equal ones cancel."""
-    return (
-        sp.simplify(sp.expand(sp.expand_log(shift, factor=True))) if shift.has(sp.log) else sp.simplify(shift)
-    )
+    return sp.simplify(sp.expand(sp.expand_log(shift, factor=True))) if shift.has(sp.log) else sp.simplify(shift)
 
 
 def _at(expr: Expr, symbol: Symbol, point: Expr) -> Expr:

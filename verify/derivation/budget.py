@@ -174,10 +174,7 @@ def _is_surrender(error: Exception) -> bool:
     if isinstance(error, (ArithmeticError, NotImplementedError, RecursionError)):
         return True
     frames = traceback.extract_tb(error.__traceback__)
-    return (
-        not frames
-        or Path(frames[-1].filename).resolve().parent.parent != Path(__file__).resolve().parent.parent
-    )
+    return not frames or Path(frames[-1].filename).resolve().parent.parent != Path(__file__).resolve().parent.parent
 
 
 def limit_memory(extra: int) -> None:
@@ -193,6 +190,4 @@ def limit_memory(extra: int) -> None:
         return
     _, hard = resource.getrlimit(resource.RLIMIT_AS)
     limit = now + extra
-    resource.setrlimit(
-        resource.RLIMIT_AS, (limit if hard == resource.RLIM_INFINITY else min(limit, hard), hard)
-    )
+    resource.setrlimit(resource.RLIMIT_AS, (limit if hard == resource.RLIM_INFINITY else min(limit, hard), hard))

@@ -75,9 +75,7 @@ def _read(text: str, derived: Derived, symbol: Symbol, key: str) -> Expr:
 def _affine_step(what: str, text: str, ours: Expr, found: Affine) -> Step:
     if found.scale is not None:
         same = found.scale == 1 and found.shift == 0
-        how = (
-            "is the one derived" if same else f"is {found.scale} times the derived {ours} plus {found.shift}"
-        )
+        how = "is the one derived" if same else f"is {found.scale} times the derived {ours} plus {found.shift}"
         return Step("claims", Grade.PROVED, f"the claimed {what} {text} {how}", "scale and shift are free")
     if found.witness:
         statement = f"the claimed {what} {text} is no affine function of {ours}"
@@ -97,9 +95,7 @@ def _product_step(natural: Affine, statistic: Affine) -> list[Step]:
     if is_zero(product - 1):
         return []
     statement = "the claimed natural parameter and statistic do not belong together"
-    return [
-        Step("claims", Grade.REFUTED, statement, "", f"up to shifts their product is {product} times Q T")
-    ]
+    return [Step("claims", Grade.REFUTED, statement, "", f"up to shifts their product is {product} times Q T")]
 
 
 def _law_step(text: str, derived: Derived, statistic: Affine) -> Step:
@@ -141,9 +137,7 @@ def _compare_parameters(text: str, claimed: Law, ours: Law, derived: Derived) ->
 def moved(family: LawFamily, scale: Expr, shift: Expr | None) -> LawFamily:
     """Return the family of ``scale * T + shift``."""
     new_shift = scale * as_expr(family.shift) + (shift or 0)
-    return LawFamily(
-        family.law, as_exact(scale * as_expr(family.scale)), as_exact(new_shift), family.parameter
-    )
+    return LawFamily(family.law, as_exact(scale * as_expr(family.scale)), as_exact(new_shift), family.parameter)
 
 
 def absorbed(family: LawFamily, n: Any, scale: Expr, shift: Expr) -> Law | None:

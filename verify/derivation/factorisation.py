@@ -38,9 +38,7 @@ class Factorisation:
         return sp.exp(self.log_base)
 
 
-def factorise(
-    expr: Expr, x: Symbol, t: Symbol, domain: Domain, points: tuple[Expr, Expr]
-) -> Factorisation | None:
+def factorise(expr: Expr, x: Symbol, t: Symbol, domain: Domain, points: tuple[Expr, Expr]) -> Factorisation | None:
     """Return the factorisation of a density that multiplying out its logarithm shows, proved as an
     identity, or None.
 
@@ -126,10 +124,7 @@ def _rank_one_by_difference(
     """T(x) ~ D(x, t1) and Q(t) ~ D(x1, t), when the terms could not be parted by multiplying out."""
     x0, t0 = points
     difference = (
-        logarithm
-        - logarithm.subs(x, x0)
-        - logarithm.subs(t, t0)
-        + logarithm.subs({x: x0, t: t0}, simultaneous=True)
+        logarithm - logarithm.subs(x, x0) - logarithm.subs(t, t0) + logarithm.subs({x: x0, t: t0}, simultaneous=True)
     )
     for t1 in (t0 + 1, t0 / 2, t0 / 3):
         statistic = difference.subs(t, t1)

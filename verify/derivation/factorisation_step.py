@@ -23,14 +23,13 @@ def factorisation_step(density: Density) -> tuple[Step, Factorisation | None]:
     xs, ts = support_points(density.parsed_support), parameter_points(density)
     if not density.expr.has(t):
         statement = f"the density does not depend on the parameter {t}"
-        return Step(
-            "factorisation", Grade.REFUTED, statement, "", f"{t} does not occur in {density.expr}"
-        ), None
+        return Step("factorisation", Grade.REFUTED, statement, "", f"{t} does not occur in {density.expr}"), None
     found = factorise(density.expr, x, t, domain, (xs[0], ts[0]))
     if found is None and density.parsed_support.is_finite and len(density.parsed_support.points) == 2:
-        found = factorise_two_points(
-            mass_at(density, xs[0]), mass_at(density, xs[1]), x, t, domain, (xs[0], xs[1])
-        )
+        found = factorise_two_points(mass_at(density, xs[0]), mass_at(density, xs[1]), x, t, domain, (xs[0], xs[1]))
+        reason = "two points: every family on them is exponential, with Q the log of the ratio of their masses"
+        if found is not None:
+            return _proved(density, found, reason)
     if found is not None:
         return _proved(density, found)
     try:
@@ -39,9 +38,7 @@ def factorisation_step(density: Density) -> tuple[Step, Factorisation | None]:
     except (SidecheckError, ArithmeticError) as error:
         witness, searched = "", f"no witness could be looked for: {error}"
     if witness:
-        statement = (
-            "the density is not a one-parameter exponential family: D(x,t) D(x1,t1) = D(x1,t) D(x,t1) fails"
-        )
+        statement = "the density is not a one-parameter exponential family: D(x,t) D(x1,t1) = D(x1,t) D(x,t1) fails"
         return Step("factorisation", Grade.REFUTED, statement, "certain in ball arithmetic", witness), None
     found = factorise_by_difference(density.expr, x, t, domain, (xs[0], ts[0]))
     if found is not None:
@@ -52,11 +49,11 @@ def factorisation_step(density: Density) -> tuple[Step, Factorisation | None]:
     ), None
 
 
-def _proved(density: Density, found: Factorisation) -> tuple[Step, Factorisation]:
+def _proved(density: Density, found: Factorisation, reason: str = REASON) -> tuple[Step, Factorisation]:
     t = density.t
     parts = f"T(x) = {found.statistic}, Q({t}) = {found.natural_parameter}, h(x) = {found.base}"
     if density.is_kernel:
         statement = f"the kernel is h(x) exp(Q T - B) with {parts}, B({t}) = {found.log_normaliser}"
     else:
         statement = f"f = h(x) exp(Q T - A) with {parts}, A({t}) = {found.log_normaliser}"
-    return Step("factorisation", Grade.PROVED, statement, REASON), found
+    return Step("factorisation", Grade.PROVED, statement, reason), found

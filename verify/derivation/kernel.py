@@ -37,17 +37,11 @@ def with_normaliser(density: Density, found: Factorisation | None) -> tuple[Step
     if not _somewhere_positive(density):
         statement = f"whether the sum of the kernel is positive for every {t} stayed open"
         return Step("normalisation", Grade.UNDECIDED, statement), None
-    statement = (
-        f"the normaliser is the sum of the kernel over {count} points, finite and positive for every {t}"
-    )
-    step = Step(
-        "normalisation", Grade.PROVED, statement, "a finite sum of non-negative terms, one of them positive"
-    )
+    statement = f"the normaliser is the sum of the kernel over {count} points, finite and positive for every {t}"
+    step = Step("normalisation", Grade.PROVED, statement, "a finite sum of non-negative terms, one of them positive")
     if found is None:
         return step, None
-    total = (
-        written_out(density) if count <= WRITTEN_OUT else sp.Sum(density.expr, (density.x, *_ends(density)))
-    )
+    total = written_out(density) if count <= WRITTEN_OUT else sp.Sum(density.expr, (density.x, *_ends(density)))
     return step, replace(found, log_normaliser=found.log_normaliser + sp.log(total))
 
 
@@ -62,9 +56,7 @@ def _somewhere_positive(density: Density) -> bool:
 
 def written_out(density: Density) -> Expr:
     """Return the sum of a kernel over its support, written out and factored."""
-    return sp.factor(
-        normal(sp.Add(*(mass_at(density, sp.Integer(k)) for k in density.parsed_support.points)))
-    )
+    return sp.factor(normal(sp.Add(*(mass_at(density, sp.Integer(k)) for k in density.parsed_support.points))))
 
 
 def kernel_certainly_another(density: Density, statistic: Expr, points: Sequence[Expr]) -> bool:
@@ -90,8 +82,7 @@ def _coefficients(A: Any, masses: list[Expr], values: list[Any], name: str, t: A
     total = _sum(weights)
     mean = _sum(w * v for w, v in zip(weights, values, strict=True)) / total
     k2, k3, m4, m5 = (
-        _sum(w * A.power(v - mean, k) for w, v in zip(weights, values, strict=True)) / total
-        for k in (2, 3, 4, 5)
+        _sum(w * A.power(v - mean, k) for w, v in zip(weights, values, strict=True)) / total for k in (2, 3, 4, 5)
     )
     k4, k5 = m4 - 3 * k2 * k2, m5 - 10 * k3 * k2
     v2 = (k4 * k2 - k3 * k3) / (2 * k2 * k2 * k2)

@@ -30,12 +30,8 @@ def law_step(density: Density, found: Factorisation, leaning: Grade) -> tuple[St
     """
     t, points = density.t, parameter_points(density)
     if _certainly_another(density, found, points[1:4]):
-        statement = (
-            "the variance function of T is neither quadratic nor a cube: no law in closed form is named"
-        )
-        return general_law(
-            density, found, Step("law", leaning, statement, "certain in ball arithmetic; Morris 1982")
-        )
+        statement = "the variance function of T is neither quadratic nor a cube: no law in closed form is named"
+        return general_law(density, found, Step("law", leaning, statement, "certain in ball arithmetic; Morris 1982"))
     variance = variance_function(_written_out(density, found), found.natural_parameter, t)
     if variance is None:
         statement = "no quadratic or cubic variance function of T was found"
@@ -46,9 +42,7 @@ def law_step(density: Density, found: Factorisation, leaning: Grade) -> tuple[St
         statement = f"T has a {SECANT} law with r = {1 / variance.v2}"
         return general_law(density, found, Step("law", leaning, statement, f"{shown}; Morris 1982"))
     if named.family is None:
-        return general_law(
-            density, found, Step("law", leaning, "T has no named law", f"{shown}; {named.word}")
-        )
+        return general_law(density, found, Step("law", leaning, "T has no named law", f"{shown}; {named.word}"))
     source = "Letac and Mora 1990" if isinstance(variance, Cube) else "Morris 1982"
     law = named.family.text()
     statement = f"T = {law}" if "Y of law" in law else f"T has the law {law}"

@@ -12,6 +12,9 @@ import sympy as sp
 from verify.derivation.positivity import Domain
 from verify.derivation.signs import sign_of
 
+LARGEST_POWER = 20
+"""Multiples of logarithms up to this are put together into one logarithm of powers."""
+
 
 def log_absolute(expr: sp.Expr, domain: Domain) -> sp.Expr:
     """Return log |expr| as a sum of logarithms of its parts.
@@ -86,18 +89,16 @@ def combine_logs(expr: sp.Expr) -> sp.Expr:
     """
     if not isinstance(expr, sp.Add):
         return expr
-    groups: dict[sp.Expr, list[sp.Expr]] = {}
-    rest: list[sp.Expr] = []
-    for term in expr.args:
-        coefficient, factors = term.as_coeff_Mul()
-        if isinstance(factors, sp.log) and coefficient.is_Rational:
-            argument = factors.args[0] if coefficient > 0 else 1 / factors.args[0]
-            groups.setdefault(abs(coefficient), []).append(argument)
-        else:
-            rest.append(term)
-    combined = [size * sp.log(sp.Mul(*arguments)) for size, arguments in groups.items()]
-    if len(combined) == 1 and not rest and len(groups) == 1:
-        ((size, arguments),) = groups.items()
-        if sp.Mul(*arguments).as_numer_denom()[0] == 1:
-            return -size * sp.log(1 / sp.Mul(*arguments))
-    return sp.Add(*combined, *rest)
+    terms = [term.as_coeff_Mul() for term in expr.args]
+    logs = [(c, f) for c, f in terms if isinstance(f, sp.log) and c.is_Rational]
+    if len(logs) < 2:
+        return expr
+    size = sp.gcd([c for c, _ in logs])
+    size = -size if all(c < 0 for c, _ in logs) else size
+    if any(abs(c / size) > LARGEST_POWER for c, _ in logs):
+        return expr
+    argument = sp.Mul(*(f.args[0] ** (c / size) for c, f in logs))
+    if argument.as_numer_denom()[0] == 1:
+        size, argument = -size, 1 / argument
+    rest = (c * f for c, f in terms if (c, f) not in logs)
+    return sp.Add(size * sp.log(argument), *rest)

@@ -54,18 +54,14 @@ def monotonicity_step(
         word = "increasing" if sign > 0 else "decreasing"
         lower, upper = domain.ranges[t]
         statement = f"Q({t}) = {natural} is strictly {word} for {lower} < {t} < {upper}"
-        return Step(
-            "monotonicity", Grade.PROVED, statement, f"sign of Q'({t}) = {_short(derivative)}"
-        ), sign > 0
+        return Step("monotonicity", Grade.PROVED, statement, f"sign of Q'({t}) = {_short(derivative)}"), sign > 0
     signs = {point: sign_at(derivative, {t: point}) for point in points}
     up = next((point for point, s in signs.items() if s > 0), None)
     down = next((point for point, s in signs.items() if s < 0), None)
     if up is not None and down is not None:
         witness = f"Q'({t}) > 0 at {t} = {up} and Q'({t}) < 0 at {t} = {down}"
         statement = f"Q({t}) = {natural} is not monotone"
-        return Step(
-            "monotonicity", Grade.REFUTED, statement, f"Q'({t}) = {_short(derivative)}", witness
-        ), None
+        return Step("monotonicity", Grade.REFUTED, statement, f"Q'({t}) = {_short(derivative)}", witness), None
     return _by_balls(natural, derivative, t, [*limits] if len(limits) > 1 else [*limits, *points])
 
 
@@ -76,12 +72,7 @@ def _strict_sign(derivative: Expr, domain: Domain) -> int:
         return known
     product = 1
     for factor in factors(sp.powsimp(sp.factor_terms(derivative))):
-        if (
-            isinstance(factor, sp.Pow)
-            and factor.exp.is_even
-            and factor.exp.is_positive
-            and _polynomial(factor.base)
-        ):
+        if isinstance(factor, sp.Pow) and factor.exp.is_even and factor.exp.is_positive and _polynomial(factor.base):
             continue
         product *= sign_of(factor, domain)
     return product
@@ -98,9 +89,7 @@ def _by_balls(natural: Expr, derivative: Expr, t: Symbol, values: Sequence[Expr]
     sign = certain_sign_between(derivative, t, lower, upper) if lower < upper else 0
     if not sign:
         statement = f"whether Q({t}) = {natural} is strictly monotone stayed open"
-        reason = (
-            f"no proof of the sign of Q'({t}), neither symbolic nor in {PIECES} pieces of [{lower}, {upper}]"
-        )
+        reason = f"no proof of the sign of Q'({t}), neither symbolic nor in {PIECES} pieces of [{lower}, {upper}]"
         return Step("monotonicity", Grade.UNDECIDED, statement, reason), None
     word = "increasing" if sign > 0 else "decreasing"
     statement = f"Q({t}) = {natural} is strictly {word} for {lower} <= {t} <= {upper}"

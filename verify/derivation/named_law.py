@@ -87,9 +87,7 @@ def read_law(text: str, symbols: Mapping[str, Expr], key: str = "claim.law") -> 
             )
         given[slot] = change(parse_formula(body if equals else part, symbols, key))
     if len(given) != len(names):
-        raise InputError(
-            f"{text!r} has too few parameters", f"{match.group(1)} takes {', '.join(names)}", key=key
-        )
+        raise InputError(f"{text!r} has too few parameters", f"{match.group(1)} takes {', '.join(names)}", key=key)
     return build(*(given[slot] for slot in names))
 
 

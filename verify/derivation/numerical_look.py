@@ -18,6 +18,7 @@ from verify.derivation.family import LawFamily
 from verify.derivation.ledger import Grade, Step
 from verify.derivation.points import mass_at, support_points
 from verify.derivation.quadrature import integral_below, integral_from_zero
+from verify.laws.base import Law
 from verify.problem.density import Density
 from verify.problem.numbers import as_exact, as_expr
 
@@ -82,9 +83,7 @@ def _agreement(difference: Any, size: Any) -> int:
     return 0
 
 
-def _lattice(
-    density: Density, statistic: Expr, family: LawFamily, at: Expr, value: Any
-) -> tuple[int, int, str] | None:
+def _lattice(density: Density, statistic: Expr, family: LawFamily, at: Expr, value: Any) -> tuple[int, int, str] | None:
     """Finite sums in ball arithmetic: every way to write v as a sum of two or three values of Y."""
     xs = support_points(density.parsed_support, ALL_POINTS if density.is_kernel else POINTS)
     places = [(statistic.subs(density.x, x) - as_expr(family.shift)) / as_expr(family.scale) for x in xs]
@@ -129,17 +128,17 @@ def _continuous(
     density: Density, statistic: Expr, family: LawFamily, at: Expr, value: Any
 ) -> tuple[int, int, str] | None:
     """The integral of g(y) g(v - y) by quadrature, with g the density of Y made from f by its branches."""
-    A = high(WORKING_DIGITS)
+    one, two = family.at(value, 1), family.at(value, 2)
+    A = high(WORKING_DIGITS + _cancelled_digits(two))
     g = _density_of_y(density, statistic, family, at, A)
     if g is None:
         return None
-    one, two = family.at(value, 1), family.at(value, 2)
     centre, spread = two.expectation(A), two.spread(A)
     worst, shown = DIGITS, []
     for share in (Fraction(-1, 2), Fraction(3, 4)):
         v = centre + A.real(share) * spread
         if one.support[0] is None:
-            found = 2 * integral_below(A, _product(g, v), v / 2)
+            found = 2 * spread * integral_below(A, _scaled_product(g, v / 2, spread), A.real(0))
         else:
             v = centre * A.exp(A.real(share))
             found = 2 * integral_from_zero(A, _product(g, v), v / 2)
@@ -149,8 +148,19 @@ def _continuous(
     return worst, 2, f"by double-exponential quadrature at V = {', '.join(shown)} on the scale of Y, n = 2"
 
 
+def _cancelled_digits(law: Law) -> int:
+    """Decimal digits that a law loses which is narrow for the size of its mean."""
+    A = high(WORKING_DIGITS)
+    narrowness = abs(law.expectation(A)) / law.spread(A)
+    return int(A.log(narrowness + 1) / A.log(A.real(10))) + 1
+
+
 def _product(g: Callable[[Any], Any], v: Any) -> Callable[[Any], Any]:
     return lambda y: g(y) * g(v - y)
+
+
+def _scaled_product(g: Callable[[Any], Any], middle: Any, unit: Any) -> Callable[[Any], Any]:
+    return lambda z: g(middle + unit * z) * g(middle - unit * z)
 
 
 def _density_of_y(

@@ -72,9 +72,9 @@ def _polynomial_sign(expr: Expr, domain: Domain) -> int:
     polynomial = Poly(expr, symbol)
     if not (polynomial.domain.is_ZZ or polynomial.domain.is_QQ) or not all(end.is_Rational for end in ends):
         return 0
-    roots = polynomial.count_roots(
-        lower if lower.is_finite else None, upper if upper.is_finite else None
-    ) - sum(1 for end in ends if polynomial.eval(end) == 0)
+    roots = polynomial.count_roots(lower if lower.is_finite else None, upper if upper.is_finite else None) - sum(
+        1 for end in ends if polynomial.eval(end) == 0
+    )
     if roots:
         return 0
     return 1 if polynomial.eval(next(points_inside((lower, upper)))) > 0 else -1

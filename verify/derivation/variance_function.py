@@ -83,8 +83,6 @@ def _cube(k1: Expr, k2: Expr, first: Expr, half: Expr, third: Expr, t: Symbol) -
     root = is_constant(k1 - half / (3 * c), t)
     if root is None:
         return None
-    if any(
-        is_constant(rest, t) != 0 for rest in (first - 3 * c * (k1 - root) ** 2, k2 - c * (k1 - root) ** 3)
-    ):
+    if any(is_constant(rest, t) != 0 for rest in (first - 3 * c * (k1 - root) ** 2, k2 - c * (k1 - root) ** 3)):
         return None
     return Cube(k1, c, root)

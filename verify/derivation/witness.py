@@ -37,10 +37,7 @@ def rank_witness(expr: Expr, x: Symbol, t: Symbol, xs: Sequence[Expr], ts: Seque
     """
     with balls(PRECISION) as A:
         table = [[_log_at(expr, A, {x.name: A.real(a), t.name: A.real(b)}) for b in ts] for a in xs]
-        d = [
-            [table[i][j] - table[0][j] - table[i][0] + table[0][0] for j in range(len(ts))]
-            for i in range(len(xs))
-        ]
+        d = [[table[i][j] - table[0][j] - table[i][0] + table[0][0] for j in range(len(ts))] for i in range(len(xs))]
         for i, i1 in combinations(range(1, len(xs)), 2):
             for j, j1 in combinations(range(1, len(ts)), 2):
                 left, right = d[i][j] * d[i1][j1], d[i1][j] * d[i][j1]
