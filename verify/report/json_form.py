@@ -24,7 +24,7 @@ GUARD = 3
 def enclosure_json(value: Enclosure, digits: int) -> dict[str, str]:
     """Write an enclosure as two decimal strings rounded outward, equal when the number is exact.
 
-    Three figures more than the digits asked for are written, so that rounding outward spoils none of these. A rational
+    Three figures more than the digits asked for are written: rounding outward spoils none of these. A rational
     without a decimal form of that length gets the two neighbouring decimals.
 
     Examples
