@@ -1,7 +1,7 @@
 """Single calls of SciPy 1.17 whose true value is known: the count of agreeing digits names the wrong ones.
 
-True values: computed for this test in Arb balls at rising precision and confirmed by a second route (sums of masses in exact
-fractions, or PARI); those of the Poisson, binomial, gamma and chi-square calls are recomputed here.
+True values: recorded from a computation in Arb balls at rising precision, confirmed by a second route; those
+that the arithmetic of this package can evaluate are recomputed below.
 """
 
 import math

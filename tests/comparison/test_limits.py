@@ -9,7 +9,11 @@ from verify.comparison.limits import NotAttempted, run_limited
 
 
 def test_values_come_back_in_order():
-    assert [outcome.value for outcome in run_limited([lambda: 1, lambda: "two", lambda: {"x": 3.0}])] == [1, "two", {"x": 3.0}]
+    assert [outcome.value for outcome in run_limited([lambda: 1, lambda: "two", lambda: {"x": 3.0}])] == [
+        1,
+        "two",
+        {"x": 3.0},
+    ]
 
 
 def test_a_sleeping_call_is_killed_and_the_next_one_runs():

@@ -1,6 +1,6 @@
-"""Windows known to twenty digits: the proof has them, and the comparison names what double precision gets wrong.
+"""Windows known to twenty digits: the proof has them, the comparison names what doubles get wrong.
 
-The values were computed in Arb balls at rising precision for this project, each by two routes (from memory of no table).
+The values are recorded from a computation in Arb balls at rising precision, each by two routes.
 """
 
 from fractions import Fraction

@@ -1,4 +1,4 @@
-"""The masses of a lattice formula in double precision: which atoms matter, T's grid, the n-fold convolution."""
+"""The masses of a lattice formula in doubles: which atoms matter, T's grid, the n-fold convolution."""
 
 from __future__ import annotations
 
@@ -14,7 +14,7 @@ from verify.comparison.limits import NotAttempted
 MOST_ATOMS = 1 << 21
 """More atoms than this are not enumerated."""
 DIRECT_WORK = 4 * 10**7
-"""Multiplications up to which a convolution is done directly, which keeps the relative accuracy of the tails."""
+"""Multiplications up to which a convolution is done directly, which keeps the tails' relative accuracy."""
 _DENSE = 4096
 
 Array = Any
@@ -41,7 +41,8 @@ class Masses:
 def atoms_that_matter(log_mass: Callable[[Array], Array], lower: float, upper: float, depth: float) -> Array:
     """The run of integers around the mode where log_mass is within ``depth`` of its peak.
 
-    Assumes that the masses fall monotonically outside the dense look and away from the mode; the caller checks that they add
+    Assumes that the masses fall monotonically outside the dense look and away from the mode; the caller
+    checks that they add
     up to one.
 
     Raises

@@ -1,6 +1,7 @@
 """Second opinion: brute force from the formula itself, never from the law.
 
-The formula is evaluated in doubles at every atom that matters and its masses are convolved n times; a continuous density is
+The formula is evaluated in doubles at every atom that matters and its masses are convolved n times; a
+continuous density is
 integrated (see ``continuous.py``). The side conditions are then solved on the resulting table.
 """
 
@@ -40,7 +41,7 @@ def brute_force_opinion(ask: Question) -> Answer:
 
 
 def rejects_large_v(ask: Question, log_density: Callable[[Array, float], Array], x: Array) -> bool:
-    """Whether a one-sided test rejects large V: where the likelihood ratio of a larger to a smaller t rises with T."""
+    """Whether a one-sided test rejects large V: whether the likelihood ratio rises with T."""
     t, step = ask.limits[0], 1e-4 * max(abs(ask.limits[0]), 1e-8)
     ratio = log_density(x, t + step) - log_density(x, t - step)
     places = values(ask.statistic, {ask.density.x.name: x}) + 0 * x
@@ -51,7 +52,7 @@ def rejects_large_v(ask: Question, log_density: Callable[[Array, float], Array],
     return bool((slope > 0) == ask.null_below)
 
 
-# -- lattice -------------------------------------------------------------------------------------------------------
+# -- lattice -----------------------------------------------------------------------------------------------
 
 
 def _lattice(ask: Question) -> Answer:
@@ -106,7 +107,9 @@ def _observations(ask: Question, t: float) -> tuple[Array, Array]:
         return x, weights / np.sum(weights)
     masses = np.exp(heights)
     if not abs(np.sum(masses) - 1) < 1e-6:
-        raise ArithmeticError(f"the masses of the formula add up to {np.sum(masses):.9g} at {ask.density.t.name} = {t:g}")
+        raise ArithmeticError(
+            f"the masses of the formula add up to {np.sum(masses):.9g} at {ask.density.t.name} = {t:g}"
+        )
     return x, masses
 
 
@@ -117,7 +120,11 @@ def _merged(rows: list[tuple[Array, Array]]) -> tuple[Array, list[Array]]:
     union = union[near]
     weights = []
     for places, masses in rows:
-        index = np.clip(np.searchsorted(union, places * (1 + 1e-13 * np.sign(places)), side="right") - 1, 0, len(union) - 1)
+        index = np.clip(
+            np.searchsorted(union, places * (1 + 1e-13 * np.sign(places)), side="right") - 1,
+            0,
+            len(union) - 1,
+        )
         weights.append(np.bincount(index, weights=masses, minlength=len(union)))
     return union, weights
 

@@ -62,7 +62,8 @@ def compare(solution: Solution, *, seconds: float = SECONDS, memory: int = MEMOR
     Returns
     -------
     Comparison
-        A library's failure is a flag, never an exception. The routes share no code with the solution; where they agree with
+        A library's failure is a flag, never an exception. The routes share no code with the solution; where
+        they agree with
         it, that is evidence, not proof.
 
     Examples
@@ -78,7 +79,9 @@ def compare(solution: Solution, *, seconds: float = SECONDS, memory: int = MEMOR
     try:
         ask = question(solution)
     except OverflowError as error:
-        outcomes = tuple(Outcome(not_attempted=f"a number of the problem fits into no double ({error})") for _ in ROUTES)
+        outcomes = tuple(
+            Outcome(not_attempted=f"a number of the problem fits into no double ({error})") for _ in ROUTES
+        )
     else:
         outcomes = _outcomes(ask, seconds, memory)
     opinions = tuple(_opinion(route, truth, outcome) for route, outcome in zip(ROUTES, outcomes, strict=True))

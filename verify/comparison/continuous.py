@@ -62,7 +62,7 @@ def _claim(ask: Question, rows: Sequence[Measure], numbers: Numbers, slow: bool)
     finer = _rows(ask, *_panels(ask, 2))
     moved = max(
         abs(row.tail(c, above) - other.tail(c, above)) / level
-        for row, other, level in zip(rows, finer, ask.levels, strict=False)
+        for row, other, level in zip(list[Measure](rows), list[Measure](finer), ask.levels, strict=False)
         for c in numbers.values()
         for above in (False, True)
     )
@@ -105,7 +105,7 @@ def _panels(ask: Question, fine: int) -> tuple[Nodes, list[Callable[[Array], Arr
 
 
 def _recentred(ask: Question, change: Any, lower: float, upper: float) -> Any:
-    """On the real line: put w = 0 at the mode under the first limit, and one unit of sinh at the peak's width."""
+    """On the real line: put w = 0 at the mode under the first limit, one unit of sinh at its width."""
     t = ask.limits[0]
     left, mode, right = run_of_interest(lambda w: log_density(ask, change.x(w), t), 1.0)
     width = float(change.x(right) - change.x(left)) / 2

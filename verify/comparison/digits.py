@@ -1,9 +1,12 @@
 """How many decimal digits of a double-precision number agree with a proven enclosure.
 
-The definition. Let x be the number (a double, taken as the exact rational that it is) and [a, b] the enclosure. The worst
-error is e = max(|x - a|, |x - b|): no point of the enclosure is farther from x. Against a scale s > 0 they agree to k
-digits when e <= s * 10**-k; the agreement is the largest such whole k, never below 0 and never above
-``DOUBLE_DIGITS``, since a double carries no more. The scale of *significant* digits is the smallest |value| in the enclosure.
+The definition. Let x be the number (a double, taken as the exact rational that it is) and [a, b] the
+enclosure. The worst
+error is e = max(|x - a|, |x - b|): no point of the enclosure is farther from x. Against a scale s > 0 they
+agree to
+k digits when e <= s * 10**-k; the agreement is the largest such whole k, never below 0 and never above
+``DOUBLE_DIGITS``, since a double carries no more. The scale of *significant* digits is the smallest |value|
+in the enclosure.
 
 The enclosure's own width counts against the agreement: what is not proved is not agreed.
 """
@@ -66,7 +69,8 @@ def digits_on_scale(value: float, truth: Enclosure, scale: Fraction) -> int:
 def significant_digits(value: float, truth: Enclosure) -> int:
     """Significant decimal digits to which a double agrees with an enclosure.
 
-    An enclosure that holds 0 has no significant digits: there the agreement is full when both are exactly 0, else 0.
+    An enclosure that holds 0 has no significant digits: there the agreement is full when both are exactly 0,
+    else 0.
 
     Examples
     --------

@@ -1,4 +1,4 @@
-"""What a reader has to be warned of: cutoffs that differ, few digits, failures, bad condition, and which route is off."""
+"""What a reader has to be warned of: cutoffs that differ, few digits, failures, bad condition."""
 
 from __future__ import annotations
 
@@ -11,7 +11,7 @@ from verify.comparison.opinion import Opinion, Truth
 ENOUGH = 10
 """Digits below which a double-precision number is flagged."""
 ENOUGH_FRACTION = 6
-"""A fraction gamma itself may agree to fewer, as long as the level it spends is right to ``ENOUGH`` digits."""
+"""A fraction gamma may agree to fewer, as long as the level it spends is right to ``ENOUGH`` digits."""
 ILL = 1e6
 """Condition from which more than six of a double's sixteen digits are lost, whatever the solver."""
 
@@ -86,7 +86,7 @@ def _cutoffs_differ(name: str, opinion: Opinion, opinions: tuple[Opinion, ...], 
 
 
 def is_tie(name: str, opinion: Opinion, truth: Truth) -> bool:
-    """Whether the route stands one lattice point beside a cutoff whose fraction is 0 or 1 to double precision."""
+    """Whether the route stands one point beside a cutoff whose fraction is 0 or 1 to double precision."""
     value, gamma = _finite(opinion, name), name.replace("c", "gamma", 1)
     if value is None or gamma not in truth.numbers or gamma not in truth.scales:
         return False

@@ -2,11 +2,15 @@
 
 M(s) = E exp(s T) is a sum over the Gauss nodes. Two inversions:
 
-- *tilted*: on the vertical line through a real point theta near the saddlepoint of the cutoff, P(V > c) is the integral of
-  exp(n log M(theta + iu) - (theta + iu) c) / (theta + iu) over u, by the trapezoidal rule, which converges exponentially
-  (J. Abate and W. Whitt, "The Fourier-series method for inverting transforms of probability distributions", Queueing Systems
+- *tilted*: on the vertical line through a real point theta near the saddlepoint of the cutoff, P(V > c) is
+the integral of
+  exp(n log M(theta + iu) - (theta + iu) c) / (theta + iu) over u, by the trapezoidal rule, which converges
+  exponentially
+  (J. Abate and W. Whitt, "The Fourier-series method for inverting transforms of probability distributions",
+  Queueing Systems
   10 (1992) 5-88, section 5). The tail in question keeps its relative accuracy.
-- *Euler*: when |M|**n falls too slowly for that and T is bounded on one side, their Euler summation of the alternating series;
+- *Euler*: when |M|**n falls too slowly for that and T is bounded on one side, their Euler summation of the
+alternating series;
   about ``EULER_DIGITS`` decimals, absolute.
 """
 
@@ -33,7 +37,7 @@ _NEGLIGIBLE = 1e-18
 
 @dataclass(frozen=True)
 class Line:
-    """Equally spaced points of a vertical line, with E exp(s T') and E[T' exp(s T')] there, T' = T - centre."""
+    """Points of a vertical line, with E exp(s T') and E[T' exp(s T')] there, T' = T - centre."""
 
     s: Array
     one: Array
@@ -45,9 +49,10 @@ class Line:
 
 @dataclass(frozen=True, eq=False)
 class Transform:
-    """Places of T and their masses (quadrature weights times density) under one limit; sums over n observations.
+    """Places of T and their masses (quadrature weights times density) under one limit.
 
-    ``alpha`` sets how small a tail is to be resolved. The lines are kept: a Newton step moves the cutoff, not the line.
+    ``alpha`` sets how small a tail is to be resolved. The lines are kept: a Newton step moves the cutoff,
+    not the line.
     """
 
     places: Array
@@ -93,7 +98,7 @@ class Transform:
         return Line(theta + 1j * step * np.arange(len(one)), one, first, step, centre, True)
 
     def _tilt(self, above: bool) -> float:
-        """The real s where Chernoff's bound exp(n (K(s) - s K'(s))) of the tail is alpha, K = log E exp(s T)."""
+        """Where Chernoff's bound exp(n (K(s) - s K'(s))) of the tail is alpha, K = log E exp(s T)."""
         side = 1.0 if above else -1.0
 
         def excess(size: float) -> float:

@@ -1,7 +1,9 @@
 """Calls that may never come back: run them in a process that can be killed, under a time and a memory limit.
 
-A C loop ignores alarms and a library may ask for all the memory there is, so a limit inside the same process is no
-limit. One forked child does all the calls in turn and reports each result; only when it dies or is killed is another one
+A C loop ignores alarms and a library may ask for all the memory there is, so a limit inside the same process
+is no
+limit. One forked child does all the calls in turn and reports each result; only when it dies or is killed is
+another one
 forked for the calls that are left.
 """
 
@@ -40,7 +42,8 @@ class Outcome:
     value : Any
         What the call returned; None when it failed or was not attempted.
     failure : str
-        Why there is no value ("" when there is one): an exception's text, "stopped after 5 s", "died (signal 9)".
+        Why there is no value ("" when there is one): an exception's text, "stopped after 5 s", "died (signal
+        9)".
     not_attempted : str
         The reason of a call that declined.
     seconds : float

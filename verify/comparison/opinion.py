@@ -20,7 +20,8 @@ class Opinion:
     route : str
         ``"SciPy"`` or ``"brute force"``.
     numbers : dict of str to (str or None)
-        Each number as its double prints; None where the route has none. ``expectation1``, ``expectation2`` are the route's
+        Each number as its double prints; None where the route has none. ``expectation1``, ``expectation2``
+        are the route's
         evaluation of the side conditions for the *proven* test.
     digits : dict of str to int
         Significant digits that agree with the proof (for an expectation: on the scale of its target).
@@ -52,7 +53,8 @@ class Truth:
     numbers : dict of str to Enclosure
         Cutoffs, fractions, expectations.
     scales : dict of str to Fraction
-        For an expectation, its target (for the moment condition: level times spread); for a fraction, level / mass.
+        For an expectation, its target (for the moment condition: level times spread); for a fraction, level
+        / mass.
     step : float
         Distance of lattice points of V; 0.0 for a continuous law.
     """
@@ -64,7 +66,12 @@ class Truth:
 
 
 def opinion_of(
-    route: str, truth: Truth, found: dict[str, float], note: str = "", failure: str = "", claimed: int | None = None
+    route: str,
+    truth: Truth,
+    found: dict[str, float],
+    note: str = "",
+    failure: str = "",
+    claimed: int | None = None,
 ) -> Opinion:
     """Hold a route's doubles against the proof.
 

@@ -1,7 +1,9 @@
-"""One observation of a continuous formula as a set of Gauss nodes, and the law of T(x) by integrating over regions of x.
+"""One observation of a continuous formula as Gauss nodes, and the law of T(x) by integrals over x.
 
-The variable is x = x(w) with w on the whole line (exp, sinh or logistic, by the support), so that an end of the support or a
-far tail is a place where the integrand merely dies out. The panels break at the mode under each limit (a kink usually sits
+The variable is x = x(w) with w on the whole line (exp, sinh or logistic, by the support), so that an end of
+the support or a far tail is a place where the integrand merely dies out. The panels break at the mode under
+each limit (a
+kink usually sits
 there) and where T turns.
 """
 
@@ -9,6 +11,7 @@ from __future__ import annotations
 
 from collections.abc import Callable
 from dataclasses import dataclass
+from itertools import pairwise
 from typing import Any
 
 import numpy as np
@@ -29,7 +32,7 @@ class Change:
 
 
 def change_of_variable(lower: float, upper: float, centre: float = 0.0, width: float = 1.0) -> Change:
-    """The map from the whole line onto the support; ``centre`` and ``width`` are used on the real line only."""
+    """The map from the whole line onto the support; ``centre`` and ``width`` serve the real line."""
     if np.isfinite(lower) and np.isfinite(upper):
         span = upper - lower
         return Change(lambda w: lower + span * expit(w), lambda w: np.log(span * expit(w)) + np.log(expit(-w)))
@@ -108,9 +111,7 @@ def gauss_panels(edges: Array) -> tuple[Array, Array]:
     return edges[:-1, None] + half * (1 + _NODES), half * _WEIGHTS
 
 
-def nodes(
-    heights: list[Callable[[Array], Array]], place: Callable[[Array], Array], depth: float, fine: int
-) -> Nodes:
+def nodes(heights: list[Callable[[Array], Array]], place: Callable[[Array], Array], depth: float, fine: int) -> Nodes:
     """Lay panels where some limit's density matters and T's turning points are known.
 
     Parameters
@@ -122,7 +123,8 @@ def nodes(
     depth : float
         How far below the peak a density still matters, in natural logarithms.
     fine : int
-        0 for plain integrals; 1, 2, ... lays so many times more panels around the modes and towards the turns, for a
+        0 for plain integrals; 1, 2, ... lays so many times more panels around the modes and towards the
+        turns, for a
         transform whose waves the nodes have to resolve.
     """
     levels = (1.0, 3.0, 8.0, 20.0, depth) if fine else (depth,)
@@ -136,7 +138,7 @@ def nodes(
     panels = PANELS
     if fine:  # panels graded towards a turn, where T has an end, resolve what decays fast from there
         panels = fine * (FINE_PANELS // len(heights) if not len(turns) else GRADED_PANELS)
-    pieces = [np.linspace(a, b, panels + 1) for a, b in zip(breaks, breaks[1:], strict=False)]
+    pieces = [np.linspace(a, b, panels + 1) for a, b in pairwise(breaks)]
     edges = np.unique(np.concatenate(pieces))
     w, weights = gauss_panels(edges)
     densities = [np.exp(height(w)) for height in heights]
@@ -151,7 +153,8 @@ def _turning_points(place: Callable[[Array], Array], left: float, right: float) 
     found = []
     for k in np.flatnonzero(slopes[:-1] * slopes[1:] < 0):
         sign = slopes[k]
-        best = minimize_scalar(lambda w, s=sign: float(-s * place(w)), bounds=(grid[k], grid[k + 2]), method="bounded",
+        best = minimize_scalar(lambda w, s=sign: float(-s * place(w)),
+                               bounds=(grid[k], grid[k + 2]), method="bounded",
                                options={"xatol": 1e-12})  # fmt: skip
         found.append(float(best.x))
     return np.array(found)
@@ -161,7 +164,8 @@ def _turning_points(place: Callable[[Array], Array], left: float, right: float) 
 class OneObservation:
     """The law of T(x) for one observation, by integrating over the x with T(x) on one side of a cutoff.
 
-    ``weight`` is what is integrated besides the density: 1, or T - mean for the second condition of a point null.
+    ``weight`` is what is integrated besides the density: 1, or T - mean for the second condition of a point
+    null.
     """
 
     nodes: Nodes
@@ -186,7 +190,14 @@ class OneObservation:
         if (at_a - c) * (at_b - c) > 0:
             return a if abs(at_a - c) < abs(at_b - c) else b
         root, _ = brentq(
-            lambda w: float(self.place(w)) - c, a, b, xtol=1e-40, rtol=8.9e-16, maxiter=80, full_output=True, disp=False
+            lambda w: float(self.place(w)) - c,
+            a,
+            b,
+            xtol=1e-40,
+            rtol=8.9e-16,
+            maxiter=80,
+            full_output=True,
+            disp=False,
         )
         return float(root)
 

@@ -1,6 +1,7 @@
 """What the routes are asked: the problem in plain doubles, the formula, and the proven test.
 
-A route sees nothing else. It shares no code with the solution: it gets the law's name and its parameters as numbers, or
+A route sees nothing else. It shares no code with the solution: it gets the law's name and its parameters as
+numbers, or
 the formula, never a function.
 """
 
@@ -42,7 +43,8 @@ class Question:
     statistic : Any
         T(x) as a tree.
     test : dict of str to float
-        The proven cutoffs and fractions, rounded to doubles: each route evaluates the expectations of this test.
+        The proven cutoffs and fractions, rounded to doubles: each route evaluates the expectations of this
+        test.
     """
 
     form: str

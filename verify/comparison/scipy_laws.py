@@ -20,7 +20,8 @@ from verify.comparison.limits import NotAttempted
 class Shifted:
     """``offset`` + a frozen SciPy distribution, with the few functions that the route needs.
 
-    SciPy's own ``loc`` does the same for a continuous law; for a lattice law with large numbers it does too, but this way one
+    SciPy's own ``loc`` does the same for a continuous law; for a lattice law with large numbers it does too,
+    but this way one
     object serves the size-biased laws as well.
     """
 
@@ -57,7 +58,7 @@ class Shifted:
 class ReciprocalInverseGaussian:
     """The size-biased inverse Gaussian law: mean**2 / Y with Y inverse Gaussian.
 
-    Its density is y f(y) / mean; putting w = mean**2 / y into the inverse Gaussian density f gives exactly that.
+    Its density is y f(y) / mean; putting w = mean**2 / y into the density f gives exactly that.
     """
 
     frozen: Any
@@ -115,8 +116,10 @@ def scipy_law(name: str, p: Mapping[str, float]) -> Shifted:
 def size_biased(name: str, p: Mapping[str, float]) -> Shifted | ReciprocalInverseGaussian:
     """The law with mass proportional to y times the law's own, so that E[Y psi] = E[Y] E*[psi].
 
-    With it the second side condition of a point null, E[Y phi] = alpha E[Y], reads E*[phi] = alpha. Each follows from
-    absorbing the factor y into the factorial, the binomial coefficient or the power; a normal law has none.
+    With it the second side condition of a point null, E[Y phi] = alpha E[Y], reads E*[phi] = alpha. Each
+    follows
+    from     absorbing the factor y into the factorial, the binomial coefficient or the power; a normal law
+    has none.
     """
     match name:
         case "Poisson":

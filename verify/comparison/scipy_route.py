@@ -1,9 +1,13 @@
-"""First opinion: SciPy's distribution objects and root finders, the way a competent statistician would write it.
+"""First opinion: SciPy's distribution objects and root finders, as a competent statistician would write it.
 
-Two-sided forms: a window with tail coordinate s starts at the s-quantile under the first limit and ends where what is
-left of the complement, rest - s, begins; the second side condition is a monotone function of s, and ``brentq`` finds its
-root. On a lattice the two fractions then come from a 2 x 2 linear system. Point null: the second law is the size-biased
-one, which turns E[V phi] = alpha E[V] into an expectation. All of it on the scale of Y; the cutoffs are mapped to V.
+Two-sided forms: a window with tail coordinate s starts at the s-quantile under the first limit and ends
+where what is
+left of the complement, rest - s, begins; the second side condition is a monotone function of s, and
+``brentq`` finds its
+root. On a lattice the two fractions then come from a 2 x 2 linear system. Point null: the second law is the
+size-biased
+one, which turns E[V phi] = alpha E[V] into an expectation. All on the scale of Y; the cutoffs are mapped to
+V.
 """
 
 from __future__ import annotations
@@ -53,7 +57,7 @@ def _solve(ask: Question, law: Any) -> Numbers:
     return _to_v(ask, (_lattice_window if lattice else _window)(law, other, targets, ask.inside))
 
 
-# -- one-sided -----------------------------------------------------------------------------------------------------
+# -- one-sided ---------------------------------------------------------------------------------------------
 
 
 def _rejects_large_y(ask: Question) -> bool:
@@ -70,7 +74,7 @@ def _one_sided(ask: Question, law: Any, lattice: bool) -> Numbers:
     return _to_v(ask, {"c": c, "gamma": _number(gamma, "gamma")})
 
 
-# -- two-sided -----------------------------------------------------------------------------------------------------
+# -- two-sided ---------------------------------------------------------------------------------------------
 
 
 def _shares(rest: float, u: float) -> tuple[float, float]:
@@ -79,7 +83,7 @@ def _shares(rest: float, u: float) -> tuple[float, float]:
 
 
 def _search(excess: Callable[[float], float]) -> float:
-    """Root of the second side condition on the scale u of :func:`_shares`: a bracket by doubling, then brentq."""
+    """Root of the second side condition on the scale of :func:`_shares`: doubling, then brentq."""
     at_zero = excess(0.0)
     span = 1.0
     while span < MOST_U:
@@ -132,7 +136,9 @@ def _right_tail(law: Any, other: Any, s: float) -> float:
     return float(other.above(c) + (s - law.above(c)) / law.at(c) * other.at(c))
 
 
-def _nearest_pair(law: Any, other: Any, targets: tuple[float, float], inside: bool, first: tuple[float, float]) -> Numbers:
+def _nearest_pair(
+    law: Any, other: Any, targets: tuple[float, float], inside: bool, first: tuple[float, float]
+) -> Numbers:
     """Of the pairs around the one found, the first whose fractions lie in [0, 1] most nearly."""
     steps = [(0, 0), (1, 0), (-1, 0), (0, 1), (0, -1), (1, 1), (-1, -1), (1, -1), (-1, 1)]
     best: Numbers = {}
@@ -153,7 +159,9 @@ def _nearest_pair(law: Any, other: Any, targets: tuple[float, float], inside: bo
     return best
 
 
-def _fractions(law: Any, other: Any, targets: tuple[float, float], inside: bool, c1: float, c2: float) -> tuple[float, float]:
+def _fractions(
+    law: Any, other: Any, targets: tuple[float, float], inside: bool, c1: float, c2: float
+) -> tuple[float, float]:
     laws = (law, other)
     if inside:
         known = [x.below(c2 - 1) - x.below(c1) if c2 > c1 else 0.0 for x in laws]
@@ -167,11 +175,11 @@ def _fractions(law: Any, other: Any, targets: tuple[float, float], inside: bool,
     return float(g1), float(g2)
 
 
-# -- the proven test, evaluated -------------------------------------------------------------------------------------
+# -- the proven test, evaluated ----------------------------------------------------------------------------
 
 
 def _expectations(ask: Question) -> Numbers:
-    """E phi at each limit (and E[(V - E V) phi] for a point null) of the proven test, by SciPy's functions."""
+    """E phi at each limit (and E[(V - E V) phi] for a point null) of the proven test."""
     laws = [scipy_law(ask.law, p) for p in ask.parameters]
     test = _to_y(ask)
     found = {f"expectation{i}": _expectation(law, test, ask) for i, law in enumerate(laws, 1)}
@@ -196,13 +204,15 @@ def _expectation(law: Any, test: Numbers, ask: Question) -> float:
         tail = law.above(c) if large else law.below(c - step)
         return float(tail + (test["gamma"] * law.at(c) if lattice else 0.0))
     c1, c2 = test["c1"], test["c2"]
-    edges = test["gamma1"] * law.at(c1) + test.get("gamma2", 0.0) * (law.at(c2) if c2 != c1 else 0.0) if lattice else 0.0
+    edges = (
+        test["gamma1"] * law.at(c1) + test.get("gamma2", 0.0) * (law.at(c2) if c2 != c1 else 0.0) if lattice else 0.0
+    )
     if ask.inside:
         return float((law.below(c2 - step) - law.below(c1) if c2 > c1 else 0.0) + edges)
     return float(law.below(c1 - step) + law.above(c2) + edges)
 
 
-# -- scales --------------------------------------------------------------------------------------------------------
+# -- scales ------------------------------------------------------------------------------------------------
 
 
 def _to_v(ask: Question, y: Numbers) -> Numbers:

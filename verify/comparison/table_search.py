@@ -1,8 +1,11 @@
-"""Cutoffs and fractions from a table of masses: every step is a cumulative sum, an interpolation or a 2 x 2 system.
+"""Cutoffs and fractions from a table of masses: sums, interpolation and a 2 x 2 system.
 
-The second row of a table is either the masses under the second limit or, for a point null, the masses under the only limit
-times (place - mean), whose target is 0. In both cases the second side condition is monotone in the place where the window
-starts, and piecewise linear between the atoms: the root is found among the break points and by one linear step.
+The second row of a table is either the masses under the second limit or, for a point null, the masses under
+the only limit
+times (place - mean), whose target is 0. In both cases the second side condition is monotone in the place
+where the window
+starts, and piecewise linear between the atoms: the root is found among the break points and by one linear
+step.
 """
 
 from __future__ import annotations
@@ -17,7 +20,7 @@ Array = Any
 
 @dataclass(frozen=True)
 class Table:
-    """Places in ascending order with the masses of the first row and the weights of the second, and the two targets."""
+    """Ascending places, the masses of the first row, the weights of the second, and the two targets."""
 
     places: Array
     first: Array

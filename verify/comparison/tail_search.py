@@ -1,7 +1,8 @@
-"""Cutoffs of a continuous measure from its two tails alone: quantiles by bracketing, then one monotone unknown.
+"""Cutoffs of a continuous measure from its two tails alone: quantiles, then one monotone unknown.
 
-A place v is written as v = end + exp(y) next to a finite end of V and as v = centre + width * sinh(y) otherwise, so that a
-cutoff of 1e-26 is found to its own relative accuracy.
+A place v is written as v = end + exp(y) next to a finite end of V and as v = centre + width * sinh(y)
+otherwise, so
+that a cutoff of 1e-26 is found to its own relative accuracy.
 """
 
 from __future__ import annotations
@@ -89,7 +90,7 @@ def two_ends(
 ) -> tuple[float, float]:
     """Cutoffs of a two-sided test: the tail s left of c1 under the first row is the unknown.
 
-    The unknown is put on the scale u with s = rest / (1 + exp(-u)): both s and rest - s keep their relative accuracy.
+    The unknown is put on the scale u with s = rest / (1 + exp(-u)): both s and rest - s keep their accuracy.
     """
     rest = 1 - targets[0] if inside else targets[0]
 

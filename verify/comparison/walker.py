@@ -1,7 +1,9 @@
 """A formula's value in NumPy doubles: a walk over its tree.
 
-Nothing is compiled and nothing is executed: a table says which function a node's class stands for. Two walks exist.
-``values`` gives the value of a node; ``log_values`` gives log|node|, so that a density whose factors overflow (a
+Nothing is compiled and nothing is executed: a table says which function a node's class stands for. Two walks
+exist.
+``values`` gives the value of a node; ``log_values`` gives log|node|, so that a density whose factors
+overflow (a
 factorial, a power) is still a sum of moderate numbers.
 """
 
