@@ -23,7 +23,7 @@ from flint import acb, arb
 
 from verify.arithmetic.ball import Balls
 from verify.arithmetic.quadrature import path_integral
-from verify.arithmetic.transforms import Transform
+from verify.arithmetic.transforms import NEAR, Transform
 from verify.errors import UndecidedError
 
 Ball = Any
@@ -113,7 +113,8 @@ class Inversion:
 
     def _along(self, A: Balls, start: Any, end: Any, which: list[int] | None, tolerance: int) -> Any:
         def function(z: Any, analytic: bool) -> Any:
-            return self._sizes(A, z, which) if analytic else self._values(A, z, which)
+            wide = not abs(z - z.mid()) <= A.real(NEAR)
+            return self._sizes(A, z, which) if analytic or wide else self._values(A, z, which)
 
         return path_integral(function, start, end, tolerance=tolerance)
 

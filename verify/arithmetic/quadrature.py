@@ -16,7 +16,7 @@ from verify.arithmetic.evaluate import evaluate
 
 Ball = Any
 
-EVALUATIONS = 400_000
+EVALUATIONS = 30_000
 """Most evaluations of one integrand; beyond, the enclosure is returned as wide as it is."""
 
 

@@ -12,6 +12,7 @@ from __future__ import annotations
 
 from collections.abc import Callable, Iterable
 from dataclasses import dataclass, field
+from fractions import Fraction
 from math import comb
 from typing import Any
 
@@ -26,16 +27,29 @@ REMEMBERED = 50_000
 """Function values kept: integrals along one path at many points v meet the same nodes."""
 
 
-def _remembered(cache: Cache, z: ComplexBall, prec: int, compute: Callable[[ComplexBall], Any]) -> Any:
+NEAR = Fraction(1, 1024)
+"""Values are carried from a node's midpoint to the node over at most this distance."""
+
+
+def _remembered(cache: Cache, z: ComplexBall, kind: Any, compute: Callable[[ComplexBall], Any]) -> Any:
     """Return ``compute`` at the midpoint of a ball, which is exact."""
     middle = z.mid()
     (m, e), (k, f) = middle.real.man_exp(), middle.imag.man_exp()
-    key = prec, int(m), int(e), int(k), int(f)
+    key = kind, int(m), int(e), int(k), int(f)
     if key not in cache:
         if len(cache) >= REMEMBERED:
             cache.clear()
         cache[key] = compute(middle)
     return cache[key]
+
+
+def _moved(A: Balls, z: ComplexBall, value: ComplexBall, slope: Any) -> ComplexBall:
+    """Carry a value from the midpoint of a ball to the ball; ``slope`` bounds the derivative within NEAR of it."""
+    distance = abs(z - z.mid())
+    if not distance <= A.real(NEAR):
+        return acb(arb("nan"), arb("nan"))
+    reach = arb(0, (distance * slope).abs_upper())
+    return value + acb(reach, reach)
 
 
 class Transform:
@@ -50,8 +64,11 @@ class Transform:
         raise NotImplementedError
 
     def size(self, A: Balls, z: ComplexBall) -> Any:
-        """Bound of |N| over a ball: |N(z)| <= N(Re z), which is convex, so its ends decide."""
+        """Bound of |N| over a ball whose real parts lie in the domain: |N(z)| <= N(Re z), which is convex."""
         low, high = z.real.lower(), z.real.upper()
+        least, most = self.domain()
+        if (least is not None and not low > A.real(least)) or (most is not None and not high < A.real(most)):
+            return arb("nan")
         ends = [self.value(A, acb(x), False).real for x in (low, high)]
         if not all(end > 0 for end in ends):
             return arb("nan")
@@ -82,9 +99,9 @@ class Transform:
 class Bessel(Transform):
     """N(z) = I0(z): the cosine of a direction.
 
-    I0(z) = (K0(-z) - K0(z)) / (pi i) in the upper half-plane (DLMF 10.34.2). For abs(z) >= 1 and abs(ph z) <= pi:
-    |K0(z)| <= sqrt(pi / (2 |z|)) exp(-Re z) (1 + (pi/8) exp(pi/8)) < 2 exp(-Re z) / sqrt(|z|) (DLMF 10.40.10-12 with
-    one term, 2 |a_1| chi(1) = pi/8), and the same for K0(-z).
+    I0(z) = (K0(-z) - K0(z)) / (pi i) in the upper half-plane (DLMF 10.34.2). For abs(ph z) <= pi, DLMF 10.40.10-12 with one
+    term gives |K_nu(z)| <= sqrt(pi / (2 |z|)) exp(-Re z) (1 + q exp(q)) with q = |4 nu**2 - 1| pi / (8 |z|): the factor
+    2 |a_1(nu)| chi(1) is |4 nu**2 - 1| pi / 8, and so is |nu**2 - 1/4| chi(1). The same holds for K_nu(-z).
     """
 
     cache: Cache = field(default_factory=dict, compare=False, repr=False)
@@ -101,15 +118,27 @@ class Bessel(Transform):
         """Sum over j of C(n, j) K0(-z)**(n-j) (-K0(z))**j / (pi i)**n."""
         if not z.imag > 0:
             return acb(arb("nan"), arb("nan"))
-        up, down = _remembered(self.cache, z, A.prec, lambda middle: (_k0(-middle, A.prec), -_k0(middle, A.prec)))
-        up, down = up + _k0_moved(-z), down + _k0_moved(z)
-        total = acb(0)
+        values = _remembered(self.cache, z, (A.prec, n), lambda middle: self._all_terms(A, middle, n))
+        value, slope = acb(0), arb(0)
         for j in which:
-            total += comb(n, j) * up ** (n - j) * down**j
-        return total / acb(0, arb.pi()) ** n
+            value += values[j][0]
+            slope += values[j][1]
+        return _moved(A, z, value, slope)
+
+    def _all_terms(self, A: Balls, middle: ComplexBall, n: int) -> list[tuple[Any, Any]]:
+        """Each term at a point, with a bound of its derivative near it: K0' = -K1, and both are bounded there."""
+        up, down = _k0(-middle, A.prec), -_k0(middle, A.prec)
+        front, out = 1 / acb(0, arb.pi()) ** n, []
+        least = middle.abs_lower() - A.real(NEAR)
+        slope = n * self._scale(A, least, 3) / self._scale(A, least, 1) * self._size(A, n, 0, least)
+        for j in range(n + 1):
+            rate = n - 2 * j
+            change = comb(n, j) * slope * (rate * middle.real + n * A.real(NEAR)).exp()
+            out.append((comb(n, j) * up ** (n - j) * down**j * front, change))
+        return out
 
     def term_size(self, A: Balls, z: ComplexBall, n: int, which: int) -> Any:
-        """C(n, j) (2 / (pi sqrt|z|))**n where |z| >= 1."""
+        """A bound of C(n, j) |K0(-z)|**(n-j) |K0(z)|**j / pi**n without its exponential, where |z| >= 1."""
         least = z.abs_lower()
         return self._size(A, n, which, least) if z.imag > 0 and least >= 1 else arb("nan")
 
@@ -118,7 +147,13 @@ class Bessel(Transform):
         return self._size(A, n, which, abs(x))
 
     def _size(self, A: Balls, n: int, which: int, least: Any) -> Any:
-        return comb(n, which) * (2 / (A.pi * least.sqrt())) ** n
+        return comb(n, which) * (self._scale(A, least, 1) / (A.pi * least.sqrt())) ** n
+
+    @staticmethod
+    def _scale(A: Balls, least: Any, k: int) -> Any:
+        """sqrt(pi/2) (1 + q exp(q)), q = k pi / (8 |z|): k = 1 for K0, k = 3 for K1."""
+        q = k * A.pi / (8 * least)
+        return (A.pi / 2).sqrt() * (1 + q * q.exp())
 
 
 def _k0(z: ComplexBall, prec: int) -> ComplexBall:
@@ -128,16 +163,6 @@ def _k0(z: ComplexBall, prec: int) -> ComplexBall:
         with balls(prec + 16 + int(3 * float(abs(z).upper()))):
             value = z.bessel_k(acb(0))
     return value
-
-
-def _k0_moved(z: ComplexBall) -> ComplexBall:
-    """What K0 can change between the midpoint of a ball and its other points.
-
-    The derivative is -K1, and |K1(z)| <= 6.2 exp(-Re z) / sqrt(|z|) for |z| >= 1, |ph z| <= pi (DLMF 10.40.10-12 with one term).
-    """
-    slope = 7 * (-z.real).exp() / z.abs_lower().sqrt() if z.abs_lower() >= 1 else arb("nan")
-    reach = arb(0, (abs(z - z.mid()) * slope).abs_upper())
-    return acb(reach, reach)
 
 
 @dataclass(frozen=True)
@@ -151,6 +176,7 @@ class GammaRatio(Transform):
 
     a: Any
     b: Any
+    cache: Cache = field(default_factory=dict, compare=False, repr=False)
 
     def domain(self) -> tuple[Any, Any]:
         """Re z > -a."""
@@ -166,8 +192,21 @@ class GammaRatio(Transform):
 
     def terms(self, A: Balls, z: ComplexBall, n: int, which: Iterable[int]) -> ComplexBall:
         """N(z)**n, through the reflected form, which is stable on the left."""
-        value = self._reflected(A, z)
+        value, slope = _remembered(
+            self.cache, z, A.prec, lambda middle: (self._reflected(A, middle), self._slope(A, middle))
+        )
+        value = _moved(A, z, value, slope)
         return sum((value**n for _ in which), acb(0))
+
+    def _slope(self, A: Balls, middle: ComplexBall) -> Any:
+        """Bound of |N'| near a point: N' = N (psi(z + a) - psi(z + b)), and N itself changes by at most its exponential.
+
+        psi changes by at most NEAR * sup |psi'|, and |psi'(w)| <= sum over all k of 1 / |w + k|**2 <= (pi/y) coth(pi y), y = Im w.
+        """
+        y = middle.imag - A.real(NEAR)
+        change = 2 * A.real(NEAR) * A.pi / y * (A.pi * y).coth()
+        rate = abs((middle + A.real(self.a)).digamma() - (middle + A.real(self.b)).digamma()).upper() + change
+        return abs(self._reflected(A, middle)).upper() * rate * (rate * A.real(NEAR)).exp()
 
     def _reflected(self, A: Balls, z: ComplexBall) -> ComplexBall:
         a, b = A.real(self.a), A.real(self.b)

@@ -7,7 +7,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass, replace
 from fractions import Fraction
-from math import floor, log2
+from math import log2
 from typing import TYPE_CHECKING, Any, ClassVar
 
 from verify.arithmetic.ball import balls, midpoint, to_fraction
@@ -153,8 +153,8 @@ class SumByInversion(Law):
 
 
 def _on_grid(place: Fraction, gap: Fraction, low: Fraction | None, high: Fraction | None, pole: Fraction | None) -> Fraction:
-    """Round to a grid of about half the gap, or halve towards the pole or the middle where that leaves the domain."""
-    grid = Fraction(2) ** (floor(log2(float(gap))) - 1)
+    """Round to a grid of about the gap, or halve towards the pole or the middle where that leaves the domain."""
+    grid = Fraction(2) ** round(log2(float(gap)))
     rounded = round(place / grid) * grid
     if pole is not None and abs(rounded - pole) < gap / 4:
         rounded += grid if place > pole else -grid
