@@ -1,0 +1,133 @@
+"""The producer's certificates are accepted by the rechecker, reproducible, and equal the independent maker's numbers."""
+
+from __future__ import annotations
+
+import json
+import sys
+from pathlib import Path
+from types import ModuleType
+from typing import Any
+
+import jsonschema
+import pytest
+import rfc8785
+
+import verify
+from verify.certificate.certify import Certificate, certify
+from verify.certificate.sign import sign, verify_signature
+from verify.certificate.write import write_bundle
+from verify.errors import InputError, UndecidedError
+
+NAMES = [
+    "poisson irrational", "poisson above", "binomial outside", "binomial point", "negative binomial interval", "gamma point", "power outside",
+    "normal interval", "inverse Gaussian below", "table point", "kernel interval", "truncated point", "truncated above",
+]  # fmt: skip
+
+
+def problem_of(case: Any) -> verify.Problem:
+    entry = case.density
+    density = verify.Density(**entry)
+    levels = case.alpha[0] if len(case.alpha) == 1 else case.alpha
+    return verify.Problem(density, null=case.null, alpha=levels, n=case.n)
+
+
+@pytest.fixture(scope="module")
+def produced(certificates: dict[str, Any], maker: ModuleType) -> dict[str, Certificate]:
+    cases = sys.modules["certificate_cases"].all_cases(maker.Case)
+    return {name: certify(problem_of(cases[name]), digits=cases[name].digits, tolerance=cases[name].tolerance) for name in NAMES}
+
+
+def test_the_rechecker_accepts_what_is_produced(produced: dict[str, Certificate]) -> None:
+    assert {name: certificate.recheck().status for name, certificate in produced.items()} == dict.fromkeys(NAMES, 0)
+
+
+def test_the_numbers_are_those_of_the_independent_maker(produced: dict[str, Certificate], certificates: dict[str, Any]) -> None:
+    for name, certificate in produced.items():
+        other = certificates[name]["predicate"]
+        assert certificate.predicate["test"] == other["test"], name
+        assert certificate.predicate["side_conditions"][0]["expectation"] == other["side_conditions"][0]["expectation"], name
+
+
+def test_the_bytes_are_canonical_and_have_the_form_of_the_schema(produced: dict[str, Certificate]) -> None:
+    schema = json.loads((Path(verify.__file__).parent / "certificate" / "schema.json").read_text())
+    for certificate in produced.values():
+        assert rfc8785.dumps(certificate.statement) == certificate.data
+        jsonschema.Draft202012Validator(schema).validate(certificate.statement)
+
+
+def test_the_same_problem_gives_the_same_bytes(produced: dict[str, Certificate], certificates: dict[str, Any], maker: ModuleType) -> None:
+    case = sys.modules["certificate_cases"].all_cases(maker.Case)["kernel interval"]
+    assert certify(problem_of(case), digits=case.digits, tolerance=case.tolerance).data == produced["kernel interval"].data
+
+
+def test_the_day_of_issue_comes_from_the_user_only(
+    produced: dict[str, Certificate], certificates: dict[str, Any], maker: ModuleType, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    case = sys.modules["certificate_cases"].all_cases(maker.Case)["kernel interval"]
+    monkeypatch.setenv("SOURCE_DATE_EPOCH", "86400")
+    assert produced["kernel interval"].predicate["issued"] == ""
+    assert certify(problem_of(case), digits=20).predicate["issued"] == "1970-01-02"
+    assert certify(problem_of(case), digits=20, issued="May").predicate["issued"] == "May"
+    monkeypatch.setenv("SOURCE_DATE_EPOCH", "yesterday")
+    with pytest.raises(InputError, match="SOURCE_DATE_EPOCH"):
+        certify(problem_of(case), digits=20)
+
+
+def test_a_density_that_is_none_gets_no_certificate() -> None:
+    density = verify.Density("2*exp(-lam)*lam**x/factorial(x)", variable="x", support="integers >= 0", parameter="lam", space="lam > 0")
+    with pytest.raises(UndecidedError):
+        certify(verify.Problem(density, null="lam = 5", alpha="0.05", n=1), digits=20)
+
+
+@pytest.mark.parametrize("tolerance", ["0", "-1", "1", "x", "1/0"])
+def test_a_bad_tolerance_is_refused(tolerance: str) -> None:
+    density = verify.Density("exp(-lam)*lam**x/factorial(x)", variable="x", support="integers >= 0", parameter="lam", space="lam > 0")
+    with pytest.raises(InputError, match="tolerance"):
+        certify(verify.Problem(density, null="lam = 5", alpha="0.05", n=1), digits=20, tolerance=tolerance)
+
+
+def test_writing_is_careful(produced: dict[str, Certificate], tmp_path: Path) -> None:
+    first, second = produced["poisson above"], produced["gamma point"]
+    paths = first.write(tmp_path)
+    assert paths.json.read_bytes() == paths.text.read_bytes() == first.data
+    assert f"{first.sha256}  certificate.cert.json\n" in paths.sums.read_text()
+    first.write(tmp_path)
+    with pytest.raises(InputError, match="exists"):
+        second.write(tmp_path)
+    assert paths.json.read_bytes() == first.data
+    second.write(tmp_path, force=True)
+    assert paths.json.read_bytes() == second.data
+    assert sorted(path.name for path in tmp_path.iterdir()) == ["SHA256SUMS", "certificate.cert.json", "certificate.cert.txt"]
+    assert verify.recheck(paths.json).accepted
+    with pytest.raises(InputError, match="cannot be read"):
+        verify.recheck(tmp_path / "missing.cert.json")
+
+
+def test_a_bundle_has_an_index(produced: dict[str, Certificate], tmp_path: Path) -> None:
+    index = write_bundle({name.replace(" ", "-"): certificate.data for name, certificate in produced.items()}, tmp_path)
+    entries = json.loads(index.read_bytes())["certificates"]
+    assert [entry["file"] for entry in entries] == sorted(f"{name.replace(' ', '-')}.cert.json" for name in NAMES)
+    assert all(verify.recheck(tmp_path / entry["file"]).accepted for entry in entries)
+    before = index.read_bytes()
+    write_bundle({name.replace(" ", "-"): certificate.data for name, certificate in produced.items()}, tmp_path)
+    assert index.read_bytes() == before
+
+
+def test_a_signature_holds_for_these_bytes_only(produced: dict[str, Certificate]) -> None:
+    serialization = pytest.importorskip("cryptography.hazmat.primitives.serialization")
+    from cryptography.hazmat.primitives.asymmetric.ed25519 import Ed25519PrivateKey
+
+    key = Ed25519PrivateKey.generate()
+    private = key.private_bytes(serialization.Encoding.PEM, serialization.PrivateFormat.PKCS8, serialization.NoEncryption())
+    public = key.public_key().public_bytes(serialization.Encoding.PEM, serialization.PublicFormat.SubjectPublicKeyInfo)
+    data, other = produced["poisson above"].data, produced["gamma point"].data
+    envelope = sign(data, private)
+    assert verify_signature(envelope, data, public)
+    assert not verify_signature(envelope, other, public)
+    stranger = Ed25519PrivateKey.generate().public_key()
+    pem = stranger.public_bytes(serialization.Encoding.PEM, serialization.PublicFormat.SubjectPublicKeyInfo)
+    assert not verify_signature(envelope, data, pem)
+    with pytest.raises(InputError):
+        verify_signature(b"{}", data, public)
+    with pytest.raises(InputError):
+        sign(data, public)
