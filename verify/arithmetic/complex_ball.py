@@ -1,7 +1,8 @@
 """Complex balls that know whether an integrator asks for an analytic function.
 
-A rigorous integrator bounds a function on complex neighbourhoods of the path. Where a branch cut passes through such a
-neighbourhood the bound would be false: the function must then answer "not finite". ``ComplexBalls(analytic=True)`` does.
+A rigorous integrator bounds a function on complex neighbourhoods of the path. Where a branch cut passes
+through such a neighbourhood the bound would be false: the function must then answer "not finite".
+``ComplexBalls(analytic=True)`` does.
 
 Source: F. Johansson, "Numerical integration in arbitrary-precision ball arithmetic", ICMS 2018, section 2.
 """
@@ -93,8 +94,25 @@ def _method(name: str) -> Callable[[ComplexBall], ComplexBall]:
 
 
 ENTIRE_OR_MEROMORPHIC: dict[str, Callable[..., ComplexBall]] = {
-    **{name: _method(name) for name in ("sin", "cos", "tan", "cot", "sec", "csc", "sinh", "cosh", "tanh", "coth",
-                                        "sech", "csch", "erf", "erfc")},
+    **{
+        name: _method(name)
+        for name in (
+            "sin",
+            "cos",
+            "tan",
+            "cot",
+            "sec",
+            "csc",
+            "sinh",
+            "cosh",
+            "tanh",
+            "coth",
+            "sech",
+            "csch",
+            "erf",
+            "erfc",
+        )
+    },
     "binomial": lambda n, k: (n + 1).gamma() * (k + 1).rgamma() * (n - k + 1).rgamma(),
     "beta": lambda a, b: a.gamma() * b.gamma() * (a + b).rgamma(),
     "zeta": lambda s: s.zeta(),

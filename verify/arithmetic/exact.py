@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from fractions import Fraction
 from math import comb, factorial
 from typing import Any
@@ -51,7 +52,7 @@ class Rationals:
 
     def function(self, name: str, *args: Any) -> Fraction:
         """Evaluate a named function of a formula, where its value is rational."""
-        known = {"binomial": self.binomial, "RisingFactorial": self.rising, "Abs": abs}
+        known: dict[str, Callable[..., Fraction]] = {"binomial": self.binomial, "RisingFactorial": self.rising, "Abs": abs}
         if name not in known:
             raise NotRational(f"{name} has no rational value")
         return known[name](*args)

@@ -1,16 +1,19 @@
-"""Inversion of a transform in balls, with the cut tail bounded: densities, tails and shortfalls of a sum of n.
+"""Inversion of a transform in balls, with the cut tail bounded: densities, tails and shortfalls of a sum of
+n.
 
-V has density exp(eta v) g(v) / N(eta)**n, and g(v) is the integral of N(z)**n exp(-z v) / (2 pi i) up a vertical line. Integrated
-against exp(s w), s = eta - z, over w < v (Re s > 0) or w > v (Re s < 0), this gives kernels in s:
+V has density exp(eta v) g(v) / N(eta)**n, and g(v) is the integral of N(z)**n exp(-z v) / (2 pi i) up a
+vertical line. Integrated against exp(s w), s = eta - z, over w < v (Re s > 0) or w > v (Re s < 0), this gives
+kernels in s:
 
     density 1;  P(V <= v) and -P(V > v): 1/s;  E[(m - V); V <= v] and E[(V - m); V > v]: (m - v)/s + 1/s**2.
 
-The path starts at a real point c (the saddle point, so that nothing cancels), goes up to c + iH, and from there each term of
-N(z)**n is taken along the horizontal ray on which it falls exponentially. Cauchy's theorem allows it: the terms are analytic above
-the real axis and vanish at infinity between the vertical line and the ray. By symmetry the lower half is the complex conjugate.
+The path starts at a real point c (the saddle point, so that nothing cancels), goes up to c + iH, and from
+there each term of N(z)**n is taken along the horizontal ray on which it falls exponentially. Cauchy's theorem
+allows it: the terms are analytic above the real axis and vanish at infinity between the vertical line and the
+ray. By symmetry the lower half is the complex conjugate.
 
-Source: J. Gil-Pelaez, *Biometrika* 38 (1951) 481-482 (the inversion); H. E. Daniels, *Ann. Math. Statist.* 25 (1954)
-631-650 (the saddle point); the bounds are proved in :mod:`verify.arithmetic.transforms`.
+Source: J. Gil-Pelaez, *Biometrika* 38 (1951) 481-482 (the inversion); H. E. Daniels, *Ann. Math. Statist.* 25
+(1954) 631-650 (the saddle point); the bounds are proved in :mod:`verify.arithmetic.transforms`.
 """
 
 from __future__ import annotations
@@ -99,14 +102,20 @@ class Inversion:
         return value * (s * self.v).exp() * self._kernel(s)
 
     def _sizes(self, A: Balls, z: Any, which: list[int] | None) -> Any:
-        """A ball around 0 that contains the integrand on a neighbourhood, where it is analytic; else not finite."""
+        """A ball around 0 that contains the integrand on a neighbourhood, where it is analytic; else not
+        finite.
+        """
         kernel = abs(self._kernel(self.eta - z)).upper() * (self.eta * self.v).exp()
         if which is None:
             size = self.transform.size(A, z) ** self.n * (-self.v * z.real).exp()
         else:
             rates = self.transform.rates(A, self.n)
             size = sum(
-                (self.transform.term_size(A, z, self.n, j) * ((rates[j] - self.v) * z.real).exp() for j in which), arb(0)
+                (
+                    self.transform.term_size(A, z, self.n, j) * ((rates[j] - self.v) * z.real).exp()
+                    for j in which
+                ),
+                arb(0),
             )
         reach = arb(0, (size * kernel).abs_upper())
         return acb(reach, reach)
@@ -130,7 +139,9 @@ class Inversion:
                 total += self._ray(A, corner, which, side, rates, tolerance)
         return total
 
-    def _ray(self, A: Balls, corner: Any, which: list[int], side: int, rates: list[Ball], tolerance: int) -> Any:
+    def _ray(
+        self, A: Balls, corner: Any, which: list[int], side: int, rates: list[Ball], tolerance: int
+    ) -> Any:
         height, distance = corner.imag, 8
         goal = A.power(A.real(2), -tolerance)
         while True:
@@ -150,7 +161,9 @@ class Inversion:
         return arb(0) if x.is_exact() else arb("inf")
 
     def _beyond(self, A: Balls, j: int, x: Ball, rate: Ball, height: Ball) -> Ball:
-        """Bound of the integral of a term beyond x: bound * exp((rate - v) x + eta v) / abs(rate - v) * kernel."""
+        """Bound of the integral of a term beyond x: bound * exp((rate - v) x + eta v) / abs(rate - v) *
+        kernel.
+        """
         if not abs(x) >= 1:
             return arb("inf")
         gap = rate - self.v
@@ -180,7 +193,9 @@ def _exponent(size: Ball) -> int:
 
 
 def saddle_point(transform: Transform, n: int, v: Ball, start: Fraction, A: Balls) -> Fraction:
-    """Return roughly the real z that minimises n log N(z) - z v (any z of the domain would give true numbers)."""
+    """Return roughly the real z that minimises n log N(z) - z v (any z of the domain would give true
+    numbers).
+    """
     low, high = (None if end is None else float(A.real(end)) for end in transform.domain())
     centre, at = float(start), float(v)
 
@@ -193,10 +208,10 @@ def saddle_point(transform: Transform, n: int, v: Ball, start: Fraction, A: Ball
         if low is not None and high is not None:
             share = (centre - low) / (high - low)
             odds = share / (1 - share) * 2.0**step
-            return low + (high - low) * odds / (1 + odds)
+            return float(low + (high - low) * odds / (1 + odds))
         if low is not None:
-            return low + (centre - low) * 2.0**step
-        return high - (high - centre) * 2.0**-step if high is not None else centre + step
+            return float(low + (centre - low) * 2.0**step)
+        return float(high - (high - centre) * 2.0**-step if high is not None else centre + step)
 
     left, right = -8.0, 8.0
     while height(inside(2 * left)) < height(inside(left)) and left > -4096:

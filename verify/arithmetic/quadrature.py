@@ -1,7 +1,7 @@
 """Rigorous quadrature: integrals of formulas, enclosed.
 
-Source: F. Johansson, "Numerical integration in arbitrary-precision ball arithmetic", ICMS 2018 (adaptive bisection with
-Gauss-Legendre rules whose error is bounded on a complex ellipse).
+Source: F. Johansson, "Numerical integration in arbitrary-precision ball arithmetic", ICMS 2018 (adaptive
+bisection with Gauss-Legendre rules whose error is bounded on a complex ellipse).
 """
 
 from __future__ import annotations

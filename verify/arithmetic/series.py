@@ -1,10 +1,12 @@
 """Powers of weight series: the n-fold sum of a lattice law, in balls and in exact fractions.
 
-The masses of X1 + ... + Xn are the coefficients of the n-th power of the series of one mass function. Coefficients up to a
-degree depend on coefficients up to that degree only, so cutting the series there loses nothing. All weights are
-non-negative: no multiplication cancels, and every coefficient keeps its relative accuracy.
+The masses of X1 + ... + Xn are the coefficients of the n-th power of the series of one mass function.
+Coefficients up to a degree depend on coefficients up to that degree only, so cutting the series there loses
+nothing. All weights are non-negative: no multiplication cancels, and every coefficient keeps its relative
+accuracy.
 
-Source: P. Henrici, *Applied and Computational Complex Analysis*, vol. 1 (1974), section 1.6 (powers of formal power series).
+Source: P. Henrici, *Applied and Computational Complex Analysis*, vol. 1 (1974), section 1.6 (powers of formal
+power series).
 """
 
 from __future__ import annotations
@@ -99,7 +101,8 @@ def _cut(poly: Any, length: int) -> Any:
 
 
 def product_power(weights: Sequence[Any], n: int) -> list[Any]:
-    """Return the n-fold convolution over products (Dirichlet convolution) of weights at 1, 2, ..., len(weights).
+    """Return the n-fold convolution over products (Dirichlet convolution) of weights at 1, 2, ...,
+    len(weights).
 
     Source: T. M. Apostol, *Introduction to Analytic Number Theory* (1976), section 2.6.
 

@@ -1,8 +1,10 @@
-"""Transforms of one observation whose size is known in a half-plane, so that their inversion can be cut with proof.
+"""Transforms of one observation whose size is known in a half-plane, so that their inversion can be cut with
+proof.
 
-With N(z) = integral of h exp(z T) (the exponential of the log normaliser at the natural parameter z), each class here writes N(z)**n
-in the upper half-plane as a sum of terms, the term with rate r growing like exp(r Re z). On a ray Im z = H to the left
-(or right) a term with r > v (or r < v) makes N(z)**n exp(-z v) fall exponentially. ``bound`` proves how small it is beyond a point:
+With N(z) = integral of h exp(z T) (the exponential of the log normaliser at the natural parameter z), each
+class here writes N(z)**n in the upper half-plane as a sum of terms, the term with rate r growing like exp(r
+Re z). On a ray Im z = H to the left (or right) a term with r > v (or r < v) makes N(z)**n exp(-z v) fall
+exponentially. ``bound`` proves how small it is beyond a point:
 |term at z| <= bound(...) * exp(r Re z) for all z further out on the ray.
 
 Constant factors of N are left out everywhere: they cancel, because laws only need N(z) / N(eta).
@@ -44,7 +46,9 @@ def _remembered(cache: Cache, z: ComplexBall, kind: Any, compute: Callable[[Comp
 
 
 def _moved(A: Balls, z: ComplexBall, value: ComplexBall, slope: Any) -> ComplexBall:
-    """Carry a value from the midpoint of a ball to the ball; ``slope`` bounds the derivative within NEAR of it."""
+    """Carry a value from the midpoint of a ball to the ball; ``slope`` bounds the derivative within NEAR of
+    it.
+    """
     distance = abs(z - z.mid())
     if not distance <= A.real(NEAR):
         return acb(arb("nan"), arb("nan"))
@@ -91,7 +95,9 @@ class Transform:
         raise NotImplementedError
 
     def vertical_bound(self, A: Balls, n: int, height: Any) -> tuple[Any, Any]:
-        """Return (B, k) with |N(z)|**n <= B exp(-k (Im z - height)) for Im z >= height, where rates() is empty."""
+        """Return (B, k) with |N(z)|**n <= B exp(-k (Im z - height)) for Im z >= height, where rates() is
+        empty.
+        """
         raise NotImplementedError
 
 
@@ -99,9 +105,10 @@ class Transform:
 class Bessel(Transform):
     """N(z) = I0(z): the cosine of a direction.
 
-    I0(z) = (K0(-z) - K0(z)) / (pi i) in the upper half-plane (DLMF 10.34.2). For abs(ph z) <= pi, DLMF 10.40.10-12 with one
-    term gives |K_nu(z)| <= sqrt(pi / (2 |z|)) exp(-Re z) (1 + q exp(q)) with q = |4 nu**2 - 1| pi / (8 |z|): the factor
-    2 |a_1(nu)| chi(1) is |4 nu**2 - 1| pi / 8, and so is |nu**2 - 1/4| chi(1). The same holds for K_nu(-z).
+    I0(z) = (K0(-z) - K0(z)) / (pi i) in the upper half-plane (DLMF 10.34.2). For abs(ph z) <= pi, DLMF
+    10.40.10-12 with one term gives |K_nu(z)| <= sqrt(pi / (2 |z|)) exp(-Re z) (1 + q exp(q)) with q = |4
+    nu**2 - 1| pi / (8 |z|): the factor 2 |a_1(nu)| chi(1) is |4 nu**2 - 1| pi / 8, and so is |nu**2 - 1/4|
+    chi(1). The same holds for K_nu(-z).
     """
 
     cache: Cache = field(default_factory=dict, compare=False, repr=False)
@@ -111,7 +118,7 @@ class Bessel(Transform):
         return z.bessel_i(acb(0))
 
     def rates(self, A: Balls, n: int) -> list[Any]:
-        """n - 2j for the term with j factors K0(z)."""
+        """The rate n - 2j of the term with j factors K0(z)."""
         return [A.real(n - 2 * j) for j in range(n + 1)]
 
     def terms(self, A: Balls, z: ComplexBall, n: int, which: Iterable[int]) -> ComplexBall:
@@ -126,7 +133,9 @@ class Bessel(Transform):
         return _moved(A, z, value, slope)
 
     def _all_terms(self, A: Balls, middle: ComplexBall, n: int) -> list[tuple[Any, Any]]:
-        """Each term at a point, with a bound of its derivative near it: K0' = -K1, and both are bounded there."""
+        """Each term at a point, with a bound of its derivative near it: K0' = -K1, and both are bounded
+        there.
+        """
         up, down = _k0(-middle, A.prec), -_k0(middle, A.prec)
         front, out = 1 / acb(0, arb.pi()) ** n, []
         least = middle.abs_lower() - A.real(NEAR)
@@ -157,7 +166,9 @@ class Bessel(Transform):
 
 
 def _k0(z: ComplexBall, prec: int) -> ComplexBall:
-    """K0 to full relative accuracy: the convergent series cancels by exp(2 |z|), and is then given as many more bits."""
+    """K0 to full relative accuracy: the convergent series cancels by exp(2 |z|), and is then given as many
+    more bits.
+    """
     value = z.bessel_k(acb(0))
     if value.rel_accuracy_bits() < prec - 16:
         with balls(prec + 16 + int(3 * float(abs(z).upper()))):
@@ -169,8 +180,9 @@ def _k0(z: ComplexBall, prec: int) -> ComplexBall:
 class GammaRatio(Transform):
     """N(z) = Gamma(z + a) / Gamma(z + b), b > a: the logarithm of a beta variable.
 
-    On the left: N(z) = Gamma(w) sin pi(z + b) / (Gamma(w + d) sin pi(z + a)), w = 1 - z - b, d = b - a (DLMF 5.5.3). The
-    quotient of sines is at most coth(pi H), and |Gamma(w) / Gamma(w + d)| = |B(w, d)| / Gamma(d) <= Gamma(u) / Gamma(u + d)
+    On the left: N(z) = Gamma(w) sin pi(z + b) / (Gamma(w + d) sin pi(z + a)), w = 1 - z - b, d = b - a (DLMF
+    5.5.3). The quotient of sines is at most coth(pi H), and |Gamma(w) / Gamma(w + d)| = |B(w, d)| / Gamma(d)
+    <= Gamma(u) / Gamma(u + d)
     for u = Re w > 0 (DLMF 5.12.1), which falls as u grows.
     """
 
@@ -199,9 +211,11 @@ class GammaRatio(Transform):
         return sum((value**n for _ in which), acb(0))
 
     def _slope(self, A: Balls, middle: ComplexBall) -> Any:
-        """Bound of |N'| near a point: N' = N (psi(z + a) - psi(z + b)), and N itself changes by at most its exponential.
+        """Bound of |N'| near a point: N' = N (psi(z + a) - psi(z + b)), and N itself changes by at most its
+        exponential.
 
-        psi changes by at most NEAR * sup |psi'|, and |psi'(w)| <= sum over all k of 1 / |w + k|**2 <= (pi/y) coth(pi y), y = Im w.
+        psi changes by at most NEAR * sup |psi'|, and |psi'(w)| <= sum over all k of 1 / |w + k|**2 <= (pi/y)
+        coth(pi y), y = Im w.
         """
         y = middle.imag - A.real(NEAR)
         change = 2 * A.real(NEAR) * A.pi / y * (A.pi * y).coth()
@@ -243,8 +257,9 @@ class Interval(Transform):
     b: Any
 
     def value(self, A: Balls, z: ComplexBall, analytic: bool) -> ComplexBall:
-        """The quotient; balls that touch 0 are not finite, and are cut further."""
-        return ((z * A.real(self.b)).exp() - (z * A.real(self.a)).exp()) / z
+        """(b - a) exp(m z) sinh(w) / w with m the middle and w = z (b - a) / 2, which is entire."""
+        a, b = A.real(self.a), A.real(self.b)
+        return (b - a) * (z * (a + b) / 2).exp() * (acb(0, 1) * z * (b - a) / 2).sinc()
 
     def rates(self, A: Balls, n: int) -> list[Any]:
         """(n - j) b + j a."""
@@ -290,22 +305,29 @@ class Secant(Transform):
         front = (z * A.real(self.shift)).exp()
         if isinstance(self.r, int):
             return front / cosine**self.r
-        return front * (-A.real(self.r) * _log_cosine(A, z * A.real(self.omega) + A.real(self.phase), analytic)).exp()
+        return (
+            front
+            * (-A.real(self.r) * _log_cosine(A, z * A.real(self.omega) + A.real(self.phase), analytic)).exp()
+        )
 
     def rates(self, A: Balls, n: int) -> list[Any]:
         """None: N falls exponentially on vertical lines."""
         return []
 
     def vertical_bound(self, A: Balls, n: int, height: Any) -> tuple[Any, Any]:
-        """(exp(-k H) (2 / (1 - exp(-2 omega H)))**(n r), k) with k = n r omega; the factor exp(shift z) apart."""
+        """(exp(-k H) (2 / (1 - exp(-2 omega H)))**(n r), k) with k = n r omega; the factor exp(shift z)
+        apart.
+        """
         omega, power = abs(A.real(self.omega)), n * A.real(self.r)
         front = (2 / (1 - (-2 * omega * height).exp())) ** power
         return front * (-power * omega * height).exp(), power * omega
 
 
 def _log_cosine(A: Balls, w: ComplexBall, analytic: bool) -> ComplexBall:
-    """A logarithm of cos w that is analytic in the strip abs(Re w) < pi/2, Im w >= 0 and real on the real axis.
+    """A logarithm of cos w that is analytic in the strip abs(Re w) < pi/2, Im w >= 0 and real on the real
+    axis.
 
-    cos w = exp(-i w) (1 + exp(2 i w)) / 2, and 1 + exp(2 i w) has no negative value for Im w > 0, nor in the strip.
+    cos w = exp(-i w) (1 + exp(2 i w)) / 2, and 1 + exp(2 i w) has no negative value for Im w > 0, nor in the
+    strip.
     """
     return acb(0, -1) * w + (1 + (acb(0, 2) * w).exp()).log(analytic=analytic) - A.real(2).log()

@@ -10,6 +10,7 @@ from verify.derivation.family import LawFamily
 from verify.derivation.lattice_route import space_ends
 from verify.derivation.monotone_pieces import monotone_pieces
 from verify.derivation.transforms import transform_of
+from verify.derivation.zeta_values import open_zeta
 from verify.laws.continuous import OneObservation
 from verify.laws.shape import DEVIATION, Shape
 from verify.problem.density import Density
@@ -33,11 +34,22 @@ def continuous_family(density: Density, found: Factorisation) -> tuple[LawFamily
     if isinstance(pieces, str):
         return pieces
     constant, core = density.expr.as_independent(x, as_Add=False)
-    mean, variance = cumulants(found.log_normaliser, found.natural_parameter, t)
+    mean, variance = cumulants(open_zeta(found.log_normaliser), found.natural_parameter, t)
     centred = (sp.Symbol(DEVIATION) - found.statistic) * core
     shape = Shape(
-        constant, core, found.statistic, sp.diff(found.statistic, x), centred, x.name, t.name, pieces,
-        space_ends(density), mean, variance, found.natural_parameter, transform_of(density, found),
+        constant,
+        core,
+        found.statistic,
+        sp.diff(found.statistic, x),
+        centred,
+        x.name,
+        t.name,
+        pieces,
+        space_ends(density),
+        mean,
+        variance,
+        found.natural_parameter,
+        transform_of(density, found),
     )
     word = "monotone" if len(pieces) == 1 else f"monotone on {len(pieces)} pieces"
     return LawFamily(OneObservation(shape, t), as_exact(1), as_exact(0), t), f"T is {word} of the support"

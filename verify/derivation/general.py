@@ -5,7 +5,8 @@
 | whole multiples of a span | powers of the weight series (:mod:`verify.laws.lattice`) |
 | logarithm of a whole number | convolution over products (:mod:`verify.laws.multiplicative`) |
 | continuous, one observation | quadrature of the density (:mod:`verify.laws.continuous`) |
-| continuous, several observations | inversion of the transform, where its decay is known (:mod:`verify.laws.inversion`) |
+| continuous, several observations | inversion of the transform, where its decay is known
+(:mod:`verify.laws.inversion`) |
 
 Any other is left undecided, with what would help.
 """

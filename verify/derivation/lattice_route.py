@@ -12,6 +12,7 @@ from verify.derivation.cumulants import cumulants
 from verify.derivation.factorisation import Factorisation
 from verify.derivation.family import LawFamily
 from verify.derivation.whole_numbers import Lattice, affine, logarithmic, on_finite_support, polynomial
+from verify.derivation.zeta_values import open_zeta
 from verify.laws.atoms import Atoms
 from verify.laws.base import Law
 from verify.laws.lattice import LatticeSum
@@ -36,7 +37,10 @@ def lattice_family(density: Density, found: Factorisation) -> tuple[LawFamily, s
     low, high = _ends(density)
     infinite = low is None or high is None
     if density.is_kernel and infinite:
-        return "a kernel on an infinite support has no known normaliser: give the normalised density as a formula"
+        return (
+            "a kernel on an infinite support has no known normaliser: "
+            "give the normalised density as a formula"
+        )
     x, statistic = density.x, found.statistic
     lattice = affine(statistic, x, low, high)
     if lattice is None and not infinite and high - low < LARGEST_SUPPORT:  # type: ignore[operator]
@@ -47,9 +51,13 @@ def lattice_family(density: Density, found: Factorisation) -> tuple[LawFamily, s
         return _family(density, found, lattice, LatticeSum), "the statistic takes whole multiples of one span"
     lattice = logarithmic(statistic, x, low, high)
     if lattice is not None:
-        return _family(density, found, lattice, MultiplicativeSum), "the statistic is the logarithm of a whole number"
-    return (f"the values of T = {statistic} were not shown to be whole multiples of one span or logarithms of whole "
-            "numbers; a finite support, or a statistic that is a polynomial in the variable, would help")
+        return _family(
+            density, found, lattice, MultiplicativeSum
+        ), "the statistic is the logarithm of a whole number"
+    return (
+        f"the values of T = {statistic} were not shown to be whole multiples of one span or logarithms of whole "
+        "numbers; a finite support, or a statistic that is a polynomial in the variable, would help"
+    )
 
 
 def _ends(density: Density) -> tuple[int | None, int | None]:
@@ -68,8 +76,20 @@ def _family(density: Density, found: Factorisation, lattice: Lattice, kind: type
     if lattice.first is None or lattice.last is None:
         mean, variance = _moments(found, lattice, t)
     atoms = Atoms(
-        constant, core, x.name, t.name, lattice.first, lattice.last, lattice.origin, lattice.step, lattice.places,
-        normalised=not density.is_kernel, table=_table(density, lattice), space=space_ends(density), mean=mean, variance=variance,
+        constant,
+        core,
+        x.name,
+        t.name,
+        lattice.first,
+        lattice.last,
+        lattice.origin,
+        lattice.step,
+        lattice.places,
+        normalised=not density.is_kernel,
+        table=_table(density, lattice),
+        space=space_ends(density),
+        mean=mean,
+        variance=variance,
     )
     law: Law = kind(atoms, t)
     return LawFamily(law, as_exact(lattice.scale), as_exact(lattice.shift), t)
@@ -80,12 +100,14 @@ def _table(density: Density, lattice: Lattice) -> dict[int, Fraction] | None:
         return None
     first = int(density.parsed_support.lower)
     if lattice.places is None:
-        return {int((first + i - lattice.origin) / lattice.step): weight for i, weight in enumerate(density.table)}
+        return {
+            int((first + i - lattice.origin) / lattice.step): weight for i, weight in enumerate(density.table)
+        }
     return {y: density.table[int(xs[0]) - first] for y, xs in lattice.places.items()}
 
 
 def _moments(found: Factorisation, lattice: Lattice, t: Symbol) -> tuple[Expr, Expr]:
-    mean, variance = cumulants(found.log_normaliser, found.natural_parameter, t)
+    mean, variance = cumulants(open_zeta(found.log_normaliser), found.natural_parameter, t)
     return (mean - lattice.shift) / lattice.scale, variance / lattice.scale**2
 
 
@@ -93,4 +115,3 @@ def space_ends(density: Density) -> tuple[Any, Any]:
     """Return the ends of the parameter interval as exact numbers, None for an infinite one."""
     ends = density.parsed_space.lower, density.parsed_space.upper
     return tuple(None if end.is_infinite else as_exact(end) for end in ends)  # type: ignore[return-value]
-

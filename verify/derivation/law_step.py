@@ -17,6 +17,9 @@ from verify.problem.density import Density
 
 SECANT = "generalised hyperbolic secant"
 
+LONGEST_KERNEL = 1000
+"""Kernels on more points go straight to the law that is built from their weights."""
+
 
 def law_step(density: Density, found: Factorisation, leaning: Grade) -> tuple[Step, LawFamily | None]:
     """Return the step ``law`` and the family in closed form, when there is one.
@@ -29,6 +32,9 @@ def law_step(density: Density, found: Factorisation, leaning: Grade) -> tuple[St
         The weakest grade of the steps on which this one leans.
     """
     t, points = density.t, parameter_points(density)
+    if density.is_kernel and len(density.parsed_support.points) > LONGEST_KERNEL:
+        statement = "the sum of so long a kernel is not searched for a law in closed form"
+        return general_law(density, found, Step("law", leaning, statement))
     if _certainly_another(density, found, points[1:4]):
         statement = "the variance function of T is neither quadratic nor a cube: no law in closed form is named"
         return general_law(density, found, Step("law", leaning, statement, "certain in ball arithmetic; Morris 1982"))

@@ -1,8 +1,8 @@
 """Cuts a support into pieces on which a statistic is strictly monotone, each with its inverse.
 
-A piece is accepted when the sign of T' is proved on it: by algebra, or by balls over the whole piece, where T' vanishes at an
-end with T'' of one sign near it. An inverse g is accepted when T(g(v)) = v identically and g meets the piece at one point: being
-continuous, it then stays in it.
+A piece is accepted when the sign of T' is proved on it: by algebra, or by balls over the whole piece, where
+T' vanishes at an end with T'' of one sign near it. An inverse g is accepted when T(g(v)) = v identically and
+g meets the piece at one point: being continuous, it then stays in it.
 
 Source: R. E. Moore, R. B. Kearfott and M. J. Cloud, *Introduction to Interval Analysis* (2009), section 5.2.
 """
@@ -10,6 +10,7 @@ Source: R. E. Moore, R. B. Kearfott and M. J. Cloud, *Introduction to Interval A
 from __future__ import annotations
 
 from fractions import Fraction
+from itertools import pairwise
 from typing import Any
 
 import sympy as sp
@@ -42,7 +43,7 @@ def monotone_pieces(statistic: Expr, x: Symbol, low: Expr, high: Expr) -> tuple[
         return f"the turning points of T = {statistic} were not found"
     ends = [low, *turning, high]
     pieces = []
-    for left, right in zip(ends, ends[1:], strict=False):
+    for left, right in pairwise(ends):
         piece = _piece(statistic, x, left, right)
         if isinstance(piece, str):
             return piece

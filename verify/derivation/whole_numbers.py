@@ -43,7 +43,8 @@ class Lattice:
 
 
 def affine(statistic: Expr, x: Symbol, low: int | None, high: int | None) -> Lattice | None:
-    """Return the lattice of a statistic a x + b on the whole numbers low..high (turned round when it has no lower end).
+    """Return the lattice of a statistic a x + b on the whole numbers low..high (turned round when it has no
+    lower end).
 
     Examples
     --------
@@ -86,7 +87,8 @@ def _on_span(base: Expr, unit: Expr, ratios: dict[int, Fraction]) -> Lattice:
 
 
 class PolynomialPlaces(Points):
-    """The x of each y for a polynomial y = p(x) that rises on x >= start, found by bisection as they are asked for.
+    """The x of each y for a polynomial y = p(x) that rises on x >= start, found by bisection as they are
+    asked for.
 
     Parameters
     ----------
@@ -135,7 +137,8 @@ class PolynomialPlaces(Points):
 def polynomial(statistic: Expr, x: Symbol, low: int | None, high: int | None) -> Lattice | None:
     """Return the lattice of a polynomial statistic that certainly rises from one end of an infinite support.
 
-    It rises when its coefficients around the lower end are not negative. On all whole numbers it has to be even.
+    It rises when its coefficients around the lower end are not negative. On all whole numbers it has to be
+    even.
     """
     if high is not None or not statistic.is_polynomial(x):
         return None
@@ -153,8 +156,9 @@ def polynomial(statistic: Expr, x: Symbol, low: int | None, high: int | None) ->
         return None
     below = lcm(*(int(c.q) for c in moved.all_coeffs()))
     values = sp.Poly((scaled.as_expr() - shift) * below, x)
-    return Lattice(lead / below, lead * shift, 0, None,
-                   places=PolynomialPlaces(values, start, mirrored=low is None))
+    return Lattice(
+        lead / below, lead * shift, 0, None, places=PolynomialPlaces(values, start, mirrored=low is None)
+    )
 
 
 def logarithmic(statistic: Expr, x: Symbol, low: int | None, high: int | None) -> Lattice | None:

@@ -1,8 +1,8 @@
 """The masses of one lattice observation, read from its formula, its kernel or its table of weights.
 
-The family's statistic is T = scale * Y + shift with Y a whole number. This file knows the masses of one Y at any parameter
-value, and how two parameter values of one family compare: their mass ratio is C * rho**y for every y, which is what a
-one-parameter exponential family means.
+The family's statistic is T = scale * Y + shift with Y a whole number. This file knows the masses of one Y at
+any parameter value, and how two parameter values of one family compare: their mass ratio is C * rho**y for
+every y, which is what a one-parameter exponential family means.
 
 Source: E. L. Lehmann and J. P. Romano, *Testing Statistical Hypotheses* (3rd ed., 2005), section 3.4.
 """
@@ -76,7 +76,9 @@ class Atoms:
         return [constant * self._core(A, names, y) for y in range(low, high + 1)]
 
     def tilted(self, A: Any, at: Exact, low: int, high: int) -> list[Number]:
-        """Return the same masses in balls, from those at the family's base value (evaluated once) times C * rho**y."""
+        """Return the same masses in balls, from those at the family's base value (evaluated once) times C *
+        rho**y.
+        """
         base = self.cache.setdefault("base", at)
         held = self.cache.setdefault("base masses", {})
         known = next((held[key] for key in held if key[:2] == (low, high) and key[2] >= A.prec), None)

@@ -1,4 +1,6 @@
-"""Builds the tables of a lattice sum: one power of the weights per precision, shared by all parameter values."""
+"""Builds the tables of a lattice sum: one power of the weights per precision, shared by all parameter
+values.
+"""
 
 from __future__ import annotations
 
@@ -52,9 +54,13 @@ def exact_table(law: LatticeSum, v: int | None) -> Table:
     one, n = law.one, law.n
     if one.first is None:
         raise NotRational("masses of a two-sided lattice are infinite sums")
-    reach = one.last if one.last is not None else max(0, (n * one.first if v is None else v) - (n - 1) * one.first)
+    reach = (
+        one.last
+        if one.last is not None
+        else max(0, (n * one.first if v is None else v) - (n - 1) * one.first)
+    )
     key = ("exact", law.at, n)
-    known = one.cache.get(key)
+    known: Table | None = one.cache.get(key)
     if known is not None and (known.complete or (v is not None and v <= known.end)):
         return known
     masses = one.masses(Rationals(), law.at, one.first, reach)
@@ -93,14 +99,22 @@ def _build(law: LatticeSum, A: Any, bits: int, v: int | None, known: Table | Non
         length = _length(law, v, known)
         reach = min(high, low + length - 1) if high is not None else low + length - 1
     if length > MAX_LENGTH:
-        raise UndecidedError(f"the table of masses would need {length} lattice points (at most {MAX_LENGTH} are tried)")
+        raise UndecidedError(
+            f"the table of masses would need {length} lattice points (at most {MAX_LENGTH} are tried)"
+        )
     raw = _power(law, A, low, reach, length)
     total = A.real(1)
     if not one.normalised:
         total = A.power(sum(one.tilted(A, law.at, low, high), A.real(0)), n)
     cut_off = one.last is None and (one.first is None or reach < low + length - 1)
-    return Table(n * low, raw, total, complete=one.last is not None or one.first is None,
-                 exact_below=_first_touched(one, n, reach) if cut_off else None, missing=missing if cut_off else 0)
+    return Table(
+        n * low,
+        raw,
+        total,
+        complete=one.last is not None or one.first is None,
+        exact_below=_first_touched(one, n, reach) if cut_off else None,
+        missing=missing if cut_off else 0,
+    )
 
 
 def _first_touched(one: Atoms, n: int, reach: int) -> int:
@@ -119,7 +133,9 @@ def _window(law: LatticeSum, bits: int) -> tuple[int, Any, Any]:
         return (one.first, None, 0) if top is None else (one.first, _rounded(top[0]), n * top[1])
     bottom = cut(one, law.at, wanted, upper=False)
     if top is None or bottom is None:
-        raise UndecidedError("no bound was found for a tail of the two-sided lattice inside the parameter space")
+        raise UndecidedError(
+            "no bound was found for a tail of the two-sided lattice inside the parameter space"
+        )
     return -_rounded(-bottom[0]), _rounded(top[0]), n * (top[1] + bottom[1])
 
 

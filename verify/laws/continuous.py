@@ -1,8 +1,8 @@
 """The law of the statistic of one continuous observation, by rigorous quadrature of the density itself.
 
-P(V <= v) is the integral of the density over {x : T(x) <= v}, piece by piece where T is monotone. An end at which T runs to
-infinity is cut where a likelihood-ratio bound is below 2**-bits; an end at which the density is not bounded is avoided: the
-integral over the complement is taken from 1, which leans on the normalisation.
+P(V <= v) is the integral of the density over {x : T(x) <= v}, piece by piece where T is monotone. An end at
+which T runs to infinity is cut where a likelihood-ratio bound is below 2**-bits; an end at which the density
+is not bounded is avoided: the integral over the complement is taken from 1, which leans on the normalisation.
 
 Source: F. Johansson, "Numerical integration in arbitrary-precision ball arithmetic", ICMS 2018.
 """
@@ -110,7 +110,9 @@ class OneObservation(Law):
         return A.sqrt(evaluate(self.one.variance, A, {self.one.parameter: A.real(self.at)}))
 
     def _side(self, A: Any, v: Any, *, upper: bool, moment: bool) -> Number:
-        """Integral of f, or of (m - T) f, over {T > v} or {T <= v}; by the complement where an end is singular."""
+        """Integral of f, or of (m - T) f, over {T > v} or {T <= v}; by the complement where an end is
+        singular.
+        """
         if self._avoid(A, v, upper=upper):
             if self._avoid(A, v, upper=not upper):
                 raise UndecidedError("the density is unbounded at both ends and the statistic bounded there")

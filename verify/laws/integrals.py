@@ -92,7 +92,9 @@ class Integrals:
         return self.A.real(place), either_sign(self.A.sqrt(variance * beyond))
 
     def _sliver(self, end: Number) -> Number:
-        """What lies between an irrational end and the midpoint of its ball: at most its radius times the integrand."""
+        """What lies between an irrational end and the midpoint of its ball: at most its radius times the
+        integrand.
+        """
         return self.A.real(0) if end.is_exact() else (end - midpoint(end)) * self._value(end)
 
     def _between(self, start: Number, end: Number) -> Number:

@@ -140,20 +140,27 @@ class SumByInversion(Law):
         return value + A.real(0)
 
     def _crossing(self, v: Number, upper: bool | None) -> Fraction:
-        """Where the path crosses the real axis: near the saddle point, on a coarse grid, off the pole at eta."""
+        """Where the path crosses the real axis: near the saddle point, on a coarse grid, off the pole at
+        eta.
+        """
         with balls(COARSE_BITS) as A:
             eta = to_fraction(midpoint(evaluate(self.one.natural, A, {self.one.parameter: A.real(self.at)})))
             gap = 1 / to_fraction(midpoint(self.spread(A)))
-            low, high = (None if end is None else to_fraction(midpoint(A.real(end)))
-                         for end in self.transform.domain())
+            low, high = (
+                None if end is None else to_fraction(midpoint(A.real(end))) for end in self.transform.domain()
+            )
             saddle = saddle_point(self.transform, self.n, midpoint(A.real(v)), eta, A)
         if upper is not None:
             saddle = max(saddle, eta + gap) if upper else min(saddle, eta - gap)
         return _on_grid(saddle, gap, low, high, eta if upper is not None else None)
 
 
-def _on_grid(place: Fraction, gap: Fraction, low: Fraction | None, high: Fraction | None, pole: Fraction | None) -> Fraction:
-    """Round to a grid of about the gap, or halve towards the pole or the middle where that leaves the domain."""
+def _on_grid(
+    place: Fraction, gap: Fraction, low: Fraction | None, high: Fraction | None, pole: Fraction | None
+) -> Fraction:
+    """Round to a grid of about the gap, or halve towards the pole or the middle where that leaves the
+    domain.
+    """
     grid = Fraction(2) ** round(log2(float(gap)))
     rounded = round(place / grid) * grid
     if pole is not None and abs(rounded - pole) < gap / 4:

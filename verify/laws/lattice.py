@@ -1,16 +1,17 @@
 """The law of a sum of lattice observations, built from the formula itself.
 
-All laws of a family share their weights: P_t(V = k) is the n-th power of the weight series at one parameter value, times
-C**n rho**k. So one power serves every parameter value at one precision, and its table of sums every question.
+All laws of a family share their weights: P_t(V = k) is the n-th power of the weight series at one parameter
+value, times C**n rho**k. So one power serves every parameter value at one precision, and its table of sums
+every question.
 
 - Finite support: everything is in the table.
-- Support bounded below: coefficients up to a degree are complete; the upper tail is 1 minus the lower part, which leans on
-  the normalisation of the density.
-- Two-sided support: one observation is cut where its tails are below 2**-bits, proved by tilting; the sum of n lacks at most n
-  times that mass, wherever it lies, and each answer is widened by it.
+- Support bounded below: coefficients up to a degree are complete; the upper tail is 1 minus the lower part,
+  which leans on the normalisation of the density.
+- Two-sided support: one observation is cut where its tails are below 2**-bits, proved by tilting; the sum of
+  n lacks at most n times that mass, wherever it lies, and each answer is widened by it.
 
-Source: E. L. Lehmann and J. P. Romano, *Testing Statistical Hypotheses* (3rd ed., 2005), Lemma 2.7.2 (the sum is again a
-one-parameter exponential family); bounds in :mod:`verify.laws.tilting`.
+Source: E. L. Lehmann and J. P. Romano, *Testing Statistical Hypotheses* (3rd ed., 2005), Lemma 2.7.2 (the sum
+is again a one-parameter exponential family); bounds in :mod:`verify.laws.tilting`.
 """
 
 from __future__ import annotations
@@ -115,7 +116,9 @@ class LatticeSum(Law):
         return part + self._lost(A, table) if table.cut_touches(v) else part
 
     def _lost(self, A: Any, table: Table) -> Number:
-        """Ball around 0 that contains E[(V - m); a missing outcome]: by Cauchy-Schwarz at most sd * sqrt(missing)."""
+        """Ball around 0 that contains E[(V - m); a missing outcome]: by Cauchy-Schwarz at most sd *
+        sqrt(missing).
+        """
         return either_sign(self.spread(A) * A.sqrt(A.real(table.missing)))
 
     def _beyond(self, v: int) -> bool:

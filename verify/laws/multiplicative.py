@@ -1,7 +1,8 @@
 """The law of a sum of logarithms of whole numbers: the atoms multiply instead of adding.
 
-V = log(m1) + ... + log(mn) = log(m1 * ... * mn): the mass of log m is the n-fold convolution over products of the mass of one
-observation. Points of this law are the whole numbers m, in their order; :meth:`MultiplicativeSum.value` is log m.
+V = log(m1) + ... + log(mn) = log(m1 * ... * mn): the mass of log m is the n-fold convolution over products of
+the mass of one observation. Points of this law are the whole numbers m, in their order;
+:meth:`MultiplicativeSum.value` is log m.
 
 Source: T. M. Apostol, *Introduction to Analytic Number Theory* (1976), section 2.6 (Dirichlet convolution).
 """
@@ -144,8 +145,10 @@ class MultiplicativeSum(Law):
                 return Table(1, powers, 1, complete=False)
             factor, exponent = self._tilt(A, base)
             front = A.power(factor, self.n)
-            raw = [mass if mass == 0 else mass * front * A.exp(exponent * A.log(A.real(m)))
-                   for m, mass in enumerate(powers, start=1)]
+            raw = [
+                mass if mass == 0 else mass * front * A.exp(exponent * A.log(A.real(m)))
+                for m, mass in enumerate(powers, start=1)
+            ]
             return Table(1, raw, 1, complete=False)
 
     def _powers(self, A: Any, base: Exact, length: int) -> list[Number]:

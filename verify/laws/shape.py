@@ -133,8 +133,9 @@ class Shape:
     def far_cut(self, at: Exact, piece: Piece, bits: int, *, upper: bool) -> tuple[Fraction, Any]:
         """Return x near a far end, and a ball bounding the mass between it and the end.
 
-        The likelihood ratio against a second parameter value is monotone in the statistic; where it falls towards the
-        end, the mass beyond x is at most its value at x, because the density at the second value has mass at most 1.
+        The likelihood ratio against a second parameter value is monotone in the statistic; where it falls
+        towards the end, the mass beyond x is at most its value at x, because the density at the second value
+        has mass at most 1.
 
         Raises
         ------
@@ -156,7 +157,9 @@ class Shape:
                 if found is not None and (best is None or found[0] < best[0]):
                     best = found
         if best is None:
-            raise UndecidedError("no bound was found for a tail of one observation inside the parameter space")
+            raise UndecidedError(
+                "no bound was found for a tail of one observation inside the parameter space"
+            )
         return best[1], best[2]
 
     def _march(
@@ -183,8 +186,7 @@ def _place(A: Any, piece: Piece, step: int, *, upper: bool) -> Fraction:
     if end is None:
         base = Fraction(0) if start is None else start
         return base + step if upper else base - step
-    stop = _rational(A, end)
-    assert stop is not None  # noqa: S101 (an end that is not None has a value)
+    stop = to_fraction(midpoint(A.real(end)))
     gap = Fraction(1) if start is None else abs(stop - start)
     shift = gap * Fraction(1, 2**step)
     return stop - shift if upper else stop + shift

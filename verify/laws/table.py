@@ -1,4 +1,6 @@
-"""A table of masses on consecutive lattice points, with its sums, in balls or in whole numbers over one denominator."""
+"""A table of masses on consecutive lattice points, with its sums, in balls or in whole numbers over one
+denominator.
+"""
 
 from __future__ import annotations
 

@@ -1,13 +1,15 @@
 """Bounds for what is cut from an infinite lattice, through the normalisation at a second parameter value.
 
-For parameter values t, t' of one family, mass(y; t) / mass(y; t') = C * rho**y. Where rho < 1 this ratio falls with y, so
+For parameter values t, t' of one family, mass(y; t) / mass(y; t') = C * rho**y. Where rho < 1 this ratio
+falls with y, so
 
     P_t(Y > b) = sum over y > b of C rho**y mass(y; t') <= C rho**(b+1) * P_t'(Y > b) <= C rho**(b+1),
 
-since the masses at t' sum to one. The lower tail is the same with rho > 1. Nothing is estimated: the bound holds for every
-t' of the parameter space, and the best of a few is taken.
+since the masses at t' sum to one. The lower tail is the same with rho > 1. Nothing is estimated: the bound
+holds for every t' of the parameter space, and the best of a few is taken.
 
-Source: H. Chernoff, *Ann. Math. Statist.* 23 (1952) 493-507 (the bound); the argument above is the proof used.
+Source: H. Chernoff, *Ann. Math. Statist.* 23 (1952) 493-507 (the bound); the argument above is the proof
+used.
 """
 
 from __future__ import annotations
@@ -45,7 +47,8 @@ def _rounded(value: Fraction) -> Fraction:
 
 
 def cut(atoms: Atoms, at: Exact, bits: int, *, upper: bool) -> tuple[int, Any] | None:
-    """Return where one observation may be cut, and the ball bounding the mass beyond; None where no bound is found.
+    """Return where one observation may be cut, and the ball bounding the mass beyond; None where no bound is
+    found.
 
     The mass of Y > place (``upper``) or Y < place is below 2**-bits.
     """
