@@ -98,7 +98,7 @@ def _observations(ask: Question, t: float) -> tuple[Array, Array]:
     if table is not None:
         x = lower + np.arange(len(table))
         known = np.log(np.array([float(weight) for weight in table]))
-        heights = known + x * np.log(t)  # a table's kernel is h(x) t**x
+        heights = known + log_density(ask, x, t)
     else:
         x = atoms_that_matter(lambda place: log_density(ask, place, t), lower, upper, _depth(ask))
         heights = log_density(ask, x, t)
