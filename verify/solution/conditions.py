@@ -21,6 +21,9 @@ from verify.solution.start import Rough, scored_window
 
 Row = tuple[Any, Any]
 
+MOST_EXACT_ATOMS = 20_000
+"""A tie is decided in exact fractions when at most so many atoms must be summed."""
+
 FEW_ATOMS = 8
 """A window of at most so many interior lattice points is summed mass by mass, which does not cancel."""
 

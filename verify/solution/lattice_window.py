@@ -17,7 +17,7 @@ from verify.arithmetic.ball import accuracy_bits, balls, to_enclosure
 from verify.arithmetic.enclosure import Enclosure
 from verify.arithmetic.exact import rationals
 from verify.errors import InputError, NotRational, UndecidedError
-from verify.solution.conditions import Conditions, end_fractions, exact_fractions, improved_start, linear_system
+from verify.solution.conditions import MOST_EXACT_ATOMS, Conditions, end_fractions, exact_fractions, improved_start, linear_system
 from verify.solution.precision import bits_for
 from verify.solution.sliding import slide
 from verify.solution.start import Rough, extend, window_start
@@ -28,9 +28,6 @@ MOST_STEPS = 40
 
 NEIGHBOURS = 4
 """Cells tried one step at a time before searching again at a higher precision."""
-
-MOST_EXACT_ATOMS = 20_000
-"""A tie is decided exactly when the window has at most so many atoms."""
 
 Cell = tuple[int, int]
 
@@ -90,15 +87,11 @@ class LatticeSearch:
             weights = window_fractions(self.conditions, A, *cell)
             if any(math.isnan(w) for w in weights):
                 return None
-            if all(-1e-9 <= w <= 1 + 1e-9 for w in weights):
+            grain = 1e-9 * max(abs(w) for w in weights)
+            if all(-grain <= w <= 1 + 1e-9 for w in weights):
                 return cell
-            c1 = cell[0] - self._move(A, cell[0], weights[0], -1)
-            c2 = cell[1] + self._move(A, cell[1], weights[1], +1)
-            if c1 >= c2:
-                middle = (cell[0] + cell[1]) // 2
-                c1, c2 = min(c1, middle), max(c2, middle + 1)
-                c2 = max(c2, c1 + 1)
-            cell = self._inside_support(c1, c2, low, high)
+            out1, out2 = (self._move(A, c, w, side) for c, w, side in zip(cell, weights, (-1, +1), strict=True))
+            cell = self._inside_support(*grown(cell, out1, out2), low, high)
         return None
 
     def _move(self, A: Any, c: int, weight: float, side: int) -> int:
@@ -117,6 +110,25 @@ class LatticeSearch:
     def bracket(self, bits: int) -> Cell:
         """Return the cell by the sure, slow search."""
         return slide(self.conditions, self.rough, self.rising, bits)
+
+
+def grown(cell: Cell, out1: int, out2: int) -> Cell:
+    """Move the ends outward by so many cells; ends that would meet or cross move on together, past the shrinking side.
+
+    Examples
+    --------
+    >>> grown((3, 9), 1, -2), grown((1, 2), 0, -1), grown((1, 2), -1, 0), grown((3, 5), -4, -4)
+    ((2, 7), (0, 1), (2, 3), (4, 5))
+    """
+    c1, c2 = cell[0] - out1, cell[1] + out2
+    if c1 < c2:
+        return c1, c2
+    if out2 < 0 <= out1:
+        return min(c1, cell[0]) - 1, min(c1, cell[0])
+    if out1 < 0 <= out2:
+        return max(c2, cell[1]), max(c2, cell[1]) + 1
+    middle = (cell[0] + cell[1]) // 2
+    return middle, middle + 1
 
 
 def window_fractions(conditions: Conditions, A: Any, c1: int, c2: int) -> tuple[float, float]:
@@ -178,9 +190,9 @@ def solve_lattice_window(search: LatticeSearch, digits: int) -> Window:
 
 def _neighbour(search: LatticeSearch, cell: Cell, moves: list[Any], tried: set[Cell], bits: int) -> Cell:
     """Next cell to try, where this one is certainly wrong: one step each way, else a search at this precision."""
-    step = (cell[0] - moves[0], cell[1] + moves[1])
+    step = grown(cell, *moves)
     low, high = search.conditions.laws[0].support
-    possible = step[0] < step[1] and (low is None or step[0] >= low) and (high is None or step[1] <= high)
+    possible = (low is None or step[0] >= low) and (high is None or step[1] <= high)
     if step in tried or not possible or len(tried) % NEIGHBOURS == 0:
         step = replace(search, prec=bits).cell() if len(tried) <= NEIGHBOURS else search.bracket(bits)
         if step in tried:

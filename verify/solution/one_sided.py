@@ -7,6 +7,7 @@ rejects far out on one side, with the fraction gamma at the cutoff that makes th
 from __future__ import annotations
 
 import math
+from collections.abc import Callable
 from dataclasses import dataclass
 from fractions import Fraction
 from typing import Any
@@ -16,11 +17,13 @@ from verify.arithmetic.enclosure import Enclosure
 from verify.arithmetic.exact import rationals
 from verify.errors import NotRational, UndecidedError
 from verify.laws import Law
+from verify.solution.conditions import MOST_EXACT_ATOMS
 from verify.solution.coordinate import Coordinate
 from verify.solution.precision import bits_for
 from verify.solution.start import Rough, upper_point
 
 MOST_ROUNDS = 200
+BISECTIONS = 60
 
 
 @dataclass(frozen=True)
@@ -139,6 +142,9 @@ class TailProblem:
         """Decide a tie in exact fractions; None when the masses are irrational or the sum too long."""
         low, high = self.law.support
         A = rationals()
+        summed = high - c if self.above and high is not None else c - low if low is not None else MOST_EXACT_ATOMS + 1
+        if summed > MOST_EXACT_ATOMS:
+            return None
         try:
             level = A.real(self.level)
             if self.above and high is not None:
@@ -187,18 +193,29 @@ class TailProblem:
         return image if trial.contains_interior(image) else None
 
     def _continuous_cutoff(self, A: Any) -> Any:
+        """Bracket from the normal approximation, bisection, then a few Newton steps; nothing is claimed of the result."""
         coordinate = Coordinate(*self.law.support)
         rough = coordinate.rough(A, self.rough)
         level = A.real(self.level).mid()
         z = upper_point(max(float(level), 1e-300))
-        inner = rough.mean + self.outward * z * rough.spread
-        step = max(rough.spread / 4, 1e-9)
 
-        def enough(u: Any) -> bool:
+        def enough(u: Fraction) -> bool:
             return bool(self.beyond(A, midpoint(coordinate.place(A, A.real(u)))).mid() < level)
 
-        inner = outer = Fraction(inner)
-        reach = Fraction(step)
+        inner, outer = self._bracket(Fraction(rough.mean + self.outward * z * rough.spread), rough.spread, enough)
+        for _ in range(BISECTIONS):
+            middle = (inner + outer) / 2
+            inner, outer = (inner, middle) if enough(middle) else (middle, outer)
+        centre = midpoint(coordinate.place(A, A.real((inner + outer) / 2)))
+        for _ in range(int(math.log2(self.prec)) + 2):
+            step = (A.real(self.level) - self.beyond(A, centre)) / self.law.density(A, centre)
+            centre = midpoint(centre - self.outward * step)
+        return centre
+
+    def _bracket(self, start: Fraction, spread: float, enough: Callable[[Fraction], bool]) -> tuple[Fraction, Fraction]:
+        """Two places, the inner one with too much beyond it and the outer one with little enough."""
+        inner = outer = start
+        reach = Fraction(max(spread / 4, 1e-9))
         for _ in range(MOST_ROUNDS):
             if enough(outer):
                 break
@@ -207,14 +224,7 @@ class TailProblem:
             if not enough(inner):
                 break
             inner, outer, reach = inner - self.outward * reach, inner, 2 * reach
-        for _ in range(60):
-            middle = (inner + outer) / 2
-            inner, outer = (inner, middle) if enough(middle) else (middle, outer)
-        centre = midpoint(coordinate.place(A, A.real((inner + outer) / 2)))
-        for _ in range(int(math.log2(self.prec)) + 2):
-            step_ball = (A.real(self.level) - self.beyond(A, centre)) / self.law.density(A, centre)
-            centre = midpoint(centre - self.outward * step_ball)
-        return centre
+        return inner, outer
 
 
 def _unit(gamma: Any) -> Enclosure:
