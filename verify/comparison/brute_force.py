@@ -79,7 +79,9 @@ def _depth(ask: Question) -> float:
 
 
 def log_density(ask: Question, x: Array, t: float) -> Array:
-    """Log f(x; t) of the formula, as an array."""
+    """Log f(x; t) of the formula, as an array; of a table's kernel h(x) t**x without its h."""
+    if ask.density.table is not None:
+        return np.asarray(x, dtype=float) * np.log(t)
     names = {ask.density.x.name: np.asarray(x, dtype=float), ask.density.t.name: t}
     return np.asarray(log_values(ask.density.expr, names), dtype=float) + np.zeros_like(names[ask.density.x.name])
 
