@@ -29,14 +29,30 @@ Records = Callable[[], Iterable[dict[str, Any]]]
 def add(parser: argparse.ArgumentParser) -> None:
     """Add the arguments of the command."""
     add_case(parser)
-    parser.add_argument("table", metavar="TABLE", nargs="?", help="a table of claims: .csv, .tsv, .xlsx or .json; its columns are "
-                        "mapped in [table] of the case file. Without it the [claim] of the case file is reviewed")  # fmt: skip
-    parser.add_argument("-o", "--output", metavar="OUT", help="write a copy of the table with the verdicts beside its rows; an "
-                        "interrupted run goes on where it stopped")  # fmt: skip
+    parser.add_argument(
+        "table",
+        metavar="TABLE",
+        nargs="?",
+        help="a table of claims: .csv, .tsv, .xlsx or .json; its columns are "
+        "mapped in [table] of the case file. Without it the [claim] of the case file is reviewed",
+    )
+    parser.add_argument(
+        "-o",
+        "--output",
+        metavar="OUT",
+        help="write a copy of the table with the verdicts beside its rows; an interrupted run goes on where it stopped",
+    )
     parser.add_argument("--memo", metavar="FILE", help="write a review memo, .md or .html")
-    parser.add_argument("--digits", type=digits, metavar="N", default=None,
-                        help=f"significant digits to prove (default {CLAIM_DIGITS}; {ROW_DIGITS} for a table)")  # fmt: skip
-    parser.add_argument("--workers", type=_workers, default=1, metavar="N", help="processes for a long table (default 1)")
+    parser.add_argument(
+        "--digits",
+        type=digits,
+        metavar="N",
+        default=None,
+        help=f"significant digits to prove (default {CLAIM_DIGITS}; {ROW_DIGITS} for a table)",
+    )
+    parser.add_argument(
+        "--workers", type=_workers, default=1, metavar="N", help="processes for a long table (default 1)"
+    )
     add_budget(parser)
     add_json(parser)
 
@@ -57,7 +73,9 @@ def run(args: argparse.Namespace) -> int:
     case = read_case(args.case)
     if args.table is None:
         if args.output:
-            raise InputError("there is no table to write a copy of", "give the table after the case file", key="--output")
+            raise InputError(
+                "there is no table to write a copy of", "give the table after the case file", key="--output"
+            )
         return _claim(case, args)
     return _table(case, args)
 
@@ -95,7 +113,12 @@ def _table(case: Case, args: argparse.Namespace) -> int:
         _run(job, table, journal)
         code = _show(journal, args.json)
         if args.output:
-            write_annotated(table, Path(args.output), journal.records(), [name for name in NUMBERS if name in columns.columns])
+            write_annotated(
+                table,
+                Path(args.output),
+                journal.records(),
+                [name for name in NUMBERS if name in columns.columns],
+            )
         if args.memo:
             _write_memo(args.memo, case, Path(args.table).name, _derivations(job, journal), journal.records)
         if args.output:
@@ -110,12 +133,18 @@ def _refuse_same_file(args: argparse.Namespace) -> None:
         if given and Path(given).resolve() in (Path(args.table).resolve(), Path(args.case).resolve()):
             raise InputError(f"{given} is an input", "write to another file", key=key)
     if args.output and Path(args.output).suffix.lower() != Path(args.table).suffix.lower():
-        raise InputError(f"the copy of {args.table} has another ending", f"name it {Path(args.table).suffix}", key="--output")
+        raise InputError(
+            f"the copy of {args.table} has another ending",
+            f"name it {Path(args.table).suffix}",
+            key="--output",
+        )
 
 
 @contextlib.contextmanager
 def _journal_place(output: str | None) -> Iterator[Path]:
-    """Beside the output, where an interrupted run is found again; without an output, in a directory that goes away."""
+    """Beside the output, where an interrupted run is found again; without an output, in a directory that
+    goes away.
+    """
     if output:
         yield Path(output + ".journal")
         return
@@ -142,7 +171,9 @@ def _run(job: Job, table: Table, journal: Journal) -> None:
 
 
 def _plain_progress() -> Callable[[int], None]:
-    """A line on stderr now and then: at 1000 rows, then each time the number has doubled or grown by 10 000."""
+    """A line on stderr now and then: at 1000 rows, then each time the number has doubled or grown by 10
+    000.
+    """
     state = {"next": 1000}
 
     def progress(done: int) -> None:
@@ -167,7 +198,8 @@ def _show(journal: Journal, as_json: bool) -> int:
 
 
 def _status(records: Iterable[dict[str, Any]]) -> int:
-    """1 when a row differs or is refuted, else 2 when one could not be used, else 3 when one is undecided, else 0.
+    """1 when a row differs or is refuted, else 2 when one could not be used, else 3 when one is undecided,
+    else 0.
 
     A last digit that is rounded otherwise is no difference: it is 0, and the summary says it.
     """
@@ -200,6 +232,8 @@ def _write_memo(path: str, case: Case, table: str, derivations: list[tuple[str, 
 
     memo = Memo(case, table, verify.__version__, derivations)
     blocks = memo.blocks(records)
-    pieces = markdown(blocks) if path.lower().endswith(".md") else html(blocks, f"Review memo: {case.title or case.name}")
+    pieces = (
+        markdown(blocks) if path.lower().endswith(".md") else html(blocks, f"Review memo: {case.title or case.name}")
+    )
     with open(path, "w", encoding="utf-8") as stream:
         stream.writelines(pieces)

@@ -73,24 +73,28 @@ def markdown(blocks: Iterable[Block]) -> Iterator[str]:
 
 
 STYLE = """
-body { font: 16px/1.5 Georgia, "Times New Roman", serif; color: #1a1a1a; max-width: 46rem; margin: 3rem auto; padding: 0 1.5rem; }
+body { font: 16px/1.5 Georgia, "Times New Roman", serif; color: #1a1a1a; max-width: 46rem; margin: 3rem
+auto; padding: 0 1.5rem; }
 h1 { font-size: 1.6rem; line-height: 1.25; border-bottom: 2px solid #1a1a1a; padding-bottom: .4rem; }
 h2 { font-size: 1.25rem; margin-top: 2.4rem; border-bottom: 1px solid #bbb; }
 h3 { font-size: 1.05rem; margin-top: 1.8rem; }
 table { border-collapse: collapse; width: 100%; font-size: .88rem; margin: .8rem 0; }
-th, td { text-align: left; vertical-align: top; padding: .25rem .6rem; border-bottom: 1px solid #ddd; overflow-wrap: anywhere; }
+th, td { text-align: left; vertical-align: top; padding: .25rem .6rem; border-bottom: 1px solid #ddd;
+overflow-wrap: anywhere; }
 th { border-bottom: 1px solid #1a1a1a; }
 td:first-child { white-space: nowrap; }
 td { font-variant-numeric: tabular-nums; }
 p.strong { font-weight: bold; }
-@media print { body { margin: 0; max-width: none; font-size: 11pt; } h2, h3 { break-after: avoid; } tr { break-inside: avoid; } }
+@media print { body { margin: 0; max-width: none; font-size: 11pt; } h2, h3 { break-after: avoid; } tr {
+break-inside: avoid; } }
 """
 
 
 def html(blocks: Iterable[Block], title: str) -> Iterator[str]:
     """Yield the memo as one self-contained HTML page, piece by piece."""
     yield f'<!doctype html>\n<html lang="en"><head><meta charset="utf-8"><title>{escape(title)}</title>'
-    yield f'<meta name="viewport" content="width=device-width, initial-scale=1"><style>{STYLE}</style></head><body>\n'
+    yield '<meta name="viewport" content="width=device-width, initial-scale=1">'
+    yield f"<style>{STYLE}</style></head><body>\n"
     for block in blocks:
         yield _html_block(block)
     yield "</body></html>\n"

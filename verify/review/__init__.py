@@ -1,0 +1,1 @@
+"""A colleague's claims: reading tables, verdicts, consequences, slips."""

@@ -15,7 +15,15 @@ LEVEL = {True: "yes", False: "no", None: ""}
 
 def added_names(numbers: Sequence[str]) -> list[str]:
     """Return the names of the added columns, for the numbers that occur in the table."""
-    names = ["verdict", *(f"right {name}" for name in numbers), "level kept", "size", "size at", "slips", "note"]
+    names = [
+        "verdict",
+        *(f"right {name}" for name in numbers),
+        "level kept",
+        "size",
+        "size at",
+        "slips",
+        "note",
+    ]
     return [f"{PREFIX} {name}" for name in names]
 
 
@@ -23,7 +31,9 @@ def added_cells(record: Record, numbers: Sequence[str]) -> list[str]:
     """Return the added cells of one row, in the order of :func:`added_names`."""
     result = record["consequences"] or {}
     size = result.get("size")
-    note = record["error"] or " ".join(f"{text[:1].upper()}{text[1:]}{'' if text.endswith('.') else '.'}" for text in record["notes"])
+    note = record["error"] or " ".join(
+        f"{text[:1].upper()}{text[1:]}{'' if text.endswith('.') else '.'}" for text in record["notes"]
+    )
     return [
         kind_of(record),
         *(record["correct_printed"].get(name, "") for name in numbers),
@@ -42,7 +52,9 @@ def _short(lower: str, upper: str, places: int = 8) -> str:
 
 
 def write_annotated(table: Table, out: Path, records: Iterable[Record], numbers: Sequence[str]) -> None:
-    """Write the colleague's table with the verdicts beside its rows; its own columns and their order stay as they are."""
+    """Write the colleague's table with the verdicts beside its rows; its own columns and their order stay
+    as they are.
+    """
     rows: Iterator[tuple[int, Sequence[str]]] = ((record["row"], added_cells(record, numbers)) for record in records)
     partial = out.with_name(out.name + ".part")
     table.annotate(partial, added_names(numbers), rows)

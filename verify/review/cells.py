@@ -29,7 +29,8 @@ class Cell:
     text : str
         Its text; of a binary number the shortest decimal that stands for it, or what its number format shows.
     kind : Kind
-        Exact (text, whole numbers), a binary floating-point number, a formula, or something else (a date, an error).
+        Exact (text, whole numbers), a binary floating-point number, a formula, or something else (a date,
+        an error).
     """
 
     text: str
@@ -51,7 +52,9 @@ class Cell:
         if self.kind is Kind.FORMULA:
             raise InputError(f"a formula stands in the cell: {self.text[:60]}", "put its value there as text", key=key)
         if self.kind is Kind.OTHER:
-            raise InputError(f"no number or text stands in the cell: {self.text[:60]}", "write the number as text", key=key)
+            raise InputError(
+                f"no number or text stands in the cell: {self.text[:60]}", "write the number as text", key=key
+            )
         return self.text.strip()
 
 
@@ -81,7 +84,7 @@ class Table(Protocol):
         """Yield the rows below the header that are not blank."""
 
     def annotate(self, out: Path, names: Sequence[str], added: Iterator[tuple[int, Sequence[str]]]) -> None:
-        """Write a copy with columns added: for each row number its further cells, in the order of the rows."""
+        """Write a copy with columns added: for each row number its further cells, in order."""
 
 
 def open_table(path: str | Path) -> Table:
@@ -97,10 +100,20 @@ def open_table(path: str | Path) -> Table:
     from verify.review.xlsx_table import XlsxTable
 
     place = Path(path)
-    kinds: dict[str, type] = {".csv": TextTable, ".tsv": TextTable, ".txt": TextTable, ".xlsx": XlsxTable, ".json": JsonTable}
+    kinds: dict[str, type] = {
+        ".csv": TextTable,
+        ".tsv": TextTable,
+        ".txt": TextTable,
+        ".xlsx": XlsxTable,
+        ".json": JsonTable,
+    }
     kind = kinds.get(place.suffix.lower())
     if kind is None:
-        raise InputError(f"a table of kind {place.suffix or 'none'} cannot be read", "give .csv, .tsv, .xlsx or .json", file=str(path))
+        raise InputError(
+            f"a table of kind {place.suffix or 'none'} cannot be read",
+            "give .csv, .tsv, .xlsx or .json",
+            file=str(path),
+        )
     if not place.is_file():
         raise InputError("the table cannot be read: no such file", "give the path of a table", file=str(path))
     table: Table = kind(place)

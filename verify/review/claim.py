@@ -42,12 +42,14 @@ class Claim:
         return replace(self, numbers=kept)
 
     def variants(self, step: Fraction | None, inside: bool) -> Iterator[Mapping[str, Printed]]:
-        """Yield the claim and its other writings: an end with fraction 0 is the next point inward with fraction 1, and so on.
+        """Yield the claim and its other writings: an end with fraction 0 is the next point inward with
+        fraction 1, and so on.
 
         Parameters
         ----------
         step : Fraction or None
-            Distance of support points on the scale printed; None where the law is continuous or the distance irrational.
+            Distance of support points on the scale printed; None where the law is continuous or the
+            distance irrational.
         inside : bool
             Whether the window is the part that the fractions count for.
         """
@@ -61,7 +63,9 @@ class Claim:
                     yield _one_atom(merged, first, second)
 
 
-def _end(numbers: Mapping[str, Printed], c: str, gamma: str, step: Fraction, inside: bool) -> Iterator[dict[str, Printed]]:
+def _end(
+    numbers: Mapping[str, Printed], c: str, gamma: str, step: Fraction, inside: bool
+) -> Iterator[dict[str, Printed]]:
     """Yield the other writings of one end, ``step`` pointing inward; first the one printed (as no change)."""
     yield {}
     fraction = numbers.get(gamma)
@@ -115,7 +119,9 @@ def read_claim(given: Mapping[str, Any], style: Style, form: Form) -> Claim:
         present = {("c" if name in ("c1", "c2") else "gamma"): value for name, value in present.items()}
     for name in other:
         if name in present:
-            raise InputError(f"{name} does not belong to a {form.value} hypothesis", f"give {', '.join(wanted)}", key=name)
+            raise InputError(
+                f"{name} does not belong to a {form.value} hypothesis", f"give {', '.join(wanted)}", key=name
+            )
     for name in wanted[: len(wanted) // 2]:
         if name not in present:
             raise InputError(f"{name} is missing", f"give {', '.join(wanted)}", key=name)
@@ -133,9 +139,13 @@ def _check(numbers: dict[str, Printed]) -> None:
         if not isinstance(printed.value, Fraction):
             raise InputError(f"{name} is irrational as written", "print it as a decimal", key=name)
         if name.startswith("gamma") and not 0 <= printed.value <= 1:
-            raise InputError(f"the fraction {printed.text} is not between 0 and 1", "a fraction is a probability", key=name)
+            raise InputError(
+                f"the fraction {printed.text} is not between 0 and 1", "a fraction is a probability", key=name
+            )
     if ("gamma1" in numbers) != ("gamma2" in numbers):
         absent, there = ("gamma1", "gamma2") if "gamma2" in numbers else ("gamma2", "gamma1")
         if numbers["c1"].value != numbers["c2"].value:
-            raise InputError(f"{absent} is missing although {there} is given", "give both fractions or none", key=absent)
+            raise InputError(
+                f"{absent} is missing although {there} is given", "give both fractions or none", key=absent
+            )
         numbers[absent] = numbers[there]

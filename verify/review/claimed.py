@@ -38,7 +38,8 @@ class Claimed:
 def claimed_test(claim: Claim, setting: Setting) -> Claimed:
     """Read the printed numbers as a test.
 
-    A lattice cutoff printed as a short mean may fit several support points: the nearest to the printed number is taken. Ends in
+    A lattice cutoff printed as a short mean may fit several support points: the nearest to the printed
+    number is taken. Ends in
     the wrong order are put in order. Both are said in the notes.
 
     Raises
@@ -79,7 +80,9 @@ def _one_sided(claim: Claim, setting: Setting, notes: list[str]) -> Claimed:
 
 
 def _end(claim: Claim, which: str, setting: Setting, region: Region, notes: list[str]) -> tuple[Any, Enclosure | None]:
-    """Return one end on the scale of Y (an int on a support point, a Fraction between them) and the fraction there."""
+    """Return one end on the scale of Y (an int on a support point, a Fraction between them) and the
+    fraction there.
+    """
     printed = claim.numbers[f"c{which}"]
     if not setting.lattice:
         return place_of(printed, claim, setting), None
@@ -119,14 +122,18 @@ def _support_point(printed: Printed, claim: Claim, setting: Setting, notes: list
     near = round(y.mid)
     if abs(near - y.mid) <= slack:
         if slack >= Fraction(1, 2) and printed.unit is not None:
-            notes.append(f"{printed.text} is printed too short to tell neighbouring support points apart; the nearest was taken")
+            notes.append(
+                f"{printed.text} is printed too short to tell neighbouring support points apart; the nearest was taken"
+            )
         return near
     notes.append(f"the cutoff {printed.text} is no support point of the statistic")
     return y.mid
 
 
 def _slack(printed: Printed, claim: Claim, setting: Setting) -> Fraction:
-    """Half a unit of the last printed digit, on the scale of Y (a little more than nothing for a number written exactly)."""
+    """Half a unit of the last printed digit, on the scale of Y (a little more than nothing for a number
+    written exactly).
+    """
     if printed.unit is None:
         return Fraction(1, 10**12)
     width = printed.unit / 2 * claim.style.divisor(setting.problem.n) / abs(claim.style.scale)
@@ -159,7 +166,9 @@ def _place(c: Any) -> Any:
 
 
 def _inward(end: tuple[Any, Enclosure | None], side: int, region: Region) -> tuple[int, Enclosure | None]:
-    """Move an end that lies between two support points to the inner one, which belongs wholly to the window."""
+    """Move an end that lies between two support points to the inner one, which belongs wholly to the
+    window.
+    """
     c, phi = end
     if isinstance(c, int):
         return c, phi

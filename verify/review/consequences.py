@@ -1,4 +1,6 @@
-"""What follows from a printed test, taken literally: its true expectations, its size over the whole null, the power it loses."""
+"""What follows from a printed test, taken literally: its true expectations, its size over the whole null,
+the power it loses.
+"""
 
 from __future__ import annotations
 
@@ -42,7 +44,9 @@ class Expectation:
 
 @dataclass(frozen=True)
 class Loss:
-    """Power of the best test less that of the printed one, at a stated alternative (negative: the printed one has more)."""
+    """Power of the best test less that of the printed one, at a stated alternative (negative: the printed
+    one has more).
+    """
 
     at: Exact
     best: Enclosure
@@ -58,7 +62,8 @@ class Consequences:
     expectations : tuple of Expectation
         At the limits.
     size : Size or None
-        The largest power over the whole null (of two parts the one that exceeds its level most); None when it stayed open.
+        The largest power over the whole null (of two parts the one that exceeds its level most); None when
+        it stayed open.
     level_kept : bool or None
         Whether no part of the null is rejected with more than its level; None when that stayed open.
     loss : Loss or None
@@ -80,13 +85,14 @@ class Consequences:
 
 def consequences(test: CriticalFunction, setting: Setting, *, with_loss: bool = True) -> Consequences:
     """Return what follows from a test, everything enclosed."""
+    curve = PowerCurve(test, setting)
     try:
-        parts: tuple[Size, ...] = sizes(test, setting)
+        parts: tuple[Size, ...] = sizes(curve)
     except UndecidedError:
         parts = ()
     kept = _kept(parts)
     worst = max(parts, key=lambda part: part.value.mid - _middle(part.level), default=None)
-    return Consequences(_expectations(test, setting), worst, kept, power_loss(test, setting) if with_loss else None)
+    return Consequences(_expectations(curve), worst, kept, power_loss(test, setting) if with_loss else None)
 
 
 def _middle(level: Exact) -> Fraction:
@@ -112,15 +118,15 @@ def _within(value: Enclosure, level: Exact) -> bool | None:
     return False if value.lower > bound.upper else None
 
 
-def _expectations(test: CriticalFunction, setting: Setting) -> tuple[Expectation, ...]:
-    problem = setting.problem
+def _expectations(curve: PowerCurve) -> tuple[Expectation, ...]:
+    setting, problem = curve.setting, curve.setting.problem
     found = [
-        Expectation(limit, level, test.power(law, PREC), "phi")
-        for limit, level, law in zip(problem.hypothesis.limits, problem.levels, setting.laws, strict=True)
+        Expectation(limit, level, curve.power(limit), "phi")
+        for limit, level in zip(problem.hypothesis.limits, problem.levels, strict=True)
     ]
     if setting.form is Form.POINT:
         with balls(PREC) as A:
-            moment = to_enclosure(covariance(test, setting.laws[0], A) * A.real(setting.family.scale))
+            moment = to_enclosure(covariance(curve.test, setting.laws[0], A) * A.real(setting.family.scale))
         found.append(Expectation(problem.hypothesis.limits[0], Fraction(0), moment, "(V - E V) phi"))
     return tuple(found)
 
@@ -128,7 +134,8 @@ def _expectations(test: CriticalFunction, setting: Setting) -> tuple[Expectation
 def power_loss(test: CriticalFunction, setting: Setting) -> Loss:
     """Return the largest loss of power over the stated alternatives.
 
-    These are, for an alternative between two limits, its middle; otherwise, on each side of the null, a value at which the best test has
+    These are, for an alternative between two limits, its middle; otherwise, on each side of the null, a
+    value at which the best test has
     a power of about one half.
     """
     best = setting.right()
@@ -163,7 +170,7 @@ def _alternatives(setting: Setting) -> list[Fraction]:
 
 
 def _half_power(setting: Setting, limit: Fraction, *, up: bool) -> Fraction:
-    """A short parameter value on one side of the null at which the best test has a power of about one half."""
+    """A short parameter value on one side of the null, where the best test has a power of about 1/2."""
     curve, inner, outer = PowerCurve(setting.right(), setting), limit, limit
     for k in range(STEPS):
         inner, outer = outer, towards_end(setting, limit, k, up=up)

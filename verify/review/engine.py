@@ -1,4 +1,6 @@
-"""Solve for the test of given laws and levels: what a slip changes is a law or a level, the machinery stays the same."""
+"""Solve for the test of given laws and levels: what a slip changes is a law or a level, the machinery stays
+the same.
+"""
 
 from __future__ import annotations
 
@@ -77,13 +79,15 @@ class TwoSided:
         return CriticalFunction("inside", other.c1, other.c2, complement(other.phi1), complement(other.phi2))
 
     def confirm(self, c1: int, c2: int, digits: int) -> CriticalFunction | None:
-        """Look at one pair of lattice points: a pair whose fractions certainly lie inside (0, 1) is the test, no search needed.
+        """Look at one pair of lattice points: a pair whose fractions certainly lie inside (0, 1) is the
+        test, no search needed.
 
         Returns None when it is not, or when it is a tie or too few digits are reached.
 
         Notes
         -----
-        Source: Lehmann and Romano 2005, Theorem 3.7.1: a critical function of this shape that satisfies the side conditions is
+        Source: Lehmann and Romano 2005, Theorem 3.7.1: a critical function of this shape that satisfies the
+        side conditions is
         the one.
         """
         low, high = self.laws[0].support

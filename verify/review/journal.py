@@ -1,4 +1,6 @@
-"""The journal of a long run: one line a row, in the order of the rows, so that an interrupted run goes on where it stopped."""
+"""The journal of a long run: one line a row, in the order of the rows, so that an interrupted run goes on
+where it stopped.
+"""
 
 from __future__ import annotations
 
@@ -33,7 +35,9 @@ class Journal:
         self._stream: IO[str] | None = None
 
     def _keep_whole_lines(self) -> int:
-        """Cut a journal to its whole lines and count its records; a journal of something else is begun anew."""
+        """Cut a journal to its whole lines and count its records; a journal of something else is begun
+        anew.
+        """
         end = count = 0
         if self.path.is_file():
             with open(self.path, "rb") as stream:

@@ -1,4 +1,6 @@
-"""JSON tables: a list of objects, or an object with such a list under "rows". Numbers keep the digits they are written with."""
+"""JSON tables: a list of objects, or an object with such a list under "rows". Numbers keep the digits they
+are written with.
+"""
 
 from __future__ import annotations
 

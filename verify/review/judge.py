@@ -15,7 +15,7 @@ from verify.review.consequences import Consequences, consequences
 from verify.review.matching import Comparison, compare
 from verify.review.printed import Match
 from verify.review.setting import Setting
-from verify.review.size import sizes
+from verify.review.size import PowerCurve, sizes
 from verify.review.slip_table import TRUNCATED, TRUNCATED_WORDS
 from verify.review.slips import find_slips
 from verify.review.verdict import Outcome, SlipFound, Verdict
@@ -23,8 +23,11 @@ from verify.solution.critical import CriticalFunction
 
 NO_SLIP = "No slip of the list reproduces every printed number."
 BY_MATCH = {
-    Match.SAME: Outcome.AGREES, Match.LAST: Outcome.LAST_DIGIT, Match.OTHER: Outcome.DIFFERS, Match.OPEN: Outcome.UNDECIDED,
-}  # fmt: skip
+    Match.SAME: Outcome.AGREES,
+    Match.LAST: Outcome.LAST_DIGIT,
+    Match.OTHER: Outcome.DIFFERS,
+    Match.OPEN: Outcome.UNDECIDED,
+}
 
 
 @dataclass(frozen=True)
@@ -71,16 +74,30 @@ def _judged(verdict: Verdict, setting: Setting, claim: Claim, options: Options) 
     result = consequences(read.critical, setting, with_loss=options.loss or outcome is not Outcome.AGREES)
     notes += [note for note in (found.note, *read.notes, *more, _rounding_note(outcome, result)) if note]
     return replace(
-        verdict, outcome=outcome, solution=setting.solution_of(right), correct=found.report, off=_off(found),
-        consequences=result, slips=slips, notes=tuple(notes),
-    )  # fmt: skip
+        verdict,
+        outcome=outcome,
+        solution=setting.solution_of(right),
+        correct=found.report,
+        off=_off(found),
+        consequences=result,
+        slips=slips,
+        notes=tuple(notes),
+    )
 
 
 def _as_read(claimed: Claimed, right: CriticalFunction, found: Comparison) -> CriticalFunction:
-    """The printed test of a claim that agrees: where the cutoffs were printed short, the right ones with the printed fractions."""
-    if not found.note and not claimed.notes:
-        return claimed.critical
-    return right
+    """The printed test of a claim that agrees.
+
+    Where its cutoffs were printed short, they are the right ones, with the printed fractions.
+    """
+    literal = claimed.critical
+    if not (found.note or claimed.notes) or right.phi1 is None or literal.phi1 is None:
+        return literal
+    near = all(
+        mine is not None and printed is not None and abs(mine.mid - printed.mid) < Fraction(1, 2)
+        for mine, printed in ((right.phi1, literal.phi1), (right.phi2, literal.phi2))
+    )
+    return replace(right, phi1=literal.phi1, phi2=literal.phi2) if near else right
 
 
 def _off(found: Comparison) -> tuple[str, ...]:
@@ -104,7 +121,8 @@ def _slips(
 def _rounding_note(outcome: Outcome, result: Consequences) -> str:
     if outcome is not Outcome.AGREES or result.level_kept is not False:
         return ""
-    return f"taken literally, the rounded numbers exceed the level by at most {_short(result.excess)}; that is rounding alone"
+    excess = _short(result.excess)
+    return f"taken literally, the rounded numbers exceed the level by at most {excess}; that is rounding alone"
 
 
 def _short(x: Fraction) -> str:
@@ -112,14 +130,20 @@ def _short(x: Fraction) -> str:
 
 
 def _without_fractions(verdict: Verdict, setting: Setting, claim: Claim, claimed: Claimed) -> Verdict:
-    """Judge a claim that does not randomise: is the level kept, and is a larger rejection region also within it?"""
+    """Judge a claim that does not randomise: is the level kept, and is a larger rejection region also
+    within it?
+    """
     right, result = setting.right(), consequences(claimed.critical, setting)
     larger = larger_within(claimed.critical, setting) if result.level_kept else ()
     found = compare(claim, setting.numbers.without_fractions(), setting.problem.n, setting.step)
     wrong_side = claimed.critical.region != right.region
     right_way = result.level_kept is True and not larger and not wrong_side
     outcome = Outcome.AGREES if right_way else Outcome.UNDECIDED if result.level_kept is None else Outcome.DIFFERS
-    notes = [*verdict.notes, *claimed.notes, "no fractions are printed: judged as a test that does not randomise"]
+    notes = [
+        *verdict.notes,
+        *claimed.notes,
+        "no fractions are printed: judged as a test that does not randomise",
+    ]
     notes.append(_level_note(result))
     notes += [f"the region that also rejects at {point} is within the level too" for point in larger]
     if result.level_kept and not larger and not wrong_side:
@@ -129,9 +153,15 @@ def _without_fractions(verdict: Verdict, setting: Setting, claim: Claim, claimed
         slips, more = find_slips(claim, setting)
         notes += [*more] if slips else [NO_SLIP, *more]
     return replace(
-        verdict, outcome=outcome, solution=setting.solution_of(right), correct=_full_report(claim, setting),
-        off=_off(found) if outcome is Outcome.DIFFERS else (), consequences=result, slips=slips, notes=tuple(notes),
-    )  # fmt: skip
+        verdict,
+        outcome=outcome,
+        solution=setting.solution_of(right),
+        correct=_full_report(claim, setting),
+        off=_off(found) if outcome is Outcome.DIFFERS else (),
+        consequences=result,
+        slips=slips,
+        notes=tuple(notes),
+    )
 
 
 def _full_report(claim: Claim, setting: Setting) -> dict[str, Enclosure]:
@@ -139,16 +169,22 @@ def _full_report(claim: Claim, setting: Setting) -> dict[str, Enclosure]:
 
 
 def _level_note(result: Consequences) -> str:
-    answer = {True: "the level is kept", False: "the level is not kept", None: "whether the level is kept stayed open"}
+    answer = {
+        True: "the level is kept",
+        False: "the level is not kept",
+        None: "whether the level is kept stayed open",
+    }
     return answer[result.level_kept]
 
 
 def larger_within(test: CriticalFunction, setting: Setting) -> tuple[str, ...]:
-    """Return the support points of V that could be added to the rejection region at its ends with the level still kept."""
+    """Return the support points of V that could be added to the rejection region at its ends with the level
+    still kept.
+    """
     found = []
     for grown, point in _grown(test, setting):
         try:
-            parts = sizes(grown, setting)
+            parts = sizes(PowerCurve(grown, setting))
         except UndecidedError:
             continue
         if all(isinstance(part.level, Fraction) and part.value.upper <= part.level for part in parts):
@@ -189,9 +225,18 @@ def _leaning(verdict: Verdict) -> Verdict:
     """A verdict is no firmer than the derivation that it leans on."""
     refuted = verdict.refuted_steps
     if refuted:
-        reasons = tuple(f"{step.name}: {step.statement}" + (f" ({step.witness})" if step.witness else "") for step in refuted)
+        reasons = tuple(
+            f"{step.name}: {step.statement}" + (f" ({step.witness})" if step.witness else "") for step in refuted
+        )
         return replace(verdict, outcome=Outcome.REFUTED, notes=(*reasons, *verdict.notes))
-    if verdict.derivation.grade is Grade.UNDECIDED and verdict.outcome in (Outcome.AGREES, Outcome.LAST_DIGIT):
+    if verdict.derivation.grade is Grade.UNDECIDED and verdict.outcome in (
+        Outcome.AGREES,
+        Outcome.LAST_DIGIT,
+    ):
         open_steps = ", ".join(step.name for step in verdict.derivation.steps if step.grade is Grade.UNDECIDED)
-        return replace(verdict, outcome=Outcome.UNDECIDED, notes=(f"the derivation stayed open at: {open_steps}", *verdict.notes))
+        return replace(
+            verdict,
+            outcome=Outcome.UNDECIDED,
+            notes=(f"the derivation stayed open at: {open_steps}", *verdict.notes),
+        )
     return verdict

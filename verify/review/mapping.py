@@ -57,15 +57,22 @@ def map_columns(table: Mapping[str, Any], header: Sequence[str], file: str) -> C
     for key in style:
         columns.pop(key, None)
     if not {"c", "c1", "c2"} & columns.keys():
-        raise InputError("no column of cutoffs", f'name them in [table] of the case file, e.g. c1 = "lower cutoff"; '
-                         f"the columns are {', '.join(filter(None, header))[:300]}", key="table", file=file)  # fmt: skip
+        raise InputError(
+            "no column of cutoffs",
+            f'name them in [table] of the case file, e.g. c1 = "lower cutoff"; '
+            f"the columns are {', '.join(filter(None, header))[:300]}",
+            key="table",
+            file=file,
+        )
     return ColumnMap(columns, style)
 
 
 def _place(name: str | int, header: Sequence[str], key: str) -> int:
     if isinstance(name, int):
         if not 1 <= name <= len(header):
-            raise InputError(f"there is no column {name}", f"the table has {len(header)} columns, counted from 1", key=key)
+            raise InputError(
+                f"there is no column {name}", f"the table has {len(header)} columns, counted from 1", key=key
+            )
         return name - 1
     if name not in header:
         raise InputError(f"there is no column {name[:60]!r}", f"the columns are {', '.join(header)[:300]}", key=key)

@@ -1,7 +1,10 @@
-"""The numbers that a normal approximation of the statistic would give, with and without continuity correction."""
+"""The numbers that a normal approximation of the statistic would give, with and without continuity
+correction.
+"""
 
 from __future__ import annotations
 
+import contextlib
 import math
 from collections.abc import Iterator
 from dataclasses import replace
@@ -33,12 +36,18 @@ def corrected(setting: Setting) -> Iterator[Numbers]:
     for critical in _windows(setting):
         for by in (Fraction(1, 2), Fraction(-1, 2)):
             c1, c2 = affine(critical.c1, Fraction(1), by), affine(critical.c2, Fraction(1), -by)
-            moved = replace(critical, c1=c1, c2=c2) if critical.region in ("inside", "outside") else replace(critical, c1=c1, c2=c1)
+            moved = (
+                replace(critical, c1=c1, c2=c2)
+                if critical.region in ("inside", "outside")
+                else replace(critical, c1=c1, c2=c1)
+            )
             yield from _printed(setting, moved)
 
 
 def _windows(setting: Setting) -> Iterator[CriticalFunction]:
     """Cutoffs on the scale of Y under normal laws with the means and variances of the statistic."""
+    if isinstance(setting.laws[0], Normal):
+        return  # nothing is approximated
     laws, levels = tuple(map(_normal, setting.laws)), setting.problem.levels
     form = setting.form
     if form is Form.ONE_SIDED:
@@ -47,16 +56,18 @@ def _windows(setting: Setting) -> Iterator[CriticalFunction]:
     low, high = (laws[0], laws[-1]) if setting.upward else (laws[-1], laws[0])
     outside = form is not Form.OUTSIDE
     first, last = (levels[0], levels[-1]) if setting.upward else (levels[-1], levels[0])
-    try:
+    with contextlib.suppress(UndecidedError, InputError):  # unequal variances need not have such a window
         yield TwoSided(laws, levels, outside).solve(DIGITS)
-    except (UndecidedError, InputError):
-        pass  # two normal laws of unequal variance need not have such a window
     for share in (first, half(first)) if outside else (first,):
         other = share if first == last else last
         if outside:
-            lower, upper = (solve_tail(law, a, above=up, digits=DIGITS) for law, a, up in ((low, share, False), (high, other, True)))
+            lower, upper = (
+                solve_tail(law, a, above=up, digits=DIGITS) for law, a, up in ((low, share, False), (high, other, True))
+            )
         else:
-            lower, upper = (solve_tail(law, a, above=up, digits=DIGITS) for law, a, up in ((low, share, True), (high, other, False)))
+            lower, upper = (
+                solve_tail(law, a, above=up, digits=DIGITS) for law, a, up in ((low, share, True), (high, other, False))
+            )
         yield joined(lower, upper, "outside" if outside else "inside")
 
 
@@ -76,7 +87,11 @@ def _printed(setting: Setting, critical: CriticalFunction) -> Iterator[Numbers]:
     yield _numbers(setting, critical)
     if setting.lattice and setting.laws[0].plain_points:
         c1, c2 = critical.c1.mid, critical.c2.mid
-        for first, second in ((round(c1), round(c2)), (math.ceil(c1), math.floor(c2)), (math.floor(c1), math.ceil(c2))):
+        for first, second in (
+            (round(c1), round(c2)),
+            (math.ceil(c1), math.floor(c2)),
+            (math.floor(c1), math.ceil(c2)),
+        ):
             if critical.region in ("above", "below"):
                 second = first
             yield _numbers(setting, replace(critical, c1=Enclosure.of(first), c2=Enclosure.of(second)))

@@ -33,7 +33,8 @@ def complement(x: Enclosure | None) -> Enclosure | None:
 
 @dataclass(frozen=True)
 class Numbers:
-    """Cutoffs and fractions of a test; a one-sided test has its cutoff and fraction in ``c1`` and ``gamma1`` alone.
+    """Cutoffs and fractions of a test; a one-sided test has its cutoff and fraction in ``c1`` and
+    ``gamma1`` alone.
 
     Attributes
     ----------

@@ -60,14 +60,15 @@ class Printed:
     def match(self, true: Enclosure) -> Match:
         """Compare with the true number, of which an enclosure is known.
 
-        Correct rounding (of a tie: either way) is SAME; less than one unit off, as truncation and rounding up leave it, is
+        Correct rounding (of a tie: either way) is SAME; less than one unit off, as truncation and rounding
+        up leave it, is
         LAST. A number written exactly must lie in the enclosure.
 
         Examples
         --------
         >>> third = Enclosure(Fraction(333333, 10**6), Fraction(333334, 10**6))
-        >>> read_printed("0.33").match(third).name, read_printed("0.34").match(third).name, read_printed("0.4").match(third).name
-        ('SAME', 'LAST', 'LAST')
+        >>> [read_printed(text).match(third).name for text in ("0.33", "0.34", "0.4", "0.5")]
+        ['SAME', 'LAST', 'LAST', 'OTHER']
         """
         if not isinstance(self.value, Fraction):
             return Match.OPEN

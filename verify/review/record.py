@@ -2,9 +2,10 @@
 
 from __future__ import annotations
 
+from fractions import Fraction
 from typing import Any
 
-from verify.arithmetic.enclosure import Enclosure
+from verify.arithmetic.enclosure import Enclosure, decimal_text
 from verify.problem.numbers import exact_text
 from verify.review.consequences import Consequences
 from verify.review.verdict import Outcome, Verdict
@@ -14,7 +15,9 @@ DIGITS = 15
 """Significant digits of consequences."""
 
 
-def record_of(verdict: Verdict, *, digits: int = DIGITS, row: int | None = None, name: str = "", case: str = "") -> Record:
+def record_of(
+    verdict: Verdict, *, digits: int = DIGITS, row: int | None = None, name: str = "", case: str = ""
+) -> Record:
     """Return the record of a verdict.
 
     Parameters
@@ -36,10 +39,12 @@ def record_of(verdict: Verdict, *, digits: int = DIGITS, row: int | None = None,
         "case": case,
         "verdict": verdict.verdict,
         "null": problem.hypothesis.text(parameter) if problem else None,
+        "parameter": parameter,
         "alpha": [exact_text(level) for level in problem.levels] if problem else [],
         "n": problem.n if problem else None,
         "claimed": {name: number.text for name, number in claim.numbers.items()} if claim else {},
         "correct": {name: value.strings(digits) for name, value in verdict.numbers.items()} or None,
+        "correct_reported": {name: value.strings(digits) for name, value in (verdict.correct or {}).items()},
         "correct_printed": verdict.correct_printed,
         "off": list(verdict.off),
         "consequences": _consequences(verdict.consequences),
@@ -57,7 +62,12 @@ def _consequences(result: Consequences | None) -> Record | None:
     size, loss = result.size, result.loss
     return {
         "expectations": [
-            {"of": e.of, "at": exact_text(e.at), "target": exact_text(e.target), "expectation": _ends(e.value)}
+            {
+                "of": e.of,
+                "at": exact_text(e.at),
+                "target": exact_text(e.target),
+                "expectation": _ends(e.value),
+            }
             for e in result.expectations
         ],
         "level_kept": result.level_kept,
@@ -75,8 +85,22 @@ def _ends(value: Enclosure) -> dict[str, str]:
 
 def unusable(row: int, name: str, case: str, message: str) -> Record:
     """Return the record of a row that could not be used; it is reported and passed over."""
-    empty: Record = {"null": None, "alpha": [], "n": None, "claimed": {}, "correct": None, "correct_printed": {}, "off": [],
-                     "consequences": None, "slips": [], "because": [], "notes": [], "binary": []}  # fmt: skip
+    empty: Record = {
+        "null": None,
+        "parameter": "",
+        "alpha": [],
+        "n": None,
+        "claimed": {},
+        "correct": None,
+        "correct_reported": {},
+        "correct_printed": {},
+        "off": [],
+        "consequences": None,
+        "slips": [],
+        "because": [],
+        "notes": [],
+        "binary": [],
+    }
     start = {"row": row, "id": name, "case": case, "verdict": Outcome.UNDECIDED.value}
     return {**start, **empty, "error": message}
 
@@ -90,11 +114,35 @@ def summary_of(counts: dict[str, int]) -> str:
     '4 rows: 3 agree, 1 differs'
     """
     total = sum(counts.values())
-    words = {"agrees": ("agrees", "agree"), "last digit": ("agrees but for the last digit", "agree but for the last digit"),
-             "differs": ("differs", "differ"), "refuted": ("is refuted", "are refuted"),
-             "undecided": ("is undecided", "are undecided"), "unusable": ("could not be used", "could not be used")}  # fmt: skip
+    words = {
+        "agrees": ("agrees", "agree"),
+        "last digit": ("agrees but for the last digit", "agree but for the last digit"),
+        "differs": ("differs", "differ"),
+        "refuted": ("is refuted", "are refuted"),
+        "undecided": ("is undecided", "are undecided"),
+        "unusable": ("could not be used", "could not be used"),
+    }
     parts = [f"{counts[key]} {forms[counts[key] != 1]}" for key, forms in words.items() if counts.get(key)]
     return f"{total} row{'' if total == 1 else 's'}: {', '.join(parts) or 'nothing'}"
+
+
+def plain(text: str) -> str:
+    """Write an exact number as a short decimal where it is one.
+
+    Examples
+    --------
+    >>> plain("61/5"), plain("1/3"), plain("sqrt(2)")
+    ('12.2', '1/3', 'sqrt(2)')
+    """
+    try:
+        value = Fraction(text)
+    except ValueError:
+        return text
+    rest = value.denominator
+    for prime in (2, 5):
+        while rest % prime == 0:
+            rest //= prime
+    return decimal_text(value, 40, up=False) if rest == 1 and len(text) < 30 else text
 
 
 def kind_of(record: Record) -> str:

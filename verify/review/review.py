@@ -49,11 +49,13 @@ def review(
     problem : Problem
         What the claim is about.
     c1, c2, gamma1, gamma2 : text or exact number, optional
-        Printed cutoffs and fractions of a two-sided test. The digits printed count: "0.320" claims more than "0.32".
+        Printed cutoffs and fractions of a two-sided test. The digits printed count: "0.320" claims more
+        than "0.32".
     c, gamma : text or exact number, optional
         The same of a one-sided test.
     style : Style, optional
-        How the numbers are reported; by default the cutoffs of the sum, with the fractions of rejection there.
+        How the numbers are reported; by default the cutoffs of the sum, with the fractions of rejection
+        there.
     claim : mapping, optional
         The colleague's own ``natural_parameter``, ``statistic`` and ``law``.
     derivation : Derivation, optional
@@ -75,7 +77,8 @@ def review(
     Examples
     --------
     >>> from verify import Density, Problem, review
-    >>> density = Density("exp(-lam)*lam**x/factorial(x)", variable="x", support="integers >= 0", parameter="lam", space="lam > 0")
+    >>> density = Density("exp(-lam)*lam**x/factorial(x)", variable="x", support="integers >= 0",
+    ...                   parameter="lam", space="lam > 0")
     >>> problem = Problem(density, null="lam <= 8 or lam >= 12", alpha="0.05", n=10)
     >>> verdict = review(problem, c1="94", c2="103", gamma1="0.515", gamma2="0.087")
     >>> verdict.verdict, [slip.name for slip in verdict.slips], verdict.correct_printed["gamma1"]
@@ -116,8 +119,10 @@ def derivation_verdict(derivation: Derivation, problem: Problem | None) -> Verdi
     if outcome is Outcome.AGREES and derivation.family is None:
         outcome = Outcome.UNDECIDED
     weak = [step for step in derivation.steps if step.grade in (Grade.REFUTED, Grade.UNDECIDED)]
-    notes = [f"{step.name}: {step.statement}" + (f" ({step.witness or step.reason})" if step.witness or step.reason else "")
-             for step in weak]  # fmt: skip
+    notes = [
+        f"{step.name}: {step.statement}" + (f" ({step.witness or step.reason})" if step.witness or step.reason else "")
+        for step in weak
+    ]
     if outcome is Outcome.AGREES:
         notes.append("no numbers are claimed: the derivation alone was judged")
     return Verdict(outcome, problem, None, derivation, notes=tuple(notes))

@@ -1,4 +1,6 @@
-"""Review rows: one derivation a density, the settings of recent problems kept, one bad row reported and passed over."""
+"""Review rows: one derivation a density, the settings of recent problems kept, one bad row reported and
+passed over.
+"""
 
 from __future__ import annotations
 
@@ -77,7 +79,9 @@ class Reviewer:
         case = self.case_named(words.get("case", ""))
         setting = self._setting(case, words)
         numbers = {
-            key: read_printed(words[key], key, binary=fields[key].kind is Kind.BINARY) for key in NUMBER_KEYS if key in words
+            key: read_printed(words[key], key, binary=fields[key].kind is Kind.BINARY)
+            for key in NUMBER_KEYS
+            if key in words
         }
         if not numbers:
             raise InputError("no cutoff is printed", "give c1 and c2, or c", key="row")
@@ -106,7 +110,9 @@ class Reviewer:
         return found
 
     def derivation(self, case: Case, problem: Problem | None = None) -> Derivation:
-        """Return the derivation of a case's density, made once; once for each problem where monotonicity is shown on its limits only."""
+        """Return the derivation of a case's density, made once; once for each problem where monotonicity is
+        shown on its limits only.
+        """
         claim = {key: text for key, text in case.claim.items() if key in DERIVATION_KEYS}
         base = problem or case.problem
         limits = case.problem.hypothesis.limits if case.problem else ()
@@ -143,7 +149,11 @@ def problem_of(case: Case, words: Mapping[str, str]) -> Problem:
     n = words.get("n") or (own.n if own else "")
     for key, value in (("null", null), ("alpha", alpha), ("n", n)):
         if value == "":
-            raise InputError(f"{key} is given neither in the row nor in [problem]", f"add a column or [problem] {key}", key=key)
+            raise InputError(
+                f"{key} is given neither in the row nor in [problem]",
+                f"add a column or [problem] {key}",
+                key=key,
+            )
     return Problem(case.density, null, alpha, n)  # type: ignore[arg-type]
 
 
@@ -155,7 +165,8 @@ def _levels(text: str) -> str | tuple[str, ...]:
 def _null_of_limits(case: Case, words: Mapping[str, str]) -> str:
     """Write the null from the columns of its limits, in the form of the case's own null.
 
-    Without a ``[problem]``, two limits are those of an outside null, or of an interval null where the region is accepted inside.
+    Without a ``[problem]``, two limits are those of an outside null, or of an interval null where the
+    region is accepted inside.
     """
     low, high, t = words.get("lower"), words.get("upper"), case.density.parameter
     if low is None and high is None:
@@ -172,7 +183,11 @@ def _null_of_limits(case: Case, words: Mapping[str, str]) -> str:
 def _one_limit(case: Case, limit: str, *, both: bool) -> str:
     problem, t = case.problem, case.density.parameter
     if problem is None or problem.hypothesis.form in (Form.OUTSIDE, Form.INTERVAL) or both:
-        raise InputError("one limit where the null has two, or two where it has one", "write the null out in a column null", key="null")
+        raise InputError(
+            "one limit where the null has two, or two where it has one",
+            "write the null out in a column null",
+            key="null",
+        )
     if problem.hypothesis.form is Form.POINT:
         return f"{t} = {limit}"
     return f"{t} <= {limit}" if problem.hypothesis.null_below else f"{t} >= {limit}"

@@ -60,7 +60,14 @@ def fingerprint(job: Job, table: Path, version: str) -> str:
     """Return a digest of everything that the records depend on."""
     with open(table, "rb") as stream:
         digest = hashlib.file_digest(stream, "sha256").hexdigest()
-    parts = (digest, job.case.sha256, sorted(job.columns.columns.items()), sorted(job.columns.style.items()), job.digits, version)
+    parts = (
+        digest,
+        job.case.sha256,
+        sorted(job.columns.columns.items()),
+        sorted(job.columns.style.items()),
+        job.digits,
+        version,
+    )
     return hashlib.sha256(repr(parts).encode()).hexdigest()
 
 

@@ -1,4 +1,6 @@
-"""What a row leans on: its problem, the derivation, the laws at the limits, and the right test, each found once."""
+"""What a row leans on: its problem, the derivation, the laws at the limits, and the right test, each found
+once.
+"""
 
 from __future__ import annotations
 
@@ -93,7 +95,9 @@ class Setting:
 
     @cached_property
     def step(self) -> Enclosure | None:
-        """Distance of neighbouring support points of V; None for a continuous law or one with uneven points."""
+        """Distance of neighbouring support points of V; None for a continuous law or one with uneven
+        points.
+        """
         if not self.lattice or not self.laws[0].plain_points:
             return None
         scale = self.family.scale
@@ -103,7 +107,9 @@ class Setting:
             return to_enclosure(abs(A.real(scale)))
 
     def solution_of(self, critical: CriticalFunction, n: int | None = None) -> Solution:
-        """Return a critical function on the scale of Y as a solution, which knows its numbers on the scale of V."""
+        """Return a critical function on the scale of Y as a solution, which knows its numbers on the scale
+        of V.
+        """
         problem = self.problem if n is None or n == self.problem.n else replace(self.problem, n=n)
         return Solution(problem, self.derivation, self.digits, critical, self.laws, (), (), 128)
 

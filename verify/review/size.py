@@ -1,16 +1,19 @@
 """The true size of a test: where over the whole null its power is largest, and how large, enclosed.
 
-The power of a test that rejects inside a window rises and then falls in the parameter; that of one that rejects outside falls and then
-rises (the kernel of an exponential family is totally positive, so it diminishes variation). So on each part of the null the largest
+The power of a test that rejects inside a window rises and then falls in the parameter; that of one that
+rejects outside falls and then
+rises (the kernel of an exponential family is totally positive, so it diminishes variation). So on each part
+of the null the largest
 power lies at an end of the part, or at the one peak when the peak lies inside: the sign of the derivative
 Cov(phi, V) at the ends says which. Nothing is assumed about where it is.
 
-Source: S. Karlin, Total Positivity (1968), chapter 1 (variation diminishing); Lehmann and Romano 2005, Theorem 3.7.1 (iii).
+Source: S. Karlin, Total Positivity (1968), chapter 1 (variation diminishing); Lehmann and Romano 2005,
+Theorem 3.7.1 (iii).
 """
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from fractions import Fraction
 from typing import Any
 
@@ -57,6 +60,7 @@ class PowerCurve:
 
     test: CriticalFunction
     setting: Setting
+    known: dict[int, Enclosure] = field(default_factory=dict)
 
     def law(self, t: Exact) -> Law:
         """Law of the sum of the Y's at a parameter value."""
@@ -67,7 +71,12 @@ class PowerCurve:
         return self.setting.family.at(t, self.setting.problem.n)
 
     def power(self, t: Exact) -> Enclosure:
-        """Probability of rejection."""
+        """Probability of rejection; at a limit it is computed once."""
+        for place, limit in enumerate(self.setting.problem.hypothesis.limits):
+            if limit is t:
+                if place not in self.known:
+                    self.known[place] = self.test.power(self.setting.laws[place], PREC)
+                return self.known[place]
         return self.test.power(self.law(t), PREC)
 
     def direction(self, t: Exact) -> int:
@@ -90,21 +99,24 @@ def covariance(test: CriticalFunction, law: Law, A: Balls) -> Any:
         total = law.shortfall(A, c1) if test.region == "above" else -law.shortfall(A, below)
     if test.phi1 is not None and test.phi2 is not None:
         mean = law.expectation(A)
-        ends = [(c1, test.phi1)] + ([(c2, test.phi2)] if test.c1 != test.c2 and test.region in ("inside", "outside") else [])
+        ends = [(c1, test.phi1)] + (
+            [(c2, test.phi2)] if test.c1 != test.c2 and test.region in ("inside", "outside") else []
+        )
         for c, phi in ends:
             total = total + A.interval(phi) * (law.value(A, c) - mean) * law.density(A, c)
     return total
 
 
-def sizes(test: CriticalFunction, setting: Setting) -> tuple[Size, ...]:
-    """Return the largest power over each part of the null.
+def sizes(curve: PowerCurve) -> tuple[Size, ...]:
+    """Return the largest power of a test over each part of the null.
 
     Raises
     ------
     UndecidedError
         When a peak could not be bracketed.
     """
-    curve, hypothesis, levels = PowerCurve(test, setting), setting.problem.hypothesis, setting.problem.levels
+    parts: list[tuple[Exact | None, Exact | None]]
+    hypothesis, levels = curve.setting.problem.hypothesis, curve.setting.problem.levels
     limits = hypothesis.limits
     match hypothesis.form:
         case Form.ONE_SIDED:
@@ -122,8 +134,10 @@ def _largest(curve: PowerCurve, low: Exact | None, high: Exact | None, level: Ex
     if curve.test.region == "inside":
         return _of_a_hill(curve, low, high, level)
     if curve.test.region == "outside":
-        return max((_at_end(curve, t, other, level, up=up) for t, other, up in ((low, high, False), (high, low, True))),
-                   key=lambda size: size.value.mid)  # fmt: skip
+        return max(
+            (_at_end(curve, t, other, level, up=up) for t, other, up in ((low, high, False), (high, low, True))),
+            key=lambda size: size.value.mid,
+        )
     rises = (curve.test.region == "above") == curve.setting.upward
     return _at_end(curve, high if rises else low, low if rises else high, level, up=rises)
 
@@ -145,7 +159,9 @@ def _at_end(curve: PowerCurve, t: Exact | None, other: Exact | None, level: Exac
 
 
 def _of_a_hill(curve: PowerCurve, low: Exact | None, high: Exact | None, level: Exact) -> Size:
-    """Power that rises, then falls: at an end where it still rises (or already falls), else at the peak inside."""
+    """Power that rises, then falls: at an end where it still rises (or already falls), else at the peak
+    inside.
+    """
     if high is not None and curve.direction(high) > 0:
         return Size(curve.power(high), exact_text(high), level)
     if low is not None and curve.direction(low) < 0:
@@ -155,13 +171,29 @@ def _of_a_hill(curve: PowerCurve, low: Exact | None, high: Exact | None, level: 
         middle = (rising + falling) / 2
         sign = curve.direction(middle)
         if sign == 0:
+            rising, falling = _around(curve, middle, rising, falling)
             break
         rising, falling = (middle, falling) if sign > 0 else (rising, middle)
     return Size(_peak(curve, rising, falling), f"about {_short((rising + falling) / 2)}", level)
 
 
+def _around(curve: PowerCurve, peak: Fraction, rising: Fraction, falling: Fraction) -> tuple[Fraction, Fraction]:
+    """Tighten a bracket around a value where the derivative cannot be told from 0, by certain signs beside
+    it.
+    """
+    width = min(peak - rising, falling - peak, key=abs)
+    for k in range(1, 2 * BISECTIONS):
+        near = (peak - width / 2**k, peak + width / 2**k)
+        if curve.direction(near[0]) <= 0 or curve.direction(near[1]) >= 0:
+            break
+        rising, falling = near
+    return rising, falling
+
+
 def _bracket(curve: PowerCurve, low: Exact | None, high: Exact | None) -> tuple[Fraction, Fraction]:
-    """Two parameter values between which the peak lies: the power rises at the first and falls at the second."""
+    """Two parameter values between which the peak lies: the power rises at the first and falls at the
+    second.
+    """
     anchor = high if high is not None else low
     if anchor is None:
         raise UndecidedError("a part of the null without a limit")
@@ -182,8 +214,10 @@ def _bracket(curve: PowerCurve, low: Exact | None, high: Exact | None) -> tuple[
 def _peak(curve: PowerCurve, a: Fraction, b: Fraction) -> Enclosure:
     """Enclose the largest power between two parameter values.
 
-    Between natural parameters x < y the power is at most max(power(x), power(y)) * exp((y - x) (E_y V - E_x V) / 4): by
-    Hoelder's inequality power(u x + (1-u) y) <= power(x)^u power(y)^(1-u) exp(J) with J = u A(x) + (1-u) A(y) - A(u x + (1-u) y), and
+    Between natural parameters x < y the power is at most max(power(x), power(y)) * exp((y - x) (E_y V - E_x
+    V) / 4): by
+    Hoelder's inequality power(u x + (1-u) y) <= power(x)^u power(y)^(1-u) exp(J) with J = u A(x) + (1-u)
+    A(y) - A(u x + (1-u) y), and
     the tangents of the convex A give J <= u (1-u) (y - x) (A'(y) - A'(x)).
     """
     ends = [curve.power(t) for t in (a, b)]

@@ -1,6 +1,8 @@
-"""The slips: for each, the numbers that would be printed under it. One small function a slip, one line each in the table.
+"""The slips: for each, the numbers that would be printed under it. One small function a slip, one line each
+in the table.
 
-A slip is found when it reproduces every printed number of a row, fractions included. To add one: write its function and add its line.
+A slip is found when it reproduces every printed number of a row, fractions included. To add one: write its
+function and add its line.
 """
 
 from __future__ import annotations
@@ -165,7 +167,7 @@ def _tails(setting: Setting, first, second, tails: tuple, outside: bool) -> Crit
 def rate_for_scale(setting: Setting, style: Style) -> Found:
     """The scale of a gamma law taken for its rate."""
     if isinstance(setting.laws[0], Gamma):
-        laws = tuple(Gamma(law.shape, 1 / law.rate) for law in setting.laws)
+        laws = tuple(Gamma(law.shape, 1 / law.rate) for law in setting.laws if isinstance(law, Gamma))
         yield setting.numbers_of(_solved(setting, laws, setting.problem.levels))
 
 
@@ -178,7 +180,9 @@ def mean_for_sum(setting: Setting, style: Style) -> Found:
 
 
 def first_limit_twice(setting: Setting, style: Style) -> Found:
-    """The first limit used for both: what the two conditions tend to as the second limit comes to the first."""
+    """The first limit used for both: what the two conditions tend to as the second limit comes to the
+    first.
+    """
     if len(setting.laws) == 2:
         first = TwoSided(setting.laws[:1], setting.problem.levels[:1], setting.form is not Form.OUTSIDE)
         yield setting.numbers_of(first.solve(setting.digits))
@@ -213,7 +217,10 @@ SLIPS: dict[str, tuple[Slip, str]] = {
     "fractions-complemented": (fractions_complemented, "1 - gamma printed for gamma"),
     "lower-off-by-one": (lower_off_by_one, "the lower cutoff one support point off"),
     "upper-off-by-one": (upper_off_by_one, "the upper cutoff one support point off"),
-    "closed-for-open": (closed_for_open, "the ends of the closed window printed for the open one, or the other way about"),
+    "closed-for-open": (
+        closed_for_open,
+        "the ends of the closed window printed for the open one, or the other way about",
+    ),
     "n-left-out": (n_left_out, "n left out: the law of one observation used for the sum"),
     "n-twice": (n_twice, "n counted twice"),
     "alpha-halved": (alpha_halved, "half the level"),
@@ -221,8 +228,14 @@ SLIPS: dict[str, tuple[Slip, str]] = {
     "equal-tails": (equal_tails, "equal tails in place of the two side conditions"),
     "two-one-sided": (two_one_sided, "two one-sided tests, each at the level, in place of the window"),
     "normal-approximation": (normal_approximation, "a normal approximation without continuity correction"),
-    "normal-approximation-corrected": (normal_approximation_corrected, "a normal approximation with continuity correction"),
-    "rate-for-scale": (rate_for_scale, "the scale of the gamma law taken for its rate, or the rate for the scale"),
+    "normal-approximation-corrected": (
+        normal_approximation_corrected,
+        "a normal approximation with continuity correction",
+    ),
+    "rate-for-scale": (
+        rate_for_scale,
+        "the scale of the gamma law taken for its rate, or the rate for the scale",
+    ),
     "mean-for-sum": (mean_for_sum, "the mean printed where the sum is meant, or the sum for the mean"),
     "first-limit-twice": (first_limit_twice, "the first limit used for both"),
     "region-complemented": (region_complemented, "null and alternative exchanged"),

@@ -1,4 +1,6 @@
-"""Which slips reproduce a row: each is tried by recomputation, with the same proven machinery as the right numbers."""
+"""Which slips reproduce a row: each is tried by recomputation, with the same proven machinery as the right
+numbers.
+"""
 
 from __future__ import annotations
 
@@ -13,7 +15,8 @@ from verify.review.verdict import SlipFound
 
 
 def find_slips(claim: Claim, setting: Setting) -> tuple[tuple[SlipFound, ...], tuple[str, ...]]:
-    """Return the slips that give every printed number of the claim, and the names of those that could not be computed.
+    """Return the slips that give every printed number of the claim, and the names of those that could not
+    be computed.
 
     Several may fit: all are returned. With no fractions printed a slip has to give the cutoffs only.
     """
@@ -35,7 +38,9 @@ def _fits(claim: Claim, numbers: Numbers, setting: Setting) -> bool:
 
 
 def _candidates(name: str, setting: Setting, style: Style) -> list[Numbers] | None:
-    """Numbers under one slip, remembered for later rows about the same problem; None when they could not be had."""
+    """Numbers under one slip, remembered for later rows about the same problem; None when they could not be
+    had.
+    """
     key = f"slip {name} {style.reported_as} {style.region}"
     if key not in setting.memory:
         try:

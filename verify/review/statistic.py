@@ -1,4 +1,6 @@
-"""A colleague's own statistic: the derived one times a factor plus a constant, which the printed cutoffs follow."""
+"""A colleague's own statistic: the derived one times a factor plus a constant, which the printed cutoffs
+follow.
+"""
 
 from __future__ import annotations
 
@@ -20,7 +22,8 @@ if TYPE_CHECKING:
 def styled(style: Style, said: Mapping[str, str], derivation: Derivation) -> tuple[Style, str]:
     """Return the style with the scale and shift of the claimed statistic, and a remark where there is one.
 
-    A statistic that is no affine function of the derived one is refuted in the ledger; the numbers are then read on the
+    A statistic that is no affine function of the derived one is refuted in the ledger; the numbers are then
+    read on the
     derived scale.
     """
     text = said.get("statistic", "")
@@ -34,7 +37,12 @@ def styled(style: Style, said: Mapping[str, str], derivation: Derivation) -> tup
         return style, "the cutoffs were read on the scale of the derived statistic"
     scale, shift = as_exact(found.scale), as_exact(found.shift)
     if not (isinstance(scale, Fraction) and isinstance(shift, Fraction)):
-        return style, "the claimed statistic has an irrational scale; the cutoffs were read on that of the derived one"
-    if (scale, shift) == (1, 0):
+        return (
+            style,
+            "the claimed statistic has an irrational scale; the cutoffs were read on that of the derived one",
+        )
+    if scale == 1 and shift == 0:
         return style, ""
-    return replace(style, scale=scale, shift=shift), f"the cutoffs were read on the scale of the claimed statistic {text}"
+    return replace(
+        style, scale=scale, shift=shift
+    ), f"the cutoffs were read on the scale of the claimed statistic {text}"

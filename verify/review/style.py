@@ -1,6 +1,7 @@
 """How a colleague reports a test: sum or mean, open or closed window, rejecting or accepting inside.
 
-A test can be written in several ways; every comparison goes through the same forward map, from the numbers of a test on the scale of
+A test can be written in several ways; every comparison goes through the same forward map, from the numbers
+of a test on the scale of
 V to the numbers that this style would print.
 """
 
@@ -32,12 +33,14 @@ class Style:
     reported_as : str
         "sum", "mean", or the number by which the sum is divided.
     window : {"open", "closed"} or None
-        Whether the printed ends belong to the window; None: as in the table of the forms (the ends belong to the side that is
+        Whether the printed ends belong to the window; None: as in the table of the forms (the ends belong
+        to the side that is
         not rejected). Fractions, where there are any, say themselves what happens at the ends.
     region : {"reject inside", "accept inside"} or None
         What happens inside; None: what the form of the null asks for.
     fractions : {"of rejection", "of acceptance"} or None
-        What the fractions are probabilities of; None: of acceptance where the region is said to be accepted, else of rejection.
+        What the fractions are probabilities of; None: of acceptance where the region is said to be
+        accepted, else of rejection.
     scale, shift : Fraction
         The statistic is reported as scale * T + shift for each observation.
     """
@@ -81,7 +84,12 @@ class Style:
         found = [(self._report(numbers, n), "")]
         if self.window == "closed" and step is not None and numbers.gamma1 is not None and numbers.two_sided:
             inner = self._core(numbers, step)
-            found.append((self._report(inner, n), "read with the fractions one support point outside the closed window"))
+            found.append(
+                (
+                    self._report(inner, n),
+                    "read with the fractions one support point outside the closed window",
+                )
+            )
         return found
 
     def _core(self, numbers: Numbers, step: Enclosure) -> Numbers:

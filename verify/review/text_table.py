@@ -6,6 +6,7 @@ import csv
 from collections.abc import Iterator, Sequence
 from functools import cached_property
 from pathlib import Path
+from typing import IO
 
 from verify.errors import InputError
 from verify.review.cells import Cell, Row, filled, unique_header
@@ -14,7 +15,8 @@ LONGEST_FIELD = 1_000_000
 
 
 class TextTable:
-    """A table of separated values in UTF-8; the separator of a .csv is the comma or the semicolon, whichever its header has more of.
+    """A table of separated values in UTF-8; the separator of a .csv is the comma or the semicolon,
+    whichever its header has more of.
 
     Parameters
     ----------
@@ -34,7 +36,7 @@ class TextTable:
             first = stream.readline()
         return ";" if first.count(";") > first.count(",") else ","
 
-    def _open(self):  # type: ignore[no-untyped-def]
+    def _open(self) -> IO[str]:
         return open(self.path, encoding="utf-8-sig", newline="")
 
     def _lines(self) -> Iterator[tuple[int, list[str]]]:
@@ -45,7 +47,9 @@ class TextTable:
             except UnicodeDecodeError:
                 raise InputError("the table is not UTF-8", "save it as UTF-8", file=str(self.path)) from None
             except csv.Error as error:
-                raise InputError(f"the table cannot be read: {error}", "save it again as CSV", file=str(self.path)) from None
+                raise InputError(
+                    f"the table cannot be read: {error}", "save it again as CSV", file=str(self.path)
+                ) from None
 
     @cached_property
     def header(self) -> tuple[str, ...]:

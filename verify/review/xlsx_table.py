@@ -1,4 +1,6 @@
-"""XLSX tables: text cells are exact, numeric cells are binary numbers and marked as such, formulas are refused where they are used."""
+"""XLSX tables: text cells are exact, numeric cells are binary numbers and marked as such, formulas are
+refused where they are used.
+"""
 
 from __future__ import annotations
 
@@ -32,13 +34,19 @@ class XlsxTable:
         try:
             from openpyxl import load_workbook
         except ImportError:
-            raise InputError("openpyxl is not installed", "pip install 'sidecheck[tables]', or save the table as CSV",
-                             file=str(self.path)) from None  # fmt: skip
+            raise InputError(
+                "openpyxl is not installed",
+                "pip install 'sidecheck[tables]', or save the table as CSV",
+                file=str(self.path),
+            ) from None
         try:
             return load_workbook(self.path, **how)
         except Exception as error:  # openpyxl raises many kinds for a broken file
-            raise InputError(f"the workbook cannot be read: {type(error).__name__}", "save it again as .xlsx",
-                             file=str(self.path)) from None  # fmt: skip
+            raise InputError(
+                f"the workbook cannot be read: {type(error).__name__}",
+                "save it again as .xlsx",
+                file=str(self.path),
+            ) from None
 
     def _lines(self) -> Iterator[tuple[int, list[Cell]]]:
         book = self._workbook(read_only=True)
@@ -68,7 +76,9 @@ class XlsxTable:
                 yield row
 
     def annotate(self, out: Path, names: Sequence[str], added: Iterator[tuple[int, Sequence[str]]]) -> None:
-        """Write a copy with columns added at the right of the first sheet; every original cell stays, formulas too."""
+        """Write a copy with columns added at the right of the first sheet; every original cell stays,
+        formulas too.
+        """
         book = self._workbook()
         sheet = book.worksheets[0]
         first = max(sheet.max_column, len(self.header)) + 1
