@@ -47,6 +47,8 @@ def test_claimed_numbers(path, rounds_to) -> None:
         assert not isinstance(target, int | float)
         assert condition.expectation.contains(target)
     claimed = {name: case.claim[name] for name in NUMBERS if name in case.claim}
+    expected = {name: case.expect[name] for name in NUMBERS if name in case.expect}
+    assert all(rounds_to(getattr(solution, name), text) for name, text in expected.items())
     round_off = [rounds_to(getattr(solution, name), text) for name, text in claimed.items()]
     cut_off = [rounds_to(getattr(solution, name), text, cut=True) for name, text in claimed.items()]
     verdicts = {"proved": not claimed, "agrees": all(round_off) and round_off != [],

@@ -35,9 +35,7 @@ def test_normal_mean(rounds_to, alpha, b, printed) -> None:
 
 
 def test_fractions_are_complements() -> None:
-    density = verify.Density(
-        "binomial(20, x)*p**x*(1 - p)**(20 - x)", "x", "integers 0..20", "p", "0 < p < 1"
-    )
+    density = verify.Density("binomial(20, x)*p**x*(1 - p)**(20 - x)", "x", "integers 0..20", "p", "0 < p < 1")
     inside = verify.solve(verify.Problem(density, null="p <= 1/4 or p >= 3/4", alpha="1/20", n=1))
     outside = verify.solve(verify.Problem(density, null="1/4 <= p <= 3/4", alpha="19/20", n=1))
     assert (outside.c1, outside.c2) == (inside.c1, inside.c2)
