@@ -1,0 +1,82 @@
+"""Inversion of transforms: against closed forms, against itself along other paths, against mpmath."""
+
+from fractions import Fraction as F
+from math import comb, factorial
+
+import mpmath
+import pytest
+
+from verify.arithmetic.ball import balls
+from verify.arithmetic.inversion import DENSITY, SHORTFALL, TAIL, Inversion
+from verify.arithmetic.transforms import Bessel, GammaRatio, Interval, Secant
+from verify.laws.gamma import Gamma
+
+
+def invert(A, transform, n, eta, v, c, kind, mean=0):  # type: ignore[no-untyped-def]
+    return Inversion(transform, n, A.real(eta), A.real(v), A.real(c), kind, A.real(mean)).value(A)
+
+
+def test_truncated_exponential_agrees_with_the_inclusion_exclusion_density() -> None:
+    """Density exp(-t v) (t / (1 - exp(-t)))**n sum (-1)**k C(n, k) (v - k)_+**(n-1) / (n-1)!: P. Hall's sum of uniforms, tilted."""
+    n, at, v = 5, F(2), F(5, 2)
+    with balls(128) as A:
+        spline = sum(F((-1) ** k * comb(n, k)) * (v - k) ** (n - 1) for k in range(3)) / factorial(n - 1)
+        front = (A.real(at) / (1 - A.exp(-A.real(at)))) ** n * A.exp(-A.real(at * v))
+        found = invert(A, Interval(F(0), F(1)), n, -at, v, F(0), DENSITY)
+        assert found.overlaps(front * A.real(spline))
+        assert found.rel_accuracy_bits() > 100
+
+
+@pytest.mark.parametrize("v", [F(-7), F(-2), F(-1, 2)])
+def test_power_law_observations_give_a_gamma_law(v: F) -> None:
+    """With b = a + 1 each -log X is exponential, so the sum is gamma: Gamma(z + 1) = z Gamma(z)."""
+    n, at = 4, F(3, 2)
+    closed = Gamma(F(n), at)
+    with balls(128) as A:
+        left, right = F(1, 2), F(3)
+        density = invert(A, GammaRatio(F(0), F(1)), n, at, v, F(1), DENSITY)
+        lower = invert(A, GammaRatio(F(0), F(1)), n, at, v, left, TAIL)
+        upper = invert(A, GammaRatio(F(0), F(1)), n, at, v, right, TAIL)
+        short = invert(A, GammaRatio(F(0), F(1)), n, at, v, left, SHORTFALL, -F(n) / at)
+        y = A.real(-v)
+        assert density.overlaps(closed.density(A, y))
+        assert lower.overlaps(closed.sf(A, y))
+        assert upper.overlaps(closed.cdf(A, y))
+        assert short.overlaps(closed.shortfall(A, y))
+        assert min(ball.rel_accuracy_bits() for ball in (density, lower, upper)) > 70
+
+
+@pytest.mark.parametrize("transform", [GammaRatio(F(0), F(5, 2)), Secant(1, F(1), F(0), F(0), F(-3, 2), F(3, 2))])
+def test_the_answer_does_not_depend_on_the_path(transform) -> None:  # type: ignore[no-untyped-def]
+    """A wrong bound shows itself here: paths far from the saddle point must give the same number."""
+    v, eta = (F(-3), F(3)) if isinstance(transform, GammaRatio) else (F(1), F(1, 2))
+    crossings = (F(1, 2), F(9, 4), F(4)) if eta == 3 else (F(-1), F(1, 8), F(1))
+    with balls(100) as A:
+        densities = [invert(A, transform, 3, eta, v, c, DENSITY) for c in crossings]
+        tails = [invert(A, transform, 3, eta, v, c, TAIL) for c in crossings]
+        assert all(first.overlaps(second) for first in densities for second in densities)
+        assert tails[0].overlaps(tails[1])
+        assert (tails[0] + tails[2] - 1).contains(0)
+
+
+def test_secant_of_two_observations_has_its_known_density() -> None:
+    """At t = 0 and r = 2 the density is v / (2 sinh(pi v / 2)): Morris 1982, section 4."""
+    with balls(120) as A:
+        found = invert(A, Secant(1, F(1), F(0), F(0), F(-3, 2), F(3, 2)), 2, F(0), F(3), F(1), DENSITY)
+        wanted = A.real(3) / (2 * (A.pi * A.real(F(3, 2))).sinh())
+        assert found.overlaps(wanted)
+        assert found.rel_accuracy_bits() > 90
+
+
+def test_von_mises_sum_agrees_with_a_real_integral_in_mpmath() -> None:
+    """The second route is the plain inversion integral up to 400, whose tail is below 1e-9."""
+    mpmath.mp.dps = 15
+
+    def part(u: float) -> float:
+        return mpmath.re((mpmath.besseli(0, 2 + 1j * u) / mpmath.besseli(0, 2)) ** 8 * mpmath.exp(-4.5j * u)) / mpmath.pi
+
+    wanted = mpmath.quad(part, mpmath.linspace(0, 60, 31))
+    with balls(70) as A:
+        found = invert(A, Bessel(), 8, F(2), F(9, 2), F(5, 4), DENSITY)
+    assert abs(float(found.mid()) - wanted) < 1e-6
+    assert found.rel_accuracy_bits() > 40
