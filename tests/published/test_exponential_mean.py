@@ -1,7 +1,7 @@
 """The unbiased test of an exponential mean, one observation, level 0.10.
 
 W. Fithian, lecture notes Stat 210A (UC Berkeley, 2024), testing with one parameter: the unbiased test puts the share
-0.080 below and has upper cutoff 3.9; the equal-tailed test (0.051, 3.0) has power alpha at t = 1/2 too, so it is biased.
+0.080 below and has upper cutoff 3.9; the equal-tailed test (0.051, 3.0) has power alpha at t = 1/2 too: it is biased.
 """
 
 from fractions import Fraction
