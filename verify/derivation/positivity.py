@@ -175,8 +175,10 @@ def _positive_function(expr: Expr, domain: Domain, depth: int) -> bool:
         return holds(argument) or holds(-argument)
     if isinstance(expr, sp.besselk):
         return holds(argument)
-    if isinstance(expr, sp.besseli):
-        return holds(argument) and holds(expr.args[0] + 1)
+    if isinstance(expr, sp.besseli):  # of whole order: I_-n = I_n (DLMF 10.27.1)
+        return holds(argument) and bool(expr.args[0].is_integer or holds(expr.args[0] + 1))
+    if isinstance(expr, sp.beta):
+        return all(map(holds, expr.args))
     if isinstance(expr, sp.zeta) and len(expr.args) == 1:
         return holds(argument - 1)
     if isinstance(expr, sp.cos):
