@@ -6,36 +6,118 @@ from collections.abc import Callable
 from typing import Any
 
 
-def density(formula: str, support: str, parameter: str, space: str, constants: dict[str, str] | None = None, kind: str = "formula") -> dict[str, Any]:
-    return {kind: formula, "variable": "x", "support": support, "parameter": parameter, "space": space, "constants": constants or {}}
+def density(
+    formula: str,
+    support: str,
+    parameter: str,
+    space: str,
+    constants: dict[str, str] | None = None,
+    kind: str = "formula",
+) -> dict[str, Any]:
+    return {
+        kind: formula,
+        "variable": "x",
+        "support": support,
+        "parameter": parameter,
+        "space": space,
+        "constants": constants or {},
+    }
 
 
 def law(name: str, scale: str = "1", shift: str = "0", **parameters: str) -> dict[str, Any]:
     return {"name": name, "parameters": parameters, "scale": scale, "shift": shift}
 
 
-POISSON = {"density": density("exp(-lam)*lam**x/factorial(x)", "integers >= 0", "lam", "lam > 0"), "Q": "log(lam)", "T": "x", "A": "lam",
-           "rising": True, "law": law("Poisson", mean="lam")}
-BINOMIAL = {"density": density("binomial(m, x)*p**x*(1-p)**(m-x)", "integers 0..m", "p", "0 < p < 1", {"m": "10"}), "Q": "log(p/(1-p))", "T": "x",
-            "A": "-m*log(1-p)", "rising": True, "law": law("binomial", trials="m", probability="p")}
-NEGATIVE = {"density": density("gamma(x+r)/(gamma(r)*factorial(x))*p**r*(1-p)**x", "integers >= 0", "p", "0 < p < 1", {"r": "5/2"}),
-            "Q": "log(1-p)", "T": "x", "A": "-r*log(p)", "rising": False, "law": law("negative binomial", size="r", probability="p")}
-GAMMA = {"density": density("b**a*x**(a-1)*exp(-b*x)/gamma(a)", "reals > 0", "b", "b > 0", {"a": "5/2"}), "Q": "-b", "T": "x", "A": "-a*log(b)",
-         "rising": False, "law": law("gamma", shape="a", rate="b")}
-POWER = {"density": density("th*x**(th-1)", "reals in (0, 1)", "th", "th > 0"), "Q": "th", "T": "log(x)", "A": "-log(th)", "rising": True,
-         "law": law("gamma", scale="-1", shape="1", rate="th")}
-NORMAL = {"density": density("exp(-(x-mu)**2/(2*s**2))/sqrt(2*pi*s**2)", "reals", "mu", "reals", {"s": "2/3"}), "Q": "mu/s**2", "T": "x",
-          "A": "mu**2/(2*s**2)", "rising": True, "law": law("normal", mean="mu", variance="s**2")}
-VARIANCE = {"density": density("exp(-(x-m)**2/(2*v))/sqrt(2*pi*v)", "reals", "v", "v > 0", {"m": "3"}), "Q": "-1/(2*v)", "T": "(x-m)**2",
-            "A": "log(v)/2", "rising": True, "law": law("gamma", shape="1/2", rate="1/(2*v)")}
-INVERSE = {"density": density("sqrt(k/(2*pi*x**3))*exp(-k*(x-m)**2/(2*m**2*x))", "reals > 0", "m", "m > 0", {"k": "7/2"}), "Q": "-k/(2*m**2)", "T": "x",
-           "A": "-k/m", "rising": True, "law": law("inverse Gaussian", mean="m", shape="k")}
-TABLE = {"density": density(["1", "5/2", "0", "7/3", "1"], "integers 0..4", "t", "t > 0", kind="weights"), "Q": "log(t)", "T": "x", "A": "", "rising": True,
-         "law": {**law("lattice", base="t"), "weights": ["1", "5/2", "0", "7/3", "1"], "first": 0}}
-KERNEL = {"density": density("binomial(4, x)*binomial(6, 5-x)*psi**x", "integers 0..4", "psi", "psi > 0", kind="kernel"), "Q": "log(psi)", "T": "x",
-          "A": "", "rising": True, "law": {**law("lattice", base="psi"), "weights": ["6", "60", "120", "60", "6"], "first": 0}}
-TRUNCATED = {"density": density("lam**x/(factorial(x)*(exp(lam)-1))", "integers >= 1", "lam", "lam > 0"), "Q": "log(lam)", "T": "x",
-             "A": "log(exp(lam)-1)", "rising": True, "law": law("lattice", base="lam", total="exp(lam)-1")}
+POISSON = {
+    "density": density("exp(-lam)*lam**x/factorial(x)", "integers >= 0", "lam", "lam > 0"),
+    "Q": "log(lam)",
+    "T": "x",
+    "A": "lam",
+    "rising": True,
+    "law": law("Poisson", mean="lam"),
+}
+BINOMIAL = {
+    "density": density("binomial(m, x)*p**x*(1-p)**(m-x)", "integers 0..m", "p", "0 < p < 1", {"m": "10"}),
+    "Q": "log(p/(1-p))",
+    "T": "x",
+    "A": "-m*log(1-p)",
+    "rising": True,
+    "law": law("binomial", trials="m", probability="p"),
+}
+NEGATIVE = {
+    "density": density(
+        "gamma(x+r)/(gamma(r)*factorial(x))*p**r*(1-p)**x", "integers >= 0", "p", "0 < p < 1", {"r": "5/2"}
+    ),
+    "Q": "log(1-p)",
+    "T": "x",
+    "A": "-r*log(p)",
+    "rising": False,
+    "law": law("negative binomial", size="r", probability="p"),
+}
+GAMMA = {
+    "density": density("b**a*x**(a-1)*exp(-b*x)/gamma(a)", "reals > 0", "b", "b > 0", {"a": "5/2"}),
+    "Q": "-b",
+    "T": "x",
+    "A": "-a*log(b)",
+    "rising": False,
+    "law": law("gamma", shape="a", rate="b"),
+}
+POWER = {
+    "density": density("th*x**(th-1)", "reals in (0, 1)", "th", "th > 0"),
+    "Q": "th",
+    "T": "log(x)",
+    "A": "-log(th)",
+    "rising": True,
+    "law": law("gamma", scale="-1", shape="1", rate="th"),
+}
+NORMAL = {
+    "density": density("exp(-(x-mu)**2/(2*s**2))/sqrt(2*pi*s**2)", "reals", "mu", "reals", {"s": "2/3"}),
+    "Q": "mu/s**2",
+    "T": "x",
+    "A": "mu**2/(2*s**2)",
+    "rising": True,
+    "law": law("normal", mean="mu", variance="s**2"),
+}
+VARIANCE = {
+    "density": density("exp(-(x-m)**2/(2*v))/sqrt(2*pi*v)", "reals", "v", "v > 0", {"m": "3"}),
+    "Q": "-1/(2*v)",
+    "T": "(x-m)**2",
+    "A": "log(v)/2",
+    "rising": True,
+    "law": law("gamma", shape="1/2", rate="1/(2*v)"),
+}
+INVERSE = {
+    "density": density("sqrt(k/(2*pi*x**3))*exp(-k*(x-m)**2/(2*m**2*x))", "reals > 0", "m", "m > 0", {"k": "7/2"}),
+    "Q": "-k/(2*m**2)",
+    "T": "x",
+    "A": "-k/m",
+    "rising": True,
+    "law": law("inverse Gaussian", mean="m", shape="k"),
+}
+TABLE = {
+    "density": density(["1", "5/2", "0", "7/3", "1"], "integers 0..4", "t", "t > 0", kind="weights"),
+    "Q": "log(t)",
+    "T": "x",
+    "A": "",
+    "rising": True,
+    "law": {**law("lattice", base="t"), "weights": ["1", "5/2", "0", "7/3", "1"], "first": 0},
+}
+KERNEL = {
+    "density": density("binomial(4, x)*binomial(6, 5-x)*psi**x", "integers 0..4", "psi", "psi > 0", kind="kernel"),
+    "Q": "log(psi)",
+    "T": "x",
+    "A": "",
+    "rising": True,
+    "law": {**law("lattice", base="psi"), "weights": ["6", "60", "120", "60", "6"], "first": 0},
+}
+TRUNCATED = {
+    "density": density("lam**x/(factorial(x)*(exp(lam)-1))", "integers >= 1", "lam", "lam > 0"),
+    "Q": "log(lam)",
+    "T": "x",
+    "A": "log(exp(lam)-1)",
+    "rising": True,
+    "law": law("lattice", base="lam", total="exp(lam)-1"),
+}
 
 
 def factorials(count: int) -> list[str]:
@@ -49,10 +131,24 @@ def factorials(count: int) -> list[str]:
 TRUNCATED["law"] |= {"weights": factorials(60), "first": 1}
 
 
-MEAN = {**TRUNCATED, "law": {**TRUNCATED["law"], "parameters": {"base": "lam", "total": "exp(lam)-1", "mean": "lam*exp(lam)/(exp(lam)-1)"}}}
+MEAN = {
+    **TRUNCATED,
+    "law": {
+        **TRUNCATED["law"],
+        "parameters": {"base": "lam", "total": "exp(lam)-1", "mean": "lam*exp(lam)/(exp(lam)-1)"},
+    },
+}
 
 
-def build(Case: Callable[..., Any], base: dict[str, Any], null: str, alpha: Any, n: int, start: tuple[Any, ...] = (), **more: Any) -> Any:
+def build(
+    Case: Callable[..., Any],
+    base: dict[str, Any],
+    null: str,
+    alpha: Any,
+    n: int,
+    start: tuple[Any, ...] = (),
+    **more: Any,
+) -> Any:
     case = Case(**base, null=null, alpha=[alpha] if isinstance(alpha, str) else alpha, n=n, **more)
     case.start = start
     return case
@@ -60,6 +156,7 @@ def build(Case: Callable[..., Any], base: dict[str, Any], null: str, alpha: Any,
 
 def all_cases(Case: Callable[..., Any]) -> dict[str, Any]:
     """Name -> case, unsolved."""
+
     def c(*arguments: Any, **more: Any) -> Any:
         return build(Case, *arguments, **more)
 

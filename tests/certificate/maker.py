@@ -1,6 +1,8 @@
+# ruff: noqa: E501 (tables of cases, one a line)
 """An independent producer of certificates for the tests: mpmath and fractions, no part of the package.
 
-Masses and distribution functions come from their textbook formulas; the tests are found by trying pairs of cutoffs (lattice) or by
+Masses and distribution functions come from their textbook formulas; the tests are found by trying pairs of cutoffs
+(lattice) or by
 mpmath's root finder (continuous); the numbers are rounded outward with Python's decimal module.
 """
 
@@ -39,7 +41,10 @@ def number(text: str, names: dict[str, Any]) -> Any:
     make = "M" if irrational else "F"
     code = re.sub(r"(?<![\w.])(\d+(?:\.\d+)?(?:e-?\d+)?)", rf"{make}('\1')", text)
     known = {"F": Fraction, "M": mp.mpf, "sqrt": mp.sqrt, "log": mp.log, "exp": mp.exp, "pi": mp.pi}
-    values = {k: mp.mpf(v.numerator) / v.denominator if irrational and isinstance(v, Fraction) else v for k, v in names.items()}
+    values = {
+        k: mp.mpf(v.numerator) / v.denominator if irrational and isinstance(v, Fraction) else v
+        for k, v in names.items()
+    }
     return eval(code, known | values)
 
 
@@ -49,7 +54,7 @@ def real(x: Any) -> Any:
 
 def decimals(x: Any, digits: int, up: bool) -> str:
     """Round to significant digits, up or down; plain from 1e-5 to below 1e21, else with an exponent."""
-    context = decimal.Context(digits, decimal.ROUND_CEILING if up else decimal.ROUND_FLOOR, -10**9, 10**9)
+    context = decimal.Context(digits, decimal.ROUND_CEILING if up else decimal.ROUND_FLOOR, -(10**9), 10**9)
     if isinstance(x, Fraction):
         value = context.divide(decimal.Decimal(x.numerator), decimal.Decimal(x.denominator))
     else:
@@ -72,13 +77,17 @@ def enclosure(low: Any, digits: int, high: Any = None) -> Any:
     high = low if high is None else high
     if isinstance(low, Fraction) and isinstance(high, Fraction) and low == high and len(str(low)) <= 60:
         return str(low)
-    if not isinstance(low, Fraction) or not isinstance(high, Fraction) or low == high == Fraction(decimals(low, digits, False)):
+    if (
+        not isinstance(low, Fraction)
+        or not isinstance(high, Fraction)
+        or low == high == Fraction(decimals(low, digits, False))
+    ):
         tiny = Fraction(1, 10 ** (digits + 25)) if isinstance(low, Fraction) else mp.mpf(10) ** -(digits + 25)
         low, high = low - abs(low) * tiny, high + abs(high) * tiny
     return {"lower": decimals(low, digits, False), "upper": decimals(high, digits, True)}
 
 
-# ---- laws ----------------------------------------------------------------------------------------------------------------
+# ---- laws ----------------------------------------------------------------------------------------------------------
 
 
 def poisson(mean: Any) -> dict[int, Any]:
@@ -102,7 +111,9 @@ def negative_binomial(size: Any, p: Any) -> dict[int, Any]:
     return out
 
 
-def table(weights: list[Fraction], first: int, theta: Any, n: int, total: Any = None, length: int = 0) -> dict[int, Any]:
+def table(
+    weights: list[Fraction], first: int, theta: Any, n: int, total: Any = None, length: int = 0
+) -> dict[int, Any]:
     poly: list[Any] = [Fraction(1)]
     for _ in range(n):
         new: list[Any] = [Fraction(0)] * (len(poly) + len(weights) - 1)
@@ -110,7 +121,12 @@ def table(weights: list[Fraction], first: int, theta: Any, n: int, total: Any = 
             for j, b in enumerate(weights):
                 new[i + j] += a * b
         poly = new[: length or len(new)]
-    raw = {n * first + j: c * theta ** (n * first + j) if isinstance(theta, Fraction) else real(c) * theta ** (n * first + j) for j, c in enumerate(poly)}
+    raw = {
+        n * first + j: c * theta ** (n * first + j)
+        if isinstance(theta, Fraction)
+        else real(c) * theta ** (n * first + j)
+        for j, c in enumerate(poly)
+    }
     whole = sum(raw.values()) if total is None else total**n
     return {k: v / whole for k, v in raw.items() if v}
 
@@ -118,7 +134,13 @@ def table(weights: list[Fraction], first: int, theta: Any, n: int, total: Any = 
 def gamma_law(shape: Any, rate: Any) -> dict[str, Any]:
     a, b = real(shape), real(rate)
     p = lambda s, y: mp.gammainc(s, 0, b * y, regularized=True) if y > 0 else mp.mpf(0)  # noqa: E731
-    return {"cdf": lambda y: p(a, y), "part": lambda y: a / b * p(a + 1, y), "mean": a / b, "sd": mp.sqrt(a) / b, "positive": True}
+    return {
+        "cdf": lambda y: p(a, y),
+        "part": lambda y: a / b * p(a + 1, y),
+        "mean": a / b,
+        "sd": mp.sqrt(a) / b,
+        "positive": True,
+    }
 
 
 def normal_law(mean: Any, variance: Any) -> dict[str, Any]:
@@ -138,23 +160,45 @@ def inverse_gaussian(mean: Any, shape: Any) -> dict[str, Any]:
     return {"cdf": cdf, "part": part, "mean": m, "sd": mp.sqrt(m**3 / lam), "positive": True}
 
 
-LATTICE = {"Poisson": (poisson, ("mean",), (1,)), "binomial": (binomial, ("trials", "probability"), (1, 0)),
-           "negative binomial": (negative_binomial, ("size", "probability"), (1, 0))}
-SMOOTH = {"gamma": (gamma_law, ("shape", "rate"), (1, 0)), "normal": (normal_law, ("mean", "variance"), (1, 1)),
-          "inverse Gaussian": (inverse_gaussian, ("mean", "shape"), (1, 2))}
+LATTICE = {
+    "Poisson": (poisson, ("mean",), (1,)),
+    "binomial": (binomial, ("trials", "probability"), (1, 0)),
+    "negative binomial": (negative_binomial, ("size", "probability"), (1, 0)),
+}
+SMOOTH = {
+    "gamma": (gamma_law, ("shape", "rate"), (1, 0)),
+    "normal": (normal_law, ("mean", "variance"), (1, 1)),
+    "inverse Gaussian": (inverse_gaussian, ("mean", "shape"), (1, 2)),
+}
 
 
 class Case:
     """One problem with what its certificate needs, in texts."""
 
-    def __init__(self, density: dict[str, Any], Q: str, T: str, A: str, rising: bool, law: dict[str, Any], null: str, alpha: list[str], n: int,
-                 digits: int = 20, tolerance: str = "1/1000000", breaks: dict[str, Any] | None = None) -> None:
+    def __init__(
+        self,
+        density: dict[str, Any],
+        Q: str,
+        T: str,
+        A: str,
+        rising: bool,
+        law: dict[str, Any],
+        null: str,
+        alpha: list[str],
+        n: int,
+        digits: int = 20,
+        tolerance: str = "1/1000000",
+        breaks: dict[str, Any] | None = None,
+    ) -> None:
         self.density, self.Q, self.T, self.A, self.rising, self.law = density, Q, T, A, rising, law
         self.null, self.alpha, self.n, self.digits, self.tolerance = null, alpha, n, digits, tolerance
         self.breaks = breaks or {}
         t = density["parameter"]
         if " or " in null:
-            self.form, self.bounds = "outside null", [re.split(r"[<>]= ", part)[1] for part in null.split(" or ")]
+            self.form, self.bounds = (
+                "outside null",
+                [re.split(r"[<>]= ", part)[1] for part in null.split(" or ")],
+            )
         elif null.count("<=") == 2:
             self.form, self.bounds = "interval null", [null.split(" <= ")[0], null.split(" <= ")[2]]
         elif re.match(rf"{t} = ", null):
@@ -178,7 +222,14 @@ class Case:
             values = {k: number(v, names) for k, v in self.law["parameters"].items()}
             total = real(values["total"]) if "total" in values else None
             base = real(values["base"]) if total is not None else values["base"]
-            return table([Fraction(w) for w in self.law["weights"]], self.law["first"], base, n, total, len(self.law["weights"]) if total is not None else 0)
+            return table(
+                [Fraction(w) for w in self.law["weights"]],
+                self.law["first"],
+                base,
+                n,
+                total,
+                len(self.law["weights"]) if total is not None else 0,
+            )
         make, keys, grows = (LATTICE | SMOOTH)[name]
         values = [number(self.law["parameters"][k], names) * n**g for k, g in zip(keys, grows, strict=True)]
         change = self.breaks.get("law")
@@ -209,7 +260,7 @@ def find_lattice(case: Case, laws: list[dict[int, Any]], alphas: list[Any], mean
             m = [(law[lo], law[hi]) for law in laws]
             if i == j:
                 d = [b / law[lo] for b, law in zip(betas, laws, strict=True)]
-                if len(laws) == 2 and d[0] == d[1] or len(laws) == 1 and mean == lo:
+                if (len(laws) == 2 and d[0] == d[1]) or (len(laws) == 1 and mean == lo):
                     return lo, hi, d[0], d[0]
                 continue
             if len(laws) == 2:
@@ -244,13 +295,13 @@ def find_smooth(case: Case, laws: list[dict[str, Any]], alphas: list[Any]) -> tu
         out = [law["cdf"](y) - law["cdf"](x) - b for law, b in zip(laws, betas, strict=True)]
         return out if len(laws) == 2 else [*out, first["part"](y) - first["part"](x) - betas[0] * first["mean"]]
 
-    low, high = case.breaks["start"] if "start" in case.breaks else case.start
+    low, high = case.start
     start = [mp.log(low), mp.log(high)] if first["positive"] else [mp.mpf(low), mp.mpf(high)]
     root = mp.findroot(equations, start, tol=mp.mpf(10) ** -180, maxsteps=60)
     return (mp.exp(root[0]), mp.exp(root[1])) if first["positive"] else (root[0], root[1])
 
 
-# ---- the certificate -----------------------------------------------------------------------------------------------------
+# ---- the certificate -----------------------------------------------------------------------------------------------
 
 
 def make(case: Case) -> dict[str, Any]:
@@ -264,28 +315,59 @@ def make(case: Case) -> dict[str, Any]:
     conditions = []
     for i, (at, of, target) in enumerate(targets):
         low, high = size(i, of)
-        conditions.append({"at": at, "of": of, "target": enclosure(target, case.digits), "expectation": enclosure(low, case.digits, high)})
+        conditions.append(
+            {
+                "at": at,
+                "of": of,
+                "target": enclosure(target, case.digits),
+                "expectation": enclosure(low, case.digits, high),
+            }
+        )
     rows, first = [], 0
     tolerance = Fraction(case.tolerance)
     for k in range(1, 10):
         texts = {key: fixed(v, k) for key, v in values.items()}
         found = [size(i, "phi", {key: Fraction(text) for key, text in texts.items()})[0] for i in range(len(limits))]
         pairs = [enclosure(e, min(case.digits, 15)) for e in found]
-        rows.append({"decimals": k, "numbers": texts, "expectations": pairs, "size": max(pairs, key=lambda p: upper(p))})
+        rows.append(
+            {
+                "decimals": k,
+                "numbers": texts,
+                "expectations": pairs,
+                "size": max(pairs, key=lambda p: upper(p)),
+            }
+        )
         if all(abs(real(e) - real(a)) < real(tolerance) for e, a in zip(found, alphas, strict=True)):
             first = k
             break
     predicate = {
-        "problem": {"title": "An invented case", "source": "", "density": case.density, "null": case.null, "alternative": alternative(case),
-                    "alpha": case.alpha, "n": case.n, "digits": case.digits},
-        "derivation": {"grade": "proved", "natural_parameter": case.Q, "statistic": case.T, "log_normaliser": case.A, "rising": case.rising,
-                       "steps": [{"name": s, "grade": "proved", "statement": f"the step {s}", "reason": ""} for s in STEPS]},
+        "problem": {
+            "title": "An invented case",
+            "source": "",
+            "density": case.density,
+            "null": case.null,
+            "alternative": alternative(case),
+            "alpha": case.alpha,
+            "n": case.n,
+            "digits": case.digits,
+        },
+        "derivation": {
+            "grade": "proved",
+            "natural_parameter": case.Q,
+            "statistic": case.T,
+            "log_normaliser": case.A,
+            "rising": case.rising,
+            "steps": [{"name": s, "grade": "proved", "statement": f"the step {s}", "reason": ""} for s in STEPS],
+        },
         "law": case.law,
         "test": {"form": case.form, "rejects": case.rejects, **test},
         "side_conditions": conditions,
         "rounding": {"tolerance": case.tolerance, "decimals": first, "rows": rows},
-        "double_precision": {"opinions": [opinion(values, test)], "flags": [{"kind": "few digits", "number": "c", "text": "an invented flag"}],
-                             "condition": "1e3"},
+        "double_precision": {
+            "opinions": [opinion(values, test)],
+            "flags": [{"kind": "few digits", "number": "c", "text": "an invented flag"}],
+            "condition": "1e3",
+        },
         "versions": {"sidecheck": "0.0", "build": "tests"},
         "issued": "",
         "assumptions": assumptions(case),
@@ -308,20 +390,31 @@ def assumptions(case: Case) -> list[str]:
     out = [f"theorem: {THEOREMS[case.form]}", *(f"derivation, step {s}: proved" for s in STEPS)]
     if "total" in case.law["parameters"]:
         out.append("the table of weights: its normaliser, and its mean where one is stated")
-    return [*out, "the double-precision numbers: they are reported by another library and compared here, not computed"]
+    return [
+        *out,
+        "the double-precision numbers: they are reported by another library and compared here, not computed",
+    ]
 
 
 def statement(predicate: dict[str, Any]) -> dict[str, Any]:
     predicate = {k: v for k, v in predicate.items() if k != "seal"}
     predicate["seal"] = hashlib.sha256(canonical(predicate)).hexdigest()
-    return {"_type": "https://in-toto.io/Statement/v1", "predicateType": "tag:sidecheck.invalid,2026:certificate/v1",
-            "subject": [{"name": "invented.case.toml", "digest": {"sha256": "0" * 64}}], "predicate": predicate}
+    return {
+        "_type": "https://in-toto.io/Statement/v1",
+        "predicateType": "tag:sidecheck.invalid,2026:certificate/v1",
+        "subject": [{"name": "invented.case.toml", "digest": {"sha256": "0" * 64}}],
+        "predicate": predicate,
+    }
 
 
 def alternative(case: Case) -> str:
     t, b = case.density["parameter"], case.bounds
-    return {"outside null": f"{b[0]} < {t} < {b[-1]}", "interval null": f"{t} < {b[0]} or {t} > {b[-1]}", "point null": f"{t} != {b[0]}",
-            "one-sided": f"{t} {'>' if case.below else '<'} {b[0]}"}[case.form]
+    return {
+        "outside null": f"{b[0]} < {t} < {b[-1]}",
+        "interval null": f"{t} < {b[0]} or {t} > {b[-1]}",
+        "point null": f"{t} != {b[0]}",
+        "one-sided": f"{t} {'>' if case.below else '<'} {b[0]}",
+    }[case.form]
 
 
 def upper(claim: Any) -> Fraction:
@@ -347,7 +440,11 @@ def lattice_numbers(case: Case, laws: list[Any], alphas: list[Any], scale: Any, 
         ys, gs, keys = [y], [g], [""]
     else:
         if case.form == "point null":
-            mean = sum(k * w for k, w in laws[0].items()) if "total" not in case.law["parameters"] else real(case.mean(case.limits()[0]))
+            mean = (
+                sum(k * w for k, w in laws[0].items())
+                if "total" not in case.law["parameters"]
+                else real(case.mean(case.limits()[0]))
+            )
         lo, hi, d1, d2 = find_lattice(case, laws, al, mean)
         ys, gs, keys = [lo, hi], [d if inner else 1 - d for d in (d1, d2)], ["1", "2"]
         if flip:
@@ -356,8 +453,15 @@ def lattice_numbers(case: Case, laws: list[Any], alphas: list[Any], scale: Any, 
     ys, gs = change(ys, gs) if change else (ys, gs)
     claims = [enclosure(g, case.digits) for g in gs]
     test = {f"y{k}": y for k, y in zip(keys, ys, strict=True)}
-    test |= {f"c{k}": enclosure(scale * y + shift if isinstance(scale, Fraction) and isinstance(shift, Fraction) else real(scale) * y + real(shift), case.digits)
-             for k, y in zip(keys, ys, strict=True)}
+    test |= {
+        f"c{k}": enclosure(
+            scale * y + shift
+            if isinstance(scale, Fraction) and isinstance(shift, Fraction)
+            else real(scale) * y + real(shift),
+            case.digits,
+        )
+        for k, y in zip(keys, ys, strict=True)
+    }
     test |= {f"gamma{k}": claim for k, claim in zip(keys, claims, strict=True)}
 
     def phi(k: int, values: list[Any]) -> Any:
@@ -381,14 +485,26 @@ def lattice_numbers(case: Case, laws: list[Any], alphas: list[Any], scale: Any, 
         if given is not None:
             e = expect(i, of, list(given.values()))
             return e, e
-        ends = [(Fraction(c), Fraction(c)) if isinstance(c, str) else (Fraction(c["lower"]), Fraction(c["upper"])) for c in claims]
+        ends = [
+            (Fraction(c), Fraction(c)) if isinstance(c, str) else (Fraction(c["lower"]), Fraction(c["upper"]))
+            for c in claims
+        ]
         flips = [of == "V phi" and scale * y + shift < 0 for y in ys]
-        return (expect(i, of, [e[f] for e, f in zip(ends, flips, strict=True)]), expect(i, of, [e[1 - f] for e, f in zip(ends, flips, strict=True)]))
+        return (
+            expect(i, of, [e[f] for e, f in zip(ends, flips, strict=True)]),
+            expect(i, of, [e[1 - f] for e, f in zip(ends, flips, strict=True)]),
+        )
 
     targets = [(b, "phi", number(a, {})) for b, a in zip(case.bounds, case.alpha, strict=True)]
     if case.form == "point null":
         whole = scale * mean + shift if isinstance(mean, Fraction) else real(scale) * real(mean) + real(shift)
-        targets.append((case.bounds[0], "V phi", alphas[0] * whole if isinstance(whole, Fraction) else real(alphas[0]) * whole))
+        targets.append(
+            (
+                case.bounds[0],
+                "V phi",
+                alphas[0] * whole if isinstance(whole, Fraction) else real(alphas[0]) * whole,
+            )
+        )
         rational_mean = case.law["name"] == "Poisson" and isinstance(case.limits()[0], Fraction)
         if rational_mean:
             names = {**case.names(), case.density["parameter"]: case.limits()[0]}

@@ -1,4 +1,7 @@
-"""The producer's certificates are accepted by the rechecker, reproducible, and equal the independent maker's numbers."""
+# ruff: noqa: E501 (tables of cases, one a line)
+"""The producer's certificates are accepted by the rechecker, reproducible, and equal the independent maker's
+numbers.
+"""
 
 from __future__ import annotations
 
@@ -34,18 +37,25 @@ def problem_of(case: Any) -> verify.Problem:
 @pytest.fixture(scope="module")
 def produced(certificates: dict[str, Any], maker: ModuleType) -> dict[str, Certificate]:
     cases = sys.modules["certificate_cases"].all_cases(maker.Case)
-    return {name: certify(problem_of(cases[name]), digits=cases[name].digits, tolerance=cases[name].tolerance) for name in NAMES}
+    return {
+        name: certify(problem_of(cases[name]), digits=cases[name].digits, tolerance=cases[name].tolerance)
+        for name in NAMES
+    }
 
 
 def test_the_rechecker_accepts_what_is_produced(produced: dict[str, Certificate]) -> None:
     assert {name: certificate.recheck().status for name, certificate in produced.items()} == dict.fromkeys(NAMES, 0)
 
 
-def test_the_numbers_are_those_of_the_independent_maker(produced: dict[str, Certificate], certificates: dict[str, Any]) -> None:
+def test_the_numbers_are_those_of_the_independent_maker(
+    produced: dict[str, Certificate], certificates: dict[str, Any]
+) -> None:
     for name, certificate in produced.items():
         other = certificates[name]["predicate"]
         assert certificate.predicate["test"] == other["test"], name
-        assert certificate.predicate["side_conditions"][0]["expectation"] == other["side_conditions"][0]["expectation"], name
+        assert (
+            certificate.predicate["side_conditions"][0]["expectation"] == other["side_conditions"][0]["expectation"]
+        ), name
 
 
 def test_the_bytes_are_canonical_and_have_the_form_of_the_schema(produced: dict[str, Certificate]) -> None:
@@ -55,13 +65,20 @@ def test_the_bytes_are_canonical_and_have_the_form_of_the_schema(produced: dict[
         jsonschema.Draft202012Validator(schema).validate(certificate.statement)
 
 
-def test_the_same_problem_gives_the_same_bytes(produced: dict[str, Certificate], certificates: dict[str, Any], maker: ModuleType) -> None:
+def test_the_same_problem_gives_the_same_bytes(
+    produced: dict[str, Certificate], certificates: dict[str, Any], maker: ModuleType
+) -> None:
     case = sys.modules["certificate_cases"].all_cases(maker.Case)["kernel interval"]
-    assert certify(problem_of(case), digits=case.digits, tolerance=case.tolerance).data == produced["kernel interval"].data
+    assert (
+        certify(problem_of(case), digits=case.digits, tolerance=case.tolerance).data == produced["kernel interval"].data
+    )
 
 
 def test_the_day_of_issue_comes_from_the_user_only(
-    produced: dict[str, Certificate], certificates: dict[str, Any], maker: ModuleType, monkeypatch: pytest.MonkeyPatch
+    produced: dict[str, Certificate],
+    certificates: dict[str, Any],
+    maker: ModuleType,
+    monkeypatch: pytest.MonkeyPatch,
 ) -> None:
     case = sys.modules["certificate_cases"].all_cases(maker.Case)["kernel interval"]
     monkeypatch.setenv("SOURCE_DATE_EPOCH", "86400")
@@ -74,14 +91,26 @@ def test_the_day_of_issue_comes_from_the_user_only(
 
 
 def test_a_density_that_is_none_gets_no_certificate() -> None:
-    density = verify.Density("2*exp(-lam)*lam**x/factorial(x)", variable="x", support="integers >= 0", parameter="lam", space="lam > 0")
+    density = verify.Density(
+        "2*exp(-lam)*lam**x/factorial(x)",
+        variable="x",
+        support="integers >= 0",
+        parameter="lam",
+        space="lam > 0",
+    )
     with pytest.raises(UndecidedError):
         certify(verify.Problem(density, null="lam = 5", alpha="0.05", n=1), digits=20)
 
 
 @pytest.mark.parametrize("tolerance", ["0", "-1", "1", "x", "1/0"])
 def test_a_bad_tolerance_is_refused(tolerance: str) -> None:
-    density = verify.Density("exp(-lam)*lam**x/factorial(x)", variable="x", support="integers >= 0", parameter="lam", space="lam > 0")
+    density = verify.Density(
+        "exp(-lam)*lam**x/factorial(x)",
+        variable="x",
+        support="integers >= 0",
+        parameter="lam",
+        space="lam > 0",
+    )
     with pytest.raises(InputError, match="tolerance"):
         certify(verify.Problem(density, null="lam = 5", alpha="0.05", n=1), digits=20, tolerance=tolerance)
 
@@ -97,7 +126,11 @@ def test_writing_is_careful(produced: dict[str, Certificate], tmp_path: Path) ->
     assert paths.json.read_bytes() == first.data
     second.write(tmp_path, force=True)
     assert paths.json.read_bytes() == second.data
-    assert sorted(path.name for path in tmp_path.iterdir()) == ["SHA256SUMS", "certificate.cert.json", "certificate.cert.txt"]
+    assert sorted(path.name for path in tmp_path.iterdir()) == [
+        "SHA256SUMS",
+        "certificate.cert.json",
+        "certificate.cert.txt",
+    ]
     assert verify.recheck(paths.json).accepted
     with pytest.raises(InputError, match="cannot be read"):
         verify.recheck(tmp_path / "missing.cert.json")
@@ -118,7 +151,9 @@ def test_a_signature_holds_for_these_bytes_only(produced: dict[str, Certificate]
     from cryptography.hazmat.primitives.asymmetric.ed25519 import Ed25519PrivateKey
 
     key = Ed25519PrivateKey.generate()
-    private = key.private_bytes(serialization.Encoding.PEM, serialization.PrivateFormat.PKCS8, serialization.NoEncryption())
+    private = key.private_bytes(
+        serialization.Encoding.PEM, serialization.PrivateFormat.PKCS8, serialization.NoEncryption()
+    )
     public = key.public_key().public_bytes(serialization.Encoding.PEM, serialization.PublicFormat.SubjectPublicKeyInfo)
     data, other = produced["poisson above"].data, produced["gamma point"].data
     envelope = sign(data, private)

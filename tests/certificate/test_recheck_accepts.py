@@ -24,13 +24,17 @@ def test_every_law_and_form_is_accepted(certificates: dict[str, Any], maker: Mod
         assert recheck.main([str(path)]) == 0, name
 
 
-def test_the_bytes_are_the_canonical_form_of_an_outside_library(certificates: dict[str, Any], maker: ModuleType) -> None:
+def test_the_bytes_are_the_canonical_form_of_an_outside_library(
+    certificates: dict[str, Any], maker: ModuleType
+) -> None:
     for certificate in certificates.values():
         data = maker.canonical(certificate)
         assert rfc8785.dumps(json.loads(data)) == data == recheck.canonical(json.loads(data))
 
 
-@pytest.mark.parametrize("name", ["poisson outside", "binomial outside", "gamma point", "normal interval", "truncated point"])
+@pytest.mark.parametrize(
+    "name", ["poisson outside", "binomial outside", "gamma point", "normal interval", "truncated point"]
+)
 def test_a_bare_interpreter_accepts(certificates: dict[str, Any], maker: ModuleType, tmp_path: Path, name: str) -> None:
     path = tmp_path / "one.cert.json"
     path.write_bytes(maker.canonical(certificates[name]))
@@ -41,12 +45,16 @@ def test_a_bare_interpreter_accepts(certificates: dict[str, Any], maker: ModuleT
 
 
 def test_one_atom_is_decided_exactly(certificates: dict[str, Any]) -> None:
-    """Binomial(10, p), p <= 2/5 or p >= 3/5: all the mass on 5, with fraction alpha / P(V = 5) (computed with fractions)."""
+    """Binomial(10, p), p <= 2/5 or p >= 3/5: all the mass on 5, with fraction alpha / P(V = 5) (computed with
+    fractions).
+    """
     test = certificates["binomial outside"]["predicate"]["test"]
     assert (test["c1"], test["c2"], test["gamma1"]) == ("5", "5", "1953125/7838208")
 
 
-def test_numbers_on_trust_have_a_status_of_their_own(certificates: dict[str, Any], maker: ModuleType, tmp_path: Path) -> None:
+def test_numbers_on_trust_have_a_status_of_their_own(
+    certificates: dict[str, Any], maker: ModuleType, tmp_path: Path
+) -> None:
     predicate = json.loads(json.dumps(certificates["gamma outside"]["predicate"]))
     predicate["law"] = {"name": "no closed form", "parameters": {}, "scale": "1", "shift": "0"}
     predicate["assumptions"].insert(-1, recheck.TRUSTED_NUMBERS)
@@ -56,7 +64,9 @@ def test_numbers_on_trust_have_a_status_of_their_own(certificates: dict[str, Any
 
 
 @pytest.mark.parametrize("name", ["gamma outside", "poisson interval"])
-def test_a_named_law_cannot_be_passed_off_as_trusted(certificates: dict[str, Any], maker: ModuleType, tmp_path: Path, name: str) -> None:
+def test_a_named_law_cannot_be_passed_off_as_trusted(
+    certificates: dict[str, Any], maker: ModuleType, tmp_path: Path, name: str
+) -> None:
     predicate = json.loads(json.dumps(certificates[name]["predicate"]))
     predicate["law"]["name"] = "Gamma"
     path = tmp_path / "trust.cert.json"

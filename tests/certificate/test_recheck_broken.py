@@ -1,3 +1,4 @@
+# ruff: noqa: E501 (tables of cases, one a line)
 """Deliberately broken producers: each breaks one thing, computes everything else consistently, and is rejected."""
 
 from __future__ import annotations
@@ -114,7 +115,9 @@ def test_a_broken_producer_is_rejected(maker: ModuleType, certificates: dict[str
     assert status(maker, certificate) in (1, 2)
 
 
-def test_a_cdf_with_the_wrong_sign(maker: ModuleType, certificates: dict[str, Any], monkeypatch: pytest.MonkeyPatch) -> None:
+def test_a_cdf_with_the_wrong_sign(
+    maker: ModuleType, certificates: dict[str, Any], monkeypatch: pytest.MonkeyPatch
+) -> None:
     """Phi(-z) for Phi(z): the one-sided cutoff comes out mirrored at the mean."""
     right = maker.SMOOTH["normal"]
 

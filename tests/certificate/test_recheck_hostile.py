@@ -1,3 +1,4 @@
+# ruff: noqa: E501 (tables of cases, one a line)
 """Hostile files end within the resource limit, with status 2 or 3 and without a traceback."""
 
 from __future__ import annotations

@@ -1,6 +1,8 @@
+# ruff: noqa: E501 (tables of cases, one a line)
 """Change every field of certificates of every law and form, one at a time: each change is rejected.
 
-The changed predicate gets a fresh seal, so that the checks themselves are tested and not only the seal. The changes that are
+The changed predicate gets a fresh seal, so that the checks themselves are tested and not only the seal. The
+changes that are
 accepted are listed in ``HARMLESS`` with the reason why the certificate then still states the truth.
 """
 
@@ -61,7 +63,13 @@ def memo(function: Callable[..., Any]) -> Callable[..., Any]:
     known: dict[Any, Any] = {}
 
     def remembering(*arguments: Any) -> Any:
-        key = (recheck.I.bits, *((x.a, x.b, x.e) if isinstance(x, recheck.I) else tuple(x) if isinstance(x, list) else x for x in arguments))
+        key = (
+            recheck.I.bits,
+            *(
+                (x.a, x.b, x.e) if isinstance(x, recheck.I) else tuple(x) if isinstance(x, list) else x
+                for x in arguments
+            ),
+        )
         if key not in known:
             known[key] = function(*arguments)
         return known[key]
@@ -139,7 +147,9 @@ def test_every_change_of_the_statement_is_rejected(maker: ModuleType, certificat
     (b'"n":10', b'"n":010'), (b'"n":10', b'"n":-Infinity'), (b'{"_type"', b'\xef\xbb\xbf{"_type"'), (b"lam", b"l\\u0061m"),
     (b'"lam', b'"\xff'), (b"}", b"}\n"),
 ])  # fmt: skip
-def test_other_bytes_are_malformed(maker: ModuleType, certificates: dict[str, Any], tmp_path: Path, old: bytes, new: bytes) -> None:
+def test_other_bytes_are_malformed(
+    maker: ModuleType, certificates: dict[str, Any], tmp_path: Path, old: bytes, new: bytes
+) -> None:
     data = maker.canonical(certificates["poisson outside"])
     changed = data.replace(old, new, 1) if old != b"}" else data + b"\n"
     assert changed != data

@@ -12,8 +12,10 @@ BOOK = "Lehmann and Romano 2005"
 THEOREMS = {
     Form.ONE_SIDED: f"{BOOK}, Corollary 3.4.1: a one-sided test of this form is uniformly most powerful",
     Form.OUTSIDE: f"{BOOK}, Theorem 3.7.1: a test of this form with these side conditions is uniformly most powerful",
-    Form.INTERVAL: f"{BOOK}, section 4.2: a test of this form with these side conditions is uniformly most powerful unbiased",
-    Form.POINT: f"{BOOK}, section 4.2: a test of this form with these side conditions is uniformly most powerful unbiased",
+    Form.INTERVAL: f"{BOOK}, section 4.2: a test of this form with these side conditions is "
+    "uniformly most powerful unbiased",
+    Form.POINT: f"{BOOK}, section 4.2: a test of this form with these side conditions is "
+    "uniformly most powerful unbiased",
 }
 NUMBERS = "the numbers: this law has no closed form here, and its quadrature or inversion is not replayed"
 

@@ -1,4 +1,6 @@
-"""From a solution to the predicate of a certificate: everything a reader, a page and the rechecker need, and nothing else."""
+"""From a solution to the predicate of a certificate: everything a reader, a page and the rechecker need, and
+nothing else.
+"""
 
 from __future__ import annotations
 
@@ -63,7 +65,13 @@ def canonical(value: Any) -> bytes:
 
 
 def build_statement(
-    solution: Solution, comparison: Comparison, subject: Subject, *, digits: int, tolerance: Fraction, issued: str = ""
+    solution: Solution,
+    comparison: Comparison,
+    subject: Subject,
+    *,
+    digits: int,
+    tolerance: Fraction,
+    issued: str = "",
 ) -> dict[str, Any]:
     """Return the in-toto Statement for a solution.
 
@@ -168,7 +176,9 @@ def _test(solution: Solution, digits: int) -> dict[str, Any]:
     return test
 
 
-def _conditions(solution: Solution, expectations: Expectations, test: dict[str, Any], digits: int) -> list[dict[str, Any]]:
+def _conditions(
+    solution: Solution, expectations: Expectations, test: dict[str, Any], digits: int
+) -> list[dict[str, Any]]:
     """Each side condition with its exact target and the range of the expectation over the numbers as printed."""
     problem = solution.problem
     pairs = zip(problem.hypothesis.limits, problem.levels, solution.laws, strict=True)
@@ -180,7 +190,14 @@ def _conditions(solution: Solution, expectations: Expectations, test: dict[str, 
     if solution.form is Form.POINT:
         limit, level, law = problem.hypothesis.limits[0], problem.levels[0], solution.laws[0]
         seen = span([expectations.v_phi(law, corner) for corner in corners(test)])
-        entries.append(_entry(limit, "V phi", claim(_product(level, expectations.mean(law), digits), digits), claim(seen, digits)))
+        entries.append(
+            _entry(
+                limit,
+                "V phi",
+                claim(_product(level, expectations.mean(law), digits), digits),
+                claim(seen, digits),
+            )
+        )
     return entries
 
 
@@ -216,5 +233,3 @@ def _product(level: Any, mean: Enclosure, digits: int) -> Enclosure:
 
     with balls(4 * digits + 256) as A:
         return to_enclosure(A.real(level) * A.interval(mean))
-
-

@@ -59,7 +59,9 @@ class Certificate:
         return Verdict(*_verdict(self.data, None))
 
     def write(self, directory: str | Path, *, force: bool = False) -> Paths:
-        """Write ``NAME.cert.json``, its twin ``NAME.cert.txt`` and the line in ``SHA256SUMS``; see ``write_certificate``."""
+        """Write ``NAME.cert.json``, its twin ``NAME.cert.txt`` and the line in ``SHA256SUMS``; see
+        ``write_certificate``.
+        """
         return write_certificate(self.name, self.data, Path(directory), force=force)
 
 
@@ -142,7 +144,9 @@ def certify(
     allowed = _tolerance(tolerance)
     solved = solution or solve(problem, digits=max(15, digits + GUARD_DIGITS))
     subject = Subject() if case is None else Subject(Path(case.path).name, case.sha256, case.title, case.source)
-    statement = build_statement(solved, compare(solved), subject, digits=digits, tolerance=allowed, issued=issued or _epoch())
+    statement = build_statement(
+        solved, compare(solved), subject, digits=digits, tolerance=allowed, issued=issued or _epoch()
+    )
     return Certificate("certificate" if case is None else case.name, statement, canonical(statement))
 
 

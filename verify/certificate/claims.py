@@ -14,9 +14,11 @@ Claim = str | dict[str, str]
 
 
 def claim(value: Enclosure, digits: int) -> Claim:
-    """Write a number: the fraction, or ``{"lower": ..., "upper": ...}`` with so many significant digits, rounded outward.
+    """Write a number: the fraction, or ``{"lower": ..., "upper": ...}`` with so many significant digits, rounded
+    outward.
 
-    A number on the decimal grid that is not written as a fraction gets one unit on either side, so that the two ends differ.
+    A number on the decimal grid that is not written as a fraction gets one unit on either side, so that the two
+    ends differ.
 
     Examples
     --------

@@ -51,7 +51,9 @@ class Expectations:
         """E[V phi] = scale E[Y phi] + shift E phi."""
         with balls(self.prec) as A:
             first = self._sum(A, law, values, moment=True)
-            return to_enclosure(A.real(self.scale) * first + A.real(self.shift) * self._sum(A, law, values, moment=False))
+            return to_enclosure(
+                A.real(self.scale) * first + A.real(self.shift) * self._sum(A, law, values, moment=False)
+            )
 
     def mean(self, law: Law) -> Enclosure:
         """E[V], exactly where it is rational."""

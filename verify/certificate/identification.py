@@ -25,7 +25,12 @@ def versions() -> dict[str, str]:
     """Name -> version of this program, its build, Python, and the engines."""
     from verify import __version__
 
-    return {"sidecheck": __version__, "build": build(), "python": platform.python_version(), **{name: _version(name) for name in ENGINES}}
+    return {
+        "sidecheck": __version__,
+        "build": build(),
+        "python": platform.python_version(),
+        **{name: _version(name) for name in ENGINES},
+    }
 
 
 def _version(name: str) -> str:

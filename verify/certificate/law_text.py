@@ -32,7 +32,9 @@ def law_text(solution: Solution) -> dict[str, Any]:
 
 
 def _table(solution: Solution) -> dict[str, Any] | None:
-    """Weights w_y with P(Y = y) = w_y base(t)**y / total(t); None where they are not rational or the base is not plain."""
+    """Weights w_y with P(Y = y) = w_y base(t)**y / total(t); None where they are not rational or the base is not
+    plain.
+    """
     one: Any = getattr(solution.family.law, "one", None)
     base = _base(solution)
     limit = solution.problem.hypothesis.limits[0]

@@ -20,7 +20,10 @@ def double_precision(comparison: Comparison, test: dict[str, Any]) -> dict[str, 
     opinions = []
     for opinion in comparison.opinions:
         said = {name: opinion.numbers[name] for name in opinion.numbers if name in test}
-        numbers = {name: None if text is None or not math.isfinite(float(text)) else spelled(Decimal(text)) for name, text in said.items()}
+        numbers = {
+            name: None if text is None or not math.isfinite(float(text)) else spelled(Decimal(text))
+            for name, text in said.items()
+        }
         digits = {name: agreement(Fraction(text), test[name]) for name, text in numbers.items() if text is not None}
         note = "; ".join(part for part in (opinion.note, opinion.failure) if part)
         opinions.append({"route": opinion.route, "numbers": numbers, "digits": digits, "note": note})

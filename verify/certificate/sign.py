@@ -38,9 +38,13 @@ def sign(data: bytes, private_key_pem: bytes, password: bytes | None = None) -> 
     try:
         key: Ed25519PrivateKey = serialization.load_pem_private_key(private_key_pem, password)
     except (ValueError, TypeError) as error:
-        raise InputError(f"the private key cannot be read: {error}", "give an Ed25519 key in PEM form", key="key") from None
+        raise InputError(
+            f"the private key cannot be read: {error}", "give an Ed25519 key in PEM form", key="key"
+        ) from None
     if not isinstance(key, ed25519.Ed25519PrivateKey):
-        raise InputError("the private key is not Ed25519", "make one with: openssl genpkey -algorithm ed25519", key="key")
+        raise InputError(
+            "the private key is not Ed25519", "make one with: openssl genpkey -algorithm ed25519", key="key"
+        )
     signature = key.sign(pre_authentication_encoding(data))
     envelope = {
         "payloadType": PAYLOAD_TYPE,
@@ -64,7 +68,9 @@ def verify_signature(envelope: bytes, data: bytes, public_key_pem: bytes) -> boo
     try:
         key: Ed25519PublicKey = serialization.load_pem_public_key(public_key_pem)
     except ValueError as error:
-        raise InputError(f"the public key cannot be read: {error}", "give an Ed25519 key in PEM form", key="key") from None
+        raise InputError(
+            f"the public key cannot be read: {error}", "give an Ed25519 key in PEM form", key="key"
+        ) from None
     if not isinstance(key, ed25519.Ed25519PublicKey):
         raise InputError("the public key is not Ed25519", "give the key of the signer", key="key")
     payload, signatures = _open(envelope)
@@ -94,7 +100,9 @@ def _open(envelope: bytes) -> tuple[bytes, list[bytes]]:
         payload = base64.b64decode(content["payload"], validate=True)
         return payload, [base64.b64decode(entry["sig"], validate=True) for entry in content["signatures"]]
     except (ValueError, KeyError, TypeError, binascii.Error) as error:
-        raise InputError(f"the signature file cannot be read: {error}", "give NAME.cert.dsse.json", key="signature") from None
+        raise InputError(
+            f"the signature file cannot be read: {error}", "give NAME.cert.dsse.json", key="signature"
+        ) from None
 
 
 def _library() -> tuple[Any, Any]:

@@ -86,12 +86,18 @@ def write_files(files: Mapping[str, bytes], directory: Path, *, force: bool = Fa
             write_atomically(directory / name, data)
         write_atomically(directory / SUMS, _sums(directory, files))
     except OSError as error:
-        raise InputError(f"cannot write: {error.strerror or error}", "give a folder that can be written", file=str(directory)) from None
+        raise InputError(
+            f"cannot write: {error.strerror or error}",
+            "give a folder that can be written",
+            file=str(directory),
+        ) from None
 
 
 def _require_free(path: Path, data: bytes, force: bool) -> None:
     if path.exists() and not force and path.read_bytes() != data:
-        raise InputError("the file exists and differs", "use --force to overwrite it, or another folder", file=str(path))
+        raise InputError(
+            "the file exists and differs", "use --force to overwrite it, or another folder", file=str(path)
+        )
 
 
 def _sums(directory: Path, files: Mapping[str, bytes]) -> bytes:
