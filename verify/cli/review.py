@@ -21,7 +21,7 @@ if TYPE_CHECKING:
     from verify.review.journal import Journal
     from verify.review.run import Job
 
-EXAMPLE = "sidecheck review casebook/demo/beads.case.toml casebook/demo/beads.csv -o reviewed.csv --memo memo.html"
+EXAMPLE = "sidecheck review casebook/demo/claims.case.toml casebook/demo/claims.csv -o reviewed.csv --memo memo.html"
 ROW_DIGITS, CLAIM_DIGITS = 20, 50
 Records = Callable[[], Iterable[dict[str, Any]]]
 

@@ -53,8 +53,15 @@ def _loss(result: Record, parameter: str) -> str:
 
 
 def sentence(text: str) -> str:
-    """Return a note as a sentence."""
-    return text[:1].upper() + text[1:] + ("" if text.endswith(".") else ".")
+    """Return a note as a sentence; a formula at its head keeps its small letter.
+
+    Examples
+    --------
+    >>> sentence("the level is kept"), sentence("f = h(x) exp(Q T - A)")
+    ('The level is kept.', 'f = h(x) exp(Q T - A).')
+    """
+    head = text[:1].upper() if text[1:2].isalpha() else text[:1]
+    return head + text[1:] + ("" if text.endswith(".") else ".")
 
 
 def between(ends: dict[str, str], digits: int = 8) -> str:

@@ -25,13 +25,13 @@ class Claimed:
 
     Attributes
     ----------
-    critical : CriticalFunction
-        The test on the scale of Y.
+    critical : CriticalFunction or None
+        The test on the scale of Y; None when no cutoff lies inside the support of a continuous law.
     notes : tuple of str
         What had to be decided to read it.
     """
 
-    critical: CriticalFunction
+    critical: CriticalFunction | None
     notes: tuple[str, ...] = ()
 
 
@@ -39,8 +39,7 @@ def claimed_test(claim: Claim, setting: Setting) -> Claimed:
     """Read the printed numbers as a test.
 
     A lattice cutoff printed as a short mean may fit several support points: the nearest to the printed
-    number is taken. Ends in
-    the wrong order are put in order. Both are said in the notes.
+    number is taken. Ends in the wrong order are put in order. Both are said in the notes.
 
     Raises
     ------
@@ -62,7 +61,35 @@ def claimed_test(claim: Claim, setting: Setting) -> Claimed:
         if first[0] > second[0]:
             notes.append("the window holds no support point")
             first = second = (second[0], Enclosure.of(0 if region == "inside" else 1))
+    else:
+        return Claimed(_on_support(region, first[0], second[0], setting, notes), tuple(notes))
     return Claimed(CriticalFunction(region, first[0], second[0], first[1], second[1]), tuple(notes))
+
+
+def _on_support(
+    region: Region, c1: Enclosure, c2: Enclosure, setting: Setting, notes: list[str]
+) -> CriticalFunction | None:
+    """The test of a continuous law; an end that lies outside the support leaves a one-sided test."""
+    below, above = _off_support(c1, setting), _off_support(c2, setting)
+    if not (below or above):
+        return CriticalFunction(region, c1, c2, None, None)
+    notes.append("a cutoff lies outside the support of the statistic")
+    if below and above:
+        return None
+    kept, rest = (c2, "below") if below else (c1, "above")
+    if region == "outside":
+        rest = "above" if below else "below"
+    side: Region = "above" if rest == "above" else "below"
+    return CriticalFunction(side, kept, kept, None, None)
+
+
+def _off_support(c: Enclosure, setting: Setting) -> bool:
+    """Whether a cutoff of a continuous law is not certainly inside its support."""
+    low, high = setting.laws[0].support
+    with balls(PREC) as A:
+        place = A.interval(c)
+        inside = (low is None or place > A.real(low)) and (high is None or place < A.real(high))
+    return not inside
 
 
 def _rejects_inside(claim: Claim, setting: Setting) -> bool:
@@ -76,6 +103,8 @@ def _one_sided(claim: Claim, setting: Setting, notes: list[str]) -> Claimed:
     c, phi = _end(claim, "", setting, "above" if above else "below", notes)
     if isinstance(c, Fraction):
         c, phi = (math.floor(c) if above else math.ceil(c)), Enclosure.of(0)
+    if isinstance(c, Enclosure) and _off_support(c, setting):
+        return Claimed(None, (*notes, "the cutoff lies outside the support of the statistic"))
     return Claimed(CriticalFunction("above" if above else "below", c, c, phi, phi), tuple(notes))
 
 

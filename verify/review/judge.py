@@ -10,7 +10,7 @@ from verify.derivation.ledger import Grade
 from verify.errors import UndecidedError
 from verify.problem.hypothesis import Form
 from verify.review.claim import Claim
-from verify.review.claimed import Claimed, claimed_test
+from verify.review.claimed import claimed_test
 from verify.review.consequences import Consequences, consequences
 from verify.review.matching import Comparison, compare
 from verify.review.printed import Match
@@ -64,15 +64,18 @@ def _judged(verdict: Verdict, setting: Setting, claim: Claim, options: Options) 
         notes.append("the statistic is continuous: fractions at the cutoffs have no effect and were not judged")
         claim = claim.without_fractions()
     claimed = claimed_test(claim, setting)
-    if setting.lattice and not claim.fractions:
-        return _without_fractions(replace(verdict, notes=tuple(notes)), setting, claim, claimed)
+    if setting.lattice and not claim.fractions and claimed.critical is not None:
+        remarked = replace(verdict, notes=(*notes, *claimed.notes))
+        return _without_fractions(remarked, setting, claim, claimed.critical)
     right = setting.right(claimed.critical)
     found = compare(claim, setting.numbers, setting.problem.n, setting.step)
     outcome = BY_MATCH[found.match]
     slips, more = _slips(claim, setting, found, outcome)
-    read = claimed if outcome is not Outcome.AGREES else Claimed(_as_read(claimed, right, found))
-    result = consequences(read.critical, setting, with_loss=options.loss or outcome is not Outcome.AGREES)
-    notes += [note for note in (found.note, *read.notes, *more, _rounding_note(outcome, result)) if note]
+    agreed = outcome is Outcome.AGREES
+    read = _as_read(claimed.critical, right, found, claimed.notes) if agreed else claimed.critical
+    result = None if read is None else consequences(read, setting, with_loss=options.loss or not agreed)
+    remarks = () if agreed else claimed.notes
+    notes += [note for note in (found.note, *remarks, *more, _rounding_note(outcome, result)) if note]
     return replace(
         verdict,
         outcome=outcome,
@@ -85,13 +88,14 @@ def _judged(verdict: Verdict, setting: Setting, claim: Claim, options: Options) 
     )
 
 
-def _as_read(claimed: Claimed, right: CriticalFunction, found: Comparison) -> CriticalFunction:
+def _as_read(
+    literal: CriticalFunction | None, right: CriticalFunction, found: Comparison, notes: tuple[str, ...]
+) -> CriticalFunction | None:
     """The printed test of a claim that agrees.
 
     Where its cutoffs were printed short, they are the right ones, with the printed fractions.
     """
-    literal = claimed.critical
-    if not (found.note or claimed.notes) or right.phi1 is None or literal.phi1 is None:
+    if literal is None or not (found.note or notes) or right.phi1 is None or literal.phi1 is None:
         return literal
     near = all(
         mine is not None and printed is not None and abs(mine.mid - printed.mid) < Fraction(1, 2)
@@ -118,8 +122,8 @@ def _slips(
     return slips, notes
 
 
-def _rounding_note(outcome: Outcome, result: Consequences) -> str:
-    if outcome is not Outcome.AGREES or result.level_kept is not False:
+def _rounding_note(outcome: Outcome, result: Consequences | None) -> str:
+    if outcome is not Outcome.AGREES or result is None or result.level_kept is not False:
         return ""
     excess = _short(result.excess)
     return f"taken literally, the rounded numbers exceed the level by at most {excess}; that is rounding alone"
@@ -129,19 +133,16 @@ def _short(x: Fraction) -> str:
     return f"{Enclosure.of(x).strings(2)['upper']}"
 
 
-def _without_fractions(verdict: Verdict, setting: Setting, claim: Claim, claimed: Claimed) -> Verdict:
-    """Judge a claim that does not randomise: is the level kept, and is a larger rejection region also
-    within it?
-    """
-    right, result = setting.right(), consequences(claimed.critical, setting)
-    larger = larger_within(claimed.critical, setting) if result.level_kept else ()
+def _without_fractions(verdict: Verdict, setting: Setting, claim: Claim, test: CriticalFunction) -> Verdict:
+    """Judge a claim that does not randomise: is the level kept, and is a larger rejection region within it too?"""
+    right, result = setting.right(), consequences(test, setting)
+    larger = larger_within(test, setting) if result.level_kept else ()
     found = compare(claim, setting.numbers.without_fractions(), setting.problem.n, setting.step)
-    wrong_side = claimed.critical.region != right.region
+    wrong_side = test.region != right.region
     right_way = result.level_kept is True and not larger and not wrong_side
     outcome = Outcome.AGREES if right_way else Outcome.UNDECIDED if result.level_kept is None else Outcome.DIFFERS
     notes = [
         *verdict.notes,
-        *claimed.notes,
         "no fractions are printed: judged as a test that does not randomise",
     ]
     notes.append(_level_note(result))
