@@ -5,7 +5,7 @@ from __future__ import annotations
 import argparse
 
 from verify.cli import status
-from verify.cli.options import add_budget, add_case, add_digits, add_json
+from verify.cli.options import add_budget, add_case, add_json, digits
 from verify.cli.output import show_json
 
 EXAMPLE = "sidecheck derive casebook/demo/lot-release.case.toml"
@@ -14,7 +14,10 @@ EXAMPLE = "sidecheck derive casebook/demo/lot-release.case.toml"
 def add(parser: argparse.ArgumentParser) -> None:
     """Add the arguments of the command."""
     add_case(parser)
-    add_digits(parser)
+    parser.add_argument(
+        "--digits", type=digits, default=50, metavar="N",
+        help="taken as by every command, without effect: a derivation prints formulas, not digits",
+    )  # fmt: skip
     add_budget(parser)
     add_json(parser)
 
