@@ -21,6 +21,9 @@ if TYPE_CHECKING:
 
 Number = Any
 
+SHOWN = 12
+"""So many weights of a table are named in its text."""
+
 
 @dataclass(frozen=True, eq=False)
 class Atoms:
@@ -67,7 +70,38 @@ class Atoms:
     @property
     def text(self) -> str:
         """The mass of one observation as text."""
-        return str(self.constant * self.core)
+        mass = str(self.constant * self.core)
+        if self.table is None:
+            return mass
+        weights = [str(self.table[y]) for y in sorted(self.table)]
+        shown = weights if len(weights) <= SHOWN else [*weights[:SHOWN], f"... ({len(weights)} in all)"]
+        return f"{mass} times the weights {', '.join(shown)}"
+
+    @property
+    def has_gaps(self) -> bool:
+        """Whether some lattice points between the first and the last have no mass."""
+        if self.first is None or self.last is None or (self.places is None and self.table is None):
+            return False
+        return not all(self._has(y) for y in range(self.first, self.last + 1))
+
+    def _has(self, y: int) -> bool:
+        return (self.table is None or bool(self.table.get(y))) and (self.places is None or bool(self.places.get(y)))
+
+    def sum_points(self, n: int) -> int:
+        """Return the points of the sum of n copies as bits of a whole number, bit 0 at n * first (exact)."""
+        if self.first is None or self.last is None:
+            raise ValueError("only a finite support has its points listed")
+        known: dict[int, int] = self.cache.setdefault("sum points", {})
+        if n not in known:
+            steps = [y - self.first for y in range(self.first, self.last + 1) if self._has(y)]
+            reached = 1
+            for _ in range(n):
+                shifted = [reached << step for step in steps]
+                reached = 0
+                for bits in shifted:
+                    reached |= bits
+            known[n] = reached
+        return known[n]
 
     def masses(self, A: Any, at: Exact, low: int, high: int) -> list[Number]:
         """Return the masses of y = low, ..., high at a parameter value (up to the normaliser for a kernel)."""
