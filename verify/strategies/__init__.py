@@ -1,0 +1,20 @@
+"""Generated problems, for testing a solver against proven answers: see :func:`problems`.
+
+The one place where Hypothesis is imported; it comes with the extra ``test``.
+"""
+
+from verify.errors import InputError
+
+try:
+    import hypothesis as _hypothesis
+except ModuleNotFoundError:
+    raise InputError("Hypothesis is not installed", 'pip install "sidecheck[test]"', key="verify.strategies") from None
+
+from verify.strategies.families import FAMILIES as FAMILIES
+from verify.strategies.families import LAWS as LAWS
+from verify.strategies.problems import PROFILES as PROFILES
+from verify.strategies.problems import problems as problems
+
+__all__ = ["FAMILIES", "LAWS", "PROFILES", "problems"]
+
+del _hypothesis
