@@ -15,8 +15,9 @@ from typing import Any
 
 from verify.arithmetic.ball import balls
 from verify.laws import Law
-from verify.solution.conditions import Conditions
+from verify.solution.conditions import Conditions, end_fractions
 from verify.solution.start import Rough
+
 
 def slide(conditions: Conditions, rough: tuple[Rough, ...], rising: bool, prec: int) -> tuple[int, int]:
     """Return the cell (c1, c2) of a lattice law.
@@ -29,7 +30,7 @@ def slide(conditions: Conditions, rough: tuple[Rough, ...], rising: bool, prec: 
         while high - low > 1:
             middle = (low + high) // 2
             low, high = (middle, high) if window.excess(middle) <= 0 else (low, middle)
-        return low, max(window.end(low), low + 1)
+        return low, window.outermost(low, max(window.end(low), low + 1))
 
 
 class _Sliding:
@@ -82,6 +83,22 @@ class _Sliding:
             middle = (low + high) // 2
             low, high = (low, middle) if law.sf(A, middle).mid() <= right else (middle, high)
         return int(high)
+
+    def outermost(self, c1: int, c2: int) -> int:
+        """Least end from c2 on that need not go further out: a large atom at c1 leaves room for many ends."""
+        top = self.law.support[1]
+        low, high, step = c2 - 1, c2, 1
+        while self._wants_more(c1, high) and (top is None or high < top):
+            low, high, step = high, high + step if top is None else min(top, high + step), 2 * step
+        while high - low > 1:
+            middle = (low + high) // 2
+            low, high = (middle, high) if self._wants_more(c1, middle) else (low, middle)
+        return int(high)
+
+    def _wants_more(self, c1: int, c2: int) -> bool:
+        """Whether the window on these two atoms would need more than the whole of c2."""
+        fraction = end_fractions(self.conditions, self.A, c1, c2)[1]
+        return bool(fraction.mid() < 0 if self.conditions.outside else fraction.mid() > 1)
 
     def excess(self, c1: int) -> Any:
         """Second condition of this window less its target, as a number that rises with c1."""
