@@ -1,0 +1,144 @@
+"""``sidecheck casebook``: run every case of some folders and hold it against what it expects."""
+
+from __future__ import annotations
+
+import argparse
+import contextlib
+import os
+import sys
+from collections.abc import Callable, Iterator, Sequence
+from pathlib import Path
+from typing import TYPE_CHECKING
+
+from verify.cli.options import add_budget, add_json, digits
+from verify.cli.output import note, show_json
+
+if TYPE_CHECKING:
+    from verify.casebook.outcome import Result
+
+EXAMPLE = "sidecheck casebook casebook --workers 2 --junit report.xml"
+EVERY = 50
+"""Cases between two lines of progress where there is no terminal."""
+
+
+def add(parser: argparse.ArgumentParser) -> None:
+    """Add the arguments of the command."""
+    parser.add_argument("places", metavar="DIR", nargs="+", help="folders (searched to the bottom) and case files")
+    parser.add_argument("--only", metavar="PATTERN", action="append", default=[],
+                        help="run the cases of this name, e.g. 'lot-*' or 'published/*'; may be repeated")
+    parser.add_argument("--fail-fast", action="store_true", help="stop behind the first case that does not pass")
+    parser.add_argument("--workers", type=_workers, default=1, metavar="N", help="processes (default 1)")
+    parser.add_argument("--scheduler", metavar="ADDRESS", help="address of a Dask scheduler, tcp://host:port, whose "
+                        "workers see the same files")
+    parser.add_argument("--junit", metavar="FILE", help="write a JUnit report")
+    parser.add_argument("--jsonl", metavar="FILE", help="write one JSON object a case, without times")
+    parser.add_argument("--github", action="store_true",
+                        help="print annotations, and append a table to the file named by GITHUB_STEP_SUMMARY")
+    parser.add_argument("--digits", type=digits, default=30, metavar="N",
+                        help="significant digits to prove (default 30; more where a case prints more)")  # fmt: skip
+    add_budget(parser)
+    add_json(parser)
+
+
+def _workers(text: str) -> int:
+    if not (text.isascii() and text.isdigit() and 1 <= int(text) <= 256):
+        raise argparse.ArgumentTypeError(f"{text[:20]!r} is not a number of processes from 1 to 256")
+    return int(text)
+
+
+def run(args: argparse.Namespace) -> int:
+    """Run the cases, print, write what is wanted, and return the exit status: 0 only when every case passed."""
+    from verify.casebook.find import find_cases
+    from verify.casebook.lines import book_json, book_text
+    from verify.casebook.outcome import status_of
+    from verify.casebook.run import How, run_book
+
+    paths = find_cases(args.places, args.only)
+    _require_folders(args)
+    with _progress(len(paths)) as progress:
+        results = run_book(paths, How(args.digits, args.budget), workers=args.workers, scheduler=args.scheduler,
+                           fail_fast=args.fail_fast, progress=progress)  # fmt: skip
+    left = len(paths) - len(results)
+    if args.json:
+        show_json(book_json(results, left))
+    else:
+        print(book_text(results, left))
+    _write(args, results, left)
+    return status_of(results)
+
+
+def _require_folders(args: argparse.Namespace) -> None:
+    """Complain about a report that cannot be written before the work, not after it."""
+    from verify.errors import InputError
+
+    for key in ("junit", "jsonl"):
+        given = getattr(args, key)
+        if given and not (Path(given).absolute().parent.is_dir() and not Path(given).is_dir()):
+            raise InputError(f"{given} cannot be written", "name a file in a folder that exists", key=f"--{key}")
+
+
+def _write(args: argparse.Namespace, results: Sequence[Result], left: int) -> None:
+    """Write the reports, each all or nothing."""
+    from verify.casebook.junit import junit_xml
+    from verify.casebook.lines import json_lines
+    from verify.certificate.write import write_atomically
+    from verify.errors import InputError
+
+    wanted = {"junit": junit_xml, "jsonl": json_lines}
+    for key, make in wanted.items():
+        if place := getattr(args, key):
+            try:
+                write_atomically(Path(place), make(results))
+            except OSError as error:
+                wrong = f"cannot write: {error.strerror or error}"
+                raise InputError(wrong, "name a file that can be written", key=f"--{key}", file=place) from None
+    if args.github:
+        _github(results, left, sys.stderr if args.json else sys.stdout)
+
+
+def _github(results: Sequence[Result], left: int, out: object) -> None:
+    from verify.casebook.github import annotation_lines, step_summary
+
+    for line in annotation_lines(results):
+        print(line, file=out)  # type: ignore[call-overload]
+    place = os.environ.get("GITHUB_STEP_SUMMARY")
+    if not place:
+        note("GITHUB_STEP_SUMMARY names no file: no summary is written")
+        return
+    with open(place, "a", encoding="utf-8", errors="backslashreplace") as stream:
+        stream.write(step_summary(results, left))
+
+
+@contextlib.contextmanager
+def _progress(total: int) -> Iterator[Callable[[Result], None]]:
+    """Show on stderr how far it is: a bar on a terminal, else a line now and then."""
+    if not sys.stderr.isatty():
+        yield _plain(total)
+        return
+    from rich.console import Console
+    from rich.progress import BarColumn, MofNCompleteColumn, Progress, TextColumn, TimeElapsedColumn
+
+    columns = (TextColumn("{task.description}"), BarColumn(), MofNCompleteColumn(), TimeElapsedColumn())
+    with Progress(*columns, console=Console(stderr=True), transient=True) as bar:
+        task = bar.add_task("cases", total=total)
+
+        def advance(result: Result) -> None:
+            if not result.passed:
+                bar.console.print(f"{result.name}: {result.outcome.value}", markup=False, highlight=False)
+            bar.update(task, advance=1, description=result.name)
+
+        yield advance
+
+
+def _plain(total: int) -> Callable[[Result], None]:
+    done = 0
+
+    def advance(result: Result) -> None:
+        nonlocal done
+        done += 1
+        if not result.passed:
+            note(f"{result.name}: {result.outcome.value}")
+        if done % EVERY == 0 and done < total:
+            note(f"{done} of {total} cases")
+
+    return advance
