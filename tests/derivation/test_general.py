@@ -121,8 +121,14 @@ def test_a_sum_without_a_bounded_transform_is_undecided() -> None:
 
 
 def test_a_statistic_off_every_lattice_is_undecided_with_what_would_help() -> None:
-    density = Density("exp(-t*sqrt(x+2)-x)*a", variable="x", support="integers >= 0", parameter="t", space="t > 0",
-                      constants={"a": "1"})
+    density = Density(
+        "exp(-t*sqrt(x+2)-x)*a",
+        variable="x",
+        support="integers >= 0",
+        parameter="t",
+        space="t > 0",
+        constants={"a": "1"},
+    )
     found = Factorisation(sp.sqrt(density.x + 2), -density.t, -density.x, sp.Integer(0))
     step, family = general_family(density, found)
     assert family is None

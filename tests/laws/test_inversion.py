@@ -46,7 +46,9 @@ def test_power_law_observations_give_a_gamma_law(v: F) -> None:
         assert min(ball.rel_accuracy_bits() for ball in (density, lower, upper)) > 70
 
 
-@pytest.mark.parametrize("transform", [GammaRatio(F(0), F(5, 2)), Secant(1, F(1), F(0), F(0), F(-3, 2), F(3, 2))])
+@pytest.mark.parametrize(
+    "transform", [GammaRatio(F(0), F(5, 2)), Secant(1, F(1), F(0), F(0), F(-3, 2), F(3, 2))]
+)
 def test_the_answer_does_not_depend_on_the_path(transform) -> None:  # type: ignore[no-untyped-def]
     """A wrong bound shows itself here: paths far from the saddle point must give the same number."""
     v, eta = (F(-3), F(3)) if isinstance(transform, GammaRatio) else (F(1), F(1, 2))
@@ -73,7 +75,10 @@ def test_von_mises_sum_agrees_with_a_real_integral_in_mpmath() -> None:
     mpmath.mp.dps = 15
 
     def part(u: float) -> float:
-        return mpmath.re((mpmath.besseli(0, 2 + 1j * u) / mpmath.besseli(0, 2)) ** 8 * mpmath.exp(-4.5j * u)) / mpmath.pi
+        return (
+            mpmath.re((mpmath.besseli(0, 2 + 1j * u) / mpmath.besseli(0, 2)) ** 8 * mpmath.exp(-4.5j * u))
+            / mpmath.pi
+        )
 
     wanted = mpmath.quad(part, mpmath.linspace(0, 60, 31))
     with balls(70) as A:

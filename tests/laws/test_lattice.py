@@ -25,19 +25,39 @@ def truncated_binomial(trials: int) -> Atoms:
 
 def truncated_poisson() -> Atoms:
     mean = t / (1 - sp.exp(-t))
-    return Atoms(1 / (sp.exp(t) - 1), t**x / sp.factorial(x), "x", "t", 1, None, space=(F(0), None),
-                 mean=mean, variance=mean * (1 + t - mean))
+    return Atoms(
+        1 / (sp.exp(t) - 1),
+        t**x / sp.factorial(x),
+        "x",
+        "t",
+        1,
+        None,
+        space=(F(0), None),
+        mean=mean,
+        variance=mean * (1 + t - mean),
+    )
 
 
 def skellam(size: int) -> Atoms:
     s = sp.Symbol("t", real=True)
     front = sp.exp(-size * (sp.exp(s) + sp.exp(-s)))
-    return Atoms(front, sp.exp(s * x) * sp.besseli(x, 2 * size), "x", "t", None, None,
-                 mean=size * (sp.exp(s) - sp.exp(-s)), variance=size * (sp.exp(s) + sp.exp(-s)))
+    return Atoms(
+        front,
+        sp.exp(s * x) * sp.besseli(x, 2 * size),
+        "x",
+        "t",
+        None,
+        None,
+        mean=size * (sp.exp(s) - sp.exp(-s)),
+        variance=size * (sp.exp(s) + sp.exp(-s)),
+    )
 
 
 def brute_force(trials: int, p: F, n: int) -> dict[int, F]:
-    one = {k: comb(trials, k) * p**k * (1 - p) ** (trials - k) / (1 - (1 - p) ** trials) for k in range(1, trials + 1)}
+    one = {
+        k: comb(trials, k) * p**k * (1 - p) ** (trials - k) / (1 - (1 - p) ** trials)
+        for k in range(1, trials + 1)
+    }
     out: dict[int, F] = {}
     for ks in product(one, repeat=n):
         mass = F(1)
@@ -84,7 +104,10 @@ def test_zero_truncated_poisson_has_stirling_masses() -> None:
         for at in (F(3, 2), F(2)):
             law = LatticeSum(one, at, 12)
             for k in (12, 19, 30):
-                wanted = A.real(F(factorial(12) * stirling(k, 12), factorial(k)) * at**k) / (A.exp(A.real(at)) - 1) ** 12
+                wanted = (
+                    A.real(F(factorial(12) * stirling(k, 12), factorial(k)) * at**k)
+                    / (A.exp(A.real(at)) - 1) ** 12
+                )
                 found = law.density(A, k)
                 assert found.overlaps(wanted)
                 assert found.rel_accuracy_bits() > 120
