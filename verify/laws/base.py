@@ -51,6 +51,10 @@ class Law(ABC):
     def support(self) -> tuple[Any, Any]:
         """Smallest and largest support point; None where there is none. Exact numbers (ints on a lattice)."""
 
+    def atom(self, v: int, direction: int) -> int:
+        """First lattice point with positive mass at v or beyond it in a direction; v itself where there are no gaps."""
+        return v
+
     def value(self, A: Any, v: Any) -> Number:
         """The value of V at a support point; other than the point itself only where points are numbered otherwise."""
         return A.real(v) if self.lattice else v

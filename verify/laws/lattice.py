@@ -71,6 +71,16 @@ class LatticeSum(Law):
         first, last = self.one.first, self.one.last
         return (None if first is None else self.n * first, None if last is None else self.n * last)
 
+    def atom(self, v: int, direction: int) -> int:
+        """First point with positive mass at v or beyond it; points off the support are returned as they are."""
+        first, last = self.support
+        if not self.one.has_gaps or first is None or last is None:
+            return v
+        mask = self.one.sum_points(self.n)
+        while first <= v <= last and not mask >> (v - first) & 1:
+            v += direction
+        return v
+
     def _table(self, A: Any, v: int | None = None) -> Table:
         return ball_table(self, A.prec, v) if in_balls(A) else exact_table(self, v)
 

@@ -17,6 +17,7 @@ from verify.arithmetic.ball import accuracy_bits, balls, to_enclosure
 from verify.arithmetic.enclosure import Enclosure
 from verify.arithmetic.exact import rationals
 from verify.errors import InputError, NotRational, UndecidedError
+from verify.laws import Law
 from verify.solution.conditions import MOST_EXACT_ATOMS, Conditions, end_fractions, exact_fractions, improved_start, linear_system
 from verify.solution.precision import bits_for
 from verify.solution.sliding import slide
@@ -63,23 +64,28 @@ class LatticeSearch:
         levels = tuple(float(level) for level in self.conditions.levels)
         ends = window_start(self.rough, max(levels[0], 1e-300), self.conditions.outside)
         a, b = improved_start(self.conditions, self.rough, levels, ends)
-        low, high = self.conditions.laws[0].support
         c1 = math.floor(a) + 1
-        c2 = max(math.ceil(b), c1 + 1)
-        return self._inside_support(c1, c2, low, high)
+        return self.on_atoms((c1, max(math.ceil(b), c1 + 1)), -1, -1)
 
-    @staticmethod
-    def _inside_support(c1: int, c2: int, low: int | None, high: int | None) -> Cell:
+    def on_atoms(self, cell: Cell, out1: int, out2: int) -> Cell:
+        """Bring a cell into the support and its ends to atoms, each on in the direction in which it moved."""
+        law = self.conditions.laws[0]
+        low, high = law.support
+        c1, c2 = cell
         if low is not None:
             c1, c2 = max(c1, low), max(c2, low + 1)
         if high is not None:
             c1, c2 = min(c1, high - 1), min(c2, high)
-        return c1, max(c2, c1 + 1)
+        c1 = law.atom(c1, -1 if out1 > 0 else 1)
+        c2 = law.atom(max(c2, c1 + 1), 1 if out2 > 0 else -1)
+        if c1 < c2:
+            return c1, c2
+        c2 = law.atom(c1 + 1, 1)
+        return (c1, c2) if high is None or c2 <= high else (law.atom(c1 - 1, -1), c1)
 
     def _fast(self, A: Any) -> Cell | None:
         """Newton's method on the piecewise linear side conditions: each step solves the 2 x 2 system of a cell."""
         cell, seen = self._first(), set()
-        low, high = self.conditions.laws[0].support
         for _ in range(MOST_STEPS):
             if cell in seen:
                 return None
@@ -91,7 +97,7 @@ class LatticeSearch:
             if all(-grain <= w <= 1 + 1e-9 for w in weights):
                 return cell
             out1, out2 = (self._move(A, c, w, side) for c, w, side in zip(cell, weights, (-1, +1), strict=True))
-            cell = self._inside_support(*grown(cell, out1, out2), low, high)
+            cell = self.on_atoms(grown(cell, out1, out2), out1, out2)
         return None
 
     def _move(self, A: Any, c: int, weight: float, side: int) -> int:
@@ -99,7 +105,7 @@ class LatticeSearch:
         if 0 <= weight <= 1:
             return 0
         law = max(self.conditions.laws, key=lambda candidate: float(_log(candidate.density(A, c))))
-        outward, here = law.density(A, c + side), law.density(A, c)
+        outward, here = law.density(A, law.atom(c + side, side)), law.density(A, c)
         ratio = float(outward / here) if here > 0 and outward > 0 else 0.0
         cap = 4 * max(r.spread for r in self.rough) + 2
         slope = math.log(ratio) if 0.0 < ratio < math.inf else -50.0
@@ -170,6 +176,10 @@ def solve_lattice_window(search: LatticeSearch, digits: int) -> Window:
         with balls(bits) as A:
             system = linear_system(conditions, A, *cell)
             moves = [_side(g, conditions.outside) for g in system.fractions]
+            if moves == [0, 0] and cell == conditions.laws[0].support:
+                exact = _exact_tie(conditions, cell, bits)
+                if exact is not None:
+                    return exact
             if moves == [0, 0]:
                 reached = min(accuracy_bits(g) for g in system.fractions)
                 if reached >= wanted:
@@ -190,10 +200,8 @@ def solve_lattice_window(search: LatticeSearch, digits: int) -> Window:
 
 def _neighbour(search: LatticeSearch, cell: Cell, moves: list[Any], tried: set[Cell], bits: int) -> Cell:
     """Next cell to try, where this one is certainly wrong: one step each way, else a search at this precision."""
-    step = grown(cell, *moves)
-    low, high = search.conditions.laws[0].support
-    possible = (low is None or step[0] >= low) and (high is None or step[1] <= high)
-    if step in tried or not possible or len(tried) % NEIGHBOURS == 0:
+    step = search.on_atoms(grown(cell, *moves), *moves)
+    if step in tried or len(tried) % NEIGHBOURS == 0:
         step = replace(search, prec=bits).cell() if len(tried) <= NEIGHBOURS else search.bracket(bits)
         if step in tried:
             raise UndecidedError(f"no pair of cutoffs near {cell} could be proved")
@@ -223,14 +231,17 @@ def _exact_tie(conditions: Conditions, cell: Cell, bits: int) -> Window | None:
         return _exact_centre(conditions, cell, bits)
     if not (0 <= g1 <= 1 and 0 <= g2 <= 1):
         return None
-    return canonical(cell, g1, g2, conditions.outside, tuple(Enclosure.of(t) for t in targets))
+    return canonical(conditions.laws[0], cell, (g1, g2), conditions.outside, tuple(Enclosure.of(t) for t in targets))
 
 
 def _exact_centre(conditions: Conditions, cell: Cell, bits: int) -> Window | None:
     """One atom, at the mean itself, for a point null: there the moment condition holds whatever the fraction is."""
     if not conditions.point:
         return None
-    mean = getattr(conditions.laws[0], "mean", None)
+    try:
+        mean = conditions.laws[0].expectation(rationals())
+    except NotRational:
+        return None
     if mean not in cell:
         return None
     centre = int(mean)
@@ -244,25 +255,26 @@ def _exact_centre(conditions: Conditions, cell: Cell, bits: int) -> Window | Non
     return Window(centre, centre, phi, phi, (first, Enclosure.of(0)), 2 * bits)
 
 
-def canonical(cell: Cell, g1: Any, g2: Any, outside: bool, conditions: tuple[Enclosure, ...]) -> Window:
+def canonical(
+    law: Law, cell: Cell, fractions: tuple[Any, Any], outside: bool, conditions: tuple[Enclosure, ...]
+) -> Window:
     """Bring exact end fractions to the canonical form: an end that belongs wholly to the other side moves inward.
 
     Rejecting inside, the ends are the outermost points where phi > 0; rejecting outside, where phi < 1.
     """
-    gone = 1 if outside else 0
+    gone, (g1, g2) = 1 if outside else 0, fractions
     c1, c2 = cell
     if g1 == gone and g2 == gone:
-        if c2 - c1 == 1:
+        if law.atom(c1 + 1, 1) == c2:
             raise InputError("the window is empty", "ask for a level above 0", key="problem.alpha")
-        return Window(c1 + 1, c2 - 1, *(Enclosure.of(1 - gone),) * 2, conditions, 0)
+        ends = (Enclosure.of(1 - gone),) * 2
+        return Window(law.atom(c1 + 1, 1), law.atom(c2 - 1, -1), *ends, conditions, 0)
     if g1 == gone:
-        c1, g1 = c1 + 1, 1 - gone
-        if c1 == c2:
-            g1 = g2
+        c1, g1 = law.atom(c1 + 1, 1), 1 - gone
+        g1 = g2 if c1 == c2 else g1
     elif g2 == gone:
-        c2, g2 = c2 - 1, 1 - gone
-        if c1 == c2:
-            g2 = g1
+        c2, g2 = law.atom(c2 - 1, -1), 1 - gone
+        g2 = g1 if c1 == c2 else g2
     return Window(c1, c2, Enclosure.of(g1), Enclosure.of(g2), conditions, 0)
 
 

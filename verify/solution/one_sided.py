@@ -105,9 +105,9 @@ class TailProblem:
                     bits += wanted - reached + 8
                     continue
             if gamma > 1:
-                c -= self.outward
+                c = self.law.atom(c - self.outward, -self.outward)
             elif gamma < 0:
-                c += self.outward
+                c = self.law.atom(c + self.outward, self.outward)
             else:
                 exact = self._exact(c)
                 if exact is not None:
@@ -136,7 +136,7 @@ class TailProblem:
         while abs(outer - inner) > 1:
             middle = (inner + outer) // 2
             inner, outer = (inner, middle) if enough(middle) else (middle, outer)
-        return int(outer)
+        return self.law.atom(int(outer), -self.outward)
 
     def _exact(self, c: int) -> Tail | None:
         """Decide a tie in exact fractions; None when the masses are irrational or the sum too long."""
@@ -157,7 +157,7 @@ class TailProblem:
         except (NotRational, TypeError):
             return None
         if gamma == 0:
-            return Tail(c + self.outward, Enclosure.of(1), Enclosure.of(level), 0)
+            return Tail(self.law.atom(c + self.outward, self.outward), Enclosure.of(1), Enclosure.of(level), 0)
         return Tail(c, Enclosure.of(gamma), Enclosure.of(level), 0) if 0 < gamma <= 1 else None
 
     def _continuous(self, digits: int) -> Tail:
