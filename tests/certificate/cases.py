@@ -128,7 +128,7 @@ def factorials(count: int) -> list[str]:
     return out
 
 
-TRUNCATED["law"] |= {"weights": factorials(60), "first": 1}
+TRUNCATED["law"] |= {"weights": factorials(48), "first": 1}
 
 
 MEAN = {

@@ -182,22 +182,17 @@ def _conditions(
     """Each side condition with its exact target and the range of the expectation over the numbers as printed."""
     problem = solution.problem
     pairs = zip(problem.hypothesis.limits, problem.levels, solution.laws, strict=True)
+    exact = len(corners(test)) == 1  # exact fractions solve the side conditions exactly
     entries = []
     for limit, level, law in pairs:
-        seen = span([expectations.phi(law, corner) for corner in corners(test)])
         target: Claim = claim(Enclosure.of(level), digits) if isinstance(level, Fraction) else _enclosed(level, digits)
-        entries.append(_entry(limit, "phi", target, claim(seen, digits)))
+        seen = target if exact else claim(span([expectations.phi(law, corner) for corner in corners(test)]), digits)
+        entries.append(_entry(limit, "phi", target, seen))
     if solution.form is Form.POINT:
         limit, level, law = problem.hypothesis.limits[0], problem.levels[0], solution.laws[0]
-        seen = span([expectations.v_phi(law, corner) for corner in corners(test)])
-        entries.append(
-            _entry(
-                limit,
-                "V phi",
-                claim(_product(level, expectations.mean(law), digits), digits),
-                claim(seen, digits),
-            )
-        )
+        target = claim(_product(level, expectations.mean(law), digits), digits)
+        seen = target if exact else claim(span([expectations.v_phi(law, corner) for corner in corners(test)]), digits)
+        entries.append(_entry(limit, "V phi", target, seen))
     return entries
 
 

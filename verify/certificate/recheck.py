@@ -1,13 +1,10 @@
 """Recheck a certificate:  python -I -S recheck.py FILE.cert.json [--case CASE.case.toml].
 
 One file, standard library only, sharing no code with the program that wrote the certificate. It replays, it never
-searches:
-the cutoffs are given to it. The rules are published as formulas in FORMAT.md; section numbers [1]..[9] below are
-those there.
+searches: the cutoffs are given to it. The rules are published as formulas in FORMAT.md, with the section numbers below.
 
-Exit status: 0 accepted; 1 rejected; 2 malformed; 3 over the resource limit; 4 accepted, with the numbers
-themselves taken
-on trust (laws without a closed form). What is taken on trust is listed on standard output in every case.
+Exit status: 0 accepted; 1 rejected; 2 malformed; 3 over the resource limit; 4 accepted, with the numbers themselves
+taken on trust (laws without a closed form). What is taken on trust is listed on standard output in every case.
 """
 
 # ruff: noqa: D102, D103, N818
