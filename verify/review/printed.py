@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import re
+from collections.abc import Iterable
 from dataclasses import dataclass
 from decimal import ROUND_HALF_EVEN, Context, Decimal
 from enum import Enum
@@ -89,6 +90,17 @@ class Printed:
         if true.lower >= 0:
             return self.value <= true.lower and true.upper < self.value + self.unit
         return true.upper <= 0 and self.value >= true.upper and true.lower > self.value - self.unit
+
+
+def digits_wanted(numbers: Iterable[Printed], least: int) -> int:
+    """Return how many digits to prove so that every printed digit can be judged, at least so many.
+
+    Examples
+    --------
+    >>> digits_wanted([read_printed("0.25"), read_printed("0." + 30 * "3")], 20)
+    36
+    """
+    return max([least, *(sum(map(str.isdigit, number.text)) + 5 for number in numbers)])
 
 
 def read_printed(value: str | int | Fraction | Decimal, key: str = "", *, binary: bool = False) -> Printed:

@@ -6,11 +6,12 @@ from collections.abc import Mapping
 from dataclasses import replace
 from decimal import Decimal
 from fractions import Fraction
-from typing import TYPE_CHECKING, Any
+from typing import TYPE_CHECKING
 
 from verify.derivation.ledger import Grade
 from verify.review.claim import read_claim
 from verify.review.judge import Options, judge
+from verify.review.printed import Printed, digits_wanted, read_printed
 from verify.review.setting import Setting
 from verify.review.statistic import styled
 from verify.review.style import Style
@@ -89,18 +90,26 @@ def review(
         from verify.derivation.derive import derive
 
         derivation = derive(problem.density, limits=problem.hypothesis.limits, claim=said, n=problem.n, budget=budget)
-    numbers = {"c1": c1, "c2": c2, "gamma1": gamma1, "gamma2": gamma2, "c": c, "gamma": gamma}
-    return review_numbers(Setting(problem, derivation, digits), numbers, style or Style(), said, Options())
+    given = {"c1": c1, "c2": c2, "gamma1": gamma1, "gamma2": gamma2, "c": c, "gamma": gamma}
+    numbers = printed_numbers(given)
+    setting = Setting(problem, derivation, digits_wanted(numbers.values(), digits))
+    return review_numbers(setting, numbers, style or Style(), said, Options())
+
+
+def printed_numbers(given: Mapping[str, Given]) -> dict[str, Printed]:
+    """Read the numbers that are not blank."""
+    present = {name: value for name, value in given.items() if value is not None and str(value).strip() != ""}
+    return {name: read_printed(value, name) for name, value in present.items() if value is not None}
 
 
 def review_numbers(
-    setting: Setting, numbers: Mapping[str, Any], style: Style, said: Mapping[str, str], options: Options
+    setting: Setting, numbers: Mapping[str, Printed], style: Style, said: Mapping[str, str], options: Options
 ) -> Verdict:
     """Judge printed numbers in a setting; without any, the derivation alone."""
     derivation = setting.derivation
     if not carries_numbers(derivation):
         return derivation_verdict(derivation, setting.problem)
-    if all(value is None or str(value).strip() == "" for value in numbers.values()):
+    if not numbers:
         return derivation_verdict(derivation, setting.problem)
     style, remark = styled(style, said, derivation)
     verdict = judge(setting, read_claim(numbers, style, setting.form), options)

@@ -17,9 +17,16 @@ from verify.problem.problem import Problem
 from verify.review.cells import Cell, Kind
 from verify.review.judge import Options
 from verify.review.mapping import style_from
-from verify.review.printed import read_printed
+from verify.review.printed import digits_wanted, read_printed
 from verify.review.record import Record, record_of, unusable
-from verify.review.review import DERIVATION_KEYS, NUMBER_KEYS, STYLE_KEYS, derivation_verdict, review_numbers
+from verify.review.review import (
+    DERIVATION_KEYS,
+    NUMBER_KEYS,
+    STYLE_KEYS,
+    derivation_verdict,
+    printed_numbers,
+    review_numbers,
+)
 from verify.review.setting import Cache, Setting, require_null
 
 if TYPE_CHECKING:
@@ -57,9 +64,10 @@ class Reviewer:
         case, claim = self.case, self.case.claim
         if case.problem is None:
             return record_of(derivation_verdict(self.derivation(case), None), digits=self.digits)
-        setting = Setting(case.problem, self.derivation(case, case.problem), self.digits)
-        numbers = {key: claim.get(key) for key in NUMBER_KEYS}
         try:
+            numbers = printed_numbers({key: claim.get(key) for key in NUMBER_KEYS})
+            digits = digits_wanted(numbers.values(), self.digits)
+            setting = Setting(case.problem, self.derivation(case, case.problem), digits)
             verdict = review_numbers(setting, numbers, style_from(claim), claim, Options())
         except InputError as error:
             raise error.at(key="claim", file=case.path) from None
@@ -77,12 +85,12 @@ class Reviewer:
     def _row(self, number: int, name: str, fields: Mapping[str, Cell], style: Mapping[str, str]) -> Record:
         words = {key: cell.usable(key) for key, cell in fields.items()}
         case = self.case_named(words.get("case", ""))
-        setting = self._setting(case, words)
         numbers = {
             key: read_printed(words[key], key, binary=fields[key].kind is Kind.BINARY)
             for key in NUMBER_KEYS
             if key in words
         }
+        setting = self._setting(case, words, digits_wanted(numbers.values(), self.digits))
         if not numbers:
             raise InputError("no cutoff is printed", "give c1 and c2, or c", key="row")
         how = style_from({**{key: words[key] for key in STYLE_KEYS if key in words}, **style})
@@ -128,13 +136,13 @@ class Reviewer:
         wanted = problem.hypothesis.limits
         return self.derivations.get((case.path, wanted), lambda: make(wanted))
 
-    def _setting(self, case: Case, words: Mapping[str, str]) -> Setting:
+    def _setting(self, case: Case, words: Mapping[str, str], digits: int) -> Setting:
         keys = ("null", "lower", "upper", "alpha", "n", "region")
-        key = (case.path, *(words.get(key, "") for key in keys))
+        key = (case.path, str(digits), *(words.get(key, "") for key in keys))
 
         def make() -> Setting:
             problem = problem_of(case, words)
-            return Setting(problem, self.derivation(case, problem), self.digits)
+            return Setting(problem, self.derivation(case, problem), digits)
 
         return self.settings.get(key, make)
 
