@@ -24,7 +24,9 @@ x = sp.Symbol("x", real=True)
     ],
 )
 def test_functions_with_cuts_are_integrated_truly(formula: sp.Expr, low: int, high: int, wanted: str) -> None:
-    """A function that ignores the analytic flag returns a tight ball around a wrong number, e.g. 4.6694 for the first."""
+    """A function that ignores the analytic flag returns a tight ball around a wrong number, e.g. 4.6694 for the
+    first.
+    """
     with balls(100) as A:
         found = integral(integrand(formula, "x", {}, 100), A.real(low), A.real(high))
         assert found.overlaps(A.real(sp.sympify(wanted)))

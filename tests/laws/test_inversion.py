@@ -1,6 +1,6 @@
 """Inversion of transforms: against closed forms, against itself along other paths, against mpmath."""
 
-from fractions import Fraction as F
+from fractions import Fraction
 from math import comb, factorial
 
 import mpmath
@@ -17,27 +17,31 @@ def invert(A, transform, n, eta, v, c, kind, mean=0):  # type: ignore[no-untyped
 
 
 def test_truncated_exponential_agrees_with_the_inclusion_exclusion_density() -> None:
-    """Density exp(-t v) (t / (1 - exp(-t)))**n sum (-1)**k C(n, k) (v - k)_+**(n-1) / (n-1)!: P. Hall's sum of uniforms, tilted."""
-    n, at, v = 5, F(2), F(5, 2)
+    """Density exp(-t v) (t / (1 - exp(-t)))**n sum (-1)**k C(n, k) (v - k)_+**(n-1) / (n-1)!: P. Hall's sum of
+    uniforms, tilted.
+    """
+    n, at, v = 5, Fraction(2), Fraction(5, 2)
     with balls(128) as A:
-        spline = sum(F((-1) ** k * comb(n, k)) * (v - k) ** (n - 1) for k in range(3)) / factorial(n - 1)
+        spline = sum(Fraction((-1) ** k * comb(n, k)) * (v - k) ** (n - 1) for k in range(3)) / factorial(
+            n - 1
+        )
         front = (A.real(at) / (1 - A.exp(-A.real(at)))) ** n * A.exp(-A.real(at * v))
-        found = invert(A, Interval(F(0), F(1)), n, -at, v, F(0), DENSITY)
+        found = invert(A, Interval(Fraction(0), Fraction(1)), n, -at, v, Fraction(0), DENSITY)
         assert found.overlaps(front * A.real(spline))
         assert found.rel_accuracy_bits() > 100
 
 
-@pytest.mark.parametrize("v", [F(-7), F(-2), F(-1, 2)])
-def test_power_law_observations_give_a_gamma_law(v: F) -> None:
+@pytest.mark.parametrize("v", [Fraction(-7), Fraction(-2), Fraction(-1, 2)])
+def test_power_law_observations_give_a_gamma_law(v: Fraction) -> None:
     """With b = a + 1 each -log X is exponential, so the sum is gamma: Gamma(z + 1) = z Gamma(z)."""
-    n, at = 4, F(3, 2)
-    closed = Gamma(F(n), at)
+    n, at = 4, Fraction(3, 2)
+    closed = Gamma(Fraction(n), at)
     with balls(128) as A:
-        left, right = F(1, 2), F(3)
-        density = invert(A, GammaRatio(F(0), F(1)), n, at, v, F(1), DENSITY)
-        lower = invert(A, GammaRatio(F(0), F(1)), n, at, v, left, TAIL)
-        upper = invert(A, GammaRatio(F(0), F(1)), n, at, v, right, TAIL)
-        short = invert(A, GammaRatio(F(0), F(1)), n, at, v, left, SHORTFALL, -F(n) / at)
+        left, right = Fraction(1, 2), Fraction(3)
+        density = invert(A, GammaRatio(Fraction(0), Fraction(1)), n, at, v, Fraction(1), DENSITY)
+        lower = invert(A, GammaRatio(Fraction(0), Fraction(1)), n, at, v, left, TAIL)
+        upper = invert(A, GammaRatio(Fraction(0), Fraction(1)), n, at, v, right, TAIL)
+        short = invert(A, GammaRatio(Fraction(0), Fraction(1)), n, at, v, left, SHORTFALL, -Fraction(n) / at)
         y = A.real(-v)
         assert density.overlaps(closed.density(A, y))
         assert lower.overlaps(closed.sf(A, y))
@@ -47,12 +51,22 @@ def test_power_law_observations_give_a_gamma_law(v: F) -> None:
 
 
 @pytest.mark.parametrize(
-    "transform", [GammaRatio(F(0), F(5, 2)), Secant(1, F(1), F(0), F(0), F(-3, 2), F(3, 2))]
+    "transform",
+    [
+        GammaRatio(Fraction(0), Fraction(5, 2)),
+        Secant(1, Fraction(1), Fraction(0), Fraction(0), Fraction(-3, 2), Fraction(3, 2)),
+    ],
 )
 def test_the_answer_does_not_depend_on_the_path(transform) -> None:  # type: ignore[no-untyped-def]
     """A wrong bound shows itself here: paths far from the saddle point must give the same number."""
-    v, eta = (F(-3), F(3)) if isinstance(transform, GammaRatio) else (F(1), F(1, 2))
-    crossings = (F(1, 2), F(9, 4), F(4)) if eta == 3 else (F(-1), F(1, 8), F(1))
+    v, eta = (
+        (Fraction(-3), Fraction(3)) if isinstance(transform, GammaRatio) else (Fraction(1), Fraction(1, 2))
+    )
+    crossings = (
+        (Fraction(1, 2), Fraction(9, 4), Fraction(4))
+        if eta == 3
+        else (Fraction(-1), Fraction(1, 8), Fraction(1))
+    )
     with balls(100) as A:
         densities = [invert(A, transform, 3, eta, v, c, DENSITY) for c in crossings]
         tails = [invert(A, transform, 3, eta, v, c, TAIL) for c in crossings]
@@ -64,8 +78,16 @@ def test_the_answer_does_not_depend_on_the_path(transform) -> None:  # type: ign
 def test_secant_of_two_observations_has_its_known_density() -> None:
     """At t = 0 and r = 2 the density is v / (2 sinh(pi v / 2)): Morris 1982, section 4."""
     with balls(120) as A:
-        found = invert(A, Secant(1, F(1), F(0), F(0), F(-3, 2), F(3, 2)), 2, F(0), F(3), F(1), DENSITY)
-        wanted = A.real(3) / (2 * (A.pi * A.real(F(3, 2))).sinh())
+        found = invert(
+            A,
+            Secant(1, Fraction(1), Fraction(0), Fraction(0), Fraction(-3, 2), Fraction(3, 2)),
+            2,
+            Fraction(0),
+            Fraction(3),
+            Fraction(1),
+            DENSITY,
+        )
+        wanted = A.real(3) / (2 * (A.pi * A.real(Fraction(3, 2))).sinh())
         assert found.overlaps(wanted)
         assert found.rel_accuracy_bits() > 90
 
@@ -82,6 +104,6 @@ def test_von_mises_sum_agrees_with_a_real_integral_in_mpmath() -> None:
 
     wanted = mpmath.quad(part, mpmath.linspace(0, 60, 31))
     with balls(70) as A:
-        found = invert(A, Bessel(), 8, F(2), F(9, 2), F(5, 4), DENSITY)
+        found = invert(A, Bessel(), 8, Fraction(2), Fraction(9, 2), Fraction(5, 4), DENSITY)
     assert abs(float(found.mid()) - wanted) < 1e-6
     assert found.rel_accuracy_bits() > 40

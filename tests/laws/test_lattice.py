@@ -1,6 +1,6 @@
 """Lattice sums against exact fractions, closed forms and outside libraries."""
 
-from fractions import Fraction as F
+from fractions import Fraction
 from itertools import product
 from math import comb, factorial
 
@@ -20,7 +20,7 @@ x, t = sp.Symbol("x", integer=True), sp.Symbol("t", positive=True)
 
 def truncated_binomial(trials: int) -> Atoms:
     mass = sp.binomial(trials, x) * t**x * (1 - t) ** (trials - x)
-    return Atoms(1 / (1 - (1 - t) ** trials), mass, "x", "t", 1, trials, space=(F(0), F(1)))
+    return Atoms(1 / (1 - (1 - t) ** trials), mass, "x", "t", 1, trials, space=(Fraction(0), Fraction(1)))
 
 
 def truncated_poisson() -> Atoms:
@@ -32,7 +32,7 @@ def truncated_poisson() -> Atoms:
         "t",
         1,
         None,
-        space=(F(0), None),
+        space=(Fraction(0), None),
         mean=mean,
         variance=mean * (1 + t - mean),
     )
@@ -53,23 +53,27 @@ def skellam(size: int) -> Atoms:
     )
 
 
-def brute_force(trials: int, p: F, n: int) -> dict[int, F]:
+def brute_force(trials: int, p: Fraction, n: int) -> dict[int, Fraction]:
     one = {
         k: comb(trials, k) * p**k * (1 - p) ** (trials - k) / (1 - (1 - p) ** trials)
         for k in range(1, trials + 1)
     }
-    out: dict[int, F] = {}
+    out: dict[int, Fraction] = {}
     for ks in product(one, repeat=n):
-        mass = F(1)
+        mass = Fraction(1)
         for k in ks:
             mass *= one[k]
-        out[sum(ks)] = out.get(sum(ks), F(0)) + mass
+        out[sum(ks)] = out.get(sum(ks), Fraction(0)) + mass
     return out
 
 
 @pytest.mark.parametrize("n", [1, 3])
 def test_zero_truncated_binomial_equals_brute_force_exactly(n: int) -> None:
-    masses, law, A = brute_force(4, F(1, 3), n), LatticeSum(truncated_binomial(4), F(1, 3), n), rationals()
+    masses, law, A = (
+        brute_force(4, Fraction(1, 3), n),
+        LatticeSum(truncated_binomial(4), Fraction(1, 3), n),
+        rationals(),
+    )
     mean = sum(v * m for v, m in masses.items())
     assert law.support == (n, 4 * n)
     assert law.expectation(A) == mean
@@ -82,7 +86,7 @@ def test_zero_truncated_binomial_equals_brute_force_exactly(n: int) -> None:
 
 def test_balls_contain_the_exact_values_at_two_parameter_values_and_precisions() -> None:
     one = truncated_binomial(5)
-    for at in (F(1, 3), F(3, 7)):
+    for at in (Fraction(1, 3), Fraction(3, 7)):
         law = LatticeSum(one, at, 4)
         for prec in (64, 200):
             with balls(prec) as A:
@@ -98,14 +102,16 @@ def stirling(k: int, n: int) -> int:
 
 
 def test_zero_truncated_poisson_has_stirling_masses() -> None:
-    """P(V = k) = n! S(k, n) t**k / (k! (e**t - 1)**n): T. Cacoullos, Ann. Math. Statist. 32 (1961) 904-905 (from memory)."""
+    """P(V = k) = n! S(k, n) t**k / (k! (e**t - 1)**n): T. Cacoullos, Ann. Math. Statist. 32 (1961) 904-905 (from
+    memory).
+    """
     one = truncated_poisson()
     with balls(160) as A:
-        for at in (F(3, 2), F(2)):
+        for at in (Fraction(3, 2), Fraction(2)):
             law = LatticeSum(one, at, 12)
             for k in (12, 19, 30):
                 wanted = (
-                    A.real(F(factorial(12) * stirling(k, 12), factorial(k)) * at**k)
+                    A.real(Fraction(factorial(12) * stirling(k, 12), factorial(k)) * at**k)
                     / (A.exp(A.real(at)) - 1) ** 12
                 )
                 found = law.density(A, k)
@@ -114,7 +120,7 @@ def test_zero_truncated_poisson_has_stirling_masses() -> None:
 
 
 def test_upper_tail_and_lower_tail_sum_to_one_on_a_long_table() -> None:
-    law = LatticeSum(truncated_poisson(), F(3, 2), 300)
+    law = LatticeSum(truncated_poisson(), Fraction(3, 2), 300)
     with balls(130) as A:
         centre = int(float(law.expectation(A)))
         for v in (centre - 60, centre, centre + 60):
@@ -125,7 +131,7 @@ def test_upper_tail_and_lower_tail_sum_to_one_on_a_long_table() -> None:
 def test_two_sided_lattice_agrees_with_its_own_closed_form() -> None:
     """The sum of n Skellam variables is a Skellam variable with n times the rates."""
     with balls(160) as A:
-        law, closed = LatticeSum(skellam(2), F(1, 10), 5), LatticeSum(skellam(10), F(1, 10), 1)
+        law, closed = LatticeSum(skellam(2), Fraction(1, 10), 5), LatticeSum(skellam(10), Fraction(1, 10), 1)
         for v in (-12, -1, 0, 3, 20):
             for name in ("density", "cdf", "sf", "shortfall"):
                 first, second = getattr(law, name)(A, v), getattr(closed, name)(A, v)
@@ -139,14 +145,16 @@ def test_two_sided_lattice_agrees_with_mpmath() -> None:
     root = mpmath.sqrt(rates[0] / rates[1])
     wanted = sum(mpmath.exp(-5 * sum(rates)) * root**k * mpmath.besseli(k, 20) for k in range(-80, 4))
     with balls(120) as A:
-        found = LatticeSum(skellam(2), F(1, 10), 5).cdf(A, 3)
+        found = LatticeSum(skellam(2), Fraction(1, 10), 5).cdf(A, 3)
     assert abs(mpmath.mpf(found.mid().str(28, radius=False)) - wanted) < mpmath.mpf(10) ** -24
 
 
 def test_poisson_through_the_general_route_agrees_with_the_closed_form() -> None:
-    one = Atoms(sp.exp(-t), t**x / sp.factorial(x), "x", "t", 0, None, space=(F(0), None), mean=t, variance=t)
+    one = Atoms(
+        sp.exp(-t), t**x / sp.factorial(x), "x", "t", 0, None, space=(Fraction(0), None), mean=t, variance=t
+    )
     with balls(180) as A:
-        for at in (F(8), F(12)):
+        for at in (Fraction(8), Fraction(12)):
             general, closed = LatticeSum(one, at, 10), Poisson(at * 10)
             for v in (50, 91, 108, 150):
                 for name in ("density", "cdf", "sf", "shortfall"):
@@ -158,27 +166,29 @@ def test_poisson_through_the_general_route_agrees_with_the_closed_form() -> None
 def test_kernel_is_divided_by_its_sum_and_matches_the_hypergeometric_law() -> None:
     """At odds ratio 1 the conditional law of a 2 x 2 table is hypergeometric."""
     kernel = sp.binomial(20, x) * sp.binomial(15, 12 - x) * t**x
-    law = LatticeSum(Atoms(sp.Integer(1), kernel, "x", "t", 0, 12, normalised=False), F(1), 1)
+    law = LatticeSum(Atoms(sp.Integer(1), kernel, "x", "t", 0, 12, normalised=False), Fraction(1), 1)
     for v in range(13):
-        assert law.density(rationals(), v) == F(comb(20, v) * comb(15, 12 - v), comb(35, 12))
-    assert law.expectation(rationals()) == F(12 * 20, 35)
+        assert law.density(rationals(), v) == Fraction(comb(20, v) * comb(15, 12 - v), comb(35, 12))
+    assert law.expectation(rationals()) == Fraction(12 * 20, 35)
 
 
 def test_table_of_weights_with_a_gap() -> None:
-    table = {0: F(1), 1: F(4), 2: F(2), 4: F(3)}
-    law = LatticeSum(Atoms(sp.Integer(1), t**x, "x", "t", 0, 4, normalised=False, table=table), F(2), 1)
+    table = {0: Fraction(1), 1: Fraction(4), 2: Fraction(2), 4: Fraction(3)}
+    law = LatticeSum(
+        Atoms(sp.Integer(1), t**x, "x", "t", 0, 4, normalised=False, table=table), Fraction(2), 1
+    )
     total = 1 + 8 + 8 + 48
     assert [law.density(rationals(), v) * total for v in range(5)] == [1, 8, 8, 0, 48]
 
 
 def test_irrational_masses_are_not_rational() -> None:
     with pytest.raises(NotRational):
-        LatticeSum(truncated_poisson(), F(3, 2), 2).cdf(rationals(), 5)
+        LatticeSum(truncated_poisson(), Fraction(3, 2), 2).cdf(rationals(), 5)
 
 
 def test_a_cut_that_is_too_early_would_be_seen() -> None:
     """The bound of the cut mass is really added: a two-sided answer off the table is an interval from 0."""
-    law = LatticeSum(skellam(2), F(0), 3)
+    law = LatticeSum(skellam(2), Fraction(0), 3)
     with balls(64) as A:
         far = law.cdf(A, -100_000)
     assert far.contains(0)

@@ -1,6 +1,6 @@
 """Sums of logarithms of whole numbers against brute force over products."""
 
-from fractions import Fraction as F
+from fractions import Fraction
 from itertools import product
 
 import mpmath
@@ -19,8 +19,8 @@ MEAN, VARIANCE = cumulants(open_zeta(sp.log(sp.zeta(s))), -s, s)
 ZETA = Atoms(1 / sp.zeta(s), x ** (-s), "x", "s", 1, None, mean=MEAN, variance=VARIANCE)
 
 
-@pytest.mark.parametrize("at", [F(3), F(4)])
-def test_masses_equal_brute_force(at: F) -> None:
+@pytest.mark.parametrize("at", [Fraction(3), Fraction(4)])
+def test_masses_equal_brute_force(at: Fraction) -> None:
     count: dict[int, int] = {}
     for ms in product(range(1, 41), repeat=3):
         m = ms[0] * ms[1] * ms[2]
@@ -30,7 +30,7 @@ def test_masses_equal_brute_force(at: F) -> None:
         front = A.real(at).zeta() ** 3
         total, moment = A.real(0), A.real(0)
         for m in range(1, 41):
-            mass = A.real(F(count[m], m ** int(at))) / front
+            mass = A.real(Fraction(count[m], m ** int(at))) / front
             total, moment = total + mass, moment + mass * A.log(A.real(m))
             assert law.density(A, m).overlaps(mass)
             assert law.cdf(A, m).overlaps(total)
@@ -40,7 +40,7 @@ def test_masses_equal_brute_force(at: F) -> None:
 
 def test_moments_agree_with_mpmath() -> None:
     mpmath.mp.dps = 30
-    law = MultiplicativeSum(ZETA, F(5, 2), 4)
+    law = MultiplicativeSum(ZETA, Fraction(5, 2), 4)
     wanted = -4 * mpmath.zeta(mpmath.mpf("2.5"), derivative=1) / mpmath.zeta(mpmath.mpf("2.5"))
     with balls(120) as A:
         assert abs(mpmath.mpf(law.expectation(A).str(28, radius=False)) - wanted) < mpmath.mpf(10) ** -25
@@ -49,4 +49,4 @@ def test_moments_agree_with_mpmath() -> None:
 
 def test_a_tail_too_far_out_is_undecided() -> None:
     with balls(64) as A, pytest.raises(UndecidedError, match="table of products"):
-        MultiplicativeSum(ZETA, F(3), 2).cdf(A, 10**7)
+        MultiplicativeSum(ZETA, Fraction(3), 2).cdf(A, 10**7)

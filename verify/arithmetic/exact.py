@@ -32,7 +32,8 @@ class Rationals:
             if k.denominator != 1:
                 raise NotRational("a power that is not whole")
             k = k.numerator
-        return x**k
+        result: Fraction = x**k
+        return result
 
     def factorial(self, k: int) -> Fraction:
         """K! as an exact number."""

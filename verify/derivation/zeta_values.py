@@ -8,7 +8,7 @@ import sympy as sp
 from sympy import Expr
 
 
-class zeta_derivative(sp.Function):  # noqa: N801 (the name of the function in formulas)
+class zeta_derivative(sp.Function):  # type: ignore[misc]  # noqa: N801 (the name in formulas)
     """The k-th derivative of Riemann's zeta function at s: ``zeta_derivative(k, s)``.
 
     Examples
