@@ -53,7 +53,11 @@ class Rationals:
 
     def function(self, name: str, *args: Any) -> Fraction:
         """Evaluate a named function of a formula, where its value is rational."""
-        known: dict[str, Callable[..., Fraction]] = {"binomial": self.binomial, "RisingFactorial": self.rising, "Abs": abs}
+        known: dict[str, Callable[..., Fraction]] = {
+            "binomial": self.binomial,
+            "RisingFactorial": self.rising,
+            "Abs": abs,
+        }
         if name not in known:
             raise NotRational(f"{name} has no rational value")
         return known[name](*args)
