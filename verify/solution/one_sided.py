@@ -101,7 +101,7 @@ class TailProblem:
                 if gamma > 0 and gamma < 1:
                     reached = accuracy_bits(gamma)
                     if reached >= wanted:
-                        return Tail(c, _unit(gamma), to_enclosure(beyond + gamma * mass), bits)
+                        return Tail(c, unit(gamma), to_enclosure(beyond + gamma * mass), bits)
                     bits += wanted - reached + 8
                     continue
             if gamma > 1:
@@ -227,5 +227,6 @@ class TailProblem:
         return inner, outer
 
 
-def _unit(gamma: Any) -> Enclosure:
+def unit(gamma: Any) -> Enclosure:
+    """Enclose a fraction."""
     return to_enclosure(gamma, low=Fraction(0), high=Fraction(1))

@@ -19,7 +19,7 @@ from verify.solution.conditions import Conditions
 from verify.solution.continuous_window import ContinuousSearch, solve_continuous_window
 from verify.solution.critical import CriticalFunction, Region
 from verify.solution.lattice_window import LatticeSearch, solve_lattice_window
-from verify.solution.one_sided import TailProblem
+from verify.solution.one_sided import Tail, TailProblem
 from verify.solution.precision import bits_for
 from verify.solution.window import Window, rough_laws, search_precision
 
@@ -290,6 +290,14 @@ def _solve_two_sided(problem: Problem, derivation: Derivation, laws: tuple[Law, 
         window = solve_lattice_window(LatticeSearch(conditions, rough, rising, prec), digits)
     else:
         window = solve_continuous_window(ContinuousSearch(conditions, rough, rising, prec), digits)
+    return with_window(problem, derivation, laws, digits, window)
+
+
+def with_window(
+    problem: Problem, derivation: Derivation, laws: tuple[Law, ...], digits: int, window: Window
+) -> Solution:
+    """Return the solution that a proved window makes."""
+    outside = problem.hypothesis.form is not Form.OUTSIDE
     critical = CriticalFunction("outside" if outside else "inside", window.c1, window.c2, window.phi1, window.phi2)
     return Solution(
         problem, derivation, digits, critical, laws, _two_conditions(problem, window),
@@ -312,9 +320,15 @@ def _two_conditions(problem: Problem, window: Window) -> tuple[SideCondition, ..
 
 def _solve_one_sided(problem: Problem, derivation: Derivation, laws: tuple[Law, ...], digits: int) -> Solution:
     rough, _, _ = rough_laws(laws)
-    above = _rejects_above(problem, derivation)
+    above = rejects_above(problem, derivation)
     prec = search_precision(rough, problem.levels, 0)
     tail = TailProblem(laws[0], problem.levels[0], above, rough[0], prec).solve(digits)
+    return with_tail(problem, derivation, laws, digits, tail)
+
+
+def with_tail(problem: Problem, derivation: Derivation, laws: tuple[Law, ...], digits: int, tail: Tail) -> Solution:
+    """Return the solution that a proved one-sided cutoff makes."""
+    above = rejects_above(problem, derivation)
     critical = CriticalFunction("above" if above else "below", tail.c, tail.c, tail.phi, tail.phi)
     condition = SideCondition(problem.hypothesis.limits[0], problem.levels[0], tail.condition, "phi")
     return Solution(
@@ -323,7 +337,7 @@ def _solve_one_sided(problem: Problem, derivation: Derivation, laws: tuple[Law, 
     )  # fmt: skip
 
 
-def _rejects_above(problem: Problem, derivation: Derivation) -> bool:
+def rejects_above(problem: Problem, derivation: Derivation) -> bool:
     """Whether the one-sided test rejects large Y: the sign of Q', of the scale, and the side of the alternative."""
     if derivation.rising is None:
         raise UndecidedError("the direction of the natural parameter is not known, so neither is the side to reject on")

@@ -80,13 +80,14 @@ def _problem(
 ) -> Problem:
     family, form = draw(st.sampled_from(families)), draw(st.sampled_from(forms))
     if profile.ties and family.trials and draw(st.integers(0, 4)) == 0:
-        null, alpha, n = draw(tie(family, form))
-        return Problem(family.density, null, alpha, n)
+        null, tied, n = draw(tie(family, form))
+        return Problem(family.density, null, tied, n)
     two = form in (Form.OUTSIDE, Form.INTERVAL)
     low, high = draw(profile.limits(family.room))
     null = null_text(form, low, high, below=draw(st.booleans()))
-    alpha: str | tuple[str, str] = draw(profile.alpha)
-    if levels == 2 and two:
-        other = Fraction(alpha) * draw(st.sampled_from([Fraction(1, 2), Fraction(9, 10), Fraction(99, 100)]))
-        alpha = draw(st.sampled_from([(alpha, str(other)), (str(other), alpha)]))
-    return Problem(family.density, null, alpha, draw(profile.n))
+    level = draw(profile.alpha)
+    n = draw(profile.n)
+    if levels == 1 or not two:
+        return Problem(family.density, null, level, n)
+    other = str(Fraction(level) * draw(st.sampled_from([Fraction(1, 2), Fraction(9, 10), Fraction(99, 100)])))
+    return Problem(family.density, null, draw(st.sampled_from([(level, other), (other, level)])), n)
