@@ -186,7 +186,7 @@ def moments(law: LatticeSum, A: Any) -> tuple[Number, Number]:
         total = sum(masses, A.real(0))
         ys = range(one.first, one.last + 1)
         mean = sum((y * m for y, m in zip(ys, masses, strict=True)), A.real(0)) / total
-        square = sum(((y - mean) ** 2 * m for y, m in zip(ys, masses, strict=True)), A.real(0)) / total
+        square = sum(((y - mean) * (y - mean) * m for y, m in zip(ys, masses, strict=True)), A.real(0)) / total
         one.cache[key] = (mean, square)
     found: tuple[Number, Number] = one.cache[key]
     return found

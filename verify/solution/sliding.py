@@ -30,6 +30,7 @@ def slide(conditions: Conditions, rough: tuple[Rough, ...], rising: bool, prec: 
         while high - low > 1:
             middle = (low + high) // 2
             low, high = (middle, high) if window.excess(middle) <= 0 else (low, middle)
+        low = window.law.atom(low, 1)
         return low, window.outermost(low, max(window.end(low), low + 1))
 
 
@@ -93,11 +94,11 @@ class _Sliding:
         while high - low > 1:
             middle = (low + high) // 2
             low, high = (middle, high) if self._wants_more(c1, middle) else (low, middle)
-        return int(high)
+        return self.law.atom(int(high), 1)
 
     def _wants_more(self, c1: int, c2: int) -> bool:
         """Whether the window on these two atoms would need more than the whole of c2."""
-        fraction = end_fractions(self.conditions, self.A, c1, c2)[1]
+        fraction = end_fractions(self.conditions, self.A, c1, self.law.atom(c2, 1))[1]
         return bool(fraction.mid() < 0 if self.conditions.outside else fraction.mid() > 1)
 
     def excess(self, c1: int) -> Any:
