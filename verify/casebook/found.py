@@ -119,7 +119,12 @@ def _found(case: Case, digits: int, budget: float) -> Found:
     claimed = any(key in case.claim for key in (*NUMBER_KEYS, *DERIVATION_KEYS))
     if not claimed:
         return facts
-    return _reviewed(case, Setting(case.problem, derivation, digits, {"right": solution.critical}), facts)
+    return _reviewed(case, setting_of(solution), facts)
+
+
+def setting_of(solution: Solution) -> Setting:
+    """Return the setting in which claims about a solved problem are judged."""
+    return Setting(solution.problem, solution.derivation, solution.digits, {"right": solution.critical})
 
 
 def _derived_facts(derivation: Derivation) -> Found:

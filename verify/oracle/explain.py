@@ -1,0 +1,77 @@
+"""The slip that explains a developer's numbers, and what follows from them for the level."""
+
+from __future__ import annotations
+
+from collections.abc import Iterator, Mapping
+from decimal import ROUND_HALF_EVEN, Context, Decimal
+from fractions import Fraction
+
+from verify.arithmetic.enclosure import Enclosure
+from verify.casebook.found import setting_of
+from verify.errors import InputError, UndecidedError
+from verify.problem.numbers import exact_text
+from verify.review.consequences import Consequences
+from verify.review.judge import Options
+from verify.review.printed import read_printed
+from verify.review.review import review_numbers
+from verify.review.setting import Setting
+from verify.review.style import Style
+from verify.review.verdict import Outcome, Verdict
+from verify.solution.solve import Solution
+
+ROUNDINGS = (8, 6, 4, 3)
+"""Digits to which the numbers are printed when a slip is looked for: a slip seldom explains rounding errors too."""
+
+
+def printed(value: Fraction, digits: int) -> str:
+    """Write a number with so many significant digits, a whole number in full.
+
+    Examples
+    --------
+    >>> printed(Fraction(0.1), 6), printed(Fraction(95), 3), printed(Fraction(12345678, 100), 3)
+    ('0.100000', '95', '123456.78')
+    """
+    near = round(value)
+    if abs(value - near) <= abs(value) / 10**12:
+        return str(near)
+    size = len(str(abs(int(value)))) if abs(value) >= 1 else 0
+    places = max(digits - size, 2 if size else digits)
+    context = Context(prec=places + size + 5, rounding=ROUND_HALF_EVEN)
+    number = context.divide(Decimal(value.numerator), Decimal(value.denominator))
+    return format(number.quantize(Decimal(1).scaleb(-places), context=context), "f")
+
+
+def same_test(values: Mapping[str, Fraction], solution: Solution, digits: int) -> bool:
+    """Whether the numbers are another way to write the proven test."""
+    if not solution.laws[0].lattice:
+        return False
+    verdict = _verdict(values, setting_of(solution), digits)
+    return isinstance(verdict, Verdict) and verdict.outcome in (Outcome.AGREES, Outcome.LAST_DIGIT)
+
+
+def explanation(values: Mapping[str, Fraction], solution: Solution) -> list[str]:
+    """Return sentences: the slips that give these numbers, and whether the level is kept."""
+    setting = setting_of(solution)
+    verdicts = [_verdict(values, setting, digits) for digits in ROUNDINGS]
+    judged = [verdict for verdict in verdicts if isinstance(verdict, Verdict)]
+    if not judged:
+        return [f"  They are not the numbers of a test: {verdicts[0]}"]
+    best = next((verdict for verdict in judged if verdict.slips), judged[0])
+    slips = [f"  {slip.sentence[:-1]} ({slip.name})." for slip in best.slips]
+    return [*(slips or ["  No known slip gives them."]), *_level(best.consequences)]
+
+
+def _verdict(values: Mapping[str, Fraction], setting: Setting, digits: int) -> Verdict | str:
+    numbers = {name: read_printed(printed(value, digits), name) for name, value in values.items()}
+    try:
+        return review_numbers(setting, numbers, Style(), {}, Options(loss=False))
+    except (InputError, UndecidedError) as error:
+        return str(error)
+
+
+def _level(result: Consequences | None) -> Iterator[str]:
+    if result is None or result.size is None or result.level_kept is not False:
+        return
+    size = result.size
+    level = exact_text(size.level) if not isinstance(size.level, Enclosure) else size.level.text(6)
+    yield f"  With them the size is {size.value.text(6)} (at {size.at}) and not {level}: the level is not kept."
