@@ -17,6 +17,7 @@ from verify.problem.keys import (
     CLAIM_KEYS,
     DENSITY_KEYS,
     EXPECT_KEYS,
+    GRID_KEYS,
     PROBLEM_KEYS,
     TABLE_KEYS,
     DecimalText,
@@ -80,6 +81,11 @@ class CaseText:
         """The table ``[expect]``."""
         return dict(self.tables.get("expect", {}))
 
+    @property
+    def grid(self) -> dict[str, Any]:
+        """The table ``[grid]``."""
+        return dict(self.tables.get("grid", {}))
+
     def read(self) -> Case:
         """Read the density and the problem.
 
@@ -142,7 +148,7 @@ def read_case(path: str | Path, text: str | None = None) -> Case:
 def read_case_text(path: str | Path, text: str | None = None) -> CaseText:
     """Read a case file and check its keys and types, but not yet what the texts in it say."""
     place = str(path)
-    data = _bytes(place) if text is None else text.encode("utf-8", "surrogateescape")
+    data = case_bytes(place) if text is None else text.encode("utf-8", "surrogateescape")
     try:
         if len(data) > MAX_BYTES:
             raise InputError("the file is too big", f"at most {MAX_BYTES} bytes are read")
@@ -161,6 +167,7 @@ _TABLES = {
     "claim": CLAIM_KEYS,
     "expect": EXPECT_KEYS,
     "table": TABLE_KEYS,
+    "grid": GRID_KEYS,
 }
 
 
@@ -168,7 +175,8 @@ def _name(place: str) -> str:
     return "stdin" if place == "-" else Path(place).name.removesuffix(SUFFIX)
 
 
-def _bytes(place: str) -> bytes:
+def case_bytes(place: str) -> bytes:
+    """Read a file, or standard input for ``-``; a byte more than is accepted tells that it is too big."""
     if place == "-":
         return sys.stdin.buffer.read(MAX_BYTES + 1)
     try:

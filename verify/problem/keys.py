@@ -53,7 +53,17 @@ TEXTS = Kind(
 TABLE = Kind(lambda v: isinstance(v, dict), "a table")
 WINDOW = Kind(lambda v: v in ("closed", "open"), '"closed" or "open"')
 REGION = Kind(lambda v: v in ("reject inside", "accept inside"), '"reject inside" or "accept inside"')
+FRACTIONS = Kind(lambda v: v in ("of rejection", "of acceptance"), '"of rejection" or "of acceptance"')
 REPORTED = Kind(lambda v: v in ("sum", "mean") or _is_number(v), '"sum", "mean" or a divisor')
+LEVEL_LIST = Kind(
+    lambda v: isinstance(v, list) and bool(v) and all(map(LEVELS.fits, v)),
+    'a list of levels, e.g. ["0.05", "0.01"], each one level or two',
+)
+LIST = Kind(lambda v: bool(NUMBERS.fits(v)) and bool(v), 'a list of exact numbers, e.g. ["8", "17/2"]')
+SIZES = Kind(
+    lambda v: _is_text(v) or (isinstance(v, list) and bool(v) and all(type(n) is int for n in v)),
+    'a list of whole numbers, e.g. [10, 20], or a range, e.g. "10..100"',
+)
 COLUMN = Kind(lambda v: isinstance(v, str | int) and not isinstance(v, bool), "the name of a column")
 
 
@@ -68,7 +78,7 @@ class Keys:
 CASE_KEYS = Keys(
     {
         "title": TEXT, "source": TEXT,
-        "density": TABLE, "problem": TABLE, "claim": TABLE, "expect": TABLE, "table": TABLE,
+        "density": TABLE, "problem": TABLE, "claim": TABLE, "expect": TABLE, "table": TABLE, "grid": TABLE,
     }
 )  # fmt: skip
 DENSITY_KEYS = Keys(
@@ -83,7 +93,7 @@ PROBLEM_KEYS = Keys(
     {"null": TEXT, "alternative": TEXT, "alpha": LEVELS, "n": NUMBER},
     ("null", "alpha", "n"),
 )
-_HOW_MEANT = {"reported_as": REPORTED, "window": WINDOW, "region": REGION}
+_HOW_MEANT = {"reported_as": REPORTED, "window": WINDOW, "region": REGION, "fractions": FRACTIONS}
 _CUTOFFS = ("c1", "c2", "gamma1", "gamma2", "c", "gamma")
 CLAIM_KEYS = Keys(
     {
@@ -109,6 +119,9 @@ TABLE_KEYS = Keys(
     }
 )
 """Columns of a claim table, by what they hold, and how the numbers in them are meant."""
+
+GRID_KEYS = Keys({"lower": LIST, "upper": LIST, "limit": LIST, "alpha": LEVEL_LIST, "n": SIZES})
+"""Lists that vary the problem of a case file over a grid of designs."""
 
 
 def check_table(table: Mapping[str, Any], keys: Keys, place: str) -> None:
