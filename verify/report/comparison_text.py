@@ -16,6 +16,7 @@ def comparison_text(comparison: Comparison) -> str:
     lines = [heading(4, "Compared with double precision"), table(_opinion_rows(comparison))]
     remarks = [(opinion.route, opinion.failure or opinion.note) for opinion in opinions]
     lines += [wrapped(text, first=f"  {route}: ", rest="    ") for route, text in remarks if text]
+    lines.append(wrapped(_engine_line(comparison), first="  mpmath: ", rest="    "))
     if comparison.condition is not None:
         lines.append(
             f"  A relative error e in a tail moves these numbers by up to {comparison.condition:.2g} e."
@@ -31,6 +32,15 @@ def comparison_text(comparison: Comparison) -> str:
     if trusted:
         lines.append(f"  No flag: here double precision ({', '.join(trusted)}) is right to the digits shown.")
     return "\n".join(lines)
+
+
+def _engine_line(comparison: Comparison) -> str:
+    """Say how far mpmath, at full precision, reproduces the proven numbers."""
+    engine = comparison.mpmath
+    if not engine.digits:
+        return engine.note
+    found = ", ".join(f"{digits} of {name}" for name, digits in engine.digits.items())
+    return f"the same formulas in another engine reproduce {found} (digits of those asked for; checked, not proved)"
 
 
 def _opinion_rows(comparison: Comparison) -> list[list[str]]:

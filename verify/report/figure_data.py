@@ -1,0 +1,215 @@
+"""What the figures of a certificate show, as numbers for drawing."""
+
+from __future__ import annotations
+
+from collections.abc import Callable
+from dataclasses import dataclass
+from fractions import Fraction
+from typing import TYPE_CHECKING, Any
+
+from verify.certificate.claims import ends
+from verify.problem.numbers import exact, exact_text
+from verify.report.figure_laws import LawAt, density_of, law_at, limits_of, number, shown
+
+if TYPE_CHECKING:
+    from verify.derivation.family import LawFamily
+    from verify.laws.base import Law
+
+MOST_ATOMS = 240
+"""Lattice points drawn one by one; beyond, the masses are drawn as a curve."""
+CURVE = 160
+REACH = {"inside": 2.5, "outside": 4.5, "above": 4.0, "below": 4.0}
+"""How far the power function is followed beyond the limits, in standard deviations of V."""
+
+
+@dataclass(frozen=True)
+class Line:
+    """The law at one limit: the limit for the legend, and its points."""
+
+    label: str
+    x: list[float]
+    y: list[float]
+
+
+@dataclass(frozen=True)
+class LawsFigure:
+    """The critical function, and the laws at the limits, over V."""
+
+    lattice: bool
+    laws: list[Line]
+    x: list[float]
+    phi: list[float]
+    cutoffs: list[float]
+
+
+@dataclass(frozen=True)
+class PowerFigure:
+    """The power function over the parameter."""
+
+    parameter: str
+    t: list[float]
+    power: list[float]
+    limits: list[float]
+    levels: list[float]
+    null: list[tuple[float, float]]
+
+
+@dataclass(frozen=True)
+class Test:
+    """The test of a certificate on the scale of the sum of Y.
+
+    Attributes
+    ----------
+    rejects : str
+        inside, outside, above or below, on this scale.
+    low, high : Fraction
+        Ends on this scale, equal when one-sided.
+    at_low, at_high : float
+        Fractions with which it rejects there (0 where the law is continuous).
+    scale, shift : float
+        V = scale * sum of Y + shift.
+    """
+
+    __test__ = False
+    rejects: str
+    low: Fraction
+    high: Fraction
+    at_low: float
+    at_high: float
+    scale: float
+    shift: float
+
+    def phi(self, y: float) -> float:
+        """The critical function."""
+        low, high = float(self.low), float(self.high)
+        if y == low:
+            return self.at_low
+        if y == high:
+            return self.at_high
+        return float({"inside": low < y < high, "outside": not low <= y <= high, "above": y > high}.get(self.rejects, y < low))
+
+    def power(self, law: Law) -> float:
+        """The probability of rejection under a law."""
+        low, high = (int(self.low), int(self.high)) if law.lattice else (self.low, self.high)
+        ball = (lambda A, y: y) if law.lattice else (lambda A, y: A.real(y))
+        step = 1 if law.lattice else 0
+        tails: dict[str, Callable[[Any], Any]] = {
+            "below": lambda A: law.cdf(A, ball(A, low - step)),
+            "above": lambda A: law.sf(A, ball(A, high)),
+            "outside": lambda A: law.cdf(A, ball(A, low - step)) + law.sf(A, ball(A, high)),
+            "inside": lambda A: law.cdf(A, ball(A, high - step)) - law.cdf(A, ball(A, low)),
+        }
+        total = 0.0 if self.rejects == "inside" and low == high else number(tails[self.rejects])
+        if law.lattice:
+            for y, fraction in {low: self.at_low, high: self.at_high}.items():
+                total += fraction * number(lambda A, y=y: law.density(A, y)) if fraction else 0.0
+        return min(max(total, 0.0), 1.0)
+
+
+def read_test(predicate: dict[str, Any]) -> Test:
+    """Return the test of a certificate, with ends exchanged where V falls as Y rises."""
+    stated, n = predicate["test"], predicate["problem"]["n"]
+    scale, shift = shown(exact(predicate["law"]["scale"])), n * shown(exact(predicate["law"]["shift"]))
+    found = []
+    for y, c, gamma in (("y", "c", "gamma"), ("y1", "c1", "gamma1"), ("y2", "c2", "gamma2")):
+        if c in stated:
+            place = Fraction(stated[y]) if y in stated else (_mid(stated[c]) - Fraction(shift)) / Fraction(scale)
+            found.append((place, float(_mid(stated[gamma])) if gamma in stated else 0.0))
+    rejects = stated["rejects"]
+    if scale < 0:
+        rejects = {"above": "below", "below": "above"}.get(rejects, rejects)
+    found.sort()
+    (low, at_low), (high, at_high) = found[0], found[-1]
+    return Test(rejects, low, high, at_low, at_high, scale, shift)
+
+
+def _mid(claim: Any) -> Fraction:
+    low, high = ends(claim)
+    return (low + high) / 2
+
+
+def laws_figure(predicate: dict[str, Any], family: LawFamily | None = None) -> LawsFigure:
+    """Return the numbers of the first figure."""
+    at, test = law_at(predicate, family), read_test(predicate)
+    limits = limits_of(predicate)
+    laws = [at(limit) for limit in limits]
+    grid = _grid(laws, test)
+    x = [test.scale * y + test.shift for y in grid]
+    lines = [
+        Line(exact_text(limit), x, [_density(law, y) / (1 if law.lattice else abs(test.scale)) for y in grid])
+        for law, limit in zip(laws, limits, strict=True)
+    ]
+    cutoffs = [test.scale * float(y) + test.shift for y in (test.low, test.high)]
+    return LawsFigure(laws[0].lattice, lines, x, [test.phi(float(y)) for y in grid], sorted(set(cutoffs)))
+
+
+def _density(law: Law, y: float) -> float:
+    return number(lambda A: law.density(A, y if law.lattice else A.real(Fraction(y))))
+
+
+def _grid(laws: list[Law], test: Test) -> list[Any]:
+    """Where the laws are drawn: four standard deviations around their means, and around the cutoffs."""
+    spans = [(number(law.expectation), number(law.spread)) for law in laws]
+    low = min(*(mean - 4 * spread for mean, spread in spans), float(test.low) - spans[0][1] / 2)
+    high = max(*(mean + 4 * spread for mean, spread in spans), float(test.high) + spans[-1][1] / 2)
+    first, last = laws[0].support
+    low, high = max(low, float(first)) if first is not None else low, min(high, float(last)) if last is not None else high
+    if not laws[0].lattice:
+        inset = (high - low) / (20 * CURVE) if first is not None and low == float(first) else 0.0
+        return [low + inset + (high - low - inset) * k / CURVE for k in range(CURVE + 1)]
+    start, stop = int(low // 1), int(-(-high // 1))
+    step = max(1, -(-(stop - start) // MOST_ATOMS))
+    points = set(range(start, stop + 1, step)) | {int(test.low), int(test.high)}
+    return sorted(points | ({int(test.low) + 1, int(test.high) - 1} if step > 1 else set()))
+
+
+def power_figure(predicate: dict[str, Any], family: LawFamily | None = None) -> PowerFigure:
+    """Return the numbers of the second figure."""
+    at, test = law_at(predicate, family), read_test(predicate)
+    limits = limits_of(predicate)
+    space = density_of(predicate).parsed_space
+    ends_ = [None if end.is_infinite else number(lambda A, end=end: A.real(end)) for end in (space.lower, space.upper)]
+    reach = REACH[test.rejects]
+    floats = [shown(limit) for limit in limits]
+    start, stop = (_far(at, floats, side, reach, ends_[side > 0]) for side in (-1, 1))
+    count = 120 if predicate["law"]["name"] in ("Poisson", "binomial", "negative binomial", "gamma", "normal") else 40
+    points = sorted({*(start + (stop - start) * k / count for k in range(count + 1)), *floats})
+    power = [test.power(at(Fraction(t).limit_denominator(10**9))) for t in points]
+    levels = [number(lambda A, text=text: A.real(exact(text))) for text in predicate["problem"]["alpha"]]
+    return PowerFigure(
+        predicate["problem"]["density"]["parameter"], points, power, floats, levels, _null(predicate, floats, start, stop)
+    )
+
+
+def _null(predicate: dict[str, Any], limits: list[float], start: float, stop: float) -> list[tuple[float, float]]:
+    """The null on the axis, as intervals."""
+    form, text = predicate["test"]["form"], predicate["problem"]["null"]
+    if form == "outside null":
+        return [(start, limits[0]), (limits[-1], stop)]
+    if form == "one-sided":
+        return [(start, limits[0])] if "<" in text else [(limits[0], stop)]
+    return [(limits[0], limits[-1])]
+
+
+def _far(at: LawAt, limits: list[float], side: int, reach: float, end: float | None) -> float:
+    """Walk from the outer limit until V's mean has moved by so many standard deviations, or to the end of the space."""
+    limit = limits[0] if side < 0 else limits[-1]
+    law = at(Fraction(limit).limit_denominator(10**9))
+    mean, wanted = number(law.expectation), reach * number(law.spread)
+
+    def moved(t: float) -> bool:
+        return abs(number(at(Fraction(t).limit_denominator(10**9)).expectation) - mean) >= wanted
+
+    margin = None if end is None else abs(end - limit)
+    near, step = 0.0, abs(limit) / 64 or 1 / 64
+    while margin is None or step < margin:
+        if moved(limit + side * step):
+            break
+        near, step = step, 2 * step
+    far = step if margin is None else min(step, margin * 0.995)
+    if margin is not None and not moved(limit + side * far):
+        return limit + side * far
+    for _ in range(12):
+        middle = (near + far) / 2
+        near, far = (near, middle) if moved(limit + side * middle) else (middle, far)
+    return limit + side * far
