@@ -3,18 +3,19 @@
 from __future__ import annotations
 
 from collections.abc import Callable
-from dataclasses import asdict, dataclass
+from dataclasses import asdict, dataclass, field
 from fractions import Fraction
 from functools import partial
 from typing import TYPE_CHECKING, Any
 
 from verify.comparison.brute_force import brute_force_opinion
 from verify.comparison.condition import sensitivity
-from verify.comparison.flags import Flag, flags_of
+from verify.comparison.flags import Flag, engine_flags, flags_of
 from verify.comparison.limits import MEMORY, SECONDS, Outcome, run_limited
 from verify.comparison.opinion import Opinion, Truth, opinion_of
 from verify.comparison.question import Answer, Question, proven_numbers, question
 from verify.comparison.scipy_route import scipy_opinion
+from verify.solution.second_engine import second_engine
 
 if TYPE_CHECKING:
     from verify.solution.solve import Solution
@@ -24,6 +25,22 @@ ROUTES: dict[str, Callable[[Question], Answer]] = {
     "brute force": brute_force_opinion,
 }
 """Name -> route."""
+
+
+@dataclass(frozen=True)
+class SecondEngine:
+    """The side conditions solved once more in mpmath, from the same formulas, in an engine that shares no code.
+
+    Attributes
+    ----------
+    digits : dict of str to int
+        For each number, the significant digits that it reproduces of those asked for.
+    note : str
+        Why there are none, when there are none.
+    """
+
+    digits: dict[str, int]
+    note: str = ""
 
 
 @dataclass(frozen=True)
@@ -38,11 +55,14 @@ class Comparison:
         What a reader has to be warned of; empty when both routes are right.
     condition : float or None
         A relative error eps in the tails moves the numbers by up to condition * eps.
+    mpmath : SecondEngine
+        What mpmath makes of the same side conditions at the full number of digits.
     """
 
     opinions: tuple[Opinion, ...]
     flags: tuple[Flag, ...]
     condition: float | None
+    mpmath: SecondEngine = field(default_factory=lambda: SecondEngine({}, "not asked"))
 
     def as_json(self) -> dict[str, Any]:
         """Plain dictionaries, lists, strings and numbers."""
@@ -62,9 +82,8 @@ def compare(solution: Solution, *, seconds: float = SECONDS, memory: int = MEMOR
     Returns
     -------
     Comparison
-        A library's failure is a flag, never an exception. The routes share no code with the solution; where
-        they agree with
-        it, that is evidence, not proof.
+        A library's failure is a flag, never an exception. The routes share no code with the solution; where they agree
+        with it, that is evidence, not proof.
 
     Examples
     --------
@@ -76,23 +95,28 @@ def compare(solution: Solution, *, seconds: float = SECONDS, memory: int = MEMOR
     (['10', '10'], ())
     """
     truth = _truth(solution)
+    calls: list[Callable[[], Any]] = [partial(second_engine, solution)]
+    beyond_doubles = ""
     try:
         ask = question(solution)
+        if min(ask.levels) < 1e-290:
+            beyond_doubles = "the level is at the edge of the doubles or below it"
     except OverflowError as error:
-        outcomes = tuple(
-            Outcome(not_attempted=f"a number of the problem fits into no double ({error})") for _ in ROUTES
-        )
-    else:
-        outcomes = _outcomes(ask, seconds, memory)
+        beyond_doubles = f"a number of the problem fits into no double ({error})"
+    if not beyond_doubles:
+        calls += [partial(route, ask) for route in ROUTES.values()]
+    high, *outcomes = run_limited(calls, seconds, memory)
+    if beyond_doubles:
+        outcomes = [Outcome(not_attempted=beyond_doubles) for _ in ROUTES]
     opinions = tuple(_opinion(route, truth, outcome) for route, outcome in zip(ROUTES, outcomes, strict=True))
-    return Comparison(opinions, flags_of(truth, opinions), truth.sensitivity.condition)
+    flags = (*flags_of(truth, opinions), *engine_flags(high.value or {}, solution.digits))
+    return Comparison(opinions, flags, truth.sensitivity.condition, _second_engine(high))
 
 
-def _outcomes(ask: Question, seconds: float, memory: int) -> tuple[Outcome, ...]:
-    if min(ask.levels) < 1e-290:
-        return tuple(Outcome(not_attempted="the level is at the edge of the doubles or below it") for _ in ROUTES)
-
-    return run_limited([partial(route, ask) for route in ROUTES.values()], seconds, memory)
+def _second_engine(outcome: Outcome) -> SecondEngine:
+    if outcome.value is None:
+        return SecondEngine({}, f"no answer: {outcome.failure or outcome.not_attempted}")
+    return SecondEngine(outcome.value)
 
 
 def _opinion(route: str, truth: Truth, outcome: Outcome) -> Opinion:

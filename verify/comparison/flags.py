@@ -12,6 +12,8 @@ ENOUGH = 10
 """Digits below which a double-precision number is flagged."""
 ENOUGH_FRACTION = 6
 """A fraction gamma may agree to fewer, as long as the level it spends is right to ``ENOUGH`` digits."""
+NEARLY = 2
+"""Digits that rounding in mpmath may cost before it is worth a warning."""
 ILL = 1e6
 """Condition from which more than six of a double's sixteen digits are lost, whatever the solver."""
 
@@ -38,6 +40,21 @@ class Flag:
     number: str
     text: str
     route: str = ""
+
+
+def engine_flags(digits: dict[str, int], wanted: int) -> tuple[Flag, ...]:
+    """Warn where mpmath does not reproduce a proven number to (nearly) the digits asked for.
+
+    Examples
+    --------
+    >>> engine_flags({"gamma1": 50, "gamma2": 31}, 50)[0].text
+    'mpmath reproduces 31 of 50 digits of gamma2'
+    """
+    return tuple(
+        Flag("few digits", name, f"mpmath reproduces {found} of {wanted} digits of {name}", "mpmath")
+        for name, found in digits.items()
+        if found < wanted - NEARLY
+    )
 
 
 def flags_of(truth: Truth, opinions: tuple[Opinion, ...]) -> tuple[Flag, ...]:

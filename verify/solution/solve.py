@@ -104,7 +104,8 @@ class Solution(Shown):
         return weakest([self.derivation.grade, *(step.grade for step in self.steps if step.name == "numbers")])
 
     @cached_property
-    def _flipped(self) -> bool:
+    def flipped(self) -> bool:
+        """Whether V = scale * Y + n * shift turns the order round."""
         with balls(64) as A:
             return bool(A.real(self.family.scale) < 0)
 
@@ -113,7 +114,7 @@ class Solution(Shown):
         """Where the test rejects, on the scale of V."""
         turned: dict[Region, Region] = {"above": "below", "below": "above"}
         region = self.critical.region
-        return turned.get(region, region) if self._flipped else region
+        return turned.get(region, region) if self.flipped else region
 
     def _on_scale(self, c: Any) -> Enclosure:
         """Bring a cutoff from the scale of Y to that of V."""
@@ -131,7 +132,7 @@ class Solution(Shown):
 
     def _ends(self) -> tuple[Any, Any]:
         first, second = (self.critical.c1, self.critical.phi1), (self.critical.c2, self.critical.phi2)
-        return (second, first) if self._flipped else (first, second)
+        return (second, first) if self.flipped else (first, second)
 
     @cached_property
     def c1(self) -> Enclosure | None:
