@@ -52,15 +52,17 @@ def write_bundle(certificates: Mapping[str, bytes], directory: Path, *, force: b
 
     The index is for finding one's way; each certificate is rechecked alone.
     """
-    files: dict[str, bytes] = {}
-    entries = []
-    for name, data in sorted(certificates.items()):
+    files = {"index.json": bundle_index(certificates)}
+    for name, data in certificates.items():
         files |= {f"{name}.cert.json": data, f"{name}.cert.txt": data}
-        entries.append(_index_entry(name, data))
-    text = json.dumps({"certificates": entries}, sort_keys=True, separators=(",", ":"), ensure_ascii=False)
-    files["index.json"] = text.encode()
     write_files(files, directory, force=force)
     return directory / "index.json"
+
+
+def bundle_index(certificates: Mapping[str, bytes]) -> bytes:
+    """Return ``index.json`` of a bundle."""
+    entries = [_index_entry(name, data) for name, data in sorted(certificates.items())]
+    return json.dumps({"certificates": entries}, sort_keys=True, separators=(",", ":"), ensure_ascii=False).encode()
 
 
 def _index_entry(name: str, data: bytes) -> dict[str, str]:

@@ -15,6 +15,7 @@ COMMANDS: dict[str, tuple[str, str]] = {
     "decide": ("verify.cli.decide", "apply the proven test to an observed statistic"),
     "casebook": ("verify.cli.casebook", "run every case of some folders against what it expects"),
     "answers": ("verify.cli.answers", "write a table of proven cutoffs over a grid of designs"),
+    "certify": ("verify.cli.certify", "write a certificate that others can recheck, and its page"),
     "recheck": ("verify.cli.recheck", "check a certificate with the small independent checker"),
 }
 """Name of the command -> its module, and what it does in one line."""

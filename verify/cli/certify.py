@@ -1,0 +1,122 @@
+"""``sidecheck certify``: the certificate, its page and its rechecker, into a folder."""
+
+from __future__ import annotations
+
+import argparse
+import re
+from typing import TYPE_CHECKING, Any
+
+from verify.cli import status
+from verify.cli.options import add_budget, add_json, digits
+from verify.cli.output import note, show_json
+from verify.errors import InputError, UndecidedError
+
+if TYPE_CHECKING:
+    from verify.certificate.certify import Certificate
+    from verify.derivation.derive import Derivation
+    from verify.problem.casefile import Case
+
+EXAMPLE = "sidecheck certify casebook/demo/lot-release.case.toml -o out --paper letter --issued 2026-12-01"
+
+NAME = re.compile(r"[A-Za-z0-9][A-Za-z0-9._-]{0,99}")
+"""What may be the name of a file on every system, and in a command line without quotes."""
+RESERVED = ("index", "recheck")
+
+
+def add(parser: argparse.ArgumentParser) -> None:
+    """Add the arguments of the command."""
+    parser.add_argument("cases", nargs="+", metavar="CASE", help="case files, NAME.case.toml, or - for standard input")
+    parser.add_argument("-o", "--out", required=True, metavar="DIR", help="folder for the files; made if it is not there")
+    parser.add_argument("--paper", choices=("a4", "letter"), default="a4", help="paper of the PDF (default a4)")
+    parser.add_argument("--digits", type=digits, default=50, metavar="N", help="significant digits to certify (default 50)")
+    parser.add_argument(
+        "--tolerance", default="1/1000000", metavar="X",
+        help="how far an expectation may move when numbers are printed to k decimals (default 1/1000000)",
+    )  # fmt: skip
+    parser.add_argument("--issued", default="", metavar="DATE", help="date or words of issue (default: SOURCE_DATE_EPOCH, if set)")
+    parser.add_argument("--no-pdf", action="store_true", help="leave out the PDF")
+    parser.add_argument("--force", action="store_true", help="overwrite files that differ")
+    add_budget(parser)
+    add_json(parser)
+
+
+def run(args: argparse.Namespace) -> int:
+    """Certify every case, recheck what was made, and write all files together; several cases make a bundle.
+
+    Nothing is written unless every case has its certificate.
+    """
+    from pathlib import Path
+
+    from verify.certificate.write import bundle_index, write_files
+    from verify.report.publish import certificate_files, overview_files, require_printers
+
+    require_printers(pdf=not args.no_pdf)
+    made: dict[str, Certificate] = {}
+    files: dict[str, bytes] = {}
+    for case in _cases(args.cases):
+        certificate, derivation = _certificate(case, args)
+        if certificate is None:
+            return status.DIFFERS
+        made[case.name] = certificate
+        files |= certificate_files(
+            case.name, certificate.data, paper=args.paper, pdf=not args.no_pdf, family=derivation.family
+        )
+    if len(made) > 1:
+        data = {name: certificate.data for name, certificate in made.items()}
+        files |= overview_files(data, paper=args.paper, pdf=not args.no_pdf)
+        files["index.json"] = bundle_index(data)
+    write_files(files, Path(args.out), force=args.force)
+    _show(args, made, sorted(files))
+    return status.OK
+
+
+def _cases(paths: list[str]) -> list[Case]:
+    """Read the case files first, so that a mistake in the last one costs no time."""
+    from verify.problem.casefile import read_case
+
+    cases = [read_case(path) for path in paths]
+    seen: set[str] = set()
+    for path, case in zip(paths, cases, strict=True):
+        if case.problem is None:
+            raise InputError("the case has no [problem]", "a certificate needs a null, a level and n", file=path)
+        if not NAME.fullmatch(case.name) or case.name.lower() in RESERVED:
+            raise InputError(f"{case.name!r} cannot name a certificate", "use letters, digits, . _ - in the file's name", file=path)
+        if case.name.lower() in seen:
+            raise InputError(f"two cases are named {case.name}", "give each file another name", file=path)
+        seen.add(case.name.lower())
+    return cases
+
+
+def _certificate(case: Case, args: argparse.Namespace) -> tuple[Certificate | None, Derivation]:
+    """Derive, solve, certify and recheck; None, with a remark, when the derivation is refuted."""
+    from verify.certificate.build import GUARD_DIGITS
+    from verify.certificate.certify import certify
+    from verify.derivation.ledger import Grade
+    from verify.report.pipeline import derive_case
+    from verify.solution.solve import solve
+
+    derivation = derive_case(case, budget=args.budget)
+    for step in derivation.steps:
+        if step.grade is Grade.REFUTED:
+            note(f"{case.name}: no certificate, {step}")
+            return None, derivation
+    problem: Any = case.problem
+    solution = solve(problem, digits=args.digits + GUARD_DIGITS, derivation=derivation)
+    certificate = certify(
+        problem, args.digits, case=case, tolerance=args.tolerance, issued=args.issued, solution=solution
+    )
+    verdict = certificate.recheck()
+    if verdict.status in (1, 2):
+        raise UndecidedError(f"{case.name}: the rechecker does not accept this certificate: {verdict.lines[0]}")
+    note(f"{case.name}: {verdict.lines[0]}")
+    return certificate, derivation
+
+
+def _show(args: argparse.Namespace, made: dict[str, Certificate], files: list[str]) -> None:
+    if args.json:
+        listed = {name: {"file": f"{name}.cert.json", "sha256": certificate.sha256} for name, certificate in made.items()}
+        show_json({"directory": args.out, "certificates": listed, "files": [*files, "SHA256SUMS"]})
+        return
+    for name, certificate in made.items():
+        print(f"{certificate.sha256}  {name}.cert.json")
+    print(f"{len(files) + 1} files in {args.out}")
