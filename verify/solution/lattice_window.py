@@ -21,7 +21,7 @@ from verify.laws import Law
 from verify.solution.conditions import MOST_EXACT_ATOMS, Conditions, end_fractions, exact_fractions, improved_start, linear_system
 from verify.solution.precision import bits_for
 from verify.solution.sliding import slide
-from verify.solution.start import Rough, extend, window_start
+from verify.solution.start import Rough, extend, extend_far, window_start
 from verify.solution.window import Window
 
 MOST_STEPS = 40
@@ -90,18 +90,20 @@ class LatticeSearch:
             if cell in seen:
                 return None
             seen.add(cell)
-            weights = window_fractions(self.conditions, A, *cell)
+            balls_of = window_weights(self.conditions, A, *cell)
+            weights = [_as_float(ball) for ball in balls_of]
             if any(math.isnan(w) for w in weights):
                 return None
-            grain = 1e-9 * max(abs(w) for w in weights)
+            grain = 1e-9 * min(max(abs(w) for w in weights), 1e300)
             if all(-grain <= w <= 1 + 1e-9 for w in weights):
                 return cell
-            out1, out2 = (self._move(A, c, w, side) for c, w, side in zip(cell, weights, (-1, +1), strict=True))
+            out1, out2 = (self._move(A, c, w, side) for c, w, side in zip(cell, balls_of, (-1, +1), strict=True))
             cell = self.on_atoms(grown(cell, out1, out2), out1, out2)
         return None
 
-    def _move(self, A: Any, c: int, weight: float, side: int) -> int:
+    def _move(self, A: Any, c: int, ball: Any, side: int) -> int:
         """Cells by which an end must go outward (negative: inward) to gather the weight it wants."""
+        weight = _as_float(ball)
         if 0 <= weight <= 1:
             return 0
         law = max(self.conditions.laws, key=lambda candidate: float(_log(candidate.density(A, c))))
@@ -110,7 +112,10 @@ class LatticeSearch:
         cap = 4 * max(r.spread for r in self.rough) + 2
         slope = math.log(ratio) if 0.0 < ratio < math.inf else -50.0
         wanted = weight - 1 if weight > 1 else weight
-        cells = extend(max(-1e300, min(1e300, wanted)), slope, cap)
+        if abs(wanted) < 1e300:
+            cells = extend(wanted, slope, cap)
+        else:
+            cells = extend_far(1 if wanted > 0 else -1, _log(abs(ball)), slope, cap)
         return max(1, math.ceil(cells)) if weight > 1 else min(-1, math.floor(cells))
 
     def bracket(self, bits: int) -> Cell:
@@ -137,9 +142,9 @@ def grown(cell: Cell, out1: int, out2: int) -> Cell:
     return middle, middle + 1
 
 
-def window_fractions(conditions: Conditions, A: Any, c1: int, c2: int) -> tuple[float, float]:
-    """Return the fraction of each end that belongs to the window, in floating point (nan when unknown)."""
-    first, second = (_as_float(g) for g in end_fractions(conditions, A, c1, c2))
+def window_weights(conditions: Conditions, A: Any, c1: int, c2: int) -> tuple[Any, Any]:
+    """Return the fraction of each end that belongs to the window, in balls."""
+    first, second = end_fractions(conditions, A, c1, c2)
     return (1 - first, 1 - second) if conditions.outside else (first, second)
 
 

@@ -13,6 +13,9 @@ from statistics import NormalDist
 STANDARD = NormalDist()
 ROOT_HALF = math.sqrt(0.5)
 INVERSE_ROOT_TWO_PI = 1 / math.sqrt(2 * math.pi)
+FAR = 8.0
+"""Distance of the means, in spreads, from which each end of the window is a matter of one law alone."""
+
 STEPS = 15
 """Newton steps on normal scores before they are given up."""
 
@@ -57,7 +60,13 @@ def window_start(laws: tuple[Rough, ...], level: float, outside: bool) -> tuple[
     outside : bool
         Whether the test rejects outside.
     """
-    low, high = min(law.mean for law in laws), max(law.mean for law in laws)
+    lower, upper = min(laws, key=lambda law: law.mean), max(laws, key=lambda law: law.mean)
+    low, high = lower.mean, upper.mean
+    apart = upper_point(level) * (1 if outside else -1)
+    if high - low > FAR * (lower.spread + upper.spread):
+        ends = low - apart * lower.spread, high + apart * upper.spread
+        if ends[0] < ends[1]:
+            return ends
     spread = sum(law.spread for law in laws) / len(laws)
     middle, delta = (low + high) / 2, (high - low) / 2 / spread
     if outside:
@@ -152,3 +161,16 @@ def extend(amount: float, slope: float, cap: float) -> float:
     else:
         distance = math.log1p(inner) / slope
     return max(-cap, min(cap, distance))
+
+
+def extend_far(sign: int, log_amount: float, slope: float, cap: float) -> float:
+    """Return the same for an amount of this sign whose logarithm is large: no double need hold the amount itself.
+
+    Examples
+    --------
+    >>> round(extend_far(-1, 5000.0, -2.0, 1e6), 3), extend_far(1, 5000.0, -2.0, 30.0)
+    (-2500.347, 30.0)
+    """
+    if slope * sign <= 0:
+        return sign * cap
+    return max(-cap, min(cap, (log_amount + math.log(abs(slope))) / slope))
