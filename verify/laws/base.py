@@ -91,6 +91,10 @@ class Law(ABC):
     def spread(self, A: Any) -> Number:
         """Standard deviation of V."""
 
+    def log_slope(self, A: Any, v: Any) -> Number | None:
+        """Derivative of log density at v (continuous laws), None where a law does not offer it: it only speeds a search."""
+        return None
+
     def normal_score(self, v: float, mean: float, spread: float) -> tuple[float, float]:
         """Rough z with P(V <= v) = Phi(z), and dz/dv, in floating point: where a search begins, never what it claims.
 

@@ -58,6 +58,10 @@ class Gamma(Law):
         """P(V > v) = Q(a, rate v)."""
         return A.gamma_q(self.shape, A.real(self.rate) * v)
 
+    def log_slope(self, A: Any, v: Any) -> Number:
+        """Derivative of log density, (a-1)/v - rate."""
+        return (A.real(self.shape) - 1) / v - A.real(self.rate)
+
     def shortfall(self, A: Any, v: Any) -> Number:
         """E[(m - V); V <= v] = v f(v) / rate."""
         return v * self.density(A, v) / A.real(self.rate)

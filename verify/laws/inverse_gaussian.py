@@ -67,6 +67,11 @@ class InverseGaussian(Law):
         a, second = self._ends(A, v)
         return A.erfc(a / A.sqrt(A.real(2))) / 2 - second
 
+    def log_slope(self, A: Any, v: Any) -> Number:
+        """Derivative of log density, lambda/(2 v^2) - lambda/(2 m^2) - 3/(2 v)."""
+        m, shape = A.real(self.mean), A.real(self.shape)
+        return shape / (2 * v * v) - shape / (2 * m * m) - 3 / (2 * v)
+
     def shortfall(self, A: Any, v: Any) -> Number:
         """E[(m - V); V <= v] = 2 m exp(2 lambda/m) Phi(b)."""
         _, second = self._ends(A, v)

@@ -59,6 +59,10 @@ class Normal(Law):
         """P(V > v) = erfc((v-m) / sqrt(2 variance)) / 2."""
         return A.erfc((v - A.real(self.mean)) / A.sqrt(2 * A.real(self.variance))) / 2
 
+    def log_slope(self, A: Any, v: Any) -> Number:
+        """Derivative of log density, -(v-m) / variance."""
+        return (A.real(self.mean) - v) / A.real(self.variance)
+
     def shortfall(self, A: Any, v: Any) -> Number:
         """E[(m - V); V <= v] = variance f(v)."""
         return A.real(self.variance) * self.density(A, v)

@@ -117,6 +117,15 @@ class Conditions:
             return mass, (law.value(A, c) - law.expectation(A)) * mass
         return self.laws[0].density(A, c), self.laws[1].density(A, c)
 
+    def unit_slope(self, A: Any, c: Any, unit: Row) -> Row | None:
+        """Derivative of :meth:`unit` by c where the laws offer it (continuous laws)."""
+        slopes = [law.log_slope(A, c) for law in self.laws]
+        if any(slope is None for slope in slopes):
+            return None
+        if self.point:
+            return unit[0] * slopes[0], unit[0] + unit[1] * slopes[0]
+        return unit[0] * slopes[0], unit[1] * slopes[1]
+
     def total(self, A: Any) -> Row:
         """Value of the two rows for phi = 1 everywhere."""
         return A.real(1), A.real(0 if self.point else 1)

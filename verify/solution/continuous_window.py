@@ -17,12 +17,12 @@ from typing import Any
 from verify.arithmetic.ball import accuracy_bits, around, balls, midpoint, min_abs, to_enclosure
 from verify.arithmetic.enclosure import Enclosure
 from verify.errors import UndecidedError
-from verify.solution.conditions import Conditions, Row, end_fractions, improved_start, solve_two_by_two
+from verify.solution.conditions import Conditions, Row, improved_start, linear_system, solve_two_by_two
 from verify.solution.coordinate import Coordinate
-from verify.solution.precision import bits_for
+from verify.solution.precision import accuracy_for
 from verify.solution.sliding_continuous import slide_continuous
 from verify.solution.start import Rough, extend, window_start
-from verify.solution.window import Window
+from verify.solution.window import SEARCH_BITS, Window
 
 MOST_STEPS = 60
 MOST_ROUNDS = 30
@@ -103,7 +103,7 @@ class ContinuousSearch:
     def _newton(self, A: Any, ends: Ends) -> Ends | None:
         """Damped Newton steps in the coordinate; settled when a step is far below the window's own width."""
         c1, c2 = ends
-        settled = A.power(A.real(2), -(self.prec // 3))
+        settled = A.power(A.real(2), -(self.prec // 4))
         for _ in range(MOST_STEPS):
             e1, e2 = (midpoint(e) for e in outward_steps(self.conditions, A, c1, c2))
             speeds = [abs(float(self.coordinate.speed(A, c).mid())) for c in (c1, c2)]
@@ -154,9 +154,21 @@ def _log(density: Any) -> float:
 
 
 def outward_steps(conditions: Conditions, A: Any, c1: Any, c2: Any) -> Ends:
-    """Return the Newton step of both ends, outward: what must be added to the window at each end."""
-    g1, g2 = end_fractions(conditions, A, c1, c2)
-    return (-g1, -g2) if conditions.outside else (g1, g2)
+    """Return the step of both ends, outward: what must be added to the window at each end.
+
+    Newton's step, corrected for the slope of the densities where the laws offer it, so that the error is cubed.
+    """
+    system = linear_system(conditions, A, c1, c2)
+    sign = -1 if conditions.outside else 1
+    e1, e2 = sign * system.fractions[0], sign * system.fractions[1]
+    left, right = (conditions.unit_slope(A, c, unit) for c, unit in ((c1, system.first), (c2, system.second)))
+    if left is None or right is None:
+        return e1, e2
+    curved = [(left[i] * e1 * e1 - right[i] * e2 * e2) / 2 for i in (0, 1)]
+    d1, d2 = solve_two_by_two(system.first, system.second, (curved[0], curved[1]))
+    width = abs(c2 - c1) / 4
+    helps = abs(e1) < width and abs(e2) < width and abs(d1) < abs(e1) / 4 and abs(d2) < abs(e2) / 4
+    return (e1 + d1, e2 + d2) if helps else (e1, e2)
 
 
 def solve_continuous_window(search: ContinuousSearch, digits: int) -> Window:
@@ -174,8 +186,8 @@ def solve_continuous_window(search: ContinuousSearch, digits: int) -> Window:
     UndecidedError
         When no box could be proved to hold the window.
     """
-    centre, conditions, wanted = search.ends(), search.conditions, bits_for(digits)
-    bits = max(search.prec, min(2 * search.prec, wanted + search.prec - 64))
+    centre, conditions, wanted = search.ends(), search.conditions, accuracy_for(digits)
+    bits = max(search.prec, min(2 * search.prec, wanted + search.prec - SEARCH_BITS[False] + 16))
     box: Ends | None = None
     for _ in range(MOST_ROUNDS):
         with balls(bits) as A:

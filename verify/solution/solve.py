@@ -21,7 +21,7 @@ from verify.solution.critical import CriticalFunction, Region
 from verify.solution.lattice_window import LatticeSearch, solve_lattice_window
 from verify.solution.one_sided import Tail, TailProblem
 from verify.solution.precision import bits_for
-from verify.solution.window import Window, rough_laws, search_precision
+from verify.solution.window import SEARCH_BITS, Window, rough_laws, search_precision
 
 if TYPE_CHECKING:
     from verify.derivation.derive import Derivation
@@ -286,7 +286,8 @@ def _solve_two_sided(problem: Problem, derivation: Derivation, laws: tuple[Law, 
     require_attainable(laws, problem.levels, rough)
     conditions = Conditions(laws, problem.levels, outside, tuple(law.mean for law in rough))
     narrow = not outside and not laws[0].lattice
-    prec = search_precision(rough, problem.levels, closeness, narrow=narrow)
+    base = SEARCH_BITS[laws[0].lattice]
+    prec = search_precision(rough, problem.levels, closeness, narrow=narrow, base=base)
     if laws[0].lattice:
         window = solve_lattice_window(LatticeSearch(conditions, rough, rising, prec), digits)
     else:

@@ -62,7 +62,11 @@ def rough_laws(laws: tuple[Law, ...]) -> tuple[tuple[Rough, ...], int, bool]:
     raise UndecidedError("the laws at the two limits cannot be told apart")
 
 
-def search_precision(rough: tuple[Rough, ...], levels: tuple[Any, ...], closeness: int, *, narrow: bool = False) -> int:
+SEARCH_BITS = {True: 64, False: 112}
+"""Bits of the search for a lattice law and for a continuous one, before what tails and scales cost."""
+
+
+def search_precision(rough: tuple[Rough, ...], levels: tuple[Any, ...], closeness: int, *, narrow: bool = False, base: int = SEARCH_BITS[True]) -> int:
     """Bits for the search: enough to see a tail of the level's size, a mass beside the sums of many, two close laws.
 
     A narrow window of a continuous law has both ends in nearly the same place, which costs the level's size once more.
@@ -71,4 +75,4 @@ def search_precision(rough: tuple[Rough, ...], levels: tuple[Any, ...], closenes
     with balls(64) as A:
         depth = max((float((-A.log(A.real(level)) / A.log(A.real(2))).mid()) for level in levels), default=0.0)
         size = float((A.log(A.real(int(scale) + 2)) / A.log(A.real(2))).mid())
-        return 64 + int((2 if narrow else 1) * depth + 1.5 * size) + 2 * closeness
+        return base + int((2 if narrow else 1) * depth + 1.5 * size) + 2 * closeness

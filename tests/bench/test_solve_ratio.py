@@ -1,0 +1,89 @@
+"""A warm solve against the ball evaluations that its proof needs, and against trying all pairs in doubles.
+
+Run by hand: ``pytest -m bench -s tests/bench/test_solve_ratio.py``. Ratios of minima measured in one run; nothing is asserted
+of the times.
+"""
+
+import time
+from collections.abc import Callable
+from fractions import Fraction
+
+import numpy as np
+import pytest
+from scipy import stats
+
+from verify.arithmetic.ball import balls
+from verify.laws import Binomial, Gamma, Law, Normal, Poisson
+from verify.solution.conditions import Conditions
+from verify.solution.continuous_window import ContinuousSearch, solve_continuous_window
+from verify.solution.lattice_window import LatticeSearch, solve_lattice_window
+from verify.solution.window import SEARCH_BITS, Window, rough_laws, search_precision
+
+ALPHA = Fraction(1, 20)
+DIGITS, BITS, RUNS = 50, 200, 25
+
+PROBLEMS: list[tuple[Law, ...]] = [
+    *[(Poisson(Fraction(m - 2 * round(m**0.5))), Poisson(Fraction(m + 2 * round(m**0.5)))) for m in (100, 1000, 4000)],
+    *[(Binomial(Fraction(n), Fraction(1, 3)), Binomial(Fraction(n), Fraction(1, 2))) for n in (100, 1000, 10_000)],
+    *[(Gamma(Fraction(n), Fraction(1)), Gamma(Fraction(n), Fraction(3, 2))) for n in (3, 30, 300)],
+    (Normal(Fraction(0), Fraction(1)), Normal(Fraction(1), Fraction(1))),
+]
+
+
+def solve_warm(laws: tuple[Law, ...], outside: bool) -> Window:
+    rough, closeness, rising = rough_laws(laws)
+    conditions = Conditions(laws, (ALPHA,) * len(laws), outside, tuple(law.mean for law in rough))
+    narrow = not outside and not laws[0].lattice
+    prec = search_precision(rough, (ALPHA,) * len(laws), closeness, narrow=narrow, base=SEARCH_BITS[laws[0].lattice])
+    if laws[0].lattice:
+        return solve_lattice_window(LatticeSearch(conditions, rough, rising, prec), DIGITS)
+    return solve_continuous_window(ContinuousSearch(conditions, rough, rising, prec), DIGITS)
+
+
+def proof_evaluations(laws: tuple[Law, ...], window: Window) -> None:
+    """Two cdf differences and four masses (or densities)."""
+    with balls(BITS) as A:
+        c1, c2 = ((window.c1, window.c2) if laws[0].lattice else (A.interval(window.c1).mid(), A.interval(window.c2).mid()))
+        for law in (laws[0], laws[-1]):
+            _ = law.cdf(A, c2) - law.cdf(A, c1)
+            law.density(A, c1)
+            law.density(A, c2)
+
+
+def all_pairs(low: float, high: float) -> int:
+    """Every pair of cutoffs of a Poisson outside null in NumPy doubles: how many pairs have both fractions in [0, 1]."""
+    spread = 8 * high**0.5
+    k = np.arange(max(0, int(low - spread)), int(high + spread))
+    p, q = stats.poisson.pmf(k, low), stats.poisson.pmf(k, high)
+    sums = [np.concatenate([[0.0], np.cumsum(mass)]) for mass in (p, q)]
+    i, j = np.triu_indices(len(k), 1)
+    lack = [float(ALPHA) - (total[j] - total[i + 1]) for total in sums]
+    determinant = p[i] * q[j] - p[j] * q[i]
+    g1, g2 = (lack[0] * q[j] - lack[1] * p[j]) / determinant, (lack[1] * p[i] - lack[0] * q[i]) / determinant
+    return int(((g1 >= 0) & (g1 <= 1) & (g2 >= 0) & (g2 <= 1)).sum())
+
+
+def best(call: Callable[[], object]) -> float:
+    times = []
+    for _ in range(RUNS):
+        start = time.perf_counter()
+        call()
+        times.append(time.perf_counter() - start)
+    return min(times)
+
+
+@pytest.mark.bench
+def test_report_ratios() -> None:
+    print()
+    for laws in PROBLEMS:
+        for outside, used in ((False, laws), (True, laws), (True, laws[:1])):
+            window = solve_warm(used, outside)
+            ratio = best(lambda u=used, o=outside: solve_warm(u, o)) / best(lambda u=used, w=window: proof_evaluations(u, w))
+            form = ("point null" if len(used) == 1 else "interval null") if outside else "outside null"
+            print(f"{laws[0]!s:60} {form:14} solve / proof evaluations = {ratio:.1f}")
+    for m in (100, 1000, 4000):
+        low, high = m - 2 * round(m**0.5), m + 2 * round(m**0.5)
+        laws = (Poisson(Fraction(low)), Poisson(Fraction(high)))
+        ratio = best(lambda: all_pairs(low, high)) / best(lambda u=laws: solve_warm(u, False))
+        print(f"Poisson mean {m}: all pairs in doubles / our proved solve = {ratio:.1f}")
+    assert all_pairs(80, 120) >= 1
