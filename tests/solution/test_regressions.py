@@ -33,7 +33,13 @@ MANY = [
 """Many observations."""
 
 
-@pytest.mark.parametrize(("formula", "null", "alpha", "n"), [*FAR_APART, *MANY])
+BESIDE_A_TIE = [
+    (COIN, "t <= 1/20 or t >= 19/20", f"{19 * 10**40 + 19}/{2 * 10**42}", 2),
+]
+"""Levels so near to a tie that one fraction of a wrong cell is exactly 0 or 1 and the other one just beyond."""
+
+
+@pytest.mark.parametrize(("formula", "null", "alpha", "n"), [*FAR_APART, *MANY, *BESIDE_A_TIE])
 def test_it_is_proved(formula, null, alpha, n):
     solution = solve(Problem(FORMULAS[formula], null, alpha, n), digits=20)
     assert solution.grade is Grade.PROVED

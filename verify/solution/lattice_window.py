@@ -183,7 +183,7 @@ def solve_lattice_window(search: LatticeSearch, digits: int) -> Window:
             moves = [_side(g, conditions.outside) for g in system.fractions]
             if moves == [0, 0] and cell == conditions.laws[0].support:
                 exact = _exact_tie(conditions, cell, bits)
-                if exact is not None:
+                if isinstance(exact, Window):
                     return exact
             if moves == [0, 0]:
                 reached = min(accuracy_bits(g) for g in system.fractions)
@@ -195,11 +195,13 @@ def solve_lattice_window(search: LatticeSearch, digits: int) -> Window:
                 continue
         if None in moves:
             exact = _exact_tie(conditions, cell, bits)
-            if exact is not None:
+            if isinstance(exact, Window):
                 return exact
-            bits *= 2
-        else:
-            cell = _neighbour(search, cell, moves, tried, bits)
+            if exact is None:
+                bits *= 2
+                continue
+            moves = [*exact]
+        cell = _neighbour(search, cell, moves, tried, bits)
     raise UndecidedError(f"an end fraction at {cell} could not be told from 0 or 1 within {cap} bits")
 
 
@@ -225,8 +227,11 @@ def _side(g: Any, outside: bool) -> int | None:
     return None
 
 
-def _exact_tie(conditions: Conditions, cell: Cell, bits: int) -> Window | None:
-    """Decide a tie in exact rational arithmetic; None when the masses are irrational or the window too long."""
+def _exact_tie(conditions: Conditions, cell: Cell, bits: int) -> Window | tuple[int, int] | None:
+    """Decide a tie in exact rational arithmetic: the window, or how its ends must move outward.
+
+    None when the masses are irrational or the window too long.
+    """
     if cell[1] - cell[0] > MOST_EXACT_ATOMS:
         return None
     try:
@@ -235,7 +240,7 @@ def _exact_tie(conditions: Conditions, cell: Cell, bits: int) -> Window | None:
     except NotRational:
         return _exact_centre(conditions, cell, bits)
     if not (0 <= g1 <= 1 and 0 <= g2 <= 1):
-        return None
+        return _side(g1, conditions.outside) or 0, _side(g2, conditions.outside) or 0
     return canonical(conditions.laws[0], cell, (g1, g2), conditions.outside, tuple(Enclosure.of(t) for t in targets))
 
 
