@@ -91,6 +91,8 @@ def judge(expect: Mapping[str, Any], found: Found) -> tuple[Outcome, tuple[Messa
 
 def _unexpected(allowed: tuple[str, ...], found: Found) -> tuple[Outcome, tuple[Message, ...]]:
     outcome = {"refuted": Outcome.REFUTED, UNUSABLE: Outcome.UNUSABLE}.get(found.verdict, Outcome.DIFFERS)
+    if outcome is Outcome.UNUSABLE:
+        return outcome, (Message(found.key, found.error),)
     wanted = allowed[0] if len(allowed) == 1 else "a pass"
     why = f" ({'; '.join(found.notes)})" if found.notes else ""
     return outcome, (Message("expect.verdict", f"expected {wanted}, found {found.verdict}{why}"),)

@@ -157,7 +157,9 @@ def _reviewed(case: Case, setting: Setting, facts: Found) -> Found:
         verdict = review_numbers(setting, numbers, style_from(case.claim), case.claim, Options(loss=False))
     except InputError as error:
         raise error.at(key="claim", file=case.path) from None
-    notes = (*(slip.sentence for slip in verdict.slips), *verdict.notes)
+    right, said = verdict.correct_printed, verdict.claim.numbers if verdict.claim else {}
+    off = (f"{name} is printed as {said[name].text}, right is {right[name]}" for name in verdict.off if name in right)
+    notes = (*off, *(slip.sentence[:-1] for slip in verdict.slips), *verdict.notes)
     return replace(facts, verdict=verdict.verdict, slips=tuple(slip.name for slip in verdict.slips), notes=notes)
 
 

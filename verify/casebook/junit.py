@@ -38,14 +38,19 @@ def junit_xml(results: Sequence[Result]) -> bytes:
     """Return the report of a run: one suite a folder, in the order of the run."""
     root = Element("testsuites", {"name": "sidecheck", **_counts(results)})
     groups = [list(group) for _, group in groupby(results, _folder)]
-    suites = unique_names([clean(_folder(group[0])).replace("/", ".") for group in groups])
+    suites = unique_names([_name(_folder(group[0]).replace("/", ".")) for group in groups])
     for suite, group in zip(suites, groups, strict=True):
         element = SubElement(root, "testsuite", {"name": suite, **_counts(group)})
-        names = unique_names([clean(Path(result.path).name.removesuffix(SUFFIX)) for result in group])
+        names = unique_names([_name(Path(result.path).name.removesuffix(SUFFIX)) for result in group])
         for result, name in zip(group, names, strict=True):
             _case(element, suite, result, name)
     indent(root)
     return bytes(tostring(root, encoding="utf-8", xml_declaration=True)) + b"\n"
+
+
+def _name(text: str) -> str:
+    """A name on one line, never empty."""
+    return " ".join(clean(text).split()) or "-"
 
 
 def _folder(result: Result) -> str:
@@ -68,8 +73,7 @@ def _case(suite: Element, classname: str, result: Result, name: str) -> None:
         return
     lines = [clean(str(message)) for message in result.messages] or [result.outcome.value]
     tag, kinds = ("failure", FAILURES) if result.outcome in FAILURES else ("error", ERRORS)
-    first = " ".join(lines[0].split())
-    reason = SubElement(case, tag, {"message": first[:500], "type": kinds[result.outcome]})
+    reason = SubElement(case, tag, {"message": _name(lines[0])[:500], "type": kinds[result.outcome]})
     reason.text = "\n".join([clean(result.path), *lines])
 
 

@@ -49,7 +49,7 @@ class Message:
     line: int | None = None
 
     def __str__(self) -> str:
-        return f"{self.key}: {self.text}" if self.key else self.text
+        return f"{self.key}: {self.text}" if self.key and self.key not in self.text else self.text
 
 
 @dataclass(frozen=True)

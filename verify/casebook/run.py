@@ -127,7 +127,7 @@ def run_book(
     workers: int = 1,
     scheduler: str | None = None,
     fail_fast: bool = False,
-    progress: Callable[[Result], None] | None = None,
+    progress: Callable[[int], None] | None = None,
 ) -> list[Result]:
     """Run cases and return their results in the order of the paths.
 
@@ -144,13 +144,13 @@ def run_book(
     fail_fast : bool
         Whether to stop behind the first case that does not pass, first in the order of the paths.
     progress : callable, optional
-        Called with each result as it is its turn.
+        Called with the number of cases done so far.
     """
     results = []
     for result in run_all(partial(run_case_file, how=how or How()), paths, workers, scheduler):
         results.append(result)
         if progress is not None:
-            progress(result)
+            progress(len(results))
         if fail_fast and not result.passed:
             break
     return results

@@ -3,22 +3,20 @@
 from __future__ import annotations
 
 import argparse
-import contextlib
 import os
 import sys
-from collections.abc import Callable, Iterator, Sequence
+from collections.abc import Sequence
 from pathlib import Path
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, TextIO
 
 from verify.cli.options import add_budget, add_json, digits
 from verify.cli.output import note, show_json
+from verify.cli.progress import progress_bar
 
 if TYPE_CHECKING:
     from verify.casebook.outcome import Result
 
 EXAMPLE = "sidecheck casebook casebook --workers 2 --junit report.xml"
-EVERY = 50
-"""Cases between two lines of progress where there is no terminal."""
 
 
 def add(parser: argparse.ArgumentParser) -> None:
@@ -27,7 +25,7 @@ def add(parser: argparse.ArgumentParser) -> None:
     parser.add_argument("--only", metavar="PATTERN", action="append", default=[],
                         help="run the cases of this name, e.g. 'lot-*' or 'published/*'; may be repeated")
     parser.add_argument("--fail-fast", action="store_true", help="stop behind the first case that does not pass")
-    parser.add_argument("--workers", type=_workers, default=1, metavar="N", help="processes (default 1)")
+    parser.add_argument("--workers", type=int, default=1, metavar="N", help="local processes (default 1)")
     parser.add_argument("--scheduler", metavar="ADDRESS", help="address of a Dask scheduler, tcp://host:port, whose "
                         "workers see the same files")
     parser.add_argument("--junit", metavar="FILE", help="write a JUnit report")
@@ -40,12 +38,6 @@ def add(parser: argparse.ArgumentParser) -> None:
     add_json(parser)
 
 
-def _workers(text: str) -> int:
-    if not (text.isascii() and text.isdigit() and 1 <= int(text) <= 256):
-        raise argparse.ArgumentTypeError(f"{text[:20]!r} is not a number of processes from 1 to 256")
-    return int(text)
-
-
 def run(args: argparse.Namespace) -> int:
     """Run the cases, print, write what is wanted, and return the exit status: 0 only when every case passed."""
     from verify.casebook.find import find_cases
@@ -55,15 +47,17 @@ def run(args: argparse.Namespace) -> int:
 
     paths = find_cases(args.places, args.only)
     _require_folders(args)
-    with _progress(len(paths)) as progress:
+    with progress_bar("cases", len(paths)) as progress:
         results = run_book(paths, How(args.digits, args.budget), workers=args.workers, scheduler=args.scheduler,
                            fail_fast=args.fail_fast, progress=progress)  # fmt: skip
     left = len(paths) - len(results)
+    _write(args, results)
     if args.json:
         show_json(book_json(results, left))
     else:
         print(book_text(results, left))
-    _write(args, results, left)
+    if args.github:
+        _github(results, left, sys.stderr if args.json else sys.stdout)
     return status_of(results)
 
 
@@ -77,7 +71,7 @@ def _require_folders(args: argparse.Namespace) -> None:
             raise InputError(f"{given} cannot be written", "name a file in a folder that exists", key=f"--{key}")
 
 
-def _write(args: argparse.Namespace, results: Sequence[Result], left: int) -> None:
+def _write(args: argparse.Namespace, results: Sequence[Result]) -> None:
     """Write the reports, each all or nothing."""
     from verify.casebook.junit import junit_xml
     from verify.casebook.lines import json_lines
@@ -92,53 +86,21 @@ def _write(args: argparse.Namespace, results: Sequence[Result], left: int) -> No
             except OSError as error:
                 wrong = f"cannot write: {error.strerror or error}"
                 raise InputError(wrong, "name a file that can be written", key=f"--{key}", file=place) from None
-    if args.github:
-        _github(results, left, sys.stderr if args.json else sys.stdout)
 
 
-def _github(results: Sequence[Result], left: int, out: object) -> None:
+def _github(results: Sequence[Result], left: int, out: TextIO) -> None:
     from verify.casebook.github import annotation_lines, step_summary
+    from verify.errors import InputError
 
     for line in annotation_lines(results):
-        print(line, file=out)  # type: ignore[call-overload]
+        print(line, file=out)
     place = os.environ.get("GITHUB_STEP_SUMMARY")
     if not place:
         note("GITHUB_STEP_SUMMARY names no file: no summary is written")
         return
-    with open(place, "a", encoding="utf-8", errors="backslashreplace") as stream:
-        stream.write(step_summary(results, left))
-
-
-@contextlib.contextmanager
-def _progress(total: int) -> Iterator[Callable[[Result], None]]:
-    """Show on stderr how far it is: a bar on a terminal, else a line now and then."""
-    if not sys.stderr.isatty():
-        yield _plain(total)
-        return
-    from rich.console import Console
-    from rich.progress import BarColumn, MofNCompleteColumn, Progress, TextColumn, TimeElapsedColumn
-
-    columns = (TextColumn("{task.description}"), BarColumn(), MofNCompleteColumn(), TimeElapsedColumn())
-    with Progress(*columns, console=Console(stderr=True), transient=True) as bar:
-        task = bar.add_task("cases", total=total)
-
-        def advance(result: Result) -> None:
-            if not result.passed:
-                bar.console.print(f"{result.name}: {result.outcome.value}", markup=False, highlight=False)
-            bar.update(task, advance=1, description=result.name)
-
-        yield advance
-
-
-def _plain(total: int) -> Callable[[Result], None]:
-    done = 0
-
-    def advance(result: Result) -> None:
-        nonlocal done
-        done += 1
-        if not result.passed:
-            note(f"{result.name}: {result.outcome.value}")
-        if done % EVERY == 0 and done < total:
-            note(f"{done} of {total} cases")
-
-    return advance
+    try:
+        with open(place, "a", encoding="utf-8", errors="backslashreplace") as stream:
+            stream.write(step_summary(results, left))
+    except OSError as error:
+        wrong = f"cannot write the summary: {error.strerror or error}"
+        raise InputError(wrong, "let GITHUB_STEP_SUMMARY name a file", key="--github", file=place) from None

@@ -1,0 +1,137 @@
+"""Running a book: every outcome, the same results with any number of workers, mistakes shown and not swallowed."""
+
+from __future__ import annotations
+
+import os
+import time
+from collections.abc import Callable
+from pathlib import Path
+
+import pytest
+
+from verify.casebook import run
+from verify.casebook.find import find_cases
+from verify.casebook.lines import json_lines
+from verify.casebook.outcome import Outcome, Result, status_of, summary
+
+ROOT = Path(__file__).parents[2]
+EXPECTED = {
+    "a-passes": Outcome.PASS,
+    "b-differs": Outcome.DIFFERS,
+    "c-claim-differs": Outcome.DIFFERS,
+    "d-refuted": Outcome.REFUTED,
+    "e-unusable": Outcome.UNUSABLE,
+    "f-undecided": Outcome.UNDECIDED,
+    "g-expected-refusal": Outcome.PASS,
+}
+
+
+def _short(result: Result) -> str:
+    return result.name.rpartition("/")[2]
+
+
+@pytest.fixture(scope="module")
+def ran(mixed: Path) -> list[Result]:
+    return run.run_book(find_cases([mixed]))
+
+
+def test_the_casebook_of_this_repository_passes() -> None:
+    """Every case of demo, laws, numerics, published and refusals, with two workers."""
+    os.chdir(ROOT)
+    paths = find_cases(["casebook"])
+    assert len(paths) >= 120
+    results = run.run_book(paths, workers=2)
+    assert [str(message) for result in results for message in result.messages] == []
+    assert status_of(results) == 0, summary(results)
+    assert len(results) == len(paths)
+
+
+def test_every_outcome(ran: list[Result]) -> None:
+    assert {_short(result): result.outcome for result in ran} == EXPECTED
+    assert status_of(ran) == 1
+    assert all(bool(result.messages) != result.passed for result in ran)
+
+
+def test_messages_say_what_was_expected_and_found_and_where(ran: list[Result]) -> None:
+    by_name = {_short(result): result for result in ran}
+    (message,) = by_name["b-differs"].messages
+    assert (message.key, message.text) == ("expect.c", "expected 7, found 8")
+    lines = Path(by_name["b-differs"].path).read_text(encoding="utf-8").splitlines()
+    assert lines[message.line - 1].startswith("c = ")
+    assert "c is printed as 9, right is 8" in str(by_name["c-claim-differs"].messages[0])
+    assert "the upper cutoff one support point off" in str(by_name["c-claim-differs"].messages[0])
+    assert "the sum of the density over its support is 2" in str(by_name["d-refuted"].messages[0])
+    assert by_name["e-unusable"].messages[0].key == "problem.alpha"
+    assert "stayed open" in str(by_name["f-undecided"].messages[0])
+
+
+def test_workers_change_nothing(mixed: Path, ran: list[Result]) -> None:
+    side_by_side = run.run_book(find_cases([mixed]), workers=2)
+    assert json_lines(side_by_side) == json_lines(ran)
+    assert side_by_side == ran
+
+
+@pytest.mark.parametrize("workers", [1, 2])
+def test_fail_fast_stops_behind_the_first_in_order(mixed: Path, ran: list[Result], workers: int) -> None:
+    assert run.run_book(find_cases([mixed]), workers=workers, fail_fast=True) == ran[:2]
+
+
+def test_progress_counts(mixed: Path) -> None:
+    seen: list[int] = []
+    run.run_book(find_cases([mixed], ["[ab]-*"]), progress=seen.append)
+    assert seen == [1, 2]
+
+
+def test_a_mistake_of_the_program_is_shown_and_is_red(book: Callable[..., Path], monkeypatch) -> None:
+    def broken(*_: object, **__: object) -> None:
+        raise ZeroDivisionError("of our own")
+
+    folder = book(a="", b="")
+    monkeypatch.setattr(run, "find", broken)
+    results = run.run_book(find_cases([folder]))
+    assert [result.outcome for result in results] == [Outcome.INTERNAL] * 2
+    assert "ZeroDivisionError" in str(results[0].messages[0])
+    assert status_of(results) == 70
+
+
+@pytest.mark.parametrize(
+    ("lines", "outcome"),
+    [
+        ('[expect]\nerror = "no such error"\n', Outcome.DIFFERS),
+        ('[expect]\nverdict = "prooved"\n', Outcome.UNUSABLE),
+        ("[expect\n", Outcome.UNUSABLE),
+        ('[expect]\nc3 = "8"\n', Outcome.UNUSABLE),
+        ('[expect]\ngamma = "0.8933"\n', Outcome.PASS),
+        ('[expect]\ngamma = "0.8933' + "0" * 60 + '"\n', Outcome.DIFFERS),
+        ('[claim]\nc = "8"\ngamma = "0.893"\n', Outcome.PASS),
+        ('[claim]\nc = "8"\ngamma = "0.894"\n', Outcome.PASS),
+        ('[claim]\nc = "8"\ngamma = "0.892"\n', Outcome.DIFFERS),
+        ('[claim]\nc1 = "8"\nc2 = "9"\n', Outcome.UNUSABLE),
+        ('[claim]\nnatural_parameter = "p"\n', Outcome.REFUTED),
+        ('[claim]\nnatural_parameter = "p"\n[expect]\nverdict = "refuted"\nstep = "claims"\nc = "8"\n', Outcome.PASS),
+        ('[expect]\nform = "one-sided"\nlaw = "binomial"\nstatistic = "x"\ngrade = "proved"\n', Outcome.PASS),
+    ],
+)
+def test_one_case(book: Callable[..., Path], lines: str, outcome: Outcome) -> None:
+    (path,) = find_cases([book(case=lines)])
+    result = run.run_case_file(path)
+    assert result.outcome is outcome, result
+
+
+def test_a_published_case_names_its_source(tmp_path: Path, book: Callable[..., Path]) -> None:
+    folder = book(case="").rename(tmp_path / "published")
+    (result,) = run.run_book(find_cases([folder]))
+    assert result.outcome is Outcome.UNUSABLE
+    assert "source" in str(result.messages[0])
+
+
+@pytest.mark.bench
+def test_wall_time_of_the_casebook_by_workers() -> None:
+    """A measurement: the whole casebook with one worker and with two."""
+    os.chdir(ROOT)
+    paths, lines = find_cases(["casebook"]), []
+    for workers in (1, 2):
+        start = time.perf_counter()
+        lines.append(json_lines(run.run_book(paths, workers=workers)))
+        print(f"\n{len(paths)} cases, {workers} workers: {time.perf_counter() - start:.1f} s")
+    assert lines[0] == lines[1]
