@@ -241,8 +241,12 @@ def test_an_interrupted_run_goes_on_and_ends_the_same(place, tmp_path, workers) 
 def test_a_journal_of_something_else_is_not_used(tmp_path) -> None:
     first = Journal(tmp_path / "j", "one")
     first.add([{"row": 2}])
+    with pytest.raises(InputError, match="another run"):
+        Journal(tmp_path / "j", "one")
     first.close()
-    assert Journal(tmp_path / "j", "one").done == 1
+    same = Journal(tmp_path / "j", "one")
+    assert same.done == 1
+    same.close()
     assert Journal(tmp_path / "j", "two").done == 0
 
 

@@ -134,9 +134,11 @@ def _end_rejects(claim: Claim, region: Region) -> bool:
 def place_of(printed: Printed, claim: Claim, setting: Setting) -> Enclosure:
     """Return a printed cutoff, taken literally, on the scale of Y."""
     style, n, family = claim.style, setting.problem.n, setting.family
-    v = (printed.value * style.divisor(n) - style.shift * n) / style.scale
+    v = printed.value * style.divisor(n)
+    if style.scale != 1 or style.shift:
+        v = (v - style.shift * n) / style.scale
     if isinstance(family.scale, Fraction) and isinstance(family.shift, Fraction):
-        return Enclosure.of((v - n * family.shift) / family.scale)
+        return Enclosure.of(v if family.scale == 1 and not family.shift else (v - n * family.shift) / family.scale)
     with balls(PREC) as A:
         return to_enclosure((A.real(v) - n * A.real(family.shift)) / A.real(family.scale))
 

@@ -10,6 +10,7 @@ from collections.abc import Iterator
 from pathlib import Path
 from typing import IO
 
+from verify.errors import InputError
 from verify.review.record import Record
 
 
@@ -27,12 +28,18 @@ class Journal:
     ----------
     done : int
         How many rows were found done when the journal was opened.
+
+    Raises
+    ------
+    InputError
+        When another run is writing it.
     """
 
     def __init__(self, path: Path, fingerprint: str) -> None:
         self.path, self.fingerprint = path, fingerprint
+        self._stream: IO[str] | None = open(path, "a", encoding="utf-8")  # noqa: SIM115 (kept open over the run)
+        _lock(self._stream, path)
         self.done = self._keep_whole_lines()
-        self._stream: IO[str] | None = None
 
     def _keep_whole_lines(self) -> int:
         """Cut a journal to its whole lines and count its records; a journal of something else is begun
@@ -60,7 +67,7 @@ class Journal:
     def add(self, records: list[Record]) -> None:
         """Append records; they are in the file when this returns."""
         if self._stream is None:
-            self._stream = open(self.path, "a", encoding="utf-8")  # noqa: SIM115 (kept open over the run)
+            raise ValueError("the journal is closed")
         self._stream.writelines(json.dumps(record, ensure_ascii=False) + "\n" for record in records)
         self._stream.flush()
 
@@ -81,3 +88,17 @@ class Journal:
         """Delete the file."""
         self.close()
         os.unlink(self.path)
+
+
+def _lock(stream: IO[str], path: Path) -> None:
+    """Keep a second run away from the journal, where the system has such locks."""
+    try:
+        import fcntl
+    except ImportError:
+        return
+    try:
+        fcntl.flock(stream, fcntl.LOCK_EX | fcntl.LOCK_NB)
+    except OSError:
+        raise InputError(
+            "another run is writing this table", "wait for it, or choose another output", file=str(path)
+        ) from None

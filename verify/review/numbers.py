@@ -18,6 +18,10 @@ def affine(x: Enclosure, scale: Fraction, shift: Fraction = Fraction(0)) -> Encl
     >>> affine(Enclosure.of(3), Fraction(-2), Fraction(1)).lower
     Fraction(-5, 1)
     """
+    if scale == 1 and not shift:
+        return x
+    if scale == -1 and shift == 1:
+        return Enclosure(1 - x.upper, 1 - x.lower)
     return Enclosure(*sorted((scale * x.lower + shift, scale * x.upper + shift)))
 
 

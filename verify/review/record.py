@@ -31,7 +31,12 @@ def record_of(
     name, case : str
         How the row is called, and which case it is about.
     """
-    problem, claim = verdict.problem, verdict.claim
+    problem, claim, right = verdict.problem, verdict.claim, verdict.numbers
+    correct = {name: value.strings(digits) for name, value in right.items()}
+    reported = {
+        name: correct[name] if right.get(name) == value else value.strings(digits)
+        for name, value in (verdict.correct or {}).items()
+    }
     parameter = problem.density.parameter if problem else ""
     return {
         "row": row,
@@ -43,8 +48,8 @@ def record_of(
         "alpha": [exact_text(level) for level in problem.levels] if problem else [],
         "n": problem.n if problem else None,
         "claimed": {name: number.text for name, number in claim.numbers.items()} if claim else {},
-        "correct": {name: value.strings(digits) for name, value in verdict.numbers.items()} or None,
-        "correct_reported": {name: value.strings(digits) for name, value in (verdict.correct or {}).items()},
+        "correct": correct or None,
+        "correct_reported": reported,
         "correct_printed": verdict.correct_printed,
         "off": list(verdict.off),
         "consequences": _consequences(verdict.consequences),

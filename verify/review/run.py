@@ -3,12 +3,15 @@
 from __future__ import annotations
 
 import hashlib
+import os
+import time
 from collections import deque
 from collections.abc import Callable, Iterator, Mapping
 from concurrent.futures import Future, ProcessPoolExecutor
 from dataclasses import dataclass
 from itertools import islice
 from pathlib import Path
+from threading import Thread
 
 from verify.problem.casefile import Case
 from verify.review.cells import Cell, Row, Table
@@ -129,7 +132,15 @@ _reviewer: Reviewer | None = None
 def _start(job: Job) -> None:
     """Make the reviewer of a worker process."""
     global _reviewer
+    Thread(target=_leave_with, args=(os.getppid(),), daemon=True).start()
     _reviewer = job.reviewer()
+
+
+def _leave_with(parent: int) -> None:
+    """End this worker when the process that started it is gone, so that a killed run leaves nothing behind."""
+    while os.getppid() == parent:
+        time.sleep(1)
+    os._exit(1)
 
 
 def _work(batch: tuple[Task, ...], style: Mapping[str, str]) -> list[Record]:

@@ -22,11 +22,11 @@ def find_slips(claim: Claim, setting: Setting) -> tuple[tuple[SlipFound, ...], t
     """
     found, open_ones = [], []
     for name, (_, words) in SLIPS.items():
-        candidates = _candidates(name, setting, claim.style)
-        if candidates is None:
-            open_ones.append(name)
-        elif any(_fits(claim, numbers, setting) for numbers in candidates):
+        candidates, whole = _candidates(name, setting, claim.style)
+        if any(_fits(claim, numbers, setting) for numbers in candidates):
             found.append(SlipFound(name, words))
+        elif not whole:
+            open_ones.append(name)
     return tuple(found), tuple(open_ones)
 
 
@@ -37,15 +37,17 @@ def _fits(claim: Claim, numbers: Numbers, setting: Setting) -> bool:
     return reproduces(claim, tried, setting.problem.n, setting.step)
 
 
-def _candidates(name: str, setting: Setting, style: Style) -> list[Numbers] | None:
-    """Numbers under one slip, remembered for later rows about the same problem; None when they could not be
-    had.
-    """
+def _candidates(name: str, setting: Setting, style: Style) -> tuple[list[Numbers], bool]:
+    """Numbers under one slip, remembered for later rows about the same problem, and whether they are all of them."""
     key = f"slip {name} {style.reported_as} {style.region}"
     if key not in setting.memory:
+        numbers: list[Numbers] = []
+        whole = True
         try:
-            setting.memory[key] = list(SLIPS[name][0](setting, style))
+            for candidate in SLIPS[name][0](setting, style):
+                numbers.append(candidate)
         except (UndecidedError, InputError):
-            setting.memory[key] = None
-    found: list[Numbers] | None = setting.memory[key]
+            whole = False  # said in the notes: not computed
+        setting.memory[key] = numbers, whole
+    found: tuple[list[Numbers], bool] = setting.memory[key]
     return found

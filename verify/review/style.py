@@ -104,7 +104,7 @@ class Style:
         shown = turned.complemented() if self.of_acceptance else turned
         places = {"c1": shown.c1, "c2": shown.c2} if shown.two_sided else {"c": shown.c1}
         fractions = {"gamma1": shown.gamma1, "gamma2": shown.gamma2} if shown.two_sided else {"gamma": shown.gamma1}
-        cut = {name: affine(affine(c, a, b), 1 / divisor) for name, c in places.items() if c is not None}
+        cut = {name: affine(c, a / divisor, b / divisor) for name, c in places.items() if c is not None}
         return cut | {name: gamma for name, gamma in fractions.items() if gamma is not None}
 
 
