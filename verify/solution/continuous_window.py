@@ -26,6 +26,8 @@ from verify.solution.window import SEARCH_BITS, Window
 
 MOST_STEPS = 60
 MOST_ROUNDS = 30
+NOISE_BITS = 40
+"""A step that may be 0 counts as settled below this share of the window's width."""
 NARROW = 1e-4
 """Below this level a window that rejects inside is narrow: both ends are sought from one centre."""
 
@@ -103,15 +105,16 @@ class ContinuousSearch:
     def _newton(self, A: Any, ends: Ends) -> Ends | None:
         """Damped Newton steps in the coordinate; settled when a step is far below the window's own width."""
         c1, c2 = ends
-        settled = A.power(A.real(2), -(self.prec // 4))
+        settled, noise = (A.power(A.real(2), -bits) for bits in (self.prec // 4, NOISE_BITS))
         for _ in range(MOST_STEPS):
-            e1, e2 = (midpoint(e) for e in outward_steps(self.conditions, A, c1, c2))
+            step = outward_steps(self.conditions, A, c1, c2)
+            e1, e2 = (midpoint(e) for e in step)
             speeds = [abs(float(self.coordinate.speed(A, c).mid())) for c in (c1, c2)]
             if not (e1.is_finite() and e2.is_finite() and all(0.0 < v < math.inf for v in speeds)):
                 return None
             width = abs(c2 - c1)
-            small = [(min_abs(width, self.coordinate.speed(A, c)) * settled).mid() for c in (c1, c2)]
-            if abs(e1) <= small[0] and abs(e2) <= small[1]:
+            sizes = [min_abs(width, self.coordinate.speed(A, c)).mid() for c in (c1, c2)]
+            if all(_settled(e, size * settled, size * noise) for e, size in zip(step, sizes, strict=True)):
                 return midpoint(c1 - e1), midpoint(c2 + e2)
             c1, c2 = self._moved(A, c1, e1, -1), self._moved(A, c2, e2, +1)
         return None
@@ -151,6 +154,11 @@ class ContinuousSearch:
 
 def _log(density: Any) -> float:
     return float(density.log().mid()) if density > 0 else -math.inf
+
+
+def _settled(step: Any, small: Any, noise: Any) -> bool:
+    """Whether a step is small, or no longer to be told from 0 at this precision."""
+    return bool(abs(step).mid() <= small or (step.contains(0) and abs(step) < noise))
 
 
 def outward_steps(conditions: Conditions, A: Any, c1: Any, c2: Any) -> Ends:
