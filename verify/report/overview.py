@@ -7,10 +7,11 @@ import json
 from collections.abc import Mapping
 from typing import Any
 
+from verify.report.math_boxes import relation, row
 from verify.report.page_blocks import (
-    Block, Break, Code, Commands, Digits, Link, Page, Paragraph, Run, Runs, Section, Table, Text, words,
+    Block, Break, Code, Commands, Link, Math, Page, Paragraph, Run, Runs, Section, Table, Text, words,
 )  # fmt: skip
-from verify.report.page_numbers import first_digits, name, numbers_of
+from verify.report.page_numbers import NAMES, box_of, numbers_of
 from verify.report.page_question import names_of
 from verify.report.page_recheck import RECHECK, recheck_digest
 from verify.report.prose import formula, prose
@@ -69,7 +70,7 @@ def _row(key: str, predicate: dict[str, Any]) -> list[Runs]:
     numbers: list[Run] = []
     for place, (which, value) in enumerate(numbers_of(predicate["test"]).items()):
         numbers += [Break()] if place else []
-        numbers += [name(which), Text(" = "), Digits(first_digits(value))]
+        numbers.append(Math(row(NAMES[which], relation("="), box_of(value))))
     found = [d for opinion in predicate["double_precision"]["opinions"] for d in opinion["digits"].values()]
     agrees = f"agrees to {min(found)}" if found else "no opinion"
     title: tuple[Run, ...] = (Break(), Text(problem["title"])) if problem["title"] else ()
