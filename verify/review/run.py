@@ -10,6 +10,7 @@ from collections.abc import Callable, Iterator, Mapping
 from concurrent.futures import Future, ProcessPoolExecutor
 from dataclasses import dataclass
 from itertools import islice
+from multiprocessing import get_context
 from pathlib import Path
 from threading import Thread
 
@@ -111,7 +112,8 @@ def _reviewed(job: Job, tasks: Iterator[Task]) -> Iterator[list[Record]]:
         for batch in _batches(tasks):
             yield [reviewer.row(number, fields, job.columns.style) for number, fields in batch]
         return
-    with ProcessPoolExecutor(job.workers, initializer=_start, initargs=(job,)) as pool:
+    spawn = get_context("spawn")  # a fork would inherit threads and the lock of the journal
+    with ProcessPoolExecutor(job.workers, spawn, initializer=_start, initargs=(job,)) as pool:
         waiting: deque[Future[list[Record]]] = deque()
         for batch in _batches(tasks):
             waiting.append(pool.submit(_work, batch, job.columns.style))
