@@ -1,7 +1,8 @@
 """What every law of the statistic offers (METHODS section 7).
 
-A law is data plus formulas. Its formulas are written once and take the arithmetic ``A`` in which they are to be
-evaluated: balls, mpmath numbers or exact fractions (``verify.arithmetic``). ``A.real(x)`` brings an exact number into it.
+A law is data plus formulas. Its formulas are written once and take the arithmetic ``A`` in which they are to
+be evaluated: balls, mpmath numbers or exact fractions (``verify.arithmetic``). ``A.real(x)`` brings an exact
+number into it.
 """
 
 from __future__ import annotations
@@ -21,8 +22,8 @@ Number = Any
 class Law(ABC):
     """The law of a statistic V, at one parameter value or with symbolic parameters.
 
-    The dataclass fields of a subclass are its parameters: exact numbers (Fraction, or a SymPy expression where the number is
-    irrational), or SymPy expressions in the family's parameter before a value is put in.
+    The dataclass fields of a subclass are its parameters: exact numbers (Fraction, or a SymPy expression
+    where the number is irrational), or SymPy expressions in the family's parameter before a value is put in.
 
     A lattice law lives on integers; its cutoffs are Python ints. A continuous law's cutoffs are numbers of ``A``.
     """

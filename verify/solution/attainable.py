@@ -1,7 +1,7 @@
 """Which pairs of levels a test can have at the two limits.
 
-Among tests with the first level, the expectation at the second limit is smallest and largest for the two one-sided ones, so two
-levels can be had together exactly when the second lies between these two.
+Among tests with the first level, the expectation at the second limit is smallest and largest for the two
+one-sided ones, so two levels can be had together exactly when the second lies between these two.
 
 Source: Lehmann and Romano 2005, Theorem 3.4.1 (the one-sided tests are the extremes).
 """

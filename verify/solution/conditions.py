@@ -1,12 +1,12 @@
 """The two side conditions as functions of the cutoffs, in any arithmetic.
 
-A two-sided critical function phi is 1 strictly inside (or strictly outside) a window, a fraction at each of its two ends, and 0
-elsewhere. Its side conditions are linear in the fractions:
+A two-sided critical function phi is 1 strictly inside (or strictly outside) a window, a fraction at each of
+its two ends, and 0 elsewhere. Its side conditions are linear in the fractions:
 
     whole(c1, c2) + g1 * unit(c1) + g2 * unit(c2) = targets,
 
-with two rows: E_t1 phi and E_t2 phi, or, for a point null, E phi and E[(V - m) phi] (the target of the second is then 0,
-which is E[V phi] = alpha E[V] after the first).
+with two rows: E_t1 phi and E_t2 phi, or, for a point null, E phi and E[(V - m) phi] (the target of the second
+is then 0, which is E[V phi] = alpha E[V] after the first).
 
 Source: Lehmann and Romano 2005, Theorem 3.7.1 and section 4.2.
 """

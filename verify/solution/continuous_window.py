@@ -1,8 +1,8 @@
 """The window of a continuous law: Newton's method, then interval Newton as the proof.
 
-Let F be the two side conditions less their targets and J their derivative. If N(X) = m - J(X)^-1 F(m) lies in the interior of a
-box X around m, then F has exactly one zero in X, and it lies in N(X). That the test has no other window at all follows from the
-monotone likelihood ratio.
+Let F be the two side conditions less their targets and J their derivative. If N(X) = m - J(X)^-1 F(m) lies in
+the interior of a box X around m, then F has exactly one zero in X, and it lies in N(X). That the test has no
+other window at all follows from the monotone likelihood ratio.
 
 Source: Moore, Kearfott and Cloud (2009), Theorem 8.2 (interval Newton); Lehmann and Romano 2005, Theorem 3.7.1.
 """

@@ -1,10 +1,12 @@
 """The window of a lattice law: a cell search, then a proof in balls, then ties in exact fractions.
 
-Every pair of cutoffs (a cell) has exactly one pair of end fractions that satisfies the side conditions; a cell whose
-fractions both lie in [0, 1] is the test, and it is the only one (the power function of the window moves one way as the window
-slides, because the likelihood ratio is monotone). So nothing has to be believed about the search.
+Every pair of cutoffs (a cell) has exactly one pair of end fractions that satisfies the side conditions; a
+cell whose fractions both lie in [0, 1] is the test, and it is the only one (the power function of the window
+moves one way as the window slides, because the likelihood ratio is monotone). So nothing has to be believed
+about the search.
 
-Source: Lehmann and Romano 2005, Theorem 3.7.1; S. Karlin, Total Positivity (1968), for the variation-diminishing property.
+Source: Lehmann and Romano 2005, Theorem 3.7.1; S. Karlin, Total Positivity (1968), for the
+variation-diminishing property.
 """
 
 from __future__ import annotations
@@ -176,7 +178,7 @@ def solve_lattice_window(search: LatticeSearch, digits: int) -> Window:
     """
     conditions, wanted, cell = search.conditions, bits_for(digits), search.cell()
     bits, tried = wanted + search.prec - 56, {cell}
-    cap = 8 * bits + 4096
+    cap, doubled = 8 * bits + 4096, False  # exact fractions can be very long: balls have a second try before them
     while bits <= cap:
         with balls(bits) as A:
             system = linear_system(conditions, A, *cell)
@@ -194,11 +196,11 @@ def solve_lattice_window(search: LatticeSearch, digits: int) -> Window:
                 bits += wanted - reached + 8
                 continue
         if None in moves:
-            exact = _exact_tie(conditions, cell, bits)
+            exact = _exact_tie(conditions, cell, bits) if doubled else None
             if isinstance(exact, Window):
                 return exact
             if exact is None:
-                bits *= 2
+                bits, doubled = 2 * bits, True
                 continue
             moves = [*exact]
         cell = _neighbour(search, cell, moves, tried, bits)

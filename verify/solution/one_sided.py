@@ -1,7 +1,8 @@
 """One-sided tests: one cutoff, one fraction, one side condition.
 
-Source: Lehmann and Romano 2005, Theorem 3.4.1: the uniformly most powerful test of a family with monotone likelihood ratio
-rejects far out on one side, with the fraction gamma at the cutoff that makes the level exact.
+Source: Lehmann and Romano 2005, Theorem 3.4.1: the uniformly most powerful test of a family with monotone
+likelihood ratio rejects far out on one side, with the fraction gamma at the cutoff that makes the level
+exact.
 """
 
 from __future__ import annotations

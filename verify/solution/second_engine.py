@@ -1,10 +1,12 @@
 """The side conditions solved once more, at full precision, in mpmath.
 
-The laws' formulas are the same; the engine that evaluates them shares no code with the balls. It proves nothing: it is the
-second pair of eyes on a proven number. On a lattice it solves the 2 x 2 system at the proven pair of cutoffs; for a continuous
-law it runs Newton's method from the doubles nearest to the proven cutoffs.
+The laws' formulas are the same; the engine that evaluates them shares no code with the balls. It proves
+nothing: it is the second pair of eyes on a proven number. On a lattice it solves the 2 x 2 system at the
+proven pair of cutoffs; for a continuous law it runs Newton's method from the doubles nearest to the proven
+cutoffs.
 
-Source: F. Johansson et al., mpmath: a Python library for arbitrary-precision floating-point arithmetic (version 1.3, 2023).
+Source: F. Johansson et al., mpmath: a Python library for arbitrary-precision floating-point arithmetic
+(version 1.3, 2023).
 """
 
 from __future__ import annotations

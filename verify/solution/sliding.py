@@ -1,9 +1,9 @@
 """The monotone search: a window of the right first size slides up until the second condition holds.
 
-With s the probability (under the first law) to the left of the window, the second condition G(s) rises in s, because the
-likelihood ratio is monotone: G'(s) = r(right end) - r(left end) >= 0. So bisection on the left end finds the window in
-O(log) evaluations, on a finite or an infinite support. This is the slow, sure search; it works on midpoints, and the proof
-that follows looks at the fractions only.
+With s the probability (under the first law) to the left of the window, the second condition G(s) rises in s,
+because the likelihood ratio is monotone: G'(s) = r(right end) - r(left end) >= 0. So bisection on the left
+end finds the window in O(log) evaluations, on a finite or an infinite support. This is the slow, sure search;
+it works on midpoints, and the proof that follows looks at the fractions only.
 
 Source: Lehmann and Romano 2005, Theorem 3.7.1; derivation in section 4.2.
 """

@@ -67,12 +67,13 @@ SEARCH_BITS = {True: 64, False: 112}
 
 
 def search_precision(rough: tuple[Rough, ...], levels: tuple[Any, ...], closeness: int, *, narrow: bool = False, base: int = SEARCH_BITS[True]) -> int:
-    """Bits for the search: enough to see a tail of the level's size, a mass beside the sums of many, two close laws.
+    """Bits for the search: enough to see a tail of the level's size (or of what it leaves), a mass beside the sums of many, two close laws.
 
     A narrow window of a continuous law has both ends in nearly the same place, which costs the level's size once more.
     """
     scale = max(abs(law.mean) + law.spread for law in rough)
     with balls(64) as A:
-        depth = max((float((-A.log(A.real(level)) / A.log(A.real(2))).mid()) for level in levels), default=0.0)
+        sides = [side for level in levels for side in (level, 1 - level)]
+        depth = max((float((-A.log(A.real(side)) / A.log(A.real(2))).mid()) for side in sides), default=0.0)
         size = float((A.log(A.real(int(scale) + 2)) / A.log(A.real(2))).mid())
         return base + int((2 if narrow else 1) * depth + 1.5 * size) + 2 * closeness
