@@ -13,6 +13,7 @@ SHIFTED = "exp(-t)*t**(x-3)/factorial(x-3)"
 EXPOSED = "exp(-c*t)*(c*t)**x/factorial(x)"
 ODDS = "binomial(m,x)*t**x/(1+t)**m"
 COIN = "t**x*(1-t)**(1-x)"
+FAILURES_OF_SIZE = "gamma(x+r)/(gamma(r)*factorial(x))*t**r*(1-t)**x"
 FROM_0, FROM_1 = "t*(1-t)**x", "t*(1-t)**(x-1)"
 
 FAR_APART = [
@@ -39,7 +40,16 @@ BESIDE_A_TIE = [
 """Levels so near to a tie that one fraction of a wrong cell is exactly 0 or 1 and the other one just beyond."""
 
 
-@pytest.mark.parametrize(("formula", "null", "alpha", "n"), [*FAR_APART, *MANY, *BESIDE_A_TIE])
+NEXT_TO_ONE = [
+    (
+        FAILURES_OF_SIZE, "1/14 <= t <= 50000000000000000007/700000000000000000007", f"{10**30 - 1}/{10**30}", 1000,
+    ),
+    (FROM_1, "t = 1/100", "1e-160", 100),
+]  # fmt: skip
+"""Levels that leave 1e-30, and limits that differ by 1e-20: minutes in exact fractions, moments in balls."""
+
+
+@pytest.mark.parametrize(("formula", "null", "alpha", "n"), [*FAR_APART, *MANY, *BESIDE_A_TIE, *NEXT_TO_ONE])
 def test_it_is_proved(formula, null, alpha, n):
     solution = solve(Problem(FORMULAS[formula], null, alpha, n), digits=20)
     assert solution.grade is Grade.PROVED
