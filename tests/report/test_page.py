@@ -76,7 +76,7 @@ def tool(name: str) -> str:
 
 
 def ran(*words: object) -> str:
-    done = subprocess.run([str(word) for word in words], capture_output=True, text=True, check=False, timeout=120)
+    done = subprocess.run([str(word) for word in words], capture_output=True, text=True, errors="replace", check=False, timeout=120)
     assert done.returncode == 0, done.stdout + done.stderr
     return done.stdout
 

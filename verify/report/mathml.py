@@ -50,10 +50,11 @@ def _atom(box: Any) -> str:
 
 
 def _fence(box: Any) -> str:
-    left, right = escape(box.left), escape(box.right)
+    left, right, inner = escape(box.left), escape(box.right), _element(box.body)
+    grows = "true" if any(tag in inner for tag in ("<mfrac", "<msqrt", "<msup")) else "false"
     return (
-        f'<mrow><mo form="prefix" stretchy="true" lspace="0" rspace="0">{left}</mo>{_element(box.body)}'
-        f'<mo form="postfix" stretchy="true" lspace="0" rspace="0">{right}</mo></mrow>'
+        f'<mrow><mo form="prefix" stretchy="{grows}" lspace="0" rspace="0">{left}</mo>{inner}'
+        f'<mo form="postfix" stretchy="{grows}" lspace="0" rspace="0">{right}</mo></mrow>'
     )
 
 

@@ -23,6 +23,8 @@ CONTENTS_FROM = 5
 """Pages from which there is a list of contents."""
 LONGEST_WORD = 24
 """Characters after which a word may be broken anywhere."""
+WHOLE_ROW = 6_000
+"""Size of the data of a table's row up to which it is kept on one page."""
 LONGEST_CODE = 72
 """The same for digests and commands."""
 
@@ -74,10 +76,11 @@ def _fonts() -> Path:
 
 @cache
 def _letters() -> frozenset[int]:
-    """The characters that can be drawn."""
+    """The characters that can be drawn, upright and bold."""
     from matplotlib.ft2font import FT2Font
 
-    return frozenset(FT2Font(str(_fonts() / "DejaVuSans.ttf")).get_charmap())
+    maps = [FT2Font(str(_fonts() / name)).get_charmap() for name in ("DejaVuSans.ttf", "DejaVuSans-Bold.ttf")]
+    return frozenset(maps[0]) & frozenset(maps[1])
 
 
 def safe(text: str, longest: int = LONGEST_WORD) -> str:
@@ -115,6 +118,12 @@ def _block(block: Any) -> dict[str, Any]:
     return {"is": type(block).__name__.lower(), **_BLOCKS[type(block)](block)}
 
 
+def _row(row: Any) -> dict[str, Any]:
+    """A row; one of usual length stays on one page."""
+    cells = [_runs(cell) for cell in row]
+    return {"cells": cells, "whole": len(json.dumps(cells)) < WHOLE_ROW}
+
+
 _RUNS: dict[type[Run], Callable[[Any], dict[str, Any]]] = {
     Text: lambda run: {"is": "strong" if run.strong else "text", "text": safe(run.text)},
     Code: lambda run: {"is": "code", "text": safe(run.text, LONGEST_CODE)},
@@ -128,7 +137,7 @@ _BLOCKS: dict[type, Callable[[Any], dict[str, Any]]] = {
     Equation: lambda block: {"math": _math(block.box)},
     Table: lambda block: {
         "head": [_runs(cell) for cell in block.head],
-        "rows": [[_runs(cell) for cell in row] for row in block.rows],
+        "rows": [_row(row) for row in block.rows],
         "widths": list(block.widths),
         "caption": safe(block.caption),
     },
