@@ -191,3 +191,26 @@ def test_one_sided_claims() -> None:
     assert slips(judged(*enough, c="117", gamma=f"{gamma:.5f}")) == ["upper-off-by-one"]
     assert judged(*enough, c="116").verdict == "agrees"
     assert judged(*enough, c="116", style=Style(window="closed")).consequences.level_kept is False
+
+
+def test_a_test_that_does_not_look_at_the_data_has_its_level_for_size() -> None:
+    """One Bernoulli trial, outside null: the best test rejects with probability alpha whatever is seen."""
+    one = Density("p**x*(1-p)**(1-x)", variable="x", support="integers 0..1", parameter="p", space="0 < p < 1")
+    verdict = judged(one, "p <= 0.3 or p >= 0.7", "0.05", 1, c1="0", c2="1", gamma1="0.05", gamma2="0.05")
+    assert verdict.verdict == "agrees"
+    assert verdict.consequences.size.value.contains(Fraction(1, 20))
+    assert verdict.consequences.size.value.radius < Fraction(1, 10**20)
+
+
+def test_more_digits_are_proved_than_were_printed() -> None:
+    text = "0.0867146646010230299332107679655377742"
+    assert judged(*LOT, **{**RIGHT, "gamma1": text}).verdict == "agrees"
+    assert judged(*LOT, **{**RIGHT, "gamma1": text[:-1] + "3"}).verdict == "last digit"
+
+
+def test_a_cutoff_outside_the_support_leaves_a_one_sided_test() -> None:
+    gamma = Density("exp(-x/t)/t", variable="x", support="reals > 0", parameter="t", space="t > 0")
+    verdict = judged(gamma, "t <= 1 or t >= 2", "0.05", 5, c1="-1", c2="6.9")
+    assert verdict.verdict == "differs"
+    assert float(verdict.consequences.expectations[0].value.mid) == pytest.approx(stats.gamma(5).cdf(6.9))
+    assert verdict.consequences.size.value.upper == 1

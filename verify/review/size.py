@@ -162,6 +162,9 @@ def _of_a_hill(curve: PowerCurve, low: Exact | None, high: Exact | None, level: 
     """Power that rises, then falls: at an end where it still rises (or already falls), else at the peak
     inside.
     """
+    limit = high if high is not None else low
+    if limit is not None and _is_constant(curve):
+        return Size(curve.power(limit), exact_text(limit), level)
     if high is not None and curve.direction(high) > 0:
         return Size(curve.power(high), exact_text(high), level)
     if low is not None and curve.direction(low) < 0:
@@ -175,6 +178,15 @@ def _of_a_hill(curve: PowerCurve, low: Exact | None, high: Exact | None, level: 
             break
         rising, falling = (middle, falling) if sign > 0 else (rising, middle)
     return Size(_peak(curve, rising, falling), f"about {_short((rising + falling) / 2)}", level)
+
+
+def _is_constant(curve: PowerCurve) -> bool:
+    """Whether the test rejects with one probability whatever is observed: nowhere, or on two atoms alike."""
+    test = curve.test
+    if test.phi1 is None or test.phi1 != test.phi2:
+        return False
+    nowhere = test.region == "inside" and test.c1 == test.c2 and test.phi1 == Enclosure.of(0)
+    return nowhere or (test.c2 - test.c1 <= 1 and curve.setting.laws[0].support == (test.c1, test.c2))
 
 
 def _around(curve: PowerCurve, peak: Fraction, rising: Fraction, falling: Fraction) -> tuple[Fraction, Fraction]:
