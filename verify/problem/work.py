@@ -3,7 +3,7 @@
 Building an expression or deciding a sign calls SymPy, which may loop for minutes on absurd numbers.
 Inside ``bounded_work`` every 64th function call looks at the thread's own CPU clock, and the block is
 left when the time is spent. One long call into C is not interrupted; the guards on sizes keep those
-short.
+short. Under a profiler written in C (cProfile) there is no bound.
 """
 
 from __future__ import annotations
@@ -50,7 +50,9 @@ def bounded_work(refusal: SidecheckError, seconds: float = SECONDS) -> Iterator[
         if not calls % 64 and time.thread_time() > deadline:
             raise _Spent
 
-    sys.setprofile(look)
+    watched = before is None or callable(before)  # a profiler written in C could not be put back: it stays
+    if watched:
+        sys.setprofile(look)
     try:
         yield
     except SidecheckError:
@@ -60,4 +62,5 @@ def bounded_work(refusal: SidecheckError, seconds: float = SECONDS) -> Iterator[
     except Exception as error:
         raise refusal from error
     finally:
-        sys.setprofile(before)
+        if watched:
+            sys.setprofile(before)
