@@ -38,7 +38,14 @@ def written(tmp_path_factory: pytest.TempPathFactory) -> Path:
 
 def test_files_and_their_sums(written: Path) -> None:
     files = contents(written)
-    wanted = {"lot-release.cert.json", "lot-release.cert.txt", "lot-release.html", "lot-release.pdf", "recheck.py", "SHA256SUMS"}
+    wanted = {
+        "lot-release.cert.json",
+        "lot-release.cert.txt",
+        "lot-release.html",
+        "lot-release.pdf",
+        "recheck.py",
+        "SHA256SUMS",
+    }
     assert set(files) == wanted
     assert files["lot-release.cert.json"] == files["lot-release.cert.txt"]
     assert files["recheck.py"] == (ROOT / "verify" / "certificate" / "recheck.py").read_bytes()
@@ -57,7 +64,9 @@ def test_recheck_from_an_empty_folder_by_the_page_alone(written: Path, tmp_path:
     command = unescape(commands[1]).strip().splitlines()[-1]
     words = shlex.split(command)
     assert words[:3] == ["python", "-I", "-S"]
-    done = subprocess.run([sys.executable, *words[1:]], cwd=tmp_path, env={}, capture_output=True, text=True, check=False)
+    done = subprocess.run(
+        [sys.executable, *words[1:]], cwd=tmp_path, env={}, capture_output=True, text=True, check=False
+    )
     assert done.returncode == 0, done.stderr
     first, second = done.stdout.splitlines()[:2]
     assert first.startswith("ACCEPTED")

@@ -77,7 +77,8 @@ def made() -> Callable[[str], bytes]:
 
 @pytest.fixture(scope="session")
 def retitled() -> Callable[[str], bytes]:
-    """A certificate with foreign words in it; the rechecker would see that it was changed, but its page must be safe."""
+    """A certificate with foreign words in it; the rechecker would see that it was changed, but its page must
+    be safe."""
 
     def change(words: str) -> bytes:
         statement = json.loads(certificate("outside"))

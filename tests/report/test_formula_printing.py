@@ -13,7 +13,18 @@ from hypothesis import strategies as st
 
 from verify.errors import InputError, SidecheckError
 from verify.report.formula_tree import (
-    Apply, Negative, Node, Number, Power, Product, Quotient, Relation, Sum, Symbol, read_formula, read_relation,
+    Apply,
+    Negative,
+    Node,
+    Number,
+    Power,
+    Product,
+    Quotient,
+    Relation,
+    Sum,
+    Symbol,
+    read_formula,
+    read_relation,
 )  # fmt: skip
 from verify.report.math_boxes import Atom, Box, Row, boxes
 from verify.report.math_text import plain
@@ -87,7 +98,9 @@ def value(node: Node) -> Fraction:
 @given(ARITHMETIC)
 def test_brackets_keep_the_value(tree: Node) -> None:
     """What is printed on one line, read again, has the value of the tree."""
-    text = plain(boxes(tree)).replace(" + ", "+").replace(" − ", "-").replace("−", "-").replace("·", "*").replace(" ", "*")
+    text = (
+        plain(boxes(tree)).replace(" + ", "+").replace(" − ", "-").replace("−", "-").replace("·", "*").replace(" ", "*")
+    )
     try:
         expected = value(tree)
     except ZeroDivisionError:
@@ -116,7 +129,10 @@ def test_notation(text: str, shown: str) -> None:
     assert plain(boxes(read_relation(text))) == shown
 
 
-@pytest.mark.parametrize("text", ["", "a b", "x if y else z", "__import__('os')", "x.y", "f(x)(y)", "[1]", "'a'", "True", "1 +", "x\n=", "(" * 500])
+@pytest.mark.parametrize(
+    "text",
+    ["", "a b", "x if y else z", "__import__('os')", "x.y", "f(x)(y)", "[1]", "'a'", "True", "1 +", "x\n=", "(" * 500],
+)
 def test_what_is_not_a_formula_is_refused(text: str) -> None:
     with pytest.raises(InputError, match="is not a formula"):
         read_formula(text)

@@ -1,4 +1,5 @@
-"""The page of a certificate in HTML and PDF: its order, its bytes, hostile words, and what outside programs say of it."""
+"""The page of a certificate in HTML and PDF: its order, its bytes, hostile words, and what outside programs
+say of it."""
 
 from __future__ import annotations
 
@@ -26,13 +27,14 @@ HOSTILE = {
     "script": "<script>alert(1)</script><img src=x onerror=alert(1)>",
     "mathematics": "$x$ \\(y\\) $$z$$ \\input{secret}",
     "typst": '#read("/etc/passwd") #import "x.typ" = heading *bold* [link](http://a.invalid) @label <label>',
-    "attribute": '"><svg onload=alert(1)> \' & &amp; {{ 7*7 }} {% raw %}',
+    "attribute": "\"><svg onload=alert(1)> ' & &amp; {{ 7*7 }} {% raw %}",
     "direction": "abc \u202e\u2066evil\u2069 \u05e9\u05dc\u05d5\u05dd \u0645\u0631\u062d\u0628\u0627 \u200b\ufeff end",
     "letters": "\u4e2d\u6587 \U0001f600 \u0416\u0437 \ue000 \x07 \u0301",
     "long": "Donaudampfschifffahrt" * 40 + " " + "9" * 300,
 }
 ORDER = [
-    "What is certified", "The problem", "The derivation", "The numbers", "How far double precision may be trusted", "Figures",
+    "What is certified", "The problem", "The derivation", "The numbers", "How far double precision may be "
+    "trusted", "Figures",
     "How to recheck it", "Assumptions and cautions", "Signatures",
 ]  # fmt: skip
 
@@ -76,7 +78,9 @@ def tool(name: str) -> str:
 
 
 def ran(*words: object) -> str:
-    done = subprocess.run([str(word) for word in words], capture_output=True, text=True, errors="replace", check=False, timeout=120)
+    done = subprocess.run(
+        [str(word) for word in words], capture_output=True, text=True, errors="replace", check=False, timeout=120
+    )
     assert done.returncode == 0, done.stdout + done.stderr
     return done.stdout
 
@@ -90,7 +94,9 @@ def require_harmless(source: str) -> Reader:
         assert name != "src"
         if name in ("href", "xlink:href"):
             assert value.startswith("#") or re.fullmatch(r"[\w.-]+\.html", value), value
-    outside = [value for name, value in reader.attributes if re.search(r"(https?:)?//", value) and not name.startswith("xmlns")]
+    outside = [
+        value for name, value in reader.attributes if re.search(r"(https?:)?//", value) and not name.startswith("xmlns")
+    ]
     assert outside == []
     assert "@import" not in source
     assert not re.search(r"url\((?!#)", source)
@@ -110,17 +116,19 @@ def test_every_form_has_a_page_of_identical_bytes(made: Made, key: str) -> None:
     assert page_pdf(first, "letter") == page_pdf(second, "letter")
     reader = require_harmless(html.decode())
     assert [section.title for section in first.sections] == ORDER
-    assert ('lang', 'en') in reader.attributes
+    assert ("lang", "en") in reader.attributes
     assert hashlib.sha256(data).hexdigest() in reader.text
     assert recheck_digest() in reader.text
-    assert f"python -I -S recheck.py case.cert.json" in reader.text
+    assert "python -I -S recheck.py case.cert.json" in reader.text
     assert "never" not in first.sections[0].title
 
 
 def test_the_sentence_has_the_numbers(made: Made) -> None:
     text = Reader(page_html(certificate_page("lot", made("outside"))).decode()).text
     lead = re.sub(r"\s+", "", text[text.index("For 10 independent") :])
-    assert lead.startswith("For10independentobservations,theuniformlymostpowerfultestofλ≤8orλ≥12against8<λ<12atlevel1/20rejectsthenullhypothesiswhen94<V<103,")
+    assert lead.startswith(
+        "For10independentobservations,theuniformlymostpowerfultestofλ≤8orλ≥12against8<λ<12atlevel1/20rejectsthenullhypothesiswhen94<V<103,"
+    )
     assert "withprobabilityγ1=0.08671466460…whenV=94andwithprobabilityγ2=0.5147444920…whenV=103" in lead
 
 
@@ -209,12 +217,13 @@ def test_chromium_shows_it_without_a_request(made: Made, tmp_path: Path) -> None
     path = tmp_path / "page.html"
     path.write_bytes(page_html(certificate_page("lot", made("outside"))))
     log = tmp_path / "net.json"
-    done = subprocess.run(
-        [chromium, "--headless", "--no-sandbox", "--disable-gpu", f"--user-data-dir={tmp_path / 'profile'}", "--enable-logging=stderr",
-         "--log-level=0", "--disable-background-networking", "--disable-component-update", "--disable-sync", "--no-first-run",
-         f"--log-net-log={log}", "--net-log-capture-mode=Everything", "--dump-dom", path.as_uri()],
-        capture_output=True, text=True, check=False, timeout=120,
-    )  # fmt: skip
+    quiet = ["background-networking", "component-update", "sync", "gpu"]
+    words = [
+        chromium, "--headless", "--no-sandbox", "--no-first-run", *(f"--disable-{word}" for word in quiet),
+        f"--user-data-dir={tmp_path / 'profile'}", "--enable-logging=stderr", "--log-level=0",
+        f"--log-net-log={log}", "--net-log-capture-mode=Everything", "--dump-dom", path.as_uri(),
+    ]  # fmt: skip
+    done = subprocess.run(words, capture_output=True, text=True, check=False, timeout=120)
     assert done.returncode == 0
     assert "CONSOLE" not in done.stderr, done.stderr
     assert "</footer>" in done.stdout

@@ -12,13 +12,20 @@ from verify.report.prose import prose
 
 
 def marked(text: str, *names: str) -> str:
-    return "".join(f"<{plain(run.box)}>" if isinstance(run, Math) else run.text for run in prose(text, names) if isinstance(run, Math | Text))
+    return "".join(
+        f"<{plain(run.box)}>" if isinstance(run, Math) else run.text
+        for run in prose(text, names)
+        if isinstance(run, Math | Text)
+    )
 
 
 @pytest.mark.parametrize(
     ("text", "shown"),
     [
-        ("Q(p) = log(1 - p) is strictly decreasing for 0 < p < 1", "<Q(p) = log(1 − p)> is strictly decreasing for <0 < p < 1>"),
+        (
+            "Q(p) = log(1 - p) is strictly decreasing for 0 < p < 1",
+            "<Q(p) = log(1 − p)> is strictly decreasing for <0 < p < 1>",
+        ),
         ("sign of Q'(p) = -1/(1 - p)", "sign of <Q′(p) = −1/(1 − p)>"),
         ("binomial theorem, DLMF 15.4.6", "binomial theorem, DLMF 15.4.6"),
         ("the 3-fold convolution agrees to 30 digits", "the 3-fold convolution agrees to 30 digits"),

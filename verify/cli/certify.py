@@ -26,14 +26,20 @@ RESERVED = ("index", "recheck")
 def add(parser: argparse.ArgumentParser) -> None:
     """Add the arguments of the command."""
     parser.add_argument("cases", nargs="+", metavar="CASE", help="case files, NAME.case.toml, or - for standard input")
-    parser.add_argument("-o", "--out", required=True, metavar="DIR", help="folder for the files; made if it is not there")
+    parser.add_argument(
+        "-o", "--out", required=True, metavar="DIR", help="folder for the files; made if it is not there"
+    )
     parser.add_argument("--paper", choices=("a4", "letter"), default="a4", help="paper of the PDF (default a4)")
-    parser.add_argument("--digits", type=digits, default=50, metavar="N", help="significant digits to certify (default 50)")
+    parser.add_argument(
+        "--digits", type=digits, default=50, metavar="N", help="significant digits to certify (default 50)"
+    )
     parser.add_argument(
         "--tolerance", default="1/1000000", metavar="X",
         help="how far an expectation may move when numbers are printed to k decimals (default 1/1000000)",
     )  # fmt: skip
-    parser.add_argument("--issued", default="", metavar="DATE", help="date or words of issue (default: SOURCE_DATE_EPOCH, if set)")
+    parser.add_argument(
+        "--issued", default="", metavar="DATE", help="date or words of issue (default: SOURCE_DATE_EPOCH, if set)"
+    )
     parser.add_argument("--no-pdf", action="store_true", help="leave out the PDF")
     parser.add_argument("--force", action="store_true", help="overwrite files that differ")
     add_budget(parser)
@@ -80,7 +86,9 @@ def _cases(paths: list[str]) -> list[Case]:
         if case.problem is None:
             raise InputError("the case has no [problem]", "a certificate needs a null, a level and n", file=path)
         if not NAME.fullmatch(case.name) or case.name.lower() in RESERVED:
-            raise InputError(f"{case.name!r} cannot name a certificate", "use letters, digits, . _ - in the file's name", file=path)
+            raise InputError(
+                f"{case.name!r} cannot name a certificate", "use letters, digits, . _ - in the file's name", file=path
+            )
         if case.name.lower() in seen:
             raise InputError(f"two cases are named {case.name}", "give each file another name", file=path)
         seen.add(case.name.lower())
@@ -114,7 +122,9 @@ def _certificate(case: Case, args: argparse.Namespace) -> tuple[Certificate | No
 
 def _show(args: argparse.Namespace, made: dict[str, Certificate], files: list[str]) -> None:
     if args.json:
-        listed = {name: {"file": f"{name}.cert.json", "sha256": certificate.sha256} for name, certificate in made.items()}
+        listed = {
+            name: {"file": f"{name}.cert.json", "sha256": certificate.sha256} for name, certificate in made.items()
+        }
         show_json({"directory": args.out, "certificates": listed, "files": [*files, "SHA256SUMS"]})
         return
     for name, certificate in made.items():

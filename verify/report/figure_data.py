@@ -2,9 +2,9 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
 from dataclasses import dataclass
 from fractions import Fraction
+from functools import partial
 from typing import TYPE_CHECKING, Any
 
 from verify.certificate.claims import ends
@@ -46,7 +46,6 @@ class LawsFigure:
 class PowerFigure:
     """The power function over the parameter."""
 
-    parameter: str
     t: list[float]
     power: list[float]
     limits: list[float]
@@ -86,24 +85,30 @@ class Test:
             return self.at_low
         if y == high:
             return self.at_high
-        return float({"inside": low < y < high, "outside": not low <= y <= high, "above": y > high}.get(self.rejects, y < low))
+        sides = {"inside": low < y < high, "outside": not low <= y <= high, "above": y > high, "below": y < low}
+        return float(sides[self.rejects])
 
     def power(self, law: Law) -> float:
         """The probability of rejection under a law."""
         low, high = (int(self.low), int(self.high)) if law.lattice else (self.low, self.high)
-        ball = (lambda A, y: y) if law.lattice else (lambda A, y: A.real(y))
-        step = 1 if law.lattice else 0
-        tails: dict[str, Callable[[Any], Any]] = {
-            "below": lambda A: law.cdf(A, ball(A, low - step)),
-            "above": lambda A: law.sf(A, ball(A, high)),
-            "outside": lambda A: law.cdf(A, ball(A, low - step)) + law.sf(A, ball(A, high)),
-            "inside": lambda A: law.cdf(A, ball(A, high - step)) - law.cdf(A, ball(A, low)),
-        }
-        total = 0.0 if self.rejects == "inside" and low == high else number(tails[self.rejects])
-        if law.lattice:
-            for y, fraction in {low: self.at_low, high: self.at_high}.items():
-                total += fraction * number(lambda A, y=y: law.density(A, y)) if fraction else 0.0
+        total = 0.0 if self.rejects == "inside" and low == high else number(lambda A: self._certain(law, A))
+        fractions = {low: self.at_low, high: self.at_high} if law.lattice else {}
+        for y, fraction in fractions.items():
+            total += fraction * number(partial(_mass, law, y)) if fraction else 0.0
         return min(max(total, 0.0), 1.0)
+
+    def _certain(self, law: Law, A: Any) -> Any:
+        """The probability of the points at which phi is 1."""
+        step = 1 if law.lattice else 0
+        low, high = (int(self.low), int(self.high)) if law.lattice else (A.real(self.low), A.real(self.high))
+        if self.rejects == "inside":
+            return law.cdf(A, high - step) - law.cdf(A, low)
+        below = law.cdf(A, low - step) if self.rejects in ("below", "outside") else A.real(0)
+        return below + law.sf(A, high) if self.rejects in ("above", "outside") else below
+
+
+def _mass(law: Law, y: Any, A: Any) -> Any:
+    return law.density(A, y)
 
 
 def read_test(predicate: dict[str, Any]) -> Test:
@@ -144,7 +149,7 @@ def laws_figure(predicate: dict[str, Any], family: LawFamily | None = None) -> L
 
 
 def _density(law: Law, y: float) -> float:
-    return number(lambda A: law.density(A, y if law.lattice else A.real(Fraction(y))))
+    return number(lambda A: _mass(law, y if law.lattice else A.real(Fraction(y)), A))
 
 
 def _grid(laws: list[Law], test: Test) -> list[Any]:
@@ -153,7 +158,10 @@ def _grid(laws: list[Law], test: Test) -> list[Any]:
     low = min(*(mean - 4 * spread for mean, spread in spans), float(test.low) - spans[0][1] / 2)
     high = max(*(mean + 4 * spread for mean, spread in spans), float(test.high) + spans[-1][1] / 2)
     first, last = laws[0].support
-    low, high = max(low, float(first)) if first is not None else low, min(high, float(last)) if last is not None else high
+    low, high = (
+        max(low, float(first)) if first is not None else low,
+        min(high, float(last)) if last is not None else high,
+    )
     if not laws[0].lattice:
         inset = (high - low) / (20 * CURVE) if first is not None and low == float(first) else 0.0
         return [low + inset + (high - low - inset) * k / CURVE for k in range(CURVE + 1)]
@@ -168,17 +176,15 @@ def power_figure(predicate: dict[str, Any], family: LawFamily | None = None) -> 
     at, test = law_at(predicate, family), read_test(predicate)
     limits = limits_of(predicate)
     space = density_of(predicate).parsed_space
-    ends_ = [None if end.is_infinite else number(lambda A, end=end: A.real(end)) for end in (space.lower, space.upper)]
+    bounds = [None if end.is_infinite else shown(end) for end in (space.lower, space.upper)]
     reach = REACH[test.rejects]
     floats = [shown(limit) for limit in limits]
-    start, stop = (_far(at, floats, side, reach, ends_[side > 0]) for side in (-1, 1))
+    start, stop = (_far(at, floats, side, reach, bounds[side > 0]) for side in (-1, 1))
     count = 120 if predicate["law"]["name"] in ("Poisson", "binomial", "negative binomial", "gamma", "normal") else 40
     points = sorted({*(start + (stop - start) * k / count for k in range(count + 1)), *floats})
     power = [test.power(at(Fraction(t).limit_denominator(10**9))) for t in points]
-    levels = [number(lambda A, text=text: A.real(exact(text))) for text in predicate["problem"]["alpha"]]
-    return PowerFigure(
-        predicate["problem"]["density"]["parameter"], points, power, floats, levels, _null(predicate, floats, start, stop)
-    )
+    levels = [shown(exact(text)) for text in predicate["problem"]["alpha"]]
+    return PowerFigure(points, power, floats, levels, _null(predicate, floats, start, stop))
 
 
 def _null(predicate: dict[str, Any], limits: list[float], start: float, stop: float) -> list[tuple[float, float]]:

@@ -11,7 +11,7 @@ if TYPE_CHECKING:
 
 WIDTH, HEIGHT = 6.3, 3.1
 INK, GREY, PALE = "#111111", "#6b6b6b", "#e3e3e3"
-STYLE = {
+STYLE: dict[str, Any] = {
     "svg.hashsalt": "sidecheck",
     "svg.fonttype": "path",
     "font.family": "DejaVu Serif",
@@ -123,7 +123,8 @@ def _svg(paint: Any, prefix: str) -> str:
 
     with matplotlib.rc_context():
         matplotlib.rcdefaults()
-        matplotlib.rcParams.update(STYLE)
+        settings: Any = matplotlib.rcParams
+        settings.update(STYLE)
         figure = Figure(figsize=(WIDTH, HEIGHT))
         figure.subplots_adjust(**MARGINS)
         FigureCanvasSVG(figure)

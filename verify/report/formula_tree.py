@@ -1,6 +1,7 @@
 """The formula of a certificate as a tree that keeps the shape in which it was written.
 
-The text is read by Python's grammar into a syntax tree that is never compiled or run; nothing is simplified or reordered, so that
+The text is read by Python's grammar into a syntax tree that is never compiled or run; nothing is simplified or
+reordered, so that
 the page shows the formula that was certified.
 """
 
@@ -149,8 +150,8 @@ def _build(node: ast.expr, source: str, depth: int) -> Node:
             return _product(node, source, depth)
         case ast.BinOp(op=ast.Pow()):
             return Power(_build(node.left, source, depth + 1), _build(node.right, source, depth + 1))
-        case ast.Call(func=ast.Name(), keywords=[]) if node.args:
-            return Apply(node.func.id, tuple(_build(part, source, depth + 1) for part in node.args))
+        case ast.Call(func=ast.Name(id=name), keywords=[]) if node.args:
+            return Apply(name, tuple(_build(part, source, depth + 1) for part in node.args))
     raise _unreadable(source)
 
 
@@ -175,7 +176,9 @@ def _terms(node: ast.expr, source: str, depth: int) -> tuple[Node, ...]:
 
 
 def _product(node: ast.expr, source: str, depth: int) -> Node:
-    """Read a chain of * and / from the left: a * b / c * d is ((a b) / c) d; a leading minus goes in front of the whole."""
+    """Read a chain of * and / from the left: a * b / c * d is ((a b) / c) d; a leading minus goes in front of
+    the whole.
+    """
     chain: list[tuple[bool, Node]] = []
     while isinstance(node, ast.BinOp) and isinstance(node.op, ast.Mult | ast.Div):
         chain.append((isinstance(node.op, ast.Div), _build(node.right, source, depth + 1)))

@@ -1,6 +1,7 @@
 """From a formula tree to boxes: what stands beside, over, above and below what.
 
-All that is known about notation (Greek letters, brackets, how a function is written) is here; the printers of MathML, typst and plain
+All that is known about notation (Greek letters, brackets, how a function is written) is here; the printers of
+MathML, typst and plain
 text know only the six kinds of box.
 """
 
@@ -12,7 +13,16 @@ from typing import Any
 
 from verify.errors import SidecheckError
 from verify.report.formula_tree import (
-    Apply, Negative, Node, Number, Power, Product, Quotient, Relation, Sum, Symbol,
+    Apply,
+    Negative,
+    Node,
+    Number,
+    Power,
+    Product,
+    Quotient,
+    Relation,
+    Sum,
+    Symbol,
 )  # fmt: skip
 
 
@@ -69,8 +79,33 @@ Box = Atom | Row | Fence | Over | Script | Root
 
 GREEK = dict(
     zip(
-        "alpha beta gamma delta epsilon zeta eta theta iota kappa lambda mu nu xi omicron pi rho sigma tau upsilon "
-        "phi chi psi omega lam".split(),
+        [
+            "alpha",
+            "beta",
+            "gamma",
+            "delta",
+            "epsilon",
+            "zeta",
+            "eta",
+            "theta",
+            "iota",
+            "kappa",
+            "lambda",
+            "mu",
+            "nu",
+            "xi",
+            "omicron",
+            "pi",
+            "rho",
+            "sigma",
+            "tau",
+            "upsilon",
+            "phi",
+            "chi",
+            "psi",
+            "omega",
+            "lam",
+        ],
         "αβγδεζηθικλμνξοπρστυφχψωλ",
         strict=True,
     )

@@ -9,7 +9,20 @@ from typing import Any
 
 from verify.report.math_boxes import relation, row
 from verify.report.page_blocks import (
-    Block, Break, Code, Commands, Link, Math, Page, Paragraph, Run, Runs, Section, Table, Text, words,
+    Block,
+    Break,
+    Code,
+    Commands,
+    Link,
+    Math,
+    Page,
+    Paragraph,
+    Run,
+    Runs,
+    Section,
+    Table,
+    Text,
+    words,
 )  # fmt: skip
 from verify.report.page_numbers import NAMES, box_of, numbers_of
 from verify.report.page_question import names_of
@@ -23,7 +36,8 @@ def overview_page(certificates: Mapping[str, bytes]) -> Page:
     Parameters
     ----------
     certificates : mapping
-        Name without ``.cert.json`` -> bytes of the certificate. It serves to find one's way; each certificate is rechecked alone.
+        Name without ``.cert.json`` -> bytes of the certificate. It serves to find one's way; each certificate
+        is rechecked alone.
     """
     rows, digests, issued = [], [], set()
     for key, data in sorted(certificates.items()):
@@ -37,12 +51,29 @@ def overview_page(certificates: Mapping[str, bytes]) -> Page:
     facts: list[tuple[str, Runs]] = [("Certificates", words(str(count)))]
     date = issued.pop() if len(issued) == 1 else ""
     facts += [("Issued", words(date))] if date else []
-    head = tuple(words(text) for text in ("Certificate", "Null hypothesis", "Law, level, n", "Cutoffs and fractions", "Grade, digits"))
+    head = tuple(
+        words(text)
+        for text in ("Certificate", "Null hypothesis", "Law, level, n", "Cutoffs and fractions", "Grade, digits")
+    )
     listed = Table(head, rows, (7, 6, 6, 8, 5))
     recheck: list[Block] = [
-        Paragraph(words("From the folder that holds these files, on any Python of version 3.11 or later, without packages:"), "intro"),
-        Commands(("sha256sum -c SHA256SUMS", *(f"python -I -S {RECHECK} {key}.cert.json" for key in sorted(certificates)[:1]))),
-        Paragraph(words("and so on for each certificate. Exit status 0 means accepted, 4 accepted with the numbers on trust; each page says more."), "small"),
+        Paragraph(
+            words("From the folder that holds these files, on any Python of version 3.11 or later, without packages:"),
+            "intro",
+        ),
+        Commands(
+            (
+                "sha256sum -c SHA256SUMS",
+                *(f"python -I -S {RECHECK} {key}.cert.json" for key in sorted(certificates)[:1]),
+            )
+        ),
+        Paragraph(
+            words(
+                "and so on for each certificate. Exit status 0 means accepted, 4 accepted with the numbers on "
+                "trust; each page says more."
+            ),
+            "small",
+        ),
         Table((words("File"), words("SHA-256")), digests, (6, 12), "Digests"),
     ]
     return Page(
@@ -50,13 +81,18 @@ def overview_page(certificates: Mapping[str, bytes]) -> Page:
         "Precision certificates of optimal tests",
         facts,
         (Section("Certificates", [listed, Paragraph(words(TRUST), "small")]), Section("How to recheck them", recheck)),
-        hashlib.sha256("".join(f"{hashlib.sha256(certificates[key]).hexdigest()}  {key}\n" for key in sorted(certificates)).encode()).hexdigest(),
+        hashlib.sha256(
+            "".join(
+                f"{hashlib.sha256(certificates[key]).hexdigest()}  {key}\n" for key in sorted(certificates)
+            ).encode()
+        ).hexdigest(),
         date,
     )
 
 
 TRUST = (
-    "Numbers are cut to ten digits here. “Agrees to” is the least number of significant digits to which double precision agrees with the certified numbers. "
+    "Numbers are cut to ten digits here. “Agrees to” is the least number of significant digits to which double "
+    "precision agrees with the certified numbers. "
     "At the foot: SHA-256 of the list of digests and names."
 )
 
@@ -79,5 +115,11 @@ def _row(key: str, predicate: dict[str, Any]) -> list[Runs]:
         prose(problem["null"], names_of(predicate)),
         (Text(law["name"]), Break(), Text("level "), *level, Break(), Text(f"n = {problem['n']}")),
         tuple(numbers),
-        (Text(predicate["derivation"]["grade"], strong=True), Break(), Text(f"{problem['digits']} digits"), Break(), Text(agrees)),
+        (
+            Text(predicate["derivation"]["grade"], strong=True),
+            Break(),
+            Text(f"{problem['digits']} digits"),
+            Break(),
+            Text(agrees),
+        ),
     ]

@@ -30,7 +30,8 @@ def certificate_page(name: str, data: bytes, family: LawFamily | None = None) ->
     data : bytes
         The certificate.
     family : LawFamily, optional
-        The family derived from the same density, which saves deriving it again for the figures of a law without a closed form.
+        The family derived from the same density, which saves deriving it again for the figures of a law
+        without a closed form.
 
     Returns
     -------
@@ -52,7 +53,7 @@ def certificate_page(name: str, data: bytes, family: LawFamily | None = None) ->
             double_section(predicate),
             _figures(predicate, family),
             recheck_section(name, digest, predicate),
-            assumptions_section(predicate, subject),
+            assumptions_section(predicate),
             signature_section(),
         ),
         digest,
@@ -89,16 +90,24 @@ def _figures(predicate: dict[str, Any], family: LawFamily | None) -> Section:
     cutoffs = ", ".join(f"{c:.6g}" for c in laws.cutoffs)
     peak = max(power.power)
     first = (
-        f"Above, the critical function φ over V, with cutoffs at {cutoffs}; below, the {kind} of V at {limits}. The grey ground is the region of rejection."
+        f"Above, the critical function φ over V, with cutoffs at {cutoffs}; below, the {kind} of V at "
+        f"{limits}. The grey ground is the region of rejection."
     )
     levels = " and ".join(f"{level:.6g}" for level in dict.fromkeys(power.levels))
     second = (
-        f"The power function: probability of rejection over {symbol} from {power.t[0]:.4g} to {power.t[-1]:.4g}. Dotted: level {levels}; dashed: the limits; "
+        f"The power function: probability of rejection over {symbol} from {power.t[0]:.4g} to "
+        f"{power.t[-1]:.4g}. Dotted: level {levels}; dashed: the limits; "
         "grey ground: the null hypothesis."
     )
     blocks: list[Block] = [
         Figure(draw_laws(laws, symbol, "fig1-"), f"{first} Test: {predicate['test']['rejects']}.", first + guide),
         Figure(draw_power(power, symbol, "fig2-"), f"{second} Largest value drawn: {peak:.4g}.", second),
-        Paragraph(words("Figures are drawn in double precision, from the law and the numbers stated above; nothing is concluded from them."), "small"),
+        Paragraph(
+            words(
+                "Figures are drawn in double precision, from the law and the numbers stated above; nothing is "
+                "concluded from them."
+            ),
+            "small",
+        ),
     ]
     return Section("Figures", blocks)

@@ -1,4 +1,6 @@
-"""What a page is made of: runs of text and mathematics in blocks, blocks in sections. HTML and PDF print the same page."""
+"""What a page is made of: runs of text and mathematics in blocks, blocks in sections. HTML and PDF print the
+same page.
+"""
 
 from __future__ import annotations
 
@@ -57,7 +59,8 @@ Runs = tuple[Run, ...]
 @dataclass(frozen=True)
 class Paragraph:
     """A paragraph; ``kind``: "", "lead" (the certified sentence), "intro" (stays with what follows), "small" or
-    "caution"."""
+    "caution".
+    """
 
     runs: Runs
     kind: str = ""

@@ -17,14 +17,17 @@ from verify.report.prose import prose
 ONE_LINE = 72
 """Characters of equations that fit side by side."""
 GRADES = (
-    "Grades: proved, a symbolic identity or an enclosure for all parameter values; enclosed, ball arithmetic over the interval named; "
+    "Grades: proved, a symbolic identity or an enclosure for all parameter values; enclosed, ball arithmetic "
+    "over the interval named; "
     "checked numerically, to the digits named."
 )
 
 
 def derivation_section(predicate: dict[str, Any]) -> Section:
     """Return the section."""
-    return Section("The derivation", [*_family(predicate), *_law(predicate), *_conditions(predicate), *_ledger(predicate)])
+    return Section(
+        "The derivation", [*_family(predicate), *_law(predicate), *_conditions(predicate), *_ledger(predicate)]
+    )
 
 
 def _of(letter: str, argument: Box) -> Box:
@@ -35,7 +38,14 @@ def _family(predicate: dict[str, Any]) -> list[Block]:
     derivation, density = predicate["derivation"], predicate["problem"]["density"]
     x, t = symbol(density["variable"]), parameter_of(predicate)
     exponent = row(_of("Q", t), Atom("space", "\u2009"), _of("T", x), Atom("operator", "−"), _of("A", t))
-    f = row(density_sign(predicate), relation("="), _of("h", x), Atom("space", "\u2009"), Atom("word", "exp"), Fence(exponent, "{", "}"))
+    f = row(
+        density_sign(predicate),
+        relation("="),
+        _of("h", x),
+        Atom("space", "\u2009"),
+        Atom("word", "exp"),
+        Fence(exponent, "{", "}"),
+    )
     parts = {_key: derivation[_key] for _key in ("natural_parameter", "statistic", "log_normaliser")}
     way = "increasing" if derivation["rising"] else "decreasing"
     intro = "The densities form a one-parameter exponential family,"
@@ -85,14 +95,33 @@ def _law(predicate: dict[str, Any]) -> list[Block]:
     law = predicate["law"]
     n = predicate["problem"]["n"]
     if not law["name"].startswith("no closed form") and law["name"] != "lattice":
-        parts: list[Run] = [Text("For one observation, "), Math(_affine(law)), Text(f" has the {law['name']} law with ")]
+        parts: list[Run] = [
+            Text("For one observation, "),
+            Math(_affine(law)),
+            Text(f" has the {law['name']} law with "),
+        ]
         for place, (key, text) in enumerate(law["parameters"].items()):
-            parts += [Text((" and " if place == len(law["parameters"]) - 1 else ", ") if place else ""), Text(f"{key} "), Math(exact_box(text))]
+            parts += [
+                Text((" and " if place == len(law["parameters"]) - 1 else ", ") if place else ""),
+                Text(f"{key} "),
+                Math(exact_box(text)),
+            ]
         closing = "." if n == 1 else f"; the sum of the {n} values follows from it, {SUMS[law['name']]}."
         return [Paragraph((*parts, Text(closing)))]
     if law["name"] == "lattice":
-        text = f"one observation lies on a lattice; its masses are a table of {len(law['weights'])} weights times powers of "
-        return [Paragraph((Text("The statistic of " + text), Math(exact_box(law["parameters"]["base"])), Text(", both in the certificate.")))]
+        text = (
+            f"one observation lies on a lattice; its masses are a table of {len(law['weights'])} weights "
+            f"times powers of "
+        )
+        return [
+            Paragraph(
+                (
+                    Text("The statistic of " + text),
+                    Math(exact_box(law["parameters"]["base"])),
+                    Text(", both in the certificate."),
+                )
+            )
+        ]
     return [Paragraph(words(f"The law of the statistic has {law['name']}."))]
 
 
@@ -115,12 +144,22 @@ def _affine(law: dict[str, Any]) -> Box:
     text = {"1": "Y", "-1": "-Y"}.get(scale, f"({scale})*Y")
     text += "" if shift == "0" else f" + ({shift})"
     tree = re.sub(r"\((-?\d+)\)", r"\1", text).replace("+ -", "- ")
-    return row(Y, Atom("operator", ","), Atom("space", "\u2009"), Atom("word", "where"), WIDE, row(T, relation("="), boxes(read_formula(tree))), Atom("operator", ","))
+    return row(
+        Y,
+        Atom("operator", ","),
+        Atom("space", "\u2009"),
+        Atom("word", "where"),
+        WIDE,
+        row(T, relation("="), boxes(read_formula(tree))),
+        Atom("operator", ","),
+    )
 
 
 def _conditions(predicate: dict[str, Any]) -> list[Block]:
     t = parameter_of(predicate)
-    theorem = next((line.removeprefix("theorem: ") for line in predicate["assumptions"] if line.startswith("theorem: ")), "")
+    theorem = next(
+        (line.removeprefix("theorem: ") for line in predicate["assumptions"] if line.startswith("theorem: ")), ""
+    )
     intro = (Text(f"By {theorem}. " if theorem else ""), Text("The side conditions that fix the numbers are"))
     parts: list[Box] = []
     for place, entry in enumerate(predicate["side_conditions"]):
@@ -146,7 +185,11 @@ def _target(predicate: dict[str, Any], entry: dict[str, Any]) -> Box:
 def _ledger(predicate: dict[str, Any]) -> list[Block]:
     known = names_of(predicate)
     rows = [
-        [words(step["name"]), (*_sentence(step["statement"], known), Break(), *_reason(step["reason"], known)), (Text(step["grade"], strong=True),)]
+        [
+            words(step["name"]),
+            (*_sentence(step["statement"], known), Break(), *_reason(step["reason"], known)),
+            (Text(step["grade"], strong=True),),
+        ]
         for step in predicate["derivation"]["steps"]
     ]
     head = (words("Step"), words("What was shown, and why it holds"), words("Grade"))

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from functools import cache
 from pathlib import Path
 from typing import Any
@@ -37,9 +38,13 @@ def _environment() -> Any:
     from markupsafe import Markup
 
     environment = Environment(
-        loader=FileSystemLoader(TEMPLATES), autoescape=True, undefined=StrictUndefined, trim_blocks=True, lstrip_blocks=True
+        loader=FileSystemLoader(TEMPLATES),
+        autoescape=True,
+        undefined=StrictUndefined,
+        trim_blocks=True,
+        lstrip_blocks=True,
     )
-    environment.filters |= {
+    filters: dict[str, Callable[[Any], Any]] = {
         "kind": lambda value: type(value).__name__,
         "inline_math": lambda box: Markup(mathml(box)),
         "block_math": lambda box: Markup(mathml(box, block=True)),
@@ -49,6 +54,7 @@ def _environment() -> Any:
         "svg": lambda figure: Markup(figure.svg),
         "style": lambda name: Markup((TEMPLATES / name).read_text(encoding="utf-8")),
     }
+    environment.filters.update(filters)
     return environment
 
 

@@ -12,7 +12,22 @@ from typing import Any
 from verify.errors import InputError
 from verify.report.math_text import plain
 from verify.report.page_blocks import (
-    Break, Code, Commands, Digits, Equation, Figure, Items, Link, Math, Page, Paragraph, Run, Runs, Signatures, Table, Text,
+    Break,
+    Code,
+    Commands,
+    Digits,
+    Equation,
+    Figure,
+    Items,
+    Link,
+    Math,
+    Page,
+    Paragraph,
+    Run,
+    Runs,
+    Signatures,
+    Table,
+    Text,
 )  # fmt: skip
 from verify.report.page_html import FOOT, TEMPLATES, groups
 from verify.report.safe_text import visible
@@ -54,7 +69,9 @@ def page_pdf(page: Page, paper: str = "a4") -> bytes:
     pages = int(json.loads(typst.query(source, "<last>", field="value", one=True, sys_inputs=inputs, **common)))
     if pages >= CONTENTS_FROM:
         inputs["contents"] = "yes"
-    made: bytes = typst.compile(source, format="pdf", pdf_standards="a-2b", timestamp=_timestamp(page.issued), sys_inputs=inputs, **common)
+    made: bytes = typst.compile(
+        source, format="pdf", pdf_standards="a-2b", timestamp=_timestamp(page.issued), sys_inputs=inputs, **common
+    )
     return made
 
 
@@ -101,7 +118,9 @@ def _page(page: Page) -> dict[str, Any]:
         "title": safe(page.title),
         "subtitle": safe(page.subtitle),
         "facts": [[label, _runs(value)] for label, value in page.facts],
-        "sections": [{"title": part.title, "blocks": [_block(block) for block in part.blocks]} for part in page.sections],
+        "sections": [
+            {"title": part.title, "blocks": [_block(block) for block in part.blocks]} for part in page.sections
+        ],
         "foot": page.digest[:FOOT],
     }
 
@@ -150,4 +169,6 @@ _BLOCKS: dict[type, Callable[[Any], dict[str, Any]]] = {
 
 def _standalone(svg: str) -> str:
     """Give an inline picture the name space and link prefix that a file of its own needs."""
-    return svg.replace(' href="#', ' xlink:href="#').replace("<svg ", '<svg xmlns:xlink="http://www.w3.org/1999/xlink" ', 1)
+    return svg.replace(' href="#', ' xlink:href="#').replace(
+        "<svg ", '<svg xmlns:xlink="http://www.w3.org/1999/xlink" ', 1
+    )

@@ -7,7 +7,20 @@ from typing import Any
 from verify.report.formula_tree import read_formula
 from verify.report.math_boxes import Atom, Box, Fence, Row, Script, boxes, relation, row, symbol
 from verify.report.math_text import plain
-from verify.report.page_blocks import Block, Break, Code, Equation, Math, Paragraph, Run, Runs, Section, Table, Text, words
+from verify.report.page_blocks import (
+    Block,
+    Break,
+    Code,
+    Equation,
+    Math,
+    Paragraph,
+    Run,
+    Runs,
+    Section,
+    Table,
+    Text,
+    words,
+)
 from verify.report.page_numbers import V, box_of, joined, name, numbers_of
 from verify.report.prose import formula, prose
 
@@ -124,12 +137,17 @@ def sum_of_statistics(predicate: dict[str, Any]) -> Box:
 def _grades(predicate: dict[str, Any]) -> Runs:
     grade, digits = predicate["derivation"]["grade"], predicate["problem"]["digits"]
     if predicate["law"]["name"].startswith(TRUSTED_LAW):
-        numbers = "they are stated by the producing program and taken on trust by the rechecker, for this law has no closed form"
+        numbers = (
+            "they are stated by the producing program and taken on trust by the rechecker, for this law "
+            "has no closed form"
+        )
     else:
         numbers = f"each is exact or enclosed between two decimals of {digits} significant digits, rounded outward"
     return (
-        Text("Derivation: "), Text(grade, strong=True), Text(", the weakest grade of its steps (the numerical look apart). "),
-        Text("Numbers: "), Text(numbers + ". In the sentence above they are cut after ten digits; section 4 gives them in full."),
+        Text("Derivation: "), Text(grade, strong=True), Text(", the weakest grade of its steps (the numerical "
+        "look apart). "),
+        Text("Numbers: "), Text(numbers + ". In the sentence above they are cut after ten digits; section 4 "
+        "gives them in full."),
     )  # fmt: skip
 
 
@@ -142,9 +160,13 @@ def problem_section(predicate: dict[str, Any]) -> Section:
         [words("Parameter"), (Math(parameter_of(predicate)), Text(", space: "), *prose(density["space"], known))],
     ]
     if density["constants"]:
-        parts = [(Math(row(symbol(key), relation("="), exact_box(value))),) for key, value in density["constants"].items()]
+        parts = [
+            (Math(row(symbol(key), relation("="), exact_box(value))),) for key, value in density["constants"].items()
+        ]
         rows.append([words("Known constants"), joined(list(parts))])
-    levels = [_level(predicate, a, e["at"]) for a, e in zip(problem["alpha"], predicate["side_conditions"], strict=False)]
+    levels = [
+        _level(predicate, a, e["at"]) for a, e in zip(problem["alpha"], predicate["side_conditions"], strict=False)
+    ]
     rows += [
         [words("Null hypothesis"), prose(problem["null"], known)],
         [words("Alternative"), prose(problem["alternative"], known)],
@@ -165,10 +187,14 @@ def _density(predicate: dict[str, Any]) -> list[Block]:
     left = density_sign(predicate)
     text = density.get("formula", density.get("kernel"))
     sign = relation("=" if "formula" in density else "∝")
-    intro = "One observation has the density" if "formula" in density else "One observation has a density proportional to"
+    intro = (
+        "One observation has the density" if "formula" in density else "One observation has a density proportional to"
+    )
     body = boxes(read_formula(text), stacked=True)
     blocks: list[Block] = [
-        Paragraph((*words(f"{intro}, in "), Math(variable), Text(" with parameter "), Math(parameter), Text(",")), "intro")
+        Paragraph(
+            (*words(f"{intro}, in "), Math(variable), Text(" with parameter "), Math(parameter), Text(",")), "intro"
+        )
     ]
     blocks.append(Equation(row(left, sign, body)))
     blocks.append(Paragraph((Text("written in the case file as "), Code(text), Text(".")), "small"))
@@ -193,11 +219,16 @@ def _weights(density: dict[str, Any]) -> list[Block]:
     return [
         Paragraph(words("One observation has a density proportional to"), "intro"),
         Equation(row(left, relation("∝"), kernel)),
-        Paragraph((*words("with the weights "), Math(row(Atom("name", "h"), Fence(variable))), Text(f" = {shown}{rest}.")), "small"),
+        Paragraph(
+            (*words("with the weights "), Math(row(Atom("name", "h"), Fence(variable))), Text(f" = {shown}{rest}.")),
+            "small",
+        ),
     ]
 
 
 def headline(predicate: dict[str, Any]) -> str:
     """Return the null in plain signs, for a list of certificates."""
     runs = prose(predicate["problem"]["null"], names_of(predicate))
-    return "".join(plain(run.box) if isinstance(run, Math) else run.text for run in runs if not isinstance(run, Break | Code))
+    return "".join(
+        plain(run.box) if isinstance(run, Math) else run.text for run in runs if not isinstance(run, Break | Code)
+    )

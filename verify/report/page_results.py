@@ -24,13 +24,19 @@ def _numbers(predicate: dict[str, Any]) -> list[Block]:
         Text("Cutoffs are on the scale of "), Math(V),
         Text(". A number that is not exact lies between the two decimals shown, lower end above, upper end below."),
     )  # fmt: skip
-    table = Table((words("Number"), words("Value"), words("Kind")), rows, (2, 14, 6), "Cutoffs and fractions of the test")
+    table = Table(
+        (words("Number"), words("Value"), words("Kind")), rows, (2, 14, 6), "Cutoffs and fractions of the test"
+    )
     lattice = {key: test[key] for key in ("y", "y1", "y2") if key in test}
     moved = (predicate["law"]["scale"], predicate["law"]["shift"]) != ("1", "0")
     notes: list[Block] = []
     if lattice and moved:
         places = " and ".join(str(value) for value in dict.fromkeys(lattice.values()))
-        notes.append(Paragraph((Text("On the lattice of "), Math(Atom("name", "Y")), Text(f" the cutoffs are {places}.")), "small"))
+        notes.append(
+            Paragraph(
+                (Text("On the lattice of "), Math(Atom("name", "Y")), Text(f" the cutoffs are {places}.")), "small"
+            )
+        )
     if not any(key.startswith("gamma") for key in test):
         notes.append(Paragraph(words("The law is continuous: no fraction is needed at a cutoff."), "small"))
     return [Paragraph(intro, "intro"), table, *notes]
@@ -39,7 +45,11 @@ def _numbers(predicate: dict[str, Any]) -> list[Block]:
 def _conditions(predicate: dict[str, Any]) -> list[Block]:
     t = parameter_of(predicate)
     rows = [
-        [(Math(expectation(t, exact_box(entry["at"]), entry["of"])),), in_full(entry["target"]), in_full(entry["expectation"])]
+        [
+            (Math(expectation(t, exact_box(entry["at"]), entry["of"])),),
+            in_full(entry["target"]),
+            in_full(entry["expectation"]),
+        ]
         for entry in predicate["side_conditions"]
     ]
     head = (words("Expectation"), words("Target"), words("Attained, over all numbers within the enclosures above"))
@@ -62,10 +72,15 @@ def _rounding(predicate: dict[str, Any]) -> list[Block]:
         cells += [_upper(value) for value in entry["expectations"]]
         cells += [_upper(entry["size"])] if len(places) > 1 else []
         rows.append(cells)
-    intro = f"When the numbers are printed to k decimals, the test attains the expectations below (rounded up). {sufficient(rounding)}"
+    intro = (
+        f"When the numbers are printed to k decimals, the test attains the expectations below (rounded up). "
+        f"{sufficient(rounding)}"
+    )
     return [
         Paragraph(words(intro), "intro"),
-        Table(head, rows, (3, *([4] * (len(head) - 1))), "True expectations and size of the test as printed to k decimals"),
+        Table(
+            head, rows, (3, *([4] * (len(head) - 1))), "True expectations and size of the test as printed to k decimals"
+        ),
     ]
 
 
@@ -93,21 +108,35 @@ def double_section(predicate: dict[str, Any]) -> Section:
     """Return the fifth section."""
     found = predicate["double_precision"]
     keys = list(numbers_of(predicate["test"]))
-    intro = "The same numbers were computed in double precision by the routes below, which share no code with the proof. "
-    intro += "A digit count is the number of significant digits to which the value agrees with the certified number (17 is the most that can be)."
+    intro = (
+        "The same numbers were computed in double precision by the routes below, which share no code with the proof. "
+    )
+    intro += (
+        "A digit count is the number of significant digits to which the value agrees with the certified "
+        "number (17 is the most that can be)."
+    )
     rows: list[list[Runs]] = []
     for opinion in found["opinions"]:
         for key in keys:
             if key in opinion["numbers"]:
                 value, digits = opinion["numbers"][key], opinion["digits"].get(key)
-                rows.append([words(opinion["route"]), (name(key),), words("none") if value is None else (Digits(value),), words("" if digits is None else str(digits))])
+                rows.append(
+                    [
+                        words(opinion["route"]),
+                        (name(key),),
+                        words("none") if value is None else (Digits(value),),
+                        words("" if digits is None else str(digits)),
+                    ]
+                )
     blocks: list[Block] = [Paragraph(words(intro))]
     if rows:
         head = (words("Route"), words("Number"), words("Value in double precision"), words("Digits agreed"))
         blocks.append(Table(head, rows, (5, 3, 9, 5), "Double precision against the certified numbers"))
     else:
         blocks.append(Paragraph(words("No route gave numbers.")))
-    notes = [(Text(f"{opinion['route']}: "), *prose(opinion["note"], ())) for opinion in found["opinions"] if opinion["note"]]
+    notes = [
+        (Text(f"{opinion['route']}: "), *prose(opinion["note"], ())) for opinion in found["opinions"] if opinion["note"]
+    ]
     blocks += [Paragraph(note, "small") for note in notes]
     return Section("How far double precision may be trusted", [*blocks, *_verdict(found, keys)])
 
@@ -116,14 +145,25 @@ def _verdict(found: dict[str, Any], keys: list[str]) -> list[Block]:
     blocks: list[Block] = []
     least = [min(opinion["digits"].values()) for opinion in found["opinions"] if opinion["digits"]]
     if least:
-        routes = joined([words(f"{o['route']} to {min(o['digits'].values())}") for o in found["opinions"] if o["digits"]])
-        blocks.append(Paragraph((Text("For this problem every number agrees, in significant digits: ", strong=True), *routes, Text("."))))
+        routes = joined(
+            [words(f"{o['route']} to {min(o['digits'].values())}") for o in found["opinions"] if o["digits"]]
+        )
+        blocks.append(
+            Paragraph(
+                (Text("For this problem every number agrees, in significant digits: ", strong=True), *routes, Text("."))
+            )
+        )
     if found["condition"]:
-        text = f"Condition: a relative error e in a tail of the law moves these numbers by up to about {found['condition']} e."
+        text = (
+            f"Condition: a relative error e in a tail of the law moves these numbers by up to about "
+            f"{found['condition']} e."
+        )
         blocks.append(Paragraph(words(text)))
     for flag in found["flags"]:
         runs: list[Run] = [Text(f"Warning, {flag['kind']}: ", strong=True), Text(flag["text"])]
         blocks.append(Paragraph(tuple(runs), "caution"))
     if not found["flags"]:
-        blocks.append(Paragraph(words("No warning was raised. Other problems, even near ones, may behave differently.")))
+        blocks.append(
+            Paragraph(words("No warning was raised. Other problems, even near ones, may behave differently."))
+        )
     return blocks

@@ -16,8 +16,39 @@ _LONGEST = 400
 """Pieces of one formula in a sentence."""
 
 FUNCTIONS = frozenset(
-    "exp log ln sqrt abs Abs factorial binomial gamma loggamma beta besseli besselj besselk bessely zeta erf erfc sin cos tan "
-    "asin acos atan sinh cosh tanh asinh acosh atanh sech".split()
+    [
+        "exp",
+        "log",
+        "ln",
+        "sqrt",
+        "abs",
+        "Abs",
+        "factorial",
+        "binomial",
+        "gamma",
+        "loggamma",
+        "beta",
+        "besseli",
+        "besselj",
+        "besselk",
+        "bessely",
+        "zeta",
+        "erf",
+        "erfc",
+        "sin",
+        "cos",
+        "tan",
+        "asin",
+        "acos",
+        "atan",
+        "sinh",
+        "cosh",
+        "tanh",
+        "asinh",
+        "acosh",
+        "atanh",
+        "sech",
+    ]
 )
 LETTERS = frozenset(("f", "h", "A", "Q", "Q'", "T", "V", "Y", "n", "oo", "pi"))
 """Names that the ledger uses beside those of the problem."""
@@ -117,4 +148,3 @@ def _read(text: str) -> Math | None:
 def _signs(text: str) -> str:
     """Write relation signs and infinity as signs."""
     return re.sub(r"\boo\b", "∞", text.replace("<=", "≤").replace(">=", "≥"))
-

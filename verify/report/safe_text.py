@@ -10,11 +10,11 @@ JOINERS = frozenset("\u200c\u200d")
 
 
 def visible(text: str, drawable: Callable[[str], bool] = lambda sign: True) -> str:
-    """Return the text with every sign that cannot be seen, or not drawn, written as its code.
+    r"""Return the text with every sign that cannot be seen, or not drawn, written as its code.
 
     Examples
     --------
-    >>> visible("a\\u202eb"), visible("zebra \\u4e2d", str.isascii)
+    >>> visible("a\u202eb"), visible("zebra \u4e2d", str.isascii)
     ('a[U+202E]b', 'zebra [U+4E2D]')
     """
     return "".join(_shown(sign, drawable) for sign in text)
