@@ -1,15 +1,49 @@
 """Inversion of transforms: against closed forms, against itself along other paths, against mpmath."""
 
+from collections.abc import Iterable
+from dataclasses import dataclass
 from fractions import Fraction
 from math import comb, factorial
+from typing import Any
 
 import mpmath
 import pytest
+from flint import acb
 
 from verify.arithmetic.ball import balls
 from verify.arithmetic.inversion import DENSITY, SHORTFALL, TAIL, Inversion
-from verify.arithmetic.transforms import Bessel, GammaRatio, Interval, Secant
+from verify.arithmetic.transforms import Bessel, GammaRatio, Secant, Transform
 from verify.laws.gamma import Gamma
+
+
+@dataclass(frozen=True)
+class Interval(Transform):
+    """N(z) = (exp(b z) - exp(a z)) / z: a constant weight on (a, b), such as the truncated exponential law."""
+
+    a: Any
+    b: Any
+
+    def value(self, A: Any, z: Any, analytic: bool) -> Any:
+        """(b - a) exp(m z) sinh(w) / w with m the middle and w = z (b - a) / 2, which is entire."""
+        a, b = A.real(self.a), A.real(self.b)
+        return (b - a) * (z * (a + b) / 2).exp() * (acb(0, 1) * z * (b - a) / 2).sinc()
+
+    def rates(self, A: Any, n: int) -> list[Any]:
+        """(n - j) b + j a."""
+        return [(n - j) * A.real(self.b) + j * A.real(self.a) for j in range(n + 1)]
+
+    def terms(self, A: Any, z: Any, n: int, which: Iterable[int]) -> Any:
+        """C(n, j) (-1)**j exp(rate z) / z**n."""
+        rates = self.rates(A, n)
+        return sum(((-1) ** j * comb(n, j) * (z * rates[j]).exp() for j in which), acb(0)) / z**n
+
+    def term_size(self, A: Any, z: Any, n: int, which: int) -> Any:
+        """C(n, j) / |z|**n."""
+        return comb(n, which) / z.abs_lower() ** n
+
+    def bound(self, A: Any, n: int, which: int, x: Any, height: Any) -> Any:
+        """C(n, j) / abs(x)**n."""
+        return comb(n, which) / abs(x) ** n
 
 
 def invert(A, transform, n, eta, v, c, kind, mean=0):  # type: ignore[no-untyped-def]
@@ -22,9 +56,7 @@ def test_truncated_exponential_agrees_with_the_inclusion_exclusion_density() -> 
     """
     n, at, v = 5, Fraction(2), Fraction(5, 2)
     with balls(128) as A:
-        spline = sum(Fraction((-1) ** k * comb(n, k)) * (v - k) ** (n - 1) for k in range(3)) / factorial(
-            n - 1
-        )
+        spline = sum(Fraction((-1) ** k * comb(n, k)) * (v - k) ** (n - 1) for k in range(3)) / factorial(n - 1)
         front = (A.real(at) / (1 - A.exp(-A.real(at)))) ** n * A.exp(-A.real(at * v))
         found = invert(A, Interval(Fraction(0), Fraction(1)), n, -at, v, Fraction(0), DENSITY)
         assert found.overlaps(front * A.real(spline))
@@ -59,13 +91,9 @@ def test_power_law_observations_give_a_gamma_law(v: Fraction) -> None:
 )
 def test_the_answer_does_not_depend_on_the_path(transform) -> None:  # type: ignore[no-untyped-def]
     """A wrong bound shows itself here: paths far from the saddle point must give the same number."""
-    v, eta = (
-        (Fraction(-3), Fraction(3)) if isinstance(transform, GammaRatio) else (Fraction(1), Fraction(1, 2))
-    )
+    v, eta = (Fraction(-3), Fraction(3)) if isinstance(transform, GammaRatio) else (Fraction(1), Fraction(1, 2))
     crossings = (
-        (Fraction(1, 2), Fraction(9, 4), Fraction(4))
-        if eta == 3
-        else (Fraction(-1), Fraction(1, 8), Fraction(1))
+        (Fraction(1, 2), Fraction(9, 4), Fraction(4)) if eta == 3 else (Fraction(-1), Fraction(1, 8), Fraction(1))
     )
     with balls(100) as A:
         densities = [invert(A, transform, 3, eta, v, c, DENSITY) for c in crossings]
@@ -98,8 +126,7 @@ def test_von_mises_sum_agrees_with_a_real_integral_in_mpmath() -> None:
 
     def part(u: float) -> float:
         return (
-            mpmath.re((mpmath.besseli(0, 2 + 1j * u) / mpmath.besseli(0, 2)) ** 8 * mpmath.exp(-4.5j * u))
-            / mpmath.pi
+            mpmath.re((mpmath.besseli(0, 2 + 1j * u) / mpmath.besseli(0, 2)) ** 8 * mpmath.exp(-4.5j * u)) / mpmath.pi
         )
 
     wanted = mpmath.quad(part, mpmath.linspace(0, 60, 31))

@@ -250,36 +250,6 @@ class GammaRatio(Transform):
 
 
 @dataclass(frozen=True)
-class Interval(Transform):
-    """N(z) = (exp(b z) - exp(a z)) / z: a constant weight on (a, b), such as the truncated exponential law."""
-
-    a: Any
-    b: Any
-
-    def value(self, A: Balls, z: ComplexBall, analytic: bool) -> ComplexBall:
-        """(b - a) exp(m z) sinh(w) / w with m the middle and w = z (b - a) / 2, which is entire."""
-        a, b = A.real(self.a), A.real(self.b)
-        return (b - a) * (z * (a + b) / 2).exp() * (acb(0, 1) * z * (b - a) / 2).sinc()
-
-    def rates(self, A: Balls, n: int) -> list[Any]:
-        """(n - j) b + j a."""
-        return [(n - j) * A.real(self.b) + j * A.real(self.a) for j in range(n + 1)]
-
-    def terms(self, A: Balls, z: ComplexBall, n: int, which: Iterable[int]) -> ComplexBall:
-        """C(n, j) (-1)**j exp(rate z) / z**n."""
-        rates = self.rates(A, n)
-        return sum(((-1) ** j * comb(n, j) * (z * rates[j]).exp() for j in which), acb(0)) / z**n
-
-    def term_size(self, A: Balls, z: ComplexBall, n: int, which: int) -> Any:
-        """C(n, j) / |z|**n."""
-        return comb(n, which) / z.abs_lower() ** n
-
-    def bound(self, A: Balls, n: int, which: int, x: Any, height: Any) -> Any:
-        """C(n, j) / abs(x)**n."""
-        return comb(n, which) / abs(x) ** n
-
-
-@dataclass(frozen=True)
 class Secant(Transform):
     """N(z) = exp(shift z) / cos(omega z + phase)**r: the generalised hyperbolic secant law.
 

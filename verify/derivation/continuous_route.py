@@ -8,11 +8,12 @@ from verify.derivation.cumulants import cumulants
 from verify.derivation.factorisation import Factorisation
 from verify.derivation.family import LawFamily
 from verify.derivation.lattice_route import space_ends
-from verify.derivation.monotone_pieces import monotone_pieces
+from verify.derivation.monotone_pieces import V, monotone_pieces
+from verify.derivation.positivity import Domain
 from verify.derivation.transforms import transform_of
 from verify.derivation.zeta_values import open_zeta
 from verify.laws.continuous import OneObservation
-from verify.laws.shape import DEVIATION, Shape
+from verify.laws.shape import DEVIATION, Piece, Shape
 from verify.problem.density import Density
 from verify.problem.numbers import as_exact
 
@@ -50,6 +51,21 @@ def continuous_family(density: Density, found: Factorisation) -> tuple[LawFamily
         variance,
         found.natural_parameter,
         transform_of(density, found),
+        *_pushed(core, found.statistic, x, pieces),
     )
-    word = "monotone" if len(pieces) == 1 else f"monotone on {len(pieces)} pieces"
-    return LawFamily(OneObservation(shape, t), as_exact(1), as_exact(0), t), f"T is {word} of the support"
+    word = "monotone" if len(pieces) == 1 else f"monotone in {len(pieces)} pieces"
+    return LawFamily(OneObservation(shape, t), as_exact(1), as_exact(0), t), f"T is {word} on the support"
+
+
+def _pushed(core: sp.Expr, statistic: sp.Expr, x: sp.Symbol, pieces: tuple[Piece, ...]) -> tuple[sp.Expr | None, bool]:
+    """The density of T at v without its constant, where T is monotone, and whether it is log-concave."""
+    if len(pieces) != 1:
+        return None, False
+    (piece,) = pieces
+    slope = sp.diff(piece.inverse, V) * (1 if piece.rising else -1)
+    pushed = core.subs(x, piece.inverse) * slope
+    ends = sorted((piece.at_low, piece.at_high), key=lambda end: end is not None)
+    if ends[1] is not None:
+        return pushed, False
+    curve = sp.simplify(sp.diff(sp.expand_log(sp.log(pushed), force=True), V, 2))
+    return pushed, Domain({V: (-sp.oo, sp.oo)}).sign(curve) == -1

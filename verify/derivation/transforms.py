@@ -10,11 +10,16 @@ from fractions import Fraction
 import sympy as sp
 from sympy import Expr, Symbol
 
-from verify.arithmetic.transforms import Bessel, GammaRatio, Interval, Secant, Transform
+from verify.arithmetic.transforms import Bessel, GammaRatio, Secant, Transform
+from verify.derivation.certain import sign_at
 from verify.derivation.factorisation import Factorisation
 from verify.derivation.zero import is_zero
+from verify.errors import SidecheckError
 from verify.problem.density import Density
 from verify.problem.numbers import Exact, as_exact
+
+LOOKS = (sp.Rational(1, 3), sp.Rational(-5, 4), sp.Integer(3))
+"""Where two log transforms are compared in balls; outside their domain nothing is concluded."""
 
 
 def transform_of(density: Density, found: Factorisation) -> Transform | None:
@@ -24,7 +29,7 @@ def transform_of(density: Density, found: Factorisation) -> Transform | None:
     if back is None:
         return None
     log_transform = sp.expand_log(found.log_normaliser.subs(t, back))
-    for recognise in (_bessel, _secant, _interval, _gamma_ratio):
+    for recognise in (_bessel, _secant, _gamma_ratio):
         transform = recognise(log_transform, z, density, found)
         if transform is not None:
             return transform
@@ -39,8 +44,14 @@ def _natural_inverse(natural: Expr, t: Symbol, z: Symbol) -> Expr | None:
 
 
 def _same(first: Expr, second: Expr, z: Symbol) -> bool:
-    """Whether two log transforms differ by a constant."""
-    return is_zero(sp.diff(first - second, z))
+    """Whether two log transforms differ by a constant; a look in balls spares the algebra where they do not."""
+    slope = sp.diff(first - second, z)
+    try:
+        if any(sign_at(slope, {z: point}) for point in LOOKS):
+            return False
+    except SidecheckError:
+        pass  # a function that balls do not know: only algebra can tell
+    return is_zero(slope)
 
 
 def _bessel(log_transform: Expr, z: Symbol, density: Density, found: Factorisation) -> Transform | None:
@@ -68,16 +79,6 @@ def _secant(log_transform: Expr, z: Symbol, density: Density, found: Factorisati
 def _plain(value: Expr) -> Exact | int:
     number = as_exact(value)
     return int(number) if isinstance(number, Fraction) and number.denominator == 1 else number
-
-
-def _interval(log_transform: Expr, z: Symbol, density: Density, found: Factorisation) -> Transform | None:
-    support = density.parsed_support
-    if found.statistic != density.x or support.lower.is_infinite or support.upper.is_infinite:
-        return None
-    a, b = support.lower, support.upper
-    if not _same(log_transform, sp.log((sp.exp(b * z) - sp.exp(a * z)) / z), z):
-        return None
-    return Interval(as_exact(a), as_exact(b))
 
 
 def _gamma_ratio(log_transform: Expr, z: Symbol, density: Density, found: Factorisation) -> Transform | None:

@@ -16,6 +16,7 @@ from verify.arithmetic.ball import balls
 from verify.arithmetic.evaluate import evaluate
 from verify.errors import UndecidedError
 from verify.laws.base import Law, Number
+from verify.laws.convolution import SumByConvolution
 from verify.laws.integrals import Integrals
 from verify.laws.inversion import SumByInversion
 from verify.laws.shape import SINGULAR, Piece, Shape
@@ -64,12 +65,14 @@ class OneObservation(Law):
         """
         if n == 1:
             return self
-        if self.one.transform is None:
-            raise UndecidedError(
-                f"no bound is known for the characteristic function of T under {self.one.text}, so the law of a sum "
-                "of several observations is not enclosed; n = 1 is"
-            )
-        return SumByInversion(self.one, self.one.transform, self.at, n)
+        if self.one.transform is not None:
+            return SumByInversion(self.one, self.one.transform, self.at, n)
+        if self.one.pushed is not None:
+            return SumByConvolution(self.one, self.at, n)
+        raise UndecidedError(
+            f"no bound is known for the characteristic function of T under {self.one.text}, so the law of a sum "
+            "of several observations is not enclosed; n = 1 is"
+        )
 
     @property
     def support(self) -> tuple[Any, Any]:

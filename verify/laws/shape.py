@@ -78,6 +78,10 @@ class Shape:
         The natural parameter in terms of the parameter.
     transform : Transform or None
         For sums of several observations.
+    pushed : SymPy expression or None
+        The density of T in terms of the symbol v, without ``constant``, where T is monotone on the support.
+    log_concave : bool
+        Whether the logarithm of ``pushed`` is shown to be concave.
     """
 
     constant: Any
@@ -93,6 +97,8 @@ class Shape:
     variance: Any
     natural: Any = None
     transform: Transform | None = None
+    pushed: Any = None
+    log_concave: bool = False
     cache: dict[Any, Any] = field(default_factory=dict, repr=False)
 
     @property
@@ -152,7 +158,7 @@ class Shape:
         best: tuple[int, Fraction, Any] | None = None
         with balls(RATIO_BITS) as A:
             goal = A.power(A.real(2), -bits)
-            for other in candidates(at, self.space):
+            for other in candidates(at, self.space, far=True):
                 found = self._march(A, at, other, piece, goal, upper=upper)
                 if found is not None and (best is None or found[0] < best[0]):
                     best = found

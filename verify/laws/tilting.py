@@ -26,12 +26,13 @@ if TYPE_CHECKING:
 RATIO_BITS = 128
 
 
-def candidates(at: Exact, space: tuple[Any, Any]) -> list[Fraction]:
-    """Return some rational parameter values on both sides of ``at``, inside the space."""
+def candidates(at: Exact, space: tuple[Any, Any], *, far: bool = False) -> list[Fraction]:
+    """Return some rational parameter values on both sides of ``at``, inside the space; ``far`` adds distant ones."""
     with balls(RATIO_BITS) as A:
         value = _rounded(to_fraction(midpoint(A.real(at))))
         lower, upper = (None if end is None else to_fraction(midpoint(A.real(end))) for end in space)
     steps = [Fraction(1, 8), Fraction(1, 2), Fraction(1), Fraction(2), Fraction(4)]
+    steps += [Fraction(8), Fraction(16), Fraction(32)] if far else []
     out = [value + s * k for k in steps for s in (1, -1)]
     for end in (lower, upper):
         if end is not None:
