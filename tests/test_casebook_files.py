@@ -4,11 +4,11 @@ from pathlib import Path
 
 import pytest
 
-import verify
+from verify.problem.casefile import read_case_text
 
 ROOT = Path(__file__).parents[1] / "casebook"
 FILES = sorted(ROOT.rglob("*.case.toml"))
-VERDICTS = {"proved", "agrees", "last digit", "differs", "refuted", "undecided"}
+VERDICTS = {"proved", "agrees", "last digit", "differs", "refuted", "unusable"}
 
 
 @pytest.mark.parametrize(
@@ -16,12 +16,18 @@ VERDICTS = {"proved", "agrees", "last digit", "differs", "refuted", "undecided"}
 )
 def test_case_file(path: Path) -> None:
     text = path.read_text(encoding="utf-8")
-    case = verify.read_case(path, text)
-    assert case.title
-    assert case.expect["verdict"] in VERDICTS
-    assert ("step" in case.expect) == (case.expect["verdict"] == "refuted")
+    case = read_case_text(path, text)
+    expect = case.expect
+    assert case.tables["title"]
+    assert expect["verdict"] in VERDICTS
+    assert ("step" in expect) == (expect["verdict"] == "refuted")
+    assert ("error" in expect) == ("key" in expect) == (expect["verdict"] == "unusable")
+    if expect["verdict"] in ("proved", "agrees", "last digit"):
+        assert expect["grade"] in ("proved", "enclosed", "checked numerically")
+    if expect["verdict"] == "proved" and path.parent.name != "published":
+        assert "c" in expect or {"c1", "c2"} <= expect.keys()
     if path.parent.name in ("published", "numerics"):
-        assert case.source
+        assert case.tables["source"]
     if path.parent.name == "demo":
         assert "Invented" in text
 

@@ -90,7 +90,8 @@ def find(text: CaseText, *, digits: int = DIGITS, budget: float = 10.0) -> Found
         case = text.read()
         return _found(case, max(digits, _longest(case) + SPARE), budget)
     except InputError as error:
-        return Found(UNUSABLE, error=str(error), key=error.key, notes=(str(error),))
+        line = str(error.at(file=text.path))
+        return Found(UNUSABLE, error=line, key=error.key, notes=(line,))
     except UndecidedError as error:
         return Found("undecided", grade="undecided", notes=(str(error),))
 
