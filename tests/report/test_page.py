@@ -141,7 +141,7 @@ def test_figures_are_described(made: Made) -> None:
     page = certificate_page("lot", made("outside"))
     figures = [block for section in page.sections for block in section.blocks if isinstance(block, Figure)]
     assert len(figures) == 2
-    assert "cutoffs at 94, 103" in figures[0].alt
+    assert "cutoffs at 94 and 103" in figures[0].alt
     assert "level 0.05" in figures[1].alt
     assert all(f'aria-label="{figure.alt[:20]}' in page_html(page).decode() for figure in figures)
 

@@ -2,12 +2,14 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
 from fractions import Fraction
 from functools import partial
 from typing import TYPE_CHECKING, Any
 
 from verify.certificate.claims import ends
+from verify.laws import CLOSED_FORMS
 from verify.problem.numbers import exact, exact_text
 from verify.report.figure_laws import LawAt, density_of, law_at, limits_of, number, shown
 
@@ -18,8 +20,13 @@ if TYPE_CHECKING:
 MOST_ATOMS = 240
 """Lattice points drawn one by one; beyond, the masses are drawn as a curve."""
 CURVE = 160
-REACH = {"inside": 2.5, "outside": 4.5, "above": 4.0, "below": 4.0}
-"""How far the power function is followed beyond the limits, in standard deviations of V."""
+MOST_DOUBLINGS = 11
+"""Steps from 1/64 of a limit on; a mean that is bounded may never move far enough."""
+MOST_HALVINGS = 60
+REACH = 5.0
+"""How far the power function is followed beyond a limit, in standard deviations of V."""
+SETTLED = (0.15, 0.995)
+"""It is not followed beyond a place where the power falls below this part of the level, or rises above this."""
 
 
 @dataclass(frozen=True)
@@ -39,7 +46,6 @@ class LawsFigure:
     laws: list[Line]
     x: list[float]
     phi: list[float]
-    cutoffs: list[float]
 
 
 @dataclass(frozen=True)
@@ -144,8 +150,7 @@ def laws_figure(predicate: dict[str, Any], family: LawFamily | None = None) -> L
         Line(exact_text(limit), x, [_density(law, y) / (1 if law.lattice else abs(test.scale)) for y in grid])
         for law, limit in zip(laws, limits, strict=True)
     ]
-    cutoffs = [test.scale * float(y) + test.shift for y in (test.low, test.high)]
-    return LawsFigure(laws[0].lattice, lines, x, [test.phi(float(y)) for y in grid], sorted(set(cutoffs)))
+    return LawsFigure(laws[0].lattice, lines, x, [test.phi(float(y)) for y in grid])
 
 
 def _density(law: Law, y: float) -> float:
@@ -176,15 +181,29 @@ def power_figure(predicate: dict[str, Any], family: LawFamily | None = None) -> 
     at, test = law_at(predicate, family), read_test(predicate)
     limits = limits_of(predicate)
     space = density_of(predicate).parsed_space
-    bounds = [None if end.is_infinite else shown(end) for end in (space.lower, space.upper)]
-    reach = REACH[test.rejects]
+    low, high = (None if end.is_infinite else shown(end) for end in (space.lower, space.upper))
     floats = [shown(limit) for limit in limits]
-    start, stop = (_far(at, floats, side, reach, bounds[side > 0]) for side in (-1, 1))
-    count = 120 if predicate["law"]["name"] in ("Poisson", "binomial", "negative binomial", "gamma", "normal") else 40
-    points = sorted({*(start + (stop - start) * k / count for k in range(count + 1)), *floats})
-    power = [test.power(at(Fraction(t).limit_denominator(10**9))) for t in points]
     levels = [shown(exact(text)) for text in predicate["problem"]["alpha"]]
+    start = _far(_away(at, test, floats[0], levels[0]), floats[0], -1, low)
+    stop = _far(_away(at, test, floats[-1], levels[-1]), floats[-1], 1, high)
+    count = 120 if predicate["law"]["name"] in CLOSED_FORMS else 40
+    points = sorted({*(start + (stop - start) * k / count for k in range(count + 1)), *floats})
+    power = [test.power(at(Fraction(t))) for t in points]
     return PowerFigure(points, power, floats, levels, _null(predicate, floats, start, stop))
+
+
+def _away(at: LawAt, test: Test, limit: float, level: float) -> Callable[[float], bool]:
+    """Whether the power has settled at a place, or V's mean has moved far enough."""
+    law = at(Fraction(limit))
+    mean, wanted = number(law.expectation), REACH * number(law.spread)
+
+    def away(t: float) -> bool:
+        there = at(Fraction(t))
+        if abs(number(there.expectation) - mean) >= wanted:
+            return True
+        return not SETTLED[0] * level <= test.power(there) <= SETTLED[1]
+
+    return away
 
 
 def _null(predicate: dict[str, Any], limits: list[float], start: float, stop: float) -> list[tuple[float, float]]:
@@ -197,25 +216,20 @@ def _null(predicate: dict[str, Any], limits: list[float], start: float, stop: fl
     return [(limits[0], limits[-1])]
 
 
-def _far(at: LawAt, limits: list[float], side: int, reach: float, end: float | None) -> float:
-    """Walk from the outer limit until V's mean has moved by so many standard deviations, or to the end of the space."""
-    limit = limits[0] if side < 0 else limits[-1]
-    law = at(Fraction(limit).limit_denominator(10**9))
-    mean, wanted = number(law.expectation), reach * number(law.spread)
-
-    def moved(t: float) -> bool:
-        return abs(number(at(Fraction(t).limit_denominator(10**9)).expectation) - mean) >= wanted
-
+def _far(away: Callable[[float], bool], limit: float, side: int, end: float | None) -> float:
+    """Walk from a limit until a place that is far away, or to just before the end of the space."""
     margin = None if end is None else abs(end - limit)
     near, step = 0.0, abs(limit) / 64 or 1 / 64
-    while margin is None or step < margin:
-        if moved(limit + side * step):
+    for _ in range(MOST_DOUBLINGS):
+        if (margin is not None and step >= margin) or away(limit + side * step):
             break
         near, step = step, 2 * step
     far = step if margin is None else min(step, margin * 0.995)
-    if margin is not None and not moved(limit + side * far):
+    if not away(limit + side * far):
         return limit + side * far
-    for _ in range(12):
+    for _ in range(MOST_HALVINGS):
+        if far - near < far / 16:
+            break
         middle = (near + far) / 2
-        near, far = (near, middle) if moved(limit + side * middle) else (middle, far)
+        near, far = (near, middle) if away(limit + side * middle) else (middle, far)
     return limit + side * far

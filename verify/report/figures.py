@@ -52,7 +52,7 @@ def draw_laws(data: LawsFigure, symbol: str, prefix: str) -> str:
     """
 
     def paint(figure: Any) -> None:
-        top, bottom = figure.subplots(2, 1, sharex=True, gridspec_kw={"height_ratios": [1, 2.4], "hspace": 0.12})
+        top, bottom = figure.subplots(2, 1, sharex=True, gridspec_kw={"height_ratios": [1, 2.4], "hspace": 0.2})
         _critical(top, data)
         marks = data.lattice and len(data.x) <= 90
         for law, style in zip(data.laws, LINES, strict=False):
@@ -61,12 +61,23 @@ def draw_laws(data: LawsFigure, symbol: str, prefix: str) -> str:
             bottom.plot(law.x, law.y, label=label, linewidth=0.9, markersize=2.6, markeredgewidth=0.7, **shown)
         bottom.set_ylabel("mass" if data.lattice else "density")
         bottom.set_xlabel("V", style="italic")
-        bottom.set_ylim(bottom=0)
+        bottom.set_ylim(bottom=0, top=ceiling(data))
         top.legend(*bottom.get_legend_handles_labels(), **LEGEND)
         for axes in (top, bottom):
             _shade(axes, data)
 
     return _svg(paint, prefix)
+
+
+def ceiling(data: LawsFigure) -> float | None:
+    """Where a density that rises without bound at an end of its support is cut off; None when it does not."""
+    if data.lattice:
+        return None
+    edge = len(data.x) // 25
+    inner = max(max(law.y[edge:-edge]) for law in data.laws)
+    outer = max(max(*law.y[:2], *law.y[-2:]) for law in data.laws)
+    highest = max(max(law.y) for law in data.laws)
+    return 1.6 * inner if outer == highest > 2.5 * inner else None
 
 
 def _critical(axes: Any, data: LawsFigure) -> None:

@@ -10,6 +10,7 @@ from verify.errors import UndecidedError
 from verify.report.math_text import plain
 from verify.report.page_blocks import Block, Code, Figure, Page, Paragraph, Runs, Section, words
 from verify.report.page_derivation import derivation_section
+from verify.report.page_numbers import first_digits, numbers_of
 from verify.report.page_question import certified, parameter_of, problem_section
 from verify.report.page_recheck import assumptions_section, recheck_section, signature_section
 from verify.report.page_results import double_section, numbers_section
@@ -77,7 +78,7 @@ def _facts(name: str, digest: str, subject: dict[str, Any], predicate: dict[str,
 def _figures(predicate: dict[str, Any], family: LawFamily | None) -> Section:
     """Draw both figures; a law that cannot be drawn within its budget is said to be so."""
     from verify.report.figure_data import laws_figure, power_figure
-    from verify.report.figures import draw_laws, draw_power
+    from verify.report.figures import ceiling, draw_laws, draw_power
 
     symbol = plain(parameter_of(predicate))
     try:
@@ -87,21 +88,27 @@ def _figures(predicate: dict[str, Any], family: LawFamily | None) -> Section:
     kind = "masses" if laws.lattice else "densities"
     limits = " and ".join(f"{symbol} = {line.label}" for line in laws.laws)
     guide = " Lines between masses only guide the eye." if laws.lattice else ""
-    cutoffs = ", ".join(f"{c:.6g}" for c in laws.cutoffs)
+    guide += " The density rises beyond the top of the figure." if ceiling(laws) is not None else ""
+    stated = [value for key, value in numbers_of(predicate["test"]).items() if key.startswith("c")]
+    cutoffs = " and ".join(dict.fromkeys(first_digits(value) for value in stated))
+    unit = "a cutoff" if len(stated) == 1 else "cutoffs"
     peak = max(power.power)
     first = (
-        f"Above, the critical function φ over V, with cutoffs at {cutoffs}; below, the {kind} of V at "
+        f"Above, the critical function φ over V, with {unit} at {cutoffs}; below, the {kind} of V at "
         f"{limits}. The grey ground is the region of rejection."
     )
     levels = " and ".join(f"{level:.6g}" for level in dict.fromkeys(power.levels))
     second = (
-        f"The power function: probability of rejection over {symbol} from {power.t[0]:.4g} to "
-        f"{power.t[-1]:.4g}. Dotted: level {levels}; dashed: the limits; "
+        f"The power function: probability of rejection over {symbol}. Dotted: level {levels}; dashed: the limits; "
         "grey ground: the null hypothesis."
     )
     blocks: list[Block] = [
         Figure(draw_laws(laws, symbol, "fig1-"), f"{first} Test: {predicate['test']['rejects']}.", first + guide),
-        Figure(draw_power(power, symbol, "fig2-"), f"{second} Largest value drawn: {peak:.4g}.", second),
+        Figure(
+            draw_power(power, symbol, "fig2-"),
+            f"{second} Drawn from {power.t[0]:.10g} to {power.t[-1]:.10g}; largest value: {peak:.4g}.",
+            second,
+        ),
         Paragraph(
             words(
                 "Figures are drawn in double precision, from the law and the numbers stated above; nothing is "

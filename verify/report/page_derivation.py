@@ -197,7 +197,7 @@ def _ledger(predicate: dict[str, Any]) -> list[Block]:
 
 
 def _sentence(text: str, known: list[str]) -> Runs:
-    shown = text.replace(") exp(Q T - A)", ")*exp(Q*T - A)")
+    shown = re.sub(r"\) exp\(Q T - (\w)\)", r")*exp(Q*T - \1)", text)
     is_word = len(shown.split(" ")[0]) > 1 and shown[:2].isalpha()
     return prose(shown[:1].upper() + shown[1:] if is_word else shown, known)
 

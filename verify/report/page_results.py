@@ -117,17 +117,7 @@ def double_section(predicate: dict[str, Any]) -> Section:
     )
     rows: list[list[Runs]] = []
     for opinion in found["opinions"]:
-        for key in keys:
-            if key in opinion["numbers"]:
-                value, digits = opinion["numbers"][key], opinion["digits"].get(key)
-                rows.append(
-                    [
-                        words(opinion["route"]),
-                        (name(key),),
-                        words("none") if value is None else (Digits(value),),
-                        words("" if digits is None else str(digits)),
-                    ]
-                )
+        rows += _rows(opinion, keys)
     blocks: list[Block] = [Paragraph(words(intro))]
     if rows:
         head = (words("Route"), words("Number"), words("Value in double precision"), words("Digits agreed"))
@@ -139,6 +129,22 @@ def double_section(predicate: dict[str, Any]) -> Section:
     ]
     blocks += [Paragraph(note, "small") for note in notes]
     return Section("How far double precision may be trusted", [*blocks, *_verdict(found, keys)])
+
+
+def _rows(opinion: dict[str, Any], keys: list[str]) -> list[list[Runs]]:
+    """A row for each number of a route that gave any."""
+    given = {key: opinion["numbers"][key] for key in keys if key in opinion["numbers"]}
+    if all(value is None for value in given.values()):
+        return []
+    return [
+        [
+            words(opinion["route"]),
+            (name(key),),
+            words("none") if value is None else (Digits(value),),
+            words(str(opinion["digits"].get(key, ""))),
+        ]
+        for key, value in given.items()
+    ]
 
 
 def _verdict(found: dict[str, Any], keys: list[str]) -> list[Block]:
