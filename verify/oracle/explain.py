@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterator, Mapping
-from decimal import ROUND_HALF_EVEN, Context, Decimal
+from decimal import Context, Decimal
 from fractions import Fraction
 
 from verify.arithmetic.enclosure import Enclosure
@@ -23,30 +23,40 @@ ROUNDINGS = (8, 6, 4, 3)
 """Digits to which the numbers are printed when a slip is looked for: a slip seldom explains rounding errors too."""
 
 
-def printed(value: Fraction, digits: int) -> str:
-    """Write a number with so many significant digits, a whole number in full.
+def printed(value: Fraction, digits: int, *, whole: bool = True) -> str:
+    """Write a number with so many significant digits, a whole number in full; a fraction with so many decimals.
 
     Examples
     --------
     >>> printed(Fraction(0.1), 6), printed(Fraction(95), 3), printed(Fraction(12345678, 100), 3)
     ('0.100000', '95', '123456.78')
+    >>> printed(Fraction(0), 3, whole=False)
+    '0.000'
     """
     near = round(value)
-    if abs(value - near) <= abs(value) / 10**12:
+    if whole and abs(value - near) <= abs(value) / 10**12:
         return str(near)
-    size = len(str(abs(int(value)))) if abs(value) >= 1 else 0
+    size = len(str(abs(int(value)))) if abs(value) >= 1 and whole else 0
     places = max(digits - size, 2 if size else digits)
-    context = Context(prec=places + size + 5, rounding=ROUND_HALF_EVEN)
-    number = context.divide(Decimal(value.numerator), Decimal(value.denominator))
-    return format(number.quantize(Decimal(1).scaleb(-places), context=context), "f")
+    scaled = Decimal(round(value * 10**places))
+    context = Context(prec=len(scaled.as_tuple().digits) + places + 2)
+    return format(scaled.scaleb(-places, context), "f")
 
 
 def same_test(values: Mapping[str, Fraction], solution: Solution, digits: int) -> bool:
     """Whether the numbers are another way to write the proven test."""
     if not solution.laws[0].lattice:
         return False
-    verdict = _verdict(values, setting_of(solution), digits)
+    verdict = _verdict(_one_sided_writing(values, solution), setting_of(solution), digits)
     return isinstance(verdict, Verdict) and verdict.outcome in (Outcome.AGREES, Outcome.LAST_DIGIT)
+
+
+def _one_sided_writing(values: Mapping[str, Fraction], solution: Solution) -> Mapping[str, Fraction]:
+    """A cutoff with fraction 0 is the next support point on the rejected side with fraction 1."""
+    step = setting_of(solution).step
+    if values.get("gamma") != 0 or step is None:
+        return values
+    return {"c": values["c"] + (step.mid if solution.rejects == "above" else -step.mid), "gamma": Fraction(1)}
 
 
 def explanation(values: Mapping[str, Fraction], solution: Solution) -> list[str]:
@@ -62,7 +72,7 @@ def explanation(values: Mapping[str, Fraction], solution: Solution) -> list[str]
 
 
 def _verdict(values: Mapping[str, Fraction], setting: Setting, digits: int) -> Verdict | str:
-    numbers = {name: read_printed(printed(value, digits), name) for name, value in values.items()}
+    numbers = {name: read_printed(printed(value, digits, whole=name[0] == "c"), name) for name, value in values.items()}
     try:
         return review_numbers(setting, numbers, Style(), {}, Options(loss=False))
     except (InputError, UndecidedError) as error:
