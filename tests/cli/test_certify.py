@@ -73,6 +73,18 @@ def test_recheck_from_an_empty_folder_by_the_page_alone(written: Path, tmp_path:
     assert second.split()[-1] == hashlib.sha256((written / "lot-release.cert.json").read_bytes()).hexdigest()
 
 
+def test_the_pdf_alone_says_how(written: Path) -> None:
+    """From the text of the PDF: both digests, the file's name and the command."""
+    pdftotext = shutil.which("pdftotext")
+    if pdftotext is None:
+        pytest.skip("pdftotext is not installed here; continuous integration installs it")
+    done = subprocess.run([pdftotext, written / "lot-release.pdf", "-"], capture_output=True, text=True, check=True)
+    lines = done.stdout.splitlines()
+    assert "python -I -S recheck.py lot-release.cert.json" in lines
+    for name in ("lot-release.cert.json", "recheck.py"):
+        assert hashlib.sha256((written / name).read_bytes()).hexdigest() in lines
+
+
 def test_regenerating_gives_identical_bytes(written: Path, tmp_path: Path) -> None:
     code = "import sys; from verify.cli.main import main; sys.exit(main(sys.argv[1:]))"
     words = ["certify", str(LOT), "-o", str(tmp_path), "--issued", "2026-12-01", "--paper", "letter", "--digits", "20"]

@@ -14,7 +14,8 @@ from pathlib import Path
 
 import pytest
 
-from verify.errors import InputError
+from verify.errors import InputError, UndecidedError
+from verify.report.overview import overview_page
 from verify.report.page import certificate_page
 from verify.report.page_blocks import Figure, Page, Section
 from verify.report.page_html import page_html
@@ -157,6 +158,24 @@ def test_hostile_words_stay_text(retitled: Made, kind: str) -> None:
         pdf = page_pdf(page, paper)
         assert pdf.startswith(b"%PDF-1.7")
         assert b"root:" not in pdf
+
+
+@pytest.mark.parametrize("kind", HOSTILE)
+def test_overview_of_hostile_titles(made: Made, retitled: Made, kind: str) -> None:
+    page = overview_page({"one": made("interval"), "two": retitled(HOSTILE[kind])})
+    reader = require_harmless(page_html(page).decode())
+    assert {("href", "one.html"), ("href", "two.html")} <= set(reader.attributes)
+    assert HOSTILE[kind].split(" ")[0][:12] in reader.text
+    assert page_pdf(page) == page_pdf(page)
+
+
+def test_undrawable_laws_are_said_to_be_so(made: Made, monkeypatch: pytest.MonkeyPatch) -> None:
+    def fails(predicate: object, family: object) -> None:
+        raise UndecidedError("no budget left")
+
+    monkeypatch.setattr("verify.report.figure_data.laws_figure", fails)
+    page = certificate_page("lot", made("outside"))
+    assert "could not be drawn: no budget left" in page_html(page).decode()
 
 
 def test_hostile_words_in_the_pdf(retitled: Made, tmp_path: Path) -> None:

@@ -168,8 +168,10 @@ def _grid(laws: list[Law], test: Test) -> list[Any]:
         min(high, float(last)) if last is not None else high,
     )
     if not laws[0].lattice:
-        inset = (high - low) / (20 * CURVE) if first is not None and low == float(first) else 0.0
-        return [low + inset + (high - low - inset) * k / CURVE for k in range(CURVE + 1)]
+        inset = (high - low) / (20 * CURVE)
+        low += inset if first is not None and low == float(first) else 0.0
+        high -= inset if last is not None and high == float(last) else 0.0
+        return [low + (high - low) * k / CURVE for k in range(CURVE + 1)]
     start, stop = int(low // 1), int(-(-high // 1))
     step = max(1, -(-(stop - start) // MOST_ATOMS))
     points = set(range(start, stop + 1, step)) | {int(test.low), int(test.high)}

@@ -7,7 +7,7 @@ from fractions import Fraction
 from typing import TYPE_CHECKING, Any
 
 from verify.arithmetic.ball import accuracy_bits, balls, to_enclosure
-from verify.errors import SidecheckError
+from verify.errors import UndecidedError
 from verify.laws import CLOSED_FORMS
 from verify.problem.density import Density
 from verify.problem.formula import parse_formula
@@ -65,7 +65,7 @@ def number(compute: Callable[[Any], Any]) -> float:
 
     Raises
     ------
-    SidecheckError
+    UndecidedError
         When no precision is enough.
 
     Examples
@@ -78,7 +78,7 @@ def number(compute: Callable[[Any], Any]) -> float:
             ball = A.real(compute(A))
             if ball.is_finite() and (accuracy_bits(ball) >= ENOUGH or float(ball.rad()) < 1e-9):
                 return float(to_enclosure(ball).mid)
-    raise SidecheckError("a number of a drawing stays uncertain")
+    raise UndecidedError("a number of a drawing stays uncertain")
 
 
 def _derived(predicate: dict[str, Any]) -> LawFamily:
@@ -86,7 +86,7 @@ def _derived(predicate: dict[str, Any]) -> LawFamily:
 
     found = derive(density_of(predicate), limits=tuple(limits_of(predicate)), n=predicate["problem"]["n"])
     if found.family is None:
-        raise SidecheckError("the law of the statistic is not known")
+        raise UndecidedError("the law of the statistic is not known")
     return found.family
 
 

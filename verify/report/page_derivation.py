@@ -106,7 +106,8 @@ def _law(predicate: dict[str, Any]) -> list[Block]:
                 Text(f"{key} "),
                 Math(exact_box(text)),
             ]
-        closing = "." if n == 1 else f"; the sum of the {n} values follows from it, {SUMS[law['name']]}."
+        summed = SUMS[law["name"]].format(n=n, square=n * n)
+        closing = "." if n == 1 else f"; the sum of the {n} values has the same law with {summed}."
         return [Paragraph((*parts, Text(closing)))]
     if law["name"] == "lattice":
         text = (
@@ -126,13 +127,14 @@ def _law(predicate: dict[str, Any]) -> list[Block]:
 
 
 SUMS = {
-    "Poisson": "with n times the mean",
-    "binomial": "with n times the trials",
-    "negative binomial": "with n times the size",
-    "gamma": "with n times the shape",
-    "normal": "with n times the mean and the variance",
-    "inverse Gaussian": "with n times the mean and n² times the shape",
+    "Poisson": "{n} times the mean",
+    "binomial": "{n} times the trials",
+    "negative binomial": "{n} times the size",
+    "gamma": "{n} times the shape",
+    "normal": "{n} times the mean and {n} times the variance",
+    "inverse Gaussian": "{n} times the mean and {square} times the shape",
 }
+"""What the law of the sum of n values has instead."""
 
 
 def _affine(law: dict[str, Any]) -> Box:

@@ -38,7 +38,7 @@ CONTENTS_FROM = 5
 """Pages from which there is a list of contents."""
 LONGEST_WORD = 24
 """Characters after which a word may be broken anywhere."""
-WHOLE_ROW = 6_000
+WHOLE_ROW = 2_500
 """Size of the data of a table's row up to which it is kept on one page."""
 LONGEST_CODE = 72
 """The same for digests and commands."""
