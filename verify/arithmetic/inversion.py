@@ -18,7 +18,7 @@ Source: J. Gil-Pelaez, *Biometrika* 38 (1951) 481-482 (the inversion); H. E. Dan
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from fractions import Fraction
 from typing import Any
 
@@ -65,6 +65,7 @@ class Inversion:
     c: Ball
     kind: str
     mean: Ball = 0
+    kept: dict[int, list[Ball]] = field(default_factory=dict, compare=False, repr=False)
 
     def value(self, A: Balls) -> Ball:
         """Return the number, for a tail the probability of the side on which c lies.
@@ -77,10 +78,16 @@ class Inversion:
         height = A.real(HEIGHT)
         size = self._values(A, acb(self.c), None).abs_upper()
         tolerance = A.prec - _exponent(size)
-        rates = self.transform.rates(A, self.n)
+        rates = self._rates(A)
         total = self._rays(A, rates, height, tolerance) if rates else self._line(A, height, tolerance)
         value = total.imag / (A.pi * self._whole(A, acb(self.eta), False).real)
         return -value if self.kind == TAIL and self.c > self.eta else value
+
+    def _rates(self, A: Balls) -> list[Ball]:
+        """Rates of the terms, computed once for each precision."""
+        if A.prec not in self.kept:
+            self.kept[A.prec] = self.transform.rates(A, self.n)
+        return self.kept[A.prec]
 
     def _whole(self, A: Balls, z: Any, analytic: bool) -> Any:
         return self.transform.value(A, z, analytic) ** self.n
@@ -109,7 +116,7 @@ class Inversion:
         if which is None:
             size = self.transform.size(A, z) ** self.n * (-self.v * z.real).exp()
         else:
-            rates = self.transform.rates(A, self.n)
+            rates = self._rates(A)
             size = sum(
                 (
                     self.transform.term_size(A, z, self.n, j) * ((rates[j] - self.v) * z.real).exp()

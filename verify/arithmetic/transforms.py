@@ -20,7 +20,8 @@ from typing import Any
 
 from flint import acb, arb
 
-from verify.arithmetic.ball import Balls, balls
+from verify.arithmetic.ball import Balls
+from verify.arithmetic.bessel import k0_both
 
 ComplexBall = Any
 Cache = dict[Any, Any]
@@ -125,26 +126,26 @@ class Bessel(Transform):
         """Sum over j of C(n, j) K0(-z)**(n-j) (-K0(z))**j / (pi i)**n."""
         if not z.imag > 0:
             return acb(arb("nan"), arb("nan"))
-        values = _remembered(self.cache, z, (A.prec, n), lambda middle: self._all_terms(A, middle, n))
-        value, slope = acb(0), arb(0)
-        for j in which:
-            value += values[j][0]
-            slope += values[j][1]
+        chosen = tuple(which)
+        value, slope = _remembered(
+            self.cache, z, (A.prec, n, chosen), lambda middle: self._chosen_terms(A, middle, n, chosen)
+        )
         return _moved(A, z, value, slope)
 
-    def _all_terms(self, A: Balls, middle: ComplexBall, n: int) -> list[tuple[Any, Any]]:
-        """Each term at a point, with a bound of its derivative near it: K0' = -K1, and both are bounded
-        there.
-        """
-        up, down = _k0(-middle, A.prec), -_k0(middle, A.prec)
-        front, out = 1 / acb(0, arb.pi()) ** n, []
-        least = middle.abs_lower() - A.real(NEAR)
+    def _chosen_terms(self, A: Balls, middle: ComplexBall, n: int, chosen: tuple[int, ...]) -> tuple[Any, Any]:
+        """The sum at a point, with a bound of its derivative near it: K0' = -K1, and both are bounded there."""
+        up, down = _remembered(self.cache, middle, A.prec, lambda z: k0_both(z, A.prec))
+        first, last = min(chosen), max(chosen)
+        least, near = middle.abs_lower() - A.real(NEAR), A.real(NEAR)
+        shrink = (-2 * middle.real).exp()
+        value, change = acb(0), arb(0)
+        for j in range(last, first - 1, -1):
+            factor = comb(n, j) if j in chosen else 0
+            value = value * -down + factor * up ** (last - j)
+            change = change * shrink + factor
+        value = value * up ** (n - last) * (-down) ** first / acb(0, arb.pi()) ** n
         slope = n * self._scale(A, least, 3) / self._scale(A, least, 1) * self._size(A, n, 0, least)
-        for j in range(n + 1):
-            rate = n - 2 * j
-            change = comb(n, j) * slope * (rate * middle.real + n * A.real(NEAR)).exp()
-            out.append((comb(n, j) * up ** (n - j) * down**j * front, change))
-        return out
+        return value, slope * change * ((n - 2 * first) * middle.real + n * near).exp()
 
     def term_size(self, A: Balls, z: ComplexBall, n: int, which: int) -> Any:
         """A bound of C(n, j) |K0(-z)|**(n-j) |K0(z)|**j / pi**n without its exponential, where |z| >= 1."""
@@ -163,17 +164,6 @@ class Bessel(Transform):
         """sqrt(pi/2) (1 + q exp(q)), q = k pi / (8 |z|): k = 1 for K0, k = 3 for K1."""
         q = k * A.pi / (8 * least)
         return (A.pi / 2).sqrt() * (1 + q * q.exp())
-
-
-def _k0(z: ComplexBall, prec: int) -> ComplexBall:
-    """K0 to full relative accuracy: the convergent series cancels by exp(2 |z|), and is then given as many
-    more bits.
-    """
-    value = z.bessel_k(acb(0))
-    if value.rel_accuracy_bits() < prec - 16:
-        with balls(prec + 16 + int(3 * float(abs(z).upper()))):
-            value = z.bessel_k(acb(0))
-    return value
 
 
 @dataclass(frozen=True)

@@ -132,6 +132,16 @@ class SumByInversion(Law):
             return bool(midpoint(A.real(v)) > self.expectation(A))
 
     def _invert(self, A: Any, v: Number, kind: str, *, upper: bool | None) -> Number:
+        """One inversion, remembered: a search asks for the same point again."""
+        key = ("inverted", self.at, self.n, A.prec, str(v.man_exp()), kind, upper) if v.is_exact() else None
+        if key is None or key not in self.one.cache:
+            value = self._inverted(A, v, kind, upper=upper)
+            if key is None:
+                return value
+            self.one.cache[key] = value
+        return self.one.cache[key]
+
+    def _inverted(self, A: Any, v: Number, kind: str, *, upper: bool | None) -> Number:
         c = self._crossing(v, upper)
         with balls(A.prec + GUARD_BITS) as B:
             eta = evaluate(self.one.natural, B, {self.one.parameter: B.real(self.at)})
