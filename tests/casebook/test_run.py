@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import os
 import time
 from collections.abc import Callable
 from pathlib import Path
@@ -35,9 +34,9 @@ def ran(mixed: Path) -> list[Result]:
     return run.run_book(find_cases([mixed]))
 
 
-def test_the_casebook_of_this_repository_passes() -> None:
+def test_the_casebook_of_this_repository_passes(monkeypatch: pytest.MonkeyPatch) -> None:
     """Every case of demo, laws, numerics, published and refusals, with two workers."""
-    os.chdir(ROOT)
+    monkeypatch.chdir(ROOT)
     paths = find_cases(["casebook"])
     assert len(paths) >= 120
     results = run.run_book(paths, workers=2)
@@ -126,9 +125,9 @@ def test_a_published_case_names_its_source(tmp_path: Path, book: Callable[..., P
 
 
 @pytest.mark.bench
-def test_wall_time_of_the_casebook_by_workers() -> None:
+def test_wall_time_of_the_casebook_by_workers(monkeypatch: pytest.MonkeyPatch) -> None:
     """A measurement: the whole casebook with one worker and with two."""
-    os.chdir(ROOT)
+    monkeypatch.chdir(ROOT)
     paths, lines = find_cases(["casebook"]), []
     for workers in (1, 2):
         start = time.perf_counter()
