@@ -40,6 +40,23 @@ BESIDE_A_TIE = [
 """Levels so near to a tie that one fraction of a wrong cell is exactly 0 or 1 and the other one just beyond."""
 
 
+GAP, SPREAD, TAIL = "exp(-x/t)/t", "exp(-x**2/(2*t))/sqrt(2*pi*t)", "t*2**t/x**(t+1)"
+DIAMETER = "exp(-(x-t)**2/(2*s**2))/(s*sqrt(2*pi))"
+DELAY = "sqrt(k/(2*pi*x**3))*exp(-k*(x-t)**2/(2*t**2*x))"
+CONTINUOUS = [
+    (GAP, "t <= 10000*sqrt(2)/2 or t >= 100010000*sqrt(2)/2", "6e-157", 121),
+    (GAP, "10000*sqrt(2)/2 <= t <= 11000*sqrt(2)/2", "6e-157", 121),
+    (SPREAD, "t <= 1 or t >= 2", f"{10**25 - 1}/{10**25}", 1),
+    (SPREAD, "1/100000 <= t <= 1001/100000", f"{10**25 - 1}/{10**25}", 1),
+    (SPREAD, "t = 1/100000", f"{10**25 - 1}/{10**25}", 1),
+    (TAIL, "7/11 <= t <= 700000000000000000007/1100000000000000000000", f"{10**30 - 1}/{10**30}", 1000),
+    (TAIL, "t = 7/11", f"{10**30 - 1}/{10**30}", 1000),
+    (DIAMETER, "t = 11/5", f"{10**29 - 1}/{10**29}", 100_000),
+    (DELAY, "17/11 <= t <= 1717/11", "8e-164", 100),
+    (DELAY, "397/20 <= t <= 397/10", f"{10**26 - 1}/{10**26}", 4),
+]
+"""Windows that accept almost nothing, and ends that are each far out under one law."""
+
 NEXT_TO_ONE = [
     (
         FAILURES_OF_SIZE, "1/14 <= t <= 50000000000000000007/700000000000000000007", f"{10**30 - 1}/{10**30}", 1000,
@@ -49,7 +66,10 @@ NEXT_TO_ONE = [
 """Levels that leave 1e-30, and limits that differ by 1e-20: minutes in exact fractions, moments in balls."""
 
 
-@pytest.mark.parametrize(("formula", "null", "alpha", "n"), [*FAR_APART, *MANY, *BESIDE_A_TIE, *NEXT_TO_ONE])
+ALL = [*FAR_APART, *MANY, *BESIDE_A_TIE, *NEXT_TO_ONE, *CONTINUOUS]
+
+
+@pytest.mark.parametrize(("formula", "null", "alpha", "n"), ALL)
 def test_it_is_proved(formula, null, alpha, n):
     solution = solve(Problem(FORMULAS[formula], null, alpha, n), digits=20)
     assert solution.grade is Grade.PROVED

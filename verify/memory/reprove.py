@@ -19,7 +19,7 @@ from verify.arithmetic.enclosure import Enclosure
 from verify.laws import Law
 from verify.solution.conditions import Conditions, linear_system, solve_two_by_two
 from verify.solution.one_sided import Tail, TailProblem, unit
-from verify.solution.precision import bits_for
+from verify.solution.precision import accuracy_for
 from verify.solution.window import Window
 
 EXTRA_BITS = 64
@@ -32,7 +32,7 @@ def lattice_window(conditions: Conditions, c1: int, c2: int, prec: int, digits: 
         return None
     with balls(prec) as A:
         system = linear_system(conditions, A, c1, c2)
-        if not all(g > 0 and g < 1 and accuracy_bits(g) >= bits_for(digits) for g in system.fractions):
+        if not all(g > 0 and g < 1 and accuracy_bits(g) >= accuracy_for(digits) for g in system.fractions):
             return None
         phi1, phi2 = (unit(g) for g in system.fractions)
         return Window(c1, c2, phi1, phi2, tuple(to_enclosure(side) for side in system.left_hand_sides()), prec)
@@ -46,7 +46,7 @@ def continuous_window(
         if not (_within(c1, conditions.laws[0]) and _within(c2, conditions.laws[0]) and c1.upper < c2.lower):
             return None
         kept = [A.interval(c) for c in (c1, c2)]
-        if min(accuracy_bits(box) for box in kept) < bits_for(digits) - 2:
+        if min(accuracy_bits(box) for box in kept) < accuracy_for(digits):
             return None
         centre, box = [midpoint(box) for box in kept], [around(box, 2 * radius(box)) for box in kept]
         image = _newton_image(conditions, A, centre, box)
@@ -76,7 +76,7 @@ def lattice_tail(problem: TailProblem, c: int, prec: int, digits: int) -> Tail |
     with balls(prec) as A:
         beyond, mass = problem.beyond(A, c), problem.law.density(A, c)
         gamma = (A.real(problem.level) - beyond) / mass
-        if not (gamma > 0 and gamma < 1 and accuracy_bits(gamma) >= bits_for(digits)):
+        if not (gamma > 0 and gamma < 1 and accuracy_bits(gamma) >= accuracy_for(digits)):
             return None
         return Tail(c, unit(gamma), to_enclosure(beyond + gamma * mass), prec)
 
@@ -88,7 +88,7 @@ def continuous_tail(problem: TailProblem, c: Enclosure, side: Enclosure, prec: i
     with balls(prec + EXTRA_BITS) as A:
         level = A.real(problem.level)
         inner, outer = (c.lower, c.upper) if problem.above else (c.upper, c.lower)
-        sharp = accuracy_bits(A.interval(c)) >= bits_for(digits) - 2
+        sharp = accuracy_bits(A.interval(c)) >= accuracy_for(digits)
         holds = problem.beyond(A, A.real(inner)) > level and problem.beyond(A, A.real(outer)) < level
         target = to_enclosure(level)
     true_side = side.lower <= target.lower and target.upper <= side.upper

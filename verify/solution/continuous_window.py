@@ -19,6 +19,7 @@ from verify.arithmetic.enclosure import Enclosure
 from verify.errors import UndecidedError
 from verify.solution.conditions import Conditions, Row, improved_start, linear_system, solve_two_by_two
 from verify.solution.coordinate import Coordinate
+from verify.solution.one_sided import TailProblem
 from verify.solution.precision import accuracy_for
 from verify.solution.sliding_continuous import slide_continuous
 from verify.solution.start import Rough, extend, window_start
@@ -65,6 +66,9 @@ class ContinuousSearch:
         with balls(self.prec) as A:
             found = self._newton(A, self._first(A))
             if found is None:
+                apart = self._apart(A)
+                found = self._newton(A, apart) if apart is not None else None
+            if found is None:
                 found = self._newton(A, slide_continuous(self.conditions, self.rough, self.rising, self.coordinate, A))
             if found is None:
                 raise UndecidedError("the search for the cutoffs did not settle")
@@ -72,8 +76,9 @@ class ContinuousSearch:
 
     def _first(self, A: Any) -> Ends:
         levels = tuple(float(A.real(level).mid()) for level in self.conditions.levels)
-        if levels[0] < NARROW and not self.conditions.outside:
-            narrow = self._narrow(A)
+        contents = [A.real(1 - level if self.conditions.outside else level) for level in self.conditions.levels]
+        if all(content.mid() < NARROW for content in contents):
+            narrow = self._narrow(A, contents)
             if narrow is not None:
                 return narrow
         coordinate = self.coordinate
@@ -84,23 +89,42 @@ class ContinuousSearch:
         inside = coordinate.free or (a > c1 / 2 and math.isfinite(b))
         return A.real(Fraction(a if inside else c1)), A.real(Fraction(b if inside else c2))
 
-    def _narrow(self, A: Any) -> Ends | None:
-        """Window around the point where the densities are as the levels; their log ratio is linear in the statistic.
+    def _apart(self, A: Any) -> Ends | None:
+        """Ends that are each a matter of one law alone: nearly right for laws far apart, or levels far out.
 
-        None where the window would not be narrow after all.
+        None where the two would cross.
         """
+        conditions = self.conditions
+        order = sorted(range(len(conditions.laws)), key=lambda i: self.rough[i].mean)
+        ends = []
+        for i, left in ((order[0], True), (order[-1], False)):
+            level = conditions.levels[i] / 2 if conditions.point else conditions.levels[i]
+            tail = TailProblem(conditions.laws[i], level, left != conditions.outside, self.rough[i], self.prec)
+            ends.append(tail.continuous_cutoff(A))
+        return (ends[0], ends[1]) if ends[0] < ends[1] else None
+
+    def _narrow(self, A: Any, contents: list[Any]) -> Ends | None:
+        """Window around the point where the densities are as the contents; their log ratio is linear in the statistic.
+
+        For a point null, around the mean. None where the window would not be narrow after all.
+        """
+        centre = self._even_point(A, contents)
+        half = contents[0] / self.conditions.laws[0].density(A, centre) / 2
+        if not half.mid() < A.real(Fraction(self.rough[0].spread)) / 16:
+            return None
+        return midpoint(centre - half), midpoint(centre + half)
+
+    def _even_point(self, A: Any, contents: list[Any]) -> Any:
+        if self.conditions.point:
+            return midpoint(self.conditions.laws[0].expectation(A))
         first, second = self.conditions.laws
-        a, b = (A.real(Fraction(law.mean)) for law in self.rough)
+        a, b = (midpoint(law.expectation(A)) for law in (first, second))
 
         def log_ratio(c: Any) -> Any:
             return A.log(second.density(A, c) / first.density(A, c))
 
-        wanted = A.log(A.real(self.conditions.levels[1]) / A.real(self.conditions.levels[0]))
-        centre = midpoint(a + (b - a) * (wanted - log_ratio(a)) / (log_ratio(b) - log_ratio(a)))
-        half = A.real(self.conditions.levels[0]) / first.density(A, centre) / 2
-        if not half.mid() < A.real(Fraction(self.rough[0].spread)) / 16:
-            return None
-        return midpoint(centre - half), midpoint(centre + half)
+        wanted = A.log(contents[1] / contents[0])
+        return midpoint(a + (b - a) * (wanted - log_ratio(a)) / (log_ratio(b) - log_ratio(a)))
 
     def _newton(self, A: Any, ends: Ends) -> Ends | None:
         """Damped Newton steps in the coordinate; settled when a step is far below the window's own width."""

@@ -165,7 +165,7 @@ class TailProblem:
         """Bisect in the coordinate of the support, then interval Newton in one dimension."""
         wanted = bits_for(digits)
         with balls(self.prec) as A:
-            centre = self._continuous_cutoff(A)
+            centre = self.continuous_cutoff(A)
         bits, box = max(self.prec, min(2 * self.prec, wanted + self.prec - 64)), None
         for _ in range(40):
             with balls(bits) as A:
@@ -193,7 +193,7 @@ class TailProblem:
         image = centre - self.outward * lack / slope
         return image if trial.contains_interior(image) else None
 
-    def _continuous_cutoff(self, A: Any) -> Any:
+    def continuous_cutoff(self, A: Any) -> Any:
         """Bracket from the normal approximation, bisection, then a few Newton steps; nothing is claimed of the result."""
         coordinate = Coordinate(*self.law.support)
         rough = coordinate.rough(A, self.rough)

@@ -285,7 +285,7 @@ def _solve_two_sided(problem: Problem, derivation: Derivation, laws: tuple[Law, 
     rough, closeness, rising = rough_laws(laws)
     require_attainable(laws, problem.levels, rough)
     conditions = Conditions(laws, problem.levels, outside, tuple(law.mean for law in rough))
-    narrow = not outside and not laws[0].lattice
+    narrow = not laws[0].lattice and (not outside or float(min(problem.levels, key=float)) > 0.5)
     base = SEARCH_BITS[laws[0].lattice]
     prec = search_precision(rough, problem.levels, closeness, narrow=narrow, base=base)
     if laws[0].lattice:

@@ -67,7 +67,7 @@ SEARCH_BITS = {True: 64, False: 112}
 
 
 def search_precision(rough: tuple[Rough, ...], levels: tuple[Any, ...], closeness: int, *, narrow: bool = False, base: int = SEARCH_BITS[True]) -> int:
-    """Bits for the search: enough to see a tail of the level's size (or of what it leaves), a mass beside many, two close laws.
+    """Bits for the search: enough for a tail of the level's size (or of what it leaves), one mass of many, two close laws.
 
     A narrow window of a continuous law has both ends in nearly the same place, which costs the level's size once more.
     """
