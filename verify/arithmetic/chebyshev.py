@@ -75,7 +75,10 @@ def bounds_on_ellipses(function: Function) -> tuple[tuple[Fraction, Ball], ...]:
             if _least_degree(bound, rho, USUAL_BITS)[0] > 2 * least:
                 break
     if not found:
-        raise UndecidedError("the density of the statistic was not shown to be analytic up to the ends of its support")
+        raise UndecidedError(
+            "the density of the statistic was not shown to be analytic up to the ends of its support, so the law of a "
+            "sum of several observations is not enclosed; one observation would be"
+        )
     return tuple(found)
 
 

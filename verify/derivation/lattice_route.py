@@ -56,7 +56,7 @@ def lattice_family(density: Density, found: Factorisation) -> tuple[LawFamily, s
         ), "the statistic is the logarithm of a whole number"
     return (
         f"the values of T = {statistic} were not shown to be whole multiples of one span or logarithms of whole "
-        "numbers; a finite support, or a statistic that is a polynomial in the variable, would help"
+        "numbers; a statistic that is a polynomial in the variable, or the logarithm of one, would help"
     )
 
 
