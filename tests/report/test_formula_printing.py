@@ -122,6 +122,8 @@ def test_brackets_keep_the_value(tree: Node) -> None:
         ("2*3**x", "2·3^x"),
         ("1e-200*y", "10^(−200) y"),
         ("binomial(m, x)", "(m choose x)"),
+        ("log(Sum(2**x*t, (x, 0, 60)))", "log(∑_(x = 0)^60 2^x t)"),
+        ("2*Sum(x, (x, a, b))", "2 (∑_(x = a)^b x)"),
         ("8 < lam <= 12", "8 < λ ≤ 12"),
     ],
 )

@@ -150,6 +150,8 @@ def _build(node: ast.expr, source: str, depth: int) -> Node:
             return _product(node, source, depth)
         case ast.BinOp(op=ast.Pow()):
             return Power(_build(node.left, source, depth + 1), _build(node.right, source, depth + 1))
+        case ast.Call(func=ast.Name(id="Sum" | "Integral" as name), args=[body, ast.Tuple(elts=[_, _, _] as span)]):
+            return Apply(name, tuple(_build(part, source, depth + 1) for part in (body, *span)))
         case ast.Call(func=ast.Name(id=name), keywords=[]) if node.args:
             return Apply(name, tuple(_build(part, source, depth + 1) for part in node.args))
     raise _unreadable(source)

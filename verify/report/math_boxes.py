@@ -195,6 +195,8 @@ def _level(node: Node, stacked: bool) -> int:
             return POWER
         case Apply(name="exp"):
             return POWER
+        case Apply(name="Sum" | "Integral", arguments=(_, _, _, _)):
+            return SUM
     return TOP
 
 
@@ -286,6 +288,19 @@ def _factorial(arguments: tuple[Node, ...], stacked: bool) -> Box:
     return row(_within(arguments[0], TOP, stacked), Atom("number", "!"))
 
 
+def _summed(sign: str) -> Callable[[tuple[Node, ...], bool], Box]:
+    """A sum or an integral: its body, the variable and both ends."""
+
+    def lay_out(arguments: tuple[Node, ...], stacked: bool) -> Box:
+        body, variable, low, high = arguments
+        below = row(boxes(variable), relation("="), boxes(low))
+        return row(
+            Script(Atom("operator", sign), below=below, above=boxes(high)), THIN, _within(body, PRODUCT, stacked)
+        )
+
+    return lay_out
+
+
 def _index(letter: str) -> Callable[[tuple[Node, ...], bool], Box]:
     return lambda arguments, stacked: row(
         Script(Atom("name", letter), below=boxes(arguments[0])), Fence(boxes(arguments[1], stacked=stacked))
@@ -301,6 +316,8 @@ _SPECIAL: dict[str, tuple[int, Callable[[tuple[Node, ...], bool], Box]]] = {
     "factorial": (1, _factorial),
     "binomial": (2, lambda a, stacked: Fence(Over(boxes(a[0]), boxes(a[1]), ruled=False))),
     "loggamma": (1, lambda a, stacked: row(Atom("word", "log"), THIN, Atom("word", "Γ"), Fence(boxes(a[0])))),
+    "Sum": (4, _summed("∑")),
+    "Integral": (4, _summed("∫")),
     "besseli": (2, _index("I")),
     "besselj": (2, _index("J")),
     "besselk": (2, _index("K")),

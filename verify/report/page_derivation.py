@@ -151,7 +151,7 @@ def _affine(law: dict[str, Any]) -> Box:
         Atom("operator", ","),
         Atom("space", "\u2009"),
         Atom("word", "where"),
-        WIDE,
+        Atom("space", "\u2009"),
         row(T, relation("="), boxes(read_formula(tree))),
         Atom("operator", ","),
     )

@@ -187,15 +187,10 @@ def _density(predicate: dict[str, Any]) -> list[Block]:
     left = density_sign(predicate)
     text = density.get("formula", density.get("kernel"))
     sign = relation("=" if "formula" in density else "∝")
-    intro = (
-        "One observation has the density" if "formula" in density else "One observation has a density proportional to"
-    )
+    which = "the density" if "formula" in density else "a density proportional to"
     body = boxes(read_formula(text), stacked=True)
-    blocks: list[Block] = [
-        Paragraph(
-            (*words(f"{intro}, in "), Math(variable), Text(" with parameter "), Math(parameter), Text(",")), "intro"
-        )
-    ]
+    intro: Runs = (Text("In "), Math(variable), Text(", with parameter "), Math(parameter))
+    blocks: list[Block] = [Paragraph((*intro, Text(f", one observation has {which}")), "intro")]
     blocks.append(Equation(row(left, sign, body)))
     blocks.append(Paragraph((Text("written in the case file as "), Code(text), Text(".")), "small"))
     return blocks

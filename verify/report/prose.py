@@ -50,7 +50,7 @@ FUNCTIONS = frozenset(
         "sech",
     ]
 )
-LETTERS = frozenset(("f", "h", "A", "Q", "Q'", "T", "V", "Y", "n", "oo", "pi"))
+LETTERS = frozenset(("f", "h", "A", "B", "Q", "Q'", "T", "V", "Y", "n", "oo", "pi"))
 """Names that the ledger uses beside those of the problem."""
 
 
