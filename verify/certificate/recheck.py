@@ -13,13 +13,14 @@ grades, and where there is no closed form the numbers themselves. The density is
 
 EXIT STATUS. 0 accepted; 1 rejected; 2 malformed; 3 undecided, or over the limit of work; 4 accepted, but with the
 numbers themselves on trust (laws without a closed form).
-    """
+"""
 
 from __future__ import annotations
 
 import ast
 import hashlib
 import json
+import operator
 import re
 import sys
 from collections.abc import Callable, Iterable, Iterator, Sequence
@@ -141,7 +142,7 @@ def claimed(value: Any) -> tuple[Fraction, Fraction]:
     """Return the two ends of a number: equal for an exact one (a fraction), apart for {"lower": ..., "upper": ...}."""
     if isinstance(value, str):
         return rational(value), rational(value)
-    form(isinstance(value, dict) and set(value) == {"lower", "upper"}, "a number is a fraction, or a lower and an upper end")
+    form(isinstance(value, dict) and set(value) == {"lower", "upper"}, "neither a fraction nor two ends")
     low, high = decimal(value["lower"]), decimal(value["upper"])
     form(low < high, "an enclosure whose ends are not in order")
     return low, high
@@ -163,7 +164,8 @@ SHAPE = {  # every key; "?" marks those that may be missing, "*" stands for name
         "n": int, "digits": int,
     },
     "derivation": {
-        "grade": str, "natural_parameter": str, "statistic": str, "log_normaliser": str, "rising": bool, "steps": [STEP],
+        "grade": str, "natural_parameter": str, "statistic": str, "log_normaliser": str, "rising": bool,
+        "steps": [STEP],
     },
     "law": {
         "name": str, "parameters": {"*": str}, "scale": str, "shift": str, "weights?": [rational], "first?": int,
@@ -265,7 +267,7 @@ class Interval:
         x, y = self, interval(other)
         if y.a <= 0 <= y.b:
             raise ImpreciseError("division by an interval that contains 0")
-        k = max(0, Interval.bits + 2 + max(y.a.bit_length(), y.b.bit_length()) - max(x.a.bit_length(), x.b.bit_length()))
+        k = max(0, Interval.bits + 2 + (y.top - y.e) - (x.top - x.e))
         ends = [(p << k, q) for p in (x.a, x.b) for q in (y.a, y.b)]
         return Interval(min(p // q for p, q in ends), max(-(-p // q) for p, q in ends), x.e - y.e - k)
 
@@ -339,7 +341,7 @@ def more_bits(extra: int) -> Iterator[None]:
 
 
 def odd_series(p: int, q: int, sign: int) -> Interval:
-    """Enclose the sum over j >= 0 of sign**j z**(2j+1) / (2j+1), z = p/q, abs(z) <= 2/5: atanh z (sign 1), atan z (sign -1).
+    """Enclose the sum over j >= 0 of sign**j z**(2j+1) / (2j+1), z = p/q, |z| <= 2/5: atanh z, or (sign -1) atan z.
 
     In units of 2**-w: a power of z rounded down is wrong by less than e = 1 + e z**2 < 2 units, its quotient by
     2j+1 by less than 3. The powers shrink by z**2 <= 4/25, so that there are fewer than w/2 + 1 terms. The loop
@@ -423,7 +425,7 @@ def sqrt(x: Number) -> Number:
 
 
 def power(x: Number, y: Number) -> Number:
-    """Compute x**y: exactly or by repeated multiplication for whole y, through square roots for halves, else exp(y log x)."""
+    """Compute x**y: by multiplication for whole y, through square roots for halves, else exp(y log x)."""
     if isinstance(y, Fraction) and y.denominator == 2:
         return power(sqrt(x), 2 * y)
     if isinstance(y, Interval) or y.denominator != 1:
@@ -466,7 +468,7 @@ def gamma(a: Number) -> Number:
 
 
 def gamma_series(a: Number, x: Number) -> Interval:
-    """Enclose S(a, x) = sum over k >= 0 of x**k / (a (a+1) ... (a+k)), a, x > 0: lower gamma(a, x) = x**a exp(-x) S(a, x).
+    """Enclose S(a, x) = sum over k >= 0 of x**k / (a (a+1) ... (a+k)), a, x > 0: lower(a, x) = x**a exp(-x) S(a, x).
 
     Fixed-point sum of positive terms t(k+1) = t(k) x / (a+k+1), rounded down with (low x, high a) and up with (high
     x, low a). Once rho = x/(a+k+1) < 1, the terms after t are at most t rho / (1 - rho), since the ratios fall.
@@ -519,12 +521,16 @@ def gamma_kernel(a: Number, x: Number) -> Interval:
 
 LITERAL = re.compile(r"(\d+\.?\d*|\.\d+)([eE][-+]?\d{1,4})?")
 FUNCTIONS: dict[str, tuple[int, Callable[..., Number]]] = {
-    "exp": (1, exp), "log": (1, log), "ln": (1, log), "sqrt": (1, sqrt), "factorial": (1, lambda n: gamma(Fraction(whole(n) + 1))),
-    "binomial": (2, binomial), "gamma": (1, gamma), "loggamma": (1, lambda a: log(gamma(a))),
+    "exp": (1, exp), "log": (1, log), "ln": (1, log), "sqrt": (1, sqrt),
+    "factorial": (1, lambda n: gamma(Fraction(whole(n) + 1))), "binomial": (2, binomial), "gamma": (1, gamma),
+    "loggamma": (1, lambda a: log(gamma(a))),
     "beta": (2, lambda a, b: gamma(a) * gamma(b) / gamma(a + b)),
     "abs": (1, lambda x: -x if less(x, 0) else x), "Abs": (1, lambda x: -x if less(x, 0) else x),
     "cosh": (1, lambda x: (exp(x) + exp(-x)) / 2), "sinh": (1, lambda x: (exp(x) - exp(-x)) / 2),
     "tanh": (1, lambda x: 1 - 2 / (exp(2 * x) + 1)),
+}  # fmt: skip
+OPERATIONS: dict[type[ast.operator], Callable[[Any, Any], Number]] = {
+    ast.Add: operator.add, ast.Sub: operator.sub, ast.Mult: operator.mul, ast.Div: operator.truediv, ast.Pow: power,
 }  # fmt: skip
 Names = dict[str, Number]
 
@@ -559,27 +565,12 @@ def value_of(node: ast.expr, text: str, names: Names) -> Number:
             value = value_of(inner, text, names)
             return -value if isinstance(sign, ast.USub) else value
         case ast.BinOp(left=left, op=operation, right=right):
-            return operate(operation, value_of(left, text, names), value_of(right, text, names))
+            form(type(operation) in OPERATIONS, f"not arithmetic: {type(operation).__name__}")
+            return OPERATIONS[type(operation)](value_of(left, text, names), value_of(right, text, names))
         case ast.Call(func=ast.Name(id=name), args=arguments, keywords=[]):
-            form(name in FUNCTIONS and len(arguments) == FUNCTIONS[name][0], f"unknown function {name}, or its arguments")
+            form(name in FUNCTIONS and len(arguments) == FUNCTIONS[name][0], f"the function {name}")
             return FUNCTIONS[name][1](*(value_of(argument, text, names) for argument in arguments))
     raise MalformedError(f"not arithmetic: {text!r:.80}")
-
-
-def operate(operation: ast.operator, x: Number, y: Number) -> Number:
-    """Add, subtract, multiply, divide or raise to a power."""
-    match operation:
-        case ast.Add():
-            return x + y
-        case ast.Sub():
-            return x - y
-        case ast.Mult():
-            return x * y
-        case ast.Div():
-            return x / y
-        case ast.Pow():
-            return power(x, y)
-    raise MalformedError(f"not arithmetic: {type(operation).__name__}")
 
 
 # ---- 6. Laws of the sum of n statistics ----------------------------------------------------------------------------
@@ -628,11 +619,12 @@ class Counts:
 
 
 class Table:
-    """Masses w_v theta**v / C**n, w the n-fold power of the table of one Y, C = its sum of w_y theta**y, or as stated."""
+    """Masses w_v theta**v / C**n, w the n-th power of the table of one Y, C = the sum of w_y theta**y, or as stated."""
 
     def __init__(
-        self, theta: Number, weights: list[Fraction], first: int, n: int, total: Number | None, mean: Number | None, top: int
-    ) -> None:
+        self, theta: Number, weights: list[Fraction], first: int, n: int, total: Number | None, mean: Number | None,
+        top: int,
+    ) -> None:  # fmt: skip
         length = n * (len(weights) - 1) + 1 if total is None else min(len(weights), top - n * first + 1)
         self.theta, self.first = theta, n * first
         coefficients = powers_of(tuple(weights), n, length)
@@ -699,7 +691,7 @@ def powers_of(weights: tuple[Fraction, ...], n: int, length: int) -> list[Fracti
 
 
 def sums(law: Counts | Table, lo: int | None, hi: int | None, exact: bool) -> list[Number]:
-    """Sum up P(lo), P(hi), the mass strictly between them (lo or hi None: to the end), and there the mass times k - lo."""
+    """Sum up P(lo), P(hi), the mass between them (lo or hi None: to the end), and there the mass times k - lo."""
     start, stop = (lo, hi) if lo is not None and hi is not None else (law.first, (lo or 0) if hi is None else hi)
     if stop - start > LIMIT:
         raise LimitError(f"a window of {stop - start} lattice points")
@@ -734,7 +726,7 @@ class Gamma:
         return gamma_kernel(self.shape, self.rate * y) / y
 
     def below(self, y: Number) -> tuple[Number, Number]:
-        """P(Y <= y) = P(shape, x) and E[Y; Y <= y] = mean P(shape+1, x) = mean (P(shape, x) - x**a exp(-x) / Gamma(a+1))."""
+        """P(Y <= y) = P(a, x); E[Y; Y <= y] = mean P(a+1, x), P(a+1, x) = P(a, x) - x**a exp(-x) / Gamma(a+1)."""
         x = self.rate * y
         kernel = gamma_kernel(self.shape, x)
         cdf = kernel * gamma_series(self.shape, x)
@@ -791,7 +783,7 @@ class InverseGaussian:
 
         u, v = sqrt(shape/y) (y/mean -+ 1). For the second: both sides vanish at 0 and have the derivative y
         density(y). One factor is tiny where the other is huge, hence the extra bits.
-    """
+        """
         size = 2 * self.shape / self.mean
         extra = ceil(ends(size)[1] * 3 / 2) + 32
         if extra > 40_000:
@@ -822,7 +814,7 @@ OTHER = {  # the alternative is the complement of the null hypothesis
 
 
 def hypothesis(text: str, t: str) -> tuple[str, list[str], str]:
-    """Read a null hypothesis: its form, its limits as texts, and (one-sided) whether the alternative lies above or below."""
+    """Read a null hypothesis: form, limits as texts, and (one-sided) whether the alternative lies above or below."""
     e = r"([^<>=]+?)"
     for shape, name, side in (
         (rf"{t} <= {e} or {t} >= {e}", "outside null", "outside null"),
@@ -838,7 +830,7 @@ def hypothesis(text: str, t: str) -> tuple[str, list[str], str]:
 
 
 def bounds(text: str, name: str, names: Names) -> tuple[Number | None, Number | None]:
-    """Read the ends of a support or a parameter space: "reals", "t > a", "a < t < b", "reals in (a, b)", "integers a..b"."""
+    """Read the ends of a support or space: "reals", "t > a", "a < t < b", "reals in (a, b)", "integers a..b"."""
     text, e = re.sub(r"^(reals|integers)\b\s*", name + " ", text.strip()).strip(), r"([^<>=]+?)"
     for shape, low, high in (
         (name, 0, 0),
@@ -872,9 +864,10 @@ class Question:
             problem["alpha"], predicate["law"], predicate["derivation"], predicate["test"],
         )  # fmt: skip
         form(len(self.alphas) == len(self.limit_texts), "one level for each limit is needed")
-        form(self.law["name"] == "lattice" or not {"weights", "first"} & set(self.law), "weights belong to a lattice law")
+        form(self.law["name"] == "lattice" or not {"weights", "first"} & set(self.law), "weights of no lattice law")
         self.inner = self.form in ("one-sided", "outside null")  # the test rejects inside its window
-        texts = " ".join(map(str, [self.density[self.kind], self.density["support"], self.density["space"], *self.limit_texts]))
+        parts = [self.density[key] for key in (self.kind, "support", "space")]
+        texts = " ".join(map(str, [*parts, *self.limit_texts]))
         for name in self.density["constants"]:
             form(re.search(rf"\b{re.escape(name)}\b", texts), f"the constant {name} is not used")
 
@@ -917,7 +910,7 @@ class Question:
             mean = {"mean"} if "total" in given and self.form == "point null" else set()
             form(set(given) == {"base"} | ({"total"} & set(given)) | mean, "the parameters of a lattice law")
             weights = [rational(w) for w in self.law["weights"]]
-            form(len(weights) > 1 and min(weights) >= 0 and weights[0] > 0, "weights are not negative, and start above 0")
+            form(len(weights) > 1 and min(weights) >= 0 and weights[0] > 0, "weights >= 0 that start above 0")
             require(less(0, given["base"]), "a base that is not positive")
             return Table(given["base"], weights, self.law["first"], n, given.get("total"), given.get("mean"), top)
         make, grows = MAKERS[self.law["name"]]
@@ -950,7 +943,7 @@ def places(low: Number | None, high: Number | None) -> list[Fraction]:
     a, b = (None if x is None else Fraction(sum(ends(x))) / 2 for x in (low, high))
     tiny = Fraction(1, 2**16)
     if a is not None and b is not None:
-        return [a + (b - a) * k for k in (Fraction(5, 16), Fraction(1, 2), Fraction(3, 4), Fraction(7, 8), tiny, 1 - tiny)]
+        return [a + (b - a) * k for k in (*(Fraction(k, 16) for k in (5, 8, 12, 14)), tiny, 1 - tiny)]
     if a is None and b is None:
         return [Fraction(-1, 3), Fraction(1), Fraction(5, 2), Fraction(4), -1 / tiny, 1 / tiny]
     steps = [Fraction(3, 4), Fraction(2), Fraction(3), Fraction(4), tiny, 1 / tiny]
@@ -1026,7 +1019,7 @@ def check_masses(q: Question, t: Number, law: Counts | Table) -> list[Fraction]:
         require(filled <= set(seen), "a weight at a place without mass")
     else:
         limits = {q.y(x) for x in (low, high) if x is not None}
-        require(limits == {law.first, law.last} - {None}, "the support does not end where the law of the statistic does")
+        require(limits == {law.first, law.last} - {None}, "the support does not end where the law of Y does")
     factor = Fraction(1) if q.kind == "formula" else q.value(full[0], t) / height(law, q.y(full[0]))
     for y, mass in seen.items():
         what = "the masses of the density are not those of the stated law"
@@ -1076,7 +1069,7 @@ def grid(x: Fraction, digits: int, upward: bool = False) -> Fraction:
 
 
 def confirm(claim: Any, low: Number, high: Number, digits: int, what: str) -> None:
-    """The claim is the outward rounding of [low, high] to so many digits: no tighter, no wider, and exact where it is exact.
+    """The claim is the outward rounding of [low, high] to so many digits: no tighter, no wider, exact where exact.
 
     A number that lies on the decimal grid may also be claimed with one unit on either side.
     """
@@ -1130,7 +1123,7 @@ class Test:
         return inside if of == "phi" else self.scale * first + self.shift * inside
 
     def extremes(self, i: int, of: str) -> list[Number]:
-        """Return the smallest and largest expectation over all numbers within the claim: it is monotone in each of them."""
+        """Return the smallest and largest expectation within the claim: it is monotone in each number."""
         pairs = [c if sign > 0 else c[::-1] for c, sign in zip(self.claims, self.signs(of), strict=True)]
         return [self.expect(i, [pair[end] for pair in pairs], of) for end in (0, 1)]
 
@@ -1144,7 +1137,7 @@ class Test:
 
 
 class LatticeTest(Test):
-    """psi = 1 strictly inside the window, d at its ends, 0 outside; gamma = d, or 1 - d where the test rejects outside."""
+    """psi = 1 strictly inside the window, d at its ends, 0 outside; gamma = d, or 1 - d when rejecting outside."""
 
     kind = "gamma"
 
@@ -1187,7 +1180,8 @@ class LatticeTest(Test):
 
     def signs(self, of: str) -> list[int]:
         """E phi grows with each fraction; E[V phi] does where the cutoff is positive."""
-        return [-1 if of == "V phi" and less(self.scale * self.q.test["y" + i] + self.shift, 0) else 1 for i in self.places]
+        cutoffs = [self.scale * self.q.test["y" + i] + self.shift for i in self.places]
+        return [-1 if of == "V phi" and less(c, 0) else 1 for c in cutoffs]
 
 
 def window_fractions(
@@ -1217,9 +1211,6 @@ def window_fractions(
     (a, b), (c, e) = rows[0][:2], rows[1][:2]
     det = a * e - b * c
     return [(right[0] * e - right[1] * b) / det, (a * right[1] - c * right[0]) / det]
-
-
-Box = tuple[Fraction, Fraction]
 
 
 class SmoothTest(Test):
@@ -1301,7 +1292,7 @@ def newton(laws: list[Any], betas: list[Number], boxes: list[Any], above: bool) 
 
 
 def decide(rule: Callable[[bool], None], start: int, exact: bool = False) -> None:
-    """Run a rule at rising precision until it does not raise ImpreciseError; then in exact fractions, where these exist."""
+    """Run a rule at rising precision until it does not raise ImpreciseError; then, where these exist, in fractions."""
     reason = ""
     for factor in (1, 2, 4) if exact else (1, 2, 4, 8):
         Interval.bits = start * factor
@@ -1339,13 +1330,13 @@ def check_numbers(q: Question, predicate: dict[str, Any]) -> None:
 
 
 def check_conditions(q: Question, test: Test, conditions: list[dict[str, Any]]) -> None:
-    """Each side condition: where, its exact target, and the range of the expectation over all numbers within the claim."""
+    """Each side condition: where, its exact target, and the range of the expectation within the claim."""
     wanted = [(i, at, "phi") for i, at in enumerate(q.limit_texts)]
     if q.form == "point null":
         wanted.append((0, q.limit_texts[0], "V phi"))
     form(len(conditions) == len(wanted), "the number of side conditions")
     for condition, (i, at, of) in zip(conditions, wanted, strict=True):
-        require((condition["at"], condition["of"]) == (at, of), "a side condition that is not that of the null hypothesis")
+        require((condition["at"], condition["of"]) == (at, of), "another side condition than the null's")
         target = q.levels()[i] * (test.scale * test.laws[0].mean + test.shift if of == "V phi" else 1)
         confirm(condition["target"], target, target, q.digits, "the target of a side condition")
         small, large = test.extremes(i, of)
@@ -1438,10 +1429,10 @@ def check_form(q: Question) -> None:
 
 
 def check_double(q: Question, opinions: list[dict[str, Any]]) -> None:
-    """Digits of agreement of a double x: the largest d <= 17 with |x - c| <= 10**-d |c| / 2 for all c of the claim, or 0."""
+    """Digits of agreement of a double x: the largest d <= 17 with |x - c| <= 10**-d |c| / 2 for all claimed c, or 0."""
     for opinion in opinions:
         numbers, digits = opinion["numbers"], opinion["digits"]
-        form(set(digits) <= {key for key in numbers if numbers[key] is not None}, "digits of a number that is not reported")
+        form(all(numbers.get(key) is not None for key in digits), "digits of a number that is not reported")
         for key in numbers:
             form(re.fullmatch("(c|gamma)[12]?", key) and key in q.test, f"an opinion on {key}")
         for key, stated in digits.items():
@@ -1461,7 +1452,7 @@ def check(statement: Any) -> Question:
     form(len(statement["subject"]) == 1, "one subject is needed")
     predicate = statement["predicate"]
     rest = {key: value for key, value in predicate.items() if key != "seal"}
-    require(predicate["seal"] == hashlib.sha256(canonical(rest)).hexdigest(), "the seal does not fit: something was changed")
+    require(predicate["seal"] == hashlib.sha256(canonical(rest)).hexdigest(), "the seal does not fit: a change")
     q = Question(predicate)
     check_derivation(q)
     require(predicate["assumptions"] == trusted(q), "the list of what is taken on trust is not complete")
@@ -1486,7 +1477,8 @@ def check_case(q: Question, statement: Any, data: bytes) -> None:
     for key in ("formula", "kernel", "variable", "parameter"):
         mine, theirs = (re.sub(r"\s", "", str(d.get(key))).replace("^", "**") for d in (q.density, density))
         require(mine == theirs, f"the case file has another {key}")
-    require([str(Fraction(str(w))) for w in density.get("weights", [])] == q.density.get("weights", []), "other weights")
+    weights = [str(Fraction(str(w))) for w in density.get("weights", [])]
+    require(weights == q.density.get("weights", []), "the case file has other weights")
     same("n", [Fraction(q.n)], [Fraction(str(problem["n"]))])
     for key in q.density["constants"]:
         same(key, [names[key]], [evaluate(str(density["constants"][key]))])
@@ -1518,7 +1510,7 @@ OUTCOMES: tuple[tuple[tuple[type[Exception], ...], int, str], ...] = (
 
 
 def verdict(data: bytes, case: Any = None) -> tuple[int, list[str]]:
-    """Return the exit status and the lines to print for the bytes of a certificate, and perhaps the path of its case file."""
+    """Return the exit status and the lines to print for a certificate's bytes, and perhaps its case file's path."""
     work["left"] = LIMIT
     try:
         statement = read(data)

@@ -1,0 +1,80 @@
+"""Numbers that are exact by chance, long tables, and every entry of a case file."""
+
+from __future__ import annotations
+
+import copy
+import hashlib
+from pathlib import Path
+from types import ModuleType
+from typing import Any
+
+import pytest
+
+import verify
+from verify.certificate import recheck
+from verify.certificate.certify import certify
+
+
+def status(problem: verify.Problem) -> int:
+    return certify(problem, digits=20).recheck().status
+
+
+def test_an_exact_median_is_not_rejected(maker: ModuleType) -> None:
+    """The median of a normal law: the one-sided cutoff at level 1/2 is n times the limit, claimed as 3 or enclosed."""
+    density = verify.Density(
+        "exp(-(x-mu)**2/2)/sqrt(2*pi)", variable="x", support="reals", parameter="mu", space="reals"
+    )
+    made = certify(verify.Problem(density, null="mu <= 1", alpha="1/2", n=3), digits=20)
+    assert made.recheck().status == 0
+    predicate = copy.deepcopy(made.predicate)
+    predicate["test"]["c"] = "3"
+    predicate["double_precision"]["opinions"] = []
+    assert recheck.verdict(maker.canonical(maker.statement(predicate)))[0] in (0, 3)
+
+
+def test_an_exact_cutoff_beside_the_true_one_is_not_accepted(maker: ModuleType, certificates: dict[str, Any]) -> None:
+    predicate = copy.deepcopy(certificates["normal above"]["predicate"])
+    predicate["test"]["c"] = "19"
+    assert recheck.verdict(maker.canonical(maker.statement(predicate)))[0] in (1, 3)
+
+
+def test_masses_that_are_rational_by_chance() -> None:
+    """Negative binomial of size 1/2 and p = 1/4: P(0) = 1/2, so that fractions may be rational."""
+    density = verify.Density(
+        "gamma(x+r)/(gamma(r)*factorial(x))*p**r*(1-p)**x",
+        variable="x", support="integers >= 0", parameter="p", space="0 < p < 1", constants={"r": "1/2"},
+    )  # fmt: skip
+    assert status(verify.Problem(density, null="p >= 1/4", alpha="1/5", n=1)) == 0
+
+
+CASE = """[density]
+formula = "binomial(m, x) * p**x * (1-p)**(m-x)"
+variable = "x"
+support = "integers 0..m"
+parameter = "p"
+space = "0 < p < 1"
+constants = { m = "10" }
+[problem]
+null = "p <= 2/5 or p >= 3/5"
+alpha = "0.05"
+n = 5
+"""
+
+
+@pytest.mark.parametrize(
+    ("old", "new", "wanted"),
+    [
+        ("0..m", "0..10", 0), ('"0.05"', '["1/20", "5e-2"]', 0), ("2/5 or", "0.4 or", 0), ("<=", "≤", 0),
+        ("m, x)", "m, x) * 1", 1), ("0..m", "0..11", 1), ("0 < p < 1", "0 < p < 2", 1), ('m = "10"', 'm = "11"', 1),
+        ("2/5 or", "1/5 or", 1), ('"p <= 2/5 or p >= 3/5"', '"2/5 <= p <= 3/5"', 1), ('"0.05"', '"0.06"', 1),
+        ("n = 5", "n = 6", 1), ("0..m", "from 0 to m", 2),
+    ],
+)  # fmt: skip
+def test_every_entry_of_the_case_file_is_compared(
+    maker: ModuleType, certificates: dict[str, Any], tmp_path: Path, old: str, new: str, wanted: int
+) -> None:
+    case = tmp_path / "lot.case.toml"
+    case.write_text(CASE.replace(old, new), encoding="utf-8")
+    certificate = copy.deepcopy(certificates["binomial outside 5"])
+    certificate["subject"][0]["digest"]["sha256"] = hashlib.sha256(case.read_bytes()).hexdigest()
+    assert recheck.verdict(maker.canonical(certificate), case)[0] == wanted
