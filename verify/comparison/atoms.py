@@ -42,8 +42,7 @@ def atoms_that_matter(log_mass: Callable[[Array], Array], lower: float, upper: f
     """The run of integers around the mode where log_mass is within ``depth`` of its peak.
 
     Assumes that the masses fall monotonically outside the dense look and away from the mode; the caller
-    checks that they add
-    up to one.
+    checks that they add up to one.
 
     Raises
     ------

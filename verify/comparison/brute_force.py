@@ -1,8 +1,8 @@
 """Second opinion: brute force from the formula itself, never from the law.
 
 The formula is evaluated in doubles at every atom that matters and its masses are convolved n times; a
-continuous density is
-integrated (see ``continuous.py``). The side conditions are then solved on the resulting table.
+continuous density is integrated (see ``continuous.py``). The side conditions are then solved on the resulting
+table.
 """
 
 from __future__ import annotations

@@ -1,10 +1,9 @@
 """How sensitive the numbers are: the condition of the side conditions, from the proven numbers.
 
-A relative error eps in the tails of the law moves a fraction gamma by up to condition * eps, and a
-continuous cutoff by up to
-condition * eps relative to itself. It is the largest row of |M^-1| (levels), M the masses (densities) of
-both side conditions at the
-two cutoffs. The law is evaluated in balls here; no opinion is formed.
+A relative error eps in the tails of the law moves a fraction gamma by up to condition * eps, and a continuous
+cutoff by up to condition * eps relative to itself. It is the largest row of |M^-1| (levels), M the masses
+(densities) of both side conditions at the two cutoffs. The law is evaluated in balls here; no opinion is
+formed.
 """
 
 from __future__ import annotations

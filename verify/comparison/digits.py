@@ -1,10 +1,9 @@
 """How many decimal digits of a double-precision number agree with a proven enclosure.
 
 The definition. Let x be the number (a double, taken as the exact rational that it is) and [a, b] the
-enclosure. The worst
-error is e = max(|x - a|, |x - b|): no point of the enclosure is farther from x. Against a scale s > 0 they
-agree to
-k digits when e <= s * 10**-k; the agreement is the largest such whole k, never below 0 and never above
+enclosure. The worst error is e = max(|x - a|, |x - b|): no point of the enclosure is farther from x. Against
+a scale s > 0 they agree to k digits when e <= s * 10**-k; the agreement is the largest such whole k, never
+below 0 and never above
 ``DOUBLE_DIGITS``, since a double carries no more. The scale of *significant* digits is the smallest |value|
 in the enclosure.
 

@@ -5,10 +5,9 @@ M(s) = E exp(s T) is a sum over the Gauss nodes. Two inversions:
 - *tilted*: on the vertical line through a real point theta near the saddlepoint of the cutoff, P(V > c) is
 the integral of
   exp(n log M(theta + iu) - (theta + iu) c) / (theta + iu) over u, by the trapezoidal rule, which converges
-  exponentially
-  (J. Abate and W. Whitt, "The Fourier-series method for inverting transforms of probability distributions",
-  Queueing Systems
-  10 (1992) 5-88, section 5). The tail in question keeps its relative accuracy.
+  exponentially (J. Abate and W. Whitt, "The Fourier-series method for inverting transforms of probability
+  distributions", Queueing Systems 10 (1992) 5-88, section 5). The tail in question keeps its relative
+  accuracy.
 - *Euler*: when |M|**n falls too slowly for that and T is bounded on one side, their Euler summation of the
 alternating series;
   about ``EULER_DIGITS`` decimals, absolute.

@@ -1,10 +1,8 @@
 """Calls that may never come back: run them in a process that can be killed, under a time and a memory limit.
 
 A C loop ignores alarms and a library may ask for all the memory there is, so a limit inside the same process
-is no
-limit. One forked child does all the calls in turn and reports each result; only when it dies or is killed is
-another one
-forked for the calls that are left.
+is no limit. One forked child does all the calls in turn and reports each result; only when it dies or is
+killed is another one forked for the calls that are left.
 """
 
 from __future__ import annotations

@@ -21,8 +21,7 @@ class Opinion:
         ``"SciPy"`` or ``"brute force"``.
     numbers : dict of str to (str or None)
         Each number as its double prints; None where the route has none. ``expectation1``, ``expectation2``
-        are the route's
-        evaluation of the side conditions for the *proven* test.
+        are the route's evaluation of the side conditions for the *proven* test.
     digits : dict of str to int
         Significant digits that agree with the proof (for an expectation: on the scale of its target).
     level_digits : dict of str to int

@@ -2,9 +2,7 @@
 
 The variable is x = x(w) with w on the whole line (exp, sinh or logistic, by the support), so that an end of
 the support or a far tail is a place where the integrand merely dies out. The panels break at the mode under
-each limit (a
-kink usually sits
-there) and where T turns.
+each limit (a kink usually sits there) and where T turns.
 """
 
 from __future__ import annotations
@@ -124,8 +122,7 @@ def nodes(heights: list[Callable[[Array], Array]], place: Callable[[Array], Arra
         How far below the peak a density still matters, in natural logarithms.
     fine : int
         0 for plain integrals; 1, 2, ... lays so many times more panels around the modes and towards the
-        turns, for a
-        transform whose waves the nodes have to resolve.
+        turns, for a transform whose waves the nodes have to resolve.
     """
     levels = (1.0, 3.0, 8.0, 20.0, depth) if fine else (depth,)
     marks = np.unique(np.array([run_of_interest(height, level) for height in heights for level in levels]))

@@ -1,8 +1,7 @@
 """What the routes are asked: the problem in plain doubles, the formula, and the proven test.
 
 A route sees nothing else. It shares no code with the solution: it gets the law's name and its parameters as
-numbers, or
-the formula, never a function.
+numbers, or the formula, never a function.
 """
 
 from __future__ import annotations

@@ -21,8 +21,7 @@ class Shifted:
     """``offset`` + a frozen SciPy distribution, with the few functions that the route needs.
 
     SciPy's own ``loc`` does the same for a continuous law; for a lattice law with large numbers it does too,
-    but this way one
-    object serves the size-biased laws as well.
+    but this way one object serves the size-biased laws as well.
     """
 
     frozen: Any
@@ -117,9 +116,8 @@ def size_biased(name: str, p: Mapping[str, float]) -> Shifted | ReciprocalInvers
     """The law with mass proportional to y times the law's own, so that E[Y psi] = E[Y] E*[psi].
 
     With it the second side condition of a point null, E[Y phi] = alpha E[Y], reads E*[phi] = alpha. Each
-    follows
-    from     absorbing the factor y into the factorial, the binomial coefficient or the power; a normal law
-    has none.
+    follows from     absorbing the factor y into the factorial, the binomial coefficient or the power; a
+    normal law has none.
     """
     match name:
         case "Poisson":

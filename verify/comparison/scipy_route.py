@@ -1,13 +1,11 @@
 """First opinion: SciPy's distribution objects and root finders, as a competent statistician would write it.
 
-Two-sided forms: a window with tail coordinate s starts at the s-quantile under the first limit and ends
-where what is
-left of the complement, rest - s, begins; the second side condition is a monotone function of s, and
+Two-sided forms: a window with tail coordinate s starts at the s-quantile under the first limit and ends where
+what is left of the complement, rest - s, begins; the second side condition is a monotone function of s, and
 ``brentq`` finds its
 root. On a lattice the two fractions then come from a 2 x 2 linear system. Point null: the second law is the
-size-biased
-one, which turns E[V phi] = alpha E[V] into an expectation. All on the scale of Y; the cutoffs are mapped to
-V.
+size-biased one, which turns E[V phi] = alpha E[V] into an expectation. All on the scale of Y; the cutoffs are
+mapped to V.
 """
 
 from __future__ import annotations

@@ -1,8 +1,7 @@
 """Cutoffs of a continuous measure from its two tails alone: quantiles, then one monotone unknown.
 
 A place v is written as v = end + exp(y) next to a finite end of V and as v = centre + width * sinh(y)
-otherwise, so
-that a cutoff of 1e-26 is found to its own relative accuracy.
+otherwise, so that a cutoff of 1e-26 is found to its own relative accuracy.
 """
 
 from __future__ import annotations

@@ -1,8 +1,7 @@
 """The formula of a certificate as a tree that keeps the shape in which it was written.
 
-The text is read by Python's grammar into a syntax tree that is never compiled or run; nothing is simplified or
-reordered, so that
-the page shows the formula that was certified.
+The text is read by Python's grammar into a syntax tree that is never compiled or run; nothing is simplified
+or reordered, so that the page shows the formula that was certified.
 """
 
 from __future__ import annotations

@@ -1,8 +1,7 @@
 """From a formula tree to boxes: what stands beside, over, above and below what.
 
 All that is known about notation (Greek letters, brackets, how a function is written) is here; the printers of
-MathML, typst and plain
-text know only the six kinds of box.
+MathML, typst and plain text know only the six kinds of box.
 """
 
 from __future__ import annotations

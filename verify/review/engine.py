@@ -87,8 +87,7 @@ class TwoSided:
         Notes
         -----
         Source: Lehmann and Romano 2005, Theorem 3.7.1: a critical function of this shape that satisfies the
-        side conditions is
-        the one.
+        side conditions is the one.
         """
         low, high = self.laws[0].support
         if c1 >= c2 or (low is not None and c1 < low) or (high is not None and c2 > high):

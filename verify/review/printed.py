@@ -61,9 +61,8 @@ class Printed:
     def match(self, true: Enclosure) -> Match:
         """Compare with the true number, of which an enclosure is known.
 
-        Correct rounding (of a tie: either way) is SAME; less than one unit off, as truncation and rounding
-        up leave it, is
-        LAST. A number written exactly must lie in the enclosure.
+        Correct rounding (of a tie: either way) is SAME; less than one unit off, as truncation and rounding up
+        leave it, is LAST. A number written exactly must lie in the enclosure.
 
         Examples
         --------

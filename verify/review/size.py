@@ -1,11 +1,10 @@
 """The true size of a test: where over the whole null its power is largest, and how large, enclosed.
 
 The power of a test that rejects inside a window rises and then falls in the parameter; that of one that
-rejects outside falls and then
-rises (the kernel of an exponential family is totally positive, so it diminishes variation). So on each part
-of the null the largest
-power lies at an end of the part, or at the one peak when the peak lies inside: the sign of the derivative
-Cov(phi, V) at the ends says which. Nothing is assumed about where it is.
+rejects outside falls and then rises (the kernel of an exponential family is totally positive, so it
+diminishes variation). So on each part of the null the largest power lies at an end of the part, or at the one
+peak when the peak lies inside: the sign of the derivative Cov(phi, V) at the ends says which. Nothing is
+assumed about where it is.
 
 Source: S. Karlin, Total Positivity (1968), chapter 1 (variation diminishing); Lehmann and Romano 2005,
 Theorem 3.7.1 (iii).
@@ -227,10 +226,9 @@ def _peak(curve: PowerCurve, a: Fraction, b: Fraction) -> Enclosure:
     """Enclose the largest power between two parameter values.
 
     Between natural parameters x < y the power is at most max(power(x), power(y)) * exp((y - x) (E_y V - E_x
-    V) / 4): by
-    Hoelder's inequality power(u x + (1-u) y) <= power(x)^u power(y)^(1-u) exp(J) with J = u A(x) + (1-u)
-    A(y) - A(u x + (1-u) y), and
-    the tangents of the convex A give J <= u (1-u) (y - x) (A'(y) - A'(x)).
+    V) / 4): by Hoelder's inequality power(u x + (1-u) y) <= power(x)^u power(y)^(1-u) exp(J) with J = u A(x)
+    + (1-u) A(y) - A(u x + (1-u) y), and the tangents of the convex A give J <= u (1-u) (y - x) (A'(y) -
+    A'(x)).
     """
     ends = [curve.power(t) for t in (a, b)]
     lower = max(end.lower for end in ends)

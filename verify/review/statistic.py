@@ -23,8 +23,7 @@ def styled(style: Style, said: Mapping[str, str], derivation: Derivation) -> tup
     """Return the style with the scale and shift of the claimed statistic, and a remark where there is one.
 
     A statistic that is no affine function of the derived one is refuted in the ledger; the numbers are then
-    read on the
-    derived scale.
+    read on the derived scale.
     """
     text = said.get("statistic", "")
     if not text.strip():

@@ -33,9 +33,9 @@ class Style:
     reported_as : str
         "sum", "mean", or the number by which the sum is divided.
     window : {"open", "closed"} or None
-        Whether the printed ends belong to the window; None: as in the table of the forms (the ends belong
-        to the side that is
-        not rejected). Fractions, where there are any, say themselves what happens at the ends.
+        Whether the printed ends belong to the window; None: as in the table of the forms (the ends belong to
+        the side that is not rejected). Fractions, where there are any, say themselves what happens at the
+        ends.
     region : {"reject inside", "accept inside"} or None
         What happens inside; None: what the form of the null asks for.
     fractions : {"of rejection", "of acceptance"} or None
