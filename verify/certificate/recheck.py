@@ -1073,13 +1073,12 @@ def confirm(claim: Any, low: Number, high: Number, digits: int, what: str) -> No
 
     A number that lies on the decimal grid may also be claimed with one unit on either side.
     """
-    ask = claimed(claim)
+    ask, (a, b), (c, d) = claimed(claim), ends(low), ends(high)
     if ask[0] == ask[1]:
-        if isinstance(low, Interval) or isinstance(high, Interval):
+        if a < b or c < d:
             raise ImpreciseError(f"{what}: only exact numbers decide")
-        require(ask[0] == low == high, f"{what} is not the stated number")
+        require(ask[0] == a == d, f"{what} is not the stated number")
         return
-    (a, b), (c, d) = ends(low), ends(high)
     if a == d == grid(a, digits):
         a, d = a - abs(a) / 10 ** (digits + 20), d + abs(a) / 10 ** (digits + 20)
     lower, upper = grid(a, digits), grid(d, digits, upward=True)
