@@ -10,7 +10,7 @@ from fractions import Fraction
 from math import log2
 from typing import TYPE_CHECKING, Any, ClassVar
 
-from verify.arithmetic.ball import balls, midpoint, to_fraction
+from verify.arithmetic.ball import balls, complex_ball, midpoint, to_fraction
 from verify.arithmetic.evaluate import evaluate
 from verify.arithmetic.inversion import DENSITY, SHORTFALL, TAIL, Inversion, saddle_point
 from verify.arithmetic.transforms import Transform
@@ -133,13 +133,24 @@ class SumByInversion(Law):
 
     def _invert(self, A: Any, v: Number, kind: str, *, upper: bool | None) -> Number:
         """One inversion, remembered: a search asks for the same point again."""
-        key = ("inverted", self.at, self.n, A.prec, str(v.man_exp()), kind, upper) if v.is_exact() else None
-        if key is None or key not in self.one.cache:
-            value = self._inverted(A, v, kind, upper=upper)
-            if key is None:
-                return value
-            self.one.cache[key] = value
-        return self.one.cache[key]
+        if not v.is_exact():
+            return self._inverted(A, v, kind, upper=upper)
+        place = (self.n, A.prec, str(v.man_exp()), kind)
+        key: tuple[Any, ...] = ("inverted", *place) if kind == DENSITY else ("inverted", *place, self.at, upper)
+        if key not in self.one.cache:
+            self.one.cache[key] = self.at, self._inverted(A, v, kind, upper=upper)
+        at, value = self.one.cache[key]
+        return value if at == self.at else self._tilted(A, v, value, at)
+
+    def _tilted(self, A: Any, v: Number, density: Number, at: Exact) -> Number:
+        """The density at v from the one at another parameter value: the family is exponential."""
+        with balls(A.prec + GUARD_BITS) as B:
+            here, there = (evaluate(self.one.natural, B, {self.one.parameter: B.real(t)}) for t in (self.at, at))
+            ratio = self.transform.value(B, complex_ball(there), False) / self.transform.value(
+                B, complex_ball(here), False
+            )
+            value = density * B.exp((here - there) * v) * ratio.real**self.n
+        return value + A.real(0)
 
     def _inverted(self, A: Any, v: Number, kind: str, *, upper: bool | None) -> Number:
         c = self._crossing(v, upper)
@@ -156,9 +167,7 @@ class SumByInversion(Law):
         with balls(COARSE_BITS) as A:
             eta = to_fraction(midpoint(evaluate(self.one.natural, A, {self.one.parameter: A.real(self.at)})))
             gap = 1 / to_fraction(midpoint(self.spread(A)))
-            low, high = (
-                None if end is None else to_fraction(midpoint(A.real(end))) for end in self.transform.domain()
-            )
+            low, high = (None if end is None else to_fraction(midpoint(A.real(end))) for end in self.transform.domain())
             saddle = saddle_point(self.transform, self.n, midpoint(A.real(v)), eta, A)
         if upper is not None:
             saddle = max(saddle, eta + gap) if upper else min(saddle, eta - gap)
