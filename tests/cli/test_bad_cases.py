@@ -35,6 +35,7 @@ CHANGES = {
     "level zero": ('"0.05"', '"0"', "alpha"),
     "level no number": ('"0.05"', '"five percent"', "alpha"),
     "three levels": ('"0.05"', '["0.01", "0.02", "0.03"]', "alpha"),
+    "constant named like a function": ('"lam > 0"', '"lam > 0"\nconstants = { exp = "2" }', "exp"),
     "n zero": ("n = 10", "n = 0", "n"),
     "n not whole": ("n = 10", 'n = "ten"', "n"),
     "n a truth value": ("n = 10", "n = true", "n"),

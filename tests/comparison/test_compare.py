@@ -131,7 +131,7 @@ def test_a_tie_is_called_one(monkeypatch):
     monkeypatch.setitem(module.ROUTES, "SciPy", lambda ask: Answer({"c": 1.0, "gamma": 0.0}))
     (flag,) = compare(tied).flags
     assert flag.kind == "cutoffs differ"
-    assert "tie: as 1/20 and as the stored double the answers differ" in flag.text
+    assert "tie: the proved fraction there is 0 or 1 to double precision" in flag.text
 
 
 def test_limits_that_almost_coincide_are_ill_conditioned():
@@ -144,3 +144,17 @@ def test_a_lost_tail_names_its_cause():
     comparison = compare(solved("poisson", "t <= 5", "1e-17"))
     texts = [flag.text for flag in comparison.flags if flag.route == "SciPy"]
     assert any("poisson inherits the generic _isf" in text for text in texts)
+
+
+@pytest.mark.parametrize(("null_text", "alpha"), [("t <= 2/5 or t >= 3/5", "1/20"), ("2/5 <= t <= 3/5", "19/20")])
+def test_brute_force_sees_that_one_atom_solves_both_equations(null_text, alpha):
+    comparison = compare(solved("bernoulli", null_text, alpha, n=10))  # c1 = c2 = 5
+    assert comparison.flags == ()
+    assert [comparison.opinions[1].numbers[name] for name in ("c1", "c2")] == ["5", "5"]
+
+
+def test_a_mass_that_doubles_cannot_see_is_not_called_a_tie():
+    comparison = compare(solved("poisson", "t <= 1e-50 or t >= 2e-50", "1/20", n=1))
+    texts = [flag.text for flag in comparison.flags if flag.kind == "cutoffs differ"]
+    assert texts
+    assert all("too small beside the level" in text and "tie" not in text for text in texts)

@@ -6,6 +6,7 @@ import math
 from dataclasses import dataclass
 from fractions import Fraction
 
+from verify.comparison.digits import DOUBLE_DIGITS
 from verify.comparison.opinion import Opinion, Truth
 
 ENOUGH = 10
@@ -17,7 +18,8 @@ NEARLY = 2
 ILL = 1e6
 """Condition from which more than six of a double's sixteen digits are lost, whatever the solver."""
 
-TIE = "tie: as 1/20 and as the stored double the answers differ (the level equals an attainable tail probability)"
+TIE = "tie: the proved fraction there is 0 or 1 to double precision, so rounding decides between neighbouring points"
+UNSEEN = "the mass there is too small beside the level for double precision to see"
 
 
 @dataclass(frozen=True)
@@ -97,9 +99,17 @@ def _cutoff_differs(name: str, opinion: Opinion, truth: Truth) -> bool:
 
 def _cutoffs_differ(name: str, opinion: Opinion, opinions: tuple[Opinion, ...], truth: Truth) -> Flag:
     text = f"{opinion.route}: {name} = {opinion.numbers[name]}, proved {truth.numbers[name]}"
-    if is_tie(name, opinion, truth):
+    if _unseen(name, truth):
+        text += f"; {UNSEEN}"
+    elif is_tie(name, opinion, truth):
         text += f"; {TIE}"
     return Flag("cutoffs differ", name, text + _who(name, opinion, opinions) + _hint(opinion), opinion.route)
+
+
+def _unseen(name: str, truth: Truth) -> bool:
+    """Whether all of the mass at a cutoff, spent or not, changes the level by less than a double's rounding."""
+    unit = truth.scales.get(name.replace("c", "gamma", 1))
+    return unit is not None and unit > 10**DOUBLE_DIGITS
 
 
 def is_tie(name: str, opinion: Opinion, truth: Truth) -> bool:
@@ -161,5 +171,6 @@ def _ill_conditioned(truth: Truth) -> list[Flag]:
         return []
     lost = math.log10(condition)
     most = max(0, int(15.95 - lost))
-    text = f"condition {condition:.3g}: double precision cannot give more than {most} digits of every number"
+    kept = f"no more than {_count(most)}" if most else "no digit"
+    text = f"condition {condition:.3g}: rounding in double precision may leave {kept} of a number right"
     return [Flag("ill-conditioned", "all", text)]

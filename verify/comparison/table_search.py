@@ -17,6 +17,9 @@ import numpy as np
 
 Array = Any
 
+ROUNDING = 1e-12
+"""A relative miss of the second equation below this is rounding of the sums."""
+
 
 @dataclass(frozen=True)
 class Table:
@@ -89,11 +92,12 @@ def _root(excess: Any, breaks: Array, end: float) -> float:
 def _best_pair(
     table: Table, i: int, j: int, left: list[Array] | None = None, right: list[Array] | None = None
 ) -> tuple[int, int, float, float]:
-    """Of the pairs around (i, j), the one whose fractions lie in [0, 1] most nearly, nearest first."""
+    """Of the pairs around (i, j), that whose fractions lie in [0, 1] most nearly; single atoms come first."""
     best = (i, j, float("nan"), float("nan"))
     worst = float("inf")
     last = len(table.places) - 1
-    steps = sorted(((a, b) for a in (-1, 0, 1) for b in (-1, 0, 1)), key=lambda step: abs(step[0]) + abs(step[1]))
+    around = [(a, b) for a in (-1, 0, 1) for b in (-1, 0, 1)]
+    steps = sorted(around, key=lambda step: (i + step[0] != j + step[1], abs(step[0]) + abs(step[1])))
     for a, b in steps:
         low, high = i + a, j + b
         if not 0 <= low <= high <= last:
@@ -103,12 +107,18 @@ def _best_pair(
         else:
             known = [float(np.sum(row[low + 1 : high])) for row in (table.first, table.second)]
         g1, g2 = _fractions(table, low, high, known)
-        miss = max(-g1, g1 - 1, -g2, g2 - 1, 0.0)
+        miss = max(-g1, g1 - 1, -g2, g2 - 1, _left_over(table, low, known[1], g1) if low == high else 0.0, 0.0)
         if miss < worst:
             worst, best = miss, (low, high, g1, g2)
         if miss == 0:
             break
     return best
+
+
+def _left_over(table: Table, i: int, known: float, g: float) -> float:
+    """How far one atom alone, its fraction from the first equation, misses the second; 0 within rounding."""
+    miss = abs(table.targets[1] - known - g * table.second[i]) / (table.targets[0] * np.sum(np.abs(table.second)))
+    return float(miss) if miss > ROUNDING else 0.0
 
 
 def _fractions(table: Table, i: int, j: int, known: list[float]) -> tuple[float, float]:

@@ -18,7 +18,7 @@ from verify.arithmetic.enclosure import Enclosure
 from verify.arithmetic.evaluate import evaluate
 from verify.derivation.certain import sign_at, sign_of_ball
 from verify.derivation.ledger import Grade, Step
-from verify.derivation.positivity import Domain
+from verify.derivation.positivity import Domain, Interval
 from verify.derivation.signs import factors, sign_of
 
 PIECES = 4096
@@ -55,7 +55,7 @@ def monotonicity_step(
         lower, upper = domain.ranges[t]
         statement = f"Q({t}) = {natural} is strictly {word} for {lower} < {t} < {upper}"
         return Step("monotonicity", Grade.PROVED, statement, f"sign of Q'({t}) = {_short(derivative)}"), sign > 0
-    signs = {point: sign_at(derivative, {t: point}) for point in points}
+    signs = {point: sign_at(derivative, {t: point}) for point in [*points, *_far_points(domain.ranges[t])]}
     up = next((point for point, s in signs.items() if s > 0), None)
     down = next((point for point, s in signs.items() if s < 0), None)
     if up is not None and down is not None:
@@ -76,6 +76,19 @@ def _strict_sign(derivative: Expr, domain: Domain) -> int:
             continue
         product *= sign_of(factor, domain)
     return product
+
+
+def _far_points(interval: Interval) -> list[Expr]:
+    """Points of an open interval far out, or near its ends, where a second sign of Q' may hide."""
+    lower, upper = interval
+    sizes = [sp.Integer(10) ** k for k in (2, 4, 7, 12)]
+    if lower.is_infinite and upper.is_infinite:
+        return [sign * size for size in sizes for sign in (1, -1)]
+    if upper.is_infinite:
+        return [lower + size for size in (*sizes, *(1 / size for size in sizes))]
+    if lower.is_infinite:
+        return [upper - size for size in (*sizes, *(1 / size for size in sizes))]
+    return [end + (upper - lower) * part for size in sizes for end, part in ((lower, 1 / size), (upper, -1 / size))]
 
 
 def _polynomial(expr: Expr) -> bool:

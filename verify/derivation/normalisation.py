@@ -178,7 +178,10 @@ def _judge(question: Mass, found: Closed) -> TotalMass:
     for at in question.samples:
         if sign_at(found.value - 1, {question.t: at}):
             statement = f"the {question.word} of the density over its support is {sp.sstr(value)}, not 1"
-            witness = f"at {question.t} = {at} it is {value_text(found.value, {question.t: at})}"
+            seen = value_text(found.value, {question.t: at})
+            witness = f"at {question.t} = {at} it is {seen}"
+            if seen.startswith(("1.000000", "0.999999")):
+                witness += f", off by {value_text(found.value - 1, {question.t: at}, 3)}"
             return TotalMass(Step(NAME, Grade.REFUTED, statement, reason, witness), value)
     places = ", ".join(map(str, question.samples))
     statement = f"the {question.word} of the density is {sp.sstr(value)}, which"

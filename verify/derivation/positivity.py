@@ -183,6 +183,8 @@ def _positive_function(expr: Expr, domain: Domain, depth: int) -> bool:
         return holds(argument - 1)
     if isinstance(expr, sp.cos):
         return holds(sp.pi / 2 - argument) and holds(sp.pi / 2 + argument)
+    if isinstance(expr, (sp.sin, sp.tan)):
+        return holds(argument) and holds((sp.pi if isinstance(expr, sp.sin) else sp.pi / 2) - argument)
     return isinstance(expr, sp.erfc)
 
 
@@ -211,10 +213,12 @@ def _positive_sum(expr: Expr, domain: Domain, depth: int) -> bool:
 
 
 def _positive_by_bounds(expr: Expr) -> bool:
-    """Replace c erf(u) and c tanh(u), u real, by -|c|, which they exceed."""
-    bounded = [f for f in expr.atoms(sp.erf, sp.tanh) if f.args[0].is_real and expr.coeff(f).is_number]
+    """Replace c erf(u), c tanh(u), c sin(u) and c cos(u), u real, by -|c|: the first two exceed it."""
+    bounded = [f for f in expr.atoms(sp.erf, sp.tanh, sp.sin, sp.cos) if f.args[0].is_real and expr.coeff(f).is_number]
     floor = sum((-abs(expr.coeff(f)) - expr.coeff(f) * f for f in bounded), start=expr)
-    return bool(bounded) and not floor.has(*bounded) and bool(floor.is_nonnegative)
+    reached = all(isinstance(f, (sp.sin, sp.cos)) for f in bounded)
+    above = floor.is_positive if reached else floor.is_nonnegative
+    return bool(bounded) and not floor.has(*bounded) and bool(above)
 
 
 def _positive_difference(first: Expr, second: Expr, domain: Domain, depth: int) -> bool:

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Mapping, Sequence
 from dataclasses import dataclass, field
 from decimal import Decimal
@@ -13,6 +14,7 @@ import sympy
 
 from verify.errors import InputError
 from verify.problem.formula import parse_formula
+from verify.problem.functions import FUNCTIONS
 from verify.problem.numbers import Exact, as_expr, exact
 from verify.problem.scan import require_name
 from verify.problem.space import Space, parse_space
@@ -104,6 +106,9 @@ class Density:
         for name in names:
             if names.count(name) > 1:
                 raise InputError(f"the name {name} is used twice", "give each its own name", key="density")
+            if name in FUNCTIONS and re.search(rf"\b{name}\s*\(", str(self.formula or self.kernel or "")):
+                wrong = f"the name {name} stands for a value here, and the formula calls the function {name}"
+                raise InputError(wrong, "give the value another name", key="density")
 
     def _check_finite(self) -> None:
         key = "density.weights" if self.weights is not None else "density.kernel"

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
+from verify.derivation.ledger import Grade
 from verify.report.equations import equation_lines
 from verify.report.layout import field, heading, number
 
@@ -37,6 +38,7 @@ def solution_text(solution: Solution) -> str:
     lines = [
         heading(3, f"Solved to {solution.digits} digits", solution.grade.value),
         field("Optimal", _optimality(solution)),
+        *_direction(solution),
         *cutoff_lines(solution),
     ]
     return "\n".join([*lines, "", *equation_lines(solution)])
@@ -49,9 +51,21 @@ def cutoff_lines(solution: Solution) -> list[str]:
 
 
 def _optimality(solution: Solution) -> str:
-    if len(set(solution.problem.levels)) > 1:
-        return TWO_LEVELS
-    return OPTIMALITY[solution.form.value]
+    optimal = TWO_LEVELS if len(set(solution.problem.levels)) > 1 else OPTIMALITY[solution.form.value]
+    monotone = solution.derivation.step("monotonicity")
+    if monotone is not None and monotone.grade is not Grade.PROVED:
+        return f"{optimal}, among parameter values for which Q is shown to be monotone (see above)"
+    return optimal
+
+
+def _direction(solution: Solution) -> list[str]:
+    """Say why a one-sided test rejects on its side of V."""
+    if solution.rejects not in ("above", "below"):
+        return []
+    t, up = solution.problem.density.parameter, solution.derivation.rising
+    side, size = ("larger" if solution.problem.hypothesis.null_below else "smaller"), solution.rejects == "above"
+    return [field("Side", f"Q({t}) is {'increasing' if up else 'decreasing'}, so a {side} {t} makes V stochastically "
+                  f"{'larger' if size else 'smaller'}")]  # fmt: skip
 
 
 def _rule(solution: Solution) -> str:

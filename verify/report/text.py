@@ -9,6 +9,7 @@ from verify.derivation.ledger import Grade
 from verify.problem.numbers import exact_text
 from verify.report.comparison_text import comparison_text
 from verify.report.layout import field, heading, wrapped
+from verify.report.safe_text import visible
 from verify.report.solution_text import solution_text
 
 if TYPE_CHECKING:
@@ -47,9 +48,9 @@ def run_text(run: CaseRun) -> str:
 
 
 def _title(case: Case) -> str:
-    lines = [case.title or case.name]
+    lines = [visible(case.title or case.name)]
     if case.source:
-        lines.append(wrapped(case.source, first="Source: ", rest="        "))
+        lines.append(wrapped(visible(case.source), first="Source: ", rest="        "))
     return "\n".join(lines)
 
 
