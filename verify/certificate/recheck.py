@@ -943,10 +943,10 @@ def places(low: Number | None, high: Number | None) -> list[Fraction]:
     a, b = (None if x is None else Fraction(sum(ends(x))) / 2 for x in (low, high))
     tiny = Fraction(1, 2**16)
     if a is not None and b is not None:
-        return [a + (b - a) * k for k in (*(Fraction(k, 16) for k in (5, 8, 12, 14)), tiny, 1 - tiny)]
+        return [a + (b - a) * k for k in (*(Fraction(k, 23) for k in (5, 11, 16, 20)), tiny, 1 - tiny)]
     if a is None and b is None:
-        return [Fraction(-1, 3), Fraction(1), Fraction(5, 2), Fraction(4), -1 / tiny, 1 / tiny]
-    steps = [Fraction(3, 4), Fraction(2), Fraction(3), Fraction(4), tiny, 1 / tiny]
+        return [*(Fraction(k, 23) for k in (-7, 25, 58, 90)), -1 / tiny, 1 / tiny]
+    steps = [*(Fraction(k, 23) for k in (17, 43, 68, 90)), tiny, 1 / tiny]
     return [a + s for s in steps] if a is not None else [(b or 0) - s for s in steps]
 
 
@@ -963,6 +963,8 @@ def height(law: Law, y: Number) -> Number:
     if isinstance(law, (Counts, Table)):
         require(isinstance(y, Fraction) and y.denominator == 1, "a lattice statistic off its lattice")
         return law.mass(int(ends(y)[0]))
+    if y == 0 and law.positive:
+        raise UndecidedError("a place looked at where the statistic touches the end of its law")
     require(not law.positive or less(0, y), "a statistic outside the support of its law")
     return law.density(y)
 
