@@ -6,7 +6,8 @@
 | logarithm of a whole number | convolution over products (:mod:`verify.laws.multiplicative`) |
 | continuous, one observation | quadrature of the density (:mod:`verify.laws.continuous`) |
 | continuous, several observations | inversion of the transform, where its decay is known
-(:mod:`verify.laws.inversion`) |
+(:mod:`verify.laws.inversion`); else convolution of a polynomial near an analytic density
+(:mod:`verify.laws.convolution`) |
 
 Any other is left undecided, with what would help.
 """
