@@ -118,7 +118,7 @@ WHOLE = {
     "poisson outside", "binomial interval", "negative binomial point", "gamma point", "power above", "normal outside",
     "inverse Gaussian interval", "table point", "kernel above", "truncated outside",
 }  # fmt: skip
-"""Every change of these (each law, each form); of the others, which repeat their structure, every eighth."""
+"""Every change of these (each law, each form); of the others, which repeat their structure, every twentieth."""
 
 
 @pytest.mark.parametrize("name", NAMES)
@@ -127,7 +127,7 @@ def test_every_change_of_one_field_is_rejected(maker: ModuleType, short: dict[st
     assert status(maker, predicate) == 0
     changes = mutate().mutations(predicate)
     if name not in WHOLE:
-        changes = islice(changes, NAMES.index(name) % 8, None, 8)
+        changes = islice(changes, NAMES.index(name) % 20, None, 20)
     accepted = [label for label, changed in changes if status(maker, changed) == 0]
     assert [label for label in accepted if not allowed(name, label)] == []
 

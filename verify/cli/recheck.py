@@ -15,7 +15,7 @@ VERDICTS = {
     0: "accepted",
     1: "rejected",
     2: "malformed",
-    3: "over the limit",
+    3: "undecided, or over the limit",
     4: "accepted, numbers on trust",
 }
 """What each exit status of the checker means."""
