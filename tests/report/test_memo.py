@@ -78,3 +78,13 @@ def test_blocks() -> None:
     page = "".join(html(blocks, "t & u"))
     assert "<title>t &amp; u</title>" in page
     assert '<p class="strong">x &lt; y</p>' in page
+
+
+def test_a_claim_without_fractions_is_shown_the_right_ones(tmp_path) -> None:
+    table = tmp_path / "t.csv"
+    header = Path(TABLE).read_text("utf-8").splitlines()[0]
+    table.write_text(f"{header}\nF1,lot-release,90,110,,,,,,,\n")
+    assert main(["review", CASE, str(table), "--memo", str(tmp_path / "m.md")]) == 1
+    text = (tmp_path / "m.md").read_text("utf-8")
+    assert "| gamma1 | not printed | 0.086714664601 |" in text
+    assert "| Row 2 (F1) | differs | no slip found |" in text

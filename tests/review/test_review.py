@@ -214,3 +214,18 @@ def test_a_cutoff_outside_the_support_leaves_a_one_sided_test() -> None:
     assert verdict.verdict == "differs"
     assert float(verdict.consequences.expectations[0].value.mid) == pytest.approx(stats.gamma(5).cdf(6.9))
     assert verdict.consequences.size.value.upper == 1
+
+
+def test_a_window_off_the_support_never_rejects() -> None:
+    """A sum of 12 counts that begin at 1 is at least 12: a window at 2 and 3, as for one count, rejects nowhere."""
+    clumps = Density("p*(1-p)**(x-1)", variable="x", support="integers >= 1", parameter="p", space="0 < p < 1")
+    verdict = judged(clumps, "p <= 0.3 or p >= 0.6", "0.05", 12, c1="2", c2="3", gamma1="0.16865", gamma2="0.09921")
+    result = verdict.consequences
+    assert (result.level_kept, result.size.value.upper) == (True, 0)
+    assert slips(verdict) == ["n-left-out"]
+
+
+def test_a_right_number_that_was_not_printed_agrees_when_it_is_printed() -> None:
+    """Fractions asked of a colleague who gave none are rounded, not cut off."""
+    given = judged(*LOT, c1="94", c2="103").correct_printed
+    assert judged(*LOT, **given).verdict == "agrees"

@@ -106,7 +106,7 @@ class Memo:
 
 
 def _overview(record: dict[str, Any]) -> list[str]:
-    reason = ", ".join(record["slips"]) or ("passed over" if record["error"] is not None else "none")
+    reason = ", ".join(record["slips"]) or ("passed over" if record["error"] is not None else "no slip found")
     return [row_title(record), kind_of(record), reason]
 
 

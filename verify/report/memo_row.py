@@ -58,6 +58,9 @@ def _number_rows(record: dict[str, Any]) -> list[list[str]]:
         flag = " (binary cell)" if name in record["binary"] else ""
         right = record["correct_printed"].get(name, "none")
         rows.append([name, printed + flag, right, remark, _proved(record["correct_reported"].get(name))])
+    for name, right in record["correct_printed"].items():
+        if name not in record["claimed"]:
+            rows.append([name, "not printed", right, "", _proved(record["correct_reported"].get(name))])
     return rows
 
 

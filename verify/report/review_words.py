@@ -24,6 +24,8 @@ def consequence_sentences(result: Record, parameter: str) -> Iterator[str]:
         yield (
             f"Its true size over the whole null is {between(result['size'])}, {where}: {KEPT[result['level_kept']]}."
         )
+    else:
+        yield f"Its true size over the whole null stayed open: {KEPT[result['level_kept']]}."
     if result["power_lost"]:
         yield _loss(result, parameter)
 
@@ -57,10 +59,10 @@ def sentence(text: str) -> str:
 
     Examples
     --------
-    >>> sentence("the level is kept"), sentence("f = h(x) exp(Q T - A)")
-    ('The level is kept.', 'f = h(x) exp(Q T - A).')
+    >>> sentence("the level is kept"), sentence("a cutoff is"), sentence("f = h(x) exp(Q T - A)")
+    ('The level is kept.', 'A cutoff is.', 'f = h(x) exp(Q T - A).')
     """
-    head = text[:1].upper() if text[1:2].isalpha() else text[:1]
+    head = text[:1].upper() if text[1:2].isalpha() or text.startswith("a ") else text[:1]
     return head + text[1:] + ("" if text.endswith(".") else ".")
 
 

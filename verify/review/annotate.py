@@ -3,8 +3,10 @@
 from __future__ import annotations
 
 from collections.abc import Iterable, Iterator, Sequence
+from fractions import Fraction
 from pathlib import Path
 
+from verify.arithmetic.enclosure import Enclosure
 from verify.review.cells import Table
 from verify.review.record import Record, kind_of
 
@@ -45,10 +47,9 @@ def added_cells(record: Record, numbers: Sequence[str]) -> list[str]:
     ]
 
 
-def _short(lower: str, upper: str, places: int = 8) -> str:
-    """A number whose enclosure is far narrower than what is shown; both ends where it is not."""
-    shown = f"{float(lower):.{places}f}", f"{float(upper):.{places}f}"
-    return shown[0] if shown[0] == shown[1] else f"{shown[0]} to {shown[1]}"
+def _short(lower: str, upper: str, digits: int = 8) -> str:
+    """A number with no digit that its enclosure does not guarantee; both ends where it is wide."""
+    return Enclosure(Fraction(lower), Fraction(upper)).text(digits)
 
 
 def write_annotated(table: Table, out: Path, records: Iterable[Record], numbers: Sequence[str]) -> None:

@@ -127,10 +127,27 @@ def read_printed(value: str | int | Fraction | Decimal, key: str = "", *, binary
 
 
 def rounded(true: Enclosure, like: Printed | None, digits: int = 12) -> str:
-    """Write a true number to as many digits as the printed one has, correctly rounded (of a tie: to even)."""
+    """Write a true number to as many digits as the printed one has, correctly rounded (of a tie: to even).
+
+    Examples
+    --------
+    >>> rounded(Enclosure.of(Fraction(2, 3)), read_printed("0.5")), rounded(Enclosure.of(Fraction(2, 3)), None, 4)
+    ('0.7', '0.6667')
+    """
     if like is None or like.places is None:
-        return true.text(digits)
+        return _significant(true, digits)
     scaled = true.mid / Fraction(10) ** -like.places
     whole = Decimal(round(scaled))
     size = Context(prec=len(whole.as_tuple().digits) + like.places + 2, rounding=ROUND_HALF_EVEN)
     return format(whole.scaleb(-like.places, size), "f")
+
+
+def _significant(true: Enclosure, digits: int) -> str:
+    """A true number rounded to so many significant digits; what is guaranteed of it, where that is less."""
+    lower, upper = (
+        Context(prec=digits, rounding=ROUND_HALF_EVEN).divide(Decimal(end.numerator), Decimal(end.denominator))
+        for end in (true.lower, true.upper)
+    )
+    if lower != upper or (true.exact and true.lower.denominator == 1):
+        return true.text(digits)
+    return Enclosure.of(Fraction(lower)).text(digits)

@@ -180,8 +180,14 @@ def _of_a_hill(curve: PowerCurve, low: Exact | None, high: Exact | None, level: 
 
 
 def _is_constant(curve: PowerCurve) -> bool:
-    """Whether the test rejects with one probability whatever is observed: nowhere, or on two atoms alike."""
+    """Whether the test rejects with one probability whatever is observed.
+
+    Nowhere, when its window is empty or lies off the support; or on two atoms alike.
+    """
     test = curve.test
+    low, high = curve.setting.laws[0].support
+    if test.phi1 is not None and ((low is not None and test.c2 < low) or (high is not None and test.c1 > high)):
+        return True
     if test.phi1 is None or test.phi1 != test.phi2:
         return False
     nowhere = test.region == "inside" and test.c1 == test.c2 and test.phi1 == Enclosure.of(0)
