@@ -106,3 +106,13 @@ STARTS = {
     "Pow": lambda c: [mpmath.sqrt(c), -mpmath.sqrt(c)],
 }
 """Where T(x) = c, for the statistics of these densities."""
+
+
+def test_close_cutoffs_are_told_apart_in_what_is_printed():
+    """At a level of 1e-200 the window is about 1e-200 wide: the printed digits must still determine it."""
+    solution = solved("normal mean", "t <= 0 or t >= 1", "1e-200", 4, digits=20)
+    texts = [end.text(solution.cutoff_digits) for end in (solution.c1, solution.c2)]
+    assert texts[0] != texts[1]
+    width = solution.c2.mid - solution.c1.mid
+    assert solution.c1.radius < width / 10**20
+    assert abs(Fraction(texts[1]) - Fraction(texts[0]) - width) < width / 10**18

@@ -82,7 +82,7 @@ def cutoffs_json(solution: Solution) -> dict[str, dict[str, str]]:
     """Write the cutoffs and fractions that the form of the test has."""
     named = {name: getattr(solution, name) for name in ("c", "gamma", "c1", "c2", "gamma1", "gamma2")}
     return {
-        name: enclosure_json(value, solution.digits) for name, value in named.items() if value is not None
+        name: enclosure_json(value, solution.digits_of(name)) for name, value in named.items() if value is not None
     }
 
 

@@ -46,7 +46,7 @@ def solution_text(solution: Solution) -> str:
 
 def cutoff_lines(solution: Solution) -> list[str]:
     """Return the rule of the test and its numbers, a line each."""
-    numbers = [number(name, value.text(solution.digits), 6) for name, value in named_numbers(solution)]
+    numbers = [number(name, value.text(solution.digits_of(name)), 6) for name, value in named_numbers(solution)]
     return [field("Test", _rule(solution)), "", *numbers]
 
 

@@ -14,7 +14,7 @@ from dataclasses import dataclass
 from fractions import Fraction
 from typing import Any
 
-from verify.arithmetic.ball import accuracy_bits, around, balls, midpoint, min_abs, to_enclosure
+from verify.arithmetic.ball import accuracy_bits, around, balls, midpoint, min_abs, radius, to_enclosure
 from verify.arithmetic.enclosure import Enclosure
 from verify.errors import UndecidedError
 from verify.solution.conditions import Conditions, Row, improved_start, linear_system, solve_two_by_two
@@ -225,7 +225,7 @@ def solve_continuous_window(search: ContinuousSearch, digits: int) -> Window:
         with balls(bits) as A:
             target, whole = conditions.targets(A), conditions.whole(A, *centre)
             box = _sharpen(conditions, A, centre, box, (target[0] - whole[0], target[1] - whole[1]))
-            reached = min(accuracy_bits(end) for end in box) if box is not None else 0
+            reached = _reached(box) if box is not None else 0
             if box is not None:
                 if reached >= wanted:
                     sides = _left_hand_sides(conditions, A, centre, box, whole)
@@ -250,6 +250,14 @@ def _sharpen(conditions: Conditions, A: Any, centre: Ends, box: Ends | None, lac
     if image is None:
         return box
     return box[0].intersection(image[0]), box[1].intersection(image[1])
+
+
+def _reached(box: Ends) -> int:
+    """Bits to which the ends are known, of their own size and of the window's width: two close ends are told apart."""
+    width = midpoint(box[1]) - midpoint(box[0])
+    sizes = [min_abs(midpoint(end), width) for end in box]
+    bits = [accuracy_bits(around(size, radius(end))) for size, end in zip(sizes, box, strict=True) if size != 0]
+    return min(bits, default=0)
 
 
 def _next_bits(bits: int, reached: int, wanted: int) -> int:

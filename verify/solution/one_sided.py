@@ -25,6 +25,8 @@ from verify.solution.start import Rough, upper_point
 
 MOST_ROUNDS = 200
 BISECTIONS = 60
+NEWTON_EVERY = 6
+"""Bisections between two attempts of Newton's method, which an expensive law needs soon."""
 
 
 @dataclass(frozen=True)
@@ -204,13 +206,26 @@ class TailProblem:
             return bool(self.beyond(A, midpoint(coordinate.place(A, A.real(u)))).mid() < level)
 
         inner, outer = self._bracket(Fraction(rough.mean + self.outward * z * rough.spread), rough.spread, enough)
-        for _ in range(BISECTIONS):
+        for round_ in range(BISECTIONS):
             middle = (inner + outer) / 2
             inner, outer = (inner, middle) if enough(middle) else (middle, outer)
-        centre = midpoint(coordinate.place(A, A.real((inner + outer) / 2)))
-        for _ in range(int(math.log2(self.prec)) + 2):
+            if round_ % NEWTON_EVERY == NEWTON_EVERY - 1:
+                centre = self._newton(A, midpoint(coordinate.place(A, A.real((inner + outer) / 2))))
+                if centre is not None:
+                    return centre
+        return midpoint(coordinate.place(A, A.real((inner + outer) / 2)))
+
+    def _newton(self, A: Any, centre: Any) -> Any | None:
+        """Newton steps from a place; None when they do not shrink from one to the next until they are lost in noise."""
+        previous = None
+        for _ in range(int(math.log2(self.prec)) + 4):
             step = (A.real(self.level) - self.beyond(A, centre)) / self.law.density(A, centre)
-            centre = midpoint(centre - self.outward * step)
+            size = abs(step).mid()
+            if not step.is_finite() or (previous is not None and not size < previous / 2 and not step.contains(0)):
+                return None
+            centre, previous = midpoint(centre - self.outward * step), size
+            if step.contains(0):
+                return centre
         return centre
 
     def _bracket(self, start: Fraction, spread: float, enough: Callable[[Fraction], bool]) -> tuple[Fraction, Fraction]:

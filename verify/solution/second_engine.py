@@ -26,6 +26,7 @@ from verify.solution.window import rough_laws
 
 GUARD_DIGITS = 20
 NEWTON_STEPS = 60
+DIGITS_PER_BIT = 0.302
 
 
 def second_engine(solution: Solution) -> dict[str, int]:
@@ -48,7 +49,7 @@ def second_engine(solution: Solution) -> dict[str, int]:
     """
     if solution.laws[0].name not in CLOSED_FORMS:
         raise UndecidedError("only laws with a closed form are evaluated in mpmath")
-    A = High(solution.digits + GUARD_DIGITS)
+    A = High(max(solution.digits, int(solution.prec * DIGITS_PER_BIT)) + GUARD_DIGITS)
     names = ("gamma",) if solution.laws[0].lattice else ("c",)
     proven = {
         name: value
@@ -98,7 +99,8 @@ def _window(solution: Solution, A: High) -> tuple[Any, ...]:
             return share, share
         return end_fractions(conditions, A, critical.c1, critical.c2)
     sign = -1 if conditions.outside else 1
-    c1, c2 = (_start(A, end) for end in (critical.c1, critical.c2))
+    width = abs(A.real(critical.c2.mid) - A.real(critical.c1.mid))
+    c1, c2 = (_start(A, end, width) for end in (critical.c1, critical.c2))
     for _ in range(NEWTON_STEPS):
         left, right = end_fractions(conditions, A, c1, c2)
         c1, c2 = c1 - sign * left, c2 + sign * right
@@ -129,9 +131,11 @@ def _tail(solution: Solution, A: High) -> tuple[Any, ...]:
     raise UndecidedError("Newton's method in mpmath did not settle")
 
 
-def _start(A: High, end: Enclosure) -> Any:
-    """The proven cutoff cut to 15 digits: where a colleague's double would stand."""
-    return A.mp.mpf(A.mp.nstr(A.real(end.mid), 15))
+def _start(A: High, end: Enclosure, width: Any = None) -> Any:
+    """The proven cutoff cut to 15 digits (of the window's width, where that is less): where a double would stand."""
+    place = A.real(end.mid)
+    extra = 0 if not width or abs(place) <= width else int(A.mp.log10(abs(place) / width)) + 1
+    return A.mp.mpf(A.mp.nstr(place, 15 + extra))
 
 
 def _on_scale(solution: Solution, A: High, c: Any) -> Any:

@@ -174,6 +174,18 @@ class Solution(Shown):
         ]
         return "\n".join(lines)
 
+    @cached_property
+    def cutoff_digits(self) -> int:
+        """Digits in which to write a cutoff: those asked for, and more where c1 and c2 would look alike in them."""
+        if self.c1 is None or self.c2 is None or self.c1.exact or self.c1.mid == self.c2.mid:
+            return self.digits
+        ratio = max(abs(self.c1.mid), abs(self.c2.mid)) / (self.c2.mid - self.c1.mid)
+        return self.digits + max(0, (ratio.numerator.bit_length() - ratio.denominator.bit_length()) * 3 // 10)
+
+    def digits_of(self, name: str) -> int:
+        """Digits in which to write a number of the test, by its name."""
+        return self.cutoff_digits if name.startswith("c") else self.digits
+
     @property
     def expectations(self) -> tuple[Enclosure, ...]:
         """Left-hand sides of the side conditions."""
