@@ -8,7 +8,7 @@ from typing import TYPE_CHECKING, Any
 from verify.arithmetic.ball import balls, to_enclosure
 from verify.arithmetic.enclosure import Enclosure, decimal_text
 from verify.problem.numbers import exact_text
-from verify.report.layout import wrapped
+from verify.report.layout import short_exact, wrapped
 from verify.solution.conditions import interior
 
 if TYPE_CHECKING:
@@ -72,13 +72,13 @@ def closeness(condition: SideCondition) -> str:
     """
     target, found = condition.target, condition.expectation
     if not isinstance(target, Fraction):
-        return f"{exact_text(target)}, enclosed with a radius of {decimal_text(found.radius, 2, up=True)}"
+        return f"{short_exact(target)}, enclosed with a radius of {decimal_text(found.radius, 2, up=True)}"
     if found.exact and found.lower == target:
-        return f"{exact_text(target)} exactly"
+        return f"{short_exact(target)} exactly"
     off = max(abs(found.lower - target), abs(found.upper - target))
     if not found.contains(target):
-        return f"{found.text(SHOWN)}, which is not {exact_text(target)}"
-    return f"{exact_text(target)}, enclosed within {decimal_text(off, 2, up=True)} of it"
+        return f"{found.text(SHOWN)}, which is not {short_exact(target)}"
+    return f"{short_exact(target)}, enclosed within {decimal_text(off, 2, up=True)} of it"
 
 
 def _numbers(solution: Solution, law: Law) -> str:

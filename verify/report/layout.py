@@ -7,6 +7,14 @@ from __future__ import annotations
 
 import textwrap
 from collections.abc import Iterable
+from fractions import Fraction
+from typing import TYPE_CHECKING
+
+from verify.arithmetic.enclosure import decimal_text
+from verify.problem.numbers import exact_text
+
+if TYPE_CHECKING:
+    from verify.problem.numbers import Exact
 
 WIDTH = 88
 LABEL = 14
@@ -79,3 +87,19 @@ def table(rows: Iterable[Iterable[str]], indent: int = 2) -> str:
     widths = [max(len(cell) for cell in column) for column in zip(*cells, strict=True)]
     lines = ["  ".join(cell.ljust(width) for cell, width in zip(row, widths, strict=True)) for row in cells]
     return "\n".join((" " * indent + line).rstrip() for line in lines)
+
+
+def short_exact(value: Exact) -> str:
+    """Write an exact number, a rational one as a decimal where that is just as exact and shorter.
+
+    Examples
+    --------
+    >>> short_exact(Fraction(1, 20)), short_exact(Fraction(1, 10**200)), short_exact(Fraction(1, 3))
+    ('1/20', '1e-200', '1/3')
+    """
+    text = exact_text(value)
+    if isinstance(value, Fraction):
+        decimal = decimal_text(value, 15, up=False)
+        if len(decimal) < len(text) and Fraction(decimal) == value:
+            return decimal
+    return text

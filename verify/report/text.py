@@ -8,7 +8,7 @@ from typing import TYPE_CHECKING
 from verify.derivation.ledger import Grade
 from verify.problem.numbers import exact_text
 from verify.report.comparison_text import comparison_text
-from verify.report.layout import field, heading, wrapped
+from verify.report.layout import field, heading, short_exact, wrapped
 from verify.report.safe_text import visible
 from verify.report.solution_text import solution_text
 
@@ -84,9 +84,9 @@ def _space(density: Density) -> str:
 
 def _levels(problem: Problem) -> str:
     if len(set(problem.levels)) == 1:
-        return exact_text(problem.levels[0])
+        return short_exact(problem.levels[0])
     t, pairs = problem.density.parameter, zip(problem.levels, problem.hypothesis.limits, strict=True)
-    return ", ".join(f"{exact_text(level)} at {t} = {exact_text(limit)}" for level, limit in pairs)
+    return ", ".join(f"{short_exact(level)} at {t} = {exact_text(limit)}" for level, limit in pairs)
 
 
 def _formula(density: Density) -> str:
