@@ -229,3 +229,9 @@ def test_a_right_number_that_was_not_printed_agrees_when_it_is_printed() -> None
     """Fractions asked of a colleague who gave none are rounded, not cut off."""
     given = judged(*LOT, c1="94", c2="103").correct_printed
     assert judged(*LOT, **given).verdict == "agrees"
+
+
+def test_a_fraction_of_0_or_1_is_no_rounded_fraction() -> None:
+    """0.0867 is not "0" and 0.5147 is not "1": a test that never, or always, rejects at a cutoff is another test."""
+    assert judged(*LOT, c1="94", c2="103", gamma1="0", gamma2="1").verdict == "differs"
+    assert judged(*LOT, c1="94", c2="103", gamma1="0.1", gamma2="0.5").verdict == "agrees"

@@ -49,12 +49,21 @@ class Claim:
         ----------
         step : Fraction or None
             Distance of support points on the scale printed; None where the law is continuous or the
-            distance irrational.
+            distance irrational. For a one-sided claim it points (by its sign) to the side that is rejected.
         inside : bool
-            Whether the window is the part that the fractions count for.
+            Whether the window (the side that is rejected) is the part that the fractions count for.
+
+        Examples
+        --------
+        >>> claim = read_claim({"c": 8, "gamma": 0}, Style(), Form.ONE_SIDED)
+        >>> [{name: number.text for name, number in form.items()} for form in claim.variants(Fraction(1), True)]
+        [{'c': '8', 'gamma': '0'}, {'c': '9', 'gamma': '1'}]
         """
         yield self.numbers
-        if step is None or "c1" not in self.numbers:
+        if step is None:
+            return
+        if "c1" not in self.numbers:
+            yield from (dict(self.numbers) | moved for moved in _end(self.numbers, "c", "gamma", step, inside) if moved)
             return
         for first in _end(self.numbers, "c1", "gamma1", step, inside):
             for second in _end(self.numbers, "c2", "gamma2", -step, inside):
@@ -93,6 +102,9 @@ def _one_atom(merged: dict[str, Printed], first: dict[str, Printed], second: dic
 def read_claim(given: Mapping[str, Any], style: Style, form: Form) -> Claim:
     """Read the printed numbers of a claim.
 
+    A fraction printed as a bare 0 or 1, with no decimals, says nothing about rounding: it has as many decimals as
+    the other fraction beside it (a spreadsheet drops zeros), and is exactly 0 or 1 where that has none either.
+
     Parameters
     ----------
     given : mapping
@@ -127,11 +139,21 @@ def read_claim(given: Mapping[str, Any], style: Style, form: Form) -> Claim:
             raise InputError(f"{name} is missing", f"give {', '.join(wanted)}", key=name)
     numbers = {name: _printed(present[name], name) for name in wanted if name in present}
     _check(numbers)
-    return Claim(numbers, style)
+    return Claim(_bare_fractions_read(numbers), style)
 
 
 def _printed(value: Any, name: str) -> Printed:
-    return value if isinstance(value, Printed) else read_printed(value, name)
+    printed = value if isinstance(value, Printed) else read_printed(value, name)
+    never_or_always = name.startswith("gamma") and printed.unit == 1  # a probability is not rounded to a whole number
+    return replace(printed, unit=None) if never_or_always else printed
+
+
+def _bare_fractions_read(numbers: dict[str, Printed]) -> dict[str, Printed]:
+    """The numbers with each bare 0 or 1 among the fractions read as :func:`read_claim` says."""
+    fractions = {name: number for name, number in numbers.items() if name.startswith("gamma")}
+    bare = {name for name, number in fractions.items() if number.unit is not None and number.unit >= 1}
+    unit = next((number.unit for name, number in fractions.items() if name not in bare), None)
+    return numbers | {name: replace(fractions[name], unit=unit) for name in bare}
 
 
 def _check(numbers: dict[str, Printed]) -> None:
