@@ -1,6 +1,7 @@
 """Planning: sample sizes and decisions."""
 
 from fractions import Fraction
+from itertools import pairwise
 
 import exhaustive
 import pytest
@@ -37,14 +38,14 @@ def test_smallest_sample_against_exact_fractions():
 def test_power_never_falls_with_n():
     plan = planner("poisson", "t <= 2 or t >= 4", "0.05", "3")
     powers = [plan.power(n) for n in range(1, 15)]
-    assert all(later.upper >= earlier.lower for earlier, later in zip(powers, powers[1:], strict=False))
+    assert all(later.upper >= earlier.lower for earlier, later in pairwise(powers))
 
 
 def test_scan_without_randomisation_sees_the_saw():
     """The conservative power is not monotone, so the first n that reaches a power may not keep it."""
     plan = planner("bernoulli", "t <= 1/2", "1/20", "4/5")
     powers = [float(plan.power_without_randomisation(n).mid) for n in range(1, 31)]
-    assert any(later < earlier for earlier, later in zip(powers, powers[1:], strict=False))
+    assert any(later < earlier for earlier, later in pairwise(powers))
     scan = plan.without_randomisation("0.7", 30)
     above = [n for n, power in enumerate(powers, start=1) if power >= 0.7]
     assert scan.first == above[0]

@@ -1,7 +1,7 @@
 """Planning: how many observations, how many decimals, and what an observed statistic decides.
 
-Source: Lehmann and Romano 2005, section 3.2: the power of a most powerful test of n observations is at least that of n - 1,
-since one may be ignored; so "n suffices and n - 1 does not" is provable by two enclosures.
+Source: Lehmann and Romano 2005, section 3.2: the power of a most powerful test of n observations is at least
+that of n - 1, since one may be ignored; so "n suffices and n - 1 does not" is provable by two enclosures.
 """
 
 from __future__ import annotations
@@ -127,7 +127,7 @@ class Planner:
             if high >= largest:
                 raise InputError(
                     f"the power at n = {largest} is still below {goal}",
-                    "ask for less power, for an alternative further from the null, or for a larger --largest", key="power",
+                    "ask for less power, an alternative further from the null, or a larger --largest", key="power",
                 )  # fmt: skip
             low, high = high, min(2 * high, largest)
         while high - low > 1:

@@ -16,6 +16,8 @@ from verify.arithmetic.enclosure import Enclosure, decimal_text
 from verify.arithmetic.evaluate import evaluate
 from verify.errors import SidecheckError
 
+share = st.fractions(Fraction(1, 50), Fraction(49, 50), max_denominator=50)
+size = st.fractions(Fraction(1, 3), 60, max_denominator=6)
 rational = st.fractions(min_value=-(10**6), max_value=10**6, max_denominator=10**6)
 
 
@@ -60,7 +62,11 @@ def test_an_enclosure_prints_no_digit_it_does_not_guarantee(x, width, digits):
         cut = Fraction(text)
         exponent = len(re.sub(r"e.*", "", text).partition(".")[2]) - int((re.findall(r"e(-?\d+)", text) or [0])[0])
         unit = Fraction(10) ** -exponent
-        assert enclosure.exact or abs(cut) <= abs(enclosure.lower) < abs(cut) + unit or abs(cut) <= abs(enclosure.upper) < abs(cut) + unit
+        assert (
+            enclosure.exact
+            or abs(cut) <= abs(enclosure.lower) < abs(cut) + unit
+            or abs(cut) <= abs(enclosure.upper) < abs(cut) + unit
+        )
 
 
 def test_tiny_balls_become_rationals_of_sensible_size():
@@ -70,8 +76,7 @@ def test_tiny_balls_become_rationals_of_sensible_size():
     assert 0 < tiny.upper < Fraction(1, 10**1000)
 
 
-@given(st.fractions(Fraction(1, 50), Fraction(49, 50), max_denominator=50), st.fractions(Fraction(1, 3), 60, max_denominator=6),
-       st.fractions(Fraction(1, 3), 60, max_denominator=6))  # fmt: skip
+@given(share, size, size)
 def test_incomplete_beta_agrees_with_arb_and_reflects(x, a, b):
     with balls(128) as A:
         value = incomplete_beta(A.real(x), a, b, 128)
@@ -79,7 +84,9 @@ def test_incomplete_beta_agrees_with_arb_and_reflects(x, a, b):
         assert (value + incomplete_beta(1 - A.real(x), b, a, 128)).overlaps(arb(1))
 
 
-@pytest.mark.parametrize(("a", "b", "x", "prec"), [(3001, 7000, Fraction(3, 10), 2048), (10**5, 10**5, Fraction(4999, 10000), 1 << 14)])
+@pytest.mark.parametrize(
+    ("a", "b", "x", "prec"), [(3001, 7000, Fraction(3, 10), 2048), (10**5, 10**5, Fraction(4999, 10000), 1 << 14)]
+)
 def test_incomplete_beta_where_a_library_hangs(a, b, x, prec):
     with balls(prec) as A:
         value = incomplete_beta(A.real(x), a, b, prec)

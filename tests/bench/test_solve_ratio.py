@@ -1,7 +1,7 @@
 """A warm solve against the ball evaluations that its proof needs, and against trying all pairs in doubles.
 
-Run by hand: ``pytest -m bench -s tests/bench/test_solve_ratio.py``. Ratios of minima measured in one run; nothing is asserted
-of the times.
+Run by hand: ``pytest -m bench -s tests/bench/test_solve_ratio.py``. Ratios of minima measured in one run;
+nothing is asserted of the times.
 """
 
 import time
@@ -43,7 +43,9 @@ def solve_warm(laws: tuple[Law, ...], outside: bool) -> Window:
 def proof_evaluations(laws: tuple[Law, ...], window: Window) -> None:
     """Two cdf differences and four masses (or densities)."""
     with balls(BITS) as A:
-        c1, c2 = ((window.c1, window.c2) if laws[0].lattice else (A.interval(window.c1).mid(), A.interval(window.c2).mid()))
+        c1, c2 = (
+            (window.c1, window.c2) if laws[0].lattice else (A.interval(window.c1).mid(), A.interval(window.c2).mid())
+        )
         for law in (laws[0], laws[-1]):
             _ = law.cdf(A, c2) - law.cdf(A, c1)
             law.density(A, c1)
@@ -51,7 +53,7 @@ def proof_evaluations(laws: tuple[Law, ...], window: Window) -> None:
 
 
 def all_pairs(low: float, high: float) -> int:
-    """Every pair of cutoffs of a Poisson outside null in NumPy doubles: how many pairs have both fractions in [0, 1]."""
+    """Every pair of cutoffs of a Poisson outside null in doubles: how many have both fractions in [0, 1]."""
     spread = 8 * high**0.5
     k = np.arange(max(0, int(low - spread)), int(high + spread))
     p, q = stats.poisson.pmf(k, low), stats.poisson.pmf(k, high)
@@ -78,12 +80,14 @@ def test_report_ratios() -> None:
     for laws in PROBLEMS:
         for outside, used in ((False, laws), (True, laws), (True, laws[:1])):
             window = solve_warm(used, outside)
-            ratio = best(lambda u=used, o=outside: solve_warm(u, o)) / best(lambda u=used, w=window: proof_evaluations(u, w))
+            ratio = best(lambda u=used, o=outside: solve_warm(u, o)) / best(
+                lambda u=used, w=window: proof_evaluations(u, w)
+            )
             form = ("point null" if len(used) == 1 else "interval null") if outside else "outside null"
             print(f"{laws[0]!s:60} {form:14} solve / proof evaluations = {ratio:.1f}")
     for m in (100, 1000, 4000):
         low, high = m - 2 * round(m**0.5), m + 2 * round(m**0.5)
         laws = (Poisson(Fraction(low)), Poisson(Fraction(high)))
-        ratio = best(lambda: all_pairs(low, high)) / best(lambda u=laws: solve_warm(u, False))
+        ratio = best(lambda a=low, b=high: all_pairs(a, b)) / best(lambda u=laws: solve_warm(u, False))
         print(f"Poisson mean {m}: all pairs in doubles / our proved solve = {ratio:.1f}")
     assert all_pairs(80, 120) >= 1

@@ -12,7 +12,9 @@ CASE = str(ROOT / "casebook" / "demo" / "lot-release.case.toml")
 
 
 def run(*words: str) -> subprocess.CompletedProcess[str]:
-    return subprocess.run([sys.executable, "-m", "verify", *words], capture_output=True, text=True, cwd=ROOT, check=False)
+    return subprocess.run(
+        [sys.executable, "-m", "verify", *words], capture_output=True, text=True, cwd=ROOT, check=False
+    )
 
 
 def schema(name: str) -> dict:

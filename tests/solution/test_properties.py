@@ -96,7 +96,11 @@ def mean_of_phi(solution, formula, t) -> float:
     f = sympy.lambdify(x, here, "mpmath")
     value = sympy.lambdify(symbol, statistic, "mpmath")
     c1, c2 = (mpmath.mpf(c.mid.numerator) / c.mid.denominator for c in (solution.c1, solution.c2))
-    ends = sorted(mpmath.findroot(lambda v, c=c: value(v) - c, start) for c in (c1, c2) for start in STARTS[statistic.func.__name__](c))
+    ends = sorted(
+        mpmath.findroot(lambda v, c=c: value(v) - c, start)
+        for c in (c1, c2)
+        for start in STARTS[statistic.func.__name__](c)
+    )
     return float(sum(mpmath.quad(f, pair) for pair in zip(ends[::2], ends[1::2], strict=True)))
 
 

@@ -31,12 +31,18 @@ def masses(table: list[int], t: Fraction, n: int) -> dict[int, Fraction]:
 @given(weights, st.sampled_from([(1, 2), (Fraction(1, 3), 3)]), levels, st.integers(1, 3), st.booleans())
 def test_a_table_of_weights(table, limits, level, n, outside):
     density = Density(
-        weights=[str(w) for w in table], variable="x", support=f"integers 0..{len(table) - 1}", parameter="t", space="t > 0"
+        weights=[str(w) for w in table],
+        variable="x",
+        support=f"integers 0..{len(table) - 1}",
+        parameter="t",
+        space="t > 0",
     )
     low, high = map(Fraction, limits)
     null = f"{low} <= t <= {high}" if outside else f"t <= {low} or t >= {high}"
     try:
-        solution = solve(Problem(density, null=null, alpha=str(level), n=n), digits=20, derivation=derivation(density, table))
+        solution = solve(
+            Problem(density, null=null, alpha=str(level), n=n), digits=20, derivation=derivation(density, table)
+        )
     except InputError:
         assume(False)
     laws = masses(table, low, n), masses(table, high, n)

@@ -1,0 +1,1 @@
+"""Balls, mpmath numbers and exact fractions behind one small set of functions."""

@@ -1,10 +1,11 @@
 """The regularised incomplete beta function in balls, by series of positive terms.
 
-Arb's own routines for it take, at some precisions and arguments, a thousand times longer than at their neighbours. These series do
-not: every term is positive, the ratio of neighbouring terms is known, and the rest is bounded by a geometric series.
+Arb's own routines for it take, at some precisions and arguments, a thousand times longer than at their
+neighbours. These series do not: every term is positive, the ratio of neighbouring terms is known, and the
+rest is bounded by a geometric series.
 
-Source: DLMF 8.17.8 (I_x(a,b) as x^a (1-x)^b / (a B(a,b)) times 2F1(a+b, 1; a+1; x)), 15.8.1 (its transformation, a polynomial when
-b is whole) and 8.17.4 (reflection).
+Source: DLMF 8.17.8 (I_x(a,b) as x^a (1-x)^b / (a B(a,b)) times 2F1(a+b, 1; a+1; x)), 15.8.1 (its
+transformation, a polynomial when b is whole) and 8.17.4 (reflection).
 """
 
 from __future__ import annotations

@@ -21,14 +21,16 @@ def decimal_text(value: Fraction, digits: int, *, up: bool) -> str:
     """
     if value.denominator == 1 and abs(value) < 10**40:
         return str(value.numerator)
-    context = Context(prec=max(digits, 1), rounding=ROUND_CEILING if up else ROUND_FLOOR, Emin=-10**9, Emax=10**9)
+    context = Context(prec=max(digits, 1), rounding=ROUND_CEILING if up else ROUND_FLOOR, Emin=-(10**9), Emax=10**9)
     number = context.divide(Decimal(value.numerator), Decimal(value.denominator))
     return _plain_or_scientific(number, digits)
 
 
 def _plain_or_scientific(number: Decimal, precision: int) -> str:
     """Plain notation where every figure written is one of the digits, else scientific."""
-    sign, figures, exponent = number.normalize(Context(prec=len(number.as_tuple().digits), Emin=-10**9, Emax=10**9)).as_tuple()
+    sign, figures, exponent = number.normalize(
+        Context(prec=len(number.as_tuple().digits), Emin=-(10**9), Emax=10**9)
+    ).as_tuple()
     if not isinstance(exponent, int):
         raise ValueError(f"not a finite number: {number}")
     lead = exponent + len(figures) - 1
@@ -41,7 +43,7 @@ def _plain_or_scientific(number: Decimal, precision: int) -> str:
 
 def _short(bound: Fraction) -> str:
     """A bound with two digits, rounded up, in scientific form."""
-    context = Context(prec=2, rounding=ROUND_CEILING, Emin=-10**9, Emax=10**9)
+    context = Context(prec=2, rounding=ROUND_CEILING, Emin=-(10**9), Emax=10**9)
     number = context.divide(Decimal(bound.numerator), Decimal(bound.denominator))
     figures = "".join(map(str, number.as_tuple().digits)).ljust(2, "0")
     return f"{figures[0]}.{figures[1:]}e{number.adjusted()}"
@@ -100,7 +102,7 @@ class Enclosure:
         if self.lower <= 0 <= self.upper:
             return 0
         ratio = size / width
-        rough = Context(prec=9, rounding=ROUND_FLOOR, Emin=-10**9, Emax=10**9)
+        rough = Context(prec=9, rounding=ROUND_FLOOR, Emin=-(10**9), Emax=10**9)
         return max(rough.divide(Decimal(ratio.numerator), Decimal(ratio.denominator)).adjusted(), 0)
 
     def contains(self, value: Fraction | int) -> bool:
@@ -117,8 +119,9 @@ class Enclosure:
     def text(self, digits: int | None = None) -> str:
         """Return the number with no digit that is not guaranteed.
 
-        The digits that both ends share, cut (never rounded), at most ``digits`` of them; where the ends lie on two sides of a
-        short decimal, that decimal and a bound for the distance from it; where they share no digit, both ends.
+        The digits that both ends share, cut (never rounded), at most ``digits`` of them; where the ends lie
+        on two sides of a short decimal, that decimal and a bound for the distance from it; where they share
+        no digit, both ends.
 
         Examples
         --------
@@ -140,7 +143,7 @@ class Enclosure:
         """The decimal in the middle, with a bound for the distance of the number from it."""
         centre = Fraction(0)
         if not self.contains(0):
-            near = Context(prec=max(digits - 1, 1), Emin=-10**9, Emax=10**9)
+            near = Context(prec=max(digits - 1, 1), Emin=-(10**9), Emax=10**9)
             centre = Fraction(near.divide(Decimal(self.mid.numerator), Decimal(self.mid.denominator)))
         bound = max(abs(self.upper - centre), abs(self.lower - centre))
         return f"{decimal_text(centre, digits, up=False)} +- {_short(bound)}"

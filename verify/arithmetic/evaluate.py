@@ -1,7 +1,7 @@
 """One walk over a SymPy expression, in any arithmetic.
 
-The tree is recognised by the names of its nodes, so this module needs no SymPy. Numbers come in exactly; what the walk does
-not know is an error, never a guess.
+The tree is recognised by the names of its nodes, so this module needs no SymPy. Numbers come in exactly; what
+the walk does not know is an error, never a guess.
 """
 
 from __future__ import annotations

@@ -1,7 +1,7 @@
 """The door to mpmath: the same formulas at high precision in an engine that shares no code with the balls.
 
-It proves nothing (mpmath rounds, it does not enclose); it is the second pair of eyes on a proven number. Each arithmetic has
-an mpmath context of its own; the global one is never touched.
+It proves nothing (mpmath rounds, it does not enclose); it is the second pair of eyes on a proven number. Each
+arithmetic has an mpmath context of its own; the global one is never touched.
 """
 
 from __future__ import annotations

@@ -42,6 +42,8 @@ def statistic_sum(density: Density, statistic: sp.Expr, data: Sequence[str | Exa
     for number, text in enumerate(data, start=1):
         value = exact(text, key=f"data[{number}]")
         if not density.parsed_support.contains(value):
-            raise InputError(f"{text} is outside the support", f"observations are {density.support}", key=f"data[{number}]")
+            raise InputError(
+                f"{text} is outside the support", f"observations are {density.support}", key=f"data[{number}]"
+            )
         total += statistic.subs(density.x, as_expr(value))
     return as_exact(sp.expand(total))

@@ -53,7 +53,7 @@ class Law(ABC):
         """Smallest and largest support point; None where there is none. Exact numbers (ints on a lattice)."""
 
     def atom(self, v: int, direction: int) -> int:
-        """First lattice point with positive mass at v or beyond it in a direction; v itself where there are no gaps."""
+        """First lattice point with positive mass at v or beyond it in a direction; v where there are no gaps."""
         return v
 
     def value(self, A: Any, v: Any) -> Number:
@@ -93,13 +93,13 @@ class Law(ABC):
         """Standard deviation of V."""
 
     def log_slope(self, A: Any, v: Any) -> Number | None:
-        """Derivative of log density at v (continuous laws), None where a law does not offer it: it only speeds a search."""
+        """Derivative of log density at v (continuous laws), None where a law has none: it speeds a search."""
         return None
 
     def normal_score(self, v: float, mean: float, spread: float) -> tuple[float, float]:
         """Rough z with P(V <= v) = Phi(z), and dz/dv, in floating point: where a search begins, never what it claims.
 
-        ``mean`` and ``spread`` are the rough moments. A law with a better normal approximation than the plain one says so.
+        ``mean`` and ``spread`` are the rough moments. A law with a better approximation says so.
         """
         return (v - mean) / spread, 1.0 / spread
 

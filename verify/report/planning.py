@@ -56,7 +56,9 @@ def plan_json(case: Case, size: SampleSize, scan: ScanResult | None) -> dict[str
         "n": size.n,
         "power": enclosure_json(size.power, digits),
         "power_before": None if size.power_before is None else enclosure_json(size.power_before, digits),
-        "without_randomisation": None if scan is None else {"first": scan.first, "stays": scan.stays, "looked_up_to": scan.last},
+        "without_randomisation": None
+        if scan is None
+        else {"first": scan.first, "stays": scan.stays, "looked_up_to": scan.last},
     }
 
 

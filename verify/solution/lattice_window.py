@@ -20,7 +20,14 @@ from verify.arithmetic.enclosure import Enclosure
 from verify.arithmetic.exact import rationals
 from verify.errors import InputError, NotRational, UndecidedError
 from verify.laws import Law
-from verify.solution.conditions import MOST_EXACT_ATOMS, Conditions, end_fractions, exact_fractions, improved_start, linear_system
+from verify.solution.conditions import (
+    MOST_EXACT_ATOMS,
+    Conditions,
+    end_fractions,
+    exact_fractions,
+    improved_start,
+    linear_system,
+)
 from verify.solution.precision import bits_for
 from verify.solution.sliding import slide
 from verify.solution.start import Rough, extend, extend_far, window_start

@@ -196,7 +196,7 @@ class TailProblem:
         return image if trial.contains_interior(image) else None
 
     def continuous_cutoff(self, A: Any) -> Any:
-        """Bracket from the normal approximation, bisection, then a few Newton steps; nothing is claimed of the result."""
+        """Bracket from the normal approximation, bisection, a few Newton steps; nothing is claimed of the result."""
         coordinate = Coordinate(*self.law.support)
         rough = coordinate.rough(A, self.rough)
         level = A.real(self.level).mid()

@@ -11,7 +11,6 @@ Source: F. Johansson et al., mpmath: a Python library for arbitrary-precision fl
 
 from __future__ import annotations
 
-from fractions import Fraction
 from typing import Any
 
 from verify.arithmetic.enclosure import Enclosure
@@ -70,7 +69,9 @@ def agreeing_digits(A: High, value: Any, enclosure: Enclosure, most: int) -> int
 
     Examples
     --------
-    >>> agreeing_digits(High(30), High(30).real(Fraction(1, 3)), Enclosure(Fraction(333, 1000), Fraction(334, 1000)), 20)
+    >>> from fractions import Fraction
+    >>> known = Enclosure(Fraction(333, 1000), Fraction(334, 1000))
+    >>> agreeing_digits(High(30), High(30).real(Fraction(1, 3)), known, 20)
     2
     """
     middle = A.real(enclosure.mid)

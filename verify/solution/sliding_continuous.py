@@ -53,7 +53,9 @@ def _reach(coordinate: Coordinate, rough: tuple[Rough, ...]) -> tuple[float, flo
     if coordinate.low is None and coordinate.high is None:
         spread = max(r.spread for r in rough)
         return min(r.mean for r in rough) - 60 * spread, max(r.mean for r in rough) + 60 * spread
-    return -2000.0, 2000.0 if coordinate.high is not None else 60.0 + max(0.0, *(abs(r.mean) + r.spread for r in rough)) ** 0.1
+    return -2000.0, 2000.0 if coordinate.high is not None else 60.0 + max(
+        0.0, *(abs(r.mean) + r.spread for r in rough)
+    ) ** 0.1
 
 
 def _bisect(A: Any, coordinate: Coordinate, reach: tuple[float, float], goes_right: Any) -> Any:

@@ -169,7 +169,8 @@ class Solution(Shown):
         names = ("c", "gamma", "c1", "c2", "gamma1", "gamma2")
         numbers = [(name, getattr(self, name)) for name in names]
         lines = [
-            f"null: {hypothesis.text(density.parameter)}; n = {self.problem.n}; rejects {self.rejects}; {self.grade.value}",
+            f"null: {hypothesis.text(density.parameter)}; n = {self.problem.n}; "
+            f"rejects {self.rejects}; {self.grade.value}",
             *(f"{name.ljust(6)} = {value.text(self.digits)}" for name, value in numbers if value is not None),
         ]
         return "\n".join(lines)
@@ -369,6 +370,7 @@ def _numbers_step(law: Law, prec: int) -> Step:
         how = f"ball arithmetic at {prec} bits: both end fractions lie certainly within [0, 1]"
     else:
         how = f"interval Newton at {prec} bits"
-    reason = getattr(law, "grade_reason", "") or "Lehmann and Romano 2005, Theorem 3.7.1: a pair that fits is the only one"
+    reason = (
+        getattr(law, "grade_reason", "") or "Lehmann and Romano 2005, Theorem 3.7.1: a pair that fits is the only one"
+    )
     return Step("numbers", grade, f"The cutoffs and fractions satisfy the side conditions, shown in {how}.", reason)
-

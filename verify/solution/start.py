@@ -69,10 +69,7 @@ def window_start(laws: tuple[Rough, ...], level: float, outside: bool) -> tuple[
             return ends
     spread = sum(law.spread for law in laws) / len(laws)
     middle, delta = (low + high) / 2, (high - low) / 2 / spread
-    if outside:
-        half = delta + upper_point(level / 2 if delta == 0 else level)
-    else:
-        half = _half_width(delta, level)
+    half = delta + upper_point(level / 2 if delta == 0 else level) if outside else _half_width(delta, level)
     return middle - half * spread, middle + half * spread
 
 
@@ -87,7 +84,10 @@ def _half_width(delta: float, level: float) -> float:
 
 
 def scored_window(
-    score: Callable[[int, float], tuple[float, float]], levels: tuple[float, float], ends: tuple[float, float], outside: bool
+    score: Callable[[int, float], tuple[float, float]],
+    levels: tuple[float, float],
+    ends: tuple[float, float],
+    outside: bool,
 ) -> tuple[float, float]:
     """Improve rough ends by Newton's method on the normal scores of the two laws.
 

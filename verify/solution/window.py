@@ -66,8 +66,15 @@ SEARCH_BITS = {True: 64, False: 112}
 """Bits of the search for a lattice law and for a continuous one, before what tails and scales cost."""
 
 
-def search_precision(rough: tuple[Rough, ...], levels: tuple[Any, ...], closeness: int, *, narrow: bool = False, base: int = SEARCH_BITS[True]) -> int:
-    """Bits for the search: enough for a tail of the level's size (or of what it leaves), one mass of many, two close laws.
+def search_precision(
+    rough: tuple[Rough, ...],
+    levels: tuple[Any, ...],
+    closeness: int,
+    *,
+    narrow: bool = False,
+    base: int = SEARCH_BITS[True],
+) -> int:
+    """Bits for the search: for a tail of the level's size (or of what it leaves), one mass of many, two close laws.
 
     A narrow window of a continuous law has both ends in nearly the same place, which costs the level's size once more.
     """
