@@ -11,13 +11,14 @@ Source: L. N. Trefethen (2013), Theorem 8.2 (the polynomial); W. H. Young, *Proc
 
 from __future__ import annotations
 
-from dataclasses import dataclass, replace
+from dataclasses import dataclass
 from typing import TYPE_CHECKING, Any, ClassVar
 
 from verify.arithmetic.ball import balls, midpoint
 from verify.arithmetic.evaluate import evaluate
 from verify.arithmetic.polynomial_sum import CUMULATIVE, DENSITY, TWICE
-from verify.laws.base import Law, Number
+from verify.laws.base import Number
+from verify.laws.built import BuiltLaw
 from verify.laws.replaced import Replaced, replaced
 from verify.laws.shape import Shape
 
@@ -30,7 +31,7 @@ ROUNDS = 4
 
 
 @dataclass(frozen=True)
-class SumByConvolution(Law):
+class SumByConvolution(BuiltLaw):
     """The law of T(X1) + ... + T(Xn), n > 1, T monotone with an analytic density.
 
     Attributes
@@ -50,19 +51,7 @@ class SumByConvolution(Law):
     name: ClassVar[str] = "sum of continuous observations"
     source: ClassVar[str] = "convolution of a polynomial, its error bounded on an ellipse: Trefethen 2013"
     lattice: ClassVar[bool] = False
-
-    @property
-    def parameters(self) -> dict[str, Any]:
-        """The density of one observation as text, the parameter's value and the number of observations."""
-        return {"density": self.one.text, self.one.parameter: self.at, "n": self.n}
-
-    def map_parameters(self, change: Any) -> SumByConvolution:
-        """Return the law with ``change`` applied to the parameter value."""
-        return replace(self, at=change(self.at))
-
-    def sum_of(self, n: Any) -> SumByConvolution:
-        """Return the law of n copies."""
-        return replace(self, n=self.n * n)
+    what: ClassVar[str] = "density"
 
     @property
     def support(self) -> tuple[Any, Any]:

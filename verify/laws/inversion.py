@@ -5,7 +5,7 @@ Source: J. Gil-Pelaez, *Biometrika* 38 (1951) 481-482; the bounds are in :mod:`v
 
 from __future__ import annotations
 
-from dataclasses import dataclass, replace
+from dataclasses import dataclass
 from fractions import Fraction
 from math import log2
 from typing import TYPE_CHECKING, Any, ClassVar
@@ -14,7 +14,8 @@ from verify.arithmetic.ball import balls, complex_ball, midpoint, to_fraction
 from verify.arithmetic.evaluate import evaluate
 from verify.arithmetic.inversion import DENSITY, SHORTFALL, TAIL, Inversion, saddle_point
 from verify.arithmetic.transforms import Transform
-from verify.laws.base import Law, Number
+from verify.laws.base import Number
+from verify.laws.built import BuiltLaw
 from verify.laws.shape import Shape
 
 if TYPE_CHECKING:
@@ -25,7 +26,7 @@ COARSE_BITS = 64
 
 
 @dataclass(frozen=True)
-class SumByInversion(Law):
+class SumByInversion(BuiltLaw):
     """The law of T(X1) + ... + T(Xn), n > 1.
 
     Attributes
@@ -48,19 +49,7 @@ class SumByInversion(Law):
     name: ClassVar[str] = "sum of continuous observations"
     source: ClassVar[str] = "Gil-Pelaez 1951, the cut tail bounded"
     lattice: ClassVar[bool] = False
-
-    @property
-    def parameters(self) -> dict[str, Any]:
-        """The density of one observation as text, the parameter's value and the number of observations."""
-        return {"density": self.one.text, self.one.parameter: self.at, "n": self.n}
-
-    def map_parameters(self, change: Any) -> SumByInversion:
-        """Return the law with ``change`` applied to the parameter value."""
-        return replace(self, at=change(self.at))
-
-    def sum_of(self, n: Any) -> SumByInversion:
-        """Return the law of n copies."""
-        return replace(self, n=self.n * n)
+    what: ClassVar[str] = "density"
 
     @property
     def support(self) -> tuple[Any, Any]:

@@ -16,14 +16,15 @@ is again a one-parameter exponential family); bounds in :mod:`verify.laws.tiltin
 
 from __future__ import annotations
 
-from dataclasses import dataclass, replace
+from dataclasses import dataclass
 from typing import TYPE_CHECKING, Any, ClassVar
 
 from verify.arithmetic.evaluate import evaluate
 from verify.arithmetic.series import either_sign
 from verify.laws.atoms import Atoms
-from verify.laws.base import Law, Number
+from verify.laws.base import Number
 from verify.laws.builders import ball_table, exact_table, in_balls, moments, widen
+from verify.laws.built import BuiltLaw
 
 if TYPE_CHECKING:
     from verify.laws.table import Table
@@ -31,7 +32,7 @@ if TYPE_CHECKING:
 
 
 @dataclass(frozen=True)
-class LatticeSum(Law):
+class LatticeSum(BuiltLaw):
     """The law of the sum of n independent copies of a lattice observation.
 
     Attributes
@@ -51,19 +52,7 @@ class LatticeSum(Law):
     name: ClassVar[str] = "lattice sum"
     source: ClassVar[str] = "Lehmann and Romano 2005, Lemma 2.7.2; n-th power of the weight series"
     lattice: ClassVar[bool] = True
-
-    @property
-    def parameters(self) -> dict[str, Any]:
-        """The mass of one observation as text, the parameter's value and the number of observations."""
-        return {"mass": self.one.text, self.one.parameter: self.at, "n": self.n}
-
-    def map_parameters(self, change: Any) -> LatticeSum:
-        """Return the law with ``change`` applied to the parameter value."""
-        return replace(self, at=change(self.at))
-
-    def sum_of(self, n: Any) -> LatticeSum:
-        """Return the law of the sum of n copies."""
-        return replace(self, n=self.n * n)
+    what: ClassVar[str] = "mass"
 
     @property
     def support(self) -> tuple[Any, Any]:

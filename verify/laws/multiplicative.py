@@ -9,7 +9,7 @@ Source: T. M. Apostol, *Introduction to Analytic Number Theory* (1976), section 
 
 from __future__ import annotations
 
-from dataclasses import dataclass, replace
+from dataclasses import dataclass
 from typing import TYPE_CHECKING, Any, ClassVar
 
 from verify.arithmetic.ball import balls
@@ -17,8 +17,9 @@ from verify.arithmetic.evaluate import evaluate
 from verify.arithmetic.series import product_power
 from verify.errors import NotRational, UndecidedError
 from verify.laws.atoms import Atoms
-from verify.laws.base import Law, Number
+from verify.laws.base import Number
 from verify.laws.builders import GUARD_BITS, in_balls
+from verify.laws.built import BuiltLaw
 from verify.laws.table import Table
 
 if TYPE_CHECKING:
@@ -29,7 +30,7 @@ MAX_NUMBER = 200_000
 
 
 @dataclass(frozen=True)
-class MultiplicativeSum(Law):
+class MultiplicativeSum(BuiltLaw):
     """The law of the product of n whole-number observations, on the scale of its logarithm.
 
     Attributes
@@ -49,20 +50,8 @@ class MultiplicativeSum(Law):
     name: ClassVar[str] = "sum of logarithms of whole numbers"
     source: ClassVar[str] = "Apostol 1976, section 2.6"
     lattice: ClassVar[bool] = True
+    what: ClassVar[str] = "mass"
     plain_points: ClassVar[bool] = False
-
-    @property
-    def parameters(self) -> dict[str, Any]:
-        """The mass of one observation as text, the parameter's value and the number of observations."""
-        return {"mass": self.one.text, self.one.parameter: self.at, "n": self.n}
-
-    def map_parameters(self, change: Any) -> MultiplicativeSum:
-        """Return the law with ``change`` applied to the parameter value."""
-        return replace(self, at=change(self.at))
-
-    def sum_of(self, n: Any) -> MultiplicativeSum:
-        """Return the law of n copies."""
-        return replace(self, n=self.n * n)
 
     @property
     def support(self) -> tuple[Any, Any]:
