@@ -102,8 +102,8 @@ def _one_atom(merged: dict[str, Printed], first: dict[str, Printed], second: dic
 def read_claim(given: Mapping[str, Any], style: Style, form: Form) -> Claim:
     """Read the printed numbers of a claim.
 
-    A fraction printed as a bare 0 or 1, with no decimals, says nothing about rounding: it has as many decimals as
-    the other fraction beside it (a spreadsheet drops zeros), and is exactly 0 or 1 where that has none either.
+    A fraction printed as a bare 0 or 1 is never one rounded to a whole number: it has as many decimals as the other
+    fraction beside it (a spreadsheet drops zeros), and is exactly 0 or 1 where that has none either.
 
     Parameters
     ----------
@@ -143,9 +143,7 @@ def read_claim(given: Mapping[str, Any], style: Style, form: Form) -> Claim:
 
 
 def _printed(value: Any, name: str) -> Printed:
-    printed = value if isinstance(value, Printed) else read_printed(value, name)
-    never_or_always = name.startswith("gamma") and printed.unit == 1  # a probability is not rounded to a whole number
-    return replace(printed, unit=None) if never_or_always else printed
+    return value if isinstance(value, Printed) else read_printed(value, name)
 
 
 def _bare_fractions_read(numbers: dict[str, Printed]) -> dict[str, Printed]:

@@ -54,7 +54,7 @@ def compare(claim: Claim, test: Numbers, n: int, step: Enclosure | None) -> Comp
     """
     best: Comparison | None = None
     for report, note in claim.style.readings(test, n, step):
-        for printed in claim.variants(_printed_step(claim, n, step), _window_counts(claim, test)):
+        for printed in claim.variants(_printed_step(claim, test, n, step), _rejection_counts(claim, test)):
             found = _compare(printed, report, note)
             if best is None or found.match.rank < best.match.rank:
                 best = found
@@ -65,15 +65,19 @@ def compare(claim: Claim, test: Numbers, n: int, step: Enclosure | None) -> Comp
     return best
 
 
-def _window_counts(claim: Claim, test: Numbers) -> bool:
-    """Whether a printed fraction of 1 at an end puts it with the inside of the window."""
-    return (test.region == "inside") != claim.style.of_acceptance
+def _rejection_counts(claim: Claim, test: Numbers) -> bool:
+    """Whether a printed fraction of 1 at an end puts it with the inside of the window, or with the side that a
+    one-sided test rejects.
+    """
+    return (test.region != "outside") != claim.style.of_acceptance
 
 
-def _printed_step(claim: Claim, n: int, step: Enclosure | None) -> Fraction | None:
+def _printed_step(claim: Claim, test: Numbers, n: int, step: Enclosure | None) -> Fraction | None:
+    """Distance of support points as printed; of a one-sided test, signed towards the side that it rejects."""
     if step is None or not step.exact:
         return None
-    return step.mid * abs(claim.style.scale) / claim.style.divisor(n)
+    size = step.mid * claim.style.scale / claim.style.divisor(n)
+    return abs(size) if test.two_sided else -size if test.region == "below" else size
 
 
 def _compare(printed: Mapping[str, Printed], report: Report, note: str) -> Comparison:
