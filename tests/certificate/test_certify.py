@@ -48,6 +48,22 @@ def test_the_rechecker_accepts_what_is_produced(produced: dict[str, Certificate]
     assert {name: certificate.recheck().status for name, certificate in produced.items()} == dict.fromkeys(NAMES, 0)
 
 
+def poisson_outside(null: str, alpha: str) -> Certificate:
+    density = verify.Density(
+        "exp(-m)*m**x/factorial(x)", variable="x", support="integers >= 0", parameter="m", space="m > 0"
+    )
+    return certify(verify.Problem(density, null=null, alpha=alpha, n=1), digits=10)
+
+
+def test_fractions_that_are_printed_as_zero_give_a_size_of_exactly_zero() -> None:
+    certificate = poisson_outside("m <= 8 or m >= 12", "1e-20")
+    (row,) = certificate.predicate["rounding"]["rows"]
+    assert certificate.predicate["test"]["y2"] - certificate.predicate["test"]["y1"] == 1
+    assert set(row["numbers"].values()) == {"0.0"}
+    assert (row["expectations"], row["size"]) == (["0", "0"], "0")
+    assert certificate.recheck().status == 0
+
+
 def test_the_numbers_are_those_of_the_independent_maker(
     produced: dict[str, Certificate], certificates: dict[str, Any]
 ) -> None:

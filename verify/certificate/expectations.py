@@ -42,8 +42,15 @@ class Expectations:
         """Return the law of the sum of the Y's at a parameter value."""
         return self.solution.family.at(t, self.solution.problem.n)
 
-    def phi(self, law: Law, values: tuple[Fraction, ...]) -> Enclosure:
-        """E phi for numbers in the order c1, c2 (or gamma1, gamma2) of V's scale."""
+    def phi(self, law: Law, values: tuple[Fraction, ...], *, exact: bool = False) -> Enclosure:
+        """E phi for numbers in the order c1, c2 (or gamma1, gamma2) of V's scale; on request as a rational if it is
+        a sum of few rational masses.
+        """
+        if exact and self.lattice:
+            try:
+                return Enclosure.of(self._sum(rationals(), law, values, moment=False))
+            except NotRational:
+                pass
         with balls(self.prec) as A:
             return to_enclosure(self._sum(A, law, values, moment=False))
 
@@ -75,6 +82,8 @@ class Expectations:
         low, high = ys[0], ys[-1]
         start = law.support[0]
         whole = law.expectation(A) if moment else A.real(1)
+        if len(values) == 2 and values[0] == values[1]:
+            return A.real(0) if self.region == "inside" else whole
 
         def up_to(y: Number) -> Number:
             return A.real(0) if start is not None and y <= A.real(start) else below(A, y)
@@ -98,7 +107,7 @@ class Expectations:
         for y, gamma in ends:
             total = total + gamma * law.density(A, y) * (y if moment else 1)
         if self.region == "inside":
-            return total + below(A, high - 1) - below(A, low) if high > low else total
+            return total + below(A, high - 1) - below(A, low) if high - low > 1 else total
         if self.region != "above":
             total = total + below(A, low - 1)
         return total + above(A, high) if self.region != "below" else total

@@ -1356,7 +1356,7 @@ def check_rounding(q: Question, test: Test, rounding: dict[str, Any]) -> None:
 
     The size is the largest expectation at the limits: power is monotone (one-sided), falls and then rises
     (rejecting outside) or rises and then falls (rejecting inside), by variation diminishing (Karlin 1968). In the
-    last case the peak lies between the limits as soon as the middle has more power than both.
+    last case no power beyond a limit exceeds the one at it, as soon as the middle has at least the power of both.
     """
     rows, tolerance, levels, first = rounding["rows"], rational(rounding["tolerance"]), q.levels(), 0
     form(1 <= len(rows) <= 60 and tolerance > 0, "the rows of the rounding table")
@@ -1374,7 +1374,7 @@ def check_rounding(q: Question, test: Test, rounding: dict[str, Any]) -> None:
             confirm(claim, e, e, min(q.digits, 15), "an expectation in the rounding table")
         lows, highs = zip(*map(claimed, row["expectations"]), strict=True)
         require(claimed(row["size"]) == (max(lows), max(highs)), "the size in the rounding table")
-        if q.form == "outside null" and not all(less(e, found[-1]) for e in found[: len(levels)]):
+        if q.form == "outside null" and any(less(found[-1], e) for e in found[: len(levels)]):
             raise UndecidedError("where the power is largest")
         gaps = [e - level for e, level in zip(found, levels, strict=False)]
         if not first and all(less(-tolerance, gap) and less(gap, tolerance) for gap in gaps):
