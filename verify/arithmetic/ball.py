@@ -20,7 +20,7 @@ from flint import acb, arb, ctx, fmpq
 from verify.arithmetic.beta_series import incomplete_beta
 from verify.arithmetic.enclosure import Enclosure
 from verify.arithmetic.evaluate import evaluate
-from verify.errors import SidecheckError
+from verify.errors import SidecheckError, UndecidedError
 
 Ball = Any
 """A real ball (``flint.arb``)."""
@@ -181,12 +181,12 @@ def to_enclosure(x: Ball, *, low: Fraction | None = None, high: Fraction | None 
 
     Raises
     ------
-    ArithmeticError
+    UndecidedError
         When the ball is not finite and no bounds are given.
     """
     if not x.is_finite():
         if low is None or high is None:
-            raise ArithmeticError(f"not a finite ball: {x}")
+            raise UndecidedError("a number could not be enclosed at this precision: its ball is not finite")
         return Enclosure(low, high)
     lower, upper = _end(x.lower(), up=False), _end(x.upper(), up=True)
     if low is not None:

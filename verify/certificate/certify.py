@@ -19,6 +19,9 @@ if TYPE_CHECKING:
     from verify.problem.problem import Problem
     from verify.solution.solve import Solution
 
+OPINION_SECONDS = 120.0
+"""Time for a double-precision opinion: long, since what is certified must not depend on how busy a machine is."""
+
 TOLERANCE = Fraction(1, 10**6)
 """How far the expectations may move by rounding, when the user says nothing."""
 
@@ -145,7 +148,7 @@ def certify(
     solved = solution or solve(problem, digits=max(15, digits + GUARD_DIGITS))
     subject = Subject() if case is None else Subject(Path(case.path).name, case.sha256, case.title, case.source)
     statement = build_statement(
-        solved, compare(solved), subject, digits=digits, tolerance=allowed, issued=issued or _epoch()
+        solved, compare(solved, seconds=OPINION_SECONDS), subject, digits=digits, tolerance=allowed, issued=issued or _epoch()
     )
     return Certificate("certificate" if case is None else case.name, statement, canonical(statement))
 

@@ -63,9 +63,13 @@ def groups(text: str) -> list[str]:
 
     Examples
     --------
-    >>> groups("0.086714664601023"), groups("1/3")
-    (['0.0867146646', '01023'], ['1/3'])
+    A fraction is not split: a gap beside its stroke would be read as part of the number.
+
+    >>> groups("0.086714664601023"), groups("1953125/7838208")
+    (['0.0867146646', '01023'], ['1953125/7838208'])
     """
+    if "/" in text:
+        return [text]
     head, point, tail = text.partition(".")
     if not point:
         head, tail = "", text

@@ -85,7 +85,8 @@ def rejection(test: dict[str, Any]) -> Runs:
     known = {key: box_of(value) for key, value in numbers_of(test).items()}
     ends = [key for key in known if key.startswith("c")]
     one_atom = len(ends) == 2 and test["c1"] == test["c2"] and isinstance(test["c1"], str)
-    certain = _certain(test["rejects"], [known[key] for key in ends], one_atom)
+    neighbours = "y1" in test and test["y2"] - test["y1"] == 1
+    certain = _certain(test["rejects"], [known[key] for key in ends], nothing_between=one_atom or neighbours)
     fractions = [key for key in known if key.startswith("gamma")]
     if one_atom:
         ends, fractions = ends[:1], fractions[:1]
@@ -99,9 +100,9 @@ def rejection(test: dict[str, Any]) -> Runs:
     return rest if certain else (*rest, Text(" and never otherwise"))
 
 
-def _certain(rejects: str, c: list[Box], one_atom: bool) -> Runs:
+def _certain(rejects: str, c: list[Box], *, nothing_between: bool) -> Runs:
     if rejects == "inside":
-        if one_atom:
+        if nothing_between:
             return ()
         return (Text("when "), Math(row(c[0], relation("<"), V, relation("<"), c[1])))
     if rejects == "outside":
