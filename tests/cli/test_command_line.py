@@ -95,3 +95,51 @@ def test_a_closed_pipe_is_no_traceback() -> None:
     done = subprocess.run(command, stdout=writer, stderr=subprocess.PIPE, text=True, timeout=60)
     os.close(writer)
     assert done.stderr == ""
+
+
+@pytest.mark.skipif(not os.path.exists("/dev/full"), reason="needs a device that is always full")
+@pytest.mark.parametrize(
+    "words",
+    [
+        ["--help"],
+        ["derive", "casebook/demo/lot-release.case.toml"],
+        ["solve", "casebook/demo/lot-release.case.toml", "--no-compare", "--json"],
+    ],
+)
+def test_standard_output_that_cannot_be_written_is_named_on_one_line(words) -> None:
+    with open("/dev/full", "w") as full:
+        done = subprocess.run(
+            [sys.executable, "-m", "verify", *words], stdout=full, stderr=subprocess.PIPE, text=True, check=False
+        )
+    assert done.returncode == 2
+    assert done.stderr == "sidecheck: standard output cannot be written: No space left on device\n"
+
+
+def test_closed_standard_output_is_one_line() -> None:
+    command = f"{sys.executable} -m verify --version >&-"
+    done = subprocess.run(["sh", "-c", command], stderr=subprocess.PIPE, text=True, check=False)
+    assert (done.returncode, len(done.stderr.splitlines())) == (2, 1)
+    assert "standard output is closed" in done.stderr
+
+
+@pytest.mark.parametrize("words", [["solve"], ["certify", "--no-pdf", "-o", "never-made"]])
+def test_levels_that_no_test_has_name_the_file_and_the_range_in_plain_decimals(sidecheck_here, words) -> None:
+    text = """
+[density]
+formula = "exp(-lam)*lam**x/factorial(x)"
+variable = "x"
+support = "integers >= 0"
+parameter = "lam"
+space = "lam > 0"
+
+[problem]
+null = "lam <= 4 or lam >= 5"
+alpha = ["0.05", "0.9"]
+n = 1
+"""
+    done = sidecheck_here(*words, text=text)
+    assert done.returncode == 2
+    place, _, rest = done.stderr.partition(": problem.alpha: no test has these two levels; ")
+    assert place.endswith("here.case.toml")
+    low, high = map(float, rest.rpartition("between ")[2].split(" and "))
+    assert 0 < low < 0.05 < high < 0.9

@@ -100,8 +100,7 @@ def _certificate(case: Case, args: argparse.Namespace) -> tuple[Certificate | No
     from verify.certificate.build import GUARD_DIGITS
     from verify.certificate.certify import certify
     from verify.derivation.ledger import Grade
-    from verify.report.pipeline import derive_case
-    from verify.solution.solve import solve
+    from verify.report.pipeline import derive_case, solve_case
 
     derivation = derive_case(case, budget=args.budget)
     for step in derivation.steps:
@@ -109,7 +108,7 @@ def _certificate(case: Case, args: argparse.Namespace) -> tuple[Certificate | No
             note(f"{case.name}: no certificate, {step}")
             return None, derivation
     problem: Any = case.problem
-    solution = solve(problem, digits=args.digits + GUARD_DIGITS, derivation=derivation)
+    solution = solve_case(case, derivation, digits=args.digits + GUARD_DIGITS)
     certificate = certify(
         problem, args.digits, case=case, tolerance=args.tolerance, issued=args.issued, solution=solution
     )

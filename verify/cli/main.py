@@ -7,13 +7,14 @@ import os
 import sys
 import traceback
 from collections.abc import Sequence
+from contextlib import redirect_stdout
 from importlib import import_module
 from types import ModuleType
-from typing import NoReturn
+from typing import NoReturn, TextIO, cast
 
 import verify
 from verify.cli import status
-from verify.cli.output import complain
+from verify.cli.output import Outlet, StandardOutputError, complain
 from verify.cli.registry import COMMANDS
 from verify.errors import InputError, UndecidedError
 
@@ -81,12 +82,18 @@ def main(argv: Sequence[str] | None = None) -> int:
     2
     """
     words = list(sys.argv[1:] if argv is None else argv)
+    if sys.stdout is None:  # closed by the shell
+        return complain("standard output is closed; send it to a file, a pipe or a terminal", status.UNUSABLE, False)
     try:
-        code = _outcome(words)
-        sys.stdout.flush()
+        with redirect_stdout(cast("TextIO", Outlet(sys.stdout))):
+            code = _outcome(words)
+            sys.stdout.flush()
     except BrokenPipeError:
-        os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())  # nothing is left to fail at exit
+        _discard_stdout()
         code = status.BROKEN_PIPE
+    except StandardOutputError as error:
+        _discard_stdout()
+        code = complain(error, status.UNUSABLE, as_json=False)
     except KeyboardInterrupt:
         print("sidecheck: interrupted", file=sys.stderr)
         code = status.INTERRUPTED
@@ -104,10 +111,15 @@ def _outcome(words: list[str]) -> int:
         return complain(error, status.UNUSABLE, as_json)
     except UndecidedError as error:
         return complain(error, status.UNDECIDED, as_json)
-    except BrokenPipeError:
+    except (BrokenPipeError, StandardOutputError):
         raise
     except Exception as error:
         return complain(_internal(error), status.INTERNAL, as_json)
+
+
+def _discard_stdout() -> None:
+    """Send the rest of standard output nowhere, so that nothing is left to fail at exit."""
+    os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
 
 
 def _internal(error: Exception) -> str:

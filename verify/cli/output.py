@@ -4,9 +4,63 @@ from __future__ import annotations
 
 import json
 import sys
-from typing import Any
+from typing import Any, TextIO
 
-from verify.errors import InputError
+from verify.errors import InputError, SidecheckError
+
+
+class StandardOutputError(SidecheckError):
+    """Standard output cannot be written."""
+
+
+class Outlet:
+    """Standard output, whose failures are told from those of any other file.
+
+    Everything but ``write`` and ``flush`` is left to the stream.
+
+    Examples
+    --------
+    >>> print("text", file=Outlet(sys.stdout))
+    text
+    """
+
+    def __init__(self, stream: TextIO) -> None:
+        self._stream = stream
+
+    def __getattr__(self, name: str) -> Any:
+        return getattr(self._stream, name)
+
+    def write(self, text: str) -> int:
+        """Write text; a broken pipe stays one.
+
+        Raises
+        ------
+        StandardOutputError
+            When the stream does not take it.
+        """
+        try:
+            return self._stream.write(text)
+        except OSError as error:
+            raise _named(error) from None
+
+    def flush(self) -> None:
+        """Write what is left over.
+
+        Raises
+        ------
+        StandardOutputError
+            When the stream does not take it.
+        """
+        try:
+            self._stream.flush()
+        except OSError as error:
+            raise _named(error) from None
+
+
+def _named(error: OSError) -> Exception:
+    if isinstance(error, BrokenPipeError):
+        return error
+    return StandardOutputError(f"standard output cannot be written: {error.strerror}")
 
 
 def show_json(value: dict[str, Any]) -> None:

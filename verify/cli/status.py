@@ -3,7 +3,7 @@
 ==== =====================================================================
 0    all agrees or is proved
 1    something differs or is refuted
-2    the input cannot be used (one line on stderr)
+2    the input cannot be used, or standard output cannot be written (one line on stderr)
 3    undecided within the budget
 70   an internal error: a mistake in this program (one line on stderr)
 130  interrupted from the keyboard

@@ -79,23 +79,39 @@ def problem_of(case: Case) -> Problem:
     return case.problem
 
 
+def solve_case(case: Case, derivation: Derivation, *, digits: int) -> Solution:
+    """Solve what a case asks; a complaint names the case's file.
+
+    Raises
+    ------
+    InputError
+        When the case asks nothing, or no test has its two levels.
+    UndecidedError
+        When the solution cannot be proved within its precision.
+    """
+    from verify.solution.solve import solve
+
+    try:
+        return solve(problem_of(case), digits=digits, derivation=derivation)
+    except InputError as error:
+        raise error.at(file=str(case.path)) from None
+
+
 def run_case(case: Case, *, digits: int = 50, budget: float = 10.0, with_comparison: bool = True) -> CaseRun:
     """Take one case as far as it goes.
 
     Raises
     ------
     InputError
-        When the case asks no question about the parameter (it has no ``[problem]``).
+        When the case asks no question about the parameter (it has no ``[problem]``), or cannot be solved.
     UndecidedError
         When the solution cannot be proved within its precision.
     """
-    problem = problem_of(case)
+    problem_of(case)
     derivation = derive_case(case, budget=budget)
     if not carries_solution(derivation):
         return CaseRun(case, derivation)
-    from verify.solution.solve import solve
-
-    solution = solve(problem, digits=digits, derivation=derivation)
+    solution = solve_case(case, derivation, digits=digits)
     if not with_comparison:
         return CaseRun(case, derivation, solution)
     from verify.comparison.compare import compare

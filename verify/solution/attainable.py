@@ -8,10 +8,11 @@ Source: Lehmann and Romano 2005, Theorem 3.4.1 (the one-sided tests are the extr
 
 from __future__ import annotations
 
+from fractions import Fraction
 from typing import Any
 
 from verify.arithmetic.ball import balls, to_enclosure
-from verify.arithmetic.enclosure import Enclosure
+from verify.arithmetic.enclosure import Enclosure, decimal_text
 from verify.errors import InputError
 from verify.laws import Law
 from verify.solution.critical import CriticalFunction
@@ -42,9 +43,18 @@ def require_attainable(laws: tuple[Law, ...], levels: tuple[Any, ...], rough: tu
     if wanted.upper < low.lower or wanted.lower > high.upper:
         raise InputError(
             "no test has these two levels",
-            f"with the first as it is, the second can lie between {low.text(6)} and {high.text(6)}",
+            f"with the first as it is, the second can lie between {_range(low, high)}",
             key="problem.alpha",
         )
+
+
+def _range(low: Enclosure, high: Enclosure) -> str:
+    """Both ends as plain decimals rounded inward, so that what is written is within reach."""
+    for digits in range(6, ENOUGH_DIGITS):
+        least, most = decimal_text(low.upper, digits, up=True), decimal_text(high.lower, digits, up=False)
+        if Fraction(least) < Fraction(most):
+            break
+    return f"{least} and {most}"
 
 
 def _second_expectation(laws: tuple[Law, ...], level: Any, rough: Rough, prec: int, *, above: bool) -> Enclosure:
