@@ -5,6 +5,7 @@ numbers.
 
 from __future__ import annotations
 
+import copy
 import json
 import sys
 from fractions import Fraction
@@ -17,6 +18,7 @@ import pytest
 import rfc8785
 
 import verify
+from verify.certificate import recheck
 from verify.certificate.certify import Certificate, certify
 from verify.certificate.sign import sign, verify_signature
 from verify.certificate.write import write_bundle
@@ -61,6 +63,43 @@ def test_fractions_that_are_printed_as_zero_give_a_size_of_exactly_zero() -> Non
     assert certificate.predicate["test"]["y2"] - certificate.predicate["test"]["y1"] == 1
     assert set(row["numbers"].values()) == {"0.0"}
     assert (row["expectations"], row["size"]) == (["0", "0"], "0")
+    assert certificate.recheck().status == 0
+
+
+@pytest.mark.parametrize(
+    "null", ["m <= 10 or m >= 10.00000000000000000001", "m <= 1/100 or m >= 1", "m <= 1/1000 or m >= 1/100"]
+)
+def test_a_size_that_is_not_located_is_left_out(null: str, maker: ModuleType) -> None:
+    certificate = poisson_outside(null, "0.05")
+    rows = certificate.predicate["rounding"]["rows"]
+    assert any("size" not in row for row in rows)
+    assert certificate.recheck().status == 0
+    schema = json.loads((Path(verify.__file__).parent / "certificate" / "schema.json").read_text())
+    jsonschema.Draft202012Validator(schema).validate(certificate.statement)
+    for row in rows:  # to claim it all the same, or to hide one that is known, is not accepted
+        other = copy.deepcopy(certificate.predicate)
+        changed = other["rounding"]["rows"][row["decimals"] - 1]
+        known = changed.pop("size", None)
+        if known is None:
+            changed["size"] = max(row["expectations"], key=lambda e: Fraction(e if isinstance(e, str) else e["upper"]))
+        verdict = recheck.verdict(maker.canonical(maker.statement(other)))
+        assert verdict[0] == (3 if known is None else 1)
+
+
+def test_a_power_that_is_flat_has_its_size_at_the_limits() -> None:
+    """One trial, and the same fraction at both places: the test rejects with this probability whatever p is."""
+    density = verify.Density(weights=["1", "1"], variable="x", support="integers 0..1", parameter="t", space="t > 0")
+    certificate = certify(verify.Problem(density, null="t <= 1/2 or t >= 2", alpha="0.05", n=1), digits=10)
+    assert all("size" in row for row in certificate.predicate["rounding"]["rows"])
+    assert certificate.recheck().status == 0
+
+
+def test_cutoffs_that_are_printed_alike_leave_no_window() -> None:
+    density = verify.Density("t*exp(-t*x)", variable="x", support="reals > 0", parameter="t", space="t > 0")
+    certificate = certify(verify.Problem(density, null="1 <= t <= 2", alpha="0.999999", n=4), digits=10)
+    row = certificate.predicate["rounding"]["rows"][0]
+    assert row["numbers"]["c1"] == row["numbers"]["c2"]
+    assert (row["expectations"], row["size"]) == (["1", "1"], "1")
     assert certificate.recheck().status == 0
 
 

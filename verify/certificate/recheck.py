@@ -177,7 +177,7 @@ SHAPE = {  # every key; "?" marks those that may be missing, "*" stands for name
     "side_conditions": [{"at": str, "of": str, "target": claimed, "expectation": claimed}],
     "rounding": {
         "tolerance": rational, "decimals": int,
-        "rows": [{"decimals": int, "numbers": {"*": str}, "expectations": [claimed], "size": claimed}],
+        "rows": [{"decimals": int, "numbers": {"*": str}, "expectations": [claimed], "size?": claimed}],
     },
     "double_precision": {
         "opinions": [{"route": str, "numbers": {"*": report}, "digits": {"*": int}, "note": str}],
@@ -735,15 +735,14 @@ class Gamma:
 
 def normal_cdf(z: Number) -> Number:
     """Phi(z) = 1/2 + sign(z)/2 * P(1/2, z**2 / 2), P the regularised lower incomplete gamma function; Phi increases."""
-    if isinstance(z, Interval):
-        low, high = ends(z)
-        return hull(normal_cdf(low), normal_cdf(high))
-    half = Fraction(1, 2)
-    if z == 0:
+    half, (low, high) = Fraction(1, 2), ends(z)
+    if low == high == 0:
         return half
+    if low <= 0 <= high:
+        return hull(normal_cdf(low), normal_cdf(high))
     x = interval(z * z / 2)
     part = gamma_kernel(half, x) * gamma_series(half, x) / 2
-    return half + part if z > 0 else half - part
+    return half + part if low > 0 else half - part
 
 
 class Normal:
@@ -1246,6 +1245,8 @@ class SmoothTest(Test):
     def psi(self, i: int, values: Sequence[Fraction]) -> tuple[Number, Number]:
         """E psi and E[Y psi] from the law's distribution function and partial mean."""
         law, nothing = self.laws[i], (Fraction(0), Fraction(0))
+        if len(values) == 2 and values[0] == values[1]:
+            return nothing
         at = [nothing if law.positive and not less(0, y) else law.below(y) for y in self.on_y(values)]
         if len(at) == 1:
             at = [at[0], (1, law.mean)] if self.above else [nothing, at[0]]
@@ -1351,12 +1352,26 @@ def fixed(x: Fraction, decimals: int) -> str:
     return ("-" if x < 0 and units else "") + text[:-decimals] + "." + text[-decimals:]
 
 
+def check_size(row: dict[str, Any], found: list[Number], middle: Number | None) -> None:
+    """The size is the largest expectation at the limits; left out only where the power in the middle may be lower."""
+    if "size" not in row:
+        form(middle is not None, "a row of the rounding table without a size")
+        above = middle is not None and all(ends(e)[1] < ends(middle)[0] for e in found)
+        require(not above, "a size that is left out although it is that at the limits")
+        return
+    lows, highs = zip(*map(claimed, row["expectations"]), strict=True)
+    require(claimed(row["size"]) == (max(lows), max(highs)), "the size in the rounding table")
+    if middle is not None and any(less(middle, e) for e in found):
+        raise UndecidedError("where the power is largest")
+
+
 def check_rounding(q: Question, test: Test, rounding: dict[str, Any]) -> None:
     """True expectations, and the size, when the numbers are printed to k = 1, 2, ... decimals.
 
     The size is the largest expectation at the limits: power is monotone (one-sided), falls and then rises
     (rejecting outside) or rises and then falls (rejecting inside), by variation diminishing (Karlin 1968). In the
-    last case no power beyond a limit exceeds the one at it, as soon as the middle has at least the power of both.
+    last case no power beyond a limit exceeds the one at it, as soon as the middle has at least the power of both. A
+    row without a size says less: that this is not shown.
     """
     rows, tolerance, levels, first = rounding["rows"], rational(rounding["tolerance"]), q.levels(), 0
     form(1 <= len(rows) <= 60 and tolerance > 0, "the rows of the rounding table")
@@ -1372,10 +1387,7 @@ def check_rounding(q: Question, test: Test, rounding: dict[str, Any]) -> None:
         found = [test.expect(i, [Fraction(text) for text in texts]) for i in range(len(test.laws))]
         for claim, e in zip(row["expectations"], found, strict=False):
             confirm(claim, e, e, min(q.digits, 15), "an expectation in the rounding table")
-        lows, highs = zip(*map(claimed, row["expectations"]), strict=True)
-        require(claimed(row["size"]) == (max(lows), max(highs)), "the size in the rounding table")
-        if q.form == "outside null" and any(less(found[-1], e) for e in found[: len(levels)]):
-            raise UndecidedError("where the power is largest")
+        check_size(row, found[: len(levels)], found[-1] if q.form == "outside null" else None)
         gaps = [e - level for e, level in zip(found, levels, strict=False)]
         if not first and all(less(-tolerance, gap) and less(gap, tolerance) for gap in gaps):
             first = k

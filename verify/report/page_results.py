@@ -70,12 +70,17 @@ def _rounding(predicate: dict[str, Any]) -> list[Block]:
         cells: list[Runs] = [words(str(entry["decimals"]))]
         cells += [(Digits(entry["numbers"][key]),) for key in keys]
         cells += [_upper(value) for value in entry["expectations"]]
-        cells += [_upper(entry["size"])] if len(places) > 1 else []
+        cells += [_upper(entry["size"]) if "size" in entry else words("not located")] if len(places) > 1 else []
         rows.append(cells)
     intro = (
         f"When the numbers are printed to k decimals, the test attains the expectations below (rounded up). "
         f"{sufficient(rounding)}"
     )
+    if not all("size" in entry for entry in rounding["rows"]):
+        intro += (
+            " The size is not located where the power halfway between the limits is not shown to be at least that at "
+            "both; it is then at least the larger of the two expectations."
+        )
     return [
         Paragraph(words(intro), "intro"),
         Table(
