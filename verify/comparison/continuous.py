@@ -18,6 +18,7 @@ from verify.comparison.walker import values
 Array = Any
 Numbers = dict[str, float]
 EULER_NOTE = "the characteristic function falls slowly: Euler summation"
+SINGULAR = "the formula is infinite where a double cannot tell x from an end of the support"
 LEAST_CLAIM = 3
 """A method that cannot claim so many digits is not worth running."""
 
@@ -40,7 +41,12 @@ def continuous_opinion(ask: Question) -> Answer:
         numbers = {"c": one_end(rows[0], line, ask.levels[0], large)}
     else:
         targets = (ask.levels[0], 0.0 if ask.point else ask.levels[1])
-        c1, c2 = two_ends(rows[0], rows[-1], line, targets, ask.inside)
+        try:
+            c1, c2 = two_ends(rows[0], rows[-1], line, targets, ask.inside)
+        except ArithmeticError:
+            if slow:  # not the doubles but the summation is at its end
+                raise NotAttempted(f"{EULER_NOTE}, which cannot resolve the tails at these cutoffs") from None
+            raise
         numbers = {"c1": c1, "c2": c2}
     claimed = _claim(ask, rows, numbers, slow) if ask.n > 1 else None
     return Answer(numbers | _evaluate(ask, rows, large), EULER_NOTE if slow else "", claimed)
@@ -98,6 +104,8 @@ def _panels(ask: Question, fine: int) -> tuple[Nodes, list[Callable[[Array], Arr
     place = _Place(ask, change)
     grid = nodes(heights, place, depth, fine)
     for row, t in zip(grid.densities, ask.limits, strict=True):
+        if np.any(np.isposinf(row)):
+            raise NotAttempted(f"{SINGULAR} at {ask.density.t.name} = {t:g}")
         total = float(np.sum(grid.weights * row))
         if not abs(total - 1) < 1e-6:
             raise ArithmeticError(f"the formula integrates to {total:.9g} at {ask.density.t.name} = {t:g}")

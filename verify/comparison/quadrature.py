@@ -18,6 +18,8 @@ from scipy.special import expit
 
 Array = Any
 PANELS, FINE_PANELS, GRADED_PANELS, ORDER = 24, 18, 5, 16
+NOISE = 1e-12
+"""T rounds to about this much of its usual size: a statistic such as log(1 + x**3) ripples where it is nearly flat."""
 _NODES, _WEIGHTS = np.polynomial.legendre.leggauss(ORDER)
 
 
@@ -144,7 +146,7 @@ def nodes(heights: list[Callable[[Array], Array]], place: Callable[[Array], Arra
 
 
 def _turning_points(place: Callable[[Array], Array], left: float, right: float) -> Array:
-    """Interior extrema of T between two places."""
+    """Interior extrema of T between two places, those that are rounding left out."""
     grid = np.linspace(left, right, 801)
     slopes = np.sign(np.diff(place(grid)))
     found = []
@@ -154,7 +156,22 @@ def _turning_points(place: Callable[[Array], Array], left: float, right: float) 
                                bounds=(grid[k], grid[k + 2]), method="bounded",
                                options={"xatol": 1e-12})  # fmt: skip
         found.append(float(best.x))
-    return np.array(found)
+    scale = float(np.median(np.abs(place(grid))))
+    return _without_ripples(np.unique([left, *found, right]), place, NOISE * scale)[1:-1]
+
+
+def _without_ripples(points: Array, place: Callable[[Array], Array], noise: float) -> Array:
+    """Take out turns, the flattest stretch first, until T changes by more than the noise between any two."""
+    heights = place(points)
+    while len(points) > 2:
+        changes = np.nan_to_num(np.abs(np.diff(heights)), nan=np.inf)
+        k = int(np.argmin(changes))
+        if not changes[k] <= noise:
+            break
+        last = len(points) - 1
+        drop = [1] if k == 0 else [last - 1] if k == last - 1 else [k, k + 1]
+        points, heights = np.delete(points, drop), np.delete(heights, drop)
+    return points
 
 
 @dataclass(frozen=True)
