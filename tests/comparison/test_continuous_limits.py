@@ -22,6 +22,9 @@ CHI = Density(
     parameter="s",
     space="s > 0",
 )
+CHI_BY_RATE = Density(
+    "2*x**4*exp(-r*x**2)*r**(5/2)/gamma(5/2)", variable="x", support="reals > 0", parameter="r", space="r > 0"
+)
 BURR = Density(
     "c*k*x**(c-1)/(1+x**c)**(k+1)",
     variable="x",
@@ -41,7 +44,7 @@ def brute(density, null, n):
     ("density", "null", "n", "reason"),
     [
         (KUMARASWAMY, "0.5 <= b <= 2", 1, "cannot tell x from an end of the support at b = 0.5"),
-        (CHI, "1 <= s <= 2", 3, "cannot resolve the tails at these cutoffs"),
+        (CHI, "s <= 1 or s >= 4", 3, "cannot resolve the tails at these cutoffs"),
     ],
 )
 def test_a_method_at_its_limit_is_not_attempted_rather_than_failed(density, null, n, reason) -> None:
@@ -49,6 +52,13 @@ def test_a_method_at_its_limit_is_not_attempted_rather_than_failed(density, null
     assert found.failure == ""
     assert found.note.startswith("not attempted: ")
     assert reason in found.note
+
+
+@pytest.mark.parametrize(("density", "null"), [(CHI, "1 <= s <= 2"), (CHI_BY_RATE, "1/8 <= r <= 1/2")])
+def test_limits_that_lie_far_apart_are_answered_from_the_law_beside_each_cutoff(density, null) -> None:
+    found = brute(density, null, 3)
+    assert found.failure == ""
+    assert min(found.digits[name] for name in ("c1", "c2")) >= 7
 
 
 def test_a_statistic_that_ripples_by_rounding_is_answered_in_time() -> None:

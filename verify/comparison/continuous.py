@@ -12,12 +12,13 @@ from verify.comparison.inversion import EULER_DIGITS, SumOfObservations, Transfo
 from verify.comparison.limits import NotAttempted
 from verify.comparison.quadrature import Nodes, OneObservation, change_of_variable, nodes, run_of_interest
 from verify.comparison.question import Answer, Question
-from verify.comparison.tail_search import Line, Measure, one_end, two_ends, window
+from verify.comparison.tail_search import Line, Measure, one_end, two_ends, two_far_ends, window
 from verify.comparison.walker import values
 
 Array = Any
 Numbers = dict[str, float]
 EULER_NOTE = "the characteristic function falls slowly: Euler summation"
+UNRESOLVED = f"{EULER_NOTE}, which cannot resolve the tails at these cutoffs"
 SINGULAR = "the formula is infinite where a double cannot tell x from an end of the support"
 LEAST_CLAIM = 3
 """A method that cannot claim so many digits is not worth running."""
@@ -40,16 +41,34 @@ def continuous_opinion(ask: Question) -> Answer:
     if ask.form == "one-sided":
         numbers = {"c": one_end(rows[0], line, ask.levels[0], large)}
     else:
-        targets = (ask.levels[0], 0.0 if ask.point else ask.levels[1])
-        try:
-            c1, c2 = two_ends(rows[0], rows[-1], line, targets, ask.inside)
-        except ArithmeticError:
-            if slow:  # not the doubles but the summation is at its end
-                raise NotAttempted(f"{EULER_NOTE}, which cannot resolve the tails at these cutoffs") from None
-            raise
+        c1, c2 = _two_ends(ask, rows, line, slow)
         numbers = {"c1": c1, "c2": c2}
     claimed = _claim(ask, rows, numbers, slow) if ask.n > 1 else None
     return Answer(numbers | _evaluate(ask, rows, large), EULER_NOTE if slow else "", claimed)
+
+
+def _two_ends(ask: Question, rows: Sequence[Measure], line: Line, slow: bool) -> tuple[float, float]:
+    """Both cutoffs; each from the law beside it where the Euler summation cannot see the other's tail there.
+
+    Raises
+    ------
+    NotAttempted
+        When the Euler summation cannot tell either way.
+    """
+    targets = (ask.levels[0], 0.0 if ask.point else ask.levels[1])
+    try:
+        return two_ends(rows[0], rows[-1], line, targets, ask.inside)
+    except ArithmeticError:
+        if not slow:
+            raise
+    if ask.inside or ask.point:
+        raise NotAttempted(UNRESOLVED)
+    rising = rows[1].tail(line.mean, True) > rows[0].tail(line.mean, True)
+    first, second = (rows[0], rows[1]) if rising else (rows[1], rows[0])
+    try:
+        return two_far_ends(first, second, line, targets if rising else targets[::-1])
+    except ArithmeticError:  # not the doubles but the summation is at its end
+        raise NotAttempted(UNRESOLVED) from None
 
 
 def _euler_claim(ask: Question) -> int:

@@ -106,6 +106,25 @@ def two_ends(
     return ends(float(brentq(excess, a, b, xtol=line.tolerance, rtol=line.tolerance)))
 
 
+def two_far_ends(first: Measure, second: Measure, line: Line, targets: tuple[float, float]) -> tuple[float, float]:
+    """Cutoffs of a test that rejects outside its window between two limits that lie far apart.
+
+    Each cutoff is a quantile of the law beside it, so that the tails of the other law beyond it, which may be too
+    small for the measure to resolve, are only ever added. ``first`` is the law with the smaller mean.
+    """
+
+    @cache
+    def ends(u: float) -> tuple[float, float]:
+        c1 = quantile(first, line, targets[0] / (1 + np.exp(-u)), False)
+        return c1, quantile(second, line, targets[1] - max(second.tail(c1, False), 0.0), True)
+
+    def excess(u: float) -> float:
+        return float(max(first.tail(ends(u)[1], True), 0.0) - targets[0] / (1 + np.exp(u)))
+
+    a, b = _bracket(excess, 0.0, 1.0)
+    return ends(float(brentq(excess, a, b, xtol=line.tolerance, rtol=line.tolerance)))
+
+
 def window(row: Measure, c1: float, c2: float, inside: bool) -> float:
     """Mass of a measure where the test rejects."""
     if not inside:
