@@ -471,25 +471,28 @@ def gamma_series(a: Number, x: Number) -> Interval:
     """Enclose S(a, x) = sum over k >= 0 of x**k / (a (a+1) ... (a+k)), a, x > 0: lower(a, x) = x**a exp(-x) S(a, x).
 
     Fixed-point sum of positive terms t(k+1) = t(k) x / (a+k+1), rounded down with (low x, high a) and up with (high
-    x, low a). Once rho = x/(a+k+1) < 1, the terms after t are at most t rho / (1 - rho), since the ratios fall.
+    x, low a). Once rho = x/(a+k+1) < 1, the terms after t are at most t rho / (1 - rho), since the ratios fall. In
+    units 2**-q of x and 2**-p of a, p <= q: n // (m << (q-p)) = (n >> (q-p)) // m, and m is short where a is.
     """
     xi, ai = interval(x), interval(a)
     if xi.a <= 0 or ai.a <= 0:
         raise ImpreciseError("an incomplete gamma function at 0")
-    q = max(0, -xi.e, -ai.e)
+    p = max(0, -ai.e)
+    q = max(p, -xi.e)
     if q > 200_000 or max(xi.top, ai.top) > 60:
         raise LimitError("an incomplete gamma function of a huge number")
-    xl, xh, al, ah = (v << (s.e + q) for s, v in ((xi, xi.a), (xi, xi.b), (ai, ai.a), (ai, ai.b)))
+    xl, xh, al, ah = xi.a << (xi.e + q), xi.b << (xi.e + q), ai.a << (ai.e + p), ai.b << (ai.e + p)
     low = high = t = v = 1 << (Interval.bits + 40)
     k = 0
     while True:
         k += 1
-        under, over = al + (k << q), ah + (k << q)
+        under, over = al + (k << p), ah + (k << p)
         if k % 8 == 1:
             spend(8 + (Interval.bits + q >> 5))
-            if xh < under and (rest := v * xh // (under - xh) + 1) << Interval.bits <= high:
+            left = (under << (q - p)) - xh
+            if left > 0 and (rest := v * xh // left + 1) << Interval.bits <= high:
                 return Interval(low, high + rest, -Interval.bits - 40) / ai
-        t, v = t * xl // over, -(-v * xh // under)
+        t, v = (t * xl >> (q - p)) // over, -((-v * xh >> (q - p)) // under)
         low, high = low + t, high + v
 
 
