@@ -9,7 +9,7 @@ Source: F. Johansson, "Arb: efficient arbitrary-precision midpoint-radius interv
 
 from __future__ import annotations
 
-from collections.abc import Iterator
+from collections.abc import Callable, Iterator
 from contextlib import contextmanager
 from fractions import Fraction
 from math import comb
@@ -27,6 +27,9 @@ Ball = Any
 
 SMALLEST_EXPONENT = -300_000
 """Powers of two below this are widened to an interval from zero when a ball becomes a pair of rationals."""
+
+MOST_REMEMBERED = 64
+"""Parameters whose balls are remembered within one block of a precision."""
 
 DIRECT_GAMMA_P = 60
 """Up to this first parameter Arb's lower incomplete gamma function is tried first (it may give up: then it says so)."""
@@ -46,6 +49,8 @@ class Balls:
 
     def __init__(self, prec: int) -> None:
         self.prec = prec
+        self._known: dict[int, tuple[Any, Ball]] = {}
+        self._gammas: dict[int, tuple[Any, Ball]] = {}
 
     def real(self, x: Any) -> Ball:
         """Return the ball of an exact number (int, Fraction or SymPy number); balls pass unchanged."""
@@ -55,7 +60,7 @@ class Balls:
         if kind is int:
             return arb(x)
         if kind is Fraction:
-            return arb(fmpq(x.numerator, x.denominator))
+            return _remembered(self._known, x, _ball_of)
         return evaluate(x, self, {})
 
     def interval(self, enclosure: Enclosure) -> Ball:
@@ -87,6 +92,8 @@ class Balls:
 
     def gamma(self, x: Any) -> Ball:
         """Gamma function."""
+        if type(x) is Fraction:
+            return _remembered(self._gammas, x, lambda shape: self.real(shape).gamma())
         return self.real(x).gamma()
 
     def factorial(self, k: Any) -> Ball:
@@ -149,6 +156,22 @@ def _power_across_zero(x: Ball, k: int) -> Ball:
     """Positive whole power of a ball that contains zero: from its ends, since x^k is monotone on either side."""
     low, high = x.lower() ** k if x.lower() != 0 else arb(0), x.upper() ** k if x.upper() != 0 else arb(0)
     return low.union(high).union(arb(0))
+
+
+def _ball_of(x: Fraction) -> Ball:
+    return arb(fmpq(x.numerator, x.denominator))
+
+
+def _remembered(known: dict[int, tuple[Any, Ball]], x: Fraction, compute: Callable[[Fraction], Ball]) -> Ball:
+    """Look a parameter up by its identity (the entry keeps it alive); a law asks for the same few again and again."""
+    entry = known.get(id(x))
+    if entry is not None:
+        return entry[1]
+    if len(known) >= MOST_REMEMBERED:
+        known.clear()
+    value = compute(x)
+    known[id(x)] = (x, value)
+    return value
 
 
 @contextmanager

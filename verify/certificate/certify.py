@@ -148,7 +148,12 @@ def certify(
     solved = solution or solve(problem, digits=max(15, digits + GUARD_DIGITS))
     subject = Subject() if case is None else Subject(Path(case.path).name, case.sha256, case.title, case.source)
     statement = build_statement(
-        solved, compare(solved, seconds=OPINION_SECONDS), subject, digits=digits, tolerance=allowed, issued=issued or _epoch()
+        solved,
+        compare(solved, seconds=OPINION_SECONDS),
+        subject,
+        digits=digits,
+        tolerance=allowed,
+        issued=issued or _epoch(),
     )
     return Certificate("certificate" if case is None else case.name, statement, canonical(statement))
 

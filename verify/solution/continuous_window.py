@@ -33,6 +33,7 @@ NARROW = 1e-4
 """Below this level a window that rejects inside is narrow: both ends are sought from one centre."""
 
 Ends = tuple[Any, Any]
+Units = tuple[Row, Row]
 
 
 @dataclass(frozen=True)
@@ -129,7 +130,7 @@ class ContinuousSearch:
     def _newton(self, A: Any, ends: Ends) -> Ends | None:
         """Damped Newton steps in the coordinate; settled when a step is far below the window's own width."""
         c1, c2 = ends
-        settled, noise = (A.power(A.real(2), -bits) for bits in (self.prec // 4, NOISE_BITS))
+        settled, noise = (A.power(A.real(2), -bits) for bits in (self.prec // 6, NOISE_BITS))
         for _ in range(MOST_STEPS):
             step = outward_steps(self.conditions, A, c1, c2)
             e1, e2 = (midpoint(e) for e in step)
@@ -224,32 +225,56 @@ def solve_continuous_window(search: ContinuousSearch, digits: int) -> Window:
     for _ in range(MOST_ROUNDS):
         with balls(bits) as A:
             target, whole = conditions.targets(A), conditions.whole(A, *centre)
-            box = _sharpen(conditions, A, centre, box, (target[0] - whole[0], target[1] - whole[1]))
+            units = conditions.unit(A, centre[0]), conditions.unit(A, centre[1])
+            box = _sharpen(conditions, A, centre, box, units, (target[0] - whole[0], target[1] - whole[1]))
             reached = _reached(box) if box is not None else 0
             if box is not None:
                 if reached >= wanted:
-                    sides = _left_hand_sides(conditions, A, centre, box, whole)
+                    sides = _left_hand_sides(conditions, A, centre, box, units, whole)
                     return Window(to_enclosure(box[0]), to_enclosure(box[1]), None, None, sides, bits)
                 centre = midpoint(box[0]), midpoint(box[1])
         bits = _next_bits(bits, reached, wanted)
     raise UndecidedError("no box around the cutoffs could be proved to contain them")
 
 
-def _sharpen(conditions: Conditions, A: Any, centre: Ends, box: Ends | None, lack: Row) -> Ends | None:
+def _sharpen(
+    conditions: Conditions, A: Any, centre: Ends, box: Ends | None, units: Units, lack: Row
+) -> Ends | None:
     """One round: prove a first box around the centre, or shrink a box that is known to contain the window."""
     if box is None:
-        step = _newton_step(conditions, A, centre, lack)
+        step = _newton_step(conditions, units, lack)
         if step is None:
             return None
         grain = A.power(A.real(2), 8 - A.prec)
-        trial = tuple(around(c, 2 * abs(e).upper() + abs(c) * grain) for c, e in zip(centre, step, strict=True))
-        image = _image(conditions, A, centre, (trial[0], trial[1]), lack)
-        proved = image is not None and all(t.contains_interior(i) for t, i in zip(trial, image, strict=True))
-        return image if proved else None
+        first, second = (around(c, 2 * abs(e).upper() + abs(c) * grain) for c, e in zip(centre, step, strict=True))
+        image = _image(conditions, A, centre, (first, second), lack)
+        if image is None or not (first.contains_interior(image[0]) and second.contains_interior(image[1])):
+            return None
+        return _curved(conditions, A, centre, image, units, lack)
     image = _image(conditions, A, centre, box, lack)
     if image is None:
         return box
-    return box[0].intersection(image[0]), box[1].intersection(image[1])
+    return _curved(conditions, A, centre, (box[0].intersection(image[0]), box[1].intersection(image[1])), units, lack)
+
+
+def _curved(conditions: Conditions, A: Any, centre: Ends, box: Ends, units: Units, lack: Row) -> Ends:
+    """Shrink a box that contains the window by the second-order form of the side conditions.
+
+    With e the outward distances of the ends from the centre and g the units of phi, Taylor's theorem says
+    g(c1) e1 - g'(x1) e1^2 / 2 + g(c2) e2 + g'(x2) e2^2 / 2 = what the window lacks, x1 and x2 somewhere between
+    the centre and the box. So e lies in what this gives when e ranges over the box and g' over that stretch.
+    """
+    left, right = _slopes(conditions, A, centre, box)
+    if left is None or right is None:
+        return box
+    sign = -1 if conditions.outside else 1
+    e1, e2 = centre[0] - box[0], box[1] - centre[1]
+    wanted = [sign * lack[i] + (left[i] * e1 * e1 - right[i] * e2 * e2) / 2 for i in (0, 1)]
+    d1, d2 = solve_two_by_two(*units, (wanted[0], wanted[1]))
+    found = centre[0] - d1, centre[1] + d2
+    if not all(end.is_finite() for end in found):
+        return box
+    return box[0].intersection(found[0]), box[1].intersection(found[1])
 
 
 def _reached(box: Ends) -> int:
@@ -268,9 +293,9 @@ def _next_bits(bits: int, reached: int, wanted: int) -> int:
     return max(bits, min(2 * reached, wanted) + min(loss, bits) + 16) if 2 * reached < wanted else wanted + loss + 32
 
 
-def _newton_step(conditions: Conditions, A: Any, box: Ends, lack: Ends) -> Ends | None:
+def _newton_step(conditions: Conditions, units: Units, lack: Row) -> Ends | None:
     """Return -J(X)^-1 F(m), the step of both ends to the right; None when J(X) may be singular."""
-    left, right = conditions.unit(A, box[0]), conditions.unit(A, box[1])
+    left, right = units
     determinant = left[0] * right[1] - right[0] * left[1]
     if not determinant.is_finite() or determinant.contains(0):
         return None
@@ -278,15 +303,29 @@ def _newton_step(conditions: Conditions, A: Any, box: Ends, lack: Ends) -> Ends 
     return (first, -second) if conditions.outside else (-first, second)
 
 
-def _image(conditions: Conditions, A: Any, centre: Ends, box: Ends, lack: Ends) -> Ends | None:
+def _image(conditions: Conditions, A: Any, centre: Ends, box: Ends, lack: Row) -> Ends | None:
     """Return the interval Newton image N(X), X the box and m its centre."""
-    step = _newton_step(conditions, A, box, lack)
+    step = _newton_step(conditions, (conditions.unit(A, box[0]), conditions.unit(A, box[1])), lack)
     return None if step is None else (centre[0] + step[0], centre[1] + step[1])
 
 
-def _left_hand_sides(conditions: Conditions, A: Any, centre: Ends, box: Ends, whole: Row) -> tuple[Enclosure, ...]:
-    """Enclose the two conditions over the box by the mean value form around its centre."""
-    left, right = conditions.unit(A, box[0]), conditions.unit(A, box[1])
-    grown = (centre[0] - box[0], box[1] - centre[1])
+def _slopes(conditions: Conditions, A: Any, centre: Ends, box: Ends) -> tuple[Row | None, Row | None]:
+    """Derivatives of the units of phi, each over the whole stretch between the centre and the box."""
+    stretch = [end.union(c) for end, c in zip(box, centre, strict=True)]
+    left, right = (conditions.unit_slope(A, end, conditions.unit(A, end)) for end in stretch)
+    return left, right
+
+
+def _left_hand_sides(
+    conditions: Conditions, A: Any, centre: Ends, box: Ends, units: Units, whole: Row
+) -> tuple[Enclosure, ...]:
+    """Enclose the two conditions over the box by Taylor's theorem around its centre; see :func:`_curved`."""
+    left, right = _slopes(conditions, A, centre, box)
+    if left is None or right is None:
+        return tuple(to_enclosure(side) for side in conditions.whole(A, *box))
+    e1, e2 = centre[0] - box[0], box[1] - centre[1]
     sign = -1 if conditions.outside else 1
-    return tuple(to_enclosure(whole[i] + sign * (left[i] * grown[0] + right[i] * grown[1])) for i in (0, 1))
+    change = [
+        units[0][i] * e1 - left[i] * e1 * e1 / 2 + units[1][i] * e2 + right[i] * e2 * e2 / 2 for i in (0, 1)
+    ]
+    return tuple(to_enclosure(whole[i] + sign * change[i]) for i in (0, 1))
