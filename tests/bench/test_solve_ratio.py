@@ -15,7 +15,8 @@ from scipy import stats
 from verify.arithmetic.ball import balls
 from verify.laws import Binomial, Gamma, Law, Normal, Poisson
 from verify.solution.conditions import Conditions
-from verify.solution.continuous_window import ContinuousSearch, solve_continuous_window
+from verify.solution.continuous_search import ContinuousSearch
+from verify.solution.continuous_window import solve_continuous_window
 from verify.solution.lattice_window import LatticeSearch, solve_lattice_window
 from verify.solution.window import SEARCH_BITS, Window, rough_laws, search_precision
 

@@ -7,7 +7,7 @@ import pytest
 from verify.arithmetic.ball import around, balls, to_enclosure
 from verify.laws import Gamma, InverseGaussian, Law, Normal
 from verify.solution.conditions import Conditions
-from verify.solution.continuous_window import _left_hand_sides
+from verify.solution.continuous_window import Expansion
 
 LAWS: list[tuple[Law, Law]] = [
     (Normal(Fraction(0), Fraction(1)), Normal(Fraction(1), Fraction(1))),
@@ -28,8 +28,9 @@ def test_a_box_away_from_its_centre(laws, outside, point):
         tiny = A.power(A.real(2), -200)
         centre = A.real(Fraction(3, 4)), A.real(Fraction(5, 2))
         box = around(A.real(Fraction(4, 5)), tiny), around(A.real(Fraction(12, 5)), tiny)
-        units = conditions.unit(A, centre[0]), conditions.unit(A, centre[1])
-        sides = _left_hand_sides(conditions, A, centre, box, units, conditions.whole(A, *centre))
+        here = Expansion.around(conditions, A, centre)
+        slopes = here.slopes(here.stretch(box))
+        sides = here.left_hand_sides(box, slopes)
         direct = [to_enclosure(side) for side in conditions.whole(A, *box)]
     for side, value in zip(sides, direct, strict=True):
         assert side.lower <= value.mid <= side.upper

@@ -221,14 +221,28 @@ def to_enclosure(x: Ball, *, low: Fraction | None = None, high: Fraction | None 
 
 def _end(x: Ball, *, up: bool) -> Fraction:
     """One end as a rational; an end too close to zero for a rational of sensible size is moved outward."""
-    if x.is_zero():
-        return Fraction(0)
-    _, exponent = x.abs_upper().mid().man_exp()
-    bits = x.bits()
-    if int(exponent) + bits < SMALLEST_EXPONENT:
-        tiny = Fraction(1, 1 << -SMALLEST_EXPONENT)
-        return (tiny if up else Fraction(0)) if x > 0 else (Fraction(0) if up else -tiny)
-    return to_fraction(x.mid())
+    mantissa, exponent = x.man_exp()
+    man, exp = int(mantissa), int(exponent)
+    if exp >= 0:
+        return Fraction(man << exp)
+    if exp + man.bit_length() >= SMALLEST_EXPONENT:
+        return Fraction(man, 1 << -exp)
+    tiny = Fraction(1, 1 << -SMALLEST_EXPONENT)
+    return (tiny if up else Fraction(0)) if man > 0 else (Fraction(0) if up else -tiny)
+
+
+def magnitude(x: Ball) -> int | None:
+    """Exponent e with 2^(e-1) <= abs(x) < 2^e for the midpoint of a ball; None where that is 0.
+
+    Examples
+    --------
+    >>> with balls(64) as A:
+    ...     print(magnitude(A.real(Fraction(1, 20))), magnitude(A.real(5)), magnitude(A.real(0)))
+    -4 3 None
+    """
+    mantissa, exponent = x.mid().man_exp()
+    man = int(mantissa)
+    return int(exponent) + man.bit_length() if man else None
 
 
 def accuracy_bits(x: Ball) -> int:

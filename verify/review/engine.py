@@ -13,7 +13,8 @@ from verify.arithmetic.ball import balls, to_enclosure
 from verify.laws import Law
 from verify.review.numbers import complement
 from verify.solution.conditions import Conditions, end_fractions
-from verify.solution.continuous_window import ContinuousSearch, solve_continuous_window
+from verify.solution.continuous_search import ContinuousSearch
+from verify.solution.continuous_window import solve_continuous_window
 from verify.solution.critical import CriticalFunction
 from verify.solution.lattice_window import LatticeSearch, solve_lattice_window
 from verify.solution.one_sided import TailProblem

@@ -117,13 +117,22 @@ class Conditions:
             return mass, (law.value(A, c) - law.expectation(A)) * mass
         return self.laws[0].density(A, c), self.laws[1].density(A, c)
 
-    def unit_slope(self, A: Any, c: Any, unit: Row) -> Row | None:
-        """Derivative of :meth:`unit` by c where the laws offer it (continuous laws)."""
-        slopes = [law.log_slope(A, c) for law in self.laws]
+    def unit_slope(self, A: Any, c: Any, unit: Row, stretch: Any = None) -> Row | None:
+        """Derivative of :meth:`unit` by its place, at c or over a stretch that contains c (continuous laws).
+
+        With L the derivative of log density, f(x) = f(c) exp((x - c) L(z)) for some z between c and x. None where
+        the laws do not offer L.
+        """
+        x = c if stretch is None else stretch
+        slopes = [law.log_slope(A, x) for law in self.laws]
         if any(slope is None for slope in slopes):
             return None
+        if stretch is not None:
+            grown = [A.exp((x - c) * slope) for slope in slopes]
+            unit = unit[0] * grown[0], unit[1] * grown[-1]
         if self.point:
-            return unit[0] * slopes[0], unit[0] + unit[1] * slopes[0]
+            law = self.laws[0]
+            return unit[0] * slopes[0], unit[0] * (1 + (law.value(A, x) - law.expectation(A)) * slopes[0])
         return unit[0] * slopes[0], unit[1] * slopes[1]
 
     def total(self, A: Any) -> Row:

@@ -62,8 +62,22 @@ class Coordinate:
         low, high = A.real(self.low), A.real(self.high)
         return (c - low) * (high - c) / (high - low)
 
+    def holds(self, A: Any, c: Any) -> bool:
+        """Whether a place lies inside the support."""
+        return (self.low is None or bool(c > A.real(self.low))) and (self.high is None or bool(c < A.real(self.high)))
+
+    def place_roughly(self, A: Any, u: float) -> float:
+        """Return the same in floating point, for a search."""
+        return u if self.free else float(self.place(A, A.real(Fraction(u))).mid())
+
+    def speed_roughly(self, A: Any, c: Any) -> float:
+        """Return dc/du in floating point, for a search."""
+        return 1.0 if self.free else float(self.speed(A, c).mid())
+
     def rough(self, A: Any, law: Rough) -> Rough:
         """Return rough moments in the coordinate, by the delta method."""
+        if self.free:
+            return law
         m = A.real(Fraction(law.mean))
         spread = law.spread / float(self.speed(A, m).mid())
         shift = spread * spread / 2 if self.high is None and self.low is not None else 0.0

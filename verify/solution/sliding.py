@@ -114,4 +114,3 @@ class _Sliding:
         outside = other.cdf(A, c1 - 1) + other.sf(A, c2) + part
         difference = (self.second_outside - outside).mid()
         return difference if self.rising else -difference
-

@@ -16,7 +16,8 @@ from verify.problem.hypothesis import Form
 from verify.problem.numbers import Exact, exact
 from verify.solution.attainable import require_attainable
 from verify.solution.conditions import Conditions
-from verify.solution.continuous_window import ContinuousSearch, solve_continuous_window
+from verify.solution.continuous_search import ContinuousSearch
+from verify.solution.continuous_window import solve_continuous_window
 from verify.solution.critical import CriticalFunction, Region
 from verify.solution.lattice_window import LatticeSearch, solve_lattice_window
 from verify.solution.one_sided import Tail, TailProblem

@@ -19,6 +19,11 @@ FAR = 8.0
 STEPS = 15
 """Newton steps on normal scores before they are given up."""
 
+GOOD_START = 1e-4
+"""Newton steps on normal scores end below this share of a standard deviation: the scores are no better."""
+
+HALVINGS = 14
+
 
 @dataclass(frozen=True)
 class Rough:
@@ -76,7 +81,7 @@ def window_start(laws: tuple[Rough, ...], level: float, outside: bool) -> tuple[
 def _half_width(delta: float, level: float) -> float:
     """Half width h with P(abs(Z + delta) < h) = level, by bisection."""
     below, above = 0.0, delta + 45.0
-    for _ in range(24):
+    for _ in range(HALVINGS):
         h = (below + above) / 2
         inside = upper_tail(-h - delta) - upper_tail(h - delta)
         below, above = (h, above) if inside < level else (below, h)
@@ -121,7 +126,7 @@ def scored_window(
         a, b = a - out_a, b + out_b
         if not a < b or math.isnan(a + b):
             return ends
-        if abs(out_a) + abs(out_b) < 1e-9 * reach:
+        if abs(out_a) + abs(out_b) < GOOD_START * reach:
             return a, b
     return ends
 

@@ -2,10 +2,11 @@
 
 from __future__ import annotations
 
+import math
 from dataclasses import dataclass
 from typing import Any
 
-from verify.arithmetic.ball import balls
+from verify.arithmetic.ball import balls, magnitude
 from verify.arithmetic.enclosure import Enclosure
 from verify.errors import UndecidedError
 from verify.laws import Law
@@ -56,8 +57,7 @@ def rough_laws(laws: tuple[Law, ...]) -> tuple[tuple[Rough, ...], int, bool]:
                 return rough, 0, True
             gap = (moments[1][0] - moments[0][0]) / moments[0][1]
             if gap > 0 or gap < 0:
-                closeness = abs(gap).log() / A.log(A.real(2))
-                return rough, max(0, -int(float(closeness.mid()))), bool(gap > 0)
+                return rough, max(0, -(magnitude(gap) or 0)), bool(gap > 0)
         bits *= 2
     raise UndecidedError("the laws at the two limits cannot be told apart")
 
@@ -80,7 +80,6 @@ def search_precision(
     """
     scale = max(abs(law.mean) + law.spread for law in rough)
     with balls(64) as A:
-        sides = [side for level in levels for side in (level, 1 - level)]
-        depth = max((float((-A.log(A.real(side)) / A.log(A.real(2))).mid()) for side in sides), default=0.0)
-        size = float((A.log(A.real(int(scale) + 2)) / A.log(A.real(2))).mid())
-        return base + int((2 if narrow else 1) * depth + 1.5 * size) + 2 * closeness
+        sides = [A.real(side) for level in set(levels) for side in (level, 1 - level)]
+        depth = max(0, *(-(magnitude(side) or 0) for side in sides))
+    return base + (2 if narrow else 1) * depth + int(1.5 * math.log2(scale + 2)) + 2 * closeness
