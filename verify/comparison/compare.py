@@ -18,6 +18,7 @@ from verify.comparison.scipy_route import scipy_opinion
 from verify.solution.second_engine import second_engine
 
 if TYPE_CHECKING:
+    from verify.arithmetic.enclosure import Enclosure
     from verify.solution.solve import Solution
 
 ROUTES: dict[str, Callable[[Question], Answer]] = {
@@ -140,8 +141,13 @@ def _truth(solution: Solution) -> Truth:
     for cutoff, mass in known.masses.items():
         if mass > 0:
             scales[cutoff.replace("c", "gamma", 1)] = level / mass
+    scales |= {name: known.spread for name, value in numbers.items() if name.startswith("c") and _near_zero(value)}
     step = abs(float(solution.family.scale)) if solution.laws[0].lattice else 0.0
     return Truth(numbers, scales, step, known)
+
+
+def _near_zero(value: Enclosure) -> bool:
+    return value.contains(0) and not value.exact
 
 
 def _positive(target: Any) -> Fraction:

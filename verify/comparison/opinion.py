@@ -53,7 +53,7 @@ class Truth:
         Cutoffs, fractions, expectations.
     scales : dict of str to Fraction
         For an expectation, its target (for the moment condition: level times spread); for a fraction, level
-        / mass.
+        / mass; for a cutoff that may be 0, the spread of V.
     step : float
         Distance of lattice points of V; 0.0 for a continuous law.
     """
@@ -99,6 +99,8 @@ def _digits(name: str, value: float, truth: Truth) -> int:
         far = abs(Fraction(value) - enclosure.mid) > Fraction(truth.step) / 4
         same = not far and not (truth.step == 1.0 and value != enclosure.mid)
         return DOUBLE_DIGITS if same else significant_digits(value, enclosure)
+    if name.startswith("c") and name in truth.scales:
+        return digits_on_scale(value, enclosure, truth.scales[name])
     return significant_digits(value, enclosure)
 
 

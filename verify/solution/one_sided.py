@@ -13,7 +13,7 @@ from dataclasses import dataclass
 from fractions import Fraction
 from typing import Any
 
-from verify.arithmetic.ball import accuracy_bits, around, balls, midpoint, to_enclosure
+from verify.arithmetic.ball import accuracy_bits, around, balls, magnitude, midpoint, radius, to_enclosure
 from verify.arithmetic.enclosure import Enclosure
 from verify.arithmetic.exact import rationals
 from verify.errors import NotRational, UndecidedError
@@ -172,13 +172,21 @@ class TailProblem:
         for _ in range(40):
             with balls(bits) as A:
                 box = self._sharpen(A, centre, box)
-                reached = accuracy_bits(box) if box is not None else 0
+                reached = self._reached(box, wanted) if box is not None else 0
                 if box is not None:
                     if reached >= wanted:
                         return Tail(to_enclosure(box), None, to_enclosure(self.beyond(A, box)), bits)
                     centre = midpoint(box)
             bits = min(2 * bits, wanted + (bits - reached) + 32) if reached > 0 else bits + bits // 4 + 64
         raise UndecidedError("no interval around the cutoff could be proved to contain it")
+
+    def _reached(self, box: Any, wanted: int) -> int:
+        """Bits to which the cutoff is known: of its own size, or, where it may be 0, far below the law's spread."""
+        if box.contains(0):
+            spread = math.frexp(self.rough.spread)[1]
+            width = magnitude(radius(box))
+            return wanted if width is None or width < spread - 2 * wanted else 0
+        return accuracy_bits(box)
 
     def _sharpen(self, A: Any, centre: Any, box: Any) -> Any:
         lack = A.real(self.level) - self.beyond(A, centre)

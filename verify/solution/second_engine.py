@@ -57,15 +57,18 @@ def second_engine(solution: Solution) -> dict[str, int]:
         if (value := getattr(solution, name)) is not None
     }
     found = _tail(solution, A) if solution.form is Form.ONE_SIDED else _window(solution, A)
+    spread = abs(A.real(solution.family.scale)) * A.mp.mpf(rough_laws(solution.laws)[0][0].spread)
     ordered = found[::-1] if solution.flipped else found
     return {
-        name: agreeing_digits(A, value, enclosure, solution.digits)
+        name: agreeing_digits(A, value, enclosure, solution.digits, spread)
         for (name, enclosure), value in zip(proven.items(), ordered, strict=True)
     }
 
 
-def agreeing_digits(A: High, value: Any, enclosure: Enclosure, most: int) -> int:
+def agreeing_digits(A: High, value: Any, enclosure: Enclosure, most: int, whole: Any = 0) -> int:
     """Return the significant digits to which an mpmath number agrees with an enclosure, at most so many.
+
+    Where the enclosure holds 0, the digits are those of ``whole`` instead.
 
     Examples
     --------
@@ -78,9 +81,8 @@ def agreeing_digits(A: High, value: Any, enclosure: Enclosure, most: int) -> int
     error = abs(value - middle) + A.real(enclosure.radius)
     if error == 0:
         return most
-    if middle == 0 or error >= abs(middle):
-        return 0
-    return max(0, min(most, int(-A.mp.log10(error / abs(middle)))))
+    size = whole if enclosure.contains(0) else abs(middle)
+    return 0 if error >= size else min(most, int(-A.mp.log10(error / size)))
 
 
 def _conditions(solution: Solution) -> Conditions:
