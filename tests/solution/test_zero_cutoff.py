@@ -3,8 +3,8 @@
 from fractions import Fraction
 
 import pytest
-
 from build import density, derivation
+
 from verify.comparison.compare import compare
 from verify.problem.problem import Problem
 from verify.solution.solve import solve
@@ -15,7 +15,8 @@ from verify.solution.solve import solve
 def test_a_normal_mean_at_level_one_half(null, digits):
     """By symmetry P(V > 0) = 1/2."""
     solution = solve(Problem(density("normal mean"), null, "1/2", 3), digits, derivation("normal mean"))
-    assert solution.c.contains(0) and solution.c.radius < Fraction(1, 10**digits)
+    assert solution.c.contains(0)
+    assert solution.c.radius < Fraction(1, 10**digits)
     assert solution.side_conditions[0].expectation.contains(Fraction(1, 2))
 
 
@@ -23,4 +24,5 @@ def test_double_precision_is_held_against_the_spread():
     solution = solve(Problem(density("normal mean"), "t <= 0", "1/2", 3), 30, derivation("normal mean"))
     comparison = compare(solution)
     assert all(opinion.digits["c"] >= 14 for opinion in comparison.opinions)
-    assert comparison.mpmath.digits == {"c": 30} and not comparison.flags
+    assert comparison.mpmath.digits == {"c": 30}
+    assert not comparison.flags
