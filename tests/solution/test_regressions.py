@@ -30,6 +30,7 @@ FAR_APART = [
 
 MANY = [
     (COIN, "t <= 4/37*sqrt(2)/2 or t >= 7/37*sqrt(2)/2", "9e-136", 1_000_000),
+    (POISSON, "t <= 3 or t >= 4", "1e-186", 10_000_000),
 ]
 """Many observations."""
 
@@ -53,6 +54,7 @@ CONTINUOUS = [
     (TAIL, "t = 7/11", f"{10**30 - 1}/{10**30}", 1000),
     (DIAMETER, "t = 11/5", f"{10**29 - 1}/{10**29}", 100_000),
     (DELAY, "17/11 <= t <= 1717/11", "8e-164", 100),
+    (DELAY, "1000000 <= t <= 101000000", "1e-42", 5),
     (DELAY, "397/20 <= t <= 397/10", f"{10**26 - 1}/{10**26}", 4),
 ]
 """Windows that accept almost nothing, and ends that are each far out under one law."""

@@ -24,6 +24,8 @@ NOISE_BITS = 40
 """A step that may be 0 counts as settled below this share of the window's width."""
 NARROW = 1e-4
 """Below this level a window that rejects inside is narrow: both ends are sought from one centre."""
+FEW_SCALES = 8.0
+"""Longest step outward into a falling density, in lengths over which it falls by a factor e."""
 
 Ends = tuple[Any, Any]
 
@@ -152,8 +154,12 @@ class ContinuousSearch:
         few = few if self.coordinate.free else min(few, 2.0)
         if abs(u) < 1e-3 * min(few, 1.0):
             return midpoint(c + side * e)
-        cap = few if u > 0 else self._inward_reach(A, c, side, few)
-        distance = extend(u, side * self._log_slope(A, c), cap)
+        slope = side * self._log_slope(A, c)
+        if u <= 0:
+            cap = self._inward_reach(A, c, side, few)
+        else:
+            cap = few if slope >= 0 else max(few, FEW_SCALES / -slope)
+        distance = extend(u, slope, cap)
         return midpoint(self.coordinate.place(A, self.coordinate.of(A, c) + side * A.real(Fraction(distance))))
 
     def _inward_reach(self, A: Any, c: Any, side: int, few: float) -> float:

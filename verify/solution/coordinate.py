@@ -5,6 +5,7 @@ A first cutoff of 1e-26 makes absolute steps meaningless; in log c it is an ordi
 
 from __future__ import annotations
 
+import math
 from dataclasses import dataclass
 from fractions import Fraction
 from typing import Any
@@ -75,10 +76,16 @@ class Coordinate:
         return 1.0 if self.free else float(self.speed(A, c).mid())
 
     def rough(self, A: Any, law: Rough) -> Rough:
-        """Return rough moments in the coordinate, by the delta method."""
+        """Return rough moments in the coordinate.
+
+        For a half-line those of the log-normal law with these moments; else by the delta method.
+        """
         if self.free:
             return law
         m = A.real(Fraction(law.mean))
         spread = law.spread / float(self.speed(A, m).mid())
-        shift = spread * spread / 2 if self.high is None and self.low is not None else 0.0
-        return Rough(float(self.of(A, m).mid()) - shift, spread)
+        place = float(self.of(A, m).mid())
+        if self.high is not None and self.low is not None:
+            return Rough(place, spread)
+        variance = math.log1p(spread * spread)
+        return Rough(place - math.copysign(variance / 2, spread), math.sqrt(variance))

@@ -65,9 +65,12 @@ class LatticeSearch:
 
     def cell(self) -> Cell:
         """Return the cell, or the best guess that a proof may still move by a little."""
-        with balls(self.prec) as A:
-            found = self._fast(A)
-        return found if found is not None else self.bracket(self.prec)
+        for bits in (self.prec, 2 * self.prec):
+            with balls(bits) as A:
+                found = self._fast(A)
+            if found is not None:
+                return found
+        return self.bracket(self.prec)
 
     def _first(self) -> Cell:
         levels = tuple(float(level) for level in self.conditions.levels)
