@@ -21,7 +21,7 @@ from verify.solution.lattice_window import LatticeSearch, solve_lattice_window
 from verify.solution.window import SEARCH_BITS, Window, rough_laws, search_precision
 
 ALPHA = Fraction(1, 20)
-DIGITS, BITS, RUNS = 50, 200, 25
+DIGITS, BITS, RUNS = 50, 200, 60
 
 PROBLEMS: list[tuple[Law, ...]] = [
     *[(Poisson(Fraction(m - 2 * round(m**0.5))), Poisson(Fraction(m + 2 * round(m**0.5)))) for m in (100, 1000, 4000)],
@@ -66,13 +66,15 @@ def all_pairs(low: float, high: float) -> int:
     return int(((g1 >= 0) & (g1 <= 1) & (g2 >= 0) & (g2 <= 1)).sum())
 
 
-def best(call: Callable[[], object]) -> float:
-    times = []
+def ratio(first: Callable[[], object], second: Callable[[], object]) -> float:
+    """Ratio of the shortest times of two calls, made in turn: a machine's slow spells meet both."""
+    times: tuple[list[float], list[float]] = ([], [])
     for _ in range(RUNS):
-        start = time.perf_counter()
-        call()
-        times.append(time.perf_counter() - start)
-    return min(times)
+        for call, found in zip((first, second), times, strict=True):
+            start = time.perf_counter()
+            call()
+            found.append(time.perf_counter() - start)
+    return min(times[0]) / min(times[1])
 
 
 @pytest.mark.bench
@@ -81,14 +83,12 @@ def test_report_ratios() -> None:
     for laws in PROBLEMS:
         for outside, used in ((False, laws), (True, laws), (True, laws[:1])):
             window = solve_warm(used, outside)
-            ratio = best(lambda u=used, o=outside: solve_warm(u, o)) / best(
-                lambda u=used, w=window: proof_evaluations(u, w)
-            )
+            part = ratio(lambda u=used, o=outside: solve_warm(u, o), lambda u=used, w=window: proof_evaluations(u, w))
             form = ("point null" if len(used) == 1 else "interval null") if outside else "outside null"
-            print(f"{laws[0]!s:60} {form:14} solve / proof evaluations = {ratio:.1f}")
+            print(f"{laws[0]!s:60} {form:14} solve / proof evaluations = {part:.1f}")
     for m in (100, 1000, 4000):
         low, high = m - 2 * round(m**0.5), m + 2 * round(m**0.5)
         laws = (Poisson(Fraction(low)), Poisson(Fraction(high)))
-        ratio = best(lambda a=low, b=high: all_pairs(a, b)) / best(lambda u=laws: solve_warm(u, False))
-        print(f"Poisson mean {m}: all pairs in doubles / our proved solve = {ratio:.1f}")
+        part = ratio(lambda a=low, b=high: all_pairs(a, b), lambda u=laws: solve_warm(u, False))
+        print(f"Poisson mean {m}: all pairs in doubles / our proved solve = {part:.1f}")
     assert all_pairs(80, 120) >= 1

@@ -60,7 +60,8 @@ class Balls:
         if kind is int:
             return arb(x)
         if kind is Fraction:
-            return _remembered(self._known, x, _ball_of)
+            entry = self._known.get(id(x))
+            return _remembered(self._known, x, _ball_of) if entry is None else entry[1]
         return evaluate(x, self, {})
 
     def interval(self, enclosure: Enclosure) -> Ball:
@@ -92,9 +93,10 @@ class Balls:
 
     def gamma(self, x: Any) -> Ball:
         """Gamma function."""
-        if type(x) is Fraction:
-            return _remembered(self._gammas, x, lambda shape: self.real(shape).gamma())
-        return self.real(x).gamma()
+        if type(x) is not Fraction:
+            return self.real(x).gamma()
+        entry = self._gammas.get(id(x))
+        return _remembered(self._gammas, x, lambda shape: self.real(shape).gamma()) if entry is None else entry[1]
 
     def factorial(self, k: Any) -> Ball:
         """K! = Gamma(k + 1)."""
@@ -163,10 +165,10 @@ def _ball_of(x: Fraction) -> Ball:
 
 
 def _remembered(known: dict[int, tuple[Any, Ball]], x: Fraction, compute: Callable[[Fraction], Ball]) -> Ball:
-    """Look a parameter up by its identity (the entry keeps it alive); a law asks for the same few again and again."""
-    entry = known.get(id(x))
-    if entry is not None:
-        return entry[1]
+    """Compute a value and remember it by the identity of its parameter, which the entry keeps alive.
+
+    A law asks for the same few again and again.
+    """
     if len(known) >= MOST_REMEMBERED:
         known.clear()
     value = compute(x)

@@ -75,7 +75,7 @@ class ContinuousSearch:
             return found
 
     def _first(self, A: Any) -> Ends:
-        contents = [A.real(1 - level if self.conditions.outside else level) for level in self.conditions.levels]
+        contents = [1 - A.real(level) if self.conditions.outside else A.real(level) for level in self.conditions.levels]
         if all(content.mid() < NARROW for content in contents):
             narrow = self._narrow(A, contents)
             if narrow is not None:

@@ -80,6 +80,6 @@ def search_precision(
     """
     scale = max(abs(law.mean) + law.spread for law in rough)
     with balls(64) as A:
-        sides = [A.real(side) for level in set(levels) for side in (level, 1 - level)]
+        sides = [side for level in levels for side in (A.real(level), 1 - A.real(level))]
         depth = max(0, *(-(magnitude(side) or 0) for side in sides))
     return base + (2 if narrow else 1) * depth + int(1.5 * math.log2(scale + 2)) + 2 * closeness
