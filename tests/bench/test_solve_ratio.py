@@ -14,11 +14,8 @@ from scipy import stats
 
 from verify.arithmetic.ball import balls
 from verify.laws import Binomial, Gamma, Law, Normal, Poisson
-from verify.solution.conditions import Conditions
-from verify.solution.continuous_search import ContinuousSearch
-from verify.solution.continuous_window import solve_continuous_window
-from verify.solution.lattice_window import LatticeSearch, solve_lattice_window
-from verify.solution.window import SEARCH_BITS, Window, rough_laws, search_precision
+from verify.solution.two_sided import solve_window, window_search
+from verify.solution.window import Window
 
 ALPHA = Fraction(1, 20)
 DIGITS, BITS, RUNS = 50, 200, 60
@@ -32,13 +29,7 @@ PROBLEMS: list[tuple[Law, ...]] = [
 
 
 def solve_warm(laws: tuple[Law, ...], outside: bool) -> Window:
-    rough, closeness, rising = rough_laws(laws)
-    conditions = Conditions(laws, (ALPHA,) * len(laws), outside, tuple(law.mean for law in rough))
-    narrow = not outside and not laws[0].lattice
-    prec = search_precision(rough, (ALPHA,) * len(laws), closeness, narrow=narrow, base=SEARCH_BITS[laws[0].lattice])
-    if laws[0].lattice:
-        return solve_lattice_window(LatticeSearch(conditions, rough, rising, prec), DIGITS)
-    return solve_continuous_window(ContinuousSearch(conditions, rough, rising, prec), DIGITS)
+    return solve_window(window_search(laws, (ALPHA,) * len(laws), outside), DIGITS)
 
 
 def proof_evaluations(laws: tuple[Law, ...], window: Window) -> None:

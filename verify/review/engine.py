@@ -12,14 +12,11 @@ from typing import Any
 from verify.arithmetic.ball import balls, to_enclosure
 from verify.laws import Law
 from verify.review.numbers import complement
-from verify.solution.conditions import Conditions, end_fractions
-from verify.solution.continuous_search import ContinuousSearch
-from verify.solution.continuous_window import solve_continuous_window
+from verify.solution.conditions import end_fractions
 from verify.solution.critical import CriticalFunction
-from verify.solution.lattice_window import LatticeSearch, solve_lattice_window
 from verify.solution.one_sided import TailProblem
 from verify.solution.precision import bits_for
-from verify.solution.start import Rough
+from verify.solution.two_sided import Search, solve_window, window_search
 from verify.solution.window import rough_laws, search_precision
 
 
@@ -42,19 +39,9 @@ class TwoSided:
     outside: bool
 
     @cached_property
-    def _rough(self) -> tuple[tuple[Rough, ...], int, bool]:
-        return rough_laws(self.laws)
-
-    @cached_property
-    def conditions(self) -> Conditions:
-        """The side conditions."""
-        return Conditions(self.laws, self.levels, self.outside, tuple(law.mean for law in self._rough[0]))
-
-    @cached_property
-    def prec(self) -> int:
-        """Bits of the search."""
-        narrow = not self.outside and not self.laws[0].lattice
-        return search_precision(self._rough[0], self.levels, self._rough[1], narrow=narrow)
+    def search(self) -> Search:
+        """The search for the window."""
+        return window_search(self.laws, self.levels, self.outside)
 
     def solve(self, digits: int) -> CriticalFunction:
         """Search for the window and prove it.
@@ -66,11 +53,7 @@ class TwoSided:
         """
         if not self.outside and len(self.laws) == 1:
             return self._inside_at_one_point(digits)
-        rough, _, rising = self._rough
-        if self.laws[0].lattice:
-            window = solve_lattice_window(LatticeSearch(self.conditions, rough, rising, self.prec), digits)
-        else:
-            window = solve_continuous_window(ContinuousSearch(self.conditions, rough, rising, self.prec), digits)
+        window = solve_window(self.search, digits)
         region = "outside" if self.outside else "inside"
         return CriticalFunction(region, window.c1, window.c2, window.phi1, window.phi2)  # type: ignore[arg-type]
 
@@ -94,8 +77,8 @@ class TwoSided:
         if c1 >= c2 or (low is not None and c1 < low) or (high is not None and c2 > high):
             return None
         wanted = bits_for(digits)
-        with balls(wanted + self.prec - 56) as A:
-            first, second = end_fractions(self.conditions, A, c1, c2)
+        with balls(wanted + self.search.prec - 56) as A:
+            first, second = end_fractions(self.search.conditions, A, c1, c2)
             certain = first > 0 and first < 1 and second > 0 and second < 1
             if not certain or min(first.rel_accuracy_bits(), second.rel_accuracy_bits()) < wanted - 16:
                 return None

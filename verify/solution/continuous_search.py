@@ -17,7 +17,8 @@ from verify.solution.conditions import Conditions, improved_start, linear_system
 from verify.solution.coordinate import Coordinate
 from verify.solution.one_sided import TailProblem
 from verify.solution.sliding_continuous import slide_continuous
-from verify.solution.start import Rough, extend, window_start
+from verify.solution.start import extend, window_start
+from verify.solution.window import WindowSearch
 
 MOST_STEPS = 60
 NOISE_BITS = 40
@@ -31,25 +32,8 @@ Ends = tuple[Any, Any]
 
 
 @dataclass(frozen=True)
-class ContinuousSearch:
-    """Search for the window of a continuous law.
-
-    Attributes
-    ----------
-    conditions : Conditions
-        The side conditions.
-    rough : tuple of Rough
-        Rough moments of the laws.
-    rising : bool
-        Whether the second law has the larger mean.
-    prec : int
-        Bits of the search.
-    """
-
-    conditions: Conditions
-    rough: tuple[Rough, ...]
-    rising: bool
-    prec: int
+class ContinuousSearch(WindowSearch):
+    """Search for the window of a continuous law."""
 
     @cached_property
     def coordinate(self) -> Coordinate:
@@ -155,11 +139,11 @@ class ContinuousSearch:
         if abs(u) < 1e-3 * min(few, 1.0):
             return midpoint(c + side * e)
         slope = side * self._log_slope(A, c)
-        if u <= 0:
-            cap = self._inward_reach(A, c, side, few)
-        else:
-            cap = few if slope >= 0 else max(few, FEW_SCALES / -slope)
-        distance = extend(u, slope, cap)
+        if u < 0:
+            few = self._inward_reach(A, c, side, few)
+        elif slope < 0:
+            few = max(few, FEW_SCALES / -slope)
+        distance = extend(u, slope, few)
         return midpoint(self.coordinate.place(A, self.coordinate.of(A, c) + side * A.real(Fraction(distance))))
 
     def _inward_reach(self, A: Any, c: Any, side: int, few: float) -> float:

@@ -30,8 +30,8 @@ from verify.solution.conditions import (
 )
 from verify.solution.precision import bits_for
 from verify.solution.sliding import slide
-from verify.solution.start import Rough, extend, extend_far, window_start
-from verify.solution.window import Window
+from verify.solution.start import extend, extend_far, window_start
+from verify.solution.window import Window, WindowSearch
 
 MOST_STEPS = 40
 """Steps of the fast search before the bracketing one takes over."""
@@ -43,25 +43,8 @@ Cell = tuple[int, int]
 
 
 @dataclass(frozen=True)
-class LatticeSearch:
-    """Search for the cell of the window.
-
-    Attributes
-    ----------
-    conditions : Conditions
-        The side conditions.
-    rough : tuple of Rough
-        Rough moments of the laws.
-    rising : bool
-        Whether the second law has the larger mean.
-    prec : int
-        Bits of the search.
-    """
-
-    conditions: Conditions
-    rough: tuple[Rough, ...]
-    rising: bool
-    prec: int
+class LatticeSearch(WindowSearch):
+    """Search for the cell of the window."""
 
     def cell(self) -> Cell:
         """Return the cell, or the best guess that a proof may still move by a little."""

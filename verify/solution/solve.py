@@ -15,14 +15,11 @@ from verify.notebook import Shown
 from verify.problem.hypothesis import Form
 from verify.problem.numbers import Exact, exact
 from verify.solution.attainable import require_attainable
-from verify.solution.conditions import Conditions
-from verify.solution.continuous_search import ContinuousSearch
-from verify.solution.continuous_window import solve_continuous_window
 from verify.solution.critical import CriticalFunction, Region
-from verify.solution.lattice_window import LatticeSearch, solve_lattice_window
 from verify.solution.one_sided import Tail, TailProblem
 from verify.solution.precision import bits_for
-from verify.solution.window import SEARCH_BITS, Window, rough_laws, search_precision
+from verify.solution.two_sided import solve_window, window_search
+from verify.solution.window import Window, rough_laws, search_precision
 
 if TYPE_CHECKING:
     from verify.derivation.derive import Derivation
@@ -295,17 +292,9 @@ def solve(problem: Problem, digits: int = 50, derivation: Derivation | None = No
 
 
 def _solve_two_sided(problem: Problem, derivation: Derivation, laws: tuple[Law, ...], digits: int) -> Solution:
-    outside = problem.hypothesis.form is not Form.OUTSIDE
-    rough, closeness, rising = rough_laws(laws)
-    require_attainable(laws, problem.levels, rough)
-    conditions = Conditions(laws, problem.levels, outside, tuple(law.mean for law in rough))
-    narrow = not laws[0].lattice and (not outside or float(min(problem.levels, key=float)) > 0.5)
-    base = SEARCH_BITS[laws[0].lattice]
-    prec = search_precision(rough, problem.levels, closeness, narrow=narrow, base=base)
-    if laws[0].lattice:
-        window = solve_lattice_window(LatticeSearch(conditions, rough, rising, prec), digits)
-    else:
-        window = solve_continuous_window(ContinuousSearch(conditions, rough, rising, prec), digits)
+    search = window_search(laws, problem.levels, problem.hypothesis.form is not Form.OUTSIDE)
+    require_attainable(laws, problem.levels, search.rough)
+    window = solve_window(search, digits)
     return with_window(problem, derivation, laws, digits, window)
 
 

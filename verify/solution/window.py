@@ -10,6 +10,7 @@ from verify.arithmetic.ball import balls, magnitude
 from verify.arithmetic.enclosure import Enclosure
 from verify.errors import UndecidedError
 from verify.laws import Law
+from verify.solution.conditions import Conditions
 from verify.solution.start import Rough
 
 MOST_CLOSENESS = 1 << 16
@@ -37,6 +38,28 @@ class Window:
     phi1: Enclosure | None
     phi2: Enclosure | None
     conditions: tuple[Enclosure, ...]
+    prec: int
+
+
+@dataclass(frozen=True)
+class WindowSearch:
+    """What a search for the window knows.
+
+    Attributes
+    ----------
+    conditions : Conditions
+        The side conditions.
+    rough : tuple of Rough
+        Rough moments of the laws.
+    rising : bool
+        Whether the second law has the larger mean.
+    prec : int
+        Bits of the search.
+    """
+
+    conditions: Conditions
+    rough: tuple[Rough, ...]
+    rising: bool
     prec: int
 
 
