@@ -357,7 +357,7 @@ def make(case: Case) -> dict[str, Any]:
             "statistic": case.T,
             "log_normaliser": case.A,
             "rising": case.rising,
-            "steps": [{"name": s, "grade": "proved", "statement": f"the step {s}", "reason": ""} for s in STEPS],
+            "steps": [{"name": s, "grade": "proved", "statement": sentence(case, s), "reason": ""} for s in STEPS],
         },
         "law": case.law,
         "test": {"form": case.form, "rejects": case.rejects, **test},
@@ -373,6 +373,18 @@ def make(case: Case) -> dict[str, Any]:
         "assumptions": assumptions(case),
     }
     return statement(predicate)
+
+
+def sentence(case: Case, step: str) -> str:
+    """What a step states: of T, Q and a named law the words that the format asks for."""
+    law, t = case.law, case.density["parameter"]
+    if step == "factorisation":
+        return f"f = h(x) exp(Q T - A) with T(x) = {case.T}, Q({t}) = {case.Q}, h(x) = h, A({t}) = {case.A}"
+    if step == "law" and law["name"] != "lattice":
+        named = f"{law['name']}({', '.join(f'{key} = {text}' for key, text in law['parameters'].items())})"
+        plain = (law["scale"], law["shift"]) == ("1", "0")
+        return f"T has the law {named}" if plain else f"T = {law['scale']}*Y + {law['shift']} with Y of law {named}"
+    return f"the step {step}"
 
 
 def opinion(values: dict[str, Any], test: dict[str, Any]) -> dict[str, Any]:
@@ -396,15 +408,17 @@ def assumptions(case: Case) -> list[str]:
     ]
 
 
-def statement(predicate: dict[str, Any]) -> dict[str, Any]:
+def statement(predicate: dict[str, Any], case: bytes = b"") -> dict[str, Any]:
+    """The statement about a case file with a fresh seal, that is the digest of all of it but the seal."""
     predicate = {k: v for k, v in predicate.items() if k != "seal"}
-    predicate["seal"] = hashlib.sha256(canonical(predicate)).hexdigest()
-    return {
+    found = {
         "_type": "https://in-toto.io/Statement/v1",
         "predicateType": "tag:sidecheck.invalid,2026:certificate/v1",
-        "subject": [{"name": "invented.case.toml", "digest": {"sha256": "0" * 64}}],
+        "subject": [{"name": "invented.case.toml", "digest": {"sha256": hashlib.sha256(case).hexdigest()}}],
         "predicate": predicate,
     }
+    seal = hashlib.sha256(canonical(found)).hexdigest()
+    return {**found, "predicate": {**predicate, "seal": seal}}
 
 
 def alternative(case: Case) -> str:

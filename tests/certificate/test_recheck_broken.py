@@ -148,5 +148,5 @@ def test_the_test_of_another_form(maker: ModuleType, certificates: dict[str, Any
     predicate["problem"]["null"] = "b <= 1 or b >= 3"
     predicate["problem"]["alternative"] = "1 < b < 3"
     predicate["test"] |= {"form": "outside null", "rejects": "inside"}
-    predicate["assumptions"][0] = f"theorem: {recheck.THEOREMS['outside null']}"
+    predicate["assumptions"][0] = f"theorem: {recheck.BETWEEN}"
     assert status(maker, maker.statement(predicate)) == 1

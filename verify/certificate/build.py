@@ -111,13 +111,14 @@ def build_statement(
         "issued": issued,
     }
     predicate["assumptions"] = assumptions(solution.form, steps, law)
-    predicate["seal"] = hashlib.sha256(canonical(predicate)).hexdigest()
-    return {
+    statement = {
         "_type": STATEMENT,
         "subject": [{"name": subject.name, "digest": {"sha256": subject.sha256}}],
         "predicateType": PREDICATE,
         "predicate": predicate,
     }
+    predicate["seal"] = hashlib.sha256(canonical(statement)).hexdigest()
+    return statement
 
 
 def _problem(solution: Solution, subject: Subject, digits: int) -> dict[str, Any]:
