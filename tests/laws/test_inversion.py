@@ -1,6 +1,6 @@
 """Inversion of transforms: against closed forms, against itself along other paths, against mpmath."""
 
-from collections.abc import Iterable
+from collections.abc import Sequence
 from dataclasses import dataclass
 from fractions import Fraction
 from math import comb, factorial
@@ -11,7 +11,7 @@ import pytest
 from flint import acb
 
 from verify.arithmetic.ball import balls
-from verify.arithmetic.inversion import DENSITY, SHORTFALL, TAIL, Inversion
+from verify.arithmetic.inversion import DENSITY, SHORTFALL, SLOPE, TAIL, Inversion
 from verify.arithmetic.transforms import Bessel, GammaRatio, Secant, Transform
 from verify.laws.gamma import Gamma
 
@@ -32,7 +32,7 @@ class Interval(Transform):
         """(n - j) b + j a."""
         return [(n - j) * A.real(self.b) + j * A.real(self.a) for j in range(n + 1)]
 
-    def terms(self, A: Any, z: Any, n: int, which: Iterable[int]) -> Any:
+    def terms(self, A: Any, z: Any, n: int, which: Sequence[int]) -> Any:
         """C(n, j) (-1)**j exp(rate z) / z**n."""
         rates = self.rates(A, n)
         return sum(((-1) ** j * comb(n, j) * (z * rates[j]).exp() for j in which), acb(0)) / z**n
@@ -47,7 +47,7 @@ class Interval(Transform):
 
 
 def invert(A, transform, n, eta, v, c, kind, mean=0):  # type: ignore[no-untyped-def]
-    return Inversion(transform, n, A.real(eta), A.real(v), A.real(c), kind, A.real(mean)).value(A)
+    return Inversion(transform, n, A.real(eta), A.real(v), kind, A.real(mean)).value(A, A.real(c))
 
 
 def test_truncated_exponential_agrees_with_the_inclusion_exclusion_density() -> None:
@@ -134,3 +134,32 @@ def test_von_mises_sum_agrees_with_a_real_integral_in_mpmath() -> None:
         found = invert(A, Bessel(), 8, Fraction(2), Fraction(9, 2), Fraction(5, 4), DENSITY)
     assert abs(float(found.mid()) - wanted) < 1e-6
     assert found.rel_accuracy_bits() > 40
+
+
+def test_a_known_path_gives_what_a_new_one_gives() -> None:
+    """One path serves every kernel, other parameter values and other points; far from it, it is refused."""
+    transform = Bessel()
+    with balls(120) as A:
+        first = Inversion(transform, 5, A.real(2), A.real(Fraction(13, 4)), DENSITY)
+        first.value(A, A.real(Fraction(11, 4)))
+        questions = ((2, "7/2", TAIL), (1, "27/8", TAIL), (1, "10/3", SLOPE), (2, "13/4", SHORTFALL))
+        for eta, place, kind in questions:
+            v = Fraction(place)
+            question = Inversion(transform, 5, A.real(eta), A.real(v), kind, A.real(Fraction(7, 2)), first.paths)
+            reused = question.known(A, upper=True)
+            assert reused is not None
+            fresh = Inversion(transform, 5, A.real(eta), A.real(v), kind, A.real(Fraction(7, 2)))
+            assert reused.overlaps(fresh.value(A, A.real(Fraction(5, 2))))
+        assert len(first.paths) == 1
+        beyond = Inversion(transform, 5, A.real(2), A.real(Fraction(1, 2)), TAIL, paths=first.paths)
+        assert beyond.known(A, upper=False) is None
+
+
+def test_slope_is_the_derivative_of_the_density() -> None:
+    v, h = Fraction(-3), Fraction(1, 2**30)
+    transform = GammaRatio(Fraction(0), Fraction(5, 2))
+    with balls(160) as A:
+        low, high = (invert(A, transform, 3, 3, v + s * h, Fraction(2), DENSITY) for s in (-1, 1))
+        slope = invert(A, transform, 3, 3, v, Fraction(2), SLOPE)
+        assert abs((high - low) / (2 * A.real(h)) - slope) < A.real(Fraction(1, 2**55))
+        assert slope.rel_accuracy_bits() > 120

@@ -38,7 +38,9 @@ def k0_both(z: ComplexBall, prec: int) -> tuple[ComplexBall, ComplexBall]:
     True True
     """
     if not z.real >= 0:
-        minus, plus = k0_both(acb(-z.real, z.imag), prec)
+        with balls(max(prec, z.bits())):
+            mirrored = acb(-z.real, z.imag)
+        minus, plus = k0_both(mirrored, prec)
         return plus.conjugate(), minus.conjugate()
     size = float(abs(z).upper())
     if size > FAR * prec:

@@ -53,7 +53,7 @@ def evaluate(expr: Any, A: Any, values: Mapping[str, Any]) -> Any:
         return _fold(args, lambda a, b: a + b)
     if name == "Mul":
         return _fold(args, lambda a, b: a * b)
-    simple = _SIMPLE.get(name)
+    simple = SIMPLE.get(name)
     if simple is not None:
         return getattr(A, simple)(*args)
     return A.function(name, *args)
@@ -81,4 +81,5 @@ _LEAVES: dict[str, Callable[[Any, Any], Any]] = {
     "Pi": lambda expr, A: A.pi,
     "Exp1": lambda expr, A: A.exp(A.real(1)),
 }
-_SIMPLE = {"exp": "exp", "log": "log", "factorial": "factorial", "gamma": "gamma"}
+SIMPLE = {"exp": "exp", "log": "log", "factorial": "factorial", "gamma": "gamma"}
+"""Functions that an arithmetic offers as methods of its own."""

@@ -5,12 +5,14 @@ V has density exp(eta v) g(v) / N(eta)**n, and g(v) is the integral of N(z)**n e
 vertical line. Integrated against exp(s w), s = eta - z, over w < v (Re s > 0) or w > v (Re s < 0), this gives
 kernels in s:
 
-    density 1;  P(V <= v) and -P(V > v): 1/s;  E[(m - V); V <= v] and E[(V - m); V > v]: (m - v)/s + 1/s**2.
+    density 1, its derivative s;  P(V <= v) and -P(V > v): 1/s;
+    E[(m - V); V <= v] and E[(V - m); V > v]: (m - v)/s + 1/s**2.
 
 The path starts at a real point c (the saddle point, so that nothing cancels), goes up to c + iH, and from
-there each term of N(z)**n is taken along the horizontal ray on which it falls exponentially. Cauchy's theorem
+there each term of N(z)**n is taken along the diagonal ray on which it falls exponentially. Cauchy's theorem
 allows it: the terms are analytic above the real axis and vanish at infinity between the vertical line and the
-ray. By symmetry the lower half is the complex conjugate.
+ray. By symmetry the lower half is the complex conjugate. The values of N(z)**n along a path
+(:mod:`verify.arithmetic.path`) serve every kernel, every parameter value and every v nearby.
 
 Source: J. Gil-Pelaez, *Biometrika* 38 (1951) 481-482 (the inversion); H. E. Daniels, *Ann. Math. Statist.* 25
 (1954) 631-650 (the saddle point); the bounds are proved in :mod:`verify.arithmetic.transforms`.
@@ -24,16 +26,24 @@ from typing import Any
 
 from flint import acb, arb
 
-from verify.arithmetic.ball import Balls
-from verify.arithmetic.quadrature import path_integral
-from verify.arithmetic.transforms import NEAR, Transform
-from verify.errors import UndecidedError
+from verify.arithmetic.ball import Balls, balls, midpoint
+from verify.arithmetic.gauss import BOUND_BITS
+from verify.arithmetic.path import Path, path_through
+from verify.arithmetic.transforms import Transform
 
 Ball = Any
-HEIGHT = 2
-FARTHEST = 1 << 24
 
-DENSITY, TAIL, SHORTFALL = "density", "tail", "shortfall"
+DENSITY, SLOPE, TAIL, SHORTFALL = "density", "slope", "tail", "shortfall"
+
+GRID = 64
+"""Bits of a path are rounded up to this, so that a search and its proof share one."""
+
+SPARE = 16
+"""A path has at least so many bits more than are asked for, and serves when no more than that are lost on it."""
+
+
+MOST_PATHS, TRIED = 32, 4
+"""Paths that are kept, and how many of the nearest are tried at a point."""
 
 
 @dataclass(frozen=True)
@@ -49,154 +59,99 @@ class Inversion:
     eta : ball
         The natural parameter.
     v : ball
-        The point, best exact.
-    c : ball
-        Where the path crosses the real axis: left of eta for the lower side, right of it for the upper side.
+        The point.
     kind : str
-        ``DENSITY``, ``TAIL`` or ``SHORTFALL``.
+        ``DENSITY``, ``SLOPE``, ``TAIL`` or ``SHORTFALL``.
     mean : ball
         E[V], for a shortfall.
+    paths : list of Path
+        Paths known so far; new ones are added.
     """
 
     transform: Transform
     n: int
     eta: Ball
     v: Ball
-    c: Ball
     kind: str
     mean: Ball = 0
-    kept: dict[int, list[Ball]] = field(default_factory=dict, compare=False, repr=False)
+    paths: list[Path] = field(default_factory=list, compare=False, repr=False)
 
-    def value(self, A: Balls) -> Ball:
-        """Return the number, for a tail the probability of the side on which c lies.
+    def known(self, A: Balls, *, upper: bool) -> Ball | None:
+        """Return the number from a path that is known, when one is good enough; a tail of the side asked for."""
+        nearest = sorted(self.paths, key=lambda path: float(abs(path.v - self.v).mid()))
+        for path in nearest[:TRIED]:
+            if path.n == self.n and path.prec >= A.prec and path.near(self.v):
+                value = self._side(self._along(path, midpoint(self.v)), path, upper=upper)
+                if value.rel_accuracy_bits() >= A.prec - SPARE:
+                    return value if self.v.is_exact() else self._side(self._along(path, self.v), path, upper=upper)
+        return None
+
+    def value(self, A: Balls, c: Ball) -> Ball:
+        """Return the number along a path that crosses the real axis at c.
+
+        For a tail it is the probability of the side on which c lies: lower for c left of eta.
 
         Raises
         ------
         UndecidedError
             At a point where a term neither falls to the left nor to the right.
         """
-        height = A.real(HEIGHT)
-        size = self._values(A, acb(self.c), None).abs_upper()
-        tolerance = A.prec - _exponent(size)
-        rates = self._rates(A)
-        total = self._rays(A, rates, height, tolerance) if rates else self._line(A, height, tolerance)
-        value = total.imag / (A.pi * self._whole(A, acb(self.eta), False).real)
-        return -value if self.kind == TAIL and self.c > self.eta else value
+        bits = -(-(A.prec + SPARE) // GRID) * GRID
+        path = path_through(self.transform, self.n, midpoint(self.v), c, self.eta, bits)
+        if len(self.paths) >= MOST_PATHS:
+            self.paths.pop(0)
+        self.paths.append(path)
+        return self._side(self._along(path, self.v), path, upper=path.c > self.eta)
 
-    def _rates(self, A: Balls) -> list[Ball]:
-        """Rates of the terms, computed once for each precision."""
-        if A.prec not in self.kept:
-            self.kept[A.prec] = self.transform.rates(A, self.n)
-        return self.kept[A.prec]
+    def _side(self, value: Ball, path: Path, *, upper: bool) -> Ball:
+        if self.kind != TAIL:
+            return value
+        right = path.c > self.eta
+        value = -value if right else value
+        return value if right == upper else 1 - value
 
-    def _whole(self, A: Balls, z: Any, analytic: bool) -> Any:
-        return self.transform.value(A, z, analytic) ** self.n
+    def _along(self, path: Path, v: Ball) -> Ball:
+        """The integral along a path, in all of its bits."""
+        with balls(path.prec) as A:
+            values = path.values(v)
+            if self.kind != DENSITY:
+                kernels = (self._kernel(self.eta - z) for z in path.places)
+                values = [value * kernel for value, kernel in zip(values, kernels, strict=True)]
+            total = sum(values, acb(0)).imag + arb(0, self._slack(path, v))
+            return total * ((self.eta - path.c) * v).exp() / (A.pi * self._whole(A).real)
+
+    def _slack(self, path: Path, v: Ball) -> Ball:
+        with balls(BOUND_BITS):
+            return path.slack(v, self._kernel_bound, self._kernel_beyond)
+
+    def _whole(self, A: Balls) -> Any:
+        return self.transform.value(A, acb(self.eta), False) ** self.n
 
     def _kernel(self, s: Any) -> Any:
-        if self.kind == DENSITY:
-            return acb(1)
-        return 1 / s if self.kind == TAIL else (self.mean - self.v) / s + 1 / s**2
+        if self.kind == SLOPE:
+            return s
+        return 1 / s if self.kind == TAIL else (self.mean - self.v + 1 / s) / s
 
-    def _kernel_bound(self, height: Ball) -> Ball:
-        if self.kind == DENSITY:
-            return arb(1)
-        return 1 / height if self.kind == TAIL else abs(self.mean - self.v) / height + 1 / height**2
-
-    def _values(self, A: Balls, z: Any, which: list[int] | None) -> Any:
-        """The integrand at a point: N(z)**n, or some of its terms, times exp(s v) and the kernel."""
+    def _kernel_bound(self, z: Any) -> Ball:
+        """Bound of the kernel over a box of z."""
         s = self.eta - z
-        value = self._whole(A, z, False) if which is None else self.transform.terms(A, z, self.n, which)
-        return value * (s * self.v).exp() * self._kernel(s)
-
-    def _sizes(self, A: Balls, z: Any, which: list[int] | None) -> Any:
-        """A ball around 0 that contains the integrand on a neighbourhood, where it is analytic; else not
-        finite.
-        """
-        kernel = abs(self._kernel(self.eta - z)).upper() * (self.eta * self.v).exp()
-        if which is None:
-            size = self.transform.size(A, z) ** self.n * (-self.v * z.real).exp()
-        else:
-            rates = self._rates(A)
-            size = sum(
-                (
-                    self.transform.term_size(A, z, self.n, j) * ((rates[j] - self.v) * z.real).exp()
-                    for j in which
-                ),
-                arb(0),
-            )
-        reach = arb(0, (size * kernel).abs_upper())
-        return acb(reach, reach)
-
-    def _along(self, A: Balls, start: Any, end: Any, which: list[int] | None, tolerance: int) -> Any:
-        def function(z: Any, analytic: bool) -> Any:
-            wide = not abs(z - z.mid()) <= A.real(NEAR)
-            return self._sizes(A, z, which) if analytic or wide else self._values(A, z, which)
-
-        return path_integral(function, start, end, tolerance=tolerance)
-
-    def _rays(self, A: Balls, rates: list[Ball], height: Ball, tolerance: int) -> Any:
-        corner = acb(self.c, height)
-        total = self._along(A, acb(self.c), corner, None, tolerance)
-        left = [j for j, rate in enumerate(rates) if rate > self.v]
-        right = [j for j, rate in enumerate(rates) if rate < self.v]
-        if len(left) + len(right) < len(rates):
-            raise UndecidedError("the point lies on (or too near) a corner of the density of the sum")
-        for which, side in ((left, -1), (right, 1)):
-            if which:
-                total += self._ray(A, corner, which, side, rates, tolerance)
-        return total
-
-    def _ray(
-        self, A: Balls, corner: Any, which: list[int], side: int, rates: list[Ball], tolerance: int
-    ) -> Any:
-        height, distance = corner.imag, 8
-        goal = A.power(A.real(2), -tolerance)
-        while True:
-            x = A.real(side * distance) + self.c
-            cut = sum((self._beyond(A, j, x, rates[j], height) for j in which), arb(0))
-            if cut < goal:
-                break
-            distance *= 2
-            if distance > FARTHEST:
-                raise UndecidedError("the point lies too near a corner of the density of the sum")
-
-        value = self._along(A, corner, acb(x.mid(), height), which, tolerance)
-        slack = arb(0, (cut + self._corner_slack(x)).abs_upper())
-        return value + acb(slack, slack)
-
-    def _corner_slack(self, x: Ball) -> Ball:
-        return arb(0) if x.is_exact() else arb("inf")
-
-    def _beyond(self, A: Balls, j: int, x: Ball, rate: Ball, height: Ball) -> Ball:
-        """Bound of the integral of a term beyond x: bound * exp((rate - v) x + eta v) / abs(rate - v) *
-        kernel.
-        """
-        if not abs(x) >= 1:
+        if self.kind in (DENSITY, SLOPE):
+            return arb(1) if self.kind == DENSITY else s.abs_upper()
+        least = s.abs_lower()
+        if not least > 0:
             return arb("inf")
-        gap = rate - self.v
-        bound = self.transform.bound(A, self.n, j, x, height) * (gap * x + self.eta * self.v).exp()
-        return bound / abs(gap) * self._kernel_bound(height)
+        return 1 / least if self.kind == TAIL else (abs(self.mean - self.v) + 1 / least) / least
 
-    def _line(self, A: Balls, height: Ball, tolerance: int) -> Any:
-        goal, top = A.power(A.real(2), -tolerance), 2
-        shift = getattr(self.transform, "shift", 0)
-        front = ((A.real(shift) * self.n - self.v) * self.c + self.eta * self.v).exp()
-        while True:
-            bound, rate = self.transform.vertical_bound(A, self.n, A.real(top))
-            cut = bound / rate * front * self._kernel_bound(A.real(top))
-            if cut < goal:
-                break
-            top += max(1, top // 4)
-            if top > FARTHEST:
-                raise UndecidedError("the transform falls too slowly to be cut")
-        value = self._along(A, acb(self.c), acb(self.c, A.real(top)), None, tolerance)
-        slack = arb(0, cut.abs_upper())
-        return value + acb(slack, slack)
+    def _kernel_beyond(self, end: Any, falls: Ball) -> Ball:
+        """A factor for the kernel beyond the end of a leg, all of which lies at least as high.
 
-
-def _exponent(size: Ball) -> int:
-    mantissa, exponent = size.mid().man_exp()
-    return int(exponent) + int(mantissa).bit_length()
+        The kernel s grows by at most exp(distance / abs(s at the end)), so it at most doubles an integral that falls
+        twice as fast as that.
+        """
+        if self.kind != SLOPE:
+            return self._kernel_bound(self.eta + acb(0, end.imag))
+        least = abs(self.eta - end).lower()
+        return 2 * abs(self.eta - end).upper() if least * falls >= 2 else arb("inf")
 
 
 def saddle_point(transform: Transform, n: int, v: Ball, start: Fraction, A: Balls) -> Fraction:

@@ -11,8 +11,8 @@ from typing import Any
 
 from flint import acb, arb
 
+from verify.arithmetic.compiled import compiled
 from verify.arithmetic.complex_ball import ComplexBalls
-from verify.arithmetic.evaluate import evaluate
 
 Ball = Any
 
@@ -35,12 +35,10 @@ def integrand(expr: Any, variable: str, values: Mapping[str, Ball], prec: int) -
         Bits.
     """
     fixed = {name: acb(value) for name, value in values.items()}
-    plain, guarded = ComplexBalls(prec, analytic=False), ComplexBalls(prec, analytic=True)
-
-    def function(z: Any, analytic: bool) -> Any:
-        return evaluate(expr, guarded if analytic else plain, {**fixed, variable: z})
-
-    return function
+    plain, guarded = (
+        compiled(expr, ComplexBalls(prec, analytic=analytic), variable, fixed) for analytic in (False, True)
+    )
+    return lambda z, analytic: guarded(z) if analytic else plain(z)
 
 
 def integral(

@@ -3,7 +3,7 @@ proof.
 
 With N(z) = integral of h exp(z T) (the exponential of the log normaliser at the natural parameter z), each
 class here writes N(z)**n in the upper half-plane as a sum of terms, the term with rate r growing like exp(r
-Re z). On a ray Im z = H to the left (or right) a term with r > v (or r < v) makes N(z)**n exp(-z v) fall
+Re z). On a ray up and to the left (or right) a term with r > v (or r < v) makes N(z)**n exp(-z v) fall
 exponentially. ``bound`` proves how small it is beyond a point:
 |term at z| <= bound(...) * exp(r Re z) for all z further out on the ray.
 
@@ -12,9 +12,8 @@ Constant factors of N are left out everywhere: they cancel, because laws only ne
 
 from __future__ import annotations
 
-from collections.abc import Callable, Iterable
-from dataclasses import dataclass, field
-from fractions import Fraction
+from collections.abc import Sequence
+from dataclasses import dataclass
 from math import comb
 from typing import Any
 
@@ -24,37 +23,6 @@ from verify.arithmetic.ball import Balls
 from verify.arithmetic.bessel import k0_both
 
 ComplexBall = Any
-Cache = dict[Any, Any]
-
-REMEMBERED = 50_000
-"""Function values kept: integrals along one path at many points v meet the same nodes."""
-
-
-NEAR = Fraction(1, 1024)
-"""Values are carried from a node's midpoint to the node over at most this distance."""
-
-
-def _remembered(cache: Cache, z: ComplexBall, kind: Any, compute: Callable[[ComplexBall], Any]) -> Any:
-    """Return ``compute`` at the midpoint of a ball, which is exact."""
-    middle = z.mid()
-    (m, e), (k, f) = middle.real.man_exp(), middle.imag.man_exp()
-    key = kind, int(m), int(e), int(k), int(f)
-    if key not in cache:
-        if len(cache) >= REMEMBERED:
-            cache.clear()
-        cache[key] = compute(middle)
-    return cache[key]
-
-
-def _moved(A: Balls, z: ComplexBall, value: ComplexBall, slope: Any) -> ComplexBall:
-    """Carry a value from the midpoint of a ball to the ball; ``slope`` bounds the derivative within NEAR of
-    it.
-    """
-    distance = abs(z - z.mid())
-    if not distance <= A.real(NEAR):
-        return acb(arb("nan"), arb("nan"))
-    reach = arb(0, (distance * slope).abs_upper())
-    return value + acb(reach, reach)
 
 
 class Transform:
@@ -87,12 +55,17 @@ class Transform:
         """Bound of |term| exp(-rate Re z) over a ball in the upper half-plane (not finite: none is known)."""
         raise NotImplementedError
 
-    def terms(self, A: Balls, z: ComplexBall, n: int, which: Iterable[int]) -> ComplexBall:
+    def terms(self, A: Balls, z: ComplexBall, n: int, which: Sequence[int]) -> ComplexBall:
         """Sum of some of the terms at z."""
         raise NotImplementedError
 
+    def terms_size(self, A: Balls, z: ComplexBall, n: int, which: Sequence[int], v: Any) -> Any:
+        """Bound of some of the terms times exp(-v Re z) over a box in the upper half-plane."""
+        rates = self.rates(A, n)
+        return sum((self.term_size(A, z, n, j) * ((rates[j] - v) * z.real).exp() for j in which), arb(0))
+
     def bound(self, A: Balls, n: int, which: int, x: Any, height: Any) -> Any:
-        """Bound of |term| exp(-rate Re z) for all Im z = height and Re z beyond x (on the side of x's sign)."""
+        """Bound of |term| exp(-rate Re z) for all Im z >= height and Re z beyond x (on the side of x's sign)."""
         raise NotImplementedError
 
     def vertical_bound(self, A: Balls, n: int, height: Any) -> tuple[Any, Any]:
@@ -112,8 +85,6 @@ class Bessel(Transform):
     chi(1). The same holds for K_nu(-z).
     """
 
-    cache: Cache = field(default_factory=dict, compare=False, repr=False)
-
     def value(self, A: Balls, z: ComplexBall, analytic: bool) -> ComplexBall:
         """I0, an entire function."""
         return z.bessel_i(acb(0))
@@ -122,30 +93,28 @@ class Bessel(Transform):
         """The rate n - 2j of the term with j factors K0(z)."""
         return [A.real(n - 2 * j) for j in range(n + 1)]
 
-    def terms(self, A: Balls, z: ComplexBall, n: int, which: Iterable[int]) -> ComplexBall:
+    def terms(self, A: Balls, z: ComplexBall, n: int, which: Sequence[int]) -> ComplexBall:
         """Sum over j of C(n, j) K0(-z)**(n-j) (-K0(z))**j / (pi i)**n."""
         if not z.imag > 0:
             return acb(arb("nan"), arb("nan"))
-        chosen = tuple(which)
-        value, slope = _remembered(
-            self.cache, z, (A.prec, n, chosen), lambda middle: self._chosen_terms(A, middle, n, chosen)
-        )
-        return _moved(A, z, value, slope)
-
-    def _chosen_terms(self, A: Balls, middle: ComplexBall, n: int, chosen: tuple[int, ...]) -> tuple[Any, Any]:
-        """The sum at a point, with a bound of its derivative near it: K0' = -K1, and both are bounded there."""
-        up, down = _remembered(self.cache, middle, A.prec, lambda z: k0_both(z, A.prec))
-        first, last = min(chosen), max(chosen)
-        least, near = middle.abs_lower() - A.real(NEAR), A.real(NEAR)
-        shrink = (-2 * middle.real).exp()
-        value, change = acb(0), arb(0)
+        up, down = k0_both(z, A.prec)
+        first, last = min(which), max(which)
+        value = acb(0)
         for j in range(last, first - 1, -1):
-            factor = comb(n, j) if j in chosen else 0
+            factor = comb(n, j) if j in which else 0
             value = value * -down + factor * up ** (last - j)
-            change = change * shrink + factor
-        value = value * up ** (n - last) * (-down) ** first / acb(0, arb.pi()) ** n
-        slope = n * self._scale(A, least, 3) / self._scale(A, least, 1) * self._size(A, n, 0, least)
-        return value, slope * change * ((n - 2 * first) * middle.real + n * near).exp()
+        return value * up ** (n - last) * (-down) ** first / acb(0, arb.pi()) ** n
+
+    def terms_size(self, A: Balls, z: ComplexBall, n: int, which: Sequence[int], v: Any) -> Any:
+        """The bounds of the terms have one factor in common; the exponentials are largest at one end of the box."""
+        least = z.abs_lower()
+        if not (z.imag > 0 and least >= 1):
+            return arb("nan")
+        x = z.real.upper() if all(n - 2 * j > v for j in which) else z.real.lower()
+        if not (all(n - 2 * j > v for j in which) or all(n - 2 * j < v for j in which)):
+            return arb("nan")
+        total = sum((comb(n, j) * ((n - 2 * j - v) * x).exp() for j in which), arb(0))
+        return total * self._size(A, n, 0, least)
 
     def term_size(self, A: Balls, z: ComplexBall, n: int, which: int) -> Any:
         """A bound of C(n, j) |K0(-z)|**(n-j) |K0(z)|**j / pi**n without its exponential, where |z| >= 1."""
@@ -178,7 +147,6 @@ class GammaRatio(Transform):
 
     a: Any
     b: Any
-    cache: Cache = field(default_factory=dict, compare=False, repr=False)
 
     def domain(self) -> tuple[Any, Any]:
         """Re z > -a."""
@@ -192,43 +160,30 @@ class GammaRatio(Transform):
         """One term, of rate 0."""
         return [A.real(0)]
 
-    def terms(self, A: Balls, z: ComplexBall, n: int, which: Iterable[int]) -> ComplexBall:
+    def terms(self, A: Balls, z: ComplexBall, n: int, which: Sequence[int]) -> ComplexBall:
         """N(z)**n, through the reflected form, which is stable on the left."""
-        value, slope = _remembered(
-            self.cache, z, A.prec, lambda middle: (self._reflected(A, middle), self._slope(A, middle))
-        )
-        value = _moved(A, z, value, slope)
-        return sum((value**n for _ in which), acb(0))
-
-    def _slope(self, A: Balls, middle: ComplexBall) -> Any:
-        """Bound of |N'| near a point: N' = N (psi(z + a) - psi(z + b)), and N itself changes by at most its
-        exponential.
-
-        psi changes by at most NEAR * sup |psi'|, and |psi'(w)| <= sum over all k of 1 / |w + k|**2 <= (pi/y)
-        coth(pi y), y = Im w.
-        """
-        y = middle.imag - A.real(NEAR)
-        change = 2 * A.real(NEAR) * A.pi / y * (A.pi * y).coth()
-        rate = abs((middle + A.real(self.a)).digamma() - (middle + A.real(self.b)).digamma()).upper() + change
-        return abs(self._reflected(A, middle)).upper() * rate * (rate * A.real(NEAR)).exp()
+        return len(which) * self._reflected(A, z) ** n
 
     def _reflected(self, A: Balls, z: ComplexBall) -> ComplexBall:
         a, b = A.real(self.a), A.real(self.b)
         return (1 - z - b).gamma() * (1 - z - a).rgamma() * (z + b).sin_pi() / (z + a).sin_pi()
 
     def term_size(self, A: Balls, z: ComplexBall, n: int, which: int) -> Any:
-        """A bound of N(z)**n: shifted to the right by the recurrence, or reflected when far on the left."""
+        """A bound of N(z)**n above the real axis.
+
+        With w(s) = z + a + s and Stirling's R, log N(z) is minus the integral of log w(s) - 1 / (2 w(s)) over
+        0 < s < d, plus R(z + a) - R(z + b), and |R(w)| <= sec(ph(w) / 2)**2 / (12 |w|) = 1 / (6 (|w| + Re w))
+        (DLMF 5.11.1 and 5.11 (ii)).
+        """
         if not z.imag > 0:
             return arb("nan")
         a, b = A.real(self.a), A.real(self.b)
-        k = max(0, 1 - int(float((z.real + a).lower()) // 1))
-        if k > 8 + float(b):
+        least = acb((z.real + a).union(z.real + b), z.imag).abs_lower()
+        clear = [(z + shift).abs_lower() + (z.real + shift).lower() for shift in (a, b)]
+        if not (least > 0 and all(gap > 0 for gap in clear)):
             return self.bound(A, n, which, z.real.upper(), z.imag.lower())
-        u = (z.real + a).lower() + k
-        shifted = u.gamma() / (u + b - a).gamma()
-        for i in range(k):
-            shifted = shifted * abs((z + b + i) / (z + a + i)).upper()
-        return shifted**n
+        exponent = (b - a) * (1 / (2 * least) - least.log()) + sum((1 / (6 * gap) for gap in clear), arb(0))
+        return (n * exponent).exp()
 
     def bound(self, A: Balls, n: int, which: int, x: Any, height: Any) -> Any:
         """(coth(pi H) Gamma(u) / Gamma(u + d))**n; no bound on the right or before u > 0."""
@@ -265,10 +220,17 @@ class Secant(Transform):
         front = (z * A.real(self.shift)).exp()
         if isinstance(self.r, int):
             return front / cosine**self.r
-        return (
-            front
-            * (-A.real(self.r) * _log_cosine(A, z * A.real(self.omega) + A.real(self.phase), analytic)).exp()
-        )
+        return front * (-A.real(self.r) * _log_cosine(A, z * A.real(self.omega) + A.real(self.phase), analytic)).exp()
+
+    def size(self, A: Balls, z: ComplexBall) -> Any:
+        """Bound of |N| over a box above the real axis or in the strip: |cos(x + i y)|**2 = cos(x)**2 + sinh(y)**2."""
+        inside = z.real > A.real(self.low) and z.real < A.real(self.high)
+        if not (inside or z.imag > 0):
+            return arb("nan")
+        x, y = z.real * A.real(self.omega) + A.real(self.phase), z.imag * A.real(self.omega)
+        square = x.cos().abs_lower() ** 2 + y.sinh().abs_lower() ** 2
+        front = (z.real * A.real(self.shift)).exp().upper()
+        return front * square ** (-A.real(self.r) / 2) if square > 0 else arb("nan")
 
     def rates(self, A: Balls, n: int) -> list[Any]:
         """None: N falls exponentially on vertical lines."""

@@ -10,9 +10,9 @@ from fractions import Fraction
 from math import log2
 from typing import TYPE_CHECKING, Any, ClassVar
 
-from verify.arithmetic.ball import balls, complex_ball, midpoint, to_fraction
+from verify.arithmetic.ball import balls, midpoint, to_fraction
 from verify.arithmetic.evaluate import evaluate
-from verify.arithmetic.inversion import DENSITY, SHORTFALL, TAIL, Inversion, saddle_point
+from verify.arithmetic.inversion import DENSITY, SHORTFALL, SLOPE, TAIL, Inversion, saddle_point
 from verify.arithmetic.transforms import Transform
 from verify.laws.base import Number
 from verify.laws.built import BuiltLaw
@@ -61,7 +61,12 @@ class SumByInversion(BuiltLaw):
         """Density at v."""
         if self._place(A, v):
             return A.real(0)
-        return self._invert(A, A.real(v), DENSITY, upper=None)
+        return self._invert(A, A.real(v), DENSITY, upper=self._is_high(v))
+
+    def log_slope(self, A: Any, v: Any) -> Number:
+        """Derivative of the logarithm of the density."""
+        v, upper = A.real(v), self._is_high(v)
+        return self._invert(A, v, SLOPE, upper=upper) / self._invert(A, v, DENSITY, upper=upper)
 
     def cdf(self, A: Any, v: Any) -> Number:
         """P(V <= v): by its own side below the mean, else 1 minus the other."""
@@ -120,36 +125,26 @@ class SumByInversion(BuiltLaw):
         with balls(COARSE_BITS) as A:
             return bool(midpoint(A.real(v)) > self.expectation(A))
 
-    def _invert(self, A: Any, v: Number, kind: str, *, upper: bool | None) -> Number:
+    def _invert(self, A: Any, v: Number, kind: str, *, upper: bool) -> Number:
         """One inversion, remembered: a search asks for the same point again."""
         if not v.is_exact():
             return self._inverted(A, v, kind, upper=upper)
-        place = (self.n, A.prec, str(v.man_exp()), kind)
-        key: tuple[Any, ...] = ("inverted", *place) if kind == DENSITY else ("inverted", *place, self.at, upper)
+        key = ("inverted", self.n, A.prec, str(v.man_exp()), kind, self.at, upper)
         if key not in self.one.cache:
-            self.one.cache[key] = self.at, self._inverted(A, v, kind, upper=upper)
-        at, value = self.one.cache[key]
-        return value if at == self.at else self._tilted(A, v, value, at)
+            self.one.cache[key] = self._inverted(A, v, kind, upper=upper)
+        return self.one.cache[key]
 
-    def _tilted(self, A: Any, v: Number, density: Number, at: Exact) -> Number:
-        """The density at v from the one at another parameter value: the family is exponential."""
-        with balls(A.prec + GUARD_BITS) as B:
-            here, there = (evaluate(self.one.natural, B, {self.one.parameter: B.real(t)}) for t in (self.at, at))
-            ratio = self.transform.value(B, complex_ball(there), False) / self.transform.value(
-                B, complex_ball(here), False
-            )
-            value = density * B.exp((here - there) * v) * ratio.real**self.n
-        return value + A.real(0)
-
-    def _inverted(self, A: Any, v: Number, kind: str, *, upper: bool | None) -> Number:
-        c = self._crossing(v, upper)
+    def _inverted(self, A: Any, v: Number, kind: str, *, upper: bool) -> Number:
+        paths = self.one.cache.setdefault(("paths", self.n), [])
         with balls(A.prec + GUARD_BITS) as B:
             eta = evaluate(self.one.natural, B, {self.one.parameter: B.real(self.at)})
-            mean = self.expectation(B)
-            value = Inversion(self.transform, self.n, eta, B.real(v), B.real(c), kind, mean).value(B)
+            question = Inversion(self.transform, self.n, eta, B.real(v), kind, self.expectation(B), paths)
+            value = question.known(B, upper=upper)
+            if value is None:
+                value = question.value(B, B.real(self._crossing(midpoint(v), upper=upper)))
         return value + A.real(0)
 
-    def _crossing(self, v: Number, upper: bool | None) -> Fraction:
+    def _crossing(self, v: Number, *, upper: bool) -> Fraction:
         """Where the path crosses the real axis: near the saddle point, on a coarse grid, off the pole at
         eta.
         """
@@ -158,23 +153,20 @@ class SumByInversion(BuiltLaw):
             gap = 1 / to_fraction(midpoint(self.spread(A)))
             low, high = (None if end is None else to_fraction(midpoint(A.real(end))) for end in self.transform.domain())
             saddle = saddle_point(self.transform, self.n, midpoint(A.real(v)), eta, A)
-        if upper is not None:
-            saddle = max(saddle, eta + gap) if upper else min(saddle, eta - gap)
-        return _on_grid(saddle, gap, low, high, eta if upper is not None else None)
+        saddle = max(saddle, eta + gap) if upper else min(saddle, eta - gap)
+        return _on_grid(saddle, gap, low, high, eta)
 
 
-def _on_grid(
-    place: Fraction, gap: Fraction, low: Fraction | None, high: Fraction | None, pole: Fraction | None
-) -> Fraction:
+def _on_grid(place: Fraction, gap: Fraction, low: Fraction | None, high: Fraction | None, pole: Fraction) -> Fraction:
     """Round to a grid of about the gap, or halve towards the pole or the middle where that leaves the
     domain.
     """
     grid = Fraction(2) ** round(log2(float(gap)))
     rounded = round(place / grid) * grid
-    if pole is not None and abs(rounded - pole) < gap / 4:
+    if abs(rounded - pole) < gap / 4:
         rounded += grid if place > pole else -grid
     if low is not None and rounded <= low:
-        rounded = ((pole if pole is not None else place) + low) / 2
+        rounded = (pole + low) / 2
     if high is not None and rounded >= high:
-        rounded = ((pole if pole is not None else place) + high) / 2
+        rounded = (pole + high) / 2
     return rounded.limit_denominator(1 << 24)
