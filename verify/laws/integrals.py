@@ -2,10 +2,10 @@
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING, Any
 
-from verify.arithmetic.ball import Balls, midpoint
+from verify.arithmetic.ball import Balls, balls, midpoint
 from verify.arithmetic.evaluate import evaluate
 from verify.arithmetic.quadrature import integral, integrand
 from verify.arithmetic.series import either_sign, up_to
@@ -15,6 +15,9 @@ if TYPE_CHECKING:
     from verify.problem.numbers import Exact
 
 Number = Any
+
+GRID = 64
+"""Bits are rounded up to this, so that a search and its proof share the integrals that they know."""
 
 KNOTS = 64
 """How many end points are remembered for one end of one piece."""
@@ -52,8 +55,15 @@ class Integrals:
     def part(self, piece: Piece, x: Number, *, to_high: bool) -> Number:
         """Integral from x to the high end, or from the low end to x.
 
-        For a ball x: the integral to its midpoint, widened by the values of the integrand over the ball.
+        For a ball x: the integral to its midpoint, widened by the values of the integrand over the ball. It is taken
+        at a precision of the grid.
         """
+        with balls(-(-self.A.prec // GRID) * GRID) as A:
+            mean = evaluate(self.one.mean, A, {self.one.parameter: A.real(self.at)}) if self.moment else self.mean
+            value = replace(self, A=A, mean=mean)._part(piece, x, to_high=to_high)
+        return value + 0
+
+    def _part(self, piece: Piece, x: Number, *, to_high: bool) -> Number:
         middle = midpoint(x)
         value = self._to_point(piece, middle, to_high=to_high)
         if x.is_exact():

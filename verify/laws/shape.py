@@ -5,11 +5,13 @@ Source: E. L. Lehmann and J. P. Romano, *Testing Statistical Hypotheses* (3rd ed
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass, field
 from fractions import Fraction
 from typing import TYPE_CHECKING, Any
 
 from verify.arithmetic.ball import balls, midpoint, to_fraction
+from verify.arithmetic.compiled import compiled
 from verify.arithmetic.evaluate import evaluate
 from verify.errors import UndecidedError
 from verify.laws.tilting import RATIO_BITS, candidates
@@ -25,6 +27,9 @@ REGULAR, FAR, SINGULAR = "regular", "far", "singular"
 
 DEVIATION = "mean_"
 """Name of the symbol that stands for E[T(X)] in ``Shape.centred``."""
+
+TRIED = 3
+"""How many second parameter values are tried for a cut, the most promising first."""
 
 FARTHEST = 1 << 22
 """How far towards an end (in powers of two, or units) a cut is looked for."""
@@ -132,10 +137,6 @@ class Shape:
         kind: str = self.cache[key]
         return kind
 
-    def likelihood_ratio(self, A: Any, at: Exact, other: Exact, x: Number) -> Number:
-        """Density at ``at`` over density at ``other``."""
-        return self.density(A, at, x) / self.density(A, other, x)
-
     def far_cut(self, at: Exact, piece: Piece, bits: int, *, upper: bool) -> tuple[Fraction, Any]:
         """Return x near a far end, and a ball bounding the mass between it and the end.
 
@@ -155,34 +156,52 @@ class Shape:
         return found
 
     def _search_cut(self, at: Exact, piece: Piece, bits: int, *, upper: bool) -> tuple[Fraction, Any]:
-        best: tuple[int, Fraction, Any] | None = None
         with balls(RATIO_BITS) as A:
             goal = A.power(A.real(2), -bits)
-            for other in candidates(at, self.space, far=True):
+            others = self._tilts(A, at, piece, goal, upper=upper)
+            for _, other in sorted(others, key=lambda entry: entry[0])[:TRIED]:
                 found = self._march(A, at, other, piece, goal, upper=upper)
-                if found is not None and (best is None or found[0] < best[0]):
-                    best = found
-        if best is None:
-            raise UndecidedError(
-                "no bound was found for a tail of one observation inside the parameter space"
-            )
-        return best[1], best[2]
+                if found is not None:
+                    return found
+        raise UndecidedError("no bound was found for a tail of one observation inside the parameter space")
+
+    def _tilts(self, A: Any, at: Exact, piece: Piece, goal: Any, *, upper: bool) -> list[tuple[float, Fraction]]:
+        """Parameter values towards which the likelihood ratio falls at an end, each with how far T must go to the goal.
+
+        The logarithm of the ratio is linear in T, with the difference of the natural parameters as its slope.
+        """
+        start = A.real(_place(A, piece, 1, upper=upper))
+        names = {self.parameter: A.real(at)}
+        here, towards = evaluate(self.natural, A, names), 1 if piece.rising == upper else -1
+        density, found = self.density(A, at, start), []
+        for other in candidates(at, self.space, far=True):
+            slope = towards * (here - evaluate(self.natural, A, {self.parameter: A.real(other)}))
+            if slope < 0:
+                reach = (A.log(goal) - A.log(density / self.density(A, other, start))) / slope
+                if reach.is_finite():
+                    found.append((float(reach.mid()), other))
+        return found
 
     def _march(
         self, A: Any, at: Exact, other: Exact, piece: Piece, goal: Any, *, upper: bool
-    ) -> tuple[int, Fraction, Any] | None:
-        first = self.likelihood_ratio(A, at, other, A.real(_place(A, piece, 1, upper=upper)))
-        second = self.likelihood_ratio(A, at, other, A.real(_place(A, piece, 2, upper=upper)))
-        if not second < first:
-            return None
+    ) -> tuple[Fraction, Any] | None:
+        """The first of some growing steps at which the ratio is below the goal, and the ratio there."""
+        ratio = self._ratio(A, at, other)
         step = 1
         while step <= FARTHEST:
             x = _place(A, piece, step, upper=upper)
-            bound = self.likelihood_ratio(A, at, other, A.real(x))
+            bound = ratio(A.real(x))
             if bound < goal:
-                return step, x, bound.upper()
-            step += max(1, step // 4)
+                return x, bound.upper()
+            step += max(1, step // 8)
         return None
+
+    def _ratio(self, A: Any, at: Exact, other: Exact) -> Callable[[Number], Number]:
+        """Density at ``at`` over density at ``other``, as a function of x."""
+        names = [{self.parameter: A.real(t)} for t in (at, other)]
+        above, below = (compiled(self.core, A, self.variable, values) for values in names)
+        front = evaluate(self.constant, A, names[0]) / evaluate(self.constant, A, names[1])
+        return lambda x: front * above(x) / below(x)
 
 
 def _place(A: Any, piece: Piece, step: int, *, upper: bool) -> Fraction:
