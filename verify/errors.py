@@ -53,6 +53,18 @@ class InputError(SidecheckError):
         return line.replace("\n", " ")
 
 
+def missing_extra(needs: str, extra: str, *, otherwise: str = "", key: str = "", file: str = "") -> InputError:
+    """Return the complaint that an optional library is missing, with the extra that brings it.
+
+    Examples
+    --------
+    >>> print(missing_extra("a page needs jinja2", "report"))
+    a page needs jinja2, which is not installed; run pip install ".[report]" in sidecheck's folder
+    """
+    right = f'run pip install ".[{extra}]" in sidecheck\'s folder' + (f", or {otherwise}" if otherwise else "")
+    return InputError(f"{needs}, which is not installed", right, key=key, file=file)
+
+
 class UndecidedError(SidecheckError):
     """A question was left open: the reason says what was tried and what would help."""
 

@@ -1,7 +1,6 @@
 """Whole runs of ``sidecheck answers``: the table, its resumption, and who does the work."""
 
 import csv
-import os
 import signal
 import subprocess
 import sys
@@ -102,20 +101,12 @@ def test_a_killed_run_goes_on_and_ends_with_the_same_bytes(grid, tmp_path):
     assert out.read_bytes() == whole.read_bytes()
 
 
-def test_a_cluster_that_loses_a_worker_changes_no_byte(grid, tmp_path):
-    distributed = pytest.importorskip("distributed")
-    place = grid(n="1..60")
-    with distributed.LocalCluster(n_workers=2, threads_per_worker=1, dashboard_address=None) as cluster:
-        victim = next(iter(cluster.workers.values())).process.process.pid
-        out = tmp_path / "cluster.csv"
-        command = [sys.executable, "-m", "verify", "answers", place, "-o", str(out)]
-        running = subprocess.Popen([*command, "--scheduler", cluster.scheduler_address])
-        journal = Path(f"{out}.journal")
-        while not (journal.exists() and journal.stat().st_size > 5_000):
-            assert running.poll() is None
-            time.sleep(0.01)
-        os.kill(victim, signal.SIGKILL)
-        assert running.wait() == 0
+def test_a_cluster_that_loses_a_worker_changes_no_byte(grid, tmp_path, cluster):
+    place, out = grid(n="1..60"), tmp_path / "cluster.csv"
+    command = [sys.executable, "-m", "verify", "answers", place, "-o", str(out)]
+    running = subprocess.Popen([*command, "--scheduler", cluster.start_workers(2).address])
+    cluster.kill_one_at_work()
+    assert running.wait() == 0
     assert main(["answers", place, "-o", str(tmp_path / "alone.csv")]) == 0
     assert out.read_bytes() == (tmp_path / "alone.csv").read_bytes()
 

@@ -3,11 +3,15 @@
 from __future__ import annotations
 
 import json
+import re
+import subprocess
+import sys
 from pathlib import Path
 from xml.etree import ElementTree
 
 import pytest
 
+ROOT = Path(__file__).parents[2]
 COIN = """
 [density]
 formula = "p**x * (1 - p)**(1 - x)"
@@ -94,6 +98,28 @@ def test_reports(sidecheck_here, folder: Path, monkeypatch) -> None:
     lines = jsonl.read_text(encoding="utf-8").splitlines()
     assert [json.loads(line)["outcome"] for line in lines] == ["pass", "differs"]
     assert not [path for path in folder.iterdir() if path.name.startswith(".")]
+
+
+def test_a_cluster_that_loses_a_worker_changes_no_byte(folder: Path, cluster) -> None:
+    """Alone, with two processes, and on a cluster whose worker is killed at work: the same reports and table."""
+    for number in range(12):  # each about a parameter of its own, so that each is derived
+        text = COIN.format(alpha=f"0.{2 * number + 5:02d}", c=8 - number // 3)
+        (folder / f"coin-{number:02d}.case.toml").write_text(re.sub(r"\bp\b", f"p{number}", text), encoding="utf-8")
+    _spoil(folder, "unusable", alpha="5")
+    ways = {"alone": (), "two": ("--workers", "2"), "cluster": ("--scheduler", cluster.start_workers(2).address)}
+    seen = []
+    for name, words in ways.items():
+        reports = [folder / f"{name}.{kind}" for kind in ("jsonl", "xml")]
+        command = ["casebook", str(folder), "--jsonl", str(reports[0]), "--junit", str(reports[1]), *words]
+        running = subprocess.Popen([sys.executable, "-m", "verify", *command], stdout=subprocess.PIPE, cwd=ROOT)
+        if name == "cluster":
+            cluster.kill_one_at_work()
+        table, _ = running.communicate(timeout=120)
+        untimed = re.sub(rb' time="[0-9.]+"', b"", reports[1].read_bytes())
+        seen.append((running.returncode, table, reports[0].read_bytes(), untimed))
+    assert seen[0][0] == 1
+    assert b"14 cases" in seen[0][1]
+    assert seen == [seen[0]] * 3
 
 
 def test_a_whole_process_with_two_workers(sidecheck, folder: Path) -> None:

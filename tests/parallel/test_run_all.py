@@ -2,8 +2,6 @@
 
 import os
 import signal
-import threading
-import time
 from functools import partial
 from pathlib import Path
 
@@ -11,7 +9,6 @@ import pytest
 
 from verify.errors import InputError, UndecidedError
 from verify.parallel import run_all
-from verify.parallel.cluster import do_checked, engines
 
 
 def square(x: int) -> int:
@@ -37,11 +34,6 @@ def always_die(x: int) -> int:
     if x == 2:
         os.kill(os.getpid(), signal.SIGKILL)
     return x
-
-
-def slow_square(x: int) -> tuple[int, str]:
-    time.sleep(0.02)
-    return x * x, f"{x:d}"
 
 
 @pytest.mark.parametrize("workers", [1, 2])
@@ -91,27 +83,3 @@ def test_items_are_read_lazily():
 def test_an_impossible_number_of_workers_is_refused(workers):
     with pytest.raises(InputError, match=rf"workers: {workers} workers; ask for 1 to 256"):
         run_all(square, [1], workers)
-
-
-def test_a_scheduler_that_does_not_answer_is_named(monkeypatch):
-    monkeypatch.setattr("verify.parallel.cluster.SECONDS_TO_CONNECT", 1)
-    with pytest.raises(InputError, match=r"scheduler: no scheduler answers at tcp://127\.0\.0\.1:9"):
-        list(run_all(square, [1], scheduler="tcp://127.0.0.1:9"))
-
-
-def test_a_worker_with_other_engines_is_refused():
-    other = (("sidecheck", "0.0"), *engines()[1:])
-    with pytest.raises(InputError, match=r"a worker of the cluster has sidecheck \S+ instead of 0\.0"):
-        do_checked(other, square, (1,))
-
-
-def test_a_cluster_with_a_killed_worker_gives_the_same_bytes():
-    distributed = pytest.importorskip("distributed")
-    items = range(300)
-    with distributed.LocalCluster(n_workers=2, threads_per_worker=2, dashboard_address=None) as cluster:
-        victim = next(iter(cluster.workers.values())).process.process.pid
-        results = run_all(slow_square, items, scheduler=cluster.scheduler_address)
-        got = [next(results) for _ in range(20)]
-        threading.Timer(0.05, os.kill, (victim, signal.SIGKILL)).start()
-        got.extend(results)
-    assert repr(got).encode() == repr([slow_square(x) for x in items]).encode()

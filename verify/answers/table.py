@@ -10,7 +10,7 @@ from typing import Any
 
 from verify.answers.columns import Column, columns_of, numbers_of
 from verify.answers.row import Record
-from verify.errors import InputError
+from verify.errors import InputError, missing_extra
 from verify.parallel.batch import batches
 from verify.problem.hypothesis import Form
 
@@ -99,6 +99,5 @@ def _arrow() -> tuple[Any, Any]:
         import pyarrow
         import pyarrow.parquet
     except ModuleNotFoundError:
-        right = 'pip install "sidecheck[tables]", or name it .csv'
-        raise InputError("Parquet needs pyarrow, which is not installed", right, key="--output") from None
+        raise missing_extra("Parquet needs pyarrow", "tables", otherwise="name it .csv", key="--output") from None
     return pyarrow, pyarrow.parquet

@@ -12,7 +12,7 @@ import hashlib
 import json
 from typing import TYPE_CHECKING, Any
 
-from verify.errors import InputError
+from verify.errors import InputError, missing_extra
 
 if TYPE_CHECKING:
     from cryptography.hazmat.primitives.asymmetric.ed25519 import Ed25519PrivateKey, Ed25519PublicKey
@@ -110,5 +110,5 @@ def _library() -> tuple[Any, Any]:
         from cryptography.hazmat.primitives import serialization
         from cryptography.hazmat.primitives.asymmetric import ed25519
     except ImportError:
-        raise InputError("signing needs the package cryptography", 'install "sidecheck[sign]"', key="sign") from None
+        raise missing_extra("signing needs cryptography", "sign", key="sign") from None
     return serialization, ed25519

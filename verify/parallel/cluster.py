@@ -2,17 +2,20 @@
 
 from __future__ import annotations
 
+import logging
 from collections import deque
 from collections.abc import Callable, Iterable, Iterator
 from concurrent.futures import CancelledError
+from contextlib import contextmanager, suppress
 from functools import cache
 from itertools import islice
 from typing import Any
 
-from verify.errors import InputError, UndecidedError
-from verify.parallel.batch import batches, do
+from verify.errors import InputError, UndecidedError, missing_extra
+from verify.parallel.batch import batch_text, batches, do
 
-SECONDS_TO_CONNECT = 30
+SECONDS_TO_CONNECT, SECONDS_FOR_WORKERS = 10, 30
+"""How long a scheduler may take to answer, and its first worker to come."""
 AHEAD = 256
 """Batches handed out ahead of the one waited for."""
 
@@ -20,49 +23,84 @@ ENGINES = ("sympy", "mpmath", "python-flint", "numpy", "scipy")
 Versions = tuple[tuple[str, str], ...]
 
 
-def on_cluster(
-    function: Callable[[Any], Any], items: Iterable[Any], scheduler: str, chunk: int
-) -> Iterator[Any]:
+def on_cluster(function: Callable[[Any], Any], items: Iterable[Any], scheduler: str, chunk: int) -> Iterator[Any]:
     """Yield the results in order; Dask itself gives the work of a lost worker to another one."""
-    with _connect(scheduler) as client:
-        from distributed import KilledWorker
-        from distributed.comm.core import CommClosedError
-
-        waiting: deque[Any] = deque()
+    with _connect(scheduler) as client, _only_our_words():
+        waiting: deque[tuple[Any, Any]] = deque()
         work = batches(items, chunk)
-        try:
-            while True:
-                for batch in islice(work, AHEAD - len(waiting)):
-                    waiting.append(client.submit(do_checked, engines(), function, batch, pure=False))
-                if not waiting:
-                    return
-                yield from waiting.popleft().result()
-        except KilledWorker as error:
-            raise UndecidedError(f"worker after worker died over one piece of work: {error}") from None
-        except (CommClosedError, CancelledError):
-            raise UndecidedError(f"the scheduler at {scheduler} was lost") from None
+        while True:
+            for batch in islice(work, AHEAD - len(waiting)):
+                waiting.append((batch, client.submit(do_checked, engines(), function, batch, pure=False)))
+            if not waiting:
+                return
+            yield from _results(client, scheduler, *waiting.popleft())
+
+
+def _results(client: Any, scheduler: str, batch: tuple[Any, ...], answer: Any) -> list[Any]:
+    """Wait for the results of a batch, as long as there are workers."""
+    from distributed import KilledWorker
+    from distributed.comm.core import CommClosedError
+
+    try:
+        while not answer.done():
+            with suppress(TimeoutError):
+                answer.result(timeout=SECONDS_FOR_WORKERS)
+            if not (answer.done() or client.nthreads()):
+                raise UndecidedError(f"the scheduler at {scheduler} has lost all its workers")
+        results: list[Any] = answer.result()
+        return results
+    except KilledWorker:
+        raise UndecidedError(f"worker after worker died over one piece of work: {batch_text(batch)}") from None
+    except (CommClosedError, CancelledError):
+        raise UndecidedError(f"the scheduler at {scheduler} was lost") from None
 
 
 def _connect(scheduler: str) -> Any:
     """Return a client of a scheduler that has a worker."""
     try:
         from distributed import Client
+        from distributed.comm.addressing import get_address_host_port
     except ModuleNotFoundError:
-        right = 'pip install "sidecheck[cluster]"'
-        raise InputError("a scheduler needs Dask, which is not installed", right, key="scheduler") from None
+        raise missing_extra("a scheduler needs Dask", "cluster", key="scheduler") from None
     make: Any = Client
     try:
+        get_address_host_port(scheduler)  # a client of no address would take a minute to be deleted
         client = make(scheduler, timeout=SECONDS_TO_CONNECT, set_as_default=False)
     except (OSError, ValueError, TypeError) as error:
         right = "give the address of a running Dask scheduler, e.g. tcp://127.0.0.1:8786"
         raise InputError(f"no scheduler answers at {scheduler}: {error}", right, key="scheduler") from None
     try:
-        client.wait_for_workers(1, timeout=SECONDS_TO_CONNECT)
+        client.wait_for_workers(1, timeout=SECONDS_FOR_WORKERS)
     except TimeoutError:
         client.close()
         right = f"start one: dask worker {scheduler}"
         raise InputError(f"the scheduler at {scheduler} has no workers", right, key="scheduler") from None
+    _require_this_package(client)
     return client
+
+
+def _require_this_package(client: Any) -> None:
+    """Look for this package on the workers: one without it would leave the cluster with the first piece of work."""
+
+    def has(name: str) -> bool:  # within another function, so that it travels whole and not by its name in here
+        from importlib.util import find_spec
+
+        return find_spec(name) is not None
+
+    if not all(client.run(has, __name__.partition(".")[0]).values()):
+        client.close()
+        raise _other_software("a worker of the cluster has no sidecheck")
+
+
+@contextmanager
+def _only_our_words() -> Iterator[None]:
+    """Keep Dask's log of a lost connection off stderr: what it means is said by what is raised."""
+    log = logging.getLogger("distributed.client")
+    before, log.disabled = log.disabled, True
+    try:
+        yield
+    finally:
+        log.disabled = before
 
 
 @cache
@@ -86,6 +124,9 @@ def do_checked(wanted: Versions, function: Callable[[Any], Any], batch: tuple[An
     pairs = zip(engines(), wanted, strict=True)
     others = [f"{name} {here} instead of {there}" for (name, here), (_, there) in pairs if here != there]
     if others:
-        wrong = f"a worker of the cluster has {', '.join(others)}"
-        raise InputError(wrong, "install the same versions everywhere", key="scheduler")
+        raise _other_software(f"a worker of the cluster has {', '.join(others)}")
     return do(function, batch)
+
+
+def _other_software(wrong: str) -> InputError:
+    return InputError(wrong, "install the same versions everywhere", key="scheduler")

@@ -1,114 +1,105 @@
-"""Local processes, started fresh; a dead one is replaced."""
+"""Local processes, started fresh, each on one batch at a time; a dead one is replaced and its batch done again."""
 
 from __future__ import annotations
 
-import multiprocessing
-import os
-import signal
-import threading
-from collections import deque
+from collections import Counter, deque
 from collections.abc import Callable, Iterable, Iterator
-from concurrent.futures import Future, ProcessPoolExecutor
-from concurrent.futures.process import BrokenProcessPool
-from contextlib import AbstractContextManager
-from itertools import islice
+from contextlib import closing
 from multiprocessing.connection import wait
 from typing import Any
 
 from verify.errors import UndecidedError
-from verify.parallel.batch import batch_text, batches, do
+from verify.parallel.batch import batch_text, batches
+from verify.parallel.worker import Answer, Task, Worker
 
 MOST_LOSSES = 3
 """Workers that may die over one batch before it is given up."""
 
-AHEAD = 4
-"""Batches handed out ahead for each worker."""
+AHEAD = 32
+"""Batches handed out ahead of the one waited for, for each worker: a slow one leaves the others with work."""
 
-Batch = tuple[Any, ...]
-Answer = Future[list[Any]]
+SECONDS_A_LOOK = 0.5
+"""A dead worker may leave a child that keeps its pipe open, so the processes themselves are looked at, too."""
 
 
-def in_processes(
-    function: Callable[[Any], Any], items: Iterable[Any], workers: int, chunk: int
-) -> Iterator[Any]:
-    """Yield the results in order; a number of batches is handed out ahead of the one waited for.
-
-    A pool breaks as a whole when one of its processes dies. Then the first unfinished batch is handed out alone, so
-    that a second loss is certainly its own.
-    """
-    work = batches(items, chunk)
-    waiting: deque[tuple[Batch, Answer | None]] = deque()
-    losses = 0
-    with _Pool(workers) as pool:
+def in_processes(function: Callable[[Any], Any], items: Iterable[Any], workers: int, chunk: int) -> Iterator[Any]:
+    """Yield the results in order; a bounded number of batches is handed out ahead of the one waited for."""
+    with closing(_Crew(function, batches(items, chunk), workers)) as crew:
+        answers: dict[int, Answer] = {}
+        wanted = 0
         while True:
-            waiting.extend((batch, None) for batch in islice(work, AHEAD * workers - len(waiting)))
-            if not waiting:
+            crew.hand_out(wanted + AHEAD * workers)
+            if wanted in answers:
+                yield from answers.pop(wanted).results()
+                wanted += 1
+            elif crew.busy:
+                answers |= crew.wait()
+            else:
                 return
-            for i in range(1 if losses else len(waiting)):
-                batch, answer = waiting[i]
-                if answer is None:
-                    waiting[i] = batch, pool.submit(function, batch)
-            try:
-                results = _result(waiting[0][1])
-            except BrokenProcessPool:
-                losses += 1
-                if losses >= MOST_LOSSES:
-                    what = batch_text(waiting[0][0])
-                    raise UndecidedError(f"{losses} worker processes died over one piece of work: {what}") from None
-                pool.renew()
-                waiting = deque((batch, answer if _kept(answer) else None) for batch, answer in waiting)
-                continue
-            losses = 0
-            waiting.popleft()
-            yield from results
 
 
-def _result(answer: Answer | None) -> list[Any]:
-    return answer.result() if answer is not None else []
+class _Crew:
+    """The workers of a run, and the work that is left."""
 
+    def __init__(self, function: Callable[[Any], Any], work: Iterator[tuple[Any, ...]], most: int) -> None:
+        self.function, self.work, self.most = function, work, most
+        self.idle: list[Worker] = []
+        self.busy: list[Worker] = []
+        self.taken = 0
+        self.lost: deque[Task] = deque()
+        self.losses: Counter[int] = Counter()
 
-def _kept(answer: Answer | None) -> bool:
-    """Whether a batch was finished before its pool broke."""
-    return answer is not None and answer.done() and not isinstance(answer.exception(), BrokenProcessPool)
+    def hand_out(self, end: int) -> None:
+        """Give every worker something to do, as long as there is work before this number."""
+        chosen = []
+        while (self.idle or len(self.busy) < self.most) and (task := self._next(end)) is not None:
+            worker = self.idle.pop() if self.idle else Worker(self.function)
+            worker.task = task
+            self.busy.append(worker)
+            chosen.append(worker)
+        for worker in chosen:  # all are starting up by now: a long batch keeps none of them waiting
+            worker.begin()
 
+    def _next(self, end: int) -> Task | None:
+        """Return lost work first."""
+        if self.lost:
+            return self.lost.popleft()
+        batch = next(self.work, None) if self.taken < end else None
+        if batch is None:
+            return None
+        self.taken += 1
+        return self.taken - 1, batch
 
-class _Pool(AbstractContextManager["_Pool"]):
-    """A pool of fresh processes that can be replaced by another one."""
+    def wait(self) -> dict[int, Answer]:
+        """Wait for answers; the work of a worker that died is put back.
 
-    def __init__(self, workers: int) -> None:
-        self.workers = workers
-        self.pool = self._new()
+        Raises
+        ------
+        UndecidedError
+            When several workers died over the same batch.
+        """
+        ready = wait([worker.pipe for worker in self.busy], SECONDS_A_LOOK)
+        answers = {}
+        for worker in [worker for worker in self.busy if worker.pipe in ready or not worker.alive]:
+            answer = worker.answer()
+            self.busy.remove(worker)
+            if answer is None:
+                self._count_loss(worker)
+            else:
+                self.idle.append(worker)
+                answers[worker.task[0]] = answer
+        return answers
 
-    def _new(self) -> ProcessPoolExecutor:
-        fresh = multiprocessing.get_context("spawn")  # a fork would copy a progress display's threads
-        return ProcessPoolExecutor(self.workers, fresh, initializer=_begin)
+    def _count_loss(self, worker: Worker) -> None:
+        worker.stop()
+        number, batch = worker.task
+        self.losses[number] += 1
+        if self.losses[number] >= MOST_LOSSES:
+            what = batch_text(batch)
+            raise UndecidedError(f"{MOST_LOSSES} worker processes died over one piece of work: {what}")
+        self.lost.append(worker.task)
 
-    def renew(self) -> None:
-        """Replace a broken pool."""
-        self.pool.shutdown(wait=True, cancel_futures=True)
-        self.pool = self._new()
-
-    def submit(self, function: Callable[[Any], Any], batch: Batch) -> Answer:
-        """Hand out a batch; on a pool that is broken already the answer says so."""
-        try:
-            return self.pool.submit(do, function, batch)
-        except BrokenProcessPool as error:
-            failed: Answer = Future()
-            failed.set_exception(error)
-            return failed
-
-    def __exit__(self, *_: object) -> None:
-        self.pool.shutdown(wait=True, cancel_futures=True)
-
-
-def _begin() -> None:
-    """Let the keyboard end a worker without a word, and end it when its parent is gone."""
-    signal.signal(signal.SIGINT, signal.SIG_DFL)
-    parent = multiprocessing.parent_process()
-    if parent is not None:
-        threading.Thread(target=_leave_with, args=(parent.sentinel,), daemon=True).start()
-
-
-def _leave_with(sentinel: int) -> None:
-    wait([sentinel])
-    os._exit(1)
+    def close(self) -> None:
+        """End all workers, whatever they are doing."""
+        for worker in (*self.idle, *self.busy):
+            worker.stop()

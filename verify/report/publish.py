@@ -6,7 +6,7 @@ from collections.abc import Mapping
 from importlib.util import find_spec
 from typing import TYPE_CHECKING
 
-from verify.errors import InputError
+from verify.errors import missing_extra
 from verify.report.page_recheck import RECHECK, rechecker
 
 if TYPE_CHECKING:
@@ -58,7 +58,7 @@ def require_printers(*, pdf: bool = True) -> None:
     """
     for module in ("jinja2", "matplotlib", *(("typst",) if pdf else ())):
         if find_spec(module) is None:
-            raise InputError(f"the page needs {module}, which is not installed", "pip install 'sidecheck[report]'")
+            raise missing_extra(f"the page needs {module}", "report")
 
 
 def _printed(name: str, page: Page, paper: str, pdf: bool) -> dict[str, bytes]:

@@ -11,7 +11,7 @@ from functools import cached_property
 from pathlib import Path
 from typing import Any
 
-from verify.errors import InputError
+from verify.errors import InputError, missing_extra
 from verify.review.cells import Cell, Kind, Row, filled, unique_header
 
 _FIXED = re.compile(r"0(?:\.(0+))?")
@@ -34,11 +34,8 @@ class XlsxTable:
         try:
             from openpyxl import load_workbook
         except ImportError:
-            raise InputError(
-                "openpyxl is not installed",
-                "pip install 'sidecheck[tables]', or save the table as CSV",
-                file=str(self.path),
-            ) from None
+            how_else, place = "save the table as CSV", str(self.path)
+            raise missing_extra("a workbook needs openpyxl", "tables", otherwise=how_else, file=place) from None
         try:
             return load_workbook(self.path, **how)
         except Exception as error:  # openpyxl raises many kinds for a broken file

@@ -3,12 +3,12 @@
 The one place where Hypothesis is imported; it comes with the extra ``test``.
 """
 
-from verify.errors import InputError
+from verify.errors import missing_extra
 
 try:
     import hypothesis as _hypothesis
 except ModuleNotFoundError:
-    raise InputError("Hypothesis is not installed", 'pip install "sidecheck[test]"', key="verify.strategies") from None
+    raise missing_extra("verify.strategies needs Hypothesis", "test") from None
 
 from verify.strategies.families import FAMILIES as FAMILIES
 from verify.strategies.families import LAWS as LAWS
