@@ -13,6 +13,7 @@ import hashlib
 import json
 import re
 from fractions import Fraction
+from functools import cache
 from itertools import accumulate
 from math import comb
 from typing import Any
@@ -90,17 +91,20 @@ def enclosure(low: Any, digits: int, high: Any = None) -> Any:
 # ---- laws ----------------------------------------------------------------------------------------------------------
 
 
+@cache
 def poisson(mean: Any) -> dict[int, Any]:
     m = real(mean)
     top = int(m + 40 * mp.sqrt(m) + 200)
     return {k: mp.exp(k * mp.log(m) - m - mp.loggamma(k + 1)) for k in range(top)}
 
 
+@cache
 def binomial(trials: Any, p: Any) -> dict[int, Any]:
     N = int(trials)
     return {k: comb(N, k) * p**k * (1 - p) ** (N - k) for k in range(N + 1)}
 
 
+@cache
 def negative_binomial(size: Any, p: Any) -> dict[int, Any]:
     r, q = real(size), real(p)
     top = int(40 * (r + 10) / q / q) + 400
@@ -111,8 +115,9 @@ def negative_binomial(size: Any, p: Any) -> dict[int, Any]:
     return out
 
 
+@cache
 def table(
-    weights: list[Fraction], first: int, theta: Any, n: int, total: Any = None, length: int = 0
+    weights: tuple[Fraction, ...], first: int, theta: Any, n: int, total: Any = None, length: int = 0
 ) -> dict[int, Any]:
     poly: list[Any] = [Fraction(1)]
     for _ in range(n):
@@ -223,7 +228,7 @@ class Case:
             total = real(values["total"]) if "total" in values else None
             base = real(values["base"]) if total is not None else values["base"]
             return table(
-                [Fraction(w) for w in self.law["weights"]],
+                tuple(map(Fraction, self.law["weights"])),
                 self.law["first"],
                 base,
                 n,

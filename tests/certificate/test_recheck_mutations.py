@@ -58,7 +58,8 @@ def _remembered(monkeypatch: pytest.MonkeyPatch) -> None:
     """Remember pure functions between the thousands of checks: the checks stay the same, and the suite short."""
     for name in ("gamma_kernel", "series", "normal_cdf", "log", "exp"):
         monkeypatch.setattr(recheck, name, memo(getattr(recheck, name)))
-    monkeypatch.setattr(recheck, "check_density", memo_look(recheck.check_density))
+    for name in ("check_density", "check_numbers"):
+        monkeypatch.setattr(recheck, name, memo_check(getattr(recheck, name)))
 
 
 def memo(function: Callable[..., Any]) -> Callable[..., Any]:
@@ -76,14 +77,19 @@ def memo(function: Callable[..., Any]) -> Callable[..., Any]:
     return remembering
 
 
-def memo_look(function: Callable[..., None]) -> Callable[..., None]:
+def memo_check(function: Callable[..., None]) -> Callable[..., None]:
+    """Remember the outcome of a check by all that it reads: the question, and of the predicate what `check_numbers` gets."""
     known: dict[Any, Any] = {}
 
-    def remembering(q: Any) -> None:
-        key = recheck.canonical([recheck.down.prec, q.density, q.law, q.derivation, q.limit_texts, q.form])
+    def remembering(q: Any, predicate: dict[str, Any] | None = None) -> None:
+        derivation = {key: value for key, value in q.derivation.items() if key != "steps"}
+        read = [recheck.down.prec, q.density, q.law, derivation, q.limit_texts, q.form]
+        if predicate is not None:
+            read += [q.side, q.alphas, q.n, q.digits, q.test, predicate["side_conditions"], predicate["rounding"]]
+        key = recheck.canonical(read)
         if key not in known:
             try:
-                known[key] = function(q)
+                known[key] = function(q) if predicate is None else function(q, predicate)
             except Exception as reason:
                 known[key] = reason
         if known[key] is not None:

@@ -28,7 +28,7 @@ from contextlib import contextmanager
 from dataclasses import dataclass
 from decimal import MAX_EMAX, MIN_EMIN, ROUND_CEILING, ROUND_FLOOR, Context, Decimal, InvalidOperation, Overflow
 from fractions import Fraction
-from functools import cache
+from functools import cache, lru_cache
 from math import ceil, floor, isqrt, lcm
 from typing import Any
 
@@ -114,6 +114,7 @@ def read(data: bytes) -> Any:
     return value
 
 
+@lru_cache(4096)
 def rational(text: str) -> Fraction:
     """Read an exact number: -?int(/posint)?, in lowest terms."""
     value = Fraction(matched(RATIONAL, text, "no fraction")[0])
@@ -121,6 +122,7 @@ def rational(text: str) -> Fraction:
     return value
 
 
+@lru_cache(4096)
 def decimal(text: str) -> Fraction:
     """Read a decimal number in its one spelling: plain from 1e-5 to below 1e21, else d.ddde-N."""
     found = matched(DECIMAL, text, "a decimal number that is not spelled canonically")
