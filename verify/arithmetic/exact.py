@@ -7,7 +7,14 @@ from fractions import Fraction
 from math import comb, factorial
 from typing import Any
 
+from flint import arb, ctx, fmpq
+
+from verify.arithmetic.ball import to_enclosure
+from verify.arithmetic.enclosure import Enclosure
 from verify.errors import NotRational
+
+MOST_WRITTEN_BITS = 20_000
+"""Bits of a fraction that is still handed out exactly; a longer one is enclosed."""
 
 
 class Rationals:
@@ -77,3 +84,26 @@ class Rationals:
 def rationals() -> Rationals:
     """Return the exact arithmetic."""
     return Rationals()
+
+
+def quotient(x: Fraction) -> Any:
+    """Return a rational in FLINT's type, in which sums of fractions with millions of digits stay quick."""
+    return fmpq(x.numerator, x.denominator)
+
+
+def enclosure_of(x: Any, bits: int) -> Enclosure:
+    """Return a quotient exactly, or, where it is very long, enclosed to so many bits.
+
+    Examples
+    --------
+    >>> print(enclosure_of(quotient(Fraction(3, 20)), 64).lower)
+    3/20
+    """
+    if int(x.height_bits()) <= MOST_WRITTEN_BITS:
+        return Enclosure.of(Fraction(int(x.p), int(x.q)))
+    kept = ctx.prec
+    ctx.prec = bits
+    try:
+        return to_enclosure(arb(x))
+    finally:
+        ctx.prec = kept

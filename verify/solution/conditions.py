@@ -16,6 +16,7 @@ from __future__ import annotations
 from dataclasses import dataclass
 from typing import Any
 
+from verify.arithmetic.exact import quotient, rationals
 from verify.laws import Law
 from verify.solution.start import Rough, scored_window
 
@@ -208,18 +209,23 @@ def end_fractions(conditions: Conditions, A: Any, c1: Any, c2: Any) -> Row:
     return linear_system(conditions, A, c1, c2).fractions
 
 
-def exact_fractions(conditions: Conditions, A: Any, c1: int, c2: int) -> Row:
-    """Return the same in exact rational arithmetic, every mass of the window summed.
+def exact_fractions(conditions: Conditions, c1: int, c2: int) -> Row:
+    """Return the same as exact quotients, every mass of the window summed.
 
     Raises
     ------
     NotRational
         When a mass is irrational.
     """
-    inner = [conditions.unit(A, k) for k in range(c1 + 1, c2)]
-    first, second = conditions.unit(A, c1), conditions.unit(A, c2)
-    sums = [sum((row[i] for row in inner), A.real(0)) for i in (0, 1)]
-    target, total = conditions.targets(A), conditions.total(A)
+    A = rationals()
+
+    def row(pair: Row) -> Row:
+        return quotient(pair[0]), quotient(pair[1])
+
+    inner = [row(conditions.unit(A, k)) for k in range(c1 + 1, c2)]
+    first, second = row(conditions.unit(A, c1)), row(conditions.unit(A, c2))
+    sums = [sum((each[i] for each in inner), quotient(A.real(0))) for i in (0, 1)]
+    target, total = row(conditions.targets(A)), row(conditions.total(A))
     if conditions.outside:
         right = [target[i] - total[i] + sums[i] + first[i] + second[i] for i in (0, 1)]
     else:

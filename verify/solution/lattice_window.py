@@ -17,7 +17,7 @@ from typing import Any
 
 from verify.arithmetic.ball import accuracy_bits, balls, to_enclosure
 from verify.arithmetic.enclosure import Enclosure
-from verify.arithmetic.exact import rationals
+from verify.arithmetic.exact import enclosure_of, rationals
 from verify.errors import InputError, NotRational, UndecidedError
 from verify.laws import Law
 from verify.solution.conditions import (
@@ -230,13 +230,14 @@ def _exact_tie(conditions: Conditions, cell: Cell, bits: int) -> Window | tuple[
     if cell[1] - cell[0] > MOST_EXACT_ATOMS:
         return None
     try:
-        g1, g2 = exact_fractions(conditions, rationals(), *cell)
+        g1, g2 = exact_fractions(conditions, *cell)
         targets = conditions.targets(rationals())
     except NotRational:
         return _exact_centre(conditions, cell, bits)
     if not (0 <= g1 <= 1 and 0 <= g2 <= 1):
         return _side(g1, conditions.outside) or 0, _side(g2, conditions.outside) or 0
-    return canonical(conditions.laws[0], cell, (g1, g2), conditions.outside, tuple(Enclosure.of(t) for t in targets))
+    sides = tuple(Enclosure.of(t) for t in targets)
+    return canonical(conditions.laws[0], cell, (g1, g2), conditions.outside, sides, bits)
 
 
 def _exact_centre(conditions: Conditions, cell: Cell, bits: int) -> Window | None:
@@ -261,26 +262,27 @@ def _exact_centre(conditions: Conditions, cell: Cell, bits: int) -> Window | Non
 
 
 def canonical(
-    law: Law, cell: Cell, fractions: tuple[Any, Any], outside: bool, conditions: tuple[Enclosure, ...]
+    law: Law, cell: Cell, fractions: tuple[Any, Any], outside: bool, conditions: tuple[Enclosure, ...], bits: int
 ) -> Window:
     """Bring exact end fractions to the canonical form: an end that belongs wholly to the other side moves inward.
 
     Rejecting inside, the ends are the outermost points where phi > 0; rejecting outside, where phi < 1.
     """
-    gone, (g1, g2) = 1 if outside else 0, fractions
+    gone = 1 if outside else 0
     c1, c2 = cell
-    if g1 == gone and g2 == gone:
+    g1, g2 = (enclosure_of(g, bits) for g in fractions)
+    inner = Enclosure.of(1 - gone)
+    if fractions[0] == gone and fractions[1] == gone:
         if law.atom(c1 + 1, 1) == c2:
             raise InputError("the window is empty", "ask for a level above 0", key="problem.alpha")
-        ends = (Enclosure.of(1 - gone),) * 2
-        return Window(law.atom(c1 + 1, 1), law.atom(c2 - 1, -1), *ends, conditions, 0)
-    if g1 == gone:
-        c1, g1 = law.atom(c1 + 1, 1), 1 - gone
-        g1 = g2 if c1 == c2 else g1
-    elif g2 == gone:
-        c2, g2 = law.atom(c2 - 1, -1), 1 - gone
-        g2 = g1 if c1 == c2 else g2
-    return Window(c1, c2, Enclosure.of(g1), Enclosure.of(g2), conditions, 0)
+        return Window(law.atom(c1 + 1, 1), law.atom(c2 - 1, -1), inner, inner, conditions, 0)
+    if fractions[0] == gone:
+        c1 = law.atom(c1 + 1, 1)
+        g1 = g2 if c1 == c2 else inner
+    elif fractions[1] == gone:
+        c2 = law.atom(c2 - 1, -1)
+        g2 = g1 if c1 == c2 else inner
+    return Window(c1, c2, g1, g2, conditions, 0)
 
 
 _ZERO, _ONE = Enclosure.of(0).lower, Enclosure.of(1).lower

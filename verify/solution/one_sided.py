@@ -15,7 +15,7 @@ from typing import Any
 
 from verify.arithmetic.ball import accuracy_bits, around, balls, magnitude, midpoint, radius, to_enclosure
 from verify.arithmetic.enclosure import Enclosure
-from verify.arithmetic.exact import rationals
+from verify.arithmetic.exact import enclosure_of, quotient, rationals
 from verify.errors import NotRational, UndecidedError
 from verify.laws import Law
 from verify.solution.conditions import MOST_EXACT_ATOMS
@@ -112,7 +112,7 @@ class TailProblem:
             elif gamma < 0:
                 c = self.law.atom(c + self.outward, self.outward)
             else:
-                exact = self._exact(c)
+                exact = self._exact(c, bits)
                 if exact is not None:
                     return exact
                 bits *= 2
@@ -141,7 +141,7 @@ class TailProblem:
             inner, outer = (inner, middle) if enough(middle) else (middle, outer)
         return self.law.atom(int(outer), -self.outward)
 
-    def _exact(self, c: int) -> Tail | None:
+    def _exact(self, c: int, bits: int) -> Tail | None:
         """Decide a tie in exact fractions; None when the masses are irrational or the sum too long."""
         low, high = self.law.support
         A = rationals()
@@ -150,18 +150,16 @@ class TailProblem:
             return None
         try:
             level = A.real(self.level)
-            if self.above and high is not None:
-                beyond = sum((self.law.density(A, k) for k in range(c + 1, high + 1)), A.real(0))
-            elif self.above:
-                beyond = 1 - sum((self.law.density(A, k) for k in range(low, c + 1)), A.real(0))
-            else:
-                beyond = sum((self.law.density(A, k) for k in range(low, c)), A.real(0))
-            gamma = (level - beyond) / self.law.density(A, c)
+            inside = not (self.above and high is None)
+            points = range(c + 1, high + 1) if self.above and inside else range(low, c + self.above)
+            total = sum((quotient(self.law.density(A, k)) for k in points), quotient(A.real(0)))
+            mass = quotient(self.law.density(A, c))
         except (NotRational, TypeError):
             return None
+        gamma = (quotient(level) - (total if inside else 1 - total)) / mass
         if gamma == 0:
             return Tail(self.law.atom(c + self.outward, self.outward), Enclosure.of(1), Enclosure.of(level), 0)
-        return Tail(c, Enclosure.of(gamma), Enclosure.of(level), 0) if 0 < gamma <= 1 else None
+        return Tail(c, enclosure_of(gamma, bits), Enclosure.of(level), 0) if 0 < gamma <= 1 else None
 
     def _continuous(self, digits: int) -> Tail:
         """Bisect in the coordinate of the support, then interval Newton in one dimension."""

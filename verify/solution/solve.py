@@ -10,11 +10,13 @@ from typing import TYPE_CHECKING, Any, Literal
 from verify.arithmetic.ball import balls, to_enclosure
 from verify.arithmetic.enclosure import Enclosure
 from verify.derivation.ledger import Grade, Step, weakest
+from verify.derivation.sum_step import sum_step, with_sum_step
 from verify.errors import InputError, UndecidedError
 from verify.notebook import Shown
 from verify.problem.hypothesis import Form
 from verify.problem.numbers import Exact, exact
 from verify.solution.attainable import require_attainable
+from verify.solution.checked import within_shared_digits
 from verify.solution.critical import CriticalFunction, Region
 from verify.solution.one_sided import Tail, TailProblem
 from verify.solution.precision import bits_for
@@ -99,7 +101,12 @@ class Solution(Shown):
     @property
     def grade(self) -> Grade:
         """Weakest grade that the numbers lean on."""
-        return weakest([self.derivation.grade, *(step.grade for step in self.steps if step.name == "numbers")])
+        return weakest([self.derivation.grade, self.numbers_grade])
+
+    @property
+    def numbers_grade(self) -> Grade:
+        """How firmly the numbers stand, given the derivation."""
+        return weakest(step.grade for step in self.steps if step.name == "numbers")
 
     @cached_property
     def flipped(self) -> bool:
@@ -286,9 +293,9 @@ def solve(problem: Problem, digits: int = 50, derivation: Derivation | None = No
         derivation = derive(problem.density, limits=problem.hypothesis.limits, n=problem.n)
     family = family_of(derivation)
     laws = tuple(family.at(limit, problem.n) for limit in problem.hypothesis.limits)
-    if problem.hypothesis.form is Form.ONE_SIDED:
-        return _solve_one_sided(problem, derivation, laws, digits)
-    return _solve_two_sided(problem, derivation, laws, digits)
+    route = _solve_one_sided if problem.hypothesis.form is Form.ONE_SIDED else _solve_two_sided
+    with within_shared_digits(laws, digits):
+        return route(problem, derivation, laws, digits)
 
 
 def _solve_two_sided(problem: Problem, derivation: Derivation, laws: tuple[Law, ...], digits: int) -> Solution:
@@ -303,10 +310,11 @@ def with_window(
 ) -> Solution:
     """Return the solution that a proved window makes."""
     outside = problem.hypothesis.form is not Form.OUTSIDE
+    derivation = with_sum_step(derivation, laws, window.prec)
     critical = CriticalFunction("outside" if outside else "inside", window.c1, window.c2, window.phi1, window.phi2)
     return Solution(
         problem, derivation, digits, critical, laws, _two_conditions(problem, window),
-        (*derivation.steps, _numbers_step(laws[0], window.prec)), window.prec,
+        (*derivation.steps, _numbers_step(laws, window.prec)), window.prec,
     )  # fmt: skip
 
 
@@ -334,11 +342,12 @@ def _solve_one_sided(problem: Problem, derivation: Derivation, laws: tuple[Law, 
 def with_tail(problem: Problem, derivation: Derivation, laws: tuple[Law, ...], digits: int, tail: Tail) -> Solution:
     """Return the solution that a proved one-sided cutoff makes."""
     above = rejects_above(problem, derivation)
+    derivation = with_sum_step(derivation, laws, tail.prec)
     critical = CriticalFunction("above" if above else "below", tail.c, tail.c, tail.phi, tail.phi)
     condition = SideCondition(problem.hypothesis.limits[0], problem.levels[0], tail.condition, "phi")
     return Solution(
         problem, derivation, digits, critical, laws, (condition,),
-        (*derivation.steps, _numbers_step(laws[0], tail.prec)), tail.prec,
+        (*derivation.steps, _numbers_step(laws, tail.prec)), tail.prec,
     )  # fmt: skip
 
 
@@ -351,16 +360,17 @@ def rejects_above(problem: Problem, derivation: Derivation) -> bool:
     return (derivation.rising == up) == problem.hypothesis.null_below
 
 
-def _numbers_step(law: Law, prec: int) -> Step:
+def _numbers_step(laws: tuple[Law, ...], prec: int) -> Step:
     """The step that the solution adds to the ledger."""
-    grade = getattr(law, "grade", Grade.PROVED)
     if prec == 0:
         how = "exact rational arithmetic"
-    elif law.lattice:
+    elif laws[0].lattice:
         how = f"ball arithmetic at {prec} bits: both end fractions lie certainly within [0, 1]"
     else:
         how = f"interval Newton at {prec} bits"
-    reason = (
-        getattr(law, "grade_reason", "") or "Lehmann and Romano 2005, Theorem 3.7.1: a pair that fits is the only one"
-    )
-    return Step("numbers", grade, f"The cutoffs and fractions satisfy the side conditions, shown in {how}.", reason)
+    statement = f"The cutoffs and fractions satisfy the side conditions, shown in {how}."
+    reason = "Lehmann and Romano 2005, Theorem 3.7.1: a pair that fits is the only one"
+    if sum_step(laws, prec) is None:
+        return Step("numbers", Grade.PROVED, statement, reason)
+    within = "as far as intervals around the values of both routes to the law of the sum contain it"
+    return Step("numbers", Grade.CHECKED, f"{statement[:-1]}, {within}.", reason)
