@@ -44,6 +44,26 @@ def test_a_bare_interpreter_accepts(certificates: dict[str, Any], maker: ModuleT
     assert run.stdout.count("- on trust: ") == len(certificates[name]["predicate"]["assumptions"])
 
 
+def test_decimal_arithmetic_written_in_python_accepts_too(
+    short: dict[str, Any], maker: ModuleType, tmp_path: Path
+) -> None:
+    """The four operations are on trust: their other implementation, in Python itself, comes to the same verdict."""
+    code = (
+        "import runpy, sys, _pydecimal; sys.modules['decimal'] = _pydecimal; "
+        "sys.argv = sys.argv[1:]; runpy.run_path(sys.argv[0], run_name='__main__')"
+    )
+    for name in ("poisson interval", "gamma above"):
+        path = tmp_path / "one.cert.json"
+        path.write_bytes(maker.canonical(short[name]))
+        run = subprocess.run(
+            [sys.executable, "-I", "-S", "-c", code, recheck.__file__, str(path)],
+            capture_output=True,
+            text=True,
+            check=False,
+        )
+        assert (run.returncode, run.stderr) == (0, "")
+
+
 def test_one_atom_is_decided_exactly(certificates: dict[str, Any]) -> None:
     """Binomial(10, p), p <= 2/5 or p >= 3/5: all the mass on 5, with fraction alpha / P(V = 5) (computed with
     fractions).

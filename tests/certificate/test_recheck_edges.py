@@ -3,6 +3,8 @@
 from __future__ import annotations
 
 import copy
+import json
+import re
 from pathlib import Path
 from types import ModuleType
 from typing import Any
@@ -44,6 +46,27 @@ def test_masses_that_are_rational_by_chance() -> None:
         variable="x", support="integers >= 0", parameter="p", space="0 < p < 1", constants={"r": "1/2"},
     )  # fmt: skip
     assert status(verify.Problem(density, null="p >= 1/4", alpha="1/5", n=1)) == 0
+
+
+def test_a_table_that_ends_before_the_cutoffs_is_refused(maker: ModuleType, certificates: dict[str, Any]) -> None:
+    """Zero-truncated Poisson: without its far weights the sums would be those of another law."""
+    certificate = certificates["truncated outside"]
+    test, law = certificate["predicate"]["test"], certificate["predicate"]["law"]
+    needed = test["y2"] - 6 * law["first"] + 1
+    for length, wanted in ((needed, 0), (needed - 1, 2)):
+        predicate = {**certificate["predicate"], "law": {**law, "weights": law["weights"][:length]}}
+        assert recheck.verdict(maker.canonical(maker.statement(predicate)))[0] == wanted
+
+
+def test_a_variable_may_have_any_name(maker: ModuleType, certificates: dict[str, Any]) -> None:
+    text = (
+        maker.canonical(certificates["poisson point"]["predicate"])
+        .decode()
+        .replace("lam", "text")
+        .replace("T(x)", "T(y)")
+    )
+    predicate = json.loads(re.sub(r"\bx\b", "self", text).replace("h(self)", "h(x)").replace("T(y)", "T(x)"))
+    assert recheck.verdict(maker.canonical(maker.statement(predicate)))[0] == 0
 
 
 CASE = """[density]

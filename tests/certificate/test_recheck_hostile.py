@@ -45,6 +45,7 @@ HOSTILE: dict[str, tuple[str, Change, tuple[int, ...]]] = {
     "a huge gamma function": ("gamma point", setter("problem", "density", "formula", value="gamma(a*10**30+1/3)*b"), (3,)),
     "deep brackets": ("poisson outside", setter("law", "parameters", "mean", value="(" * 1500 + "1" + ")" * 1500), (2,)),
     "a long expression": ("poisson outside", setter("law", "parameters", "mean", value="1+" * 10**6 + "1"), (2,)),
+    "a quotient of many powers": ("poisson outside", setter("law", "parameters", "mean", value="*".join(["2**59000/3**37000"] * 200)), (1, 3)),
     "many signs": ("poisson outside", setter("law", "parameters", "mean", value="-" * 3900 + "1"), (1, 2)),
     "many powers": ("poisson outside", setter("law", "parameters", "mean", value="**".join(["2"] * 900)), (1, 2, 3)),
     "a decimal exponent of 1e9": ("gamma point", setter("test", "c1", value={"lower": "1e-999999999", "upper": "1"}), (2,)),

@@ -28,7 +28,7 @@ from contextlib import contextmanager
 from dataclasses import dataclass
 from decimal import MAX_EMAX, MIN_EMIN, ROUND_CEILING, ROUND_FLOOR, Context, Decimal, InvalidOperation, Overflow
 from fractions import Fraction
-from functools import cache, lru_cache
+from functools import lru_cache
 from math import ceil, floor, isqrt, lcm
 from typing import Any
 
@@ -307,7 +307,7 @@ def series(a: Number, x: Number) -> Interval:
         k += 1
         under, over = down.add(a.low, k), up.add(a.high, k)
         if k % 8 == 1:
-            spend(32 + (down.prec >> 3))
+            spend(32 + (down.prec * isqrt(down.prec) >> 7))
             left = down.subtract(under, x.high)
             if left > 0 and (rest := up.divide(up.multiply(v, x.high), left)) <= down.scaleb(high, -down.prec):
                 return Interval(low, up.add(high, rest)) / a
@@ -381,7 +381,7 @@ def rising(x: Number, k: int) -> Number:
     return result
 
 
-@cache
+@lru_cache(256)
 def gamma_scale(a: Number, digits: int) -> tuple[Fraction, Interval]:
     """Return a number X and an enclosure of Gamma(a) X**-a exp(X).
 
@@ -410,7 +410,7 @@ def gamma(a: Number) -> Number:
     return exp(a * log(a) - a) / gamma_kernel(a, a)
 
 
-@cache
+@lru_cache(256)
 def pi(digits: int) -> Number:
     """Enclose pi = Gamma(1/2)**2."""
     return power(gamma(Fraction(1, 2)), Fraction(2))
@@ -445,7 +445,7 @@ OPERATIONS: dict[type[ast.operator], Callable[[Any, Any], Number]] = {
 }  # fmt: skip
 
 
-@cache
+@lru_cache(256)
 def parsed(text: str) -> ast.expr:
     """Parse an expression: arithmetic in Python's own grammar."""
     form(len(text) < 4000 and text.isascii() and text.isprintable(), "an expression of other signs, or too long")
@@ -473,7 +473,10 @@ def evaluate(text: str, names: dict[str, Number] | None = None) -> Number:
             case ast.UnaryOp(op=ast.USub() | ast.UAdd() as sign, operand=inner):
                 return -value(inner) if isinstance(sign, ast.USub) else value(inner)
             case ast.BinOp(left=left, op=operation, right=right) if type(operation) in OPERATIONS:
-                return OPERATIONS[type(operation)](value(left), value(right))
+                result = OPERATIONS[type(operation)](value(left), value(right))
+                size = 0 if isinstance(result, Interval) else max(map(int.bit_length, result.as_integer_ratio()))
+                within(size < 400_000, "a number of more than 400000 bits")
+                return result
             case ast.Call(func=ast.Name(id=name), args=arguments, keywords=[]):
                 form(name in FUNCTIONS and len(arguments) == FUNCTIONS[name][0], f"the function {name}")
                 return FUNCTIONS[name][1](*map(value, arguments))
@@ -566,7 +569,7 @@ class Lattice:
         return [(mass, Fraction(y)) for y, mass in self.ends]
 
 
-@cache
+@lru_cache(256)
 def power_of(w: tuple[Fraction, ...], n: int, length: int) -> tuple[list[int], int]:
     """Return the first coefficients of q = p**n, p = sum of w_j z**j, over a common denominator: for k >= 1
 
@@ -757,7 +760,7 @@ class Question:
         unused = [name for name in self.density["constants"] if not re.search(rf"\b{re.escape(name)}\b", used)]
         form(not unused, f"constants that are not used: {unused}")
 
-    def value(self, text: str, **values: Number) -> Number:
+    def value(self, text: str, /, **values: Number) -> Number:
         """Evaluate an expression in the constants, and in values of variable or parameter."""
         return evaluate(text, {key: evaluate(constant) for key, constant in self.density["constants"].items()} | values)
 
