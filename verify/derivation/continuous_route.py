@@ -67,5 +67,15 @@ def _pushed(core: sp.Expr, statistic: sp.Expr, x: sp.Symbol, pieces: tuple[Piece
     ends = sorted((piece.at_low, piece.at_high), key=lambda end: end is not None)
     if ends[1] is not None:
         return pushed, False
-    curve = sp.simplify(sp.diff(sp.expand_log(sp.log(pushed), force=True), V, 2))
-    return pushed, Domain({V: (-sp.oo, sp.oo)}).sign(curve) == -1
+    curve, line = sp.diff(sp.expand_log(sp.log(pushed), force=True), V, 2), Domain({V: (-sp.oo, sp.oo)})
+    return pushed, any(line.sign(form(curve)) == -1 for form in (_without_sinh, sp.simplify))
+
+
+def _without_sinh(expr: sp.Expr) -> sp.Expr:
+    """The expression with sinh(w)**2 written as cosh(w)**2 - 1, and multiplied out."""
+    squares = {node: sp.cosh(node.base.args[0]) ** 2 - 1 for node in expr.atoms(sp.Pow) if _is_sinh_squared(node)}
+    return sp.expand(expr.xreplace(squares))
+
+
+def _is_sinh_squared(node: sp.Pow) -> bool:
+    return isinstance(node.base, sp.sinh) and node.exp == 2

@@ -20,5 +20,10 @@ def cumulants(log_normaliser: Expr, natural: Expr, t: Symbol) -> tuple[Expr, Exp
     (1/t, t**(-2))
     """
     slope = sp.diff(natural, t)
-    mean = normal(sp.diff(log_normaliser, t) / slope)
-    return mean, normal(sp.diff(mean, t) / slope)
+    mean = _plain(sp.diff(log_normaliser, t) / slope, t)
+    return mean, _plain(sp.diff(mean, t) / slope, t)
+
+
+def _plain(expr: Expr, t: Symbol) -> Expr:
+    """The normal form of a quotient of polynomials; other expressions as they are, which are only evaluated."""
+    return normal(expr) if expr.is_rational_function(t) else expr

@@ -133,13 +133,13 @@ def _one_sign(expr: Expr, x: Symbol, A: Any, low: Any, high: Any, depth: int) ->
 def _inverse(statistic: Expr, x: Symbol, left: Expr, right: Expr) -> Expr | None:
     point = _inside(left, right)
     for candidate in _candidates(statistic, x):
-        if _meets(statistic, candidate, x, point) and is_zero(sp.simplify(statistic.subs(x, candidate) - V)):
+        if _meets(statistic, candidate, x, point) and is_zero(statistic.subs(x, candidate) - V):
             return candidate
     return None
 
 
 def _candidates(statistic: Expr, x: Symbol) -> list[Expr]:
-    found = inverse_branches(statistic, x, V)
+    found = inverse_branches(statistic, x, V) or _through_an_angle(statistic, x)
     if found is None:
         plain = sp.Dummy("x")
         try:
@@ -149,6 +149,22 @@ def _candidates(statistic: Expr, x: Symbol) -> list[Expr]:
     mirrored = [-candidate for candidate in found]
     turned = [candidate + k * 2 * sp.pi for candidate in [*found, *mirrored] for k in (1, -1)]
     return [*found, *mirrored, *turned] if statistic.has(sp.sin, sp.cos) else found
+
+
+def _through_an_angle(statistic: Expr, x: Symbol) -> list[Expr] | None:
+    """Candidates where T depends on x through one sine, cosine or tangent."""
+    nodes = [node for node in statistic.atoms(sp.sin, sp.cos, sp.tan) if node.has(x)]
+    inside = sp.Dummy("w", real=True)
+    outer = statistic.xreplace(dict.fromkeys(nodes, inside))
+    if len(nodes) != 1 or outer.has(x):
+        return None
+    (node,) = nodes
+    back = {sp.sin: sp.asin, sp.cos: sp.acos, sp.tan: sp.atan}[node.func]
+    angles = [back(value) for value in inverse_branches(outer, inside, V) or ()]
+    if node.func == sp.sin:
+        angles += [sp.pi - angle for angle in angles]
+    found = [inverse_branches(node.args[0], x, angle) for angle in angles]
+    return None if not found or None in found else [branch for branches in found for branch in branches or ()]
 
 
 def _meets(statistic: Expr, candidate: Expr, x: Symbol, point: Expr) -> bool:

@@ -20,6 +20,12 @@ from sympy import Expr, Symbol
 Interval = tuple[Expr, Expr]
 
 HALF = sp.Rational(1, 2)
+DEPTH = 8
+"""How deep a proof may go."""
+
+MOST_DOMAINS = 64
+_FOUND: dict[tuple[tuple[Symbol, Interval], ...], dict[Expr, int]] = {}
+"""What was found in each domain: proofs do not change, and the steps of one derivation ask for the same ones."""
 
 FRACTIONS = tuple(sp.Rational(p, q) for p, q in ((1, 3), (1, 2), (6, 7), (1, 11), (98, 99), (1, 60)))
 DISTANCES = tuple(sp.Rational(p, q) for p, q in ((5, 7), (2, 1), (7, 2), (1, 9), (12, 1), (1, 40)))
@@ -71,8 +77,17 @@ class Domain:
         return charts
 
     @cached_property
-    def _known(self) -> dict[Expr, bool]:
-        return {}
+    def known(self) -> dict[Expr, int]:
+        """What was found so far, by expression: 0 when it is proved, else the depth of search that did not do.
+
+        Shared by all domains with the same ranges.
+        """
+        key = tuple(self.ranges.items())
+        if key not in _FOUND:
+            if len(_FOUND) >= MOST_DOMAINS:
+                _FOUND.clear()
+            _FOUND[key] = {}
+        return _FOUND[key]
 
     def having(self, symbol: Symbol, lower: Expr, upper: Expr) -> Domain:
         """Return this domain with one more symbol."""
@@ -87,10 +102,7 @@ class Domain:
         >>> Domain({p: (sp.Integer(0), sp.Integer(1))}).positive(1 - (1 - p)**3)
         True
         """
-        expr = sp.sympify(expr)
-        if expr not in self._known:
-            self._known[expr] = _positive(expr, self, 8)
-        return self._known[expr]
+        return _positive(sp.sympify(expr), self, DEPTH)
 
     def negative(self, expr: Expr) -> bool:
         """Tell whether ``expr < 0`` is proved on the whole domain."""
@@ -106,6 +118,15 @@ def _positive(expr: Expr, domain: Domain, depth: int) -> bool:
         return True
     if expr.is_nonpositive or depth == 0:
         return False
+    searched = domain.known.get(expr)
+    if searched == 0 or (searched is not None and searched >= depth):
+        return searched == 0
+    found = _search(expr, domain, depth)
+    domain.known[expr] = 0 if found else depth
+    return found
+
+
+def _search(expr: Expr, domain: Domain, depth: int) -> bool:
     if not expr.free_symbols:
         return _positive_number(expr)
     if expr.is_Add:

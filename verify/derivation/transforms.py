@@ -67,12 +67,21 @@ def _secant(log_transform: Expr, z: Symbol, density: Density, found: Factorisati
         if omega.has(z) or omega == 0:
             continue
         size = sp.diff(log_transform, z) / (omega * sp.tan(inner))
-        r = sp.simplify(size)
-        if r.has(z) or not _same(log_transform, -r * sp.log(node), z):
+        r = _constant(size, z)
+        if r is None or not _same(log_transform, -r * sp.log(node), z):
             continue
         phase = sp.expand(inner - omega * z)
         ends = sorted(((s * sp.pi / 2 - phase) / omega for s in (1, -1)), key=lambda end: sp.N(end, 30))
         return Secant(_plain(r), _plain(omega), _plain(phase), Fraction(0), *map(_plain, ends))
+    return None
+
+
+def _constant(expr: Expr, z: Symbol) -> Expr | None:
+    """The expression in a form without z, the cheap forms first; None when none was found."""
+    for form in (lambda e: e, lambda e: sp.cancel(e.replace(sp.tan, lambda w: sp.sin(w) / sp.cos(w))), sp.simplify):
+        expr = form(expr)
+        if not expr.has(z):
+            return expr
     return None
 
 

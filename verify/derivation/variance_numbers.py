@@ -16,6 +16,7 @@ from sympy import Expr, Symbol
 
 from verify.arithmetic.ball import balls
 from verify.arithmetic.evaluate import evaluate
+from verify.arithmetic.taylor import taylor
 from verify.derivation.certain import sign_of_ball
 from verify.errors import SidecheckError
 
@@ -39,21 +40,29 @@ def certainly_another(log_normaliser: Expr, natural: Expr, t: Symbol, points: Se
     >>> certainly_another(t, sp.log(t), t, points)
     False
     """
-    slopes = [_derivatives(expr, t) for expr in (log_normaliser, natural)]
     try:
-        with balls(PRECISION) as A:
-            found = [_coefficients(A, slopes, t, point) for point in points]
+        first = [_slopes(log_normaliser, t, points), _slopes(natural, t, points)]
+        with balls(PRECISION):
+            found = [_coefficients(*rows) for rows in zip(*first, strict=True)]
     except (SidecheckError, ArithmeticError):
         return False
     return all(any(sign_of_ball(row[k] - found[0][k]) for row in found[1:]) for k in (0, 1))
 
 
-def _derivatives(expr: Expr, t: Symbol) -> list[Expr]:
-    derivatives = []
+def _slopes(expr: Expr, t: Symbol, points: Sequence[Expr]) -> list[Series]:
+    """The power series of the derivative at each point; the derivatives are written out where that is the only way."""
+    try:
+        return [_slope(taylor(expr, t.name, point, ORDER + 1, PRECISION)) for point in points]
+    except SidecheckError:
+        derivatives = []
     for _ in range(ORDER):
         expr = sp.diff(expr, t)
         derivatives.append(expr.replace(sp.Derivative, _known_derivative))
-    return derivatives
+    with balls(PRECISION) as A:
+        return [
+            [evaluate(d, A, {t.name: A.real(point)}) / factorial(k) for k, d in enumerate(derivatives)]
+            for point in points
+        ]
 
 
 def _known_derivative(function: Expr, variable: sp.Tuple) -> Expr:
@@ -64,10 +73,8 @@ def _known_derivative(function: Expr, variable: sp.Tuple) -> Expr:
     return sp.Derivative(function, variable)
 
 
-def _coefficients(A: Any, slopes: list[list[Expr]], t: Symbol, point: Expr) -> tuple[Any, Any]:
-    """Return v2 = V''/2 and the cubic coefficient V'''/6 at one point."""
-    values = {t.name: A.real(point)}
-    first, slope = ([evaluate(d, A, values) / factorial(k) for k, d in enumerate(row)] for row in slopes)
+def _coefficients(first: Series, slope: Series) -> tuple[Any, Any]:
+    """Return v2 = V''/2 and the cubic coefficient V'''/6 at one point, from the series of A' and of Q'."""
     k1 = _quotient(first, slope)
     k2 = _quotient(_slope(k1), slope)
     v1 = _quotient(_quotient(_slope(k2), slope), k2)
