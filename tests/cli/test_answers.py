@@ -133,7 +133,7 @@ def test_a_refuted_density_gives_no_table(grid, tmp_path, capsys):
     [
         (["-o", "a.txt"], "--output: a table cannot be written as a.txt; name it .csv or .parquet"),
         (["-o", "/nowhere/a.csv"], "--output: no table can be written in /nowhere; give"),
-        (["-o", "a.csv", "--workers", "0"], "workers: 0 workers; ask for 1 to 256"),
+        (["-o", "a.csv", "--workers", "0"], "argument --workers: '0' is not a number of processes from 1 to 256"),
     ],
 )
 def test_what_cannot_be_used_is_said_on_one_line(grid, extra, message, capsys, monkeypatch, tmp_path):

@@ -10,7 +10,7 @@ from pathlib import Path
 from typing import TYPE_CHECKING
 
 from verify.cli import status
-from verify.cli.options import add_budget, add_digits, add_json
+from verify.cli.options import add_budget, add_cache, add_digits, add_json, add_workers
 from verify.cli.output import note, show_json
 from verify.cli.progress import progress_bar
 
@@ -26,14 +26,22 @@ CHUNK = 20
 
 def add(parser: argparse.ArgumentParser) -> None:
     """Add the arguments of the command."""
-    parser.add_argument("grid", metavar="GRID", help="a case file with [grid]: the lists lower and upper (or limit), "
-                        "alpha and n vary its [problem]; - for standard input")
-    parser.add_argument("-o", "--output", metavar="FILE", required=True, help="the table, .csv or .parquet; an "
-                        "interrupted run goes on where it stopped")
+    parser.add_argument(
+        "grid",
+        metavar="GRID",
+        help="a case file with [grid]: the lists lower and upper (or limit), "
+        "alpha and n vary its [problem]; - for standard input",
+    )
+    parser.add_argument(
+        "-o",
+        "--output",
+        metavar="FILE",
+        required=True,
+        help="the table, .csv or .parquet; an interrupted run goes on where it stopped",
+    )
     add_digits(parser, default=20)
-    parser.add_argument("--workers", type=int, default=1, metavar="N", help="local processes (default 1)")
-    parser.add_argument("--scheduler", metavar="ADDRESS", help="a running Dask scheduler, tcp://host:port")
-    parser.add_argument("--cache", metavar="DIR", help="remember proven results here (also by SIDECHECK_CACHE)")
+    add_workers(parser)
+    add_cache(parser)
     add_budget(parser)
     add_json(parser)
 
@@ -56,7 +64,8 @@ def run(args: argparse.Namespace) -> int:
         note(f"no table: {refusal.name} is {refusal.grade.value}: {refusal.statement}")
         return status.of_grade(refusal.grade)
     if grid.left_out:
-        note(f"{grid.left_out} pairs of limits are not ascending and left out")
+        pairs = "pair of limits is" if grid.left_out == 1 else "pairs of limits are"
+        note(f"{grid.left_out} {pairs} not ascending and left out")
     about = asker.about()
     journal = Journal(Path(args.output + ".journal"), json.dumps(about, sort_keys=True))
     _answer(grid, asker, journal, args)

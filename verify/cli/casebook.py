@@ -9,7 +9,7 @@ from collections.abc import Sequence
 from pathlib import Path
 from typing import TYPE_CHECKING, TextIO
 
-from verify.cli.options import add_budget, add_json, digits
+from verify.cli.options import add_budget, add_json, add_workers, digits
 from verify.cli.output import note, show_json
 from verify.cli.progress import progress_bar
 
@@ -22,16 +22,22 @@ EXAMPLE = "sidecheck casebook casebook --workers 2 --junit report.xml"
 def add(parser: argparse.ArgumentParser) -> None:
     """Add the arguments of the command."""
     parser.add_argument("places", metavar="DIR", nargs="+", help="folders (searched to the bottom) and case files")
-    parser.add_argument("--only", metavar="PATTERN", action="append", default=[],
-                        help="run the cases of this name, e.g. 'lot-*' or 'published/*'; may be repeated")
+    parser.add_argument(
+        "--only",
+        metavar="PATTERN",
+        action="append",
+        default=[],
+        help="run the cases of this name, e.g. 'lot-*' or 'published/*'; may be repeated",
+    )
     parser.add_argument("--fail-fast", action="store_true", help="stop behind the first case that does not pass")
-    parser.add_argument("--workers", type=int, default=1, metavar="N", help="local processes (default 1)")
-    parser.add_argument("--scheduler", metavar="ADDRESS", help="address of a Dask scheduler, tcp://host:port, whose "
-                        "workers see the same files")
+    add_workers(parser)
     parser.add_argument("--junit", metavar="FILE", help="write a JUnit report")
     parser.add_argument("--jsonl", metavar="FILE", help="write one JSON object a case, without times")
-    parser.add_argument("--github", action="store_true",
-                        help="print annotations, and append a table to the file named by GITHUB_STEP_SUMMARY")
+    parser.add_argument(
+        "--github",
+        action="store_true",
+        help="print annotations, and append a table to the file named by GITHUB_STEP_SUMMARY",
+    )
     parser.add_argument("--digits", type=digits, default=30, metavar="N",
                         help="significant digits to prove (default 30; more where a case prints more)")  # fmt: skip
     add_budget(parser)

@@ -13,8 +13,8 @@ FIRST, MOST = 1000, 10_000
 
 
 @contextmanager
-def progress_bar(what: str, total: int, done: int = 0) -> Iterator[Callable[[int], None]]:
-    """Give a function to call with the number of items done so far."""
+def progress_bar(what: str, total: int | None, done: int = 0) -> Iterator[Callable[[int], None]]:
+    """Give a function to call with the number of items done so far; no total where it is not worth counting."""
     if not sys.stderr.isatty():
         yield _lines(what, total)
         return
@@ -27,13 +27,13 @@ def progress_bar(what: str, total: int, done: int = 0) -> Iterator[Callable[[int
         yield lambda count: bar.update(task, completed=count)
 
 
-def _lines(what: str, total: int) -> Callable[[int], None]:
+def _lines(what: str, total: int | None) -> Callable[[int], None]:
     """A line at the first thousand, then each time the number has doubled or grown by ten thousand."""
     state = {"next": FIRST}
 
     def progress(done: int) -> None:
         if done >= state["next"]:
-            note(f"{done} of {total} {what}")
+            note(f"{done} {what}" if total is None else f"{done} of {total} {what}")
             state["next"] = min(2 * done, done + MOST)
 
     return progress

@@ -12,8 +12,9 @@ from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
 from verify.cli import status
-from verify.cli.options import add_budget, add_case, add_json, digits
+from verify.cli.options import add_budget, add_case, add_json, add_workers, digits
 from verify.cli.output import note, show_json
+from verify.cli.progress import progress_bar
 
 if TYPE_CHECKING:
     from verify.problem.casefile import Case
@@ -50,17 +51,9 @@ def add(parser: argparse.ArgumentParser) -> None:
         default=None,
         help=f"significant digits to prove (default {CLAIM_DIGITS}; {ROW_DIGITS} for a table)",
     )
-    parser.add_argument(
-        "--workers", type=_workers, default=1, metavar="N", help="processes for a long table (default 1)"
-    )
+    add_workers(parser)
     add_budget(parser)
     add_json(parser)
-
-
-def _workers(text: str) -> int:
-    if not (text.isascii() and text.isdigit() and 1 <= int(text) <= 256):
-        raise argparse.ArgumentTypeError(f"{text[:20]!r} is not a number of processes from 1 to 256")
-    return int(text)
 
 
 def run(args: argparse.Namespace) -> int:
@@ -105,7 +98,8 @@ def _table(case: Case, args: argparse.Namespace) -> int:
     table = open_table(args.table)
     _refuse_same_file(args)
     columns = map_columns(case.table, table.header, args.table)
-    job = Job(case, columns, Path(args.table).parent, args.digits or ROW_DIGITS, args.budget, args.workers)
+    digits = args.digits or ROW_DIGITS
+    job = Job(case, columns, Path(args.table).parent, digits, args.budget, args.workers, args.scheduler)
     with _journal_place(args.output) as place:
         import verify
 
@@ -157,31 +151,9 @@ def _run(job: Job, table: Table, journal: Journal) -> None:
 
     if journal.done:
         note(f"{journal.done} rows were done before; going on after them")
-    if not sys.stderr.isatty():
-        run(job, table, journal, _plain_progress())
-        return
-    from rich.console import Console
-    from rich.progress import MofNCompleteColumn, Progress, SpinnerColumn, TextColumn, TimeElapsedColumn
-
-    total = sum(1 for _ in table.rows())
-    columns = (SpinnerColumn(), TextColumn("rows"), MofNCompleteColumn(), TimeElapsedColumn())
-    with Progress(*columns, console=Console(stderr=True), transient=True) as bar:
-        task = bar.add_task("rows", total=total, completed=journal.done)
-        run(job, table, journal, lambda done: bar.update(task, completed=done))
-
-
-def _plain_progress() -> Callable[[int], None]:
-    """A line on stderr now and then: at 1000 rows, then each time the number has doubled or grown by 10
-    000.
-    """
-    state = {"next": 1000}
-
-    def progress(done: int) -> None:
-        if done >= state["next"]:
-            note(f"{done} rows")
-            state["next"] = min(2 * done, done + 10_000)
-
-    return progress
+    total = sum(1 for _ in table.rows()) if sys.stderr.isatty() else None
+    with progress_bar("rows", total, journal.done) as progress:
+        run(job, table, journal, progress)
 
 
 def _show(journal: Journal, as_json: bool) -> int:

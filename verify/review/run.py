@@ -3,26 +3,24 @@
 from __future__ import annotations
 
 import hashlib
-import os
-import time
-from collections import deque
-from collections.abc import Callable, Iterator, Mapping
-from concurrent.futures import Future, ProcessPoolExecutor
+from collections.abc import Callable
+from contextlib import closing
 from dataclasses import dataclass
 from itertools import islice
-from multiprocessing import get_context
 from pathlib import Path
-from threading import Thread
+from uuid import uuid4
 
+from verify.parallel import run_all
 from verify.problem.casefile import Case
 from verify.review.cells import Cell, Row, Table
 from verify.review.journal import Journal
 from verify.review.mapping import ColumnMap
 from verify.review.record import Record
 from verify.review.reviewer import Reviewer
+from verify.review.setting import Cache
 
 BATCH = 100
-"""Rows that are handed out, and written to the journal, at a time."""
+"""Rows that are handed out at a time."""
 
 Task = tuple[int, dict[str, Cell]]
 Progress = Callable[[int], None]
@@ -46,6 +44,8 @@ class Job:
         Seconds for each symbolic step.
     workers : int
         Processes; 1 for this one alone.
+    scheduler : str or None
+        Address of a running Dask scheduler, whose workers see the same case files.
     """
 
     case: Case
@@ -54,6 +54,7 @@ class Job:
     digits: int
     budget: float = 10.0
     workers: int = 1
+    scheduler: str | None = None
 
     def reviewer(self) -> Reviewer:
         """Return a reviewer for this job."""
@@ -83,7 +84,7 @@ def run(job: Job, table: Table, journal: Journal, progress: Progress | None = No
     job : Job
         How.
     table : Table
-        The rows.
+        The rows; they are read a bounded number ahead.
     journal : Journal
         Where the records go.
     progress : callable, optional
@@ -91,14 +92,12 @@ def run(job: Job, table: Table, journal: Journal, progress: Progress | None = No
     """
     done = journal.done
     tasks = (task_of(job.columns, row) for row in islice(table.rows(), done, None))
-    try:
-        for records in _reviewed(job, tasks):
-            journal.add(records)
-            done += len(records)
+    with closing(journal):
+        for record in run_all(RowReviewer(job), tasks, job.workers, job.scheduler, BATCH):
+            journal.add([record])
+            done += 1
             if progress is not None:
                 progress(done)
-    finally:
-        journal.close()
 
 
 def task_of(columns: ColumnMap, row: Row) -> Task:
@@ -106,46 +105,23 @@ def task_of(columns: ColumnMap, row: Row) -> Task:
     return row.number, columns.fields(row)
 
 
-def _reviewed(job: Job, tasks: Iterator[Task]) -> Iterator[list[Record]]:
-    if job.workers == 1:
-        reviewer = job.reviewer()
-        for batch in _batches(tasks):
-            yield [reviewer.row(number, fields, job.columns.style) for number, fields in batch]
-        return
-    spawn = get_context("spawn")  # a fork would inherit threads and the lock of the journal
-    with ProcessPoolExecutor(job.workers, spawn, initializer=_start, initargs=(job,)) as pool:
-        waiting: deque[Future[list[Record]]] = deque()
-        for batch in _batches(tasks):
-            waiting.append(pool.submit(_work, batch, job.columns.style))
-            if len(waiting) > 2 * job.workers:
-                yield waiting.popleft().result()
-        while waiting:
-            yield waiting.popleft().result()
+class RowReviewer:
+    """Reviews the rows of one table, in whichever process; there it makes its reviewer once.
+
+    Parameters
+    ----------
+    job : Job
+        How.
+    """
+
+    def __init__(self, job: Job) -> None:
+        self.job, self.token = job, uuid4().hex
+
+    def __call__(self, task: Task) -> Record:
+        """Return the record of a row; nothing is raised for one row."""
+        number, fields = task
+        return _reviewers.get(self.token, self.job.reviewer).row(number, fields, self.job.columns.style)
 
 
-def _batches(tasks: Iterator[Task]) -> Iterator[tuple[Task, ...]]:
-    while batch := tuple(islice(tasks, BATCH)):
-        yield batch
-
-
-_reviewer: Reviewer | None = None
-
-
-def _start(job: Job) -> None:
-    """Make the reviewer of a worker process."""
-    global _reviewer
-    Thread(target=_leave_with, args=(os.getppid(),), daemon=True).start()
-    _reviewer = job.reviewer()
-
-
-def _leave_with(parent: int) -> None:
-    """End this worker when the process that started it is gone, so that a killed run leaves nothing behind."""
-    while os.getppid() == parent:
-        time.sleep(1)
-    os._exit(1)
-
-
-def _work(batch: tuple[Task, ...], style: Mapping[str, str]) -> list[Record]:
-    if _reviewer is None:
-        raise RuntimeError("a worker without a reviewer")
-    return [_reviewer.row(number, fields, style) for number, fields in batch]
+_reviewers: Cache[str, Reviewer] = Cache(4)
+"""The reviewers of this process, by the run that they serve: a cluster's worker unpickles a job with every batch."""
