@@ -178,13 +178,32 @@ def test_family_is_solved_and_every_step_proved(name: str) -> None:
     assert all(end.exact or end.digits >= 20 or end.contains(0) for end in ends)
 
 
-def test_a_sum_whose_density_is_singular_and_whose_transform_is_unknown_is_undecided() -> None:
+def test_a_sum_whose_density_is_singular_and_whose_transform_is_unknown_is_checked_not_proved() -> None:
     """T = x**2 has a density like 1/sqrt(v) at 0, and its transform is of no kind known here."""
     formula = "2*sqrt(t/pi)*exp(-t*x**2)/erf(sqrt(t))"
     density = Density(formula, variable="x", support="reals in (0, 1)", parameter="t", space="t > 0")
     problem = Problem(density, null="t = 1", alpha="0.05", n=2)
-    with pytest.raises(UndecidedError, match="analytic"):
-        solve(problem, digits=20)
+    derivation = derive(density, limits=problem.hypothesis.limits, n=2)
+    step = derivation.step("law of the sum")
+    assert step is not None
+    assert (step.grade, derivation.grade) == (Grade.CHECKED, Grade.CHECKED)
+    assert "analytic" in step.reason
+    solution = solve(problem, digits=18, derivation=derivation)
+    assert (solution.grade, solution.numbers_grade) == (Grade.CHECKED, Grade.CHECKED)
+    assert all(condition.expectation.contains(condition.target) for condition in solution.side_conditions)
+    assert [s.name for s in solution.derivation.steps].count("law of the sum") == 1
+    with pytest.raises(UndecidedError, match="digits, not 80"):
+        solve(problem, digits=80, derivation=derivation)
+
+
+def test_the_grade_is_added_where_the_derivation_did_not_know_n() -> None:
+    density = Density("sqrt(t/pi)*exp(-t*x)/sqrt(x)/erf(sqrt(t))", variable="x", support="reals in (0, 1]",
+                      parameter="t", space="t > 0")  # fmt: skip
+    derivation = derive(density)
+    assert derivation.grade is Grade.PROVED
+    solution = solve(Problem(density, null="t <= 1", alpha="0.05", n=2), digits=15, derivation=derivation)
+    assert solution.grade is Grade.CHECKED
+    assert solution.derivation.step("law of the sum") is not None
 
 
 def test_a_statistic_off_every_lattice_is_undecided_with_what_would_help() -> None:

@@ -8,7 +8,7 @@ from verify.derivation.cumulants import cumulants
 from verify.derivation.factorisation import Factorisation
 from verify.derivation.family import LawFamily
 from verify.derivation.lattice_route import space_ends
-from verify.derivation.monotone_pieces import V, monotone_pieces
+from verify.derivation.monotone_pieces import V, inverse_on, monotone_pieces
 from verify.derivation.positivity import Domain
 from verify.derivation.transforms import transform_of
 from verify.derivation.zeta_values import open_zeta
@@ -52,6 +52,7 @@ def continuous_family(density: Density, found: Factorisation) -> tuple[LawFamily
         found.natural_parameter,
         transform_of(density, found),
         *_pushed(core, found.statistic, x, pieces),
+        _log_transform(density, found),
     )
     word = "monotone" if len(pieces) == 1 else f"monotone in {len(pieces)} pieces"
     return LawFamily(OneObservation(shape, t), as_exact(1), as_exact(0), t), f"T is {word} on the support"
@@ -79,3 +80,12 @@ def _without_sinh(expr: sp.Expr) -> sp.Expr:
 
 def _is_sinh_squared(node: sp.Pow) -> bool:
     return isinstance(node.base, sp.sinh) and node.exp == 2
+
+
+def _log_transform(density: Density, found: Factorisation) -> sp.Expr | None:
+    """The log normaliser in terms of the natural parameter, the symbol z; None where no inverse of Q is found."""
+    space = density.parsed_space
+    back = inverse_on(found.natural_parameter, density.t, space.lower, space.upper)
+    if back is None:
+        return None
+    return found.log_normaliser.subs(density.t, back.subs(V, sp.Symbol("z")))

@@ -22,8 +22,10 @@ from verify.derivation.nonnegativity import nonnegativity_step
 from verify.derivation.normalisation import total_mass
 from verify.derivation.numerical_look import numerical_look
 from verify.derivation.points import domain_of, parameter_points
+from verify.derivation.sum_step import open_or_checked
 from verify.derivation.support_step import support_step
 from verify.errors import UndecidedError
+from verify.laws.continuous import OneObservation
 from verify.notebook import Shown
 from verify.problem.density import Density
 from verify.problem.numbers import Exact, as_expr
@@ -156,6 +158,9 @@ def derive(
                 grade = ledger.grades("law")
                 derived = Derived(density, found.statistic, found.natural_parameter, family, grade, n)
                 ledger.run("claims", _claims, dict(claim), derived)
+            if family is not None and n is not None and n > 1 and isinstance(family.law, OneObservation):
+                step = open_or_checked(family, limits, n)
+                ledger.steps.extend(() if step is None else (step,))
     return _finished(density, found, rising, family, ledger.steps)
 
 

@@ -7,7 +7,8 @@
 | continuous, one observation | quadrature of the density (:mod:`verify.laws.continuous`) |
 | continuous, several observations | inversion of the transform, where its decay is known
 (:mod:`verify.laws.inversion`); else convolution of a polynomial near an analytic density
-(:mod:`verify.laws.convolution`) |
+(:mod:`verify.laws.convolution`); else what two numerical routes share, checked and not enclosed
+(:mod:`verify.laws.two_routes`) |
 
 Any other is left undecided, with what would help.
 """
@@ -19,6 +20,7 @@ from verify.derivation.factorisation import Factorisation
 from verify.derivation.family import LawFamily
 from verify.derivation.lattice_route import lattice_family
 from verify.derivation.ledger import Grade, Step
+from verify.laws.continuous import OneObservation
 from verify.problem.density import Density
 
 
@@ -41,5 +43,6 @@ def general_family(
     if isinstance(answer, str):
         return Step("law", Grade.UNDECIDED, "the law of T stayed open", answer), None
     family, why = answer
-    statement = f"the law of the sum is computed from the density itself: {family.law.name}"
+    whose = "T" if isinstance(family.law, OneObservation) else "the sum"
+    statement = f"the law of {whose} is computed from the density itself: {family.law.name}"
     return Step("law", leaning, statement, f"{why}; {family.law.source}"), family

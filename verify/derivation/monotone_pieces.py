@@ -72,7 +72,7 @@ def _piece(statistic: Expr, x: Symbol, left: Expr, right: Expr) -> Piece | str:
     sign = Domain({x: (left, right)}).sign(slope) or _sign_by_balls(slope, x, left, right)
     if not sign:
         return f"that T = {statistic} is monotone on ({left}, {right}) was not shown"
-    inverse = _inverse(statistic, x, left, right)
+    inverse = inverse_on(statistic, x, left, right)
     if inverse is None:
         return f"no inverse of T = {statistic} on ({left}, {right}) was found"
     at_left, at_right = (_limit(statistic, x, end, side) for end, side in ((left, "+"), (right, "-")))
@@ -130,7 +130,8 @@ def _one_sign(expr: Expr, x: Symbol, A: Any, low: Any, high: Any, depth: int) ->
     return first if first and first == _one_sign(expr, x, A, middle, high, depth - 1) else 0
 
 
-def _inverse(statistic: Expr, x: Symbol, left: Expr, right: Expr) -> Expr | None:
+def inverse_on(statistic: Expr, x: Symbol, left: Expr, right: Expr) -> Expr | None:
+    """Return the inverse of a function that is monotone on an interval, in terms of ``V``; None where none is found."""
     point = _inside(left, right)
     for candidate in _candidates(statistic, x):
         if _meets(statistic, candidate, x, point) and is_zero(statistic.subs(x, candidate) - V):

@@ -19,7 +19,9 @@ from verify.laws.base import Law, Number
 from verify.laws.convolution import SumByConvolution
 from verify.laws.integrals import Integrals
 from verify.laws.inversion import SumByInversion
+from verify.laws.pushed import density_of_statistic, position
 from verify.laws.shape import SINGULAR, Piece, Shape
+from verify.laws.two_routes import SumByTwoRoutes
 
 if TYPE_CHECKING:
     from verify.problem.numbers import Exact
@@ -67,12 +69,24 @@ class OneObservation(Law):
             return self
         if self.one.transform is not None:
             return SumByInversion(self.one, self.one.transform, self.at, n)
-        if self.one.pushed is not None:
-            return SumByConvolution(self.one, self.at, n)
-        raise UndecidedError(
-            f"no bound is known for the characteristic function of T under {self.one.text}, so the law of a sum "
-            "of several observations is not enclosed; n = 1 is"
-        )
+        if self.one.pushed is None:
+            return self._checked(n, "no bound is known for the characteristic function of T")
+        enclosed = SumByConvolution(self.one, self.at, n)
+        if getattr(self.at, "free_symbols", None):
+            return enclosed  # the family as a whole: its members decide
+        try:
+            enclosed.require_replaceable()
+        except UndecidedError as error:
+            return self._checked(n, str(error))
+        return enclosed
+
+    def _checked(self, n: int, why: str) -> Law:
+        if self.one.log_transform is None:
+            raise UndecidedError(
+                f"{why}; nor was its log normaliser found as a function of the natural parameter, so a sum of several "
+                "observations is neither enclosed nor checked numerically; n = 1 is enclosed"
+            )
+        return SumByTwoRoutes(self.one, self.at, n, why)
 
     @property
     def support(self) -> tuple[Any, Any]:
@@ -81,14 +95,7 @@ class OneObservation(Law):
 
     def density(self, A: Any, v: Any) -> Number:
         """Density of T(X): f / abs(T') summed over the points where T = v."""
-        total = A.real(0)
-        for piece in self.one.pieces:
-            place = _position(A, piece, v)
-            if place == "inside":
-                x = evaluate(piece.inverse, A, {"v": A.real(v)})
-                slope = evaluate(self.one.slope, A, {self.one.variable: x})
-                total = total + self.one.density(A, self.at, x) / abs(slope)
-        return total
+        return density_of_statistic(self.one, self.at, A, v)
 
     def cdf(self, A: Any, v: Any) -> Number:
         """P(T(X) <= v)."""
@@ -127,7 +134,7 @@ class OneObservation(Law):
         return any(
             self.one.end_kind(self.at, piece, upper=end) == SINGULAR
             for piece in self.one.pieces
-            for end in _ends_touched(piece, _position(A, piece, v), upper=upper)
+            for end in _ends_touched(piece, position(A, piece, v), upper=upper)
         )
 
     def _sum(self, A: Any, v: Any, *, upper: bool, moment: bool) -> Number:
@@ -135,24 +142,13 @@ class OneObservation(Law):
             total = B.real(0)
             integrals = Integrals(self.one, self.at, B, moment=moment, mean=self.expectation(B))
             for piece in self.one.pieces:
-                place = _position(B, piece, v)
+                place = position(B, piece, v)
                 if place == ("below" if upper else "above"):
                     total = total + integrals.whole(piece)
                 elif place == "inside":
                     x = evaluate(piece.inverse, B, {"v": B.real(v)})
                     total = total + integrals.part(piece, x, to_high=piece.rising == upper)
         return A.real(total) + 0
-
-
-def _position(A: Any, piece: Piece, v: Any) -> str:
-    """Whether v lies certainly below or above the values of a piece, else "inside"."""
-    low, high = (piece.at_low, piece.at_high) if piece.rising else (piece.at_high, piece.at_low)
-    v = A.real(v)
-    if low is not None and v <= A.real(low):
-        return "below"
-    if high is not None and v >= A.real(high):
-        return "above"
-    return "inside"
 
 
 def _ends_touched(piece: Piece, place: str, *, upper: bool) -> tuple[bool, ...]:

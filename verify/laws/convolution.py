@@ -53,6 +53,11 @@ class SumByConvolution(BuiltLaw):
     lattice: ClassVar[bool] = False
     what: ClassVar[str] = "density"
 
+    def require_replaceable(self) -> None:
+        """Raise UndecidedError where the density is not shown to be near a polynomial at all."""
+        with balls(COARSE_BITS) as A:
+            self._replaced(midpoint(self.expectation(A)), COARSE_BITS).degree()
+
     @property
     def support(self) -> tuple[Any, Any]:
         """Ends of the support of V."""

@@ -78,7 +78,7 @@ class Replaced:
         ``moved`` is a ball around 0 by which v may move (density only).
         """
         settled = ("precision", self.at, self.n, self.bits, self.interval)
-        precision = self.one.cache.get(settled) or self.bits + 64 + BITS_A_DEGREE * self._degree()[0]
+        precision = self.one.cache.get(settled) or self.bits + 64 + BITS_A_DEGREE * self.degree()[0]
         for _ in range(MOST_DOUBLINGS):
             with balls(precision) as A:
                 low, high = A.real(self.interval.low), A.real(self.interval.high)
@@ -100,11 +100,18 @@ class Replaced:
         key = ("near", self.at, self.bits, self.interval, A.prec)
         cache = self.one.cache
         if key not in cache:
-            cache[key] = approximate(self._function(A), *self._degree())
+            cache[key] = approximate(self._function(A), *self.degree())
         found: Approximation = cache[key]
         return found
 
-    def _degree(self) -> tuple[int, Number]:
+    def degree(self) -> tuple[int, Number]:
+        """Return the degree of the polynomial, and its error.
+
+        Raises
+        ------
+        UndecidedError
+            When the density was not shown to be analytic up to the ends of the interval.
+        """
         key = ("ellipses", self.at, self.interval)
         if key not in self.one.cache:
             with balls(BOUND_BITS) as A:

@@ -87,6 +87,8 @@ class Shape:
         The density of T in terms of the symbol v, without ``constant``, where T is monotone on the support.
     log_concave : bool
         Whether the logarithm of ``pushed`` is shown to be concave.
+    log_transform : SymPy expression or None
+        The log normaliser in terms of the natural parameter, the symbol z.
     """
 
     constant: Any
@@ -104,6 +106,7 @@ class Shape:
     transform: Transform | None = None
     pushed: Any = None
     log_concave: bool = False
+    log_transform: Any = None
     cache: dict[Any, Any] = field(default_factory=dict, repr=False)
 
     @property

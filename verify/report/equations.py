@@ -7,6 +7,7 @@ from typing import TYPE_CHECKING, Any
 
 from verify.arithmetic.ball import balls, to_enclosure
 from verify.arithmetic.enclosure import Enclosure, decimal_text
+from verify.derivation.ledger import Grade
 from verify.problem.numbers import exact_text
 from verify.report.layout import short_exact, wrapped
 from verify.solution.conditions import interior
@@ -56,12 +57,13 @@ def _condition(solution: Solution, condition: SideCondition, law: Law) -> list[s
         lines.append(wrapped(f"{where}, {'V' if plain else 'Y'} is {law}:", first="    ", rest="      "))
         if law.lattice:
             lines.append(wrapped(_numbers(solution, law), first=head, rest=rest))
-    lines.append(wrapped(closeness(condition), first=head, rest=rest))
+    word = "enclosed" if solution.numbers_grade is Grade.PROVED else Grade.CHECKED.value
+    lines.append(wrapped(closeness(condition, word), first=head, rest=rest))
     return lines
 
 
-def closeness(condition: SideCondition) -> str:
-    """Say what an expectation is and how closely it is enclosed.
+def closeness(condition: SideCondition, word: str = "enclosed") -> str:
+    """Say what an expectation is and how closely it is enclosed, or checked.
 
     Examples
     --------
@@ -72,13 +74,13 @@ def closeness(condition: SideCondition) -> str:
     """
     target, found = condition.target, condition.expectation
     if not isinstance(target, Fraction):
-        return f"{short_exact(target)}, enclosed with a radius of {decimal_text(found.radius, 2, up=True)}"
+        return f"{short_exact(target)}, {word} with a radius of {decimal_text(found.radius, 2, up=True)}"
     if found.exact and found.lower == target:
         return f"{short_exact(target)} exactly"
     off = max(abs(found.lower - target), abs(found.upper - target))
     if not found.contains(target):
         return f"{found.text(SHOWN)}, which is not {short_exact(target)}"
-    return f"{short_exact(target)}, enclosed within {decimal_text(off, 2, up=True)} of it"
+    return f"{short_exact(target)}, {word} within {decimal_text(off, 2, up=True)} of it"
 
 
 def _numbers(solution: Solution, law: Law) -> str:

@@ -57,12 +57,12 @@ def in_full(claim: Claim) -> Runs:
     return (Digits(claim["lower"]), Break(), Digits(claim["upper"]))
 
 
-def kind_of(claim: Claim) -> Runs:
-    """Return whether a number is exact, or how wide its enclosure is."""
+def kind_of(claim: Claim, word: str = "enclosed") -> Runs:
+    """Return whether a number is exact, or how wide the interval is in which it is enclosed, or checked."""
     if isinstance(claim, str):
         return (Text("exact"),)
     low, high = ends(claim)
-    return (Text(f"enclosed, width {power_of_ten(high - low)}"),)
+    return (Text(f"{word}, width {power_of_ten(high - low)}"),)
 
 
 def power_of_ten(width: Fraction) -> str:

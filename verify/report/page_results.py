@@ -8,8 +8,14 @@ from typing import Any
 from verify.report.math_boxes import Atom
 from verify.report.page_blocks import Block, Digits, Math, Paragraph, Run, Runs, Section, Table, Text, words
 from verify.report.page_numbers import V, expectation, in_full, joined, kind_of, name, numbers_of, power_of_ten
-from verify.report.page_question import exact_box, parameter_of
+from verify.report.page_question import exact_box, is_checked, parameter_of
 from verify.report.prose import prose
+
+BETWEEN = ". A number that is not exact lies between the two decimals shown, lower end above, upper end below."
+NOT_PROVED = (
+    ". Two numerical routes put each number between the two decimals shown, lower end above, upper end below; "
+    "neither route bounds its error."
+)
 
 
 def numbers_section(predicate: dict[str, Any]) -> Section:
@@ -19,10 +25,11 @@ def numbers_section(predicate: dict[str, Any]) -> Section:
 
 def _numbers(predicate: dict[str, Any]) -> list[Block]:
     test = predicate["test"]
-    rows = [[(name(key),), in_full(value), kind_of(value)] for key, value in numbers_of(test).items()]
+    word = "checked" if is_checked(predicate) else "enclosed"
+    rows = [[(name(key),), in_full(value), kind_of(value, word)] for key, value in numbers_of(test).items()]
     intro = (
         Text("Cutoffs are on the scale of "), Math(V),
-        Text(". A number that is not exact lies between the two decimals shown, lower end above, upper end below."),
+        Text(NOT_PROVED if word == "checked" else BETWEEN),
     )  # fmt: skip
     table = Table(
         (words("Number"), words("Value"), words("Kind")), rows, (2, 14, 6), "Cutoffs and fractions of the test"
