@@ -83,6 +83,25 @@ def test_numbers_on_trust_have_a_status_of_their_own(
     assert recheck.main([str(path)]) == 4
 
 
+def test_what_surrounds_numbers_on_trust_is_compared_all_the_same(
+    certificates: dict[str, Any], maker: ModuleType
+) -> None:
+    base = json.loads(json.dumps(certificates["gamma outside"]["predicate"]))
+    base["law"] = {"name": "no closed form", "parameters": {}, "scale": "1", "shift": "0"}
+    base["assumptions"].insert(-1, recheck.TRUSTED_NUMBERS)
+    changes: list[tuple[str, str]] = [
+        ('"of":"phi"', '"of":"V phi"'), ('"at":"1"', '"at":"2"'), ('"target":"1/20"', '"target":"1/21"'),
+        ('"numbers":{"c1":"', '"numbers":{"c1":"1'), ('"size":{', '"size":{"lower":"0.01","upper":"0.02"},"x":{'),
+    ]  # fmt: skip
+    for old, new in changes:
+        text = maker.canonical(base).decode()
+        assert old in text
+        changed = json.loads(text.replace(old, new, 1))
+        for row in changed["rounding"]["rows"]:
+            row.pop("x", None)
+        assert recheck.verdict(maker.canonical(maker.statement(changed)))[0] == 1, new
+
+
 @pytest.mark.parametrize("name", ["gamma outside", "poisson interval"])
 def test_a_named_law_cannot_be_passed_off_as_trusted(
     certificates: dict[str, Any], maker: ModuleType, tmp_path: Path, name: str

@@ -5,6 +5,7 @@ from __future__ import annotations
 import copy
 import json
 import re
+from fractions import Fraction
 from pathlib import Path
 from types import ModuleType
 from typing import Any
@@ -58,6 +59,22 @@ def test_a_table_that_ends_before_the_cutoffs_is_refused(maker: ModuleType, cert
         assert recheck.verdict(maker.canonical(maker.statement(predicate)))[0] == wanted
 
 
+@pytest.mark.parametrize(("factor", "wanted"), [("-1", 1), ("3", 1), ("2", 0), ("1/2", 0)])
+def test_the_constant_of_a_density_whose_statistic_turns(
+    maker: ModuleType, certificates: dict[str, Any], factor: str, wanted: int
+) -> None:
+    """(x - m)**2 takes each value twice: a density has one sign and at most all the mass; the rest is on trust."""
+    predicate = copy.deepcopy(certificates["variance point"]["predicate"])
+    predicate["problem"]["density"]["formula"] = f"{factor}*({predicate['problem']['density']['formula']})"
+    assert recheck.verdict(maker.canonical(maker.statement(predicate)))[0] == wanted
+
+
+def test_integers_beyond_a_number_begin_at_the_next() -> None:
+    assert recheck.bounds("integers > 0", "x", {}) == recheck.bounds("integers >= 1", "x", {}) == [1, None]
+    assert recheck.bounds("-1 < x < 5", "x", {}) == [-1, 5]
+    assert recheck.bounds("integers < a", "x", {"a": Fraction(5)}) == [None, 4]
+
+
 def test_a_variable_may_have_any_name(maker: ModuleType, certificates: dict[str, Any]) -> None:
     text = (
         maker.canonical(certificates["poisson point"]["predicate"])
@@ -89,7 +106,7 @@ n = 5
         ("0..m", "0..10", 0), ('"0.05"', '["1/20", "5e-2"]', 0), ("2/5 or", "0.4 or", 0), ("<=", "≤", 0),
         ("m, x)", "m, x) * 1", 1), ("0..m", "0..11", 1), ("0 < p < 1", "0 < p < 2", 1), ('m = "10"', 'm = "11"', 1),
         ("2/5 or", "1/5 or", 1), ('"p <= 2/5 or p >= 3/5"', '"2/5 <= p <= 3/5"', 1), ('"0.05"', '"0.06"', 1),
-        ("n = 5", "n = 6", 1), ("0..m", "from 0 to m", 2),
+        ("n = 5", "n = 6", 1), ("0..m", "from 0 to m", 2), ("0..m", "> -1", 1),
     ],
 )  # fmt: skip
 def test_every_entry_of_the_case_file_is_compared(

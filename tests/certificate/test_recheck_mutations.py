@@ -28,7 +28,6 @@ HARMLESS = {
     r"derivation\.steps\.5\.statement ": "a law without closed form is not named; of named ones nothing else passes (`allowed`)",
     r"double_precision\.(condition|opinions\.\d+\.(route|note)|flags\.\d+\.(kind|number|text)) ": "free text",
     r"double_precision\.(opinions|flags) ": "a report of fewer opinions, or the same one twice",
-    r"double_precision\.opinions\.\d+\.(numbers|digits) without": "a report of fewer numbers",
     r"double_precision\.opinions\.\d+\.numbers\.\w+ (one unit|empty)": "another number is reported, of the same stated agreement",
     r"(versions|versions\.\w+|issued) ": "free text: who wrote it, and when, in the words of the user",
     # Mathematical statements that stay true.

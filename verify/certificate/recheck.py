@@ -727,14 +727,19 @@ def hypothesis(text: str, t: str) -> tuple[list[str], str, str, str, str]:
 
 def bounds(text: str, name: str, names: dict[str, Number]) -> list[Number | None]:
     """Read the ends of a support or space: "reals", "t > a", "a < t < b", "reals in (a, b)", "integers a..b"."""
-    text, e = re.sub(r"^(reals|integers)\b\s*", name + " ", text.strip()).strip(), r"[^<>=]+?"
+    plain, e = re.sub(r"^(reals|integers)\b\s*", name + " ", text.strip()).strip(), r"[^<>=]+?"
     for shape in (
-        rf"(?:(?P<a>{e}) *<=? *)?{name}(?: *<=? *(?P<b>{e}))?",
-        rf"{name} *>=? *(?P<a>{e})(?P<b>)",
+        rf"(?:(?P<a>{e}) *(?P<after><=?) *)?{name}(?: *(?P<before><=?) *(?P<b>{e}))?",
+        rf"{name} *(?P<after>>=?) *(?P<a>{e})",
         rf"{name} +(?:in +[(\[])?(?P<a>.+?)(?:\.\.|,)(?P<b>.+?)[)\]]?",
     ):
-        if found := re.fullmatch(shape, text):
-            return [evaluate(found[end], names) if found[end] else None for end in "ab"]
+        if found := re.fullmatch(shape, plain):
+            part = found.groupdict().get
+            low, high = (evaluate(end, names) if end else None for end in (part("a"), part("b")))
+            if text.strip().startswith("integers"):  # the first one after a, and the last before b
+                low = low + 1 if low is not None and part("after") in ("<", ">") else low
+                high = high - 1 if high is not None and part("before") == "<" else high
+            return [low, high]
     raise StopError(2, f"cannot read {text!r:.80}")
 
 
@@ -754,8 +759,12 @@ class Question:
         self.limit_texts, self.form, self.side, self.other, self.theorem = hypothesis(problem["null"], self.t)
         form(len(self.alphas) == len(self.limit_texts), "one level for each limit is needed")
         form(self.law["name"] == "lattice" or not {"weights", "first"} & set(self.law), "weights of no lattice law")
+        self.tails = [""] if self.form == "one-sided" else ["1", "2"]
         self.inner = self.form in ("one-sided", "outside null")  # the test rejects inside its window
         self.lattice = self.law["name"] not in CONTINUOUS
+        kind = "gamma" if "gamma" + self.tails[0] in self.test else "c"  # the numbers that a reader rounds
+        form(set(self.test) >= {kind + tail for tail in self.tails}, "the numbers of a test")
+        self.claims = {kind + tail: claimed(self.test[kind + tail]) for tail in self.tails}
         used = " ".join(map(str, [*(self.density[k] for k in (self.kind, "support", "space")), *self.limit_texts]))
         unused = [name for name in self.density["constants"] if not re.search(rf"\b{re.escape(name)}\b", used)]
         form(not unused, f"constants that are not used: {unused}")
@@ -842,7 +851,7 @@ def near_one(ratio: Number | int, what: str, slack: Fraction = Fraction(0)) -> N
 def check_density(q: Question) -> None:
     """Compare density f, law g of one Y = (T - shift) / scale, and Q, T, A at several places x and values t, u:
 
-        f(x;t) = g(y;t) abs(dy/dx)      (where T is one-to-one at these places; on a lattice without the last factor)
+        f(x;t) = g(y;t) abs(dy/dx)      (0 < f <= where T is not one-to-one here; on a lattice without the last factor)
         f(x;t) / f(x;u) = g(y;t) / g(y;u) = exp((Q(t) - Q(u)) T(x) - (A(t) - A(u)))
 
     a kernel: up to a factor. Q runs in the stated direction, and the support ends where the law does. A table is
@@ -852,14 +861,17 @@ def check_density(q: Question) -> None:
     ts = [*q.limits(), *(t for t in places(*q.ends_of("space"))[:3:2] if t not in q.limits())]
     laws = [q.law_at(t, 1) for t in ts]
     one, kernel, slack = laws[0], q.kind != "formula", Fraction(0 if q.lattice else 1, 10**9)
-    xs, slopes = lattice_places(q, one) if isinstance(one, Lattice) else smooth_places(q)
+    xs, slopes, one_to_one = lattice_places(q, one) if isinstance(one, Lattice) else smooth_places(q)
     seen = [(x, q.f(x, ts[0]), one.height(q.y(x))) for x in xs]
     full = [(x, f, g) for x, f, g in seen if f != 0 and g != 0]
-    if slopes:
-        require(all((f == 0) == (g == 0) for _, f, g in seen), "a place without mass, or one with it, by the law only")
-        ratios = [f / (g * slope) for (_, f, g), slope in zip(seen, slopes, strict=True) if f != 0]
-        for ratio in ratios:
+    require(all(less(0, f) for _, f, _ in full), "a density below 0")
+    require(all((f == 0) == (g == 0) for _, f, g in seen) or not one_to_one, "a place with a mass by the law or f only")
+    ratios = [f / (g * slope) for (_, f, g), slope in zip(seen, slopes, strict=True) if f != 0 and g != 0]
+    for ratio in ratios:
+        if one_to_one:
             near_one(ratio / (ratios[0] if kernel else 1), "the density is not that of the stated law", slack)
+        else:
+            require(kernel or less(ratio, 1 + Fraction(1, 10**8)), "more mass in the density than in the stated law")
     for t, law in zip(ts[1:], laws[1:], strict=True):
         rise = q.stated("natural_parameter", t) - q.stated("natural_parameter", ts[0])
         free = Fraction(0) if kernel else q.stated("log_normaliser", t) - q.stated("log_normaliser", ts[0])
@@ -874,8 +886,8 @@ def check_density(q: Question) -> None:
         require((less(0, rise) == less(ts[0], t)) == q.derivation["rising"], "Q does not run in the stated direction")
 
 
-def lattice_places(q: Question, law: Lattice) -> tuple[list[Fraction], list[Number]]:
-    """All places of a table, or six; and dy/dx = 1 at each, if T is one-to-one there. The support ends with the law."""
+def lattice_places(q: Question, law: Lattice) -> tuple[list[Fraction], list[Number], bool]:
+    """All places of a table, or six; dy/dx = 1, and whether T is one-to-one there. The support ends with the law."""
     low, high = (None if x is None else ends(x)[0] for x in q.ends_of("support"))
     many = len(law.table) or 6
     if low is not None and high is not None:
@@ -884,16 +896,16 @@ def lattice_places(q: Question, law: Lattice) -> tuple[list[Fraction], list[Numb
     xs = [low + k if low is not None else (high or Fraction(0)) - k for k in range(many)]
     ys = {q.y(x) for x in xs}
     if len(ys) < len(xs):
-        return xs, []
+        return xs, [Fraction(1)] * len(xs), False
     filled = {law.first + j for j, number in enumerate(law.table) if number}
     limits = {q.y(x) for x in (low, high) if x is not None}
     require(filled <= ys, "a weight at a place without mass")
     require(law.table or limits == {law.first, law.last} - {None}, "the support does not end where the law of Y does")
-    return xs, [Fraction(1)] * len(xs)
+    return xs, [Fraction(1)] * len(xs), True
 
 
-def smooth_places(q: Question) -> tuple[list[Fraction], list[Number]]:
-    """Four places; and abs(dy/dx) at each to 9 digits, if T runs in one direction at six (a central difference).
+def smooth_places(q: Question) -> tuple[list[Fraction], list[Number], bool]:
+    """Four places; abs(dy/dx) to 9 digits (a central difference), and whether T runs in one direction at six.
 
     The support must end where the law of Y does, if T is finite there.
     """
@@ -907,7 +919,7 @@ def smooth_places(q: Question) -> tuple[list[Fraction], list[Number]]:
         near_one(2 if q.law["name"] == "normal" else 1 + y, "the support does not end where the law of Y does")
     slopes = [(q.y(x + step) - q.y(x - step)) / (2 * step) for x in xs]
     falls = [less(slope, 0) for slope in slopes]
-    return xs[:4], [-s if falls[0] else s for s in slopes[:4]] if len(set(falls)) == 1 else []
+    return xs[:4], [-s if fall else s for s, fall in zip(slopes, falls, strict=True)][:4], len(set(falls)) == 1
 
 
 def check_ledger(q: Question) -> None:
@@ -974,16 +986,14 @@ class Test:
         self.q, self.exact, self.scale, self.shift = q, exact, q.value(q.law["scale"]), q.n * q.value(q.law["shift"])
         flip = less(self.scale, 0)
         self.turn = slice(None, None, -1 if flip else 1)  # from the order of V to that of Y, and back
-        self.tails = [""] if q.form == "one-sided" else ["1", "2"]
         kinds = ("gamma", "c", "y") if q.lattice else ("c",)
-        form(set(q.test) == {"form", "rejects"} | {kind + i for kind in kinds for i in self.tails}, "numbers of a test")
-        self.names = [kinds[0] + i for i in self.tails]
-        self.claims = [claimed(q.test[name]) for name in self.names]
+        form(set(q.test) == {"form", "rejects"} | {kind + i for kind in kinds for i in q.tails}, "numbers of a test")
+        self.claims = list(q.claims.values())
         self.s, self.h = self.scale, self.shift
         if q.lattice:
             self.s, self.h = (Fraction(1), Fraction(0)) if q.inner else (Fraction(-1), Fraction(1))
         self.above = (q.test["rejects"] == "above") != flip
-        self.points = [q.test["y" + i] for i in self.tails][self.turn] if q.lattice else []
+        self.points = [q.test["y" + i] for i in q.tails][self.turn] if q.lattice else []
         require(self.points == sorted(self.points), "cutoffs that are not in order")
         self.laws = [self.law_at(t) for t in q.limits()]
 
@@ -1027,7 +1037,7 @@ class Test:
         """
         q = self.q
         betas = [level if q.inner else 1 - level for level in q.levels()]
-        m: list[Number] = [Fraction(0) for _ in self.tails]
+        m: list[Number] = [Fraction(0) for _ in q.tails]
         if not q.lattice:
             low, high = (self.x_of([claim[end] for claim in self.claims]) for end in (0, 1))
             m = self.x_of([(low + high) / 2 for low, high in self.claims])
@@ -1042,7 +1052,7 @@ class Test:
             F.append(at[0][1] - betas[0] * self.laws[0].mean)
             J.append([slope * y for slope, y in self.slopes[0]])
         found = zero_of(F, J, m, self.points)[self.turn]
-        for i, name, claim, x in zip(self.tails, self.names, self.claims, found, strict=True):
+        for i, name, claim, x in zip(q.tails, q.claims, self.claims, found, strict=True):
             value = self.s * x + self.h
             if q.lattice:
                 c = self.scale * q.test["y" + i] + self.shift
@@ -1115,17 +1125,20 @@ def check_numbers(q: Question, predicate: dict[str, Any]) -> None:
         decide(lambda _: check_rounding(q, Test(q), predicate["rounding"]), 48)
 
 
-def check_conditions(q: Question, test: Test, conditions: list[dict[str, Any]]) -> None:
-    """Each side condition: where, its exact target, and the range of the expectation within the claim."""
+def check_conditions(q: Question, test: Test | None, conditions: list[dict[str, Any]]) -> None:
+    """Each side condition: where, its exact target, and the range of the expectation within the claim (or on trust)."""
     wanted = [(i, at, "phi") for i, at in enumerate(q.limit_texts)]
     wanted += [(0, q.limit_texts[0], "V phi")] if q.form == "point null" else []
     form(len(conditions) == len(wanted), "the number of side conditions")
     for condition, (i, at, of) in zip(conditions, wanted, strict=True):
         require((condition["at"], condition["of"]) == (at, of), "another side condition than the null's")
-        target = q.levels()[i] * (test.scale * test.laws[0].mean + test.shift if of == "V phi" else 1)
-        confirm(condition["target"], target, target, q.digits, "the target of a side condition")
-        low, high = test.extremes(i, of)
-        confirm(condition["expectation"], low, high, q.digits, "the expectation in a side condition")
+        target = q.levels()[i]
+        if test:
+            target *= test.scale * test.laws[0].mean + test.shift if of == "V phi" else 1
+            low, high = test.extremes(i, of)
+            confirm(condition["expectation"], low, high, q.digits, "the expectation in a side condition")
+        if test or of == "phi":
+            confirm(condition["target"], target, target, q.digits, "the target of a side condition")
 
 
 def fixed(x: Fraction, decimals: int) -> str:
@@ -1140,15 +1153,12 @@ def check_size(row: dict[str, Any], found: list[Number], middle: Number | None) 
     if "size" not in row:
         shown = middle is None or all(ends(e)[1] < ends(middle)[0] for e in found)
         require(not shown, "a size that is left out although it is that at the limits")
-        return
-    low, high = zip(*map(claimed, row["expectations"]), strict=True)
-    require(claimed(row["size"]) == (max(low), max(high)), "the size in the rounding table")
-    if middle is not None and any(less(middle, e) for e in found):
+    elif middle is not None and any(less(middle, e) for e in found):
         raise StopError(3, "where the power is largest")
 
 
-def check_rounding(q: Question, test: Test, rounding: dict[str, Any]) -> None:
-    """True expectations, and the size, when the numbers are printed to k = 1, 2, ... decimals.
+def check_rounding(q: Question, test: Test | None, rounding: dict[str, Any]) -> None:
+    """True expectations (or on trust), and the size, when the numbers are printed to k = 1, 2, ... decimals.
 
     The size is the largest expectation at the limits: power is monotone (one-sided), falls and then rises
     (rejecting outside) or rises and then falls (rejecting inside), by variation diminishing (Karlin 1968). In the
@@ -1157,22 +1167,26 @@ def check_rounding(q: Question, test: Test, rounding: dict[str, Any]) -> None:
     """
     rows, tolerance, levels, first = rounding["rows"], rational(rounding["tolerance"]), q.levels(), 0
     form(1 <= len(rows) <= 60 and tolerance > 0, "the rows of the rounding table")
-    middle = test.law_at(sum(q.limits(), Fraction(0)) / 2) if q.form == "outside null" else None
+    middle = test.law_at(sum(q.limits(), Fraction(0)) / 2) if test and q.form == "outside null" else None
     for k, row in enumerate(rows, 1):
-        form(row["decimals"] == k and len(row["expectations"]) == len(levels), "the rows of the rounding table")
-        texts = [fixed(low, k) for low, _ in test.claims]
-        if texts != [fixed(high, k) for _, high in test.claims]:
+        stated = row["expectations"]
+        form(row["decimals"] == k and len(stated) == len(levels), "the rows of the rounding table")
+        texts = {name: fixed(low, k) for name, (low, _) in q.claims.items()}
+        if texts != {name: fixed(high, k) for name, (_, high) in q.claims.items()}:
             raise StopError(3, "a number on the edge of its rounding")
-        require(row["numbers"] == dict(zip(test.names, texts, strict=True)), "numbers that are not rounded to nearest")
-        values = [Fraction(text) for text in texts]
-        found = [test.expect(law, values) for law in test.laws]
-        for claim, e in zip(row["expectations"], found, strict=True):
-            confirm(claim, e, e, min(q.digits, 15), "an expectation in the rounding table")
-        check_size(row, found, None if middle is None else test.expect(middle, values))
-        gaps = [e - level for e, level in zip(found, levels, strict=True)]
-        if not first and all(less(-tolerance, gap) and less(gap, tolerance) for gap in gaps):
-            first = k
-    require(rounding["decimals"] == first, "the smallest sufficient number of decimals")
+        require(row["numbers"] == texts, "numbers that are not rounded to nearest")
+        lows, highs = zip(*map(claimed, stated), strict=True)
+        require("size" not in row or claimed(row["size"]) == (max(lows), max(highs)), "the size in the rounding table")
+        if test:
+            values = [Fraction(text) for text in texts.values()]
+            found = [test.expect(law, values) for law in test.laws]
+            for claim, e in zip(stated, found, strict=True):
+                confirm(claim, e, e, min(q.digits, 15), "an expectation in the rounding table")
+            check_size(row, found, None if middle is None else test.expect(middle, values))
+            gaps = [e - level for e, level in zip(found, levels, strict=True)]
+            if not first and all(less(-tolerance, gap) and less(gap, tolerance) for gap in gaps):
+                first = k
+    require(not test or rounding["decimals"] == first, "the smallest sufficient number of decimals")
 
 
 # ---- 11. What is taken on trust, what is reported ------------------------------------------------------------------
@@ -1215,11 +1229,8 @@ def check_double(q: Question, opinions: list[dict[str, Any]]) -> None:
     """Digits of agreement of a double x: the largest d <= 17 with |x - c| <= 10**-d |c| / 2 for all claimed c, or 0."""
     for opinion in opinions:
         numbers, digits = opinion["numbers"], opinion["digits"]
-        form(
-            all(re.fullmatch("(c|gamma)[12]?", key) and key in q.test for key in numbers),
-            "an opinion on something else",
-        )
-        form(all(numbers.get(key) is not None for key in digits), "digits of a number that is not reported")
+        form(all(re.fullmatch("(c|gamma)[12]?", key) and key in q.test for key in numbers), "an opinion on what")
+        form(set(digits) == {key for key, x in numbers.items() if x is not None}, "the agreement of each number")
         for key, stated in digits.items():
             (low, high), x = claimed(q.test[key]), decimal(numbers[key])
             worst, size = max(abs(x - low), abs(x - high)), min(abs(low), abs(high))
@@ -1247,6 +1258,9 @@ def check(statement: Any) -> Question:
         decide(lambda _: check_ledger(q), 60)
         decide(lambda _: check_density(q), 60)
         check_numbers(q, predicate)
+    else:
+        decide(lambda _: check_conditions(q, None, predicate["side_conditions"]), q.digits + 48)
+        check_rounding(q, None, predicate["rounding"])
     return q
 
 
