@@ -67,3 +67,28 @@ def test_a_wide_point_gives_a_ball_around_both_ends() -> None:
         wide = law.cdf(A, low.union(high))
         assert wide.contains(law.cdf(A, low).mid())
         assert wide.contains(law.cdf(A, high).mid())
+
+
+@pytest.mark.parametrize("prec", [100, 700])
+def test_shortfall_of_a_logarithm_near_its_far_end(prec: int) -> None:
+    """6 x (1 - x) on (0, 1): integral of (m - log x) 6 x (1 - x) over (0, c) by parts, m = -1/2 - 1/3."""
+    law = law_of("gamma(t+2)/gamma(t)*x**(t-1)*(1-x)", "reals in (0, 1)", "t > 0", Fraction(2))
+    c = Fraction(1, 8)
+    with balls(prec) as A:
+        log, plain = A.log(A.real(c)), 3 * c**2 - 2 * c**3
+        wanted = A.real(plain) * (A.real(Fraction(-5, 6)) - log) + A.real(Fraction(3, 2) * c**2 - Fraction(2, 3) * c**3)
+        found = law.shortfall(A, log)
+        assert found.overlaps(wanted)
+        assert found.rel_accuracy_bits() > prec - 20
+
+
+@pytest.mark.parametrize("prec", [100, 250])
+def test_both_ends_far_at_finite_places(prec: int) -> None:
+    """The arcsine law: P(X <= sin(u)**2) = 2 u / pi (Feller 1971, section II.4)."""
+    law = law_of("sin(pi*t)/pi*x**(t-1)*(1-x)**(-t)", "reals in (0, 1)", "0 < t < 1", Fraction(1, 2))
+    with balls(prec) as A:
+        for u in (Fraction(1, 2), Fraction(5, 4)):
+            v = 2 * A.log(A.real(u).tan())
+            assert law.cdf(A, v).overlaps(2 * A.real(u) / A.pi)
+            assert (law.cdf(A, v) + law.sf(A, v) - 1).contains(0)
+            assert min(law.cdf(A, v).rel_accuracy_bits(), law.sf(A, v).rel_accuracy_bits()) > prec - 20

@@ -64,12 +64,22 @@ def _pushed(core: sp.Expr, statistic: sp.Expr, x: sp.Symbol, pieces: tuple[Piece
         return None, False
     (piece,) = pieces
     slope = sp.diff(piece.inverse, V) * (1 if piece.rising else -1)
-    pushed = core.subs(x, piece.inverse) * slope
+    pushed = _parted(core.subs(x, piece.inverse) * slope)
     ends = sorted((piece.at_low, piece.at_high), key=lambda end: end is not None)
     if ends[1] is not None:
         return pushed, False
     curve, line = sp.diff(sp.expand_log(sp.log(pushed), force=True), V, 2), Domain({V: (-sp.oo, sp.oo)})
-    return pushed, any(line.sign(form(curve)) == -1 for form in (_without_sinh, sp.simplify))
+    forms = (_without_sinh, sp.simplify) if curve.has(sp.sinh) else (sp.simplify,)
+    return pushed, any(line.sign(form(curve)) == -1 for form in forms)
+
+
+def _parted(expr: sp.Expr) -> sp.Expr:
+    """The expression with its sums of exponentials put together and its powers of positive products parted.
+
+    So exp(v)/(1 + exp(v)) and its complement stay away from 0 as far as balls can see.
+    """
+    sums = {node: sp.factor(sp.together(node)) for node in expr.atoms(sp.Add) if node.has(sp.exp)}
+    return sp.powsimp(sp.expand_power_base(expr.xreplace(sums))) if sums else expr
 
 
 def _without_sinh(expr: sp.Expr) -> sp.Expr:

@@ -2,12 +2,13 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING, Any
 
-from verify.arithmetic.ball import Balls, balls, midpoint
+from verify.arithmetic.ball import Balls, balls, complex_ball, midpoint
 from verify.arithmetic.evaluate import evaluate
-from verify.arithmetic.quadrature import integral, integrand
+from verify.arithmetic.quadrature import EVALUATIONS, integral, integrand
 from verify.arithmetic.series import either_sign, up_to
 from verify.laws.shape import DEVIATION, FAR, Piece, Shape
 
@@ -18,6 +19,11 @@ Number = Any
 
 GRID = 64
 """Bits are rounded up to this, so that a search and its proof share the integrals that they know."""
+
+EVALUATIONS_FOR = 128
+"""Bits for which the usual number of evaluations is meant."""
+
+LOG_TWO = 0.6931471805599453
 
 KNOTS = 64
 """How many end points are remembered for one end of one piece."""
@@ -83,7 +89,10 @@ class Integrals:
         if not knots:
             knots.append(self._end(piece, to_high=to_high))
         start, known = min(knots, key=lambda knot: float(abs(knot[0] - x)))
-        step = self._between(start, x)
+        end = piece.high if to_high else piece.low
+        near = end is not None and self.one.end_kind(self.at, piece, upper=to_high) == FAR
+        near = near and self.one.pushed is not None
+        step = self._near_end(piece, start, x, end) if near else self._between(start, x)
         value = known - step if to_high else known + step
         if len(knots) < KNOTS:
             knots.append((x, value))
@@ -96,10 +105,12 @@ class Integrals:
             return midpoint(self.A.real(end)), self._sliver(self.A.real(end))
         bits = 2 * self.A.prec + 16
         place, beyond = self.one.far_cut(self.at, piece, bits, upper=to_high)
+        with balls(self.A.prec + place.denominator.bit_length()) as fine:
+            knot = fine.real(place)
         if not self.moment:
-            return self.A.real(place), up_to(beyond)
+            return knot, up_to(beyond)
         variance = evaluate(self.one.variance, self.A, {self.one.parameter: self.A.real(self.at)})
-        return self.A.real(place), either_sign(self.A.sqrt(variance * beyond))
+        return knot, either_sign(self.A.sqrt(variance * beyond))
 
     def _sliver(self, end: Number) -> Number:
         """What lies between an irrational end and the midpoint of its ball: at most its radius times the
@@ -110,10 +121,37 @@ class Integrals:
     def _between(self, start: Number, end: Number) -> Number:
         if start == end:
             return self.A.real(0)
-        names = {self.one.parameter: self.A.real(self.at), DEVIATION: self.mean}
-        formula = self.one.centred if self.moment else self.one.core
-        function = integrand(formula, self.one.variable, names, self.A.prec)
-        return self._constant() * integral(function, start, end)
+        return self._constant() * integral(self._integrand(self.A), start, end, evaluations=self._most())
+
+    def _near_end(self, piece: Piece, start: Number, stop: Number, end: Exact) -> Number:
+        """The same near an end at which T runs to infinity, as an integral over the values of T.
+
+        There the integrand is smooth, however near the end is, where in x it takes a panel for every halving.
+        """
+        if start == stop:
+            return self.A.real(0)
+        gap = abs(start - self.A.real(end)).min(abs(stop - self.A.real(end)))
+        near = 8 - int(float(gap.log().lower()) / LOG_TWO)
+        with balls(self.A.prec + (0 if end == 0 else near)) as fine:
+            first, last = (evaluate(self.one.statistic, fine, {self.one.variable: x}) for x in (start, stop))
+            names = {self.one.parameter: fine.real(self.at)}
+            pushed = integrand(self.one.pushed, "v", names, fine.prec)
+        mean = complex_ball(self.mean) if self.moment else None
+
+        def function(v: Any, analytic: bool) -> Any:
+            with balls(fine.prec):
+                return pushed(v, analytic) if mean is None else (mean - v) * pushed(v, analytic)
+
+        value = self._constant() * integral(function, first, last, evaluations=self._most())
+        return value if piece.rising else -value
+
+    def _integrand(self, A: Balls) -> Callable[[Any, bool], Any]:
+        names = {self.one.parameter: A.real(self.at), DEVIATION: self.mean}
+        return integrand(self.one.centred if self.moment else self.one.core, self.one.variable, names, A.prec)
+
+    def _most(self) -> int:
+        """Most evaluations of the integrand: more at a higher precision."""
+        return EVALUATIONS * (1 + self.A.prec // EVALUATIONS_FOR)
 
     def _constant(self) -> Number:
         key = ("constant", self.at, self.A.prec)

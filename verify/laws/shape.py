@@ -35,6 +35,10 @@ FARTHEST = 1 << 22
 """How far towards an end (in powers of two, or units) a cut is looked for."""
 
 
+DEEPEST = 1 << 14
+"""The same in powers of two towards an end other than 0, from which so many bits must be told apart."""
+
+
 @dataclass(frozen=True)
 class Piece:
     """An interval of x on which the statistic is strictly monotone.
@@ -189,11 +193,13 @@ class Shape:
         self, A: Any, at: Exact, other: Exact, piece: Piece, goal: Any, *, upper: bool
     ) -> tuple[Fraction, Any] | None:
         """The first of some growing steps at which the ratio is below the goal, and the ratio there."""
-        ratio = self._ratio(A, at, other)
+        ratio, end = self._ratio(A, at, other), piece.high if upper else piece.low
+        bits, farthest = (0, FARTHEST) if end is None or end == 0 else (1, DEEPEST)
         step = 1
-        while step <= FARTHEST:
-            x = _place(A, piece, step, upper=upper)
-            bound = ratio(A.real(x))
+        while step <= farthest:
+            with balls(RATIO_BITS + bits * step) as fine:
+                x = _place(fine, piece, step, upper=upper)
+                bound = ratio(fine.real(x))
             if bound < goal:
                 return x, bound.upper()
             step += max(1, step // 8)
