@@ -1,18 +1,19 @@
 """A remembered result is the solved one to the last bit, and is proved again before it is believed."""
 
-import json
 import subprocess
 import sys
 from dataclasses import replace
+from fractions import Fraction
 from functools import cache
 
 import pytest
 
+from verify.arithmetic.enclosure import Enclosure
 from verify.derivation.derive import derive
-from verify.errors import InputError
 from verify.memory import Remembered, cache_of, solver
 from verify.memory.key import key_of
-from verify.memory.store import FILE, Store
+from verify.memory.place import Place
+from verify.memory.store import FILE, DamagedError, Store
 from verify.problem.density import Density
 from verify.problem.problem import Problem
 from verify.solution.solve import solve
@@ -27,6 +28,12 @@ derivation = cache(derive)
 
 def ask(density: Density, null: str, alpha: str = "0.05", n: int = 10) -> Problem:
     return Problem(density, null, alpha, n)
+
+
+def moved(end: int | Enclosure) -> int | Enclosure:
+    if isinstance(end, int):
+        return end + 1
+    return Enclosure(end.lower + Fraction(1, 10**7), end.upper + Fraction(1, 10**7))
 
 
 @pytest.fixture
@@ -67,12 +74,12 @@ def test_a_forged_place_is_not_believed(memory, density, null):
     problem, known = ask(density, null), derivation(density)
     first = memory.solve(problem, 20, known)
     key = key_of(problem, 20, known)
-    kept = json.loads(memory.store.get(key))
-    moved = [end + 1 if isinstance(end, int) else [f"{end[0]}0000001", f"{end[1]}0000001"] for end in kept["ends"]]
-    memory.store.put(key, json.dumps(kept | {"ends": moved}))
+    kept = memory.store.get(key)
+    place = Place.read(kept)
+    memory.store.put(key, replace(place, ends=tuple(map(moved, place.ends))).text())
     assert same(memory.solve(problem, 20, known), first)
-    assert memory.found == 0
-    assert json.loads(memory.store.get(key)) == kept
+    assert (memory.found, memory.store.refused()) == (0, 1)
+    assert memory.store.get(key) == kept
 
 
 @pytest.mark.parametrize("null", [NULLS[0], NULLS[3]])
@@ -80,10 +87,41 @@ def test_a_forged_side_condition_is_not_believed(memory, null):
     problem, known = ask(GAP, null), derivation(GAP)
     first = memory.solve(problem, 20, known)
     key = key_of(problem, 20, known)
-    kept = json.loads(memory.store.get(key))
-    memory.store.put(key, json.dumps(kept | {"sides": [["1/25", "1/24"] for _ in kept["sides"]]}))
+    place = Place.read(memory.store.get(key))
+    wrong = tuple(Enclosure(Fraction(1, 25), Fraction(1, 24)) for _ in place.sides)
+    memory.store.put(key, replace(place, sides=wrong).text())
     assert same(memory.solve(problem, 20, known), first)
-    assert memory.found == 0
+    assert (memory.found, memory.store.refused()) == (0, 1)
+
+
+@pytest.mark.parametrize(
+    "text",
+    [
+        "", "[]", "{}", "null", '{"ends": 3, "sides": [], "prec": 9}', '{"ends": ["3", "8"], "sides": [], "prec": 128}',
+        '{"ends": ["3", "zz"], "sides": [["1/10", "1/f"], ["1/10", "1/f"]], "prec": 128}',
+        '{"ends": ["3", "8"], "sides": [["1/10", "1/0"], ["1/10", "1/f"]], "prec": 128}',
+        '{"ends": [["1/2", "1/3"], "8"], "sides": [["1/10", "1/f"], ["1/10", "1/f"]], "prec": 128}',
+        '{"ends": [["1/3", "1/2"], "8"], "sides": [["1/10", "1/f"], ["1/10", "1/f"]], "prec": 128}',
+        '{"ends": ["3", "8", "9"], "sides": [["1/10", "1/f"], ["1/10", "1/f"]], "prec": 128}',
+        '{"ends": [null, "8"], "sides": [["1/10", "1/f"], ["1/10", "1/f"]], "prec": 128}',
+        '{"ends": ["3", "8"], "sides": [["1/10", "1/f"], ["1/10", "1/f"]], "prec": 99999999999}',
+        '{"ends": ["3", "8"], "sides": [["1/10", "1/f"], ["1/10", "1/f"]], "prec": true}',
+        '{"ends": ["-3", "8"], "sides": [["1/10", "1/f"], ["1/10", "1/f"]], "prec": 128}',
+    ],
+)  # fmt: skip
+def test_a_text_that_no_place_has_is_refused(memory, text):
+    problem, known = ask(POISSON, NULLS[0]), derivation(POISSON)
+    memory.store.put(key_of(problem, 20, known), text)
+    assert same(memory.solve(problem, 20, known), solve(problem, digits=20, derivation=known))
+    assert (memory.found, memory.store.refused()) == (0, 1)
+    assert memory.solve(problem, 20, known)
+    assert memory.found == 1
+
+
+def test_long_numbers_are_remembered(memory):
+    problem, known = ask(GAP, NULLS[3]), derivation(GAP)
+    assert same(memory.solve(problem, 5000, known), memory.solve(problem, 5000, known))
+    assert memory.found == 1
 
 
 def test_a_damaged_text_is_not_read(memory, tmp_path):
@@ -91,7 +129,7 @@ def test_a_damaged_text_is_not_read(memory, tmp_path):
     store.put("a", "text")
     with store._open() as connection, connection:
         connection.execute("UPDATE results SET text = 'other'")
-    assert store.get("a") is None
+    assert (store.get("a"), store.refused()) == (None, 1)
 
 
 def test_a_text_under_another_key_is_not_taken(memory):
@@ -110,8 +148,17 @@ def test_a_tie_is_solved_each_time(memory):
 
 def test_a_file_that_is_no_database_is_named(tmp_path):
     (tmp_path / FILE).write_bytes(b"not a database, but long enough to be looked at as one" * 100)
-    with pytest.raises(InputError, match="--cache: the memory of results cannot be used: file is not a database"):
+    with pytest.raises(DamagedError, match=f"--cache: the memory is damaged: file is not a database; delete {FILE}"):
         Store(tmp_path).get("a")
+
+
+def test_a_store_that_breaks_in_the_run_costs_no_result(memory, tmp_path):
+    problem, known = ask(POISSON, NULLS[0]), derivation(POISSON)
+    first = memory.solve(problem, 20, known)
+    memory.store.close()
+    (tmp_path / FILE).write_bytes(b"no database" * 1000)
+    assert same(memory.solve(problem, 20, known), first)
+    assert memory.found == 0
 
 
 def test_many_processes_write_at_once(tmp_path):

@@ -10,13 +10,13 @@ from typing import TYPE_CHECKING
 from verify.derivation.derive import derive
 from verify.derivation.ledger import Grade, weakest
 from verify.errors import InputError, UndecidedError
+from verify.memory import solver
 from verify.problem.casefile import Case, CaseText
 from verify.review.judge import Options
 from verify.review.mapping import style_from
 from verify.review.printed import read_printed
 from verify.review.review import CLAIMS, DERIVATION_KEYS, NUMBER_KEYS, carries_numbers, review_numbers
 from verify.review.setting import Setting
-from verify.solution.solve import solve
 
 if TYPE_CHECKING:
     from verify.arithmetic.enclosure import Enclosure
@@ -80,15 +80,15 @@ class Found:
         return STATUS.get(self.verdict, 0)
 
 
-def find(text: CaseText, *, digits: int = DIGITS, budget: float = 10.0) -> Found:
-    """Run one case as far as it goes: derive, solve, review the claim.
+def find(text: CaseText, *, digits: int = DIGITS, budget: float = 10.0, cache: str | None = None) -> Found:
+    """Run one case as far as it goes: derive, solve (with a memory in the directory ``cache``), review the claim.
 
     Double precision is asked only where ``[expect]`` names flags. An input that cannot be used, and a question
     left open, are facts like any other.
     """
     try:
         case = text.read()
-        return _found(case, max(digits, _longest(case) + SPARE), budget)
+        return _found(case, max(digits, _longest(case) + SPARE), budget, cache)
     except InputError as error:
         line = str(error.at(file=text.path))
         return Found(UNUSABLE, error=line, key=error.key, notes=(line,))
@@ -102,12 +102,12 @@ def _longest(case: Case) -> int:
     return max((sum(letter.isdigit() for letter in text) for text in texts if "/" not in text), default=0)
 
 
-def _found(case: Case, digits: int, budget: float) -> Found:
+def _found(case: Case, digits: int, budget: float, cache: str | None) -> Found:
     derivation = derivation_of(case, budget)
     facts = _derived_facts(derivation)
     if case.problem is None or not carries_numbers(derivation):
         return _derivation_alone(case, derivation, facts)
-    solution = solve(case.problem, digits=digits, derivation=derivation)
+    solution = solver(cache)(case.problem, digits, derivation)
     grade = weakest([_grade(derivation), *(step.grade for step in solution.steps if step.name == "numbers")])
     facts = replace(
         facts,

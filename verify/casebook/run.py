@@ -33,10 +33,13 @@ class How:
         Significant digits to prove, more where a case prints more.
     budget : float
         Seconds for each symbolic step.
+    cache : str or None
+        Directory of remembered results.
     """
 
     digits: int = DIGITS
     budget: float = 10.0
+    cache: str | None = None
 
 
 def run_case_file(path: str, how: How | None = None) -> Result:
@@ -63,7 +66,7 @@ def _run(result: Result, how: How) -> Result:
     text = read_case_text(result.path)
     try:
         _require_source(text)
-        found = find(text, digits=how.digits, budget=how.budget)
+        found = find(text, digits=how.digits, budget=how.budget, cache=how.cache)
         outcome, messages = judge(text.expect, found)
         expected = expected_verdicts(text.expect)
     except InputError as error:

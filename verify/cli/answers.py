@@ -50,15 +50,22 @@ def run(args: argparse.Namespace) -> int:
     """Answer every design of the grid, write the table, and return the exit status."""
     from verify.answers.grid import read_grid
     from verify.answers.row import Asker
-    from verify.answers.table import require_place, write_table
-    from verify.memory import cache_of
+    from verify.answers.table import require_place
+    from verify.memory import watched
     from verify.problem.casefile import case_bytes, read_case_text
-    from verify.review.journal import Journal
 
     require_place(args.output)
     text = case_bytes(args.grid).decode("utf-8", "surrogateescape")
     grid = read_grid(read_case_text(args.grid, text))
-    asker = Asker(args.grid, text, args.digits, args.budget, cache_of(args.cache))
+    with watched(args.cache, note) as cache:
+        asker = Asker(args.grid, text, args.digits, args.budget, cache)
+        return _table(grid, asker, args)
+
+
+def _table(grid: Grid, asker: Asker, args: argparse.Namespace) -> int:
+    from verify.answers.table import write_table
+    from verify.review.journal import Journal
+
     refusal = asker.refusal()
     if refusal is not None:
         note(f"no table: {refusal.name} is {refusal.grade.value}: {refusal.statement}")

@@ -9,7 +9,7 @@ from collections.abc import Sequence
 from pathlib import Path
 from typing import TYPE_CHECKING, TextIO
 
-from verify.cli.options import add_budget, add_json, add_workers, digits
+from verify.cli.options import add_budget, add_cache, add_json, add_workers, digits
 from verify.cli.output import note, show_json
 from verify.cli.progress import progress_bar
 
@@ -31,6 +31,7 @@ def add(parser: argparse.ArgumentParser) -> None:
     )
     parser.add_argument("--fail-fast", action="store_true", help="stop behind the first case that does not pass")
     add_workers(parser)
+    add_cache(parser)
     parser.add_argument("--junit", metavar="FILE", help="write a JUnit report")
     parser.add_argument("--jsonl", metavar="FILE", help="write one JSON object a case, without times")
     parser.add_argument(
@@ -50,11 +51,12 @@ def run(args: argparse.Namespace) -> int:
     from verify.casebook.lines import book_json, book_text
     from verify.casebook.outcome import status_of
     from verify.casebook.run import How, run_book
+    from verify.memory import watched
 
     paths = find_cases(args.places, args.only)
     _require_folders(args)
-    with progress_bar("cases", len(paths)) as progress:
-        results = run_book(paths, How(args.digits, args.budget), workers=args.workers, scheduler=args.scheduler,
+    with watched(args.cache, note) as cache, progress_bar("cases", len(paths)) as progress:
+        results = run_book(paths, How(args.digits, args.budget, cache), workers=args.workers, scheduler=args.scheduler,
                            fail_fast=args.fail_fast, progress=progress)  # fmt: skip
     left = len(paths) - len(results)
     _write(args, results)

@@ -7,7 +7,7 @@ import re
 from typing import TYPE_CHECKING, Any
 
 from verify.cli import status
-from verify.cli.options import add_budget, add_json, digits
+from verify.cli.options import add_budget, add_cache, add_json, digits
 from verify.cli.output import note, show_json
 from verify.errors import InputError, UndecidedError
 
@@ -42,6 +42,7 @@ def add(parser: argparse.ArgumentParser) -> None:
     )
     parser.add_argument("--no-pdf", action="store_true", help="leave out the PDF")
     parser.add_argument("--force", action="store_true", help="overwrite files that differ")
+    add_cache(parser)
     add_budget(parser)
     add_json(parser)
 
@@ -54,19 +55,21 @@ def run(args: argparse.Namespace) -> int:
     from pathlib import Path
 
     from verify.certificate.write import bundle_index, write_files
+    from verify.memory import watched
     from verify.report.publish import certificate_files, overview_files, require_printers
 
     require_printers(pdf=not args.no_pdf)
     made: dict[str, Certificate] = {}
     files: dict[str, bytes] = {}
-    for case in _cases(args.cases):
-        certificate, derivation = _certificate(case, args)
-        if certificate is None:
-            return status.DIFFERS
-        made[case.name] = certificate
-        files |= certificate_files(
-            case.name, certificate.data, paper=args.paper, pdf=not args.no_pdf, family=derivation.family
-        )
+    with watched(args.cache, note) as cache:
+        for case in _cases(args.cases):
+            certificate, derivation = _certificate(case, args, cache)
+            if certificate is None:
+                return status.DIFFERS
+            made[case.name] = certificate
+            files |= certificate_files(
+                case.name, certificate.data, paper=args.paper, pdf=not args.no_pdf, family=derivation.family
+            )
     if len(made) > 1:
         data = {name: certificate.data for name, certificate in made.items()}
         files |= overview_files(data, paper=args.paper, pdf=not args.no_pdf)
@@ -95,7 +98,7 @@ def _cases(paths: list[str]) -> list[Case]:
     return cases
 
 
-def _certificate(case: Case, args: argparse.Namespace) -> tuple[Certificate | None, Derivation]:
+def _certificate(case: Case, args: argparse.Namespace, cache: str | None) -> tuple[Certificate | None, Derivation]:
     """Derive, solve, certify and recheck; None, with a remark, when the derivation is refuted."""
     from verify.certificate.build import GUARD_DIGITS
     from verify.certificate.certify import certify
@@ -108,7 +111,7 @@ def _certificate(case: Case, args: argparse.Namespace) -> tuple[Certificate | No
             note(f"{case.name}: no certificate, {step}")
             return None, derivation
     problem: Any = case.problem
-    solution = solve_case(case, derivation, digits=args.digits + GUARD_DIGITS)
+    solution = solve_case(case, derivation, digits=args.digits + GUARD_DIGITS, cache=cache)
     certificate = certify(
         problem, args.digits, case=case, tolerance=args.tolerance, issued=args.issued, solution=solution
     )

@@ -5,7 +5,7 @@ from __future__ import annotations
 import argparse
 
 from verify.cli import status
-from verify.cli.options import add_budget, add_case, add_digits, add_json
+from verify.cli.options import add_budget, add_cache, add_case, add_digits, add_json
 from verify.cli.output import note, show_json
 
 EXAMPLE = "sidecheck decide casebook/demo/lot-release.case.toml --statistic 97"
@@ -21,19 +21,22 @@ def add(parser: argparse.ArgumentParser) -> None:
         "--u", metavar="U", help="a number in [0, 1) drawn before the data were seen; reject when U < phi",
     )  # fmt: skip
     add_digits(parser)
+    add_cache(parser)
     add_budget(parser)
     add_json(parser)
 
 
 def run(args: argparse.Namespace) -> int:
     """Solve, decide, print, and return the exit status (of the proof, not of the decision)."""
+    from verify.memory import watched
     from verify.planning import decide, observed_statistic
     from verify.problem.casefile import read_case
     from verify.report.pipeline import run_case
     from verify.report.planning import decision_json, decision_text
 
     case = read_case(args.case)
-    solved = run_case(case, digits=args.digits, budget=args.budget, with_comparison=False)
+    with watched(args.cache, note) as cache:
+        solved = run_case(case, digits=args.digits, budget=args.budget, with_comparison=False, cache=cache)
     if solved.solution is None:
         note("the derivation does not carry a test; see sidecheck derive")
         return status.of_grade(solved.grade)

@@ -6,6 +6,7 @@ import hashlib
 import json
 from typing import TYPE_CHECKING
 
+from verify.memory.place import FORMAT
 from verify.parallel.cluster import engines
 from verify.problem.numbers import exact_text
 
@@ -37,6 +38,7 @@ def key_of(problem: Problem, digits: int, derivation: Derivation) -> str:
         "levels": [exact_text(level) for level in problem.levels],
         "n": problem.n,
         "digits": digits,
+        "format": FORMAT,
         "engines": engines(),
     }
     return hashlib.sha256(json.dumps(parts, sort_keys=True).encode()).hexdigest()

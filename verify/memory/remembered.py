@@ -2,15 +2,15 @@
 
 from __future__ import annotations
 
-import json
-import os
 from collections.abc import Callable
-from fractions import Fraction
+from contextlib import suppress
 from functools import cache
 from typing import TYPE_CHECKING, Any
 
 from verify.arithmetic.enclosure import Enclosure
+from verify.errors import InputError
 from verify.memory.key import key_of
+from verify.memory.place import Place
 from verify.memory.reprove import continuous_tail, continuous_window, lattice_tail, lattice_window
 from verify.memory.store import Store
 from verify.problem.hypothesis import Form
@@ -21,17 +21,10 @@ from verify.solution.window import rough_laws
 
 if TYPE_CHECKING:
     from verify.derivation.derive import Derivation
+    from verify.laws import Law
     from verify.problem.problem import Problem
 
-VARIABLE = "SIDECHECK_CACHE"
-"""Environment variable that names the directory when no option does."""
-
 Solver = Callable[["Problem", int, "Derivation"], Solution]
-
-
-def cache_of(option: str | None) -> str | None:
-    """Return the directory that an option or, without one, the environment names; None for no memory."""
-    return option or os.environ.get(VARIABLE) or None
 
 
 def solver(folder: str | None) -> Solver:
@@ -75,51 +68,62 @@ class Remembered:
         """
         family_of(derivation)
         key = key_of(problem, digits, derivation)
-        text = self.store.get(key)
-        known = None if text is None else _proved_again(problem, digits, derivation, json.loads(text))
+        known = self._known(key, problem, digits, derivation)
         if known is not None:
             self.found += 1
             return known
         solution = solve(problem, digits=digits, derivation=derivation)
         critical = solution.critical
         if solution.prec > 0 and (solution.form is Form.ONE_SIDED or critical.c1 != critical.c2):
-            self.store.put(key, json.dumps(_kept(solution)))
+            with suppress(InputError):  # the result is right without being remembered
+                self.store.put(key, Place.of(solution).text())
         return solution
 
-
-def _kept(solution: Solution) -> dict[str, Any]:
-    """Where to look for this solution."""
-    return {
-        "ends": [_end_text(solution.critical.c1), _end_text(solution.critical.c2)],
-        "sides": [_end_text(side) for side in solution.expectations],
-        "prec": solution.prec,
-    }
-
-
-def _end_text(value: Any) -> Any:
-    return [str(value.lower), str(value.upper)] if isinstance(value, Enclosure) else value
-
-
-def _end(value: Any) -> Any:
-    return Enclosure(Fraction(value[0]), Fraction(value[1])) if isinstance(value, list) else value
+    def _known(self, key: str, problem: Problem, digits: int, derivation: Derivation) -> Solution | None:
+        """Return what is remembered and proved again; what is there and cannot be is counted as refused."""
+        try:
+            text = self.store.get(key)
+        except InputError:  # it was usable when the run began; what it holds now is not needed
+            return None
+        try:
+            known = None if text is None else _proved_again(problem, digits, derivation, Place.read(text))
+        except ValueError:
+            known = None
+        if text is not None and known is None:
+            self.store.refuse(key)
+        return known
 
 
-def _proved_again(problem: Problem, digits: int, derivation: Derivation, kept: dict[str, Any]) -> Solution | None:
+def _proved_again(problem: Problem, digits: int, derivation: Derivation, place: Place) -> Solution | None:
     family = family_of(derivation)
     laws = tuple(family.at(limit, problem.n) for limit in problem.hypothesis.limits)
-    ends, sides = [_end(end) for end in kept["ends"]], tuple(_end(side) for side in kept["sides"])
-    prec, rough = kept["prec"], rough_laws(laws)[0]
-    if problem.hypothesis.form is Form.ONE_SIDED:
-        asked = TailProblem(laws[0], problem.levels[0], rejects_above(problem, derivation), rough[0], prec)
-        if laws[0].lattice:
-            tail = lattice_tail(asked, ends[0], prec, digits)
-        else:
-            tail = continuous_tail(asked, ends[0], sides[0], prec, digits)
-        return None if tail is None else with_tail(problem, derivation, laws, digits, tail)
-    outside = problem.hypothesis.form is not Form.OUTSIDE
-    conditions = Conditions(laws, problem.levels, outside, tuple(law.mean for law in rough))
-    if laws[0].lattice:
-        window = lattice_window(conditions, ends[0], ends[1], prec, digits)
+    lattice, form = laws[0].lattice, problem.hypothesis.form
+    if not all(isinstance(end, int if lattice else Enclosure) for end in place.ends):
+        return None
+    if len(place.sides) != (1 if form is Form.ONE_SIDED else 2):
+        return None
+    if form is Form.ONE_SIDED:
+        return _tail_again(problem, digits, derivation, laws, place)
+    conditions = Conditions(
+        laws, problem.levels, form is not Form.OUTSIDE, tuple(law.mean for law in rough_laws(laws)[0])
+    )
+    first: Any = place.ends[0]
+    second: Any = place.ends[1]
+    if lattice:
+        window = lattice_window(conditions, first, second, place.prec, digits)
     else:
-        window = continuous_window(conditions, ends[0], ends[1], sides, prec, digits)
+        window = continuous_window(conditions, first, second, place.sides, place.prec, digits)
     return None if window is None else with_window(problem, derivation, laws, digits, window)
+
+
+def _tail_again(
+    problem: Problem, digits: int, derivation: Derivation, laws: tuple[Law, ...], place: Place
+) -> Solution | None:
+    rough = rough_laws(laws)[0][0]
+    asked = TailProblem(laws[0], problem.levels[0], rejects_above(problem, derivation), rough, place.prec)
+    end: Any = place.ends[0]
+    if laws[0].lattice:
+        tail = lattice_tail(asked, end, place.prec, digits)
+    else:
+        tail = continuous_tail(asked, end, place.sides[0], place.prec, digits)
+    return None if tail is None else with_tail(problem, derivation, laws, digits, tail)

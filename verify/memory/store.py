@@ -6,7 +6,7 @@ import hashlib
 import os
 import sqlite3
 from collections.abc import Iterator
-from contextlib import contextmanager
+from contextlib import contextmanager, suppress
 from pathlib import Path
 
 from verify.errors import InputError
@@ -14,6 +14,10 @@ from verify.errors import InputError
 FILE = "sidecheck-results.sqlite"
 PATIENCE = 60.0
 """Seconds that a process waits for another one's write."""
+
+
+class DamagedError(InputError):
+    """The file of a store is not, or no longer, a database."""
 
 
 class Store:
@@ -47,12 +51,31 @@ class Store:
         self._process = 0
 
     def get(self, key: str) -> str | None:
-        """Return the text, or None where there is none or its digest does not fit."""
+        """Return the text, or None where there is none; one whose digest does not fit is refused."""
         with self._open() as connection:
             row = connection.execute("SELECT text, digest FROM results WHERE key = ?", (key,)).fetchone()
-        if row is None or row[1] != digest(key, row[0]):
+        if row is None:
             return None
-        return str(row[0])
+        if not isinstance(row[0], str) or row[1] != digest(key, row[0]):
+            self.refuse(key)
+            return None
+        return row[0]
+
+    def refuse(self, key: str) -> None:
+        """Count a text that was not believed, whichever process found it."""
+        with suppress(InputError), self._open() as connection, connection:
+            connection.execute("INSERT INTO refused VALUES (?)", (key,))
+
+    def refused(self) -> int:
+        """Return how many texts were refused since the store was made.
+
+        Raises
+        ------
+        DamagedError
+            When its file is no longer a database.
+        """
+        with self._open() as connection:
+            return int(connection.execute("SELECT COUNT(*) FROM refused").fetchone()[0])
 
     def put(self, key: str, text: str) -> None:
         """Keep a text; an older one of the same key is replaced."""
@@ -74,15 +97,17 @@ class Store:
                 self._connection, self._process = _connect(self.folder / FILE), os.getpid()
             yield self._connection
         except (OSError, sqlite3.Error) as error:
-            wrong = f"the memory of results cannot be used: {error}"
-            right = "delete it or name another directory"
-            raise InputError(wrong, right, key="--cache", file=str(self.folder)) from None
+            usable = isinstance(error, OSError | sqlite3.OperationalError)
+            kind, state = (InputError, "cannot be used") if usable else (DamagedError, "is damaged")
+            right = "name another directory" if usable else f"delete {FILE} there"
+            raise kind(f"the memory {state}: {error}", right, key="--cache", file=str(self.folder)) from None
 
 
 def _connect(path: Path) -> sqlite3.Connection:
     connection = sqlite3.connect(path, timeout=PATIENCE, check_same_thread=False)
     columns = "key TEXT PRIMARY KEY, text TEXT NOT NULL, digest TEXT NOT NULL"
     connection.execute(f"CREATE TABLE IF NOT EXISTS results ({columns})")
+    connection.execute("CREATE TABLE IF NOT EXISTS refused (key TEXT NOT NULL)")
     return connection
 
 

@@ -54,9 +54,7 @@ def derive_case(case: Case, *, budget: float = 10.0) -> Derivation:
 
     problem = case.problem
     limits = problem.hypothesis.limits if problem else ()
-    return derive(
-        case.density, limits=limits, claim=case.claim, n=problem.n if problem else None, budget=budget
-    )
+    return derive(case.density, limits=limits, claim=case.claim, n=problem.n if problem else None, budget=budget)
 
 
 def carries_solution(derivation: Derivation) -> bool:
@@ -79,8 +77,8 @@ def problem_of(case: Case) -> Problem:
     return case.problem
 
 
-def solve_case(case: Case, derivation: Derivation, *, digits: int) -> Solution:
-    """Solve what a case asks; a complaint names the case's file.
+def solve_case(case: Case, derivation: Derivation, *, digits: int, cache: str | None = None) -> Solution:
+    """Solve what a case asks, with a memory where ``cache`` names a directory; a complaint names the case's file.
 
     Raises
     ------
@@ -89,16 +87,18 @@ def solve_case(case: Case, derivation: Derivation, *, digits: int) -> Solution:
     UndecidedError
         When the solution cannot be proved within its precision.
     """
-    from verify.solution.solve import solve
+    from verify.memory import solver
 
     try:
-        return solve(problem_of(case), digits=digits, derivation=derivation)
+        return solver(cache)(problem_of(case), digits, derivation)
     except InputError as error:
         raise error.at(file=str(case.path)) from None
 
 
-def run_case(case: Case, *, digits: int = 50, budget: float = 10.0, with_comparison: bool = True) -> CaseRun:
-    """Take one case as far as it goes.
+def run_case(
+    case: Case, *, digits: int = 50, budget: float = 10.0, with_comparison: bool = True, cache: str | None = None
+) -> CaseRun:
+    """Take one case as far as it goes, with a memory where ``cache`` names a directory.
 
     Raises
     ------
@@ -111,7 +111,7 @@ def run_case(case: Case, *, digits: int = 50, budget: float = 10.0, with_compari
     derivation = derive_case(case, budget=budget)
     if not carries_solution(derivation):
         return CaseRun(case, derivation)
-    solution = solve_case(case, derivation, digits=digits)
+    solution = solve_case(case, derivation, digits=digits, cache=cache)
     if not with_comparison:
         return CaseRun(case, derivation, solution)
     from verify.comparison.compare import compare
