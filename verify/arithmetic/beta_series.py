@@ -20,6 +20,9 @@ Ball = Any
 CHECK_EVERY = 8
 """Terms between two looks at whether the rest is small enough."""
 
+MUCH = 8
+"""Times as many terms that the smaller tail may need before the larger one is summed in its place."""
+
 MOST_TERMS = 20_000_000
 """Terms after which the sum is given up (the ball returned is then not finite)."""
 
@@ -27,7 +30,7 @@ MOST_TERMS = 20_000_000
 def incomplete_beta(x: Ball, a: Any, b: Any, prec: int) -> Ball:
     """Return I_x(a, b) for 0 < x < 1, a > 0, b > 0.
 
-    The tail that is the smaller one is summed; the other is one minus it.
+    The smaller tail is summed, and the other is one minus it; unless that takes far longer.
 
     Parameters
     ----------
@@ -39,9 +42,23 @@ def incomplete_beta(x: Ball, a: Any, b: Any, prec: int) -> Ball:
         Bits of relative accuracy aimed at.
     """
     y = 1 - x
-    if (x * _ball(b)).mid() <= (y * _ball(a)).mid():
-        return _lower(x, y, a, b, prec)
-    return 1 - _lower(y, x, b, a, prec)
+    below, above = (x, y, a, b), (y, x, b, a)
+    small, large = (below, above) if (x * _ball(b)).mid() <= (y * _ball(a)).mid() else (above, below)
+    summed = large if _costly(*small, prec) else small
+    part = _lower(*summed, prec)
+    return part if summed is below else 1 - part
+
+
+def _costly(x: Ball, y: Ball, a: Any, b: Any, prec: int) -> bool:
+    """Whether the series for I_x(a, b) is endless with a ratio near 1, and the other tail's sum finite and far shorter.
+
+    One minus that sum then serves, at the cost of the bits of the tail's size.
+    """
+    if _whole(b) is not None or _whole(a) is None:
+        return False
+    endless = prec / max(float(y.mid()), 1e-300)
+    finite = prec + 4 * float((y * _ball(a)).mid()) / max(float(x.mid()), 1e-300)
+    return endless > MUCH * finite
 
 
 def _ball(a: Any) -> Ball:

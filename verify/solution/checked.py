@@ -10,6 +10,9 @@ from verify.laws.base import Law
 from verify.laws.two_routes import SumByTwoRoutes
 from verify.solution.precision import bits_for
 
+MARGIN_BITS = 32
+"""Bits beyond the digits asked for at which the routes are compared first."""
+
 HELP = "ask for fewer digits, or for one observation, which is enclosed"
 
 
@@ -23,7 +26,7 @@ def within_shared_digits(laws: Sequence[Law], digits: int) -> Iterator[None]:
         With the number of digits that the two routes share.
     """
     checked = [law for law in laws if isinstance(law, SumByTwoRoutes)]
-    shared = min((law.shared_digits(bits_for(digits)) for law in checked), default=digits)
+    shared = min((law.shared_digits(bits_for(digits) + MARGIN_BITS) for law in checked), default=digits)
     if shared < digits:
         raise UndecidedError(f"the two routes to the law of the sum share {shared} digits, not {digits}: {HELP}")
     try:

@@ -28,9 +28,10 @@ from verify.solution.conditions import (
     improved_start,
     linear_system,
 )
+from verify.solution.lattice_step import as_float, cells, log_float
 from verify.solution.precision import bits_for
 from verify.solution.sliding import slide
-from verify.solution.start import extend, extend_far, window_start
+from verify.solution.start import window_start
 from verify.solution.window import Window, WindowSearch
 
 MOST_STEPS = 40
@@ -86,7 +87,7 @@ class LatticeSearch(WindowSearch):
                 return None
             seen.add(cell)
             balls_of = window_weights(self.conditions, A, *cell)
-            weights = [_as_float(ball) for ball in balls_of]
+            weights = [as_float(ball) for ball in balls_of]
             if any(math.isnan(w) for w in weights):
                 return None
             grain = 1e-9 * min(max(abs(w) for w in weights), 1e300)
@@ -96,22 +97,10 @@ class LatticeSearch(WindowSearch):
             cell = self.on_atoms(grown(cell, out1, out2), out1, out2)
         return None
 
-    def _move(self, A: Any, c: int, ball: Any, side: int) -> int:
+    def _move(self, A: Any, c: int, weight: Any, side: int) -> int:
         """Cells by which an end must go outward (negative: inward) to gather the weight it wants."""
-        weight = _as_float(ball)
-        if 0 <= weight <= 1:
-            return 0
-        law = max(self.conditions.laws, key=lambda candidate: float(_log(candidate.density(A, c))))
-        outward, here = law.density(A, law.atom(c + side, side)), law.density(A, c)
-        ratio = float(outward / here) if here > 0 and outward > 0 else 0.0
-        cap = 4 * max(r.spread for r in self.rough) + 2
-        slope = math.log(ratio) if 0.0 < ratio < math.inf else -50.0
-        wanted = weight - 1 if weight > 1 else weight
-        if abs(wanted) < 1e300:
-            cells = extend(wanted, slope, cap)
-        else:
-            cells = extend_far(1 if wanted > 0 else -1, _log(abs(ball)), slope, cap)
-        return max(1, math.ceil(cells)) if weight > 1 else min(-1, math.floor(cells))
+        law = max(self.conditions.laws, key=lambda candidate: log_float(candidate.density(A, c)))
+        return cells(A, law, c, side, weight, 4 * max(r.spread for r in self.rough) + 2)
 
     def bracket(self, bits: int) -> Cell:
         """Return the cell by the sure, slow search."""
@@ -141,17 +130,6 @@ def window_weights(conditions: Conditions, A: Any, c1: int, c2: int) -> tuple[An
     """Return the fraction of each end that belongs to the window, in balls."""
     first, second = end_fractions(conditions, A, c1, c2)
     return (1 - first, 1 - second) if conditions.outside else (first, second)
-
-
-def _log(mass: Any) -> float:
-    """Logarithm of a mass as a rough float: tells which law rules at a place."""
-    return float(mass.log().mid()) if mass > 0 else -math.inf
-
-
-def _as_float(x: Any) -> float:
-    if not x.is_finite() or x.rad() > 0.2 + abs(x.mid()) / 4:
-        return math.nan
-    return float(x.mid())
 
 
 def solve_lattice_window(search: LatticeSearch, digits: int) -> Window:

@@ -20,11 +20,14 @@ from verify.errors import NotRational, UndecidedError
 from verify.laws import Law
 from verify.solution.conditions import MOST_EXACT_ATOMS
 from verify.solution.coordinate import Coordinate
+from verify.solution.lattice_step import as_float, cells
 from verify.solution.precision import bits_for
 from verify.solution.start import Rough, upper_point
 
 MOST_ROUNDS = 200
 BISECTIONS = 60
+MOST_STEPS = 40
+"""Steps of Newton's method on a lattice before bracket and bisection."""
 NEWTON_EVERY = 6
 """Bisections between two attempts of Newton's method, which an expensive law needs soon."""
 
@@ -130,6 +133,27 @@ class TailProblem:
         def enough(c: int) -> bool:
             return bool(self.beyond(A, c).mid() < level)
 
+        found = self._lattice_newton(A, start)
+        return self._lattice_bracket(enough, start) if found is None else found
+
+    def _lattice_newton(self, A: Any, c: int) -> int | None:
+        """Step by the weight that is missing; None where the steps do not settle."""
+        level, law, cap = A.real(self.level), self.law, 4 * self.rough.spread + 2
+        low, high = law.support
+        for _ in range(MOST_STEPS):
+            gamma = (level - self.beyond(A, c)) / law.density(A, c)
+            if math.isnan(as_float(gamma)):
+                return None
+            step = -self.outward * cells(A, law, c, -self.outward, gamma, cap)
+            if step == 0:
+                return c
+            c = c + step if low is None else max(c + step, low)
+            c = law.atom(c if high is None else min(c, high), 1 if step > 0 else -1)
+        return None
+
+    def _lattice_bracket(self, enough: Callable[[int], bool], start: int) -> int:
+        """The sure, slower search: a bracket by doubling steps, then bisection."""
+        low, high = self.law.support
         step = max(1, int(self.rough.spread / 8))
         inner, outer = start, start
         while not enough(outer):
