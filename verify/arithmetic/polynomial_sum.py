@@ -44,18 +44,16 @@ class PolynomialSum:
 
     def __init__(self, polynomial: Any, n: int) -> None:
         self.n = n
-        self._low = [arb_poly([1]), _transformed(polynomial.coeffs())]
-        self._high = [arb_poly([1]), _transformed(polynomial(arb_poly([1, 1])).coeffs())]
+        self._low = {0: arb_poly([1]), 1: _transformed(polynomial.coeffs())}
+        self._high = {0: arb_poly([1]), 1: _transformed(polynomial(arb_poly([1, 1])).coeffs())}
         self._pieces: dict[int, tuple[Any, Any, Any]] = {}
 
     def value(self, x: Ball, kind: int) -> Ball:
         """Return one of the three functions at a point; 0 before the left end."""
-        total = arb(0)
-        for j in range(self.n + 1):
-            if x <= j:
-                break
-            total += self._piece(j)[kind]((x - j).max(arb(0)))
-        return total
+        begun = [j for j in range(self.n + 1) if not x <= j]
+        for j in begun:
+            _power(self._high, j)
+        return sum((self._piece(j)[kind]((x - j).max(arb(0))) for j in reversed(begun)), arb(0))
 
     def _piece(self, j: int) -> tuple[Any, Any, Any]:
         if j not in self._pieces:
@@ -66,10 +64,10 @@ class PolynomialSum:
         return self._pieces[j]
 
 
-def _power(powers: list[Any], k: int) -> Any:
-    """The k-th power, from a list that begins with 1 and the base and grows as needed."""
-    while len(powers) <= k:
-        powers.append(powers[-1] * powers[1])
+def _power(powers: dict[int, Any], k: int) -> Any:
+    """The k-th power, by one multiplication where the one before is known."""
+    if k not in powers:
+        powers[k] = powers[k - 1] * powers[1] if k - 1 in powers else powers[1] ** k
     return powers[k]
 
 

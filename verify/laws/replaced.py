@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from fractions import Fraction
-from math import log2
+from math import log, log2
 from typing import TYPE_CHECKING, Any
 
 from verify.arithmetic.ball import balls, midpoint, to_fraction
@@ -23,8 +23,11 @@ Number = Any
 GRID = 64
 """Bits are rounded up to this, so that nearby precisions share one polynomial."""
 
-BITS_A_DEGREE = 2
-"""A first guess at what the convolution cancels."""
+FIRST_LOST = 2.3
+"""A first guess at the bits that the convolution of n copies cancels for each degree, with half the logarithm of n."""
+
+SPARE = 32
+"""Bits to spare of what is expected to be cancelled."""
 
 MOST_DOUBLINGS = 6
 FARTHEST = 12
@@ -78,7 +81,7 @@ class Replaced:
         ``moved`` is a ball around 0 by which v may move (density only).
         """
         settled = ("precision", self.at, self.n, self.bits, self.interval)
-        precision = self.one.cache.get(settled) or self.bits + 64 + BITS_A_DEGREE * self.degree()[0]
+        precision = self.one.cache.get(settled) or self.bits + SPARE + int(self._lost() * self.degree()[0])
         for _ in range(MOST_DOUBLINGS):
             with balls(precision) as A:
                 low, high = A.real(self.interval.low), A.real(self.interval.high)
@@ -87,14 +90,25 @@ class Replaced:
                 near = self._approximation(A)
                 value = self._sum(A, near, from_low=from_low).value(x, kind)
                 self.one.cache[settled] = precision
+                if value.is_finite():
+                    self._remember_lost(precision - _bits_of(value.rad()))
                 if value.is_finite() and value.rad() < A.power(A.real(2), -self.bits):
                     slack = self._slack(A, near, x, kind, v)
                     if moved is not None:
                         slack += self._change(A, near, abs(moved) / width)
                     value = value + either_sign(slack)
                     return value / width if kind == DENSITY else value * width if kind == TWICE else value
-            precision += precision - self.bits
+            lost = precision - _bits_of(value.rad()) if value.is_finite() else 2 * (precision - self.bits)
+            precision = max(precision, self.bits + lost) + SPARE
         raise UndecidedError(f"the convolution of {self.n} densities cancels beyond {precision} bits")
+
+    def _lost(self) -> float:
+        """Bits that the convolution of so many observations cancels for each degree: what was seen, or a guess."""
+        seen: float = self.one.cache.get(("lost", self.n), FIRST_LOST + log2(self.n) / 2)
+        return seen
+
+    def _remember_lost(self, bits: int) -> None:
+        self.one.cache["lost", self.n] = max(bits / self.degree()[0], self.one.cache.get(("lost", self.n), 0.0))
 
     def _approximation(self, A: Any) -> Approximation:
         key = ("near", self.at, self.bits, self.interval, A.prec)
@@ -162,6 +176,11 @@ class Replaced:
     def _change(self, A: Any, near: Approximation, distance: Number) -> Number:
         """Bound of the change of the convolution over a distance: variation of one factor, size of the rest."""
         return distance * near.variation * near.size * (1 + near.error) ** (self.n - 2)
+
+
+def _bits_of(size: Number) -> int:
+    """Bits after the binary point at which a size begins; many for 0."""
+    return 1 << 30 if size == 0 else -int(float(size.log().mid()) / log(2))
 
 
 def replaced(one: Shape, at: Exact, n: int, bits: int, v: Number) -> Replaced:
