@@ -131,6 +131,40 @@ def test_a_cdf_with_the_wrong_sign(
     assert status(maker, maker.make(case)) == 1
 
 
+@pytest.mark.parametrize("step", [1, -1])
+def test_a_cutoff_beside_the_right_one_with_the_level_kept(
+    maker: ModuleType, certificates: dict[str, Any], step: int
+) -> None:
+    """All expectations are as stated and the level is kept, but by a fraction above 1, or below 0."""
+    case = cases(maker)["poisson above"]
+    (y,) = (certificates["poisson above"]["predicate"]["test"][key] for key in ("y",))
+    law = maker.poisson(case.limits()[0] * case.n)
+    rest = maker.real(Fraction(1, 100)) - sum(mass for k, mass in law.items() if k > y + step)
+    case.breaks = {"numbers": lambda ys, gs: ([ys[0] + step], [rest / law[y + step]])}
+    certificate = maker.make(case)
+    gamma = Fraction(certificate["predicate"]["test"]["gamma"]["lower"])
+    assert gamma > 1 if step == 1 else gamma < 0
+    assert recheck.verdict(maker.canonical(certificate)) == (
+        1,
+        ["REJECTED: a fraction outside (0, 1]: this is not the test"],
+    )
+
+
+def test_one_atom_that_keeps_one_level_only(maker: ModuleType, certificates: dict[str, Any]) -> None:
+    """All expectations are as stated, but one is not the level."""
+    case = cases(maker)["binomial outside"]
+    certificate = maker.make(case)
+    test = certificate["predicate"]["test"]
+    gamma = Fraction(test["gamma1"]) * Fraction(9, 10)
+    case.breaks = {"numbers": lambda ys, gs: ([5, 5], [gamma, gamma])}
+    for levels in (["9/200", "1/20"], ["1/20", "1/20"]):
+        changed = maker.make(case)["predicate"]
+        changed["problem"]["alpha"] = levels
+        for condition, level in zip(changed["side_conditions"], levels, strict=True):
+            condition["target"] = level
+        assert recheck.verdict(maker.canonical(maker.statement(changed)))[0] == 1
+
+
 def test_swapped_limits(maker: ModuleType, certificates: dict[str, Any]) -> None:
     """The numbers of the test with the limits' levels exchanged, and a null whose limits descend."""
     predicate = copy.deepcopy(certificates["poisson irrational"]["predicate"])

@@ -4,6 +4,7 @@ from __future__ import annotations
 
 import operator
 from collections.abc import Callable, Iterator
+from decimal import Decimal
 from fractions import Fraction
 from typing import Any
 
@@ -94,6 +95,41 @@ def test_the_incomplete_gamma_function_contains_what_mpmath_computes(a: Fraction
     found = recheck.gamma_law(a, Fraction(1)).below(x)
     assert contains(found[0], mp.gammainc(real(a), 0, real(x), regularized=True))
     assert contains(found[1], real(a) * mp.gammainc(real(a) + 1, 0, real(x), regularized=True))
+
+
+class Rough:
+    """A context whose logarithm is a poor guess."""
+
+    def __init__(self, context: Any) -> None:
+        object.__setattr__(self, "context", context)
+
+    def __getattr__(self, name: str) -> Any:
+        return getattr(self.context, name)
+
+    def __setattr__(self, name: str, value: Any) -> None:
+        setattr(self.context, name, value)
+
+    def ln(self, x: Decimal) -> Decimal:
+        return round(self.context.ln(x), 2)
+
+
+@settings(max_examples=40, deadline=None)
+@given(x=positive)
+def test_a_logarithm_is_right_whatever_the_guess(x: Fraction) -> None:
+    with pytest.MonkeyPatch.context() as patch:
+        patch.setattr(recheck, "down", Rough(recheck.down))
+        assert contains(recheck.log(x), mp.log(real(x)), 1e-4)
+
+
+@settings(max_examples=20, deadline=None)
+@given(a=positive, places=st.integers(30, 60))
+def test_remainders_are_counted(a: Fraction, places: int) -> None:
+    """Where the first term left out is as large as the last digit, and where the tail of the gamma function is seen."""
+    x = Fraction(1, 10**places)
+    low, high = recheck.ends(recheck.series(a, x) * a)
+    assert low <= 1 + x / (a + 1) <= high
+    X, scale = recheck.gamma_scale.__wrapped__(a, 1)
+    assert contains(scale, mp.exp(mp.loggamma(real(a)) - real(a) * mp.log(real(X)) + real(X)), 1e-3)
 
 
 def test_long_numbers_and_roots_of_fractions() -> None:
