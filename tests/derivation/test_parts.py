@@ -14,9 +14,10 @@ from verify.derivation.derive import derive
 from verify.derivation.family import LawFamily
 from verify.derivation.law_of_variance import name_law
 from verify.derivation.ledger import Grade
+from verify.derivation.monotone_pieces import V, monotone_pieces
 from verify.derivation.monotonicity import certain_sign_between, monotonicity_step
 from verify.derivation.numerical_look import numerical_look
-from verify.derivation.positivity import Domain
+from verify.derivation.positivity import Domain, _positive
 from verify.derivation.signs import sign_of
 from verify.derivation.variance_function import Cube, Quadratic, variance_function
 from verify.laws.gamma import Gamma
@@ -147,3 +148,27 @@ def test_a_mean_squared_over_positive_values_is_fine():
     derivation = derive(density)
     assert derivation.grade is Grade.PROVED
     assert derivation.law == "normal(mean = t**2, variance = 1)"
+
+
+@pytest.mark.parametrize("statistic", ["2*sin(x) + 1", "cos(x/3)", "exp(tan(x/2))", "(2 + sin(x))**2"])
+def test_pieces_through_an_angle_have_their_inverse(statistic: str) -> None:
+    x = sp.Symbol("x", real=True)
+    expr = sp.sympify(statistic, locals={"x": x})
+    pieces = monotone_pieces(expr, x, -sp.pi / 2, sp.pi / 2)
+    assert not isinstance(pieces, str)
+    for piece in pieces:
+        point = (piece.low + piece.high) / 2 + sp.Rational(1, 7)
+        back = piece.inverse.subs(V, expr.subs(x, point))
+        assert abs(sp.N(back - point, 30)) < 1e-25
+
+
+def test_what_was_not_proved_at_a_small_depth_is_searched_again() -> None:
+    """A proof that was not found with few steps left must not stand in the way of one with more."""
+    p = sp.Symbol("p", real=True)
+    domain = Domain({p: (sp.Rational(1, 10), sp.Rational(9, 10))})
+    expr = sp.log(1 + sp.exp(sp.gamma(p)) * (1 - p))
+    assert not _positive(expr, domain, 1)
+    assert domain.positive(expr)
+    assert _positive(expr, domain, 1)
+    assert not domain.positive(-expr)
+    assert not Domain({p: (-sp.oo, sp.oo)}).positive(expr)
