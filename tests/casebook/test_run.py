@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import os
 import time
 from collections.abc import Callable
 from pathlib import Path
@@ -126,11 +127,31 @@ def test_a_published_case_names_its_source(tmp_path: Path, book: Callable[..., P
 
 @pytest.mark.bench
 def test_wall_time_of_the_casebook_by_workers(monkeypatch: pytest.MonkeyPatch) -> None:
-    """A measurement: the whole casebook with one worker and with two."""
+    """A measurement: the whole casebook with one worker and with two, and how evenly they were busy."""
+    monkeypatch.chdir(ROOT)
+    paths, lines, walls = find_cases(["casebook"]), [], []
+    for workers in (1, 2):
+        start, before = time.perf_counter(), os.times()
+        results = run.run_book(paths, workers=workers)
+        walls.append(time.perf_counter() - start)
+        lines.append(json_lines(results))
+        spent = sum(os.times()[:4]) - sum(before[:4])
+        busy = sum(result.seconds for result in results) / workers / walls[-1]
+        longest = max(result.seconds for result in results)
+        print(f"\n{len(paths)} cases, {workers} workers: {walls[-1]:.1f} s, {spent:.1f} s of processors")
+        print(f"{busy:.0%} of the workers' time in cases, the longest {longest:.1f} s")
+    print(f"two workers are {walls[0] / walls[1]:.2f} times as fast as one")
+    assert lines[0] == lines[1]
+
+
+@pytest.mark.bench
+def test_wall_time_of_the_casebook_with_a_memory(monkeypatch: pytest.MonkeyPatch, tmp_path: Path) -> None:
+    """A measurement: without a memory, with an empty one, with a full one; derivations are made anew each time."""
     monkeypatch.chdir(ROOT)
     paths, lines = find_cases(["casebook"]), []
-    for workers in (1, 2):
+    run.run_book(paths)
+    for name, cache in (("without", None), ("cold", str(tmp_path)), ("warm", str(tmp_path))):
         start = time.perf_counter()
-        lines.append(json_lines(run.run_book(paths, workers=workers)))
-        print(f"\n{len(paths)} cases, {workers} workers: {time.perf_counter() - start:.1f} s")
-    assert lines[0] == lines[1]
+        lines.append(json_lines(run.run_book(paths, run.How(cache=cache))))
+        print(f"\n{name}: {time.perf_counter() - start:.1f} s")
+    assert lines == [lines[0]] * 3
