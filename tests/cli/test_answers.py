@@ -121,6 +121,14 @@ def test_designs_that_no_test_fits_are_rows_with_a_reason(grid, tmp_path, capsys
     assert "8 proved, 4 unusable" in capsys.readouterr().out
 
 
+@pytest.mark.parametrize(("upper", "said"), [("8", "1 pair of limits is"), ("7", "2 pairs of limits are")])
+def test_limits_that_do_not_rise_are_counted_in_words(grid, tmp_path, capsys, upper, said):
+    text = Path(grid(n="1..2")).read_text() + f'upper = ["{upper}", "9"]'
+    (tmp_path / "some.grid.toml").write_text(text)
+    assert main(["answers", str(tmp_path / "some.grid.toml"), "-o", str(tmp_path / "a.csv")]) == 0
+    assert f"{said} not ascending and left out" in capsys.readouterr().err
+
+
 def test_a_refuted_density_gives_no_table(grid, tmp_path, capsys):
     place = grid(formula="t**x/factorial(x)")
     assert main(["answers", place, "-o", str(tmp_path / "a.csv")]) == 1

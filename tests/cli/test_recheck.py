@@ -1,8 +1,10 @@
 """``sidecheck recheck`` on files that are no certificates; acceptance is tested beside the checker itself."""
 
 import json
+import re
 import subprocess
 import sys
+from pathlib import Path
 
 
 def test_what_is_no_certificate_is_malformed(sidecheck_here, tmp_path) -> None:
@@ -19,6 +21,24 @@ def test_json_is_one_object(sidecheck_here, tmp_path) -> None:
     path.write_text("{}")
     answer = json.loads(sidecheck_here("recheck", str(path), "--json").stdout)
     assert (answer["verdict"], answer["status"]) == ("malformed", 2)
+
+
+def test_of_several_the_bad_ones_are_named(sidecheck_here, tmp_path) -> None:
+    assert sidecheck_here("certify", "casebook/demo/lot-release.case.toml", "-o", str(tmp_path), "--no-pdf",
+                          "--digits", "15").returncode == 0  # fmt: skip
+    good, bad = str(tmp_path / "lot-release.cert.json"), str(tmp_path / "bad.cert.json")
+    text = Path(good).read_text()
+    digit = re.search(r'"c1": \{[^}]*?"94', text) or re.search("94", text)
+    assert digit is not None
+    Path(bad).write_text(text[: digit.end() - 1] + "5" + text[digit.end() :])
+    done = sidecheck_here("recheck", good, bad)
+    assert done.returncode in (1, 2)
+    assert done.stdout.startswith(f"{good}:\nACCEPTED")
+    assert done.stdout.endswith(f"2 certificates, not accepted: {bad}\n")
+    answer = json.loads(sidecheck_here("recheck", bad, good, "--json").stdout)
+    assert answer["status"] == done.returncode
+    assert answer["certificates"][good]["verdict"] == "accepted"
+    assert sidecheck_here("recheck", good, bad, "--case", "casebook/demo/lot-release.case.toml").returncode == 2
 
 
 def test_missing_files_are_one_line(sidecheck_here, tmp_path) -> None:

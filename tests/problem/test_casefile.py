@@ -86,6 +86,7 @@ def test_a_case_without_a_problem_is_for_derivation() -> None:
             r"problem\.alpah: unknown key in \[problem\]: 'alpah'; did you mean alpha\?",
         ),
         ("[claim]", "[claims]", r"claims: unknown key: 'claims'; did you mean claim\?"),
+        ("n = 10", "foo = 10", r"problem\.foo: unknown key in \[problem\]: 'foo'; known: null, alternative, alpha, n$"),
         ("alpha = 0.05", "", r"problem\.alpha: the key alpha is missing"),
         ('variable = "x"', "", r"density\.variable: the key variable is missing"),
         ("alpha = 0.05", "alpha = 5", r"problem\.alpha: a level outside \(0, 1\)"),

@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import difflib
 from collections.abc import Callable, Iterable, Mapping
 from fractions import Fraction
 from typing import Any
@@ -10,6 +9,7 @@ from typing import Any
 from verify.casebook.found import UNUSABLE, Found
 from verify.casebook.outcome import Message, Outcome
 from verify.errors import InputError
+from verify.problem.nearest import suggestion
 from verify.review.printed import Match, read_printed
 from verify.review.review import NUMBER_KEYS
 
@@ -55,9 +55,7 @@ def _known(verdict: str) -> str:
     words = (*GREEN, *RED, UNDECIDED)
     if verdict in words:
         return verdict
-    near = difflib.get_close_matches(verdict[:40], words, 1, 0.5)
-    right = f"did you mean {near[0]}?" if near else f"known: {', '.join(words)}"
-    raise InputError(f"there is no verdict {verdict[:40]!r}", right, key="expect.verdict")
+    raise InputError(f"there is no verdict {verdict[:40]!r}", suggestion(verdict, words), key="expect.verdict")
 
 
 def judge(expect: Mapping[str, Any], found: Found) -> tuple[Outcome, tuple[Message, ...]]:

@@ -111,10 +111,15 @@ def _certificate(case: Case, args: argparse.Namespace, cache: str | None) -> tup
             note(f"{case.name}: no certificate, {step}")
             return None, derivation
     problem: Any = case.problem
-    solution = solve_case(case, derivation, digits=args.digits + GUARD_DIGITS, cache=cache)
-    certificate = certify(
-        problem, args.digits, case=case, tolerance=args.tolerance, issued=args.issued, solution=solution
-    )
+    try:
+        solution = solve_case(case, derivation, digits=args.digits + GUARD_DIGITS, cache=cache)
+        certificate = certify(
+            problem, args.digits, case=case, tolerance=args.tolerance, issued=args.issued, solution=solution
+        )
+    except UndecidedError as error:
+        raise UndecidedError(f"{case.name}: {error}") from None
+    except InputError as error:
+        raise error.at(file=str(case.path)) from None
     verdict = certificate.recheck()
     if verdict.status in (1, 2):
         raise UndecidedError(f"{case.name}: the rechecker does not accept this certificate: {verdict.lines[0]}")

@@ -21,33 +21,52 @@ VERDICTS = {
 """What each exit status of the checker means."""
 
 
+WORST = (1, 2, 3, 4, 0)
+"""Which exit status decides for several certificates."""
+
+
 def add(parser: argparse.ArgumentParser) -> None:
     """Add the arguments of the command."""
     parser.add_argument(
-        "certificate", metavar="CERTIFICATE", help="a certificate, NAME.cert.json, or - for standard input"
+        "certificates", nargs="+", metavar="CERTIFICATE", help="certificates, NAME.cert.json, or - for standard input"
     )
     parser.add_argument("--case", metavar="CASE", help="the case file that the certificate must be about")
     add_json(parser)
 
 
 def run(args: argparse.Namespace) -> int:
-    """Check, print the verdict, and return the exit status of the checker."""
+    """Check each, print the verdicts, and return the exit status of the checker, of several that of the worst."""
+    if args.case is not None and len(args.certificates) > 1:
+        raise InputError("one case, several certificates", "check each against its own case", key="--case")
+    found = {path: _checked(path, args.case) for path in dict.fromkeys(args.certificates)}
+    status = min((status for status, _ in found.values()), key=WORST.index)
+    shown = {path: {"verdict": VERDICTS[code], "status": code, "lines": lines} for path, (code, lines) in found.items()}
+    if args.json:
+        several = {"status": status, "certificates": shown}
+        show_json(several if len(shown) > 1 else next(iter(shown.values())))
+        return status
+    for path, (_, lines) in found.items():
+        print("\n".join([*([f"{path}:"] if len(found) > 1 else []), *lines]))
+    bad = [path for path, (code, _) in found.items() if code not in (0, 4)]
+    if len(found) > 1:
+        print(f"{len(found)} certificates, " + (f"not accepted: {', '.join(bad)}" if bad else "all accepted"))
+    return status
+
+
+def _checked(path: str, case: str | None) -> tuple[int, list[str]]:
+    """Return the status and the lines of the checker."""
     from verify.certificate.recheck import FILE_LIMIT, verdict
 
-    data = _read(args.certificate, FILE_LIMIT + 1)
-    if args.case is not None:
-        _read(args.case, 1)
+    data = _read(path, FILE_LIMIT + 1)
+    if case is not None:
+        _read(case, 1)
     before = sys.get_int_max_str_digits()
     sys.set_int_max_str_digits(0)  # the checker bounds its own work
     try:
-        status, lines = verdict(data, args.case)
+        status, lines = verdict(data, case)
     finally:
         sys.set_int_max_str_digits(before)
-    if args.json:
-        show_json({"verdict": VERDICTS[status], "status": status, "lines": lines})
-    else:
-        print("\n".join(lines))
-    return int(status)
+    return int(status), list(lines)
 
 
 def _read(path: str, limit: int) -> bytes:

@@ -8,7 +8,6 @@ understood. Decimals are exact rationals, taken from the text.
 from __future__ import annotations
 
 import ast
-import difflib
 import warnings
 from collections.abc import Mapping
 from fractions import Fraction
@@ -20,6 +19,7 @@ from sympy.printing.str import StrPrinter
 from verify.errors import InputError
 from verify.problem.functions import CONSTANTS, FUNCTIONS
 from verify.problem.guards import MAX_BITS, Budget, bits
+from verify.problem.nearest import suggestion
 from verify.problem.scan import MAX_DEPTH, NUMBER, scan_formula, shorten
 from verify.problem.work import bounded_work
 
@@ -178,9 +178,7 @@ class _Walker:
         name = node.func.id
         function = FUNCTIONS.get(name)
         if function is None:
-            close = difflib.get_close_matches(name, [*FUNCTIONS], 1) if len(name) < 40 else []
-            known = f"did you mean {close[0]}?" if close else f"known: {', '.join(FUNCTIONS)}"
-            raise self.error(f"unknown function {shorten(name, 30)}", known)
+            raise self.error(f"unknown function {shorten(name, 30)}", suggestion(name, FUNCTIONS))
         if len(node.args) != function.arity:
             raise self.error(
                 f"{name} takes {function.arity} argument(s), got {len(node.args)}", "check the commas"

@@ -2,12 +2,12 @@
 
 from __future__ import annotations
 
-import difflib
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass
 from typing import Any
 
 from verify.errors import InputError
+from verify.problem.nearest import suggestion
 
 
 class DecimalText(str):
@@ -134,17 +134,12 @@ def check_table(table: Mapping[str, Any], keys: Keys, place: str) -> None:
         dotted = f"{place}.{name}" if place else name
         kind = keys.kinds.get(name)
         if kind is None:
-            raise InputError(f"unknown key{inside}: {name[:40]!a}", _suggestion(name, keys), key=dotted[:80])
+            raise InputError(f"unknown key{inside}: {name[:40]!a}", suggestion(name, keys.kinds), key=dotted[:80])
         if not kind.fits(value):
             raise InputError(f"{name} is {_type_name(value)}", f"write {kind.name}", key=dotted)
     for name in keys.required if table else ():
         if name not in table:
             raise InputError(f"the key {name} is missing", f"add {name} = ...", key=f"{place}.{name}")
-
-
-def _suggestion(name: str, keys: Keys) -> str:
-    close = difflib.get_close_matches(name[:40], [*keys.kinds], 1, 0.5)
-    return f"did you mean {close[0]}?" if close else f"known: {', '.join(keys.kinds)}"
 
 
 def _type_name(value: Any) -> str:
