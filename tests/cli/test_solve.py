@@ -91,3 +91,27 @@ def test_a_wrong_claim_is_refuted_and_the_right_test_still_shown(sidecheck) -> N
     answer = json.loads(done.stdout)
     assert answer["cutoffs"] is not None
     assert "refuted" in [step["grade"] for step in answer["steps"] if step["name"] == "claims"]
+
+
+def test_a_sum_without_a_bound_says_everywhere_that_it_is_checked(sidecheck) -> None:
+    """The grade is in the text and in the JSON; nothing is called enclosed, and no number proved."""
+    case = "casebook/laws/half-normal-cut.case.toml"
+    done = sidecheck("solve", case, "--digits", "15")
+    assert (done.returncode, done.stderr) == (0, "")
+    text = " ".join(done.stdout.split())
+    assert "2. Derived checked numerically" in text
+    assert "3. Solved to 15 digits checked numerically" in text
+    assert "[checked numerically] law of the sum:" in text
+    assert "neither bounds its error" in text
+    assert "enclosed within" not in text
+    done = sidecheck("solve", case, "--digits", "15", "--json")
+    answer = json.loads(done.stdout)
+    check(answer, "solve")
+    grades = {step["name"]: step["grade"] for step in answer["steps"]}
+    assert answer["grade"] == grades["numbers"] == grades["law of the sum"] == "checked numerically"
+
+
+def test_more_digits_than_the_two_routes_share_are_undecided(sidecheck) -> None:
+    done = sidecheck("solve", "casebook/laws/half-normal-cut.case.toml", "--digits", "200")
+    assert done.returncode == 3
+    assert "digits, not 200" in done.stderr + done.stdout

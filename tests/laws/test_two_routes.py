@@ -73,7 +73,7 @@ def test_contains_what_is_proved_otherwise(density, at, n, places) -> None:
     wanted, found = named(*density, at, n), routes(*density, at, n)
     assert not isinstance(wanted, SumByTwoRoutes)
     turned = derived(*density).family.scale == -1
-    with balls(112) as A:
+    with balls(96) as A:
         for v in places:
             for method in METHODS:
                 other = {"cdf": "sf", "sf": "cdf"}.get(method, method) if turned else method
@@ -87,7 +87,7 @@ def test_contains_what_is_proved_otherwise(density, at, n, places) -> None:
 def test_cut_half_normal_in_the_first_cell_is_a_cut_gamma_law(n: int) -> None:
     """Below 1 no square reaches its limit: the density is C**n pi**(n/2) v**(n/2-1) exp(-t v) / Gamma(n/2)."""
     law = routes(*CUT_HALF_NORMAL, Fraction(3), n)
-    with balls(112) as A:
+    with balls(96) as A:
         front = (A.sqrt(A.real(3)) / A.real(3).sqrt().erf()) ** n
         gamma = A.gamma(Fraction(n, 2))
         for v in (A.real(Fraction(1, 20)), A.real(Fraction(2, 5)), A.real(Fraction(9, 10))):
@@ -115,7 +115,7 @@ def test_two_folded_observations_against_quadrature_of_the_convolution() -> None
             left = mpmath.quad(
                 lambda x, v=v: front * mpmath.exp(-x * x) * below(v - x * x), sorted(b for b in breaks if b <= 1)
             )
-            with balls(112) as A:
+            with balls(96) as A:
                 found = law.cdf(A, A.real(Fraction(int(v * 4), 4)))
                 assert abs(mpmath.mpf(found.mid().str(28, radius=False)) - left - right) < mpmath.mpf(10) ** -20
 
@@ -129,7 +129,7 @@ def test_parts_fit_together(density: tuple[str, str, str], place: Fraction) -> N
     """Both sides make 1; densities at two parameters differ by a tilt; the integral has the density as its slope."""
     n = 2
     first, second = (routes(*density, at, n) for at in (Fraction(1), Fraction(2)))
-    with balls(112) as A:
+    with balls(96) as A:
         v = midpoint(first.expectation(A) + A.real(place) * first.spread(A) / 2)
         low, high = (None if end is None else A.real(end) for end in first.support)
         near = A.real(Fraction(1, 50))
@@ -147,7 +147,7 @@ def test_parts_fit_together(density: tuple[str, str, str], place: Fraction) -> N
 
 def test_over_a_ball_the_numbers_cover_what_they_are_at_points() -> None:
     law = routes(*CUT_HALF_NORMAL, Fraction(1), 2)
-    with balls(112) as A:
+    with balls(96) as A:
         low, high = A.real(Fraction(3, 4)), A.real(Fraction(3, 4)) + A.power(A.real(2), -30)
         box = low.union(high)
         for method in METHODS:

@@ -31,6 +31,10 @@ def inverse_branches(statistic: Expr, x: Symbol, y: Expr) -> list[Expr] | None:
         return inverse_branches(statistic.args[0], x, sp.exp(y))
     if isinstance(statistic, sp.exp):
         return inverse_branches(statistic.exp, x, sp.log(y))
+    if isinstance(statistic, sp.cosh):
+        return _both(statistic.args[0], x, sp.acosh(y))
+    if isinstance(statistic, sp.sinh):
+        return inverse_branches(statistic.args[0], x, sp.asinh(y))
     if isinstance(statistic, sp.Abs):
         return _both(statistic.args[0], x, y)
     return _of_quotient(statistic, x, y)

@@ -15,7 +15,7 @@ from verify.derivation.zeta_values import open_zeta
 from verify.laws.continuous import OneObservation
 from verify.laws.shape import DEVIATION, Piece, Shape
 from verify.problem.density import Density
-from verify.problem.numbers import as_exact
+from verify.problem.numbers import as_exact, as_expr
 
 
 def continuous_family(density: Density, found: Factorisation) -> tuple[LawFamily, str] | str:
@@ -64,7 +64,7 @@ def _pushed(core: sp.Expr, statistic: sp.Expr, x: sp.Symbol, pieces: tuple[Piece
         return None, False
     (piece,) = pieces
     slope = sp.diff(piece.inverse, V) * (1 if piece.rising else -1)
-    pushed = _parted(core.subs(x, piece.inverse) * slope)
+    pushed = _parted(_at(core, x, piece) * slope)
     ends = sorted((piece.at_low, piece.at_high), key=lambda end: end is not None)
     if ends[1] is not None:
         return pushed, False
@@ -92,10 +92,22 @@ def _is_sinh_squared(node: sp.Pow) -> bool:
     return isinstance(node.base, sp.sinh) and node.exp == 2
 
 
+def _at(core: sp.Expr, x: sp.Symbol, piece: Piece) -> sp.Expr:
+    """The core at the inverse of a piece; where T is positive, so is v, and the root of its square is v itself."""
+    least = piece.at_low if piece.rising else piece.at_high
+    value = sp.Dummy("v", positive=True) if least is not None and as_expr(least).is_nonnegative else V
+    return core.subs(x, piece.inverse.subs(V, value)).subs(value, V)
+
+
 def _log_transform(density: Density, found: Factorisation) -> sp.Expr | None:
-    """The log normaliser in terms of the natural parameter, the symbol z; None where no inverse of Q is found."""
+    """The log normaliser in terms of the natural parameter, the symbol z; None where no inverse of Q is found.
+
+    The logarithm of a power becomes a multiple of a logarithm, for only a whole multiple can be continued to complex z
+    without regard to its cut; a constant that this adds drops out of differences.
+    """
     space = density.parsed_space
     back = inverse_on(found.natural_parameter, density.t, space.lower, space.upper)
     if back is None:
         return None
-    return found.log_normaliser.subs(density.t, back.subs(V, sp.Symbol("z")))
+    plain = found.log_normaliser.replace(sp.log, lambda inside: sp.expand_log(sp.log(sp.factor(inside)), force=True))
+    return plain.subs(density.t, back.subs(V, sp.Symbol("z")))

@@ -72,12 +72,13 @@ def _piece(statistic: Expr, x: Symbol, left: Expr, right: Expr) -> Piece | str:
     sign = Domain({x: (left, right)}).sign(slope) or _sign_by_balls(slope, x, left, right)
     if not sign:
         return f"that T = {statistic} is monotone on ({left}, {right}) was not shown"
-    inverse = inverse_on(statistic, x, left, right)
-    if inverse is None:
-        return f"no inverse of T = {statistic} on ({left}, {right}) was found"
     at_left, at_right = (_limit(statistic, x, end, side) for end, side in ((left, "+"), (right, "-")))
     if at_left is None or at_right is None:
         return f"the limits of T = {statistic} at {left} and {right} were not found"
+    positive = bool(at_left.is_extended_nonnegative and at_right.is_extended_nonnegative)
+    inverse = inverse_on(statistic, x, left, right, positive=positive)
+    if inverse is None:
+        return f"no inverse of T = {statistic} on ({left}, {right}) was found"
     return Piece(_end(left), _end(right), _end(at_left), _end(at_right), sign > 0, inverse)
 
 
@@ -130,11 +131,23 @@ def _one_sign(expr: Expr, x: Symbol, A: Any, low: Any, high: Any, depth: int) ->
     return first if first and first == _one_sign(expr, x, A, middle, high, depth - 1) else 0
 
 
-def inverse_on(statistic: Expr, x: Symbol, left: Expr, right: Expr) -> Expr | None:
-    """Return the inverse of a function that is monotone on an interval, in terms of ``V``; None where none is found."""
-    point = _inside(left, right)
+def inverse_on(statistic: Expr, x: Symbol, left: Expr, right: Expr, *, positive: bool = False) -> Expr | None:
+    """Return the inverse of a function that is monotone on an interval, in terms of ``V``; None where none is found.
+
+    ``positive`` says that the function is positive inside the interval.
+
+    Examples
+    --------
+    >>> x = Symbol("x", real=True)
+    >>> inverse_on(sp.sqrt(x**2 + 1), x, sp.Integer(0), sp.oo, positive=True)
+    sqrt(v**2 - 1)
+    """
+    point, value = _inside(left, right), sp.Dummy("v", positive=True) if positive else V
     for candidate in _candidates(statistic, x):
-        if _meets(statistic, candidate, x, point) and is_zero(statistic.subs(x, candidate) - V):
+        if not _meets(statistic, candidate, x, point):
+            continue
+        back = statistic.subs(x, candidate.subs(V, value))
+        if is_zero(sp.simplify(back - value)):
             return candidate
     return None
 

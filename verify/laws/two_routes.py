@@ -9,6 +9,7 @@ Source: J. Abate and W. Whitt, *Queueing Systems* 10 (1992) 5-88 (from memory), 
 
 from __future__ import annotations
 
+import math
 from dataclasses import dataclass
 from fractions import Fraction
 from typing import TYPE_CHECKING, Any, ClassVar
@@ -26,8 +27,14 @@ from verify.laws.shape import Shape
 if TYPE_CHECKING:
     from verify.problem.numbers import Exact
 
-LEAST_BITS, MOST_BITS, STEP_BITS = 96, 160, 16
+LEAST_BITS, MOST_BITS, STEP_BITS = 96, 256, 32
 """The accuracy aimed at by the routes, and its steps."""
+
+WIDENING = 4
+"""By how much the distance of the routes is multiplied: what each says of its own error is an estimate."""
+
+OFF_BREAKS = 0.2
+"""The share of a cell by which these points stay away from its ends."""
 
 LOG_TEN = 2.302585
 GUARD_BITS = 16
@@ -131,8 +138,9 @@ class SumByTwoRoutes(BuiltLaw):
         bits = _bits(A.prec)
         first, second = self._read(A, v, order, bits)
         unit = self.spread(A) ** (order - 1)
-        apart = self._apart(A, bits)
-        return around((first + second) / 2, abs(first - second) + radius(first) + radius(second) + apart * unit)
+        reach = abs(first - second) + radius(first) + radius(second) + self._apart(A, bits) * unit
+        centre = (first + second) / 2
+        return around(centre, WIDENING * reach + radius(centre))
 
     def _apart(self, A: Any, bits: int) -> Number:
         """Largest distance of the two routes at a few points, in units in which each kind of number is about 1."""
@@ -140,13 +148,23 @@ class SumByTwoRoutes(BuiltLaw):
         if key not in self.one.cache:
             mean, spread, largest = midpoint(self.expectation(A)), midpoint(self.spread(A)), A.real(0)
             for look in LOOKS:
-                v = midpoint(mean + A.real(look) * spread)
+                v = self._off_breaks(A, midpoint(mean + A.real(look) * spread))
                 for order in (DENSITY, CUMULATIVE, TWICE) if not self._place(A, v) else ():
                     first, second = self._read(A, v, order, bits)
                     distance = abs(first - second) * spread ** (1 - order)
                     largest = largest.max(distance.upper()) if distance.is_finite() else A.real(1)
             self.one.cache[key] = largest
         return self.one.cache[key]
+
+    def _off_breaks(self, A: Any, v: Number) -> Number:
+        """A point moved off the ends of its cell: near a break of the density the routes share less, and show it."""
+        frame = self._frame()
+        if frame.cell is None:
+            return v
+        cell, start = A.real(frame.cell), self.n * A.real(frame.start)
+        place = float((v - start) / cell)
+        inside = min(max(place % 1, OFF_BREAKS), 1 - OFF_BREAKS)
+        return midpoint(start + cell * A.real(Fraction(math.floor(place) + inside)))
 
     def _read(self, A: Any, v: Number, order: int, bits: int) -> tuple[Number, Number]:
         """The two values at an exact point; kept, since a search returns to its points."""
@@ -185,4 +203,4 @@ class SumByTwoRoutes(BuiltLaw):
 
 def _bits(prec: int) -> int:
     """The accuracy at which the routes aim when numbers of some precision are asked for."""
-    return min(MOST_BITS, max(LEAST_BITS, -(-3 * prec // 4 // STEP_BITS) * STEP_BITS))
+    return min(MOST_BITS, max(LEAST_BITS, -(-prec // STEP_BITS) * STEP_BITS))
