@@ -45,3 +45,8 @@ def test_the_zeta_function() -> None:
 def test_an_unknown_function_is_an_error() -> None:
     with pytest.raises(SidecheckError, match="no Taylor series of the function polygamma"):
         taylor(sp.digamma(t), "t", sp.Integer(1), 3, 64)
+
+
+def test_a_pole_is_an_error() -> None:
+    with pytest.raises(SidecheckError, match="no Taylor series at 1"):
+        taylor(1 / (t - 1), "t", sp.Integer(1), 3, 64)

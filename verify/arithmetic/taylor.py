@@ -133,7 +133,7 @@ def taylor(expr: Any, variable: str, at: Any, terms: int, prec: int) -> list[Bal
     Raises
     ------
     SidecheckError
-        For a function whose series is not known.
+        For a function whose series is not known, or a pole.
 
     Examples
     --------
@@ -144,7 +144,10 @@ def taylor(expr: Any, variable: str, at: Any, terms: int, prec: int) -> list[Bal
     """
     with balls(prec) as B, _cut(terms):
         A = TaylorBalls(prec, terms)
-        series = A.real(evaluate(expr, A, {variable: arb_series([B.real(at), arb(1)], terms)}))
+        try:
+            series = A.real(evaluate(expr, A, {variable: arb_series([B.real(at), arb(1)], terms)}))
+        except ValueError as error:  # how python-flint says that a divisor vanishes at the point
+            raise SidecheckError(f"{expr} has no Taylor series at {at}") from error
         return [series[k] for k in range(terms)]
 
 
