@@ -59,6 +59,8 @@ def test_messages_say_what_was_expected_and_found_and_where(ran: list[Result]) -
     lines = Path(by_name["b-differs"].path).read_text(encoding="utf-8").splitlines()
     assert lines[message.line - 1].startswith("c = ")
     assert "c is printed as 9, right is 8" in str(by_name["c-claim-differs"].messages[0])
+    claim = by_name["c-claim-differs"]
+    assert Path(claim.path).read_text(encoding="utf-8").splitlines()[claim.messages[0].line - 1] == "[claim]"
     assert "the upper cutoff one support point off" in str(by_name["c-claim-differs"].messages[0])
     assert "the sum of the density over its support is 2" in str(by_name["d-refuted"].messages[0])
     assert by_name["e-unusable"].messages[0].key == "problem.alpha"

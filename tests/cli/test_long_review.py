@@ -80,6 +80,14 @@ def test_the_keyboard(review, alone, workers) -> None:
     assert (again.returncode, out.read_bytes(), text) == (1, *alone)
 
 
+def test_a_run_that_does_not_begin_leaves_no_journal(review) -> None:
+    out, running = review("none", "--scheduler", "nonsense")
+    _, error = running.communicate()
+    assert running.returncode == 2
+    assert error.count("\n") == 1
+    assert not Path(f"{out}.journal").exists()
+
+
 def test_a_cluster_that_loses_a_worker(review, alone, cluster) -> None:
     out, running = review("cluster", "--scheduler", cluster.start_workers(2).address)
     cluster.kill_one_at_work()

@@ -35,6 +35,7 @@ def test_of_several_the_bad_ones_are_named(sidecheck_here, tmp_path) -> None:
     assert done.returncode in (1, 2)
     assert done.stdout.startswith(f"{good}:\nACCEPTED")
     assert done.stdout.endswith(f"2 certificates, not accepted: {bad}\n")
+    assert sidecheck_here("recheck", str(tmp_path)).stdout.endswith(f"2 certificates, not accepted: {bad}\n")
     answer = json.loads(sidecheck_here("recheck", bad, good, "--json").stdout)
     assert answer["status"] == done.returncode
     assert answer["certificates"][good]["verdict"] == "accepted"
@@ -44,7 +45,8 @@ def test_of_several_the_bad_ones_are_named(sidecheck_here, tmp_path) -> None:
 def test_missing_files_are_one_line(sidecheck_here, tmp_path) -> None:
     path = tmp_path / "x.cert.json"
     path.write_text("{}")
-    for words in (["no-such.cert.json"], [str(path), "--case", "no-such.case.toml"]):
+    (tmp_path / "empty").mkdir()
+    for words in (["no-such.cert.json"], [str(tmp_path / "empty")], [str(path), "--case", "no-such.case.toml"]):
         done = sidecheck_here("recheck", *words)
         assert done.returncode == 2
         assert done.stderr.count("\n") == 1

@@ -58,7 +58,7 @@ def run_case_file(path: str, how: How | None = None) -> Result:
         result = replace(result, outcome=Outcome.UNUSABLE, found=UNUSABLE, messages=(Message(error.key, str(error)),))
     except Exception as error:  # a mistake of this program on one case: shown as such, never green
         result = replace(result, found=Outcome.INTERNAL.value, messages=(Message("", _mistake(error)),))
-    messages = tuple(replace(message, line=line_of(path, message.key)) for message in result.messages)
+    messages = tuple(replace(message, line=_line_for(path, message.key)) for message in result.messages)
     return replace(result, messages=messages, seconds=time.perf_counter() - start)
 
 
@@ -100,6 +100,12 @@ def _mistake(error: Exception) -> str:
     frames = traceback.extract_tb(error.__traceback__)
     place = f"{os.path.basename(frames[-1].filename)}:{frames[-1].lineno}" if frames else "?"
     return f"internal error ({type(error).__name__} at {place}: {' '.join(str(error).split())[:200]}), please report it"
+
+
+def _line_for(path: str, key: str) -> int | None:
+    """The line of a key; without an ``[expect]``, a verdict that is no pass is about the claim."""
+    line = line_of(path, key)
+    return line_of(path, "claim") if line is None and key == "expect.verdict" else line
 
 
 def line_of(path: str, key: str) -> int | None:

@@ -4,7 +4,6 @@ from __future__ import annotations
 
 import argparse
 import json
-from contextlib import closing
 from itertools import islice
 from pathlib import Path
 from typing import TYPE_CHECKING
@@ -92,7 +91,7 @@ def _answer(grid: Grid, asker: Asker, journal: Journal, args: argparse.Namespace
     if journal.done:
         note(f"{journal.done} rows were done before; going on after them")
     left = islice(grid.designs(), journal.done, None)
-    with closing(journal), progress_bar("rows", len(grid), journal.done) as progress:
+    with journal, progress_bar("rows", len(grid), journal.done) as progress:
         done = journal.done
         for record in run_all(asker, left, args.workers, args.scheduler, CHUNK):
             journal.add([record])

@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import argparse
+import os
 import sys
 
 from verify.cli.options import add_json
@@ -21,6 +22,7 @@ VERDICTS = {
 """What each exit status of the checker means."""
 
 
+ENDING = ".cert.json"
 WORST = (1, 2, 3, 4, 0)
 """Which exit status decides for several certificates."""
 
@@ -28,17 +30,19 @@ WORST = (1, 2, 3, 4, 0)
 def add(parser: argparse.ArgumentParser) -> None:
     """Add the arguments of the command."""
     parser.add_argument(
-        "certificates", nargs="+", metavar="CERTIFICATE", help="certificates, NAME.cert.json, or - for standard input"
-    )
+        "certificates", nargs="+", metavar="CERTIFICATE",
+        help="certificates, NAME.cert.json, folders of them, or - for standard input",
+    )  # fmt: skip
     parser.add_argument("--case", metavar="CASE", help="the case file that the certificate must be about")
     add_json(parser)
 
 
 def run(args: argparse.Namespace) -> int:
     """Check each, print the verdicts, and return the exit status of the checker, of several that of the worst."""
-    if args.case is not None and len(args.certificates) > 1:
+    paths = dict.fromkeys(path for place in args.certificates for path in _certificates(place))
+    if args.case is not None and len(paths) > 1:
         raise InputError("one case, several certificates", "check each against its own case", key="--case")
-    found = {path: _checked(path, args.case) for path in dict.fromkeys(args.certificates)}
+    found = {path: _checked(path, args.case) for path in paths}
     status = min((status for status, _ in found.values()), key=WORST.index)
     shown = {path: {"verdict": VERDICTS[code], "status": code, "lines": lines} for path, (code, lines) in found.items()}
     if args.json:
@@ -51,6 +55,16 @@ def run(args: argparse.Namespace) -> int:
     if len(found) > 1:
         print(f"{len(found)} certificates, " + (f"not accepted: {', '.join(bad)}" if bad else "all accepted"))
     return status
+
+
+def _certificates(place: str) -> list[str]:
+    """Return the certificates in a folder, in order of their names; the place itself where it is none."""
+    if not os.path.isdir(place):
+        return [place]
+    names = sorted(name for name in os.listdir(place) if name.endswith(ENDING))
+    if not names:
+        raise InputError("there is no certificate in this folder", f"they are named NAME{ENDING}", file=place)
+    return [os.path.join(place, name) for name in names]
 
 
 def _checked(path: str, case: str | None) -> tuple[int, list[str]]:

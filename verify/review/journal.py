@@ -8,7 +8,7 @@ import json
 import os
 from collections.abc import Iterator
 from pathlib import Path
-from typing import IO
+from typing import IO, Self
 
 from verify.errors import InputError
 from verify.review.record import Record
@@ -40,6 +40,16 @@ class Journal:
         self._stream: IO[str] | None = open(path, "a", encoding="utf-8")  # noqa: SIM115 (kept open over the run)
         _lock(self._stream, path)
         self.done = self._keep_whole_lines()
+        self._empty = not self.done
+
+    def __enter__(self) -> Self:
+        return self
+
+    def __exit__(self, kind: type[BaseException] | None, *_: object) -> None:
+        """Close the file; a run that failed before its first row leaves none behind."""
+        if kind is not None and self._empty:
+            self.remove()
+        self.close()
 
     def _keep_whole_lines(self) -> int:
         """Cut a journal to its whole lines and count its records; a journal of something else is begun
@@ -70,6 +80,7 @@ class Journal:
             raise ValueError("the journal is closed")
         self._stream.writelines(json.dumps(record, ensure_ascii=False) + "\n" for record in records)
         self._stream.flush()
+        self._empty = self._empty and not records
 
     def close(self) -> None:
         """Close the file."""

@@ -4,7 +4,6 @@ from __future__ import annotations
 
 import hashlib
 from collections.abc import Callable
-from contextlib import closing
 from dataclasses import dataclass
 from itertools import islice
 from pathlib import Path
@@ -92,7 +91,7 @@ def run(job: Job, table: Table, journal: Journal, progress: Progress | None = No
     """
     done = journal.done
     tasks = (task_of(job.columns, row) for row in islice(table.rows(), done, None))
-    with closing(journal):
+    with journal:
         for record in run_all(RowReviewer(job), tasks, job.workers, job.scheduler, BATCH):
             journal.add([record])
             done += 1
