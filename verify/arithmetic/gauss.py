@@ -119,7 +119,9 @@ def best_panel(bound: Bound, start: ComplexBall, toward: ComplexBall, length: Ba
         if not all(size.is_finite() and factor.is_finite() for size, factor in sizes):
             break
         count = _count(rho, largest([size * factor for size, factor in sizes]) * abs(half), goal)
-        if count <= MOST_NODES and (found is None or count < found.count):
+        if found is not None and count > found.count:
+            break  # the bound now grows faster than the rule gains
+        if count <= max(MOST_NODES, goal):
             kept = tuple((piece, size) for piece, (size, _) in zip(pieces, sizes, strict=True))
             found = Panel(middle, half, rho, count, kept)
     return found
@@ -147,28 +149,35 @@ def panels_along(
     place, step = arb(0), first
     while place < length:
         with balls(EXACT_BITS):
-            left = length - place
-        trials = [(s if s < left else left) for s in (step / 2, step, 2 * step, 4 * step)]
-        with balls(EXACT_BITS):
-            here = start + place * toward
-        choices = [(best_panel(bound, here, toward, trial, goal), trial) for trial in _distinct(trials)]
-        rated = [
-            (float(trial) / (panel.count + OVERHEAD), panel, trial) for panel, trial in choices if panel is not None
-        ]
-        if not rated:
-            step = step / 4
-            if step * 2**24 < first:
-                return []
-            continue
-        _, panel, step = max(rated, key=lambda entry: entry[0])
-        panels.append(panel)
-        with balls(EXACT_BITS):
-            place = place + step
+            here, left = start + place * toward, length - place
+        panel, step = _best_length(lambda trial: best_panel(bound, here, toward, trial, goal), step, left)  # noqa: B023
+        if panel is not None:
+            panels.append(panel)
+            with balls(EXACT_BITS):
+                place = place + step
+        elif step * 2**24 < first:
+            return []
     return panels
 
 
-def _distinct(trials: list[Ball]) -> list[Ball]:
-    return [trial for i, trial in enumerate(trials) if not any(trial == other for other in trials[:i])]
+def _best_length(panel_of: Callable[[Ball], Panel | None], step: Ball, left: Ball) -> tuple[Panel | None, Ball]:
+    """The panel that covers most for its nodes among lengths about ``step`` and at most ``left``, and its length.
+
+    None, with a shorter length to go on with, where there is no panel.
+    """
+
+    def rated(trial: Ball) -> tuple[float, Panel | None, Ball]:
+        trial = trial if trial < left else left
+        panel = panel_of(trial)
+        return (float(trial) / (panel.count + OVERHEAD) if panel is not None else 0.0), panel, trial
+
+    best = rated(step)
+    longer = rated(2 * step) if step < left else best
+    if longer[0] > best[0]:
+        best = max(longer, rated(4 * step), key=lambda entry: entry[0])
+    else:
+        best = max(best, rated(step / 2), key=lambda entry: entry[0])
+    return (best[1], best[2]) if best[1] is not None else (None, step / 4)
 
 
 def _count(rho: Fraction, size: Ball, goal: int) -> int:
