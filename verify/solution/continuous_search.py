@@ -15,6 +15,7 @@ from verify.arithmetic.ball import balls, midpoint
 from verify.errors import UndecidedError
 from verify.solution.conditions import Conditions, improved_start, linear_system, solve_two_by_two
 from verify.solution.coordinate import Coordinate
+from verify.solution.narrow import even_point, narrow_contents
 from verify.solution.one_sided import TailProblem
 from verify.solution.sliding_continuous import slide_continuous
 from verify.solution.start import extend, window_start
@@ -23,8 +24,6 @@ from verify.solution.window import WindowSearch
 MOST_STEPS = 60
 NOISE_BITS = 40
 """A step that may be 0 counts as settled below this share of the window's width."""
-NARROW = 1e-4
-"""Below this level a window that rejects inside is narrow: both ends are sought from one centre."""
 FEW_SCALES = 8.0
 """Longest step outward into a falling density, in lengths over which it falls by a factor e."""
 
@@ -59,11 +58,10 @@ class ContinuousSearch(WindowSearch):
             return found
 
     def _first(self, A: Any) -> Ends:
-        contents = [1 - A.real(level) if self.conditions.outside else A.real(level) for level in self.conditions.levels]
-        if all(content.mid() < NARROW for content in contents):
-            narrow = self._narrow(A, contents)
-            if narrow is not None:
-                return narrow
+        contents = narrow_contents(self.conditions, A)
+        narrow = self._narrow(A, contents) if contents is not None else None
+        if narrow is not None:
+            return narrow
         levels = tuple(float(A.real(level).mid()) for level in self.conditions.levels)
         coordinate = self.coordinate
         moved = tuple(coordinate.rough(A, law) for law in self.rough)
@@ -88,27 +86,12 @@ class ContinuousSearch(WindowSearch):
         return (ends[0], ends[1]) if ends[0] < ends[1] else None
 
     def _narrow(self, A: Any, contents: list[Any]) -> Ends | None:
-        """Window around the point where the densities are as the contents; their log ratio is linear in the statistic.
-
-        For a point null, around the mean. None where the window would not be narrow after all.
-        """
-        centre = self._even_point(A, contents)
+        """Window around the point where the densities are as the contents; None where it would not be narrow."""
+        centre = even_point(self.conditions, A, contents)
         half = contents[0] / self.conditions.laws[0].density(A, centre) / 2
         if not half.mid() < A.real(Fraction(self.rough[0].spread)) / 16:
             return None
         return midpoint(centre - half), midpoint(centre + half)
-
-    def _even_point(self, A: Any, contents: list[Any]) -> Any:
-        if self.conditions.point:
-            return midpoint(self.conditions.laws[0].expectation(A))
-        first, second = self.conditions.laws
-        a, b = (midpoint(law.expectation(A)) for law in (first, second))
-
-        def log_ratio(c: Any) -> Any:
-            return A.log(second.density(A, c) / first.density(A, c))
-
-        wanted = A.log(contents[1] / contents[0])
-        return midpoint(a + (b - a) * (wanted - log_ratio(a)) / (log_ratio(b) - log_ratio(a)))
 
     def _newton(self, A: Any, ends: Ends) -> Ends | None:
         """Damped Newton steps in the coordinate; settled when a step is far below the window's own width."""

@@ -29,6 +29,7 @@ from verify.solution.conditions import (
     linear_system,
 )
 from verify.solution.lattice_step import as_float, cells, log_float
+from verify.solution.narrow import even_point, narrow_contents
 from verify.solution.precision import bits_for
 from verify.solution.sliding import slide
 from verify.solution.start import window_start
@@ -40,6 +41,9 @@ MOST_STEPS = 40
 NEIGHBOURS = 4
 """Cells tried one step at a time before searching again at a higher precision."""
 
+MORE_BITS = 192
+"""Bits by which a search that could not see is sharpened first."""
+
 Cell = tuple[int, int]
 
 
@@ -49,19 +53,41 @@ class LatticeSearch(WindowSearch):
 
     def cell(self) -> Cell:
         """Return the cell, or the best guess that a proof may still move by a little."""
-        for bits in (self.prec, 2 * self.prec):
+        for bits in (self.prec, self.prec + MORE_BITS, 2 * self.prec + MORE_BITS):
             with balls(bits) as A:
-                found = self._fast(A)
+                found, blurred = self._fast(A)
             if found is not None:
                 return found
+            if not blurred:
+                break
         return self.bracket(self.prec)
 
-    def _first(self) -> Cell:
+    def _first(self, A: Any) -> Cell:
+        narrow = self._narrow(A)
+        if narrow is not None:
+            return narrow
         levels = tuple(float(level) for level in self.conditions.levels)
         ends = window_start(self.rough, max(levels[0], 1e-300), self.conditions.outside)
         a, b = improved_start(self.conditions, self.rough, levels, ends)
         c1 = math.floor(a) + 1
         return self.on_atoms((c1, max(math.ceil(b), c1 + 1)), -1, -1)
+
+    def _narrow(self, A: Any) -> Cell | None:
+        """Two neighbouring atoms, where the window holds less than either of them."""
+        contents = narrow_contents(self.conditions, A)
+        if contents is None or not self.conditions.laws[0].plain_points:
+            return None
+        place = float(even_point(self.conditions, A, contents))
+        if not abs(place) < 1e300:
+            return None
+        c1 = math.floor(place)
+        cell = self.on_atoms((c1, c1 + 1), 1, 1)
+        light = all(
+            content < law.density(A, c)
+            for content, law in zip(contents, self.conditions.laws, strict=True)
+            for c in cell
+        )
+        return cell if light else None
 
     def on_atoms(self, cell: Cell, out1: int, out2: int) -> Cell:
         """Bring a cell into the support and its ends to atoms, each on in the direction in which it moved."""
@@ -79,28 +105,33 @@ class LatticeSearch(WindowSearch):
         c2 = law.atom(c1 + 1, 1)
         return (c1, c2) if high is None or c2 <= high else (law.atom(c1 - 1, -1), c1)
 
-    def _fast(self, A: Any) -> Cell | None:
-        """Newton's method on the piecewise linear side conditions: each step solves the 2 x 2 system of a cell."""
-        cell, seen = self._first(), set()
+    def _fast(self, A: Any) -> tuple[Cell | None, bool]:
+        """Newton's method on the piecewise linear side conditions: each step solves the 2 x 2 system of a cell.
+
+        Where it finds no cell, say whether for want of precision.
+        """
+        cell, seen = self._first(A), set()
+        caps = [4 * max(r.spread for r in self.rough) + 2] * 2
         for _ in range(MOST_STEPS):
             if cell in seen:
-                return None
+                return None, False
             seen.add(cell)
             balls_of = window_weights(self.conditions, A, *cell)
             weights = [as_float(ball) for ball in balls_of]
             if any(math.isnan(w) for w in weights):
-                return None
+                return None, True
             grain = 1e-9 * min(max(abs(w) for w in weights), 1e300)
             if all(-grain <= w <= 1 + 1e-9 for w in weights):
-                return cell
-            out1, out2 = (self._move(A, c, w, side) for c, w, side in zip(cell, balls_of, (-1, +1), strict=True))
-            cell = self.on_atoms(grown(cell, out1, out2), out1, out2)
-        return None
+                return cell, False
+            moves = [self._move(A, *end) for end in zip(cell, balls_of, (-1, +1), caps, strict=True)]
+            caps = [2 * cap if abs(move) >= cap / 2 else cap for move, cap in zip(moves, caps, strict=True)]
+            cell = self.on_atoms(grown(cell, *moves), *moves)
+        return None, False
 
-    def _move(self, A: Any, c: int, weight: Any, side: int) -> int:
+    def _move(self, A: Any, c: int, weight: Any, side: int, cap: float) -> int:
         """Cells by which an end must go outward (negative: inward) to gather the weight it wants."""
         law = max(self.conditions.laws, key=lambda candidate: log_float(candidate.density(A, c)))
-        return cells(A, law, c, side, weight, 4 * max(r.spread for r in self.rough) + 2)
+        return cells(A, law, c, side, weight, cap)
 
     def bracket(self, bits: int) -> Cell:
         """Return the cell by the sure, slow search."""

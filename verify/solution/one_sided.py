@@ -147,6 +147,7 @@ class TailProblem:
             step = -self.outward * cells(A, law, c, -self.outward, gamma, cap)
             if step == 0:
                 return c
+            cap = 2 * cap if abs(step) >= cap / 2 else cap
             c = c + step if low is None else max(c + step, low)
             c = law.atom(c if high is None else min(c, high), 1 if step > 0 else -1)
         return None

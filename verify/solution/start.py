@@ -24,6 +24,9 @@ GOOD_START = 1e-4
 
 HALVINGS = 14
 
+SATURATED = -0.9
+"""Share of all that a falling density still holds from which what is left over cannot be told from nothing."""
+
 
 @dataclass(frozen=True)
 class Rough:
@@ -161,7 +164,7 @@ def extend(amount: float, slope: float, cap: float) -> float:
     inner = amount * slope
     if abs(inner) < 1e-9:
         distance = amount
-    elif inner <= -1.0:
+    elif inner <= SATURATED:
         distance = math.copysign(math.inf, amount)
     else:
         distance = math.log1p(inner) / slope
