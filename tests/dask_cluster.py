@@ -79,8 +79,15 @@ class Cluster:
                 most = max(most, tasks)
                 return next(iter(busy), "") if tasks < most else ""
 
-            self.workers[wait_until(at_work, "results, and a worker at work")].send_signal(signal.SIGKILL)
-            wait_until(lambda: len(client.scheduler_info()["workers"]) == len(self.workers) - 1, "the loss")
+            self.kill(wait_until(at_work, "results, and a worker at work"))
+
+    def kill(self, name: str) -> None:
+        """Kill a worker, and wait until the scheduler knows."""
+        from distributed import Client
+
+        with Client(self.address, set_as_default=False) as client:
+            self.workers[name].send_signal(signal.SIGKILL)
+            wait_until(lambda: name not in client.run_on_scheduler(names), "the loss")
 
     def stop(self) -> None:
         """End what is left of it."""
@@ -93,6 +100,11 @@ def look(dask_scheduler: Any) -> tuple[int, list[str]]:
     """Return how many tasks the scheduler still has, and the names of the workers that are at work (runs there)."""
     left = [task for task in dask_scheduler.tasks.values() if task.state != "memory"]
     return len(left), [worker.name for worker in dask_scheduler.workers.values() if worker.processing]
+
+
+def names(dask_scheduler: Any) -> list[str]:
+    """Return the names of the workers that the scheduler has (runs there)."""
+    return [worker.name for worker in dask_scheduler.workers.values()]
 
 
 def _json(path: Path) -> Any:

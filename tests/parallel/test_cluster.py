@@ -38,7 +38,7 @@ def test_a_cluster_that_cannot_work_is_told_in_one_line(cluster, tmp_path, monke
     without.write_text("import sys; sys.modules['verify'] = None")
     cluster.start_workers(1, "--preload", older)
     assert "a worker of the cluster has sidecheck 0.0 instead of" in complaint()
-    cluster.workers["worker-0"].send_signal(signal.SIGKILL)
+    cluster.kill("worker-0")
     cluster.start_workers(1, "--preload", without)
     assert "a worker of the cluster has no sidecheck; install the same versions everywhere" in complaint()
 

@@ -87,7 +87,8 @@ def _require_this_package(client: Any) -> None:
 
         return find_spec(name) is not None
 
-    if not all(client.run(has, __name__.partition(".")[0]).values()):
+    answers = client.run(has, __name__.partition(".")[0], on_error="ignore")  # of those that have not died since
+    if not all(answers.values()):
         client.close()
         raise _other_software("a worker of the cluster has no sidecheck")
 
