@@ -6,7 +6,9 @@ import pytest
 from scipy import optimize, stats
 
 from verify import Density, InputError, Problem, derive, review
+from verify.review.judge import _leaning
 from verify.review.style import Style
+from verify.review.verdict import Outcome, Verdict
 
 POISSON = Density(
     "exp(-lam)*lam**x/factorial(x)", variable="x", support="integers >= 0", parameter="lam", space="lam > 0"
@@ -235,3 +237,13 @@ def test_a_fraction_of_0_or_1_is_no_rounded_fraction() -> None:
     """0.0867 is not "0" and 0.5147 is not "1": a test that never, or always, rejects at a cutoff is another test."""
     assert judged(*LOT, c1="94", c2="103", gamma1="0", gamma2="1").verdict == "differs"
     assert judged(*LOT, c1="94", c2="103", gamma1="0.1", gamma2="0.5").verdict == "agrees"
+
+
+def test_a_verdict_on_numbers_that_are_only_checked_says_so() -> None:
+    density = Density("exp(-t*x**2)*2*sqrt(t/pi)/erf(sqrt(t))", variable="x", support="reals in [0, 1]",
+                      parameter="t", space="t > 0")  # fmt: skip
+    problem = Problem(density, null="t <= 1", alpha="0.05", n=2)
+    derivation = derive(density, limits=problem.hypothesis.limits, n=2)
+    verdict = _leaning(Verdict(Outcome.AGREES, problem, None, derivation))
+    assert verdict.outcome is Outcome.AGREES
+    assert any("checked numerically, not proved" in note for note in verdict.notes)

@@ -139,8 +139,8 @@ def inverse_on(statistic: Expr, x: Symbol, left: Expr, right: Expr, *, positive:
     Examples
     --------
     >>> x = Symbol("x", real=True)
-    >>> inverse_on(sp.sqrt(x**2 + 1), x, sp.Integer(0), sp.oo, positive=True)
-    sqrt(v**2 - 1)
+    >>> inverse_on(sp.sqrt(x), x, sp.Integer(0), sp.Integer(1), positive=True)
+    v**2
     """
     point, value = _inside(left, right), sp.Dummy("v", positive=True) if positive else V
     for candidate in _candidates(statistic, x):

@@ -51,8 +51,8 @@ def open_or_checked(family: LawFamily, limits: Sequence[Exact], n: int) -> Step 
 
 
 def with_sum_step(derivation: Derivation, laws: Sequence[Law], prec: int) -> Derivation:
-    """Return the derivation with this step at its end, where one is due, in place of an earlier one."""
-    step = sum_step(laws, prec)
-    if step is None:
+    """Return the derivation with this step at its end where one is due, and without one for another number."""
+    step, others = sum_step(laws, prec), tuple(known for known in derivation.steps if known.name != NAME)
+    if step is None and others == derivation.steps:
         return derivation
-    return replace(derivation, steps=(*(known for known in derivation.steps if known.name != NAME), step))
+    return replace(derivation, steps=others if step is None else (*others, step))

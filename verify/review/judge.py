@@ -7,6 +7,8 @@ from fractions import Fraction
 
 from verify.arithmetic.enclosure import Enclosure
 from verify.derivation.ledger import Grade
+from verify.derivation.sum_step import NAME as SUM_STEP
+from verify.derivation.sum_step import with_sum_step
 from verify.errors import UndecidedError
 from verify.problem.hypothesis import Form
 from verify.review.claim import Claim
@@ -20,8 +22,10 @@ from verify.review.slip_table import TRUNCATED, TRUNCATED_WORDS
 from verify.review.slips import find_slips
 from verify.review.verdict import Outcome, SlipFound, Verdict
 from verify.solution.critical import CriticalFunction
+from verify.solution.precision import bits_for
 
 NO_SLIP = "No slip of the list reproduces every printed number."
+NOT_PROVED = "the right numbers are checked numerically, not proved: two routes to the law of the sum share them"
 BY_MATCH = {
     Match.SAME: Outcome.AGREES,
     Match.LAST: Outcome.LAST_DIGIT,
@@ -53,6 +57,8 @@ def judge(setting: Setting, claim: Claim, options: Options | None = None) -> Ver
     """
     verdict = Verdict(Outcome.UNDECIDED, setting.problem, claim, setting.derivation)
     try:
+        known = with_sum_step(setting.derivation, setting.laws, bits_for(setting.digits))
+        verdict = replace(verdict, derivation=known)
         return _leaning(_judged(verdict, setting, claim, options or Options()))
     except UndecidedError as error:
         return _leaning(replace(verdict, notes=(str(error),)))
@@ -240,4 +246,6 @@ def _leaning(verdict: Verdict) -> Verdict:
             outcome=Outcome.UNDECIDED,
             notes=(f"the derivation stayed open at: {open_steps}", *verdict.notes),
         )
+    if verdict.derivation.step(SUM_STEP) is not None:
+        return replace(verdict, notes=(NOT_PROVED, *verdict.notes))
     return verdict
