@@ -8,7 +8,7 @@ from verify.problem.casefile import read_case_text
 
 ROOT = Path(__file__).parents[1] / "casebook"
 FILES = sorted(ROOT.rglob("*.case.toml"))
-VERDICTS = {"proved", "agrees", "last digit", "differs", "refuted", "unusable"}
+VERDICTS = {"proved", "checked numerically", "agrees", "last digit", "differs", "refuted", "unusable"}
 
 
 @pytest.mark.parametrize(
@@ -24,7 +24,9 @@ def test_case_file(path: Path) -> None:
     assert ("error" in expect) == ("key" in expect) == (expect["verdict"] == "unusable")
     if expect["verdict"] in ("proved", "agrees", "last digit"):
         assert expect["grade"] in ("proved", "enclosed", "checked numerically")
-    if expect["verdict"] == "proved" and path.parent.name != "published":
+    if expect["verdict"] == "checked numerically":
+        assert expect["grade"] == "checked numerically"
+    if expect["verdict"] in ("proved", "checked numerically") and path.parent.name != "published":
         assert "c" in expect or {"c1", "c2"} <= expect.keys()
     if path.parent.name in ("published", "numerics"):
         assert case.tables["source"]
