@@ -47,7 +47,7 @@ def raw_seconds(asked: list[tuple]) -> float:
     start = time.process_time()
     for _, _, _, two_sided, test in asked:
         with balls(120) as A:
-            end_fractions(two_sided.conditions, A, test.c1, test.c2)
+            end_fractions(two_sided.search.conditions, A, test.c1, test.c2)
         with balls(128) as A:
             for law in two_sided.laws:
                 test.expectation(law, A)
