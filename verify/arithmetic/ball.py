@@ -20,6 +20,7 @@ from flint import acb, arb, ctx, fmpq
 from verify.arithmetic.beta_series import incomplete_beta
 from verify.arithmetic.enclosure import Enclosure
 from verify.arithmetic.evaluate import evaluate
+from verify.arithmetic.gamma_series import lower_gamma, terms_needed
 from verify.errors import SidecheckError, UndecidedError
 
 Ball = Any
@@ -33,6 +34,9 @@ MOST_REMEMBERED = 64
 
 DIRECT_GAMMA_P = 60
 """Up to this first parameter Arb's lower incomplete gamma function is tried first (it may give up: then it says so)."""
+
+FEW_TERMS, MANY_TERMS = 500, 2_000_000
+"""Terms of the lower incomplete gamma function that are summed at once, and those that are summed where need be."""
 
 EXACT_BINOMIAL = 2000
 """Up to so many trials a binomial coefficient is computed as an integer; beyond, through the gamma function."""
@@ -124,14 +128,23 @@ class Balls:
     def gamma_p(self, a: Any, x: Any) -> Ball:
         """Regularised lower incomplete gamma function P(a, x) = 1 - Q(a, x).
 
-        Arb's own lower function loses all its bits from a = 1000; the difference loses only the bits of the tail's
-        size, which the precision loop makes good. For small a and x it is computed directly.
+        Directly where that is quick: Arb's own function for small a, then a series of positive terms. Else one minus
+        Arb's upper function, and the series after all where that leaves too few bits.
         """
-        if isinstance(a, Fraction | int) and a < DIRECT_GAMMA_P and self.real(x) < self.real(a):
-            direct = self.real(x).gamma_lower(self.real(a), regularized=1)
+        a, x = self.real(a), self.real(x)
+        if not x < a:
+            return 1 - self.gamma_q(a, x)
+        if a < DIRECT_GAMMA_P:
+            direct = x.gamma_lower(a, regularized=1)
             if direct.rel_accuracy_bits() > self.prec // 2:
                 return direct
-        return 1 - self.gamma_q(a, x)
+        terms = terms_needed(a, x, self.prec)
+        if terms > FEW_TERMS:
+            value = 1 - self.gamma_q(a, x)
+            usual = (self.prec + (magnitude(value) or 0)) // 2 - 32
+            if terms > MANY_TERMS or value.rel_accuracy_bits() > max(8, usual):
+                return value
+        return lower_gamma(a, x, self.prec)
 
     def beta_p(self, x: Any, a: Any, b: Any) -> Ball:
         """Regularised incomplete beta function I_x(a, b); see :mod:`verify.arithmetic.beta_series`."""
