@@ -70,7 +70,7 @@ class UndecidedError(SidecheckError):
 
 
 class NotRational(SidecheckError):  # noqa: N818 (a condition, not a mistake)
-    """An exact rational value was asked for where there is none."""
+    """An exact rational value was asked for where there is none, or one too long to be worked out."""
 
 
 def _input_error(wrong: str, right: str, key: str, file: str) -> InputError:

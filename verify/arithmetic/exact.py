@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Callable
 from fractions import Fraction
-from math import comb, factorial
+from math import comb, factorial, prod
 from typing import Any
 
 from flint import arb, ctx, fmpq
@@ -12,6 +12,9 @@ from flint import arb, ctx, fmpq
 from verify.arithmetic.ball import to_enclosure
 from verify.arithmetic.enclosure import Enclosure
 from verify.errors import NotRational
+
+MOST_WORKED_BITS = 4_000_000
+"""Bits of a number that is still worked out exactly."""
 
 MOST_WRITTEN_BITS = 20_000
 """Bits of a fraction that is still handed out exactly; a longer one is enclosed."""
@@ -39,24 +42,27 @@ class Rationals:
             if k.denominator != 1:
                 raise NotRational("a power that is not whole")
             k = k.numerator
+        _short(abs(k) * (x.numerator.bit_length() + x.denominator.bit_length()))
         result: Fraction = x**k
         return result
 
     def factorial(self, k: int) -> Fraction:
         """K! as an exact number."""
+        _short(k * k.bit_length())
         return Fraction(factorial(self._whole(k)))
 
     def binomial(self, N: Any, k: Any) -> Fraction:
         """Binomial coefficient, zero outside 0..N."""
         N, k = self._whole(N), self._whole(k)
+        _short(min(abs(k), abs(N - k)) * N.bit_length())
         return Fraction(comb(N, k)) if k >= 0 else Fraction(0)
 
     def rising(self, r: Any, k: Any) -> Fraction:
         """Rising factorial r (r+1) ... (r+k-1)."""
-        value, start = Fraction(1), self.real(r)
-        for i in range(self._whole(k)):
-            value *= start + i
-        return value
+        start, k = self.real(r), self._whole(k)
+        p, q = start.numerator, start.denominator
+        _short(k * (abs(p) + k * q).bit_length())
+        return Fraction(prod(range(p, p + k * q, q)), q**k)
 
     def function(self, name: str, *args: Any) -> Fraction:
         """Evaluate a named function of a formula, where its value is rational."""
@@ -79,6 +85,12 @@ class Rationals:
         if name.startswith("__"):
             raise AttributeError(name)
         raise NotRational(f"{name} has no rational value")
+
+
+def _short(bits: int) -> None:
+    """Refuse a number that would be too long to work with."""
+    if bits > MOST_WORKED_BITS:
+        raise NotRational("a fraction that would be too long to be worked out")
 
 
 def rationals() -> Rationals:

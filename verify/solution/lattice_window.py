@@ -238,11 +238,14 @@ def _exact_tie(conditions: Conditions, cell: Cell, bits: int) -> Window | tuple[
     """
     if cell[1] - cell[0] > MOST_EXACT_ATOMS:
         return None
+    centre = _exact_centre(conditions, cell, bits)
+    if centre is not None:
+        return centre
     try:
         g1, g2 = exact_fractions(conditions, *cell)
         targets = conditions.targets(rationals())
     except NotRational:
-        return _exact_centre(conditions, cell, bits)
+        return None
     if not (0 <= g1 <= 1 and 0 <= g2 <= 1):
         return _side(g1, conditions.outside) or 0, _side(g2, conditions.outside) or 0
     sides = tuple(Enclosure.of(t) for t in targets)
