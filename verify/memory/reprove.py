@@ -1,7 +1,7 @@
 """Proving a remembered place again: one evaluation, and nothing of it believed before.
 
 What is remembered says only where to look. On a lattice the fractions are computed anew at the remembered precision,
-and both must lie certainly within (0, 1); for a continuous law one interval-Newton step (or, one-sided, a change of
+and both must lie certainly within (0, 1); for a continuous law one step of the proof (or, one-sided, a change of
 sign) must show that the remembered enclosures hold the cutoffs.
 
 The exact test satisfies its side conditions exactly, so an enclosure of one is true as soon as it contains the target.
@@ -12,12 +12,11 @@ Theorem 8.2.
 
 from __future__ import annotations
 
-from typing import Any
-
 from verify.arithmetic.ball import accuracy_bits, around, balls, midpoint, radius, to_enclosure
 from verify.arithmetic.enclosure import Enclosure
 from verify.laws import Law
-from verify.solution.conditions import Conditions, linear_system, solve_two_by_two
+from verify.solution.conditions import Conditions, linear_system
+from verify.solution.continuous_window import Expansion
 from verify.solution.one_sided import Tail, TailProblem, unit
 from verify.solution.precision import accuracy_for
 from verify.solution.window import Window
@@ -48,27 +47,16 @@ def continuous_window(
         kept = [A.interval(c) for c in (c1, c2)]
         if min(accuracy_bits(box) for box in kept) < accuracy_for(digits):
             return None
-        centre, box = [midpoint(box) for box in kept], [around(box, 2 * radius(box)) for box in kept]
-        image = _newton_image(conditions, A, centre, box)
-        if image is None or not all(b.contains_interior(i) for b, i in zip(box, image, strict=True)):
+        first, second = (around(box, 2 * radius(box)) for box in kept)
+        here, box = Expansion.around(conditions, A, (midpoint(first), midpoint(second))), (first, second)
+        image = here.sharpen(box, here.slopes(box), None)
+        if image is None:
             return None
         found = [to_enclosure(i) for i in image]
         inside = all(c.lower <= f.lower and f.upper <= c.upper for c, f in zip((c1, c2), found, strict=True))
         targets = [to_enclosure(target) for target in conditions.targets(A)]
     holds = all(s.lower <= t.lower and t.upper <= s.upper for s, t in zip(sides, targets, strict=True))
     return Window(c1, c2, None, None, sides, prec) if inside and holds else None
-
-
-def _newton_image(conditions: Conditions, A: Any, centre: list[Any], box: list[Any]) -> tuple[Any, Any] | None:
-    """Return m - J(X)^-1 F(m)."""
-    target, whole = conditions.targets(A), conditions.whole(A, *centre)
-    left, right = conditions.unit(A, box[0]), conditions.unit(A, box[1])
-    determinant = left[0] * right[1] - right[0] * left[1]
-    if not determinant.is_finite() or determinant.contains(0):
-        return None
-    first, second = solve_two_by_two(left, right, (target[0] - whole[0], target[1] - whole[1]))
-    sign = 1 if conditions.outside else -1
-    return centre[0] + sign * first, centre[1] - sign * second
 
 
 def lattice_tail(problem: TailProblem, c: int, prec: int, digits: int) -> Tail | None:
