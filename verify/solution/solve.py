@@ -314,7 +314,7 @@ def with_window(
     critical = CriticalFunction("outside" if outside else "inside", window.c1, window.c2, window.phi1, window.phi2)
     return Solution(
         problem, derivation, digits, critical, laws, _two_conditions(problem, window),
-        (*derivation.steps, _numbers_step(laws, window.prec)), window.prec,
+        (*derivation.steps, _numbers_step(laws, window.prec, "3.7.1")), window.prec,
     )  # fmt: skip
 
 
@@ -347,7 +347,7 @@ def with_tail(problem: Problem, derivation: Derivation, laws: tuple[Law, ...], d
     condition = SideCondition(problem.hypothesis.limits[0], problem.levels[0], tail.condition, "phi")
     return Solution(
         problem, derivation, digits, critical, laws, (condition,),
-        (*derivation.steps, _numbers_step(laws, tail.prec)), tail.prec,
+        (*derivation.steps, _numbers_step(laws, tail.prec, "3.4.1")), tail.prec,
     )  # fmt: skip
 
 
@@ -360,16 +360,16 @@ def rejects_above(problem: Problem, derivation: Derivation) -> bool:
     return (derivation.rising == up) == problem.hypothesis.null_below
 
 
-def _numbers_step(laws: tuple[Law, ...], prec: int) -> Step:
+def _numbers_step(laws: tuple[Law, ...], prec: int, theorem: str) -> Step:
     """The step that the solution adds to the ledger."""
     if prec == 0:
         how = "exact rational arithmetic"
     elif laws[0].lattice:
         how = f"ball arithmetic at {prec} bits: both end fractions lie certainly within [0, 1]"
     else:
-        how = f"interval Newton at {prec} bits"
+        how = f"ball arithmetic at {prec} bits: solved for the cutoffs, they map the enclosures into themselves"
     statement = f"The cutoffs and fractions satisfy the side conditions, shown in {how}."
-    reason = "Lehmann and Romano 2005, Theorem 3.7.1: a pair that fits is the only one"
+    reason = f"Lehmann and Romano 2005, Theorem {theorem}: numbers that fit are the only ones"
     if sum_step(laws, prec) is None:
         return Step("numbers", Grade.PROVED, statement, reason)
     within = "as far as intervals around the values of both routes to the law of the sum contain it"
