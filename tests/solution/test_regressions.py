@@ -62,6 +62,8 @@ CONTINUOUS = [
     (DIAMETER, "t = 11/5", f"{10**29 - 1}/{10**29}", 100_000),
     (DELAY, "17/11 <= t <= 1717/11", "8e-164", 100),
     (DELAY, "1000000 <= t <= 101000000", "1e-42", 5),
+    (DELAY, "t <= 1/1000000 or t >= 11/1000000", "99999999/100000000", 10_000_000),
+    (SPREAD, "t >= 1", "1e-186", 10_000_000),
     (DELAY, "397/20 <= t <= 397/10", f"{10**26 - 1}/{10**26}", 4),
 ]
 """Windows that accept almost nothing, and ends that are each far out under one law."""

@@ -98,6 +98,10 @@ class High:
         """Complementary error function."""
         return self.mp.erfc(x)
 
+    def erfcx(self, x: Any) -> Any:
+        """Scaled complementary error function exp(x^2) erfc(x)."""
+        return self.mp.exp(x * x) * self.mp.erfc(x)
+
     def function(self, name: str, *args: Any) -> Any:
         """Evaluate a named function of a formula."""
         return getattr(self.mp, _NAMES.get(name, name))(*args)

@@ -52,10 +52,14 @@ class InverseGaussian(Law):
         return A.sqrt(shape / (2 * A.pi * v)) / v * A.exp(-shape * z * z / (2 * v))
 
     def _ends(self, A: Any, v: Any) -> tuple[Number, Number]:
-        """Return a = sqrt(lambda/v)(v/m - 1) and exp(2 lambda/m) Phi(-sqrt(lambda/v)(v/m + 1))."""
+        """Return a = sqrt(lambda/v)(v/m - 1) and exp(2 lambda/m) Phi(b) with b = -sqrt(lambda/v)(v/m + 1).
+
+        Since b^2 = a^2 + 4 lambda/m, the second is exp(-a^2 / 2) erfcx(-b / sqrt(2)) / 2: no factor of it is huge.
+        """
         m, shape = A.real(self.mean), A.real(self.shape)
         root = A.sqrt(shape / v)
-        return root * (v / m - 1), A.exp(2 * shape / m) * A.erfc(root * (v / m + 1) / A.sqrt(A.real(2))) / 2
+        a = root * (v / m - 1)
+        return a, A.exp(-a * a / 2) * A.erfcx(root * (v / m + 1) / A.sqrt(A.real(2))) / 2
 
     def cdf(self, A: Any, v: Any) -> Number:
         """P(V <= v) = Phi(a) + exp(2 lambda/m) Phi(b)."""
