@@ -15,10 +15,9 @@ from dataclasses import dataclass
 from typing import TYPE_CHECKING, Any, ClassVar
 
 from verify.arithmetic.ball import balls, midpoint
-from verify.arithmetic.evaluate import evaluate
 from verify.arithmetic.polynomial_sum import CUMULATIVE, DENSITY, TWICE
 from verify.laws.base import Number
-from verify.laws.built import BuiltLaw
+from verify.laws.continuous_sum import ContinuousSum, split
 from verify.laws.replaced import Replaced, replaced
 from verify.laws.shape import Shape
 
@@ -31,7 +30,7 @@ ROUNDS = 4
 
 
 @dataclass(frozen=True)
-class SumByConvolution(BuiltLaw):
+class SumByConvolution(ContinuousSum):
     """The law of T(X1) + ... + T(Xn), n > 1, T monotone with an analytic density.
 
     Attributes
@@ -48,54 +47,27 @@ class SumByConvolution(BuiltLaw):
     at: Exact
     n: int
 
-    name: ClassVar[str] = "sum of continuous observations"
     source: ClassVar[str] = "convolution of a polynomial, its error bounded on an ellipse: Trefethen 2013"
-    lattice: ClassVar[bool] = False
-    what: ClassVar[str] = "density"
 
     def require_replaceable(self) -> None:
         """Raise UndecidedError where the density is not shown to be near a polynomial at all."""
         with balls(COARSE_BITS) as A:
             self._replaced(midpoint(self.expectation(A)), COARSE_BITS).degree()
 
-    @property
-    def support(self) -> tuple[Any, Any]:
-        """Ends of the support of V."""
-        low, high = self.one.ends
-        return (None if low is None else self.n * low, None if high is None else self.n * high)
-
     def density(self, A: Any, v: Any) -> Number:
         """Density at v; over a ball, its value in the middle and what the density can change."""
         if self._place(A, v):
             return A.real(0)
-        middle, rest = _split(A, v)
-        return self._read(A, middle, DENSITY, from_low=self._from_low(v), moved=rest)
-
-    def cdf(self, A: Any, v: Any) -> Number:
-        """P(V <= v)."""
-        place = self._place(A, v)
-        if place:
-            return A.real(0 if place < 0 else 1)
-        from_low = self._from_low(v)
-        side = self._side(A, v, from_low=from_low)
-        return side if from_low else 1 - side
-
-    def sf(self, A: Any, v: Any) -> Number:
-        """P(V > v)."""
-        place = self._place(A, v)
-        if place:
-            return A.real(1 if place < 0 else 0)
-        from_low = self._from_low(v)
-        side = self._side(A, v, from_low=from_low)
-        return 1 - side if from_low else side
+        middle, rest = split(A, v)
+        return self._read(A, middle, DENSITY, from_low=not self._from_above(v), moved=rest)
 
     def shortfall(self, A: Any, v: Any) -> Number:
         """E[(m - V); V <= v] = (m - v) P(V <= v) + E[(v - V)+], or the same from the other side."""
         if self._place(A, v):
             return A.real(0)
-        from_low = self._from_low(v)
+        from_low = not self._from_above(v)
         with balls(A.prec + GUARD_BITS) as B:
-            middle, rest = _split(B, v)
+            middle, rest = split(B, v)
             beyond = self.expectation(B) - middle if from_low else middle - self.expectation(B)
             side = self._read(B, middle, CUMULATIVE, from_low=from_low)
             value = beyond * side + self._read(B, middle, TWICE, from_low=from_low)
@@ -103,22 +75,14 @@ class SumByConvolution(BuiltLaw):
                 value += rest * (self.expectation(B) - B.real(v)) * self.density(B, v)
         return value + A.real(0)
 
-    def expectation(self, A: Any) -> Number:
-        """E[V] from the derived log-normaliser."""
-        return self.n * evaluate(self.one.mean, A, {self.one.parameter: A.real(self.at)})
-
-    def spread(self, A: Any) -> Number:
-        """Standard deviation from the derived log-normaliser."""
-        return A.sqrt(self.n * evaluate(self.one.variance, A, {self.one.parameter: A.real(self.at)}))
-
-    def _side(self, A: Any, v: Any, *, from_low: bool) -> Number:
+    def _tail(self, A: Any, v: Any, *, upper: bool) -> Number:
         """P(V <= v) from the low end, P(V > v) from the high end."""
-        middle, rest = _split(A, v)
-        value = self._read(A, middle, CUMULATIVE, from_low=from_low)
+        middle, rest = split(A, v)
+        value = self._read(A, middle, CUMULATIVE, from_low=not upper)
         if rest == 0:
             return value
         change = rest * self.density(A, v)
-        return value + change if from_low else value - change
+        return value - change if upper else value + change
 
     def _read(self, A: Any, v: Number, kind: int, *, from_low: bool, moved: Number | None = None) -> Number:
         """Return a function of the sum at an exact point, with more bits until its relative accuracy suffices."""
@@ -134,24 +98,10 @@ class SumByConvolution(BuiltLaw):
     def _replaced(self, v: Number, bits: int) -> Replaced:
         return replaced(self.one, self.at, self.n, bits, v)
 
-    def _from_low(self, v: Any) -> bool:
-        """Whether to read from the low end: the near one, or the only one there is."""
+    def _from_above(self, v: Any) -> bool:
+        """Whether to read from the high end: the near one, or the only one there is."""
         low, high = self.support
         if (low is None) != (high is None):
-            return low is not None
+            return low is None
         with balls(COARSE_BITS) as A:
-            return bool(midpoint(A.real(v)) < self.expectation(A))
-
-    def _place(self, A: Any, v: Any) -> int:
-        """-1 when v is certainly at or below the support, 1 at or above it, else 0."""
-        low, high = self.support
-        if low is not None and A.real(v) <= A.real(low):
-            return -1
-        return 1 if high is not None and A.real(v) >= A.real(high) else 0
-
-
-def _split(A: Any, v: Any) -> tuple[Number, Number]:
-    """Midpoint of v and what is left."""
-    v = A.real(v)
-    middle = midpoint(v)
-    return (v, A.real(0)) if v.is_exact() else (middle, v - middle)
+            return not midpoint(A.real(v)) < self.expectation(A)

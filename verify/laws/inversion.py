@@ -15,7 +15,7 @@ from verify.arithmetic.evaluate import evaluate
 from verify.arithmetic.inversion import DENSITY, SHORTFALL, SLOPE, TAIL, Inversion, saddle_point
 from verify.arithmetic.transforms import Transform
 from verify.laws.base import Number
-from verify.laws.built import BuiltLaw
+from verify.laws.continuous_sum import ContinuousSum, split
 from verify.laws.shape import Shape
 
 if TYPE_CHECKING:
@@ -26,7 +26,7 @@ COARSE_BITS = 64
 
 
 @dataclass(frozen=True)
-class SumByInversion(BuiltLaw):
+class SumByInversion(ContinuousSum):
     """The law of T(X1) + ... + T(Xn), n > 1.
 
     Attributes
@@ -46,82 +46,39 @@ class SumByInversion(BuiltLaw):
     at: Exact
     n: int
 
-    name: ClassVar[str] = "sum of continuous observations"
     source: ClassVar[str] = "Gil-Pelaez 1951, the cut tail bounded"
-    lattice: ClassVar[bool] = False
-    what: ClassVar[str] = "density"
-
-    @property
-    def support(self) -> tuple[Any, Any]:
-        """Ends of the support of V."""
-        low, high = self.one.ends
-        return (None if low is None else self.n * low, None if high is None else self.n * high)
 
     def density(self, A: Any, v: Any) -> Number:
         """Density at v."""
         if self._place(A, v):
             return A.real(0)
-        return self._invert(A, A.real(v), DENSITY, upper=self._is_high(v))
+        return self._invert(A, A.real(v), DENSITY, upper=self._from_above(v))
 
     def log_slope(self, A: Any, v: Any) -> Number:
         """Derivative of the logarithm of the density."""
-        v, upper = A.real(v), self._is_high(v)
+        v, upper = A.real(v), self._from_above(v)
         return self._invert(A, v, SLOPE, upper=upper) / self._invert(A, v, DENSITY, upper=upper)
-
-    def cdf(self, A: Any, v: Any) -> Number:
-        """P(V <= v): by its own side below the mean, else 1 minus the other."""
-        place = self._place(A, v)
-        if place:
-            return A.real(0 if place < 0 else 1)
-        return 1 - self._tail(A, v, upper=True) if self._is_high(v) else self._tail(A, v, upper=False)
-
-    def sf(self, A: Any, v: Any) -> Number:
-        """P(V > v): by its own side above the mean, else 1 minus the other."""
-        place = self._place(A, v)
-        if place:
-            return A.real(1 if place < 0 else 0)
-        return self._tail(A, v, upper=True) if self._is_high(v) else 1 - self._tail(A, v, upper=False)
 
     def shortfall(self, A: Any, v: Any) -> Number:
         """E[(m - V); V <= v] = E[(V - m); V > v], on the side where the tail is small."""
         if self._place(A, v):
             return A.real(0)
-        middle, rest = self._split(A, v)
-        value = self._invert(A, middle, SHORTFALL, upper=self._is_high(v))
+        middle, rest = split(A, v)
+        value = self._invert(A, middle, SHORTFALL, upper=self._from_above(v))
         if rest == 0:
             return value
         return value + rest * (self.expectation(A) - A.real(v)) * self.density(A, v)
 
-    def expectation(self, A: Any) -> Number:
-        """E[V] from the derived log-normaliser."""
-        return self.n * evaluate(self.one.mean, A, {self.one.parameter: A.real(self.at)})
-
-    def spread(self, A: Any) -> Number:
-        """Standard deviation from the derived log-normaliser."""
-        return A.sqrt(self.n * evaluate(self.one.variance, A, {self.one.parameter: A.real(self.at)}))
-
     def _tail(self, A: Any, v: Any, *, upper: bool) -> Number:
-        middle, rest = self._split(A, v)
+        middle, rest = split(A, v)
         value = self._invert(A, middle, TAIL, upper=upper)
         if rest == 0:
             return value
         change = rest * self.density(A, v)
         return value - change if upper else value + change
 
-    def _split(self, A: Any, v: Any) -> tuple[Number, Number]:
-        """Midpoint of v and what is left: the integrals are taken to the midpoint and moved by the density."""
-        v = A.real(v)
-        middle = midpoint(v)
-        return (v, A.real(0)) if v.is_exact() else (middle, v - middle)
-
-    def _place(self, A: Any, v: Any) -> int:
-        """-1 when v is certainly at or below the support, 1 at or above it, else 0."""
-        low, high = self.support
-        if low is not None and A.real(v) <= A.real(low):
-            return -1
-        return 1 if high is not None and A.real(v) >= A.real(high) else 0
-
-    def _is_high(self, v: Any) -> bool:
+    def _from_above(self, v: Any) -> bool:
+        """Above the mean, where that tail is the smaller one."""
         with balls(COARSE_BITS) as A:
             return bool(midpoint(A.real(v)) > self.expectation(A))
 

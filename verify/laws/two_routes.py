@@ -15,12 +15,11 @@ from fractions import Fraction
 from typing import TYPE_CHECKING, Any, ClassVar
 
 from verify.arithmetic.ball import around, balls, midpoint, radius
-from verify.arithmetic.evaluate import evaluate
 from verify.arithmetic.fourier_series import CUMULATIVE, DENSITY, TWICE
 from verify.laws.base import Number
-from verify.laws.built import BuiltLaw
 from verify.laws.by_density import ByDensity
 from verify.laws.by_normaliser import ByNormaliser
+from verify.laws.continuous_sum import ContinuousSum, split
 from verify.laws.pushed import Frame, frame_of
 from verify.laws.shape import Shape
 
@@ -44,7 +43,7 @@ LOOKS = (Fraction(-9, 10), Fraction(1, 7), Fraction(11, 10))
 
 
 @dataclass(frozen=True)
-class SumByTwoRoutes(BuiltLaw):
+class SumByTwoRoutes(ContinuousSum):
     """The law of T(X1) + ... + T(Xn), n > 1, checked numerically.
 
     Attributes
@@ -64,16 +63,7 @@ class SumByTwoRoutes(BuiltLaw):
     n: int
     why: str = ""
 
-    name: ClassVar[str] = "sum of continuous observations"
     source: ClassVar[str] = "two numerical inversions: Abate and Whitt 1992"
-    lattice: ClassVar[bool] = False
-    what: ClassVar[str] = "density"
-
-    @property
-    def support(self) -> tuple[Any, Any]:
-        """Ends of the support of V."""
-        low, high = self.one.ends
-        return (None if low is None else self.n * low, None if high is None else self.n * high)
 
     def density(self, A: Any, v: Any) -> Number:
         """Density at v; over a ball, from its values at both ends and in the middle."""
@@ -86,22 +76,6 @@ class SumByTwoRoutes(BuiltLaw):
         hull = middle.union(self._shared(A, v.lower(), DENSITY)).union(self._shared(A, v.upper(), DENSITY))
         return around(hull, 2 * radius(hull))
 
-    def cdf(self, A: Any, v: Any) -> Number:
-        """P(V <= v)."""
-        place = self._place(A, v)
-        if place:
-            return A.real(0 if place < 0 else 1)
-        below = self._moved(A, A.real(v), CUMULATIVE)
-        return below if self._frame().sign > 0 else 1 - below
-
-    def sf(self, A: Any, v: Any) -> Number:
-        """P(V > v)."""
-        place = self._place(A, v)
-        if place:
-            return A.real(1 if place < 0 else 0)
-        below = self._moved(A, A.real(v), CUMULATIVE)
-        return 1 - below if self._frame().sign > 0 else below
-
     def shortfall(self, A: Any, v: Any) -> Number:
         """E[(m - V); V <= v] = (m - v) P(V <= v) + E (v - V)+."""
         if self._place(A, v):
@@ -112,26 +86,21 @@ class SumByTwoRoutes(BuiltLaw):
         value = beyond * self._shared(A, middle, CUMULATIVE) + self._shared(A, middle, TWICE)
         return value if v.is_exact() else value + (v - middle) * (mean - v) * self.density(A, v)
 
-    def expectation(self, A: Any) -> Number:
-        """E[V] from the derived log-normaliser."""
-        return self.n * evaluate(self.one.mean, A, {self.one.parameter: A.real(self.at)})
-
-    def spread(self, A: Any) -> Number:
-        """Standard deviation from the derived log-normaliser."""
-        return A.sqrt(self.n * evaluate(self.one.variance, A, {self.one.parameter: A.real(self.at)}))
-
     def shared_digits(self, prec: int) -> int:
         """Digits that the two routes share where they are compared for the law as a whole, at some precision."""
         with balls(2 * MOST_BITS) as A:
             apart = self._apart(A, _bits(prec))
             return max(0, int(-float(apart.log().mid()) / LOG_TEN)) if apart > 0 else 0
 
-    def _moved(self, A: Any, v: Number, order: int) -> Number:
-        """P(U <= u) over a ball: in the middle, and what the density adds."""
-        value = self._shared(A, midpoint(v), order)
-        if v.is_exact():
-            return value
-        return value + self._frame().sign * (v - midpoint(v)) * self.density(A, v)
+    def _from_above(self, v: Any) -> bool:
+        """Whether U is measured from the high end."""
+        return self._frame().sign < 0
+
+    def _tail(self, A: Any, v: Any, *, upper: bool) -> Number:
+        """P(U <= u); over a ball, in the middle, and what the density adds."""
+        middle, rest = split(A, v)
+        value = self._shared(A, middle, CUMULATIVE)
+        return value if rest == 0 else value + self._frame().sign * rest * self.density(A, v)
 
     def _shared(self, A: Any, v: Number, order: int) -> Number:
         """What the two routes share at an exact point: an interval around both, widened."""
@@ -192,13 +161,6 @@ class SumByTwoRoutes(BuiltLaw):
             self.one.cache[key] = frame_of(self.one, self.at, bits + GUARD_BITS)
         found: Frame = self.one.cache[key]
         return found
-
-    def _place(self, A: Any, v: Any) -> int:
-        """-1 when v is certainly at or below the support, 1 at or above it, else 0."""
-        low, high = self.support
-        if low is not None and A.real(v) <= A.real(low):
-            return -1
-        return 1 if high is not None and A.real(v) >= A.real(high) else 0
 
 
 def _bits(prec: int) -> int:
