@@ -15,7 +15,7 @@ from verify.errors import InputError
 from verify.problem.hypothesis import Form
 from verify.solution.solve import solve
 from verify.strategies import FAMILIES, LAWS, problems
-from verify.strategies.ties import mass
+from verify.strategies.ties import beside, mass
 
 derivation = cache(derive)
 
@@ -110,3 +110,10 @@ def test_without_hypothesis_the_message_says_what_to_install():
     )
     done = subprocess.run([sys.executable, "-c", code], capture_output=True, text=True, check=True)
     assert done.stdout.startswith("verify.strategies needs Hypothesis, which is not installed; run pip install ")
+
+
+@pytest.mark.parametrize("level", [Fraction(1, 10**30), 1 - Fraction(1, 10**30), Fraction(1, 2)])
+@pytest.mark.parametrize("share", [Fraction(1, 10**17), Fraction(-1, 10**17)])
+def test_a_level_beside_a_tie_is_a_level(level, share):
+    assert 0 < beside(level, share) < 1
+    assert beside(level, share) != level

@@ -38,8 +38,19 @@ def tie(draw: st.DrawFn, family: Family, form: Form) -> tuple[str, str, int]:
     low, high = (Fraction(1, 2), Fraction(1, 2)) if form is Form.POINT else (p, 1 - p)
     below = draw(st.booleans())
     level = _level(draw, form, trials, low, below)
-    beside = draw(st.sampled_from([Fraction(0)] * 3 + [Fraction(1, 10**17), Fraction(-1, 10**17), Fraction(1, 10**40)]))
-    return null_text(form, *(_of(family, q) for q in (low, high)), below=below), str(level * (1 + beside)), n
+    share = draw(st.sampled_from([Fraction(0)] * 3 + [Fraction(1, 10**17), Fraction(-1, 10**17), Fraction(1, 10**40)]))
+    return null_text(form, *(_of(family, q) for q in (low, high)), below=below), str(beside(level, share)), n
+
+
+def beside(level: Fraction, share: Fraction) -> Fraction:
+    """Move a level by a share of its distance from 0 or 1, the nearer one: it stays a level.
+
+    Examples
+    --------
+    >>> beside(Fraction(3, 4), Fraction(1, 10))
+    Fraction(31, 40)
+    """
+    return level + share * min(level, 1 - level)
 
 
 def _of(family: Family, p: Fraction) -> str:
