@@ -154,6 +154,8 @@ def _outcome(call: Callable[[], Any]) -> Outcome:
             value = call()
     except NotAttempted as reason:
         return Outcome(not_attempted=str(reason), seconds=time.monotonic() - begun)
+    except SidecheckError as error:
+        return Outcome(failure=str(error)[:300], seconds=time.monotonic() - begun)
     except Exception as error:  # any failure of a library is an outcome to report
         text = f"{type(error).__name__}: {error}".replace("\n", " ")[:300]
         return Outcome(failure=text, seconds=time.monotonic() - begun)

@@ -14,7 +14,7 @@ def comparison_text(comparison: Comparison) -> str:
     """Return the fourth section of a report."""
     opinions = comparison.opinions
     lines = [heading(4, "Compared with double precision"), table(_opinion_rows(comparison))]
-    lines.append("  (expectation: what the route makes of the side condition of the proved test)")
+    lines.append("  (expectation: what the route makes of the side condition of this test)")
     remarks = [(opinion.route, opinion.failure or opinion.note) for opinion in opinions]
     lines += [wrapped(text, first=f"  {route}: ", rest="    ") for route, text in remarks if text]
     lines.append(wrapped(_engine_line(comparison), first="  mpmath: ", rest="    "))
