@@ -157,7 +157,7 @@ def _outcome(call: Callable[[], Any]) -> Outcome:
     except SidecheckError as error:
         return Outcome(failure=str(error)[:300], seconds=time.monotonic() - begun)
     except Exception as error:  # any failure of a library is an outcome to report
-        name = "" if type(error) is ArithmeticError else f"{type(error).__name__}: "  # the routes' own word for no answer
+        name = "" if type(error) is ArithmeticError else f"{type(error).__name__}: "  # the routes' own has no name
         text = f"{name}{error}".replace("\n", " ")[:300]
         return Outcome(failure=text, seconds=time.monotonic() - begun)
     return Outcome(value=value, seconds=time.monotonic() - begun)

@@ -82,9 +82,12 @@ class Atoms:
         """Whether some lattice points between the first and the last have no mass."""
         if self.first is None or self.last is None or (self.places is None and self.table is None):
             return False
-        return not all(self._has(y) for y in range(self.first, self.last + 1))
+        return not all(self.has(y) for y in range(self.first, self.last + 1))
 
-    def _has(self, y: int) -> bool:
+    def has(self, y: int) -> bool:
+        """Whether one observation can be y, as far as its support and its table say."""
+        if (self.first is not None and y < self.first) or (self.last is not None and y > self.last):
+            return False
         return (self.table is None or bool(self.table.get(y))) and (self.places is None or bool(self.places.get(y)))
 
     def sum_points(self, n: int) -> int:
@@ -93,7 +96,7 @@ class Atoms:
             raise ValueError("only a finite support has its points listed")
         known: dict[int, int] = self.cache.setdefault("sum points", {})
         if n not in known:
-            steps = [y - self.first for y in range(self.first, self.last + 1) if self._has(y)]
+            steps = [y - self.first for y in range(self.first, self.last + 1) if self.has(y)]
             reached = 1
             for _ in range(n):
                 shifted = [reached << step for step in steps]

@@ -59,6 +59,22 @@ class MultiplicativeSum(BuiltLaw):
         first, last = self.one.first or 1, self.one.last
         return first**self.n, None if last is None else last**self.n
 
+    def atom(self, v: int, direction: int) -> int:
+        """First product at v or beyond it in a direction; points off the support are returned as they are."""
+        while v >= self.support[0] and not self._beyond(v, strictly=True) and not self._reached(v):
+            v += direction
+        return v
+
+    def _reached(self, v: int) -> bool:
+        """Whether n whole numbers of the observation multiply to v (exact)."""
+        if self.one.first == 1 and self.one.has(v):
+            return True
+        known: list[int] = self.one.cache.get(("reached", self.n), [])
+        if len(known) < v:
+            points = range(1, self._length(v) + 1)
+            known = self.one.cache["reached", self.n] = product_power([int(self.one.has(m)) for m in points], self.n)
+        return known[v - 1] > 0
+
     def value(self, A: Any, v: int) -> Number:
         """The value of V at the point v: its logarithm."""
         return A.log(A.real(v))
@@ -98,15 +114,50 @@ class MultiplicativeSum(BuiltLaw):
         return sums
 
     def expectation(self, A: Any) -> Number:
-        """E[V] from the derived log-normaliser."""
-        return self.n * self._moment(A, self.one.mean)
+        """E[V], from the derived log-normaliser or the masses of a finite support."""
+        return self.n * self._moment(A, 0)
 
     def spread(self, A: Any) -> Number:
-        """Standard deviation of V from the derived log-normaliser."""
-        return A.sqrt(self.n * self._moment(A, self.one.variance))
+        """Standard deviation of V, from the derived log-normaliser or the masses of a finite support."""
+        return A.sqrt(self.n * self._moment(A, 1))
 
-    def _moment(self, A: Any, expr: Any) -> Number:
+    def _moment(self, A: Any, which: int) -> Number:
+        expr = (self.one.mean, self.one.variance)[which]
+        if expr is None:
+            return self._finite_moments(A)[which]
         return evaluate(expr, A, {self.one.parameter: A.real(self.at)})
+
+    def _finite_moments(self, A: Any) -> tuple[Number, Number]:
+        key = ("log moments", A.prec, self.at)
+        if key not in self.one.cache:
+            masses = self._masses(A, self.at, self._last(self.one.last))
+            weighted = [(A.log(A.real(m)), mass) for m, mass in enumerate(masses, start=1) if self.one.has(m)]
+            mean = sum((log * mass for log, mass in weighted), A.real(0))
+            self.one.cache[key] = mean, sum(((log - mean) * (log - mean) * mass for log, mass in weighted), A.real(0))
+        found: tuple[Number, Number] = self.one.cache[key]
+        return found
+
+    def _last(self, last: int) -> int:
+        if last > MAX_NUMBER:
+            raise UndecidedError(f"the whole numbers of one observation reach {last} (at most {MAX_NUMBER} are listed)")
+        return last
+
+    def _masses(self, A: Any, at: Exact, length: int) -> list[Number]:
+        """Masses of one observation at 1, ..., length: nothing off its support, a kernel divided by its sum."""
+        one = self.one
+        masses = [one.masses(A, at, m, m)[0] if one.has(m) else A.real(0) for m in range(1, length + 1)]
+        if one.normalised:
+            return masses
+        total = self._total(A, at)
+        return [mass / total for mass in masses]
+
+    def _total(self, A: Any, at: Exact) -> Number:
+        """Sum of a kernel over its support."""
+        one, key = self.one, ("total", A.prec, at)
+        if key not in one.cache:
+            points = range(one.first or 1, self._last(one.last) + 1)
+            one.cache[key] = sum((one.masses(A, at, m, m)[0] for m in points if one.has(m)), A.real(0))
+        return one.cache[key]
 
     def _beyond(self, v: int, *, strictly: bool = False) -> bool:
         last = self.support[1]
@@ -122,11 +173,7 @@ class MultiplicativeSum(BuiltLaw):
         return known
 
     def _build(self, prec: int, v: int) -> Table:
-        if v > MAX_NUMBER:
-            raise UndecidedError(
-                f"the table of products would reach {v} (at most {MAX_NUMBER}); a lighter tail or smaller n would help"
-            )
-        length = min(MAX_NUMBER, max(64, 1 << (v + v // 4).bit_length()))
+        length = self._length(v)
         base = self.one.cache.setdefault("base", self.at)
         with balls(prec + GUARD_BITS + 2 * self.n.bit_length()) as A:
             powers = self._powers(A, base, length)
@@ -140,22 +187,29 @@ class MultiplicativeSum(BuiltLaw):
             ]
             return Table(1, raw, 1, complete=False)
 
+    def _length(self, v: int) -> int:
+        if v > MAX_NUMBER:
+            raise UndecidedError(
+                f"the table of products would reach {v} (at most {MAX_NUMBER}); a lighter tail or smaller n would help"
+            )
+        return min(MAX_NUMBER, max(64, 1 << (v + v // 4).bit_length()))
+
     def _powers(self, A: Any, base: Exact, length: int) -> list[Number]:
         key = ("product powers", A.prec, self.n)
         if len(self.one.cache.get(key, [])) < length:
-            masses = self.one.masses(A, base, 1, length)
-            self.one.cache[key] = product_power(masses, self.n)
+            self.one.cache[key] = product_power(self._masses(A, base, length), self.n)
         found: list[Number] = self.one.cache[key]
         return found[:length]
 
     def _tilt(self, A: Any, base: Exact) -> tuple[Number, Number]:
         """Return (C, e) with mass(m; at) = C * m**e * mass(m; base)."""
+        share = A.real(1) if self.one.normalised else self._total(A, base) / self._total(A, self.at)
         found: list[tuple[int, Number]] = []
         m = self.one.first or 1
         while len(found) < 2:
             low, high = self.one.masses(A, base, m, m)[0], self.one.masses(A, self.at, m, m)[0]
-            if low > 0 and high > 0:
-                found.append((m, high / low))
+            if self.one.has(m) and low > 0 and high > 0:
+                found.append((m, share * high / low))
             m += 1
         (m0, r0), (m1, r1) = found
         step = A.log(A.real(m1)) - A.log(A.real(m0))
