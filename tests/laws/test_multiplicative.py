@@ -2,6 +2,8 @@
 
 from fractions import Fraction
 from itertools import product
+from math import prod
+from typing import Any
 
 import mpmath
 import pytest
@@ -50,3 +52,41 @@ def test_moments_agree_with_mpmath() -> None:
 def test_a_tail_too_far_out_is_undecided() -> None:
     with balls(64) as A, pytest.raises(UndecidedError, match="table of products"):
         MultiplicativeSum(ZETA, Fraction(3), 2).cdf(A, 10**7)
+
+
+@pytest.mark.parametrize("at", [Fraction(0), Fraction(3, 2)])
+def test_a_kernel_on_a_finite_support_equals_brute_force(at: Fraction) -> None:
+    """Masses are divided by their sum, and those of one parameter value come from those of another."""
+    one = Atoms(sp.Integer(1), x ** (-s), "x", "s", 2, 6, normalised=False)
+    mpmath.mp.dps = 40
+    weights = {m: mpmath.power(m, -mpmath.mpf(at.numerator) / at.denominator) for m in range(2, 7)}
+    masses: dict[int, mpmath.mpf] = {}
+    for a, b in product(weights, repeat=2):
+        masses[a * b] = masses.get(a * b, 0) + weights[a] * weights[b] / sum(weights.values()) ** 2
+    mean = sum(mass * mpmath.log(m) for m, mass in masses.items())
+    spread = mpmath.sqrt(sum(mass * (mpmath.log(m) - mean) ** 2 for m, mass in masses.items()))
+    law, other = MultiplicativeSum(one, at, 2), MultiplicativeSum(one, Fraction(1, 3), 2)
+    with balls(120) as A:
+        other.cdf(A, 9)
+        for v in range(1, 40):
+            below = sum(mass for m, mass in masses.items() if m <= v)
+            part = sum(mass * (mean - mpmath.log(m)) for m, mass in masses.items() if m <= v)
+            assert _near(law.density(A, v), masses.get(v, 0))
+            assert _near(law.cdf(A, v), below)
+            assert _near(law.shortfall(A, v), part if v < 36 else 0)
+        assert _near(law.expectation(A), mean)
+        assert _near(law.spread(A), spread)
+
+
+def _near(ball: Any, wanted: Any) -> bool:
+    return bool(abs(mpmath.mpf(ball.str(32, radius=False)) - wanted) < mpmath.mpf(10) ** -28)
+
+
+@pytest.mark.parametrize(("first", "last", "n"), [(2, None, 2), (1, 6, 2), (3, 5, 3), (1, None, 3)])
+def test_atoms_are_the_products_that_can_occur(first: int, last: int | None, n: int) -> None:
+    law = MultiplicativeSum(Atoms(sp.Integer(1), x ** (-s), "x", "s", first, last), Fraction(3), n)
+    end = 64 if last is None else last**n
+    reached = {prod(ms) for ms in product(range(first, (last or end) + 1), repeat=n)}
+    for v in range(first**n, end + 1):
+        assert law.atom(v, -1) == max(m for m in reached if m <= v)
+        assert law.atom(v, 1) == min(m for m in reached if m >= v)

@@ -130,16 +130,19 @@ class MultiplicativeSum(BuiltLaw):
     def _finite_moments(self, A: Any) -> tuple[Number, Number]:
         key = ("log moments", A.prec, self.at)
         if key not in self.one.cache:
-            masses = self._masses(A, self.at, self._last(self.one.last))
+            masses = self._masses(A, self.at, self._last())
             weighted = [(A.log(A.real(m)), mass) for m, mass in enumerate(masses, start=1) if self.one.has(m)]
             mean = sum((log * mass for log, mass in weighted), A.real(0))
             self.one.cache[key] = mean, sum(((log - mean) * (log - mean) * mass for log, mass in weighted), A.real(0))
         found: tuple[Number, Number] = self.one.cache[key]
         return found
 
-    def _last(self, last: int) -> int:
-        if last > MAX_NUMBER:
-            raise UndecidedError(f"the whole numbers of one observation reach {last} (at most {MAX_NUMBER} are listed)")
+    def _last(self) -> int:
+        """Largest number of one observation."""
+        last = self.one.last
+        if last is None or last > MAX_NUMBER:
+            end = "without end" if last is None else f"up to {last}"
+            raise UndecidedError(f"the whole numbers of one observation go {end} (at most {MAX_NUMBER} are listed)")
         return last
 
     def _masses(self, A: Any, at: Exact, length: int) -> list[Number]:
@@ -155,9 +158,10 @@ class MultiplicativeSum(BuiltLaw):
         """Sum of a kernel over its support."""
         one, key = self.one, ("total", A.prec, at)
         if key not in one.cache:
-            points = range(one.first or 1, self._last(one.last) + 1)
+            points = range(one.first or 1, self._last() + 1)
             one.cache[key] = sum((one.masses(A, at, m, m)[0] for m in points if one.has(m)), A.real(0))
-        return one.cache[key]
+        total: Number = one.cache[key]
+        return total
 
     def _beyond(self, v: int, *, strictly: bool = False) -> bool:
         last = self.support[1]
