@@ -46,10 +46,11 @@ class Rationals:
         result: Fraction = x**k
         return result
 
-    def factorial(self, k: int) -> Fraction:
+    def factorial(self, k: Any) -> Fraction:
         """K! as an exact number."""
+        k = self._whole(k)
         _short(k * k.bit_length())
-        return Fraction(factorial(self._whole(k)))
+        return Fraction(factorial(k))
 
     def binomial(self, N: Any, k: Any) -> Fraction:
         """Binomial coefficient, zero outside 0..N."""
