@@ -56,6 +56,18 @@ def test_optimality_is_claimed_only_as_far_as_monotonicity_was_shown() -> None:
     assert claim in " ".join(solution_text(weak).split())
 
 
+def test_digits_of_a_density_that_was_only_checked_say_what_they_lean_on() -> None:
+    density = Density("t*exp(-t*x)", variable="x", support="reals > 0", parameter="t", space="t > 0")
+    solution = solve(Problem(density, null="t = 1", alpha="0.05", n=4), digits=15)
+    assert "Leans on" not in solution_text(solution)
+    steps = solution.derivation.steps
+    weaker = tuple(replace(step, grade=Grade.CHECKED) if step.name == "normalisation" else step for step in steps)
+    weak = replace(solution, derivation=replace(solution.derivation, steps=weaker))
+    assert "Leans on the density as written: its normalisation, only checked numerically above" in " ".join(
+        solution_text(weak).split()
+    )
+
+
 def test_controls_in_a_title_are_shown_not_obeyed() -> None:
     text = text_of("t*exp(-t*x)", "reals > 0", "t > 0", "t <= 1", title="\\u001b[2Jnew")
     assert text.startswith("[U+001B][2Jnew")

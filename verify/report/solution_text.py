@@ -39,6 +39,7 @@ def solution_text(solution: Solution) -> str:
         heading(3, f"Solved to {solution.digits} digits", solution.grade.value),
         field("Optimal", _optimality(solution)),
         *_direction(solution),
+        *_footing(solution),
         *cutoff_lines(solution),
     ]
     return "\n".join([*lines, "", *equation_lines(solution)])
@@ -66,6 +67,16 @@ def _direction(solution: Solution) -> list[str]:
     side, size = ("larger" if solution.problem.hypothesis.null_below else "smaller"), solution.rejects == "above"
     return [field("Side", f"Q({t}) is {'increasing' if up else 'decreasing'}, so a {side} {t} makes V stochastically "
                   f"{'larger' if size else 'smaller'}")]  # fmt: skip
+
+
+def _footing(solution: Solution) -> list[str]:
+    """Say that the digits are those of the density as written, where it was not proved to be one."""
+    names = ("nonnegativity", "normalisation")
+    open_ = [step.name for step in solution.derivation.steps if step.name in names and step.grade is Grade.CHECKED]
+    if not open_:
+        return []
+    return [field("Leans on", f"the density as written: its {' and '.join(open_)}, only checked numerically above, "
+                  "may hold to fewer digits than are shown here")]  # fmt: skip
 
 
 def _rule(solution: Solution) -> str:
