@@ -60,6 +60,11 @@ FAMILIES: dict[str, tuple[dict[str, object], tuple[str, str], int]] = {
         ("5/2", "4"),
         4,
     ),
+    "zeta cut off": (
+        {"kernel": "x**(-t)", "support": "integers 2..7", "space": "reals"},
+        ("1/2", "2"),
+        3,
+    ),
     "von Mises": (
         {"formula": "exp(t*cos(x))/(2*pi*besseli(0,t))", "support": "reals in (-pi, pi)", "space": "t > 0"},
         ("1", "2"),
