@@ -228,3 +228,19 @@ def test_a_signature_holds_for_these_bytes_only(produced: dict[str, Certificate]
         verify_signature(b"{}", data, public)
     with pytest.raises(InputError):
         sign(data, public)
+
+
+def test_a_continuous_cutoff_of_0_has_no_significant_digit_and_gets_no_certificate() -> None:
+    """For alpha = 1/2 the cutoff is n times the limit, by symmetry: 0 here, and n one unit further on."""
+
+    def asked(origin: str) -> verify.Problem:
+        formula = f"exp(-(x-{origin}-mu)**2/2)/sqrt(2*pi)"
+        density = verify.Density(formula, variable="x", support="reals", parameter="mu", space="reals")
+        return verify.Problem(density, null="mu <= 0", alpha="1/2", n=3)
+
+    with pytest.raises(UndecidedError, match=r"the cutoff c is 0 .* significant digits, and 0 has none; .* origin"):
+        certify(asked("0"), digits=20)
+    moved = certify(asked("1"), digits=20)
+    claimed = moved.predicate["test"]["c"]
+    assert Fraction(claimed["lower"]) < 3 < Fraction(claimed["upper"])
+    assert moved.recheck().status == 0

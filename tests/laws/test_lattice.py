@@ -8,6 +8,7 @@ import mpmath
 import pytest
 import sympy as sp
 
+from verify import Density, Problem, derive, solve
 from verify.arithmetic.ball import balls, to_enclosure
 from verify.arithmetic.exact import rationals
 from verify.errors import NotRational
@@ -54,10 +55,7 @@ def skellam(size: int) -> Atoms:
 
 
 def brute_force(trials: int, p: Fraction, n: int) -> dict[int, Fraction]:
-    one = {
-        k: comb(trials, k) * p**k * (1 - p) ** (trials - k) / (1 - (1 - p) ** trials)
-        for k in range(1, trials + 1)
-    }
+    one = {k: comb(trials, k) * p**k * (1 - p) ** (trials - k) / (1 - (1 - p) ** trials) for k in range(1, trials + 1)}
     out: dict[int, Fraction] = {}
     for ks in product(one, repeat=n):
         mass = Fraction(1)
@@ -150,9 +148,7 @@ def test_two_sided_lattice_agrees_with_mpmath() -> None:
 
 
 def test_poisson_through_the_general_route_agrees_with_the_closed_form() -> None:
-    one = Atoms(
-        sp.exp(-t), t**x / sp.factorial(x), "x", "t", 0, None, space=(Fraction(0), None), mean=t, variance=t
-    )
+    one = Atoms(sp.exp(-t), t**x / sp.factorial(x), "x", "t", 0, None, space=(Fraction(0), None), mean=t, variance=t)
     with balls(180) as A:
         for at in (Fraction(8), Fraction(12)):
             general, closed = LatticeSum(one, at, 10), Poisson(at * 10)
@@ -174,9 +170,7 @@ def test_kernel_is_divided_by_its_sum_and_matches_the_hypergeometric_law() -> No
 
 def test_table_of_weights_with_a_gap() -> None:
     table = {0: Fraction(1), 1: Fraction(4), 2: Fraction(2), 4: Fraction(3)}
-    law = LatticeSum(
-        Atoms(sp.Integer(1), t**x, "x", "t", 0, 4, normalised=False, table=table), Fraction(2), 1
-    )
+    law = LatticeSum(Atoms(sp.Integer(1), t**x, "x", "t", 0, 4, normalised=False, table=table), Fraction(2), 1)
     total = 1 + 8 + 8 + 48
     assert [law.density(rationals(), v) * total for v in range(5)] == [1, 8, 8, 0, 48]
 
@@ -194,3 +188,28 @@ def test_a_cut_that_is_too_early_would_be_seen() -> None:
     assert far.contains(0)
     assert far.upper() < 1e-30
     assert far.upper() > 0
+
+
+def test_a_table_of_weights_reads_in_words() -> None:
+    density = Density(
+        weights=["1", "3", "5/2"], variable="x", support="integers 0..2", parameter="theta", space="theta > 0"
+    )
+    derivation = derive(density)
+    law = "P(X = x) proportional to theta**x times the weights 1, 3, 5/2"
+    assert derivation.family.text(n=3) == f"a sum of 3 independent terms, each from one observation with {law}"
+    assert str(derivation.family.at(Fraction(2), 1)) == f"one term, from one observation with {law}, at theta = 2"
+    (step,) = (step for step in derivation.steps if step.name == "factorisation")
+    assert "h(x) = the weight of x" in step.statement
+
+
+def test_moments_that_need_many_bits_do_not_stop_a_search() -> None:
+    """Theta**(x**2) on 0..40 spans 2500 bits; at theta = 3 all mass but 1e-30 is at the top, so the cutoff is there."""
+    density = Density(
+        kernel="theta**(x**2)*gamma(x+1/3)",
+        variable="x",
+        support="integers 0..40",
+        parameter="theta",
+        space="theta > 0",
+    )
+    solution = solve(Problem(density, null="theta <= 3", alpha="0.05", n=2), digits=15)
+    assert (solution.c.lower, solution.c.upper) == (2 * 40**2, 2 * 40**2)

@@ -12,7 +12,7 @@ from typing import TYPE_CHECKING, Any
 from verify.certificate import recheck as checker
 from verify.certificate.build import GUARD_DIGITS, Subject, build_statement, canonical
 from verify.certificate.write import Paths, write_certificate
-from verify.errors import InputError
+from verify.errors import InputError, UndecidedError
 
 if TYPE_CHECKING:
     from verify.problem.casefile import Case
@@ -128,7 +128,8 @@ def certify(
     InputError
         For digits or a tolerance out of range.
     UndecidedError
-        When the solution or a step of the derivation is open.
+        When the solution or a step of the derivation is open, or a cutoff of a continuous law is 0 or cannot be told
+        from 0.
 
     Examples
     --------
@@ -146,6 +147,7 @@ def certify(
         raise InputError(f"{digits} digits", "ask for 2 to 1000", key="digits")
     allowed = _tolerance(tolerance)
     solved = solution or solve(problem, digits=max(15, digits + GUARD_DIGITS))
+    _require_significant(solved)
     subject = Subject() if case is None else Subject(Path(case.path).name, case.sha256, case.title, case.source)
     statement = build_statement(
         solved,
@@ -156,6 +158,20 @@ def certify(
         issued=issued or _epoch(),
     )
     return Certificate("certificate" if case is None else case.name, statement, canonical(statement))
+
+
+def _require_significant(solution: Solution) -> None:
+    """Refuse a cutoff that has no significant digit: 0, or enclosed together with 0 (continuous laws only)."""
+    if solution.laws[0].lattice:
+        return
+    for name in ("c", "c1", "c2"):
+        value = getattr(solution, name)
+        if value is not None and value.lower <= 0 <= value.upper:
+            raise UndecidedError(
+                f"no certificate: the cutoff {name} is 0 or too near 0 to be told from it; a certificate states "
+                "significant digits, and 0 has none; measure the observation from another origin, such as x - 1 in "
+                "the density in place of x, or choose another level"
+            )
 
 
 def _tolerance(value: Fraction | str) -> Fraction:

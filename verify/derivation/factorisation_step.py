@@ -51,7 +51,8 @@ def factorisation_step(density: Density) -> tuple[Step, Factorisation | None]:
 
 def _proved(density: Density, found: Factorisation, reason: str = REASON) -> tuple[Step, Factorisation]:
     t = density.t
-    parts = f"T(x) = {found.statistic}, Q({t}) = {found.natural_parameter}, h(x) = {found.base}"
+    base = found.base if density.table is None else f"the weight of {density.variable}"
+    parts = f"T(x) = {found.statistic}, Q({t}) = {found.natural_parameter}, h(x) = {base}"
     if density.is_kernel:
         statement = f"the kernel is h(x) exp(Q T - B) with {parts}, B({t}) = {found.log_normaliser}"
     else:

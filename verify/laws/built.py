@@ -36,6 +36,14 @@ class BuiltLaw(Law):
         """The formula of one observation as text, the parameter's value and the number of observations."""
         return {self.what: self.one.text, self.one.parameter: self.at, "n": self.n}
 
+    def __str__(self) -> str:
+        whose = f"P({self.one.variable.upper()} = {self.one.variable})" if self.what == "mass" else self.what
+        how = "=" if getattr(self.one, "normalised", True) else "proportional to"
+        terms = "one term" if self.n == 1 else f"a sum of {self.n} independent terms"
+        where = "" if str(self.at) == self.one.parameter else f", at {self.one.parameter} = {self.at}"
+        each = "each from" if self.n != 1 else "from"
+        return f"{terms}, {each} one observation with {whose} {how} {self.one.text}{where}"
+
     def map_parameters(self, change: Any) -> Self:
         """Return the law with ``change`` applied to the parameter value."""
         changed: Self = replace(cast(Any, self), at=change(self.at))

@@ -69,19 +69,24 @@ def rough_laws(laws: tuple[Law, ...]) -> tuple[tuple[Rough, ...], int, bool]:
     Raises
     ------
     UndecidedError
-        When the two laws cannot be told apart.
+        When the moments cannot be enclosed, or the two laws cannot be told apart.
     """
     bits = 64
     while bits <= MOST_CLOSENESS:
         with balls(bits) as A:
             moments = [(law.expectation(A), law.spread(A)) for law in laws]
             rough = tuple(Rough(float(m.mid()), float(s.mid())) for m, s in moments)
+            if not all(math.isfinite(law.mean) and math.isfinite(law.spread) for law in rough):
+                bits *= 2
+                continue
             if len(laws) == 1:
                 return rough, 0, True
             gap = (moments[1][0] - moments[0][0]) / moments[0][1]
             if gap > 0 or gap < 0:
                 return rough, max(0, -(magnitude(gap) or 0)), bool(gap > 0)
         bits *= 2
+    if len(laws) == 1:
+        raise UndecidedError("the mean and the standard deviation of the law at the limit cannot be enclosed")
     raise UndecidedError("the laws at the two limits cannot be told apart")
 
 
