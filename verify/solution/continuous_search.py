@@ -24,7 +24,7 @@ from verify.solution.window import WindowSearch
 MOST_STEPS = 60
 NOISE_BITS = 40
 """A step that may be 0 counts as settled below this share of the window's width."""
-FEW_SCALES = 8.0
+FEW_SCALES = 2.0
 """Longest step outward into a falling density, in lengths over which it falls by a factor e."""
 
 Ends = tuple[Any, Any]
