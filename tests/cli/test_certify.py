@@ -108,6 +108,14 @@ def test_nothing_is_overwritten_without_force(tmp_path: Path, capsys: pytest.Cap
     assert contents(tmp_path) != before
 
 
+def test_what_the_checker_leaves_open_is_written_and_told(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
+    """Its limit of work: a mean of 1e14."""
+    case = ROOT / "casebook" / "numerics" / "huge-poisson.case.toml"
+    assert certify(case, "-o", tmp_path / "out", "--no-pdf") == 3
+    assert "huge-poisson: UNDECIDED" in capsys.readouterr().err
+    assert (tmp_path / "out" / "huge-poisson.cert.json").is_file()
+
+
 def test_a_bundle_has_an_overview(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
     assert certify(LOT, TARGET, "-o", tmp_path, "--json") == 0
     said = json.loads(capsys.readouterr().out)

@@ -155,3 +155,14 @@ def test_a_step_whose_budget_is_spent_is_undecided_and_the_rest_goes_on():
     derivation = derive(density, budget=0.0)
     assert derivation.grade is Grade.UNDECIDED
     assert "budget of 0 s" in derivation.steps[0].reason
+
+
+def test_a_number_that_cannot_be_used_leaves_its_step_open():
+    """The variance at 0+ is a complex infinity to SymPy: no complaint about the user's input."""
+    density = Density(
+        "exp(-t*x**3 - sin(x)**2)/(1+t)", variable="x", support="reals > 0", parameter="t", space="t > 0"
+    )
+    found = derive(density)
+    law = next(step for step in found.steps if step.name == "law")
+    assert law.grade is Grade.UNDECIDED
+    assert "cannot be used" in law.reason

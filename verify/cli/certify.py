@@ -50,7 +50,8 @@ def add(parser: argparse.ArgumentParser) -> None:
 def run(args: argparse.Namespace) -> int:
     """Certify every case, recheck what was made, and write all files together; several cases make a bundle.
 
-    Nothing is written unless every case has its certificate.
+    Nothing is written unless every case has its certificate. A certificate that the checker leaves open (its limit of
+    work) makes the exit status 3.
     """
     from pathlib import Path
 
@@ -61,11 +62,13 @@ def run(args: argparse.Namespace) -> int:
     require_printers(pdf=not args.no_pdf)
     made: dict[str, Certificate] = {}
     files: dict[str, bytes] = {}
+    outcome = status.OK
     with watched(args.cache, note) as cache:
         for case in _cases(args.cases):
             certificate, derivation = _certificate(case, args, cache)
             if certificate is None:
                 return status.DIFFERS
+            outcome = max(outcome, _rechecked(case, certificate))
             made[case.name] = certificate
             files |= certificate_files(
                 case.name, certificate.data, paper=args.paper, pdf=not args.no_pdf, family=derivation.family
@@ -76,7 +79,16 @@ def run(args: argparse.Namespace) -> int:
         files["index.json"] = bundle_index(data)
     write_files(files, Path(args.out), force=args.force)
     _show(args, made, sorted(files))
-    return status.OK
+    return outcome
+
+
+def _rechecked(case: Case, certificate: Certificate) -> int:
+    """Let the small checker see a certificate before it is written; one that it leaves open is written, and told."""
+    verdict = certificate.recheck()
+    if verdict.status in (1, 2):
+        raise UndecidedError(f"{case.name}: the rechecker does not accept this certificate: {verdict.lines[0]}")
+    note(f"{case.name}: {verdict.lines[0]}")
+    return status.UNDECIDED if verdict.status == 3 else status.OK
 
 
 def _cases(paths: list[str]) -> list[Case]:
@@ -99,7 +111,7 @@ def _cases(paths: list[str]) -> list[Case]:
 
 
 def _certificate(case: Case, args: argparse.Namespace, cache: str | None) -> tuple[Certificate | None, Derivation]:
-    """Derive, solve, certify and recheck; None, with a remark, when the derivation is refuted."""
+    """Derive, solve and certify; None, with a remark, when the derivation is refuted."""
     from verify.certificate.build import GUARD_DIGITS
     from verify.certificate.certify import certify
     from verify.derivation.ledger import Grade
@@ -120,10 +132,6 @@ def _certificate(case: Case, args: argparse.Namespace, cache: str | None) -> tup
         raise UndecidedError(f"{case.name}: {error}") from None
     except InputError as error:
         raise error.at(file=str(case.path)) from None
-    verdict = certificate.recheck()
-    if verdict.status in (1, 2):
-        raise UndecidedError(f"{case.name}: the rechecker does not accept this certificate: {verdict.lines[0]}")
-    note(f"{case.name}: {verdict.lines[0]}")
     return certificate, derivation
 
 

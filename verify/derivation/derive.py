@@ -24,7 +24,7 @@ from verify.derivation.numerical_look import numerical_look
 from verify.derivation.points import domain_of, parameter_points
 from verify.derivation.sum_step import open_or_checked
 from verify.derivation.support_step import support_step
-from verify.errors import UndecidedError
+from verify.errors import InputError, UndecidedError
 from verify.laws.continuous import OneObservation
 from verify.notebook import Shown
 from verify.problem.density import Density
@@ -90,11 +90,17 @@ class _Ledger:
         try:
             result = self.worker.run(function, *arguments)
         except UndecidedError as error:
-            self.steps.append(Step(name, Grade.UNDECIDED, f"the step {name} stayed open", str(error)))
-            return None
+            return self._open(name, str(error))
+        except InputError as error:
+            if error.key:
+                raise
+            return self._open(name, f"a number that came up on the way cannot be used: {error.wrong}")
         step, more = result if isinstance(result, tuple) else (result, None)
         self.steps.extend(step if isinstance(step, tuple) else (step,))
         return more
+
+    def _open(self, name: str, reason: str) -> None:
+        self.steps.append(Step(name, Grade.UNDECIDED, f"the step {name} stayed open", reason))
 
     def grades(self, *names: str) -> Grade:
         return weakest(step.grade for step in self.steps if step.name in names)
