@@ -13,6 +13,7 @@ Source: Lehmann and Romano 2005, Theorem 3.7.1 and section 4.2.
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass
 from typing import Any
 
@@ -67,12 +68,15 @@ class Conditions:
         Whether the test rejects outside the window.
     centres : tuple of float
         Rough means of the laws; they only choose between equally true formulas.
+    even : callable, optional
+        Lattice point -> whether it is shown to have exactly the same mass under both laws.
     """
 
     laws: tuple[Law, ...]
     levels: tuple[Any, ...]
     outside: bool
     centres: tuple[float, ...]
+    even: Callable[[int], bool] | None = None
 
     @property
     def point(self) -> bool:

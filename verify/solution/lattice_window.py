@@ -238,9 +238,9 @@ def _exact_tie(conditions: Conditions, cell: Cell, bits: int) -> Window | tuple[
     """
     if cell[1] - cell[0] > MOST_EXACT_ATOMS:
         return None
-    centre = _exact_centre(conditions, cell, bits)
-    if centre is not None:
-        return centre
+    window = _one_atom(conditions, cell, bits)
+    if window is not None:
+        return window
     try:
         g1, g2 = exact_fractions(conditions, *cell)
         targets = conditions.targets(rationals())
@@ -252,25 +252,35 @@ def _exact_tie(conditions: Conditions, cell: Cell, bits: int) -> Window | tuple[
     return canonical(conditions.laws[0], cell, (g1, g2), conditions.outside, sides, bits)
 
 
-def _exact_centre(conditions: Conditions, cell: Cell, bits: int) -> Window | None:
-    """One atom, at the mean itself, for a point null: there the moment condition holds whatever the fraction is."""
-    if not conditions.point:
+def _one_atom(conditions: Conditions, cell: Cell, bits: int) -> Window | None:
+    """The test that turns on one atom alone, where both conditions hold there for one and the same fraction."""
+    atom = _balanced(conditions, cell)
+    if atom is None:
         return None
+    with balls(2 * bits) as A:
+        masses = [law.density(A, atom) for law in conditions.laws]
+        level = A.real(conditions.levels[0])
+        fraction = 1 - (1 - level) / masses[0] if conditions.outside else level / masses[0]
+        if not (fraction > 0 and fraction < 1):
+            return None
+        phi = to_enclosure(fraction, low=_ZERO, high=_ONE)
+        sides = [to_enclosure((1 - m if conditions.outside else 0) + fraction * m) for m in masses]
+    if conditions.point:
+        sides.append(Enclosure.of(0))
+    return Window(atom, atom, phi, phi, tuple(sides), 2 * bits)
+
+
+def _balanced(conditions: Conditions, cell: Cell) -> int | None:
+    """Point null: the mean. Two limits with one level: an atom of exactly the same mass under both laws."""
+    if not conditions.point:
+        if conditions.even is None or conditions.levels[0] != conditions.levels[1]:
+            return None
+        return next((c for c in cell if conditions.even(c)), None)
     try:
         mean = conditions.laws[0].expectation(rationals())
     except NotRational:
         return None
-    if mean not in cell:
-        return None
-    centre = int(mean)
-    with balls(2 * bits) as A:
-        mass = conditions.laws[0].density(A, centre)
-        fraction = 1 - (1 - A.real(conditions.levels[0])) / mass
-        if not (fraction > 0 and fraction < 1):
-            return None
-        phi = to_enclosure(fraction, low=_ZERO, high=_ONE)
-        first = to_enclosure(1 - mass + fraction * mass)
-    return Window(centre, centre, phi, phi, (first, Enclosure.of(0)), 2 * bits)
+    return int(mean) if mean in cell else None
 
 
 def canonical(

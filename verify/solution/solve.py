@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from dataclasses import dataclass
 from fractions import Fraction
-from functools import cached_property
+from functools import cached_property, partial
 from typing import TYPE_CHECKING, Any, Literal
 
 from verify.arithmetic.ball import balls, to_enclosure
@@ -299,10 +299,21 @@ def solve(problem: Problem, digits: int = 50, derivation: Derivation | None = No
 
 
 def _solve_two_sided(problem: Problem, derivation: Derivation, laws: tuple[Law, ...], digits: int) -> Solution:
-    search = window_search(laws, problem.levels, problem.hypothesis.form is not Form.OUTSIDE)
+    even = partial(_even, problem, derivation) if len(laws) == 2 else None
+    search = window_search(laws, problem.levels, problem.hypothesis.form is not Form.OUTSIDE, even)
     require_attainable(laws, problem.levels, search.rough)
     window = solve_window(search, digits)
     return with_window(problem, derivation, laws, digits, window)
+
+
+def _even(problem: Problem, derivation: Derivation, c: int) -> bool:
+    """Whether a lattice point has exactly the same mass at both limits."""
+    from verify.derivation.even import equally_likely
+
+    family, (low, high) = family_of(derivation), problem.hypothesis.limits
+    if not (isinstance(family.scale, Fraction) and isinstance(family.shift, Fraction)):
+        return False
+    return equally_likely(derivation, (low, high), problem.n, family.scale * c + problem.n * family.shift)
 
 
 def with_window(

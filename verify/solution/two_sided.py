@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from typing import Any
 
 from verify.laws import Law
@@ -14,7 +15,9 @@ from verify.solution.window import SEARCH_BITS, Window, rough_laws, search_preci
 Search = LatticeSearch | ContinuousSearch
 
 
-def window_search(laws: tuple[Law, ...], levels: tuple[Any, ...], outside: bool) -> Search:
+def window_search(
+    laws: tuple[Law, ...], levels: tuple[Any, ...], outside: bool, even: Callable[[int], bool] | None = None
+) -> Search:
     """Return the search for the window of a two-sided test.
 
     Parameters
@@ -25,6 +28,8 @@ def window_search(laws: tuple[Law, ...], levels: tuple[Any, ...], outside: bool)
         One for each law.
     outside : bool
         Whether the test rejects outside the window.
+    even : callable, optional
+        Lattice point -> whether it is shown to have exactly the same mass under both laws.
 
     Raises
     ------
@@ -32,7 +37,7 @@ def window_search(laws: tuple[Law, ...], levels: tuple[Any, ...], outside: bool)
         When the two laws cannot be told apart.
     """
     rough, closeness, rising = rough_laws(laws)
-    conditions = Conditions(laws, levels, outside, tuple(law.mean for law in rough))
+    conditions = Conditions(laws, levels, outside, tuple(law.mean for law in rough), even)
     lattice = laws[0].lattice
     narrow = not lattice and (not outside or float(min(levels, key=float)) > 0.5)
     prec = search_precision(rough, levels, closeness, narrow=narrow, base=SEARCH_BITS[lattice])
