@@ -3,6 +3,7 @@
 The digits are few so that the file stays quick; ``tests/bench/test_general_families.py`` asks for 30.
 """
 
+import math
 from functools import cache
 
 import pytest
@@ -153,3 +154,14 @@ def test_every_family_is_solved_in_every_form(name: str, form: str) -> None:
         assert condition.expectation.radius < 1e-14
     for number in (solution.c, solution.c1, solution.c2, solution.gamma, solution.gamma1, solution.gamma2):
         assert number is None or number.exact or number.digits >= DIGITS - 1
+
+
+def test_a_statistic_that_turns_at_the_middle():
+    """With t = 1 the observation is uniform: P(log(x (1 - x)) < v) = 1 - sqrt(1 - 4 exp(v))."""
+    density = Density(
+        "x**(t-1)*(1-x)**(t-1)/beta(t,t)", variable="x", support="reals in (0, 1)", parameter="t", space="t > 0"
+    )
+    solution = solve(Problem(density, "t <= 1 or t >= 2", "0.05", 1), DIGITS)
+    below = [1 - math.sqrt(1 - 4 * math.exp(float(c.mid))) for c in (solution.c1, solution.c2)]
+    assert solution.grade is Grade.PROVED
+    assert below[1] - below[0] == pytest.approx(0.05, rel=1e-11)

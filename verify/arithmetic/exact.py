@@ -13,7 +13,7 @@ from verify.arithmetic.ball import to_enclosure
 from verify.arithmetic.enclosure import Enclosure
 from verify.errors import NotRational
 
-MOST_WORKED_BITS = 4_000_000
+MOST_WORKED_BITS = 1_000_000
 """Bits of a number that is still worked out exactly."""
 
 MOST_WRITTEN_BITS = 20_000

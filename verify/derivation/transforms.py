@@ -102,10 +102,11 @@ def _gamma_ratio(log_transform: Expr, z: Symbol, density: Density, found: Factor
 
 def _gamma_arguments(log_transform: Expr, z: Symbol) -> tuple[Expr, Expr] | None:
     nodes = [n for n in log_transform.atoms(sp.gamma, sp.loggamma) if n.has(z)]
-    shifts = sorted({sp.expand(n.args[0] - z) for n in nodes}, key=lambda shift: sp.N(shift, 30))
+    shifts = {sp.expand(n.args[0] - z) for n in nodes}
     if len(shifts) != 2 or any(shift.has(z) for shift in shifts):
         return None
-    return shifts[0], shifts[1]
+    low, high = sorted(shifts, key=lambda shift: sp.N(shift, 30))
+    return low, high
 
 
 def _pole_ends(log_transform: Expr, z: Symbol) -> tuple[Expr, Expr] | None:

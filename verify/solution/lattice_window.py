@@ -238,14 +238,11 @@ def _exact_tie(conditions: Conditions, cell: Cell, bits: int) -> Window | tuple[
     """
     if cell[1] - cell[0] > MOST_EXACT_ATOMS:
         return None
-    window = _one_atom(conditions, cell, bits)
-    if window is not None:
-        return window
     try:
         g1, g2 = exact_fractions(conditions, *cell)
         targets = conditions.targets(rationals())
     except NotRational:
-        return None
+        return _one_atom(conditions, cell, bits)
     if not (0 <= g1 <= 1 and 0 <= g2 <= 1):
         return _side(g1, conditions.outside) or 0, _side(g2, conditions.outside) or 0
     sides = tuple(Enclosure.of(t) for t in targets)
