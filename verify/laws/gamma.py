@@ -2,13 +2,20 @@
 
 from __future__ import annotations
 
+import math
 from dataclasses import dataclass
+from statistics import NormalDist
 from typing import TYPE_CHECKING, Any, ClassVar, Self
 
 from verify.laws.base import Law, Number, cube_root_score
 
 if TYPE_CHECKING:
     from verify.problem.numbers import Exact
+
+STANDARD = NormalDist()
+SHORT = 60.0
+"""Shapes below this have a short series."""
+LEAST_TAIL = 1e-5
 
 
 @dataclass(frozen=True)
@@ -75,7 +82,30 @@ class Gamma(Law):
         return A.sqrt(A.real(self.shape)) / A.real(self.rate)
 
     def normal_score(self, v: float, mean: float, spread: float) -> tuple[float, float]:
-        """Through the cube root of V."""
+        """Through the tail itself where its series is short, else through the cube root of V."""
         shape, rate = (mean / spread) ** 2, mean / spread**2
-        z, slope = cube_root_score(rate * v, shape)
+        z, slope = _tail_score(rate * v, shape) or cube_root_score(rate * v, shape)
         return z, rate * slope
+
+
+def _tail_score(x: float, shape: float) -> tuple[float, float] | None:
+    """Normal score of a gamma law of rate 1 by the series of its tail, and its derivative by x.
+
+    None where the series is long, or the tail too small beside 1.
+
+    Source: DLMF 8.11.4.
+    """
+    if not (0.0 < x < 4 * shape + 20 and shape < SHORT):
+        return None
+    front = math.exp(shape * math.log(x) - x - math.lgamma(shape + 1))
+    total = term = 1.0
+    k = shape
+    while term > 1e-12 * total:
+        k += 1
+        term *= x / k
+        total += term
+    below = front * total
+    if not LEAST_TAIL < below < 1 - LEAST_TAIL:
+        return None
+    z = STANDARD.inv_cdf(below)
+    return z, front * shape / x / STANDARD.pdf(z)
