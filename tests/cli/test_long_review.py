@@ -18,6 +18,11 @@ ROWS = 600
 Start = Callable[..., tuple[Path, subprocess.Popen[str]]]
 
 
+def _heed_the_keyboard() -> None:
+    """A shell that starts tests in the background makes them deaf to Ctrl-C, and their children too."""
+    signal.signal(signal.SIGINT, signal.default_int_handler)
+
+
 @pytest.fixture
 def table(tmp_path: Path) -> Path:
     """Invented claims; one in ten is wrong."""
@@ -34,7 +39,8 @@ def review(table: Path) -> Start:
     def start(name: str, *words: str) -> tuple[Path, subprocess.Popen[str]]:
         out = table.with_name(f"{name}.csv")
         command = [sys.executable, "-m", "verify", "review", str(CASE), str(table), "-o", str(out), *words]
-        return out, subprocess.Popen(command, cwd=ROOT, stdout=subprocess.PIPE, stderr=subprocess.PIPE, text=True)
+        pipes = {"stdout": subprocess.PIPE, "stderr": subprocess.PIPE}
+        return out, subprocess.Popen(command, cwd=ROOT, text=True, preexec_fn=_heed_the_keyboard, **pipes)
 
     return start
 
