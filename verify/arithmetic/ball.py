@@ -227,7 +227,11 @@ def balls(prec: int) -> Iterator[Balls]:
 def to_fraction(x: Ball) -> Fraction:
     """Return the exact rational value of a ball of radius zero (such as a midpoint or an end)."""
     mantissa, exponent = x.man_exp()
-    man, exp = int(mantissa), int(exponent)
+    return _scaled(int(mantissa), int(exponent))
+
+
+def _scaled(man: int, exp: int) -> Fraction:
+    """Return man * 2^exp as a rational."""
     return Fraction(man << exp) if exp >= 0 else Fraction(man, 1 << -exp)
 
 
@@ -255,10 +259,8 @@ def _end(x: Ball, *, up: bool) -> Fraction:
     """One end as a rational; an end too close to zero for a rational of sensible size is moved outward."""
     mantissa, exponent = x.man_exp()
     man, exp = int(mantissa), int(exponent)
-    if exp >= 0:
-        return Fraction(man << exp)
     if exp + man.bit_length() >= SMALLEST_EXPONENT:
-        return Fraction(man, 1 << -exp)
+        return _scaled(man, exp)
     tiny = Fraction(1, 1 << -SMALLEST_EXPONENT)
     return (tiny if up else Fraction(0)) if man > 0 else (Fraction(0) if up else -tiny)
 

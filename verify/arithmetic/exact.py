@@ -7,9 +7,9 @@ from fractions import Fraction
 from math import comb, factorial, prod
 from typing import Any
 
-from flint import arb, ctx, fmpq
+from flint import arb, fmpq
 
-from verify.arithmetic.ball import to_enclosure
+from verify.arithmetic.ball import balls, to_enclosure
 from verify.arithmetic.enclosure import Enclosure
 from verify.errors import NotRational
 
@@ -114,9 +114,5 @@ def enclosure_of(x: Any, bits: int) -> Enclosure:
     """
     if int(x.height_bits()) <= MOST_WRITTEN_BITS:
         return Enclosure.of(Fraction(int(x.p), int(x.q)))
-    kept = ctx.prec
-    ctx.prec = bits
-    try:
+    with balls(bits):
         return to_enclosure(arb(x))
-    finally:
-        ctx.prec = kept
