@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Iterable, Sequence
 from fractions import Fraction
 from math import comb, factorial, prod
 from typing import Any
@@ -15,6 +15,9 @@ from verify.errors import NotRational
 
 MOST_WORKED_BITS = 1_000_000
 """Bits of a number that is still worked out exactly."""
+
+MOST_SUMMED_BITS = 50_000_000
+"""Bits of all the numbers of a sum that is still worked out exactly."""
 
 MOST_WRITTEN_BITS = 20_000
 """Bits of a fraction that is still handed out exactly; a longer one is enclosed."""
@@ -102,6 +105,29 @@ def rationals() -> Rationals:
 def quotient(x: Fraction) -> Any:
     """Return a rational in FLINT's type, in which sums of fractions with millions of digits stay quick."""
     return fmpq(x.numerator, x.denominator)
+
+
+def summed(rows: Iterable[Sequence[Fraction]], width: int) -> list[Any]:
+    """Sum rows of rationals, column by column, as quotients.
+
+    Raises
+    ------
+    NotRational
+        When a number is irrational, or the numbers are so many and so long that their sum would take minutes.
+
+    Examples
+    --------
+    >>> summed([(Fraction(1, 2), Fraction(1)), (Fraction(1, 3), Fraction(2))], 2)
+    [5/6, 3]
+    """
+    sums, bits = [fmpq(0)] * width, 0
+    for row in rows:
+        numbers = [quotient(x) for x in row]
+        bits += sum(int(x.height_bits()) for x in numbers)
+        if bits > MOST_SUMMED_BITS:
+            raise NotRational("a sum that would be too long to be worked out")
+        sums = [total + x for total, x in zip(sums, numbers, strict=True)]
+    return sums
 
 
 def enclosure_of(x: Any, bits: int) -> Enclosure:

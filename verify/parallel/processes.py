@@ -1,16 +1,24 @@
-"""Local processes, started fresh, each on one batch at a time; a dead one is replaced and its batch done again."""
+"""Local processes, started fresh; the work of a dead one is done again."""
 
 from __future__ import annotations
 
-from collections import Counter, deque
+import os
+import signal
+import threading
+import time
+from collections import deque
 from collections.abc import Callable, Iterable, Iterator
-from contextlib import closing
-from multiprocessing.connection import wait
+from concurrent.futures import Future
+from contextlib import contextmanager, suppress
+from dataclasses import dataclass
+from itertools import islice
 from typing import Any
 
-from verify.errors import UndecidedError
-from verify.parallel.batch import batch_text, batches
-from verify.parallel.worker import Answer, Task, Worker
+from loky import ProcessPoolExecutor
+from loky.process_executor import TerminatedWorkerError
+
+from verify.errors import InputError, UndecidedError
+from verify.parallel.batch import batch_text, batches, do
 
 MOST_LOSSES = 3
 """Workers that may die over one batch before it is given up."""
@@ -19,87 +27,121 @@ AHEAD = 32
 """Batches handed out ahead of the one waited for, for each worker: a slow one leaves the others with work."""
 
 SECONDS_A_LOOK = 0.5
-"""A dead worker may leave a child that keeps its pipe open, so the processes themselves are looked at, too."""
+"""How often a worker looks whether its parent lives."""
 
 
 def in_processes(function: Callable[[Any], Any], items: Iterable[Any], workers: int, chunk: int) -> Iterator[Any]:
-    """Yield the results in order; a bounded number of batches is handed out ahead of the one waited for."""
-    with closing(_Crew(function, batches(items, chunk), workers)) as crew:
-        answers: dict[int, Answer] = {}
-        wanted = 0
+    """Yield the results in order; a bounded number of batches is handed out ahead of the one waited for.
+
+    A pool whose worker died does not say over which batch. So the batch waited for is then done alone, where a
+    further death is its own, and the others are handed to a new pool.
+    """
+    work = batches(items, chunk)
+    waiting: deque[_Task] = deque()
+    pool = _pool(workers)
+    try:
         while True:
-            crew.hand_out(wanted + AHEAD * workers)
-            if wanted in answers:
-                yield from answers.pop(wanted).results()
-                wanted += 1
-            elif crew.busy:
-                answers |= crew.wait()
-            else:
+            for batch in islice(work, AHEAD * workers - len(waiting)):
+                waiting.append(_Task(batch, _begin(pool, function, batch)))
+            if not waiting:
                 return
+            try:
+                results = waiting[0].answer.result()
+            except TerminatedWorkerError:
+                pool.shutdown(kill_workers=True)
+                results = _alone(function, waiting[0].batch)
+                pool = _pool(workers)
+                for task in islice(waiting, 1, None):
+                    if task.lost:
+                        task.answer = _begin(pool, function, task.batch)
+            waiting.popleft()
+            yield from results
+    finally:
+        pool.shutdown(kill_workers=True)
 
 
-class _Crew:
-    """The workers of a run, and the work that is left."""
+@dataclass
+class _Task:
+    """A batch that was handed out."""
 
-    def __init__(self, function: Callable[[Any], Any], work: Iterator[tuple[Any, ...]], most: int) -> None:
-        self.function, self.work, self.most = function, work, most
-        self.idle: list[Worker] = []
-        self.busy: list[Worker] = []
-        self.taken = 0
-        self.lost: deque[Task] = deque()
-        self.losses: Counter[int] = Counter()
+    batch: tuple[Any, ...]
+    answer: Future[list[Any]]
 
-    def hand_out(self, end: int) -> None:
-        """Give every worker something to do, as long as there is work before this number."""
-        chosen = []
-        while (self.idle or len(self.busy) < self.most) and (task := self._next(end)) is not None:
-            worker = self.idle.pop() if self.idle else Worker(self.function)
-            worker.task = task
-            self.busy.append(worker)
-            chosen.append(worker)
-        for worker in chosen:  # all are starting up by now: a long batch keeps none of them waiting
-            worker.begin()
+    @property
+    def lost(self) -> bool:
+        """Whether a pool ended before this was done."""
+        return not self.answer.done() or isinstance(self.answer.exception(), TerminatedWorkerError)
 
-    def _next(self, end: int) -> Task | None:
-        """Return lost work first."""
-        if self.lost:
-            return self.lost.popleft()
-        batch = next(self.work, None) if self.taken < end else None
-        if batch is None:
-            return None
-        self.taken += 1
-        return self.taken - 1, batch
 
-    def wait(self) -> dict[int, Answer]:
-        """Wait for answers; the work of a worker that died is put back.
+def _pool(workers: int) -> ProcessPoolExecutor:
+    return ProcessPoolExecutor(workers, initializer=_be_a_worker, initargs=(os.getpid(),))
 
-        Raises
-        ------
-        UndecidedError
-            When several workers died over the same batch.
-        """
-        ready = wait([worker.pipe for worker in self.busy], SECONDS_A_LOOK)
-        answers = {}
-        for worker in [worker for worker in self.busy if worker.pipe in ready or not worker.alive]:
-            answer = worker.answer()
-            self.busy.remove(worker)
-            if answer is None:
-                self._count_loss(worker)
-            else:
-                self.idle.append(worker)
-                answers[worker.task[0]] = answer
-        return answers
 
-    def _count_loss(self, worker: Worker) -> None:
-        worker.stop()
-        number, batch = worker.task
-        self.losses[number] += 1
-        if self.losses[number] >= MOST_LOSSES:
-            what = batch_text(batch)
-            raise UndecidedError(f"{MOST_LOSSES} worker processes died over one piece of work: {what}")
-        self.lost.append(worker.task)
+def _begin(pool: ProcessPoolExecutor, function: Callable[[Any], Any], batch: tuple[Any, ...]) -> Future[list[Any]]:
+    """Hand out a batch.
 
-    def close(self) -> None:
-        """End all workers, whatever they are doing."""
-        for worker in (*self.idle, *self.busy):
-            worker.stop()
+    Raises
+    ------
+    InputError
+        When the system starts no further process.
+    """
+    try:
+        with _interrupts_held():
+            answer: Future[list[Any]] = pool.submit(do, function, batch)
+            return answer
+    except TerminatedWorkerError as error:
+        answer = Future()
+        answer.set_exception(error)
+        return answer
+    except OSError as error:
+        right = "ask for fewer workers"
+        raise InputError(f"no process can be started: {error.strerror}", right, key="workers") from None
+
+
+def _alone(function: Callable[[Any], Any], batch: tuple[Any, ...]) -> list[Any]:
+    """Do a batch in a process of its own, again and again.
+
+    Raises
+    ------
+    UndecidedError
+        When every one of these processes died.
+    """
+    for _ in range(MOST_LOSSES):
+        pool = _pool(1)
+        try:
+            return _begin(pool, function, batch).result()
+        except TerminatedWorkerError:
+            continue
+        finally:
+            pool.shutdown(kill_workers=True)
+    raise UndecidedError(f"{MOST_LOSSES} worker processes died over one piece of work: {batch_text(batch)}")
+
+
+def _be_a_worker(parent: int) -> None:
+    """Leave the keyboard to the parent, and never outlive it."""
+    if hasattr(os, "setpgrp"):
+        os.setpgrp()
+    threading.Thread(target=_leave_with, args=(parent,), daemon=True).start()
+
+
+def _leave_with(parent: int) -> None:
+    """End this process and its children when its parent is gone, however that ended."""
+    while os.getppid() == parent:
+        time.sleep(SECONDS_A_LOOK)
+    if hasattr(os, "killpg"):
+        with suppress(ProcessLookupError, PermissionError):
+            os.killpg(os.getpid(), signal.SIGKILL)
+    os._exit(1)
+
+
+@contextmanager
+def _interrupts_held() -> Iterator[None]:
+    """Start processes that never hear the keyboard: their parent does, and ends them."""
+    if not hasattr(signal, "pthread_sigmask"):
+        yield
+        return
+    before = signal.pthread_sigmask(signal.SIG_BLOCK, {signal.SIGINT})
+    try:
+        yield
+    finally:
+        signal.pthread_sigmask(signal.SIG_SETMASK, before)

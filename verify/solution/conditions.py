@@ -17,7 +17,7 @@ from collections.abc import Callable
 from dataclasses import dataclass
 from typing import Any
 
-from verify.arithmetic.exact import quotient, rationals
+from verify.arithmetic.exact import quotient, rationals, summed
 from verify.laws import Law
 from verify.solution.start import Rough, scored_window
 
@@ -219,16 +219,15 @@ def exact_fractions(conditions: Conditions, c1: int, c2: int) -> Row:
     Raises
     ------
     NotRational
-        When a mass is irrational.
+        When a mass is irrational, or the sum too long.
     """
     A = rationals()
 
     def row(pair: Row) -> Row:
         return quotient(pair[0]), quotient(pair[1])
 
-    inner = [row(conditions.unit(A, k)) for k in range(c1 + 1, c2)]
     first, second = row(conditions.unit(A, c1)), row(conditions.unit(A, c2))
-    sums = [sum((each[i] for each in inner), quotient(A.real(0))) for i in (0, 1)]
+    sums = summed((conditions.unit(A, k) for k in range(c1 + 1, c2)), 2)
     target, total = row(conditions.targets(A)), row(conditions.total(A))
     if conditions.outside:
         right = [target[i] - total[i] + sums[i] + first[i] + second[i] for i in (0, 1)]

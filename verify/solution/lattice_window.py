@@ -185,10 +185,6 @@ def solve_lattice_window(search: LatticeSearch, digits: int) -> Window:
         with balls(bits) as A:
             system = linear_system(conditions, A, *cell)
             moves = [_side(g, conditions.outside) for g in system.fractions]
-            if moves == [0, 0] and cell == conditions.laws[0].support:
-                exact = _exact_tie(conditions, cell, bits)
-                if isinstance(exact, Window):
-                    return exact
             if moves == [0, 0]:
                 reached = min(accuracy_bits(g) for g in system.fractions)
                 if reached >= wanted:

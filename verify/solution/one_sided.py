@@ -15,7 +15,7 @@ from typing import Any
 
 from verify.arithmetic.ball import accuracy_bits, around, balls, magnitude, midpoint, radius, to_enclosure
 from verify.arithmetic.enclosure import Enclosure
-from verify.arithmetic.exact import enclosure_of, quotient, rationals
+from verify.arithmetic.exact import enclosure_of, quotient, rationals, summed
 from verify.errors import NotRational, UndecidedError
 from verify.laws import Law
 from verify.solution.conditions import MOST_EXACT_ATOMS
@@ -170,14 +170,14 @@ class TailProblem:
         """Decide a tie in exact fractions; None when the masses are irrational or the sum too long."""
         low, high = self.law.support
         A = rationals()
-        summed = high - c if self.above and high is not None else c - low if low is not None else MOST_EXACT_ATOMS + 1
-        if summed > MOST_EXACT_ATOMS:
+        atoms = high - c if self.above and high is not None else c - low if low is not None else MOST_EXACT_ATOMS + 1
+        if atoms > MOST_EXACT_ATOMS:
             return None
         try:
             level = A.real(self.level)
             inside = not (self.above and high is None)
             points = range(c + 1, high + 1) if self.above and inside else range(low, c + self.above)
-            total = sum((quotient(self.law.density(A, k)) for k in points), quotient(A.real(0)))
+            [total] = summed(((self.law.density(A, k),) for k in points), 1)
             mass = quotient(self.law.density(A, c))
         except (NotRational, TypeError):
             return None
