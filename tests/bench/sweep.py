@@ -149,6 +149,8 @@ def report(place: Path) -> str:
 
 def main() -> None:
     """Run or report."""
+    from tests.bench.sweep import work  # by its place, which a worker can import, and not as a part of __main__
+
     parser = argparse.ArgumentParser(description=__doc__, formatter_class=argparse.RawDescriptionHelpFormatter)
     parser.add_argument("file", type=Path, help="finished jobs, one JSON object a line")
     parser.add_argument("--count", type=int, default=10_000, help="problems of each law and form")
