@@ -2,6 +2,7 @@
 
 import pytest
 
+from verify.arithmetic.ball import Balls
 from verify.derivation.ledger import Grade
 from verify.problem.problem import Problem
 from verify.solution.solve import solve
@@ -77,6 +78,17 @@ NEXT_TO_ONE = [
 """Levels that leave 1e-30, and limits that differ by 1e-20: minutes in exact fractions, moments in balls."""
 
 
+LONG_SEARCHES = [
+    (FROM_0, "t <= 1/10000 or t >= 100000001/100010000", "3e-197", 100_000),
+    (FAILURES_OF_SIZE, "t <= 1/10000000 or t >= 1000001/11000000", "2e-200", 100_000),
+    (ODDS, "t <= 10 or t >= 10010", "5e-102", 100_000),
+    (POISSON, "t >= 100000*sqrt(2)/2", f"{10**28 - 1}/{10**28}", 583),
+    (COIN, "1/1000 <= t <= 10000001/10001000", "1e-111", 10_000),
+]
+"""Cutoffs far from where the normal approximation puts them: searches that once took thousands of evaluations."""
+
+MOST_EVALUATIONS = 100
+
 ALL = [*FAR_APART, *MANY, *BESIDE_A_TIE, *NEXT_TO_ONE, *CONTINUOUS]
 
 
@@ -85,3 +97,17 @@ def test_it_is_proved(formula, null, alpha, n):
     solution = solve(Problem(FORMULAS[formula], null, alpha, n), digits=20)
     assert solution.grade is Grade.PROVED
     assert all(condition.expectation.contains(condition.target) for condition in solution.side_conditions)
+
+
+@pytest.mark.parametrize(("formula", "null", "alpha", "n"), LONG_SEARCHES)
+def test_it_is_proved_after_few_evaluations(monkeypatch, formula, null, alpha, n):
+    evaluations = []
+
+    def counted(name):
+        evaluate = getattr(Balls, name)
+        monkeypatch.setattr(Balls, name, lambda *args: evaluations.append(name) or evaluate(*args))
+
+    for name in ("beta_p", "beta_q", "gamma_p", "gamma_q"):
+        counted(name)
+    test_it_is_proved(formula, null, alpha, n)
+    assert 0 < len(evaluations) < MOST_EVALUATIONS

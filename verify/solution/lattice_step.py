@@ -12,7 +12,7 @@ from verify.laws import Law
 from verify.solution.start import extend, extend_far
 
 
-def cells(A: Any, law: Law, c: int, side: int, weight: Any, cap: float) -> int:
+def cells(A: Any, law: Law, c: int, side: int, weight: Any, cap: float, part: Any, target: Any) -> int:
     """Return the cells by which an end at c must move to the given side (negative: the other way).
 
     Parameters
@@ -27,19 +27,37 @@ def cells(A: Any, law: Law, c: int, side: int, weight: Any, cap: float) -> int:
         Units of the mass at c that are wanted: between 0 and 1 the end may stay.
     cap : float
         Longest step worth taking.
+    part, target : arb
+        Probability under this law of what the end belongs to, as it is and as it shall be.
     """
     wanted = as_float(weight)
     if 0 <= wanted <= 1:
         return 0
+    grows = bool(weight > 1) if math.isnan(wanted) else wanted > 1
     beyond, here = law.density(A, law.atom(c + side, side)), law.density(A, c)
     ratio = float(beyond / here) if here > 0 and beyond > 0 else 0.0
     slope = math.log(ratio) if 0.0 < ratio < math.inf else -50.0
-    lack = wanted - 1 if wanted > 1 else wanted
+    lack = wanted - 1 if grows else wanted
     if abs(lack) < 1e300:
-        distance = extend(lack, slope, cap)
+        distance = extend(lack * _per_atom(slope, grows), slope, cap)
     else:
-        distance = extend_far(1 if lack > 0 else -1, log_float(abs(weight)), slope, cap)
-    return max(1, math.ceil(distance)) if wanted > 1 else min(-1, math.floor(distance))
+        distance = extend_far(1 if grows else -1, log_float(abs(weight)), slope, cap)
+    if abs(distance) >= cap and distance * slope < 0:
+        distance = math.copysign(min(cap, _until_left(part, target, slope, grows)), distance)
+    return max(1, math.ceil(distance)) if grows else min(-1, math.floor(distance))
+
+
+def _per_atom(slope: float, grows: bool) -> float:
+    """Length of a density exp(slope * y) that holds as much as the next atom does."""
+    towards = -slope if grows else slope
+    return math.expm1(min(towards, 700.0)) / towards if towards else 1.0
+
+
+def _until_left(part: Any, target: Any, slope: float, grows: bool) -> float:
+    """Cells after which masses that fall at this slope leave what shall be left of the side that gives."""
+    there, stays = (1 - part, 1 - target) if grows else (part, target)
+    excess = log_float(there) - log_float(stays)
+    return excess / abs(slope) if 0 < excess < math.inf else math.inf
 
 
 def log_float(mass: Any) -> float:

@@ -23,7 +23,7 @@ from verify.laws import Law
 from verify.solution.conditions import (
     MOST_EXACT_ATOMS,
     Conditions,
-    end_fractions,
+    LinearSystem,
     exact_fractions,
     improved_start,
     linear_system,
@@ -116,22 +116,26 @@ class LatticeSearch(WindowSearch):
             if cell in seen:
                 return None, False
             seen.add(cell)
-            balls_of = window_weights(self.conditions, A, *cell)
+            system = linear_system(self.conditions, A, *cell)
+            balls_of = window_shares(self.conditions, system)
             weights = [as_float(ball) for ball in balls_of]
             if any(math.isnan(w) for w in weights):
                 return None, True
             grain = 1e-9 * min(max(abs(w) for w in weights), 1e300)
             if all(-grain <= w <= 1 + 1e-9 for w in weights):
                 return cell, False
-            moves = [self._move(A, *end) for end in zip(cell, balls_of, (-1, +1), caps, strict=True)]
+            moves = [self._move(A, system, *end) for end in zip(cell, balls_of, (-1, +1), caps, strict=True)]
             caps = [2 * cap if abs(move) >= cap / 2 else cap for move, cap in zip(moves, caps, strict=True)]
             cell = self.on_atoms(grown(cell, *moves), *moves)
         return None, False
 
-    def _move(self, A: Any, c: int, weight: Any, side: int, cap: float) -> int:
+    def _move(self, A: Any, system: LinearSystem, c: int, weight: Any, side: int, cap: float) -> int:
         """Cells by which an end must go outward (negative: inward) to gather the weight it wants."""
-        law = max(self.conditions.laws, key=lambda candidate: log_float(candidate.density(A, c)))
-        return cells(A, law, c, side, weight, cap)
+        laws = self.conditions.laws
+        rules = max(range(len(laws)), key=lambda i: log_float(laws[i].density(A, c)))
+        rejected, level = system.whole[rules], A.real(self.conditions.levels[rules])
+        part, target = (1 - rejected, 1 - level) if self.conditions.outside else (rejected, level)
+        return cells(A, laws[rules], c, side, weight, cap, part, target)
 
     def bracket(self, bits: int) -> Cell:
         """Return the cell by the sure, slow search."""
@@ -157,9 +161,9 @@ def grown(cell: Cell, out1: int, out2: int) -> Cell:
     return middle, middle + 1
 
 
-def window_weights(conditions: Conditions, A: Any, c1: int, c2: int) -> tuple[Any, Any]:
+def window_shares(conditions: Conditions, system: LinearSystem) -> tuple[Any, Any]:
     """Return the fraction of each end that belongs to the window, in balls."""
-    first, second = end_fractions(conditions, A, c1, c2)
+    first, second = system.fractions
     return (1 - first, 1 - second) if conditions.outside else (first, second)
 
 

@@ -99,7 +99,7 @@ class TailProblem:
             c = self._lattice_cutoff(A)
         wanted = bits_for(digits)
         bits = wanted + self.prec - 56
-        cap = 8 * bits + 4096
+        cap, seen = 8 * bits + 4096, set[int]()
         while bits <= cap:
             with balls(bits) as A:
                 beyond, mass = self.beyond(A, c), self.law.density(A, c)
@@ -110,11 +110,12 @@ class TailProblem:
                         return Tail(c, unit(gamma), to_enclosure(beyond + gamma * mass), bits)
                     bits += wanted - reached + 8
                     continue
-            if gamma > 1:
-                c = self.law.atom(c - self.outward, -self.outward)
-            elif gamma < 0:
-                c = self.law.atom(c + self.outward, self.outward)
-            else:
+                certain = gamma > 1 or gamma < 0
+                if certain:
+                    step = self._step(A, c, gamma, beyond, 1.0 if c in seen else self._reach)
+                    seen.add(c)
+                    c = self._moved(c, step)
+            if not certain:
                 exact = self._exact(c, bits)
                 if exact is not None:
                     return exact
@@ -125,8 +126,7 @@ class TailProblem:
         """Innermost lattice point beyond which less than the level lies (on midpoints)."""
         level = A.real(self.level).mid()
         low, high = self.law.support
-        z = upper_point(max(float(level), 1e-300))
-        start = round(self.rough.mean + self.outward * z * self.rough.spread)
+        start = round(self.rough.mean + self.outward * self._score(A) * self.rough.spread)
         start = max(start, low) if low is not None else start
         start = min(start, high) if high is not None else start
 
@@ -136,20 +136,39 @@ class TailProblem:
         found = self._lattice_newton(A, start)
         return self._lattice_bracket(enough, start) if found is None else found
 
+    def _score(self, A: Any) -> float:
+        """Normal score of the level, also where what it leaves is tiny."""
+        level, rest = (max(float(side), 1e-300) for side in (A.real(self.level), 1 - A.real(self.level)))
+        return upper_point(level) if level < rest else -upper_point(rest)
+
+    @property
+    def _reach(self) -> float:
+        """Longest first step of a search on the lattice."""
+        return 4 * self.rough.spread + 2
+
+    def _step(self, A: Any, c: int, gamma: Any, beyond: Any, cap: float) -> int:
+        """How far to move a cutoff where gamma is not between 0 and 1."""
+        return -self.outward * cells(A, self.law, c, -self.outward, gamma, cap, beyond, A.real(self.level))
+
+    def _moved(self, c: int, step: int) -> int:
+        """Move a cutoff, within the support, to an atom."""
+        low, high = self.law.support
+        c = c + step if low is None else max(c + step, low)
+        return self.law.atom(c if high is None else min(c, high), 1 if step > 0 else -1)
+
     def _lattice_newton(self, A: Any, c: int) -> int | None:
         """Step by the weight that is missing; None where the steps do not settle."""
-        level, law, cap = A.real(self.level), self.law, 4 * self.rough.spread + 2
-        low, high = law.support
+        level, law, cap = A.real(self.level), self.law, self._reach
         for _ in range(MOST_STEPS):
-            gamma = (level - self.beyond(A, c)) / law.density(A, c)
+            beyond = self.beyond(A, c)
+            gamma = (level - beyond) / law.density(A, c)
             if math.isnan(as_float(gamma)):
                 return None
-            step = -self.outward * cells(A, law, c, -self.outward, gamma, cap)
+            step = self._step(A, c, gamma, beyond, cap)
             if step == 0:
                 return c
             cap = 2 * cap if abs(step) >= cap / 2 else cap
-            c = c + step if low is None else max(c + step, low)
-            c = law.atom(c if high is None else min(c, high), 1 if step > 0 else -1)
+            c = self._moved(c, step)
         return None
 
     def _lattice_bracket(self, enough: Callable[[int], bool], start: int) -> int:
@@ -230,8 +249,7 @@ class TailProblem:
         """Bracket from the normal approximation, bisection, a few Newton steps; nothing is claimed of the result."""
         coordinate = Coordinate(*self.law.support)
         rough = coordinate.rough(A, self.rough)
-        level = A.real(self.level).mid()
-        z = upper_point(max(float(level), 1e-300))
+        level, z = A.real(self.level).mid(), self._score(A)
 
         def enough(u: Fraction) -> bool:
             return bool(self.beyond(A, midpoint(coordinate.place(A, A.real(u)))).mid() < level)
