@@ -39,6 +39,7 @@ MANY = [
     (FAILURES_OF_SIZE, "t = 1/10000*sqrt(2)/2", "1/1000", 1),
     (FAILURES_OF_SIZE, "1/10000*sqrt(2)/2 <= t <= 909091/910000*sqrt(2)/2", "1/1000", 1),
     (FAILURES_OF_SIZE, "t >= 1/1000000", "1e-190", 30),
+    (COIN, "1/1000 <= t <= 10000001/10001000", "1e-111", 10_000),
 ]
 """Many observations."""
 
@@ -83,7 +84,6 @@ LONG_SEARCHES = [
     (FAILURES_OF_SIZE, "t <= 1/10000000 or t >= 1000001/11000000", "2e-200", 100_000),
     (ODDS, "t <= 10 or t >= 10010", "5e-102", 100_000),
     (POISSON, "t >= 100000*sqrt(2)/2", f"{10**28 - 1}/{10**28}", 583),
-    (COIN, "1/1000 <= t <= 10000001/10001000", "1e-111", 10_000),
 ]
 """Cutoffs far from where the normal approximation puts them: searches that once took thousands of evaluations."""
 
