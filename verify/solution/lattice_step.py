@@ -31,9 +31,9 @@ def cells(A: Any, law: Law, c: int, side: int, weight: Any, cap: float, part: An
         Probability under this law of what the end belongs to, as it is and as it shall be.
     """
     wanted = as_float(weight)
-    if 0 <= wanted <= 1:
+    grows = bool(weight > 1) or wanted > 1  # a double may not tell it from 1
+    if not (grows or weight < 0 or wanted < 0):
         return 0
-    grows = bool(weight > 1) if math.isnan(wanted) else wanted > 1
     beyond, here = law.density(A, law.atom(c + side, side)), law.density(A, c)
     ratio = float(beyond / here) if here > 0 and beyond > 0 else 0.0
     slope = math.log(ratio) if 0.0 < ratio < math.inf else -50.0

@@ -1,0 +1,36 @@
+"""Steps on a lattice: the right way, however near the weight is to what would let the end stay, and far where far is meant."""
+
+from fractions import Fraction
+from itertools import count
+
+import pytest
+from hypothesis import given
+from hypothesis import strategies as st
+
+from verify.arithmetic.ball import balls
+from verify.arithmetic.exact import rationals
+from verify.laws import Binomial, Poisson
+from verify.solution.lattice_step import cells
+
+LAW = Poisson(Fraction(10))
+COUNTS = Binomial(400, Fraction(1, 40))
+MASSES = [COUNTS.density(rationals(), k) for k in range(401)]
+
+
+@pytest.mark.parametrize(("weight", "steps"), [(Fraction(1, 2), 0), (0, 0), (1, 0), (10**40 + 1, 1), (-1, -1)])
+def test_a_weight_beyond_0_or_1_by_less_than_a_double_sees_is_a_step(weight, steps):
+    with balls(300) as A:
+        shared = A.real(Fraction(weight, 10**40) if abs(weight) > 1 or weight < 0 else Fraction(weight))
+        assert cells(A, LAW, 20, -1, shared, 1.0, A.real(Fraction(1, 3)), A.real(Fraction(1, 3))) == steps
+
+
+@given(st.integers(12, 60), st.integers(2, 180))
+def test_one_step_in_a_falling_tail_leads_near_the_cutoff(start, decades):
+    """The cutoff by counting in exact fractions, on a binomial law."""
+    level = Fraction(1, 10**decades)
+    cutoff = next(c for c in count() if sum(MASSES[c + 1 :]) <= level)
+    with balls(800) as A:
+        beyond, mass = A.real(sum(MASSES[start + 1 :])), A.real(MASSES[start])
+        gamma = (A.real(level) - beyond) / mass
+        step = cells(A, COUNTS, start, -1, gamma, 1e6, beyond, A.real(level))
+    assert abs(start - step - cutoff) <= 2 + abs(start - cutoff) / 2
