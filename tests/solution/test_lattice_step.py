@@ -1,4 +1,4 @@
-"""Steps on a lattice: the right way, however near the weight is to what would let the end stay, and far where far is meant."""
+"""Steps on a lattice: the right way, however near to staying the weight is, and far where far is meant."""
 
 from fractions import Fraction
 from itertools import count
@@ -24,7 +24,7 @@ def test_a_weight_beyond_0_or_1_by_less_than_a_double_sees_is_a_step(weight, ste
         assert cells(A, LAW, 20, -1, shared, 1.0, A.real(Fraction(1, 3)), A.real(Fraction(1, 3))) == steps
 
 
-@given(st.integers(12, 60), st.integers(2, 180))
+@given(st.integers(18, 60), st.integers(4, 180))
 def test_one_step_in_a_falling_tail_leads_near_the_cutoff(start, decades):
     """The cutoff by counting in exact fractions, on a binomial law."""
     level = Fraction(1, 10**decades)
