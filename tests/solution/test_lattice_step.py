@@ -13,6 +13,7 @@ from verify.laws import Binomial, Poisson
 from verify.solution.lattice_step import cells
 
 LAW = Poisson(Fraction(10))
+MOST_STEPS = 12
 COUNTS = Binomial(400, Fraction(1, 40))
 MASSES = [COUNTS.density(rationals(), k) for k in range(401)]
 
@@ -24,13 +25,13 @@ def test_a_weight_beyond_0_or_1_by_less_than_a_double_sees_is_a_step(weight, ste
         assert cells(A, LAW, 20, -1, shared, 1.0, A.real(Fraction(1, 3)), A.real(Fraction(1, 3))) == steps
 
 
-@given(st.integers(18, 60), st.integers(4, 180))
-def test_one_step_in_a_falling_tail_leads_near_the_cutoff(start, decades):
-    """The cutoff by counting in exact fractions, on a binomial law."""
-    level = Fraction(1, 10**decades)
+@given(st.integers(0, 60), st.integers(2, 180))
+def test_a_few_steps_lead_to_the_cutoff(start, decades):
+    """The cutoff by counting in exact fractions."""
+    level, c = Fraction(1, 10**decades), start
     cutoff = next(c for c in count() if sum(MASSES[c + 1 :]) <= level)
     with balls(800) as A:
-        beyond, mass = A.real(sum(MASSES[start + 1 :])), A.real(MASSES[start])
-        gamma = (A.real(level) - beyond) / mass
-        step = cells(A, COUNTS, start, -1, gamma, 1e6, beyond, A.real(level))
-    assert abs(start - step - cutoff) <= 2 + abs(start - cutoff) / 2
+        for _ in range(MOST_STEPS):
+            beyond, mass = A.real(sum(MASSES[c + 1 :])), A.real(MASSES[c])
+            c = min(400, c - cells(A, COUNTS, c, -1, (A.real(level) - beyond) / mass, 1e6, beyond, A.real(level)))
+    assert c == cutoff
