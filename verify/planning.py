@@ -13,10 +13,11 @@ from typing import TYPE_CHECKING, Literal
 
 from verify.arithmetic.enclosure import Enclosure
 from verify.errors import InputError, UndecidedError
+from verify.memory import solver
 from verify.problem.numbers import Exact, exact, exact_text
 from verify.problem.problem import Problem
 from verify.solution.critical import CriticalFunction
-from verify.solution.solve import Solution, solve
+from verify.solution.solve import Solution
 
 if TYPE_CHECKING:
     from verify.derivation.derive import Derivation
@@ -73,10 +74,14 @@ class Planner:
         The derivation of its density.
     at : str or Exact
         The alternative at which power is wanted.
+    cache : str, optional
+        Directory of results that were proved before.
     """
 
-    def __init__(self, problem: Problem, derivation: Derivation, at: str | Exact) -> None:
-        self.problem, self.derivation = problem, derivation
+    def __init__(
+        self, problem: Problem, derivation: Derivation, at: str | Exact, cache: str | None = None
+    ) -> None:
+        self.problem, self.derivation, self._solve = problem, derivation, solver(cache)
         self.at = exact(at, key="at")
         self._solutions: dict[tuple[int, int], Solution] = {}
         if not problem.density.parsed_space.contains(self.at):
@@ -88,7 +93,7 @@ class Planner:
     def solution(self, n: int, digits: int = PLANNING_DIGITS) -> Solution:
         """Return the proven test for n observations."""
         if (n, digits) not in self._solutions:
-            self._solutions[n, digits] = solve(with_sample_size(self.problem, n), digits, self.derivation)
+            self._solutions[n, digits] = self._solve(with_sample_size(self.problem, n), digits, self.derivation)
         return self._solutions[n, digits]
 
     def power(self, n: int, digits: int = PLANNING_DIGITS) -> Enclosure:

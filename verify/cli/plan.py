@@ -5,7 +5,7 @@ from __future__ import annotations
 import argparse
 
 from verify.cli import status
-from verify.cli.options import add_budget, add_case, add_json
+from verify.cli.options import add_budget, add_cache, add_case, add_json
 from verify.cli.output import note, show_json
 
 EXAMPLE = 'sidecheck plan casebook/demo/lot-release.case.toml --at 10 --power 0.9'
@@ -27,12 +27,14 @@ def add(parser: argparse.ArgumentParser) -> None:
         "--scan-to", type=_count, default=None, metavar="N",
         help="without randomisation the power saws up and down: look at every n up to this one, too",
     )  # fmt: skip
+    add_cache(parser)
     add_budget(parser)
     add_json(parser)
 
 
 def run(args: argparse.Namespace) -> int:
     """Search, print, and return the exit status."""
+    from verify.memory import watched
     from verify.planning import Planner
     from verify.problem.casefile import read_case
     from verify.report.pipeline import carries_solution, derive_case, problem_of
@@ -44,9 +46,10 @@ def run(args: argparse.Namespace) -> int:
     if not carries_solution(derivation):
         note("the derivation does not carry a test; see sidecheck derive")
         return status.of_grade(derivation.grade) or status.UNDECIDED
-    planner = Planner(problem, derivation, args.at)
-    size = planner.smallest(args.power, largest=args.largest, progress=lambda n: note(f"n = {n}"))
-    scan = planner.without_randomisation(args.power, args.scan_to) if args.scan_to else None
+    with watched(args.cache, note) as cache:
+        planner = Planner(problem, derivation, args.at, cache)
+        size = planner.smallest(args.power, largest=args.largest, progress=lambda n: note(f"n = {n}"))
+        scan = planner.without_randomisation(args.power, args.scan_to) if args.scan_to else None
     if args.json:
         show_json(plan_json(case, size, scan))
     else:
