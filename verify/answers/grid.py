@@ -164,5 +164,3 @@ def _sizes(grid: dict[str, Any], problem: Problem) -> Sequence[int]:
     if step == 0 or last < first:
         raise InputError(f"the range {given.strip()} is empty", 'write e.g. "10..100"', key="grid.n")
     return range(first, last + 1, step)
-
-

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from functools import lru_cache
+from functools import cached_property, lru_cache
 from typing import TYPE_CHECKING, Any
 
 from verify.answers.columns import numbers_of
@@ -13,6 +13,9 @@ from verify.errors import InputError, UndecidedError
 from verify.memory import solver
 from verify.parallel.cluster import engines
 from verify.problem.casefile import Case, read_case
+from verify.problem.density import Density
+from verify.problem.numbers import Exact
+from verify.problem.problem import Problem
 from verify.report.json_form import enclosure_json
 from verify.report.pipeline import carries_solution
 
@@ -24,7 +27,7 @@ Record = dict[str, Any]
 
 
 class Asker:
-    """Answers the designs of one grid; it pickles as texts, and derives once a process.
+    """Answers the designs of one grid. What it derived before it is pickled travels with it: all workers lean on that.
 
     Parameters
     ----------
@@ -41,37 +44,65 @@ class Asker:
     def __init__(self, path: str, text: str, digits: int, budget: float, cache: str | None) -> None:
         self.path, self.text, self.digits, self.budget, self.cache = path, text, digits, budget, cache
 
+    @cached_property
+    def derivation(self) -> Derivation:
+        """The derivation of the density, whatever the limits."""
+        return derive(self.case.density, budget=self.budget)
+
+    @property
+    def case(self) -> Case:
+        """The case file."""
+        return _case(self.path, self.text)
+
     def refusal(self) -> Step | None:
         """Return the step of the derivation that forbids a table, if there is one."""
-        derivation = setting(self.path, self.text, self.budget)[1]
+        derivation = self.derivation
         weak = [step for step in derivation.steps if step.grade in (Grade.REFUTED, Grade.UNDECIDED)]
         return None if carries_solution(derivation) else min(weak, key=lambda step: step.grade is not Grade.REFUTED)
 
     def about(self) -> dict[str, str]:
         """Return what the rows depend on."""
-        case = setting(self.path, self.text, self.budget)[0]
+        case = self.case
         return {**dict(engines()), "digits": str(self.digits), "case_sha256": case.sha256, "title": case.title}
 
     def __call__(self, design: Design) -> Record:
         """Return the record of a row: ``status`` says proved, undecided or unusable; nothing is raised for one row."""
-        case, derivation = setting(self.path, self.text, self.budget)
         record = {"limits": design["limits"], "levels": design["levels"], "n": design["n"], "null": ""}
         try:
-            problem = problem_of_design(base_problem(case), design)
+            problem = problem_of_design(base_problem(self.case), design)
             record["null"] = problem.hypothesis.text(problem.density.parameter)
-            solution = solver(self.cache)(problem, self.digits, derivation)
+            solution = solver(self.cache)(problem, self.digits, self._derivation_for(problem))
+            _require_firm(solution)
         except InputError as error:
             return record | {"status": "unusable", "reason": str(error)}
         except UndecidedError as error:
             return record | {"status": "undecided", "reason": " ".join(str(error).split())}
         return record | numbers_record(solution)
 
+    def _derivation_for(self, problem: Problem) -> Derivation:
+        """Return the one derivation where it holds for all parameter values, else one that covers these limits."""
+        monotone = self.derivation.step("monotonicity")
+        if monotone is not None and monotone.grade is Grade.PROVED:
+            return self.derivation
+        return _derived(problem.density, problem.hypothesis.limits, self.budget)
+
 
 @lru_cache(maxsize=4)
-def setting(path: str, text: str, budget: float) -> tuple[Case, Derivation]:
-    """Read the case and derive its density, once a process."""
-    case = read_case(path, text)
-    return case, derive(case.density, budget=budget)
+def _case(path: str, text: str) -> Case:
+    """Read the case, once a process."""
+    return read_case(path, text)
+
+
+@lru_cache(maxsize=64)
+def _derived(density: Density, limits: tuple[Exact, ...], budget: float) -> Derivation:
+    return derive(density, limits=limits, budget=budget)
+
+
+def _require_firm(solution: Solution) -> None:
+    """Leave a row without numbers where they lean on an open or refuted step: at its limits, it alone may."""
+    weak = [step for step in solution.steps if step.grade in (Grade.REFUTED, Grade.UNDECIDED)]
+    if solution.grade in (Grade.REFUTED, Grade.UNDECIDED):
+        raise UndecidedError("; ".join(f"{step.name} {step.grade.value}: {step.statement}" for step in weak))
 
 
 def numbers_record(solution: Solution) -> Record:
@@ -80,7 +111,7 @@ def numbers_record(solution: Solution) -> Record:
     for name in numbers_of(solution.form):
         value: Enclosure | None = getattr(solution, name)
         if value is not None:
-            ends = enclosure_json(value, solution.digits)
+            ends = enclosure_json(value, solution.digits_of(name))
             record[name] = [ends["lower"], ends["upper"], nearest_double(value)]
     return record
 

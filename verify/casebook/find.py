@@ -77,4 +77,3 @@ def fits(path: str | Path, pattern: str) -> bool:
     wanted = pattern.removesuffix(SUFFIX)
     tail = "/".join(whole.split("/")[-(wanted.count("/") + 1) :])
     return fnmatchcase(tail, wanted) or fnmatchcase(whole, wanted)
-

@@ -82,5 +82,3 @@ def proven(asked: Any, digits: int) -> Solution:
         why = "; ".join(map(str, weak))
         raise UndecidedError(f"there is no proven solution: {why}")
     return solution
-
-
