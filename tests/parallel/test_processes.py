@@ -24,6 +24,18 @@ if __name__ == "__main__":
     list(run_all(partial(linger, sys.argv[2]), range(2), 2))
 """
 
+MASKS = """
+import sys
+sys.path.insert(0, sys.argv[1])
+from test_processes import deaf
+from verify.parallel import run_all
+print(list(run_all(deaf, range(8), 2)))  # without the usual guard: workers do not run this again
+"""
+
+
+def deaf(x: int) -> bool:
+    return signal.SIGINT in signal.pthread_sigmask(signal.SIG_BLOCK, ())
+
 
 def linger(folder: str, x: int) -> None:
     """Have a child, write down both processes, and do not end."""
@@ -77,6 +89,17 @@ def test_a_run_that_is_ended_leaves_no_process(tmp_path, how):
     _, error = running.communicate()
     assert error.count("Traceback") == (how == signal.SIGINT), error
     wait_until(lambda: not any(lives(int(pid.name)) for pid in pids.iterdir()), "the end of all")
+
+
+@pytest.mark.skipif(not hasattr(signal, "pthread_sigmask"), reason="interrupts can be held elsewhere only")
+@pytest.mark.parametrize("how", ["a file", "standard input"])
+def test_no_worker_hears_the_keyboard_from_its_start(tmp_path, how):
+    place = tmp_path / "main.py"
+    place.write_text(MASKS)
+    words = [sys.executable, "-" if how == "standard input" else str(place), str(Path(__file__).parent)]
+    env = os.environ | {"PYTHONPATH": os.pathsep.join(sys.path)}
+    ended = subprocess.run(words, input=MASKS, capture_output=True, text=True, env=env, check=False)
+    assert (ended.stdout, ended.stderr) == (f"{[True] * 8}\n", "")
 
 
 def test_a_slow_item_does_not_stop_the_other_worker(tmp_path):

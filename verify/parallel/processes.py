@@ -12,6 +12,7 @@ from concurrent.futures import Future
 from contextlib import contextmanager, suppress
 from dataclasses import dataclass
 from itertools import islice
+from multiprocessing import resource_tracker
 from typing import Any
 
 from loky import ProcessPoolExecutor
@@ -140,6 +141,7 @@ def _interrupts_held() -> Iterator[None]:
     if not hasattr(signal, "pthread_sigmask"):
         yield
         return
+    resource_tracker.ensure_running()  # whose start lets interrupts through again, so it comes before they are held
     before = signal.pthread_sigmask(signal.SIG_BLOCK, {signal.SIGINT})
     try:
         yield
