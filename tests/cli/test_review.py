@@ -55,3 +55,11 @@ def test_a_density_that_is_no_family_is_refuted(sidecheck, tmp_path) -> None:
     assert done.returncode == 1
     assert "refuted" in done.stdout
     assert "Witness" in memo.read_text()
+
+
+def test_a_cutoff_without_fraction_at_an_irrational_level(sidecheck) -> None:
+    """Poisson of mean 8: P(V > 13) = 0.0342 and P(V > 12) = 0.0638 are within sqrt(2)/20 = 0.0707, P(V > 11) is not."""
+    case = LOT.partition("[problem]")[0] + '[problem]\nnull = "lam <= 8"\nalpha = "sqrt(2)/20"\nn = 1\n'
+    for c, verdict, status in (("13", "differs", 1), ("12", "agrees", 0)):
+        done = sidecheck("review", "-", stdin=f'{case}\n[claim]\nc = "{c}"\n')
+        assert (done.returncode, f"Verdict: {verdict}" in done.stdout) == (status, True)

@@ -90,7 +90,7 @@ def consequences(test: CriticalFunction, setting: Setting, *, with_loss: bool = 
         parts: tuple[Size, ...] = sizes(curve)
     except UndecidedError:
         parts = ()
-    kept = _kept(parts)
+    kept = level_kept(parts)
     worst = max(parts, key=lambda part: part.value.mid - _middle(part.level), default=None)
     return Consequences(_expectations(curve), worst, kept, power_loss(test, setting) if with_loss else None)
 
@@ -102,7 +102,16 @@ def _middle(level: Exact) -> Fraction:
         return to_enclosure(A.real(level)).mid
 
 
-def _kept(parts: tuple[Size, ...]) -> bool | None:
+def level_kept(parts: tuple[Size, ...]) -> bool | None:
+    """Say whether no part of the null is rejected with more than its level; None when that stayed open.
+
+    Examples
+    --------
+    >>> level = Fraction(1, 20)
+    >>> sizes = [Size(Enclosure(Fraction(low, 100), Fraction(high, 100)), "", level) for low, high in ((3, 4), (4, 6))]
+    >>> level_kept((sizes[0],)), level_kept(tuple(sizes)), level_kept(())
+    (True, None, None)
+    """
     answers = [_within(part.value, part.level) for part in parts]
     if False in answers:
         return False

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Mapping
 from dataclasses import dataclass, replace
 from fractions import Fraction
 
@@ -13,7 +14,7 @@ from verify.errors import UndecidedError
 from verify.problem.hypothesis import Form
 from verify.review.claim import Claim
 from verify.review.claimed import claimed_test
-from verify.review.consequences import Consequences, consequences
+from verify.review.consequences import Consequences, consequences, level_kept
 from verify.review.matching import Comparison, compare
 from verify.review.printed import Match
 from verify.review.setting import Setting
@@ -142,18 +143,16 @@ def _short(x: Fraction) -> str:
 def _without_fractions(verdict: Verdict, setting: Setting, claim: Claim, test: CriticalFunction) -> Verdict:
     """Judge a claim that does not randomise: is the level kept, and is a larger rejection region within it too?"""
     right, result = setting.right(), consequences(test, setting)
-    larger = larger_within(test, setting) if result.level_kept else ()
+    larger = larger_within(test, setting) if result.level_kept else {}
     found = compare(claim, setting.numbers.without_fractions(), setting.problem.n, setting.step)
-    wrong_side = test.region != right.region
-    right_way = result.level_kept is True and not larger and not wrong_side
-    outcome = Outcome.AGREES if right_way else Outcome.UNDECIDED if result.level_kept is None else Outcome.DIFFERS
+    outcome = _outcome_by_level(result.level_kept, larger, wrong_side=test.region != right.region)
     notes = [
         *verdict.notes,
         "no fractions are printed: judged as a test that does not randomise",
     ]
     notes.append(_level_note(result))
-    notes += [f"the region that also rejects at {point} is within the level too" for point in larger]
-    if result.level_kept and not larger and not wrong_side:
+    notes += _larger_notes(larger)
+    if outcome is Outcome.AGREES:
         notes.append("no region larger by one support point at either end is within the level")
     slips: tuple[SlipFound, ...] = ()
     if outcome is Outcome.DIFFERS and found.match is not Match.SAME:
@@ -171,6 +170,27 @@ def _without_fractions(verdict: Verdict, setting: Setting, claim: Claim, test: C
     )
 
 
+def _outcome_by_level(kept: bool | None, larger: Mapping[str, bool | None], *, wrong_side: bool) -> Outcome:
+    """Judge a test without randomisation: it agrees where its level is kept, and where no larger region's is.
+
+    What stayed open is never taken for an answer.
+    """
+    if kept is False or True in larger.values() or (kept and wrong_side):
+        return Outcome.DIFFERS
+    return Outcome.UNDECIDED if kept is None or None in larger.values() else Outcome.AGREES
+
+
+def _larger_notes(larger: Mapping[str, bool | None]) -> list[str]:
+    """Say which larger regions are within the level, and of which that stayed open."""
+    within = [
+        f"the region that also rejects at {point} is within the level too" for point, fits in larger.items() if fits
+    ]
+    open_ones = [point for point, fits in larger.items() if fits is None]
+    return within + [
+        f"whether the region that also rejects at {point} is within the level too stayed open" for point in open_ones
+    ]
+
+
 def _full_report(claim: Claim, setting: Setting) -> dict[str, Enclosure]:
     return claim.style.readings(setting.numbers, setting.problem.n, setting.step)[0][0]
 
@@ -184,19 +204,18 @@ def _level_note(result: Consequences) -> str:
     return answer[result.level_kept]
 
 
-def larger_within(test: CriticalFunction, setting: Setting) -> tuple[str, ...]:
-    """Return the support points of V that could be added to the rejection region at its ends with the level
-    still kept.
+def larger_within(test: CriticalFunction, setting: Setting) -> dict[str, bool | None]:
+    """Say, for each support point of V that could be added to the rejection region at its ends, whether the level is
+    then still kept; None where that stayed open.
     """
-    found = []
+    found: dict[str, bool | None] = {}
     for grown, point in _grown(test, setting):
         try:
             parts = sizes(PowerCurve(grown, setting))
         except UndecidedError:
-            continue
-        if all(isinstance(part.level, Fraction) and part.value.upper <= part.level for part in parts):
-            found.append(_point_text(point, setting))
-    return tuple(dict.fromkeys(found))
+            parts = ()
+        found[_point_text(point, setting)] = level_kept(parts)
+    return found
 
 
 def _point_text(y: int, setting: Setting) -> str:

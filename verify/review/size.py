@@ -12,6 +12,7 @@ Theorem 3.7.1 (iii).
 
 from __future__ import annotations
 
+from contextlib import suppress
 from dataclasses import dataclass, field
 from fractions import Fraction
 from typing import Any
@@ -19,10 +20,11 @@ from typing import Any
 from verify.arithmetic.ball import Balls, balls, to_enclosure
 from verify.arithmetic.enclosure import Enclosure
 from verify.arithmetic.evaluate import evaluate
-from verify.errors import UndecidedError
+from verify.errors import NotRational, UndecidedError
 from verify.laws import Law
 from verify.problem.hypothesis import Form
 from verify.problem.numbers import Exact, as_exact, exact_text
+from verify.review.exact_power import exact_power
 from verify.review.setting import Setting
 from verify.solution.critical import CriticalFunction
 
@@ -74,9 +76,18 @@ class PowerCurve:
         for place, limit in enumerate(self.setting.problem.hypothesis.limits):
             if limit is t:
                 if place not in self.known:
-                    self.known[place] = self.test.power(self.setting.laws[place], PREC)
+                    self.known[place] = self._at_limit(place)
                 return self.known[place]
         return self.test.power(self.law(t), PREC)
+
+    def _at_limit(self, place: int) -> Enclosure:
+        """Power at a limit, exactly where its enclosure straddles the level and the masses are rational."""
+        law, level = self.setting.laws[place], self.setting.problem.levels[place]
+        found = self.test.power(law, PREC)
+        if isinstance(level, Fraction) and found.contains(level):
+            with suppress(NotRational):
+                return exact_power(self.test, law)
+        return found
 
     def direction(self, t: Exact) -> int:
         """Sign of the derivative in the parameter: +1, -1, or 0 when it could not be told."""
