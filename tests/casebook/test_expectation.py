@@ -13,15 +13,14 @@ from verify.casebook.expectation import CHECKS, GREEN, RED, judge
 from verify.casebook.found import Found
 from verify.casebook.outcome import STATUS, Outcome, Result, status_of, summary
 from verify.errors import InputError
-from verify.problem.keys import EXPECT_KEYS
-from verify.review.review import NUMBER_KEYS
+from verify.problem.keys import EXPECT_KEYS, NUMBER_NAMES
 
 VERDICTS = (*GREEN, *RED, "undecided")
 NEAR_TWO_THIRDS = Enclosure(Fraction(6666666666, 10**10), Fraction(6666666667, 10**10))
 
 
 def test_every_key_of_the_table_is_checked() -> None:
-    assert set(EXPECT_KEYS.kinds) == {*CHECKS, *NUMBER_KEYS}
+    assert set(EXPECT_KEYS.kinds) == {*CHECKS, *NUMBER_NAMES}
 
 
 @pytest.mark.parametrize("found", VERDICTS)

@@ -34,11 +34,6 @@ MEANINGS = {
 }
 
 
-def numbers_of(form: Form) -> tuple[str, ...]:
-    """Names of the numbers that a test of this form has."""
-    return ("c", "gamma") if form is Form.ONE_SIDED else ("c1", "c2", "gamma1", "gamma2")
-
-
 def columns_of(form: Form) -> tuple[Column, ...]:
     """Return the columns of a table for nulls of one form.
 
@@ -60,7 +55,7 @@ def columns_of(form: Form) -> tuple[Column, ...]:
         Column("reason", "text", "why there are no numbers; else empty"),
         Column("rejects", "text", "inside or outside (c1, c2); above or below c"),
     ]
-    for name in numbers_of(form):
+    for name in form.number_names:
         columns += [
             Column(f"{name}_lower", "text", f"{MEANINGS[name]}: proven lower end, rounded down"),
             Column(f"{name}_upper", "text", f"{MEANINGS[name]}: proven upper end, rounded up"),

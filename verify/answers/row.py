@@ -5,7 +5,6 @@ from __future__ import annotations
 from functools import cached_property, lru_cache
 from typing import TYPE_CHECKING, Any
 
-from verify.answers.columns import numbers_of
 from verify.answers.grid import Design, base_problem, problem_of_design
 from verify.derivation.derive import Derivation, derive
 from verify.derivation.ledger import Grade, Step
@@ -108,11 +107,9 @@ def _require_firm(solution: Solution) -> None:
 def numbers_record(solution: Solution) -> Record:
     """Write the numbers of a solution."""
     record: Record = {"status": solution.grade.value, "reason": "", "rejects": solution.rejects}
-    for name in numbers_of(solution.form):
-        value: Enclosure | None = getattr(solution, name)
-        if value is not None:
-            ends = enclosure_json(value, solution.digits_of(name))
-            record[name] = [ends["lower"], ends["upper"], nearest_double(value)]
+    for name, value in solution.numbers.items():
+        ends = enclosure_json(value, solution.digits_of(name))
+        record[name] = [ends["lower"], ends["upper"], nearest_double(value)]
     return record
 
 

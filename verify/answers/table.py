@@ -8,7 +8,7 @@ from collections.abc import Iterable, Iterator
 from pathlib import Path
 from typing import Any
 
-from verify.answers.columns import Column, columns_of, numbers_of
+from verify.answers.columns import Column, columns_of
 from verify.answers.row import Record
 from verify.errors import InputError, missing_extra
 from verify.parallel.batch import batches
@@ -67,7 +67,7 @@ def row_of(number: int, record: Record, form: Form) -> tuple[Any, ...]:
     """Return the cells of a record, in the order of :func:`~verify.answers.columns.columns_of`; None where empty."""
     cells = [number, *record["limits"], *record["levels"], record["n"], record["null"]]
     cells += [record["status"], record["reason"], record.get("rejects")]
-    for name in numbers_of(form):
+    for name in form.number_names:
         cells += record.get(name, [None, None, None])
     return tuple(cells)
 

@@ -9,9 +9,9 @@ from typing import Any
 from verify.casebook.found import UNUSABLE, Found
 from verify.casebook.outcome import Message, Outcome
 from verify.errors import InputError
+from verify.problem.keys import NUMBER_NAMES
 from verify.problem.nearest import suggestion
 from verify.review.printed import Match, read_printed
-from verify.review.review import NUMBER_KEYS
 
 GREEN = ("proved", "enclosed", "checked numerically", "agrees", "last digit")
 """Verdicts that pass where nothing else is expected."""
@@ -98,7 +98,7 @@ def _unexpected(allowed: tuple[str, ...], found: Found) -> tuple[Outcome, tuple[
 
 def _differences(expect: Mapping[str, Any], found: Found) -> Iterable[Message]:
     for key, wanted in expect.items():
-        text = _number(key, str(wanted), found) if key in NUMBER_KEYS else CHECKS[key](wanted, found)
+        text = _number(key, str(wanted), found) if key in NUMBER_NAMES else CHECKS[key](wanted, found)
         if text:
             yield Message(f"expect.{key}", text)
 

@@ -12,10 +12,11 @@ from verify.derivation.ledger import Grade, weakest
 from verify.errors import InputError, UndecidedError
 from verify.memory import solver
 from verify.problem.casefile import Case, CaseText
+from verify.problem.keys import NUMBER_NAMES
 from verify.review.judge import Options
 from verify.review.mapping import style_from
 from verify.review.printed import read_printed
-from verify.review.review import CLAIMS, DERIVATION_KEYS, NUMBER_KEYS, carries_numbers, review_numbers
+from verify.review.review import CLAIMS, DERIVATION_KEYS, carries_numbers, review_numbers
 from verify.review.setting import Setting
 
 if TYPE_CHECKING:
@@ -98,7 +99,7 @@ def find(text: CaseText, *, digits: int = DIGITS, budget: float = 10.0, cache: s
 
 def _longest(case: Case) -> int:
     """Most digits that a number of ``[claim]`` or ``[expect]`` prints."""
-    texts = [str(table[key]) for table in (case.claim, case.expect) for key in NUMBER_KEYS if key in table]
+    texts = [str(table[key]) for table in (case.claim, case.expect) for key in NUMBER_NAMES if key in table]
     return max((sum(letter.isdigit() for letter in text) for text in texts if "/" not in text), default=0)
 
 
@@ -114,10 +115,10 @@ def _found(case: Case, digits: int, budget: float, cache: str | None) -> Found:
         verdict=grade.value,
         grade=grade.value,
         form=solution.form.value,
-        numbers=_numbers(solution),
+        numbers=solution.numbers,
         flags=_flags(solution) if "flags" in case.expect else (),
     )
-    claimed = any(key in case.claim for key in (*NUMBER_KEYS, *DERIVATION_KEYS))
+    claimed = any(key in case.claim for key in (*NUMBER_NAMES, *DERIVATION_KEYS))
     if not claimed:
         return facts
     return _reviewed(case, setting_of(solution), facts)
@@ -153,7 +154,7 @@ def _derivation_alone(case: Case, derivation: Derivation, facts: Found) -> Found
 
 def _reviewed(case: Case, setting: Setting, facts: Found) -> Found:
     """Judge the claim, leaning on the solution that is proved already."""
-    numbers = {key: read_printed(case.claim[key], key) for key in NUMBER_KEYS if key in case.claim}
+    numbers = {key: read_printed(case.claim[key], key) for key in NUMBER_NAMES if key in case.claim}
     try:
         verdict = review_numbers(setting, numbers, style_from(case.claim), case.claim, Options(loss=False))
     except InputError as error:
@@ -175,11 +176,6 @@ def _grade(derivation: Derivation) -> Grade:
         for step in derivation.steps
         if step.name != CLAIMS and (step.name != "numerical look" or step.grade is Grade.REFUTED)
     )
-
-
-def _numbers(solution: Solution) -> dict[str, Enclosure]:
-    found = {name: getattr(solution, name) for name in NUMBER_KEYS}
-    return {name: value for name, value in found.items() if value is not None}
 
 
 def _flags(solution: Solution) -> tuple[str, ...]:

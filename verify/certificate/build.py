@@ -110,7 +110,7 @@ def build_statement(
         "versions": versions(),
         "issued": issued,
     }
-    predicate["assumptions"] = assumptions(solution.form, steps, law)
+    predicate["assumptions"] = assumptions(solution.problem, steps, law)
     statement = {
         "_type": STATEMENT,
         "subject": [{"name": subject.name, "digest": {"sha256": subject.sha256}}],
@@ -163,14 +163,11 @@ def _derivation(solution: Solution, steps: tuple[Step, ...]) -> dict[str, Any]:
 
 def _test(solution: Solution, digits: int) -> dict[str, Any]:
     """Form, side, cutoffs, and on a lattice the fractions and the lattice points of Y."""
-    names = ("c", "gamma") if solution.form is Form.ONE_SIDED else ("c1", "c2", "gamma1", "gamma2")
     test: dict[str, Any] = {"form": solution.form.value, "rejects": solution.rejects}
-    for name in names:
-        value: Enclosure | None = getattr(solution, name)
-        if value is not None:
-            test[name] = claim(value, digits)
+    test |= {name: claim(value, digits) for name, value in solution.numbers.items()}
     if solution.laws[0].lattice:
-        critical, keys = solution.critical, [name.replace("c", "y") for name in names if name.startswith("c")]
+        critical, cutoffs = solution.critical, (name for name in solution.numbers if name.startswith("c"))
+        keys = [name.replace("c", "y") for name in cutoffs]
         points = [critical.c1] if len(keys) == 1 else [critical.c1, critical.c2]
         falling = len(points) == 2 and Expectations(solution, 64).flipped
         test |= {key: int(y) for key, y in zip(keys, points[::-1] if falling else points, strict=True)}

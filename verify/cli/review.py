@@ -89,7 +89,8 @@ def _claim(case: Case, args: argparse.Namespace) -> int:
 
 
 def _table(case: Case, args: argparse.Namespace) -> int:
-    from verify.review.annotate import NUMBERS, write_annotated
+    from verify.problem.keys import NUMBER_NAMES
+    from verify.review.annotate import write_annotated
     from verify.review.cells import open_table
     from verify.review.journal import Journal
     from verify.review.mapping import map_columns
@@ -111,7 +112,7 @@ def _table(case: Case, args: argparse.Namespace) -> int:
                 table,
                 Path(args.output),
                 journal.records(),
-                [name for name in NUMBERS if name in columns.columns],
+                [name for name in NUMBER_NAMES if name in columns.columns],
             )
         if args.memo:
             _write_memo(args.memo, case, Path(args.table).name, _derivations(job, journal), journal.records)

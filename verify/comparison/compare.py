@@ -13,7 +13,7 @@ from verify.comparison.condition import sensitivity
 from verify.comparison.flags import Flag, engine_flags, flags_of
 from verify.comparison.limits import MEMORY, SECONDS, Outcome, run_limited
 from verify.comparison.opinion import Opinion, Truth, opinion_of
-from verify.comparison.question import Answer, Question, proven_numbers, question
+from verify.comparison.question import Answer, Question, question
 from verify.comparison.scipy_route import scipy_opinion
 from verify.solution.second_engine import second_engine
 
@@ -131,7 +131,7 @@ def _opinion(route: str, truth: Truth, outcome: Outcome) -> Opinion:
 def _truth(solution: Solution) -> Truth:
     """The proven numbers and the scales on which doubles are held against them."""
     known = sensitivity(solution)
-    numbers = proven_numbers(solution)
+    numbers = solution.numbers
     conditions = solution.side_conditions
     numbers |= {f"expectation{i}": condition.expectation for i, condition in enumerate(conditions, 1)}
     level = _positive(conditions[0].target)

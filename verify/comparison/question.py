@@ -116,15 +116,8 @@ def question(solution: Solution) -> Question:
         shift=float(problem.n * family.shift) if family is not None else 0.0,
         density=problem.density,
         statistic=derivation.statistic,
-        test={name: float(enclosure.mid) for name, enclosure in proven_numbers(solution).items()},
+        test={name: float(enclosure.mid) for name, enclosure in solution.numbers.items()},
     )
-
-
-def proven_numbers(solution: Solution) -> dict[str, Any]:
-    """The solution's cutoffs and fractions that exist, by name, as enclosures."""
-    names = ("c1", "c2", "gamma1", "gamma2", "c", "gamma")
-    found = {name: getattr(solution, name, None) for name in names}
-    return {name: value for name, value in found.items() if value is not None}
 
 
 def _floats(parameters: dict[str, Any]) -> dict[str, float]:

@@ -14,11 +14,11 @@ from verify.casebook.found import setting_of
 from verify.comparison.digits import DOUBLE_DIGITS
 from verify.errors import InputError
 from verify.oracle.explain import explanation, same_test
+from verify.problem.keys import NUMBER_NAMES
 from verify.problem.numbers import exact, exact_text
 from verify.report.layout import table
 from verify.solution.solve import Solution
 
-NAMES = ("c", "gamma", "c1", "c2", "gamma1", "gamma2")
 SHOWN = 12
 
 
@@ -37,7 +37,7 @@ class Row:
 def disagreement(mine: Any, solution: Solution, digits: int) -> str:
     """Return why numbers do not agree with a proven solution; empty when they do."""
     given = named(mine, solution)
-    rows = [_row(name, given.get(name), true, solution, digits) for name, true in numbers_of(solution).items()]
+    rows = [_row(name, given.get(name), true, solution, digits) for name, true in solution.numbers.items()]
     if all(row.agrees for row in rows):
         return ""
     values = {row.name: row.mine for row in rows if row.mine is not None}
@@ -45,12 +45,6 @@ def disagreement(mine: Any, solution: Solution, digits: int) -> str:
     if whole and same_test(values, solution, digits):
         return ""
     return "\n".join([*_head(solution), *_table(rows), *(explanation(values, solution) if whole else ())])
-
-
-def numbers_of(solution: Solution) -> dict[str, Enclosure]:
-    """Return the proven numbers that a test of this kind has."""
-    found = {name: getattr(solution, name) for name in NAMES}
-    return {name: value for name, value in found.items() if value is not None}
 
 
 def named(mine: Any, solution: Solution) -> dict[str, Any]:
@@ -61,12 +55,12 @@ def named(mine: Any, solution: Solution) -> dict[str, Any]:
     InputError
         For names that are not known, or a number of numbers that fits no test of this kind.
     """
-    wanted = list(numbers_of(solution))
-    order = [name for name in wanted if name.startswith("c")] + [name for name in wanted if name.startswith("g")]
+    order = list(solution.numbers)
     if isinstance(mine, Mapping):
-        unknown = [name for name in mine if name not in NAMES]
+        unknown = [name for name in mine if name not in NUMBER_NAMES]
         if unknown:
-            raise InputError(f"there is no number {unknown[0]!r}", f"the names are {', '.join(NAMES)}", key="mine")
+            right = f"the names are {', '.join(NUMBER_NAMES)}"
+            raise InputError(f"there is no number {unknown[0]!r}", right, key="mine")
         return dict(mine)
     if isinstance(mine, str | bytes) or not hasattr(mine, "__iter__"):
         raise InputError(f"{type(mine).__name__} has no numbers", f"give {', '.join(order)}", key="mine")

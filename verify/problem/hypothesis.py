@@ -11,6 +11,7 @@ import sympy
 
 from verify.errors import InputError
 from verify.problem.formula import formula_text
+from verify.problem.keys import ONE_SIDED, TWO_SIDED
 from verify.problem.numbers import Exact, as_exact, as_expr
 from verify.problem.order import compare
 from verify.problem.relation import Interval, interval_text, read_chain
@@ -27,6 +28,17 @@ class Form(Enum):
     OUTSIDE = "outside null"
     INTERVAL = "interval null"
     POINT = "point null"
+
+    @property
+    def number_names(self) -> tuple[str, ...]:
+        """Names of the cutoffs and fractions that a test of this form has.
+
+        Examples
+        --------
+        >>> Form.ONE_SIDED.number_names
+        ('c', 'gamma')
+        """
+        return ONE_SIDED if self is Form.ONE_SIDED else TWO_SIDED
 
 
 @dataclass(frozen=True)

@@ -67,6 +67,11 @@ SIZES = Kind(
 COLUMN = Kind(lambda v: isinstance(v, str | int) and not isinstance(v, bool), "the name of a column")
 
 
+ONE_SIDED, TWO_SIDED = ("c", "gamma"), ("c1", "c2", "gamma1", "gamma2")
+NUMBER_NAMES = (*TWO_SIDED, *ONE_SIDED)
+"""The cutoffs and fractions of a test, by name."""
+
+
 @dataclass(frozen=True)
 class Keys:
     """The keys of one table, those it must have, and what it is for."""
@@ -94,13 +99,12 @@ PROBLEM_KEYS = Keys(
     ("null", "alpha", "n"),
 )
 _HOW_MEANT = {"reported_as": REPORTED, "window": WINDOW, "region": REGION, "fractions": FRACTIONS}
-_CUTOFFS = ("c1", "c2", "gamma1", "gamma2", "c", "gamma")
 CLAIM_KEYS = Keys(
     {
         "natural_parameter": TEXT,
         "statistic": TEXT,
         "law": TEXT,
-        **dict.fromkeys(_CUTOFFS, NUMBER),
+        **dict.fromkeys(NUMBER_NAMES, NUMBER),
         **_HOW_MEANT,
     }
 )
@@ -109,12 +113,12 @@ EXPECT_KEYS = Keys(
         "verdict": TEXT, "error": TEXT, "key": TEXT, "grade": TEXT, "status": NUMBER,
         "form": TEXT, "law": TEXT,
         "natural_parameter": TEXT, "statistic": TEXT, "step": TEXT, "witness": TEXT,
-        "flags": TEXTS, "slips": TEXTS, **dict.fromkeys(_CUTOFFS, NUMBER),
+        "flags": TEXTS, "slips": TEXTS, **dict.fromkeys(NUMBER_NAMES, NUMBER),
     }
 )  # fmt: skip
 TABLE_KEYS = Keys(
     {
-        **dict.fromkeys(("id", "case", "null", "lower", "upper", "alpha", "n", *_CUTOFFS), COLUMN),
+        **dict.fromkeys(("id", "case", "null", "lower", "upper", "alpha", "n", *NUMBER_NAMES), COLUMN),
         **_HOW_MEANT,
     }
 )

@@ -80,10 +80,7 @@ def derivation_json(derivation: Derivation, n: int | None = None) -> dict[str, A
 
 def cutoffs_json(solution: Solution) -> dict[str, dict[str, str]]:
     """Write the cutoffs and fractions that the form of the test has."""
-    named = {name: getattr(solution, name) for name in ("c", "gamma", "c1", "c2", "gamma1", "gamma2")}
-    return {
-        name: enclosure_json(value, solution.digits_of(name)) for name, value in named.items() if value is not None
-    }
+    return {name: enclosure_json(value, solution.digits_of(name)) for name, value in solution.numbers.items()}
 
 
 def side_conditions_json(solution: Solution) -> list[dict[str, Any]]:

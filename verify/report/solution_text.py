@@ -5,25 +5,12 @@ from __future__ import annotations
 from typing import TYPE_CHECKING
 
 from verify.derivation.ledger import Grade
+from verify.problem.optimality import optimality
 from verify.report.equations import equation_lines
 from verify.report.layout import field, heading, number
 
 if TYPE_CHECKING:
-    from verify.arithmetic.enclosure import Enclosure
     from verify.solution.solve import Solution
-
-OPTIMALITY = {
-    "one-sided": "uniformly most powerful (Lehmann and Romano 2005, Theorem 3.4.1)",
-    "outside null": "uniformly most powerful (Lehmann and Romano 2005, Theorem 3.7.1)",
-    "interval null": "uniformly most powerful unbiased (Lehmann and Romano 2005, section 4.2)",
-    "point null": "uniformly most powerful unbiased (Lehmann and Romano 2005, section 4.2)",
-}
-"""In which sense the test of each form is optimal, and by which theorem."""
-
-TWO_LEVELS = (
-    "most powerful at every alternative among the tests with these two expectations at the limits "
-    "(Lehmann and Romano 2005, Theorem 3.6.1)"
-)
 
 REJECTS = {
     "inside": "reject when c1 < V < c2",
@@ -47,12 +34,12 @@ def solution_text(solution: Solution) -> str:
 
 def cutoff_lines(solution: Solution) -> list[str]:
     """Return the rule of the test and its numbers, a line each."""
-    numbers = [number(name, value.text(solution.digits_of(name)), 6) for name, value in named_numbers(solution)]
+    numbers = [number(name, value.text(solution.digits_of(name)), 6) for name, value in solution.numbers.items()]
     return [field("Test", _rule(solution)), "", *numbers]
 
 
 def _optimality(solution: Solution) -> str:
-    optimal = TWO_LEVELS if len(set(solution.problem.levels)) > 1 else OPTIMALITY[solution.form.value]
+    optimal = str(optimality(solution.form, solution.problem.levels))
     monotone = solution.derivation.step("monotonicity")
     if monotone is not None and monotone.grade is not Grade.PROVED:
         return f"{optimal}, among parameter values for which Q is shown to be monotone (see above)"
@@ -99,9 +86,3 @@ def _two_atoms(solution: Solution) -> bool:
     low, high = solution.laws[0].support
     few = low is not None and high is not None and high - low == 1
     return solution.laws[0].lattice and few and len(set(solution.problem.levels)) == 1
-
-
-def named_numbers(solution: Solution) -> list[tuple[str, Enclosure]]:
-    """Return the cutoffs and fractions that this form of test has, by name."""
-    named = [(name, getattr(solution, name)) for name in ("c", "gamma", "c1", "c2", "gamma1", "gamma2")]
-    return [(name, value) for name, value in named if value is not None]

@@ -11,7 +11,6 @@ from verify.review.cells import Table
 from verify.review.record import Record, kind_of
 
 PREFIX = "sidecheck"
-NUMBERS = ("c1", "c2", "gamma1", "gamma2", "c", "gamma")
 LEVEL = {True: "yes", False: "no", None: ""}
 
 

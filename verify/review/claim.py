@@ -9,11 +9,9 @@ from typing import Any
 
 from verify.errors import InputError
 from verify.problem.hypothesis import Form
+from verify.problem.keys import NUMBER_NAMES
 from verify.review.printed import Printed, read_printed
 from verify.review.style import Style
-
-ONE_SIDED = ("c", "gamma")
-TWO_SIDED = ("c1", "c2", "gamma1", "gamma2")
 
 
 @dataclass(frozen=True)
@@ -125,12 +123,12 @@ def read_claim(given: Mapping[str, Any], style: Style, form: Form) -> Claim:
     >>> claim.fractions, claim.numbers["c2"].value
     (False, Fraction(108, 1))
     """
-    wanted, other = (ONE_SIDED, TWO_SIDED) if form is Form.ONE_SIDED else (TWO_SIDED, ONE_SIDED)
+    wanted = form.number_names
     present = {name: value for name, value in given.items() if value is not None and str(value).strip() != ""}
     if form is Form.ONE_SIDED and "c" not in present and len({"c1", "c2"} & present.keys()) == 1:
         present = {("c" if name in ("c1", "c2") else "gamma"): value for name, value in present.items()}
-    for name in other:
-        if name in present:
+    for name in NUMBER_NAMES:
+        if name in present and name not in wanted:
             raise InputError(
                 f"{name} does not belong to a {form.value} hypothesis", f"give {', '.join(wanted)}", key=name
             )

@@ -7,12 +7,13 @@ from dataclasses import dataclass
 from typing import Any
 
 from verify.errors import InputError
+from verify.problem.keys import NUMBER_NAMES
 from verify.review.cells import Cell, Row
-from verify.review.review import NUMBER_KEYS, STYLE_KEYS
+from verify.review.review import STYLE_KEYS
 from verify.review.style import Style
 
 QUESTION_KEYS = ("id", "case", "null", "lower", "upper", "alpha", "n")
-COLUMN_KEYS = (*QUESTION_KEYS, *NUMBER_KEYS)
+COLUMN_KEYS = (*QUESTION_KEYS, *NUMBER_NAMES)
 WORDS: dict[str, tuple[str, ...]] = {
     "window": ("open", "closed"),
     "region": ("reject inside", "accept inside"),

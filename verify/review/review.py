@@ -23,7 +23,6 @@ if TYPE_CHECKING:
 
 CLAIMS = "claims"
 DERIVATION_KEYS = ("natural_parameter", "statistic", "law")
-NUMBER_KEYS = ("c1", "c2", "gamma1", "gamma2", "c", "gamma")
 STYLE_KEYS = ("reported_as", "window", "region", "fractions")
 Given = str | int | Fraction | Decimal | None
 

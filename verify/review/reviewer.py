@@ -13,6 +13,7 @@ from verify.derivation.ledger import Grade
 from verify.errors import InputError, UndecidedError
 from verify.problem.casefile import SUFFIX, Case, read_case
 from verify.problem.hypothesis import Form
+from verify.problem.keys import NUMBER_NAMES
 from verify.problem.problem import Problem
 from verify.review.cells import Cell, Kind
 from verify.review.judge import Options
@@ -21,7 +22,6 @@ from verify.review.printed import digits_wanted, read_printed
 from verify.review.record import Record, record_of, unusable
 from verify.review.review import (
     DERIVATION_KEYS,
-    NUMBER_KEYS,
     STYLE_KEYS,
     derivation_verdict,
     printed_numbers,
@@ -65,7 +65,7 @@ class Reviewer:
         if case.problem is None:
             return record_of(derivation_verdict(self.derivation(case), None), digits=self.digits)
         try:
-            numbers = printed_numbers({key: claim.get(key) for key in NUMBER_KEYS})
+            numbers = printed_numbers({key: claim.get(key) for key in NUMBER_NAMES})
             digits = digits_wanted(numbers.values(), self.digits)
             setting = Setting(case.problem, self.derivation(case, case.problem), digits)
             verdict = review_numbers(setting, numbers, style_from(claim), claim, Options())
@@ -87,7 +87,7 @@ class Reviewer:
         case = self.case_named(words.get("case", ""))
         numbers = {
             key: read_printed(words[key], key, binary=fields[key].kind is Kind.BINARY)
-            for key in NUMBER_KEYS
+            for key in NUMBER_NAMES
             if key in words
         }
         setting = self._setting(case, words, digits_wanted(numbers.values(), self.digits))

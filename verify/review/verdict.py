@@ -106,9 +106,7 @@ class Verdict:
     @property
     def numbers(self) -> dict[str, Enclosure]:
         """The right cutoffs and fractions on the scale of V = sum of T(Xi)."""
-        names = ("c", "gamma", "c1", "c2", "gamma1", "gamma2")
-        found = {name: getattr(self.solution, name) for name in names} if self.solution else {}
-        return {name: value for name, value in found.items() if value is not None}
+        return self.solution.numbers if self.solution else {}
 
     def __str__(self) -> str:
         lines = [self.verdict]

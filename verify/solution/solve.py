@@ -14,6 +14,7 @@ from verify.derivation.sum_step import sum_step, with_sum_step
 from verify.errors import InputError, UndecidedError
 from verify.notebook import Shown
 from verify.problem.hypothesis import Form
+from verify.problem.keys import NUMBER_NAMES
 from verify.problem.numbers import Exact, exact
 from verify.solution.attainable import require_attainable
 from verify.solution.checked import within_shared_digits
@@ -169,14 +170,18 @@ class Solution(Shown):
         """Critical function at c; None for a continuous law or a two-sided test."""
         return None if self._two_sided else self.critical.phi1
 
+    @property
+    def numbers(self) -> dict[str, Enclosure]:
+        """Its cutoffs and fractions by name: those that a test of this form and law has."""
+        named = {name: getattr(self, name) for name in NUMBER_NAMES}
+        return {name: value for name, value in named.items() if value is not None}
+
     def __str__(self) -> str:
         density, hypothesis = self.problem.density, self.problem.hypothesis
-        names = ("c", "gamma", "c1", "c2", "gamma1", "gamma2")
-        numbers = [(name, getattr(self, name)) for name in names]
         lines = [
             f"null: {hypothesis.text(density.parameter)}; n = {self.problem.n}; "
             f"rejects {self.rejects}; {self.grade.value}",
-            *(f"{name.ljust(6)} = {value.text(self.digits)}" for name, value in numbers if value is not None),
+            *(f"{name.ljust(6)} = {value.text(self.digits)}" for name, value in self.numbers.items()),
         ]
         return "\n".join(lines)
 
