@@ -24,10 +24,11 @@ mp = mpmath.mp.clone() if hasattr(mpmath.mp, "clone") else mpmath.MPContext()
 mp.dps = 110
 
 THEOREMS = {
-    "one-sided": "Lehmann and Romano 2005, Corollary 3.4.1: a one-sided test of this form is uniformly most powerful",
+    "one-sided": "Lehmann and Romano 2005, Theorem 3.4.1: a test of this form with these side conditions is uniformly most powerful",
     "outside null": "Lehmann and Romano 2005, Theorem 3.7.1: a test of this form with these side conditions is uniformly most powerful",
     "interval null": "Lehmann and Romano 2005, section 4.2: a test of this form with these side conditions is uniformly most powerful unbiased",
     "point null": "Lehmann and Romano 2005, section 4.2: a test of this form with these side conditions is uniformly most powerful unbiased",
+    "two levels": "Lehmann and Romano 2005, Theorem 3.6.1: a test of this form with these side conditions is most powerful at every alternative among the tests with these two expectations at the limits",
 }
 STEPS = ("support", "nonnegativity", "normalisation", "factorisation", "monotonicity", "law")
 
@@ -404,7 +405,7 @@ def opinion(values: dict[str, Any], test: dict[str, Any]) -> dict[str, Any]:
 
 
 def assumptions(case: Case) -> list[str]:
-    out = [f"theorem: {THEOREMS[case.form]}", *(f"derivation, step {s}: proved" for s in STEPS)]
+    out = [f"theorem: {THEOREMS[case.form if len(set(case.alpha)) == 1 else 'two levels']}", *(f"derivation, step {s}: proved" for s in STEPS)]
     if "total" in case.law["parameters"]:
         out.append("the table of weights: its normaliser, and its mean where one is stated")
     return [

@@ -184,3 +184,21 @@ def test_the_test_of_another_form(maker: ModuleType, certificates: dict[str, Any
     predicate["test"] |= {"form": "outside null", "rejects": "inside"}
     predicate["assumptions"][0] = f"theorem: {recheck.BETWEEN}"
     assert status(maker, maker.statement(predicate)) == 1
+
+
+@pytest.mark.parametrize(
+    ("name", "wrong"),
+    [
+        ("binomial interval", "UNBIASED"),
+        ("poisson irrational", "BETWEEN"),
+        ("poisson interval", "TWO"),
+        ("gamma above", "BETWEEN"),
+        ("gamma point", "UMP"),
+    ],
+)
+def test_another_theorem(maker: ModuleType, certificates: dict[str, Any], name: str, wrong: str) -> None:
+    """Unbiased at two levels is false; of the others, each states another theorem than the question's."""
+    predicate = copy.deepcopy(certificates[name]["predicate"])
+    assert status(maker, maker.statement(predicate)) == 0
+    predicate["assumptions"][0] = f"theorem: {getattr(recheck, wrong)}"
+    assert status(maker, maker.statement(predicate)) == 1

@@ -144,3 +144,14 @@ def test_refusals(words: tuple[object, ...], status: int, reason: str, capsys: p
     assert certify(*words) == status
     assert reason in capsys.readouterr().err
     assert not Path("x").exists()
+
+
+def test_two_levels_are_certified_under_their_own_theorem(tmp_path: Path, capsys: pytest.CaptureFixture[str]) -> None:
+    case = tmp_path / "two.case.toml"
+    text = TARGET.read_text(encoding="utf-8").partition("[problem]")[0]
+    case.write_text(text + '[problem]\nnull = "8 <= lam <= 12"\nalpha = ["0.02", "0.05"]\nn = 1\n', encoding="utf-8")
+    assert certify(case, "-o", tmp_path, "--no-pdf") == 0
+    assert main(["recheck", str(tmp_path / "two.cert.json"), "--case", str(case)]) == 0
+    said = capsys.readouterr().out
+    assert "Theorem 3.6.1" in said
+    assert "unbiased" not in said

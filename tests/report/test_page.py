@@ -262,3 +262,14 @@ def test_title_in_the_tab_is_text(retitled: Made) -> None:
     title = re.search(r"<title>(.*?)</title>", source, re.DOTALL)
     assert title is not None
     assert unescape(title[1]).startswith(HOSTILE["script"])
+
+
+def test_the_first_sentence_says_no_more_than_the_theorem(made: Made) -> None:
+    """With two levels a test is most powerful only among those with its two expectations."""
+    lead = {
+        key: Reader(page_html(certificate_page("lot", made(key))).decode()).text.partition("Derivation:")[0]
+        for key in KEYS
+    }
+    assert {key for key, text in lead.items() if "uniformly" not in text} == {"two levels"}
+    assert "most powerful at every alternative among the tests with these two expectations" in lead["two levels"]
+    assert {key for key, text in lead.items() if "unbiased" in text} == {"interval", "point"}

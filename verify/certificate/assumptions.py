@@ -2,27 +2,35 @@
 
 from __future__ import annotations
 
-from typing import Any
+from collections.abc import Iterable
+from typing import TYPE_CHECKING, Any
 
 from verify.derivation.ledger import Step
 from verify.laws import CLOSED_FORMS
 from verify.problem.hypothesis import Form
+from verify.problem.optimality import optimality
 
-BOOK = "Lehmann and Romano 2005"
-THEOREMS = {
-    Form.ONE_SIDED: f"{BOOK}, Corollary 3.4.1: a one-sided test of this form is uniformly most powerful",
-    Form.OUTSIDE: f"{BOOK}, Theorem 3.7.1: a test of this form with these side conditions is uniformly most powerful",
-    Form.INTERVAL: f"{BOOK}, section 4.2: a test of this form with these side conditions is "
-    "uniformly most powerful unbiased",
-    Form.POINT: f"{BOOK}, section 4.2: a test of this form with these side conditions is "
-    "uniformly most powerful unbiased",
-}
+if TYPE_CHECKING:
+    from verify.problem.problem import Problem
+
 NUMBERS = "the numbers: this law has no closed form here, and its quadrature or inversion is not replayed"
 
 
-def assumptions(form: Form, steps: tuple[Step, ...], law: dict[str, Any]) -> list[str]:
+def theorem(form: Form, levels: Iterable[object]) -> str:
+    """Return the theorem that makes a test with these levels at the limits the optimal one, in the certificate's words.
+
+    Examples
+    --------
+    >>> theorem(Form.OUTSIDE, ["1/20", "1/20"]).partition(": ")[0]
+    'Lehmann and Romano 2005, Theorem 3.7.1'
+    """
+    known = optimality(form, levels)
+    return f"{known.source}: a test of this form with these side conditions is {known.sense}"
+
+
+def assumptions(problem: Problem, steps: tuple[Step, ...], law: dict[str, Any]) -> list[str]:
     """Return the list: the theorem, each step of the derivation with its grade, and what the law leans on."""
-    listed = [f"theorem: {THEOREMS[form]}"]
+    listed = [f"theorem: {theorem(problem.hypothesis.form, problem.levels)}"]
     listed += [f"derivation, step {step.name}: {step.grade.value}" for step in steps]
     if law["name"] == "lattice" and "total" in law["parameters"]:
         listed.append("the table of weights: its normaliser, and its mean where one is stated")

@@ -704,10 +704,10 @@ CONTINUOUS = ("gamma", "normal", "inverse Gaussian")
 
 # ---- 7. The question -----------------------------------------------------------------------------------------------
 
-BOOK = "Lehmann and Romano 2005"
-UMP = f"{BOOK}, Corollary 3.4.1: a one-sided test of this form is uniformly most powerful"
-BETWEEN = f"{BOOK}, Theorem 3.7.1: a test of this form with these side conditions is uniformly most powerful"
-UNBIASED = f"{BOOK}, section 4.2: a test of this form with these side conditions is uniformly most powerful unbiased"
+BEST = "Lehmann and Romano 2005, {}: a test of this form with these side conditions is {}most powerful{}".format
+UMP, BETWEEN = (BEST(f"Theorem {place}", "uniformly ", "") for place in ("3.4.1", "3.7.1"))
+UNBIASED = BEST("section 4.2", "uniformly ", " unbiased")
+TWO = BEST("Theorem 3.6.1", "", " at every alternative among the tests with these two expectations at the limits")
 NULLS = (  # null hypothesis; form; where the test rejects (one-sided: if Q rises); alternative; theorem
     ("{t} <= {0} or {t} >= {1}", "outside null", "inside", "{0} < {t} < {1}", BETWEEN),
     ("{0} <= {t} <= {1}", "interval null", "outside", "{t} < {0} or {t} > {1}", UNBIASED),
@@ -1195,7 +1195,7 @@ REPORTED = "the double-precision numbers: they are reported by another library a
 
 def trusted(q: Question) -> list[str]:
     """What is taken on trust; the certificate has to state it in the same words."""
-    listed = [f"theorem: {q.theorem}"]
+    listed = [f"theorem: {q.theorem if len(set(q.alphas)) == 1 else TWO}"]
     listed += [f"derivation, step {step['name']}: {step['grade']}" for step in q.derivation["steps"]]
     if q.law["name"] == "lattice" and "total" in q.law["parameters"]:
         listed.append("the table of weights: its normaliser, and its mean where one is stated")

@@ -4,6 +4,8 @@ from __future__ import annotations
 
 from typing import Any
 
+from verify.problem.hypothesis import Form
+from verify.problem.optimality import optimality
 from verify.report.formula_tree import read_formula
 from verify.report.math_boxes import Atom, Box, Fence, Row, Script, boxes, relation, row, symbol
 from verify.report.math_text import plain
@@ -24,12 +26,6 @@ from verify.report.page_blocks import (
 from verify.report.page_numbers import V, box_of, joined, name, numbers_of
 from verify.report.prose import formula, prose
 
-BEST = {
-    "one-sided": "uniformly most powerful",
-    "outside null": "uniformly most powerful",
-    "interval null": "uniformly most powerful unbiased",
-    "point null": "uniformly most powerful unbiased",
-}
 SHOWN_WEIGHTS = 24
 TRUSTED_LAW = "no closed form"
 
@@ -64,14 +60,16 @@ def _subject(predicate: dict[str, Any]) -> Runs:
     if len(levels) > 1:
         pairs = zip(problem["alpha"], predicate["side_conditions"], strict=False)
         level = [Text(" with "), *joined([_level(predicate, alpha, entry["at"]) for alpha, entry in pairs])]
-    count = problem["n"]
+    count, sense = problem["n"], optimality(Form(predicate["test"]["form"]), levels).sense
     data = "one observation" if count == 1 else f"{count} independent observations"
+    before, after = (f"{sense} ", "") if len(levels) == 1 else ("", f", {sense},")
     return (
-        Text(f"For {data}, the {BEST[predicate['test']['form']]} test of "),
+        Text(f"For {data}, the {before}test of "),
         *prose(problem["null"], known),
         Text(" against "),
         *prose(problem["alternative"], known),
         *level,
+        *([Text(after)] if after else []),
     )
 
 

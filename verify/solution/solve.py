@@ -16,6 +16,7 @@ from verify.notebook import Shown
 from verify.problem.hypothesis import Form
 from verify.problem.keys import NUMBER_NAMES
 from verify.problem.numbers import Exact, exact
+from verify.problem.optimality import optimality
 from verify.solution.attainable import require_attainable
 from verify.solution.checked import within_shared_digits
 from verify.solution.critical import CriticalFunction, Region
@@ -279,7 +280,7 @@ def solve(problem: Problem, digits: int = 50, derivation: Derivation | None = No
 
     Notes
     -----
-    Source: Lehmann and Romano 2005, Theorems 3.4.1 and 3.7.1 and section 4.2.
+    Source: Lehmann and Romano 2005, Theorems 3.4.1, 3.6.1 and 3.7.1 and section 4.2.
 
     Examples
     --------
@@ -330,7 +331,7 @@ def with_window(
     critical = CriticalFunction("outside" if outside else "inside", window.c1, window.c2, window.phi1, window.phi2)
     return Solution(
         problem, derivation, digits, critical, laws, _two_conditions(problem, window),
-        (*derivation.steps, _numbers_step(laws, window.prec, "3.7.1")), window.prec,
+        (*derivation.steps, _numbers_step(problem, laws, window.prec)), window.prec,
     )  # fmt: skip
 
 
@@ -363,7 +364,7 @@ def with_tail(problem: Problem, derivation: Derivation, laws: tuple[Law, ...], d
     condition = SideCondition(problem.hypothesis.limits[0], problem.levels[0], tail.condition, "phi")
     return Solution(
         problem, derivation, digits, critical, laws, (condition,),
-        (*derivation.steps, _numbers_step(laws, tail.prec, "3.4.1")), tail.prec,
+        (*derivation.steps, _numbers_step(problem, laws, tail.prec)), tail.prec,
     )  # fmt: skip
 
 
@@ -376,7 +377,7 @@ def rejects_above(problem: Problem, derivation: Derivation) -> bool:
     return (derivation.rising == up) == problem.hypothesis.null_below
 
 
-def _numbers_step(laws: tuple[Law, ...], prec: int, theorem: str) -> Step:
+def _numbers_step(problem: Problem, laws: tuple[Law, ...], prec: int) -> Step:
     """The step that the solution adds to the ledger."""
     if prec == 0:
         how = "exact rational arithmetic"
@@ -385,7 +386,8 @@ def _numbers_step(laws: tuple[Law, ...], prec: int, theorem: str) -> Step:
     else:
         how = f"ball arithmetic at {prec} bits: solved for the cutoffs, they map the enclosures into themselves"
     statement = f"The cutoffs and fractions satisfy the side conditions, shown in {how}."
-    reason = f"Lehmann and Romano 2005, Theorem {theorem}: numbers that fit are the only ones"
+    source = optimality(problem.hypothesis.form, problem.levels).source
+    reason = f"{source}: numbers that fit are the only ones"
     if sum_step(laws, prec) is None:
         return Step("numbers", Grade.PROVED, statement, reason)
     within = "as far as intervals around the values of both routes to the law of the sum contain it"
