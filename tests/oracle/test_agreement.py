@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from decimal import Decimal
 from fractions import Fraction
 from functools import cache
@@ -11,7 +12,8 @@ import pytest
 
 import verify
 from verify.errors import InputError, UndecidedError
-from verify.oracle import assert_cutoffs
+from verify.oracle import answers, assert_cutoffs
+from verify.oracle.agreement import number
 from verify.oracle.answers import Answers
 
 DENSITIES = {
@@ -129,7 +131,7 @@ def test_problems_that_cannot_be_used(asked: object) -> None:
 
 def test_no_solution_is_handed_out_for_a_refuted_density() -> None:
     wrong = verify.Density("2*exp(-lam)*lam**x/factorial(x)", "x", "integers >= 0", "lam", "lam > 0")
-    with pytest.raises(UndecidedError, match="normalisation refuted"):
+    with pytest.raises(UndecidedError, match=r"normalisation: refuted.*at lam = 5/7 it is 2"):
         Answers(Path())(wrong, null="lam <= 8", alpha="0.05", n=1)
 
 
@@ -142,3 +144,65 @@ def test_answers_are_kept_by_what_is_asked() -> None:
     assert answers(density("coin"), digits=40, **question).digits == 40
     with pytest.raises(InputError):
         answers(first.problem, n=5)
+
+
+def test_numbers_are_taken_without_rounding() -> None:
+    numpy, mpmath = pytest.importorskip("numpy"), pytest.importorskip("mpmath")
+    third = Fraction(1, 3)
+    with mpmath.workdps(40):
+        assert abs(number(-mpmath.mpf(1) / 3, "c1") + third) < Fraction(1, 10**39)
+    for kind in (numpy.longdouble, numpy.float32, numpy.float64):
+        given = kind(1) / kind(3)
+        assert abs(number(given, "c1") - third) <= Fraction(*numpy.finfo(kind).eps.as_integer_ratio())
+        assert number(kind("nan"), "c1") is None
+        assert number(kind("inf"), "c1") is None
+    assert number(Decimal("NaN"), "c1") is None
+    assert number(mpmath.mpf(3) / 4 * 2**100, "c1") == 3 * 2**98
+
+
+def test_the_size_is_that_of_the_numbers_as_they_are() -> None:
+    """With a level next to 1 the window is narrow: rounded to 8 digits, both its ends would be one point."""
+    narrow = solution("gaps", "theta = 2", "9999999/10000000", 10_000)
+    mine = (float(narrow.c1.mid) * (1 + 1.5e-8), float(narrow.c2.mid) * (1 + 1.5e-8))
+    with pytest.raises(AssertionError) as failure:
+        assert_cutoffs(mine, narrow, digits=8)
+    assert "7 significant digits, 8 asked for" in str(failure.value)
+    assert "truncated" not in str(failure.value)
+    assert "size is 1 " not in str(failure.value)
+
+
+def test_digits_cut_off_by_the_developer_are_named() -> None:
+    short = tuple(int(end.mid * 10_000) / 10_000 for end in (gaps().c1, gaps().c2))
+    with pytest.raises(AssertionError, match=r"cut off instead of rounded \(truncated\)"):
+        assert_cutoffs(short, gaps())
+
+
+@pytest.mark.parametrize(
+    ("digits", "says"),
+    [
+        (0, "0 digits; ask for 1 to 9990"),
+        (-3, "-3 digits"),
+        (True, "True digits"),
+        ("8", "'8' digits"),
+        (2.5, "2.5 digits"),
+        (10_000, "10000 digits"),
+        (30, "30 digits asked for of a solution with 30; prove more of them: digits=40"),
+    ],
+)
+def test_digits_that_cannot_be_compared(digits: object, says: str) -> None:
+    with pytest.raises(InputError, match=re.escape(says)):
+        assert_cutoffs(RIGHT, window(), digits=digits)
+
+
+def test_a_complaint_shows_no_frame_of_ours() -> None:
+    for wrong in (lambda: assert_cutoffs({"lower": 1}, window()), lambda: Answers(Path())("no-such.case.toml")):
+        with pytest.raises(InputError) as failure:
+            wrong()
+        assert len(failure.traceback.filter(failure)) == 2
+
+
+def test_problems_about_one_density_share_a_derivation(monkeypatch: pytest.MonkeyPatch) -> None:
+    first = answers.proven(verify.Problem(density("gaps"), "theta = 2", "0.05", 3), 15)
+    monkeypatch.setattr(answers, "derive", None)
+    again = answers.proven(verify.Problem(density("gaps"), "theta = 5", "0.05", 3), 15)
+    assert again.derivation is first.derivation

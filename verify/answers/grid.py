@@ -54,20 +54,12 @@ class Grid:
     @property
     def problem(self) -> Problem:
         """The base problem."""
-        return base_problem(self.case)
+        return self.case.require_problem()
 
     def designs(self) -> Iterator[Design]:
         """Yield the rows in order: limits outermost, then levels, then sizes."""
         for limits, levels, n in product(self.limits, self.levels, self.sizes):
             yield {"limits": list(limits), "levels": list(levels), "n": n}
-
-
-def base_problem(case: Case) -> Problem:
-    """Return the problem that a grid varies."""
-    if case.problem is None:
-        raise InputError("there is no problem to vary", 'add [problem] with null = "...", alpha = "0.05", n = 10',
-                         key="problem", file=case.path)  # fmt: skip
-    return case.problem
 
 
 def read_grid(text: CaseText) -> Grid:
@@ -79,7 +71,7 @@ def read_grid(text: CaseText) -> Grid:
         With the file and the key.
     """
     case, grid = text.read(), text.grid
-    problem = base_problem(case)
+    problem = case.require_problem()
     try:
         every, limits = _limits(grid, problem)
         levels = _levels(grid, problem, len(problem.hypothesis.limits))

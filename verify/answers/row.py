@@ -5,18 +5,17 @@ from __future__ import annotations
 from functools import cached_property, lru_cache
 from typing import TYPE_CHECKING, Any
 
-from verify.answers.grid import Design, base_problem, problem_of_design
+from verify.answers.grid import Design, problem_of_design
 from verify.derivation.derive import Derivation, derive
-from verify.derivation.ledger import Grade, Step
+from verify.derivation.ledger import MONOTONICITY, Grade, Step
 from verify.errors import InputError, UndecidedError
 from verify.memory import solver
-from verify.parallel.cluster import engines
 from verify.problem.casefile import Case, read_case
 from verify.problem.density import Density
 from verify.problem.numbers import Exact
 from verify.problem.problem import Problem
 from verify.report.json_form import enclosure_json
-from verify.report.pipeline import carries_solution
+from verify.versions import versions
 
 if TYPE_CHECKING:
     from verify.arithmetic.enclosure import Enclosure
@@ -57,18 +56,18 @@ class Asker:
         """Return the step of the derivation that forbids a table, if there is one."""
         derivation = self.derivation
         weak = [step for step in derivation.steps if step.grade in (Grade.REFUTED, Grade.UNDECIDED)]
-        return None if carries_solution(derivation) else min(weak, key=lambda step: step.grade is not Grade.REFUTED)
+        return None if derivation.carries_numbers else min(weak, key=lambda step: step.grade is not Grade.REFUTED)
 
     def about(self) -> dict[str, str]:
         """Return what the rows depend on."""
         case = self.case
-        return {**dict(engines()), "digits": str(self.digits), "case_sha256": case.sha256, "title": case.title}
+        return {**dict(versions()), "digits": str(self.digits), "case_sha256": case.sha256, "title": case.title}
 
     def __call__(self, design: Design) -> Record:
         """Return the record of a row: ``status`` says proved, undecided or unusable; nothing is raised for one row."""
         record = {"limits": design["limits"], "levels": design["levels"], "n": design["n"], "null": ""}
         try:
-            problem = problem_of_design(base_problem(self.case), design)
+            problem = problem_of_design(self.case.require_problem(), design)
             record["null"] = problem.hypothesis.text(problem.density.parameter)
             solution = solver(self.cache)(problem, self.digits, self._derivation_for(problem))
             _require_firm(solution)
@@ -80,10 +79,16 @@ class Asker:
 
     def _derivation_for(self, problem: Problem) -> Derivation:
         """Return the one derivation where it holds for all parameter values, else one that covers these limits."""
-        monotone = self.derivation.step("monotonicity")
+        monotone = self.derivation.step(MONOTONICITY)
         if monotone is not None and monotone.grade is Grade.PROVED:
             return self.derivation
         return _derived(problem.density, problem.hypothesis.limits, self.budget)
+
+
+def holds_everywhere(derivation: Derivation) -> bool:
+    """Whether a derivation serves all limits: its natural parameter is proved to be monotone for every parameter."""
+    step = derivation.step("monotonicity")
+    return step is not None and step.grade is Grade.PROVED
 
 
 @lru_cache(maxsize=4)

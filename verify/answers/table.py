@@ -11,6 +11,7 @@ from typing import Any
 from verify.answers.columns import Column, columns_of
 from verify.answers.row import Record
 from verify.errors import InputError, missing_extra
+from verify.files import beside
 from verify.parallel.batch import batches
 from verify.problem.hypothesis import Form
 
@@ -52,12 +53,11 @@ def write_table(path: Path, form: Form, records: Iterable[Record], about: dict[s
         Written into Parquet's metadata.
     """
     columns = columns_of(form)
-    partial = path.with_name(path.name + ".partial")
     rows = (row_of(number, record, form) for number, record in enumerate(records, 1))
     write = _write_parquet if path.suffix.lower() == ".parquet" else _write_csv
     try:
-        write(partial, columns, rows, about)
-        os.replace(partial, path)
+        with beside(path) as place:
+            write(place, columns, rows, about)
     except OSError as error:
         wrong = f"the table cannot be written: {error.strerror or error}"
         raise InputError(wrong, "give a place that can be written to", key="--output", file=str(path)) from None

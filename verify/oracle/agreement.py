@@ -7,6 +7,7 @@ from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from decimal import Decimal
 from fractions import Fraction
+from numbers import Rational
 from typing import Any
 
 from verify.arithmetic.enclosure import Enclosure
@@ -115,21 +116,30 @@ def _digits(scale: Fraction, error: Fraction) -> int:
 
 def number(given: Any, key: str) -> Fraction | None:
     """Return a number exactly as it is, a double as the rational that it is; None for nan and infinities."""
+    if isinstance(given, Decimal) and not given.is_finite():
+        return None
     if isinstance(given, str | Decimal):
         value = exact(given, key)
         if not isinstance(value, Fraction):
             raise InputError(f"{given} is no rational number", "give its decimals", key=key)
         return value
-    if isinstance(given, Fraction):
-        return given
     try:
-        return Fraction(int(given)) if given == int(given) else Fraction(float(given))
-    except (OverflowError, ValueError):
-        if isinstance(given, float) and not math.isfinite(given):
-            return None
-        raise InputError(f"{str(given)[:40]} is no number", "give a double or an exact number", key=key) from None
-    except TypeError:
-        raise InputError(f"{type(given).__name__} is no number", "give a double or an exact number", key=key) from None
+        return _binary(given)
+    except (TypeError, ValueError):
+        what = str(given)[:40] if isinstance(given, str | bytes) else type(given).__name__
+        raise InputError(f"{what} is no number", "give a double or an exact number", key=key) from None
+
+
+def _binary(given: Any) -> Fraction | None:
+    """Return a number of Python, NumPy or mpmath without rounding it."""
+    if isinstance(given, Rational):
+        return Fraction(int(given.numerator), int(given.denominator))
+    if not math.isfinite(given):
+        return None
+    if hasattr(given, "man_exp"):  # mpmath: a whole number, unsigned, and a power of 2
+        whole, power = given.man_exp
+        return Fraction(-int(whole) if given < 0 else int(whole)) * Fraction(2) ** int(power)
+    return Fraction(*(given if hasattr(given, "as_integer_ratio") else float(given)).as_integer_ratio())
 
 
 def _head(solution: Solution) -> list[str]:

@@ -8,6 +8,7 @@ from fractions import Fraction
 
 from verify.arithmetic.enclosure import Enclosure
 from verify.casebook.found import setting_of
+from verify.comparison.digits import DOUBLE_DIGITS
 from verify.errors import InputError, UndecidedError
 from verify.problem.numbers import exact_text
 from verify.review.consequences import Consequences
@@ -15,8 +16,9 @@ from verify.review.judge import Options
 from verify.review.printed import read_printed
 from verify.review.review import review_numbers
 from verify.review.setting import Setting
+from verify.review.slip_table import TRUNCATED
 from verify.review.style import Style
-from verify.review.verdict import Outcome, Verdict
+from verify.review.verdict import Outcome, SlipFound, Verdict
 from verify.solution.solve import Solution
 
 ROUNDINGS = (8, 6, 4, 3)
@@ -62,13 +64,20 @@ def _one_sided_writing(values: Mapping[str, Fraction], solution: Solution) -> Ma
 def explanation(values: Mapping[str, Fraction], solution: Solution) -> list[str]:
     """Return sentences: the slips that give these numbers, and whether the level is kept."""
     setting = setting_of(solution)
-    verdicts = [_verdict(values, setting, digits) for digits in ROUNDINGS]
-    judged = [verdict for verdict in verdicts if isinstance(verdict, Verdict)]
+    whole, *rounded = (_verdict(values, setting, digits) for digits in (DOUBLE_DIGITS, *ROUNDINGS))
+    judged = [verdict for verdict in (whole, *rounded) if isinstance(verdict, Verdict)]
     if not judged:
-        return [f"  They are not the numbers of a test: {verdicts[0]}"]
-    best = next((verdict for verdict in judged if verdict.slips), judged[0])
-    slips = [f"  {slip.sentence[:-1]} ({slip.name})." for slip in best.slips]
-    return [*(slips or ["  No known slip gives them."]), *_level(best.consequences)]
+        return [f"  They are not the numbers of a test: {whole}"]
+    slips = next((found for verdict in judged if (found := _slips(verdict, values))), [])
+    said = [f"  {slip.sentence[:-1]} ({slip.name})." for slip in slips]
+    return [*(said or ["  No known slip gives them."]), *_level(judged[0].consequences)]
+
+
+def _slips(verdict: Verdict, values: Mapping[str, Fraction]) -> list[SlipFound]:
+    """The slips of a verdict; digits that were cut here, when the numbers were printed, are none."""
+    claimed = verdict.claim.numbers if verdict.claim else {}
+    as_given = all(abs(claimed[name].value - value) <= abs(value) / 10**15 for name, value in values.items())
+    return [slip for slip in verdict.slips if slip.name != TRUNCATED or as_given]
 
 
 def _verdict(values: Mapping[str, Fraction], setting: Setting, digits: int) -> Verdict | str:
