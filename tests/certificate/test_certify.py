@@ -16,6 +16,8 @@ from typing import Any
 import jsonschema
 import pytest
 import rfc8785
+from hypothesis import given, settings
+from hypothesis import strategies as st
 
 import verify
 from verify.certificate import recheck
@@ -244,3 +246,44 @@ def test_a_continuous_cutoff_of_0_has_no_significant_digit_and_gets_no_certifica
     claimed = moved.predicate["test"]["c"]
     assert Fraction(claimed["lower"]) < 3 < Fraction(claimed["upper"])
     assert moved.recheck().status == 0
+
+
+def poisson(null: str, alpha: Any = "0.05", n: int = 1) -> verify.Problem:
+    return verify.Problem(
+        verify.Density("exp(-m)*m**x/factorial(x)", variable="x", support="integers >= 0", parameter="m", space="m > 0"),
+        null=null, alpha=alpha, n=n,
+    )  # fmt: skip
+
+
+@pytest.mark.parametrize(
+    ("other", "digits", "reason"),
+    [
+        (poisson("m <= 8"), 30, "another problem"),
+        (poisson("m >= 7"), 30, "another problem"),
+        (poisson("m <= 7", "0.01"), 30, "another problem"),
+        (poisson("m <= 7", n=2), 30, "another problem"),
+        (poisson("m <= 7"), 15, "15 digits"),
+        (poisson("m <= 7"), 29, "29 digits"),
+    ],
+)
+def test_a_solution_must_be_that_of_the_problem_with_enough_digits(other, digits, reason) -> None:
+    with pytest.raises(InputError, match=reason) as error:
+        certify(poisson("m <= 7"), digits=20, solution=verify.solve(other, digits))
+    assert error.value.key == "solution"
+
+
+def test_a_solution_at_hand_gives_the_same_bytes() -> None:
+    """Another writing of the level is the same problem."""
+    solved = verify.solve(poisson("m <= 7", Fraction(1, 20)), 30)
+    assert certify(poisson("m <= 7"), digits=20, solution=solved).data == certify(poisson("m <= 7"), digits=20).data
+
+
+@given(st.integers(12, 40), st.integers(15, 60))
+@settings(max_examples=10, deadline=None)
+def test_what_is_certified_is_accepted_whatever_the_digits_at_hand(asked: int, solved: int) -> None:
+    solution = verify.solve(poisson("m <= 7"), solved)
+    if solved < asked + 10:
+        with pytest.raises(InputError):
+            certify(poisson("m <= 7"), digits=asked, solution=solution)
+    else:
+        assert certify(poisson("m <= 7"), digits=asked, solution=solution).recheck().status == 0

@@ -116,7 +116,7 @@ def certify(
     issued : str
         Date or words of issue; when empty, SOURCE_DATE_EPOCH is used if set, else it stays empty.
     solution : Solution, optional
-        A solution with at least ``digits + 10`` digits, when one is at hand.
+        A solution of this problem with at least ``digits + 10`` digits, when one is at hand.
 
     Returns
     -------
@@ -126,7 +126,7 @@ def certify(
     Raises
     ------
     InputError
-        For digits or a tolerance out of range.
+        For digits or a tolerance out of range, or a solution of another problem or with too few digits.
     UndecidedError
         When the solution or a step of the derivation is open, or a cutoff of a continuous law is 0 or cannot be told
         from 0.
@@ -147,6 +147,7 @@ def certify(
         raise InputError(f"{digits} digits", "ask for 2 to 1000", key="digits")
     allowed = _tolerance(tolerance)
     solved = solution or solve(problem, digits=max(15, digits + GUARD_DIGITS))
+    _require_answer(solved, problem, digits)
     _require_significant(solved)
     subject = Subject() if case is None else Subject(Path(case.path).name, case.sha256, case.title, case.source)
     statement = build_statement(
@@ -158,6 +159,20 @@ def certify(
         issued=issued or _epoch(),
     )
     return Certificate("certificate" if case is None else case.name, statement, canonical(statement))
+
+
+def _require_answer(solution: Solution, problem: Problem, digits: int) -> None:
+    """Refuse a solution of another problem, or one with too few digits."""
+    asked, solved = problem, solution.problem
+    if (asked.density, asked.hypothesis, asked.levels, asked.n) != (
+        solved.density, solved.hypothesis, solved.levels, solved.n
+    ):  # fmt: skip
+        raise InputError("the solution is that of another problem", "solve the problem asked about", key="solution")
+    if solution.digits < digits + GUARD_DIGITS:
+        raise InputError(
+            f"a solution with {solution.digits} digits",
+            f"solve with digits={digits + GUARD_DIGITS} or more, {GUARD_DIGITS} beyond those certified", key="solution",
+        )  # fmt: skip
 
 
 def _require_significant(solution: Solution) -> None:
