@@ -3,6 +3,7 @@
 SidecheckError
 ├── InputError        the input cannot be used (exit status 2)
 ├── UndecidedError    a question was left open within its budget (exit status 3)
+│   └── UnknownFunction   because a formula holds a function that an arithmetic does not have
 └── NotRational       an exact rational value was asked of a number that has none (internal)
 
 A *refuted* claim or derivation is a result, never an exception.
@@ -67,6 +68,10 @@ def missing_extra(needs: str, extra: str, *, otherwise: str = "", key: str = "",
 
 class UndecidedError(SidecheckError):
     """A question was left open: the reason says what was tried and what would help."""
+
+
+class UnknownFunction(UndecidedError):  # noqa: N818 (a condition, not a mistake)
+    """A formula holds a function of which an arithmetic has no enclosure: what needs it stays open."""
 
 
 class NotRational(SidecheckError):  # noqa: N818 (a condition, not a mistake)

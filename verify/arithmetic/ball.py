@@ -17,11 +17,12 @@ from typing import Any
 
 from flint import acb, arb, ctx, fmpq
 
+from verify.arithmetic.ball_functions import REAL_FUNCTIONS
 from verify.arithmetic.beta_series import incomplete_beta
 from verify.arithmetic.enclosure import Enclosure
 from verify.arithmetic.evaluate import evaluate
 from verify.arithmetic.gamma_series import lower_gamma, terms_needed
-from verify.errors import SidecheckError, UndecidedError
+from verify.errors import UndecidedError, UnknownFunction
 
 Ball = Any
 """A real ball (``flint.arb``)."""
@@ -176,11 +177,15 @@ class Balls:
         return (total + term.union(arb(0))) / (x * arb.pi().sqrt())
 
     def function(self, name: str, *args: Ball) -> Ball:
-        """Evaluate a named function of a formula (the names of :mod:`verify.arithmetic.evaluate`)."""
-        from verify.arithmetic.ball_functions import REAL_FUNCTIONS
+        """Evaluate a named function of a formula (the names of :mod:`verify.arithmetic.evaluate`).
 
+        Raises
+        ------
+        UnknownFunction
+            For a function without an enclosure.
+        """
         if name not in REAL_FUNCTIONS:
-            raise SidecheckError(f"no ball function {name} is known")
+            raise UnknownFunction(f"no enclosure of the function {name} is known")
         return REAL_FUNCTIONS[name](*args)
 
 

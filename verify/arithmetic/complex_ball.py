@@ -15,7 +15,7 @@ from typing import Any
 from flint import acb, arb
 
 from verify.arithmetic.ball import Balls
-from verify.errors import UndecidedError
+from verify.errors import UnknownFunction
 
 ComplexBall = Any
 
@@ -78,7 +78,13 @@ class ComplexBalls:
         return x.erfc()
 
     def function(self, name: str, *args: ComplexBall) -> ComplexBall:
-        """Evaluate a named function of a formula."""
+        """Evaluate a named function of a formula.
+
+        Raises
+        ------
+        UnknownFunction
+            For a function without a complex enclosure.
+        """
         if name in ENTIRE_OR_MEROMORPHIC:
             return ENTIRE_OR_MEROMORPHIC[name](*args)
         if name in REAL_EXTENDED:
@@ -86,7 +92,7 @@ class ComplexBalls:
         if name in CUT:
             inside, value = CUT[name]
             return value(*args) if inside(*args) or not self.analytic else undefined()
-        raise UndecidedError(f"no complex enclosure is known for the function {name}")
+        raise UnknownFunction(f"no complex enclosure is known for the function {name}")
 
 
 def _method(name: str) -> Callable[[ComplexBall], ComplexBall]:

@@ -13,6 +13,7 @@ import mpmath
 
 from verify.arithmetic.enclosure import Enclosure
 from verify.arithmetic.evaluate import evaluate
+from verify.errors import UnknownFunction
 
 
 class High:
@@ -103,11 +104,20 @@ class High:
         return self.mp.exp(x * x) * self.mp.erfc(x)
 
     def function(self, name: str, *args: Any) -> Any:
-        """Evaluate a named function of a formula."""
-        return getattr(self.mp, _NAMES.get(name, name))(*args)
+        """Evaluate a named function of a formula.
+
+        Raises
+        ------
+        UnknownFunction
+            For a function that mpmath does not have.
+        """
+        function = getattr(self.mp, _NAMES.get(name, name), None)
+        if function is None:
+            raise UnknownFunction(f"no high-precision value of the function {name} is known")
+        return function(*args)
 
 
-_NAMES = {"Abs": "fabs", "RisingFactorial": "rf", "ceiling": "ceil", "besseli": "besseli"}
+_NAMES = {"Abs": "fabs", "RisingFactorial": "rf", "ceiling": "ceil"}
 
 
 def high(digits: int) -> High:

@@ -16,7 +16,7 @@ from flint import arb, arb_series, ctx
 
 from verify.arithmetic.ball import Balls, balls
 from verify.arithmetic.evaluate import evaluate
-from verify.errors import SidecheckError
+from verify.errors import UndecidedError, UnknownFunction
 
 Ball = Any
 Series = Any
@@ -72,7 +72,7 @@ class TaylorBalls:
 
         Raises
         ------
-        SidecheckError
+        UnknownFunction
             For a function whose series is not known.
         """
         if len(args) == 1 and name in METHODS:
@@ -83,7 +83,7 @@ class TaylorBalls:
             return _hyperbolic(name, args[0].exp())
         if name in BESSEL and args[0].length() <= 1:
             return _composed(_bessel_derivatives(name, args[0][0], args[1][0], self.terms), args[1])
-        raise SidecheckError(f"no Taylor series of the function {name} is known")
+        raise UnknownFunction(f"no Taylor series of the function {name} is known")
 
 
 def _whole_power(x: Series, k: int) -> Series:
@@ -132,8 +132,10 @@ def taylor(expr: Any, variable: str, at: Any, terms: int, prec: int) -> list[Bal
 
     Raises
     ------
-    SidecheckError
-        For a function whose series is not known, or a pole.
+    UnknownFunction
+        For a function whose series is not known.
+    UndecidedError
+        At a pole.
 
     Examples
     --------
@@ -147,7 +149,7 @@ def taylor(expr: Any, variable: str, at: Any, terms: int, prec: int) -> list[Bal
         try:
             series = A.real(evaluate(expr, A, {variable: arb_series([B.real(at), arb(1)], terms)}))
         except ValueError as error:  # how python-flint says that a divisor vanishes at the point
-            raise SidecheckError(f"{expr} has no Taylor series at {at}") from error
+            raise UndecidedError(f"{expr} has no Taylor series at {at}") from error
         return [series[k] for k in range(terms)]
 
 

@@ -4,12 +4,14 @@ from __future__ import annotations
 
 import sympy as sp
 
-from verify.derivation.cumulants import cumulants
+from verify.derivation.cumulants import cumulants, impossible_variance
 from verify.derivation.factorisation import Factorisation
 from verify.derivation.family import LawFamily
 from verify.derivation.lattice_route import space_ends
 from verify.derivation.monotone_pieces import V, inverse_on, monotone_pieces
+from verify.derivation.points import parameter_points
 from verify.derivation.positivity import Domain
+from verify.derivation.smooth_parts import smooth_slope
 from verify.derivation.transforms import transform_of
 from verify.derivation.zeta_values import open_zeta
 from verify.laws.continuous import OneObservation
@@ -34,14 +36,17 @@ def continuous_family(density: Density, found: Factorisation) -> tuple[LawFamily
     pieces = monotone_pieces(found.statistic, x, support.lower, support.upper)
     if isinstance(pieces, str):
         return pieces
-    constant, core = density.expr.as_independent(x, as_Add=False)
     mean, variance = cumulants(open_zeta(found.log_normaliser), found.natural_parameter, t)
+    wrong = impossible_variance(variance, t, parameter_points(density))
+    if wrong:
+        return wrong
+    constant, core = density.expr.as_independent(x, as_Add=False)
     centred = (sp.Symbol(DEVIATION) - found.statistic) * core
     shape = Shape(
         constant,
         core,
         found.statistic,
-        sp.diff(found.statistic, x),
+        smooth_slope(found.statistic, x),
         centred,
         x.name,
         t.name,

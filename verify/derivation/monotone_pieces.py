@@ -1,7 +1,8 @@
 """Cuts a support into pieces on which a statistic is strictly monotone, each with its inverse.
 
 A piece is accepted when the sign of T' is proved on it: by algebra, or by balls over the whole piece, where
-T' vanishes at an end with T'' of one sign near it. An inverse g is accepted when T(g(v)) = v identically and
+T' vanishes at an end with T'' of one sign near it. Where T holds an absolute value, it is cut at its turning points
+first. An inverse g is accepted when T(g(v)) = v identically and
 g meets the piece at one point: being continuous, it then stays in it.
 
 Source: R. E. Moore, R. B. Kearfott and M. J. Cloud, *Introduction to Interval Analysis* (2009), section 5.2.
@@ -9,7 +10,6 @@ Source: R. E. Moore, R. B. Kearfott and M. J. Cloud, *Introduction to Interval A
 
 from __future__ import annotations
 
-from fractions import Fraction
 from itertools import pairwise
 from typing import Any
 
@@ -19,14 +19,14 @@ from sympy import Expr, Symbol
 from verify.arithmetic.ball import balls
 from verify.arithmetic.evaluate import evaluate
 from verify.derivation.branches import inverse_branches
-from verify.derivation.positivity import Domain
+from verify.derivation.sign_on import sign_on
+from verify.derivation.smooth_parts import smooth_parts, zeros_between
 from verify.derivation.zero import is_zero
+from verify.errors import UnknownFunction
 from verify.laws.shape import Piece
 from verify.problem.numbers import as_exact
 
 V = Symbol("v", real=True)
-NEAR_END = Fraction(1, 64)
-DEEPEST = 14
 
 
 def monotone_pieces(statistic: Expr, x: Symbol, low: Expr, high: Expr) -> tuple[Piece, ...] | str:
@@ -38,38 +38,36 @@ def monotone_pieces(statistic: Expr, x: Symbol, low: Expr, high: Expr) -> tuple[
     >>> [(p.low, p.high, p.rising, p.inverse) for p in monotone_pieces(sp.cos(x), x, -sp.pi, sp.pi)]
     [(-pi, Fraction(0, 1), True, -acos(v)), (Fraction(0, 1), pi, False, acos(v))]
     """
-    turning = _turning_points(statistic, x, low, high)
+    parts = smooth_parts(statistic, x, low, high)
+    if isinstance(parts, str):
+        return f"T = {statistic}: {parts}"
+    pieces = []
+    for left, right, smooth in parts:
+        found = _pieces_of_smooth(smooth, x, left, right)
+        if isinstance(found, str):
+            return found
+        pieces += found
+    return tuple(pieces)
+
+
+def _pieces_of_smooth(statistic: Expr, x: Symbol, low: Expr, high: Expr) -> list[Piece] | str:
+    slope = sp.diff(statistic, x)
+    turning, poles = (zeros_between(part, x, low, high) for part in (slope, sp.fraction(sp.together(slope))[1]))
     if turning is None:
         return f"the turning points of T = {statistic} were not found"
-    ends = [low, *turning, high]
+    cuts = sorted({*turning, *(poles or ())}, key=lambda point: sp.N(point, 30))
     pieces = []
-    for left, right in pairwise(ends):
+    for left, right in pairwise([low, *cuts, high]):
         piece = _piece(statistic, x, left, right)
         if isinstance(piece, str):
             return piece
         pieces.append(piece)
-    return tuple(pieces)
-
-
-def _turning_points(statistic: Expr, x: Symbol, low: Expr, high: Expr) -> list[Expr] | None:
-    slope = sp.diff(statistic, x)
-    if not slope.has(x) or Domain({x: (low, high)}).sign(slope):
-        return []
-    plain = sp.Dummy("x", real=True)
-    try:
-        found = sp.solveset(slope.subs(x, plain), plain, sp.Interval.open(low, high))
-    except (NotImplementedError, ValueError, TypeError):
-        return None
-    if found == sp.S.EmptySet:
-        return []
-    if not isinstance(found, sp.FiniteSet) or not all(point.is_number for point in found):
-        return None
-    return sorted(found, key=lambda point: sp.N(point, 30))
+    return pieces
 
 
 def _piece(statistic: Expr, x: Symbol, left: Expr, right: Expr) -> Piece | str:
     slope = sp.diff(statistic, x)
-    sign = Domain({x: (left, right)}).sign(slope) or _sign_by_balls(slope, x, left, right)
+    sign = sign_on(slope, x, left, right)
     if not sign:
         return f"that T = {statistic} is monotone on ({left}, {right}) was not shown"
     at_left, at_right = (_limit(statistic, x, end, side) for end, side in ((left, "+"), (right, "-")))
@@ -96,39 +94,6 @@ def _limit(statistic: Expr, x: Symbol, end: Expr, side: str) -> Expr | None:
     except (NotImplementedError, ValueError):
         return None
     return value if value.is_number and value.is_extended_real else None
-
-
-def _sign_by_balls(slope: Expr, x: Symbol, left: Expr, right: Expr) -> int:
-    """Return the sign of T' on a finite interval when balls prove it, else 0."""
-    if left.is_infinite or right.is_infinite:
-        return 0
-    with balls(64) as A:
-        low, high = A.real(as_exact(left)), A.real(as_exact(right))
-        width = high - low
-        inner = (low + width * A.real(NEAR_END), high - width * A.real(NEAR_END))
-        sign = _one_sign(slope, x, A, *inner, DEEPEST)
-        if not sign:
-            return 0
-        curve = sp.diff(slope, x)
-        for end, near, towards in ((left, (low, inner[0]), 1), (right, (inner[1], high), -1)):
-            if _one_sign(slope, x, A, *near, DEEPEST) == sign:
-                continue
-            if not is_zero(slope.subs(x, end)) or _one_sign(curve, x, A, *near, DEEPEST) != sign * towards:
-                return 0
-    return sign
-
-
-def _one_sign(expr: Expr, x: Symbol, A: Any, low: Any, high: Any, depth: int) -> int:
-    value = evaluate(expr, A, {x.name: low.union(high)})
-    if value > 0:
-        return 1
-    if value < 0:
-        return -1
-    if depth == 0:
-        return 0
-    middle = (low + high) / 2
-    first = _one_sign(expr, x, A, low, middle, depth - 1)
-    return first if first and first == _one_sign(expr, x, A, middle, high, depth - 1) else 0
 
 
 def inverse_on(statistic: Expr, x: Symbol, left: Expr, right: Expr, *, positive: bool = False) -> Expr | None:
@@ -160,9 +125,18 @@ def _candidates(statistic: Expr, x: Symbol) -> list[Expr]:
             found = sp.solve(statistic.subs(x, plain) - V, plain)
         except NotImplementedError:
             found = []
+    found = list(dict.fromkeys([*found, *map(_with_odd_roots_turned, found)]))
     mirrored = [-candidate for candidate in found]
     turned = [candidate + k * 2 * sp.pi for candidate in [*found, *mirrored] for k in (1, -1)]
     return [*found, *mirrored, *turned] if statistic.has(sp.sin, sp.cos) else found
+
+
+def _with_odd_roots_turned(candidate: Expr) -> Expr:
+    """The candidate with an odd root of w written as minus that of -w, for where w is negative."""
+    return candidate.replace(
+        lambda node: node.is_Pow and node.exp.is_Rational and node.exp.q > 1 and node.exp.q % 2,
+        lambda node: (-1) ** node.exp.p * (-node.base) ** node.exp,
+    )
 
 
 def _through_an_angle(statistic: Expr, x: Symbol) -> list[Expr] | None:
@@ -184,7 +158,10 @@ def _through_an_angle(statistic: Expr, x: Symbol) -> list[Expr] | None:
 def _meets(statistic: Expr, candidate: Expr, x: Symbol, point: Expr) -> bool:
     with balls(64) as A:
         there = A.real(as_exact(point))
-        back = evaluate(candidate, A, {"v": evaluate(statistic, A, {x.name: there})})
+        try:
+            back = evaluate(candidate, A, {"v": evaluate(statistic, A, {x.name: there})})
+        except UnknownFunction:  # such as the imaginary unit: no candidate then
+            return False
         return bool(back.is_finite() and back.overlaps(there))
 
 
