@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
+
 import pytest
 
 from verify.derivation.derive import derive
@@ -80,3 +82,15 @@ def test_unreadable_law_is_the_callers_mistake(law):
     with pytest.raises(InputError) as caught:
         _claims(POISSON, law=law)
     assert caught.value.key == "claim.law"
+
+
+def test_numbers_do_not_lean_on_what_a_colleague_said():
+    derivation = derive(POISSON, claim={"law": "Poisson(lam)"}, n=10)
+    assert (derivation.grade, derivation.footing) == (Grade.REFUTED, Grade.PROVED)
+    assert derivation.carries_numbers
+
+
+def test_numbers_lean_on_every_other_step():
+    derivation = derive(replace(POISSON, formula="2*exp(-lam)*lam**x/factorial(x)"))
+    assert derivation.grade is derivation.footing is Grade.REFUTED
+    assert not derivation.carries_numbers

@@ -58,6 +58,7 @@ def test_a_case_is_read_exactly(tmp_path: Path) -> None:
     assert case.problem.levels == (Fraction(1, 20),) * 2
     assert case.claim == {"law": "Poisson(10*lam)", "c1": "91", "gamma1": "0.3200", "gamma2": "0.51"}
     assert case.expect == {"verdict": "agrees", "slips": ["ends-exchanged"]}
+    assert case.require_problem() is case.problem
     assert case.table == {"lower": "lo", "reported_as": "mean", "window": "open"}
     assert case.sha256 == hashlib.sha256(path.read_bytes()).hexdigest()
 
@@ -158,3 +159,10 @@ def test_random_text_is_a_case_or_an_input_error(text: str) -> None:
         read_case("a.case.toml", text)
     except InputError as error:
         assert str(error).startswith("a.case.toml: ")  # noqa: PT017
+
+
+def test_a_case_without_a_problem_says_what_to_add() -> None:
+    density, _, _ = GOOD.partition("[problem]")
+    with pytest.raises(InputError, match=r"lot: problem: the case asks nothing; add \[problem\] with null") as refused:
+        read_case("lot", density).require_problem()
+    assert refused.value.key == "problem"

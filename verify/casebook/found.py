@@ -16,7 +16,7 @@ from verify.problem.keys import NUMBER_NAMES
 from verify.review.judge import Options
 from verify.review.mapping import style_from
 from verify.review.printed import read_printed
-from verify.review.review import CLAIMS, DERIVATION_KEYS, carries_numbers, review_numbers
+from verify.review.review import DERIVATION_KEYS, review_numbers
 from verify.review.setting import Setting
 
 if TYPE_CHECKING:
@@ -106,10 +106,10 @@ def _longest(case: Case) -> int:
 def _found(case: Case, digits: int, budget: float, cache: str | None) -> Found:
     derivation = derivation_of(case, budget)
     facts = _derived_facts(derivation)
-    if case.problem is None or not carries_numbers(derivation):
+    if case.problem is None or not derivation.carries_numbers:
         return _derivation_alone(case, derivation, facts)
     solution = solver(cache)(case.problem, digits, derivation)
-    grade = weakest([_grade(derivation), *(step.grade for step in solution.steps if step.name == "numbers")])
+    grade = weakest([derivation.footing, solution.numbers_grade])
     facts = replace(
         facts,
         verdict=grade.value,
@@ -143,7 +143,7 @@ def _derived_facts(derivation: Derivation) -> Found:
 
 def _derivation_alone(case: Case, derivation: Derivation, facts: Found) -> Found:
     """A case without numbers: it asks for none, or the derivation carries none."""
-    grade = _grade(derivation)
+    grade = derivation.footing
     if derivation.family is None and grade is not Grade.REFUTED:
         grade = Grade.UNDECIDED
     whole = weakest([grade, derivation.grade])
@@ -167,15 +167,6 @@ def _reviewed(case: Case, setting: Setting, facts: Found) -> Found:
 
 def _weak(derivation: Derivation) -> list[Step]:
     return [step for step in derivation.steps if step.grade in (Grade.REFUTED, Grade.UNDECIDED)]
-
-
-def _grade(derivation: Derivation) -> Grade:
-    """The weakest grade of the steps but those that judge the claim."""
-    return weakest(
-        step.grade
-        for step in derivation.steps
-        if step.name != CLAIMS and (step.name != "numerical look" or step.grade is Grade.REFUTED)
-    )
 
 
 def _flags(solution: Solution) -> tuple[str, ...]:

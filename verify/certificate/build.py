@@ -19,7 +19,7 @@ from verify.certificate.law_text import law_text
 from verify.certificate.opinions import double_precision
 from verify.certificate.question_text import density_text, levels_text
 from verify.certificate.rounding import rounding_table
-from verify.derivation.ledger import Grade, Step, weakest
+from verify.derivation.ledger import CLAIMS, Grade, Step
 from verify.errors import UndecidedError
 from verify.problem.formula import formula_text
 from verify.problem.hypothesis import Form
@@ -137,7 +137,7 @@ def _problem(solution: Solution, subject: Subject, digits: int) -> dict[str, Any
 
 
 def _steps(solution: Solution) -> tuple[Step, ...]:
-    steps = tuple(step for step in solution.derivation.steps if step.name != "claims")
+    steps = tuple(step for step in solution.derivation.steps if step.name != CLAIMS)
     for step in steps:
         if step.grade in (Grade.REFUTED, Grade.UNDECIDED):
             raise UndecidedError(f"no certificate: the step {step.name} is {step.grade.value}: {step.statement}")
@@ -146,12 +146,11 @@ def _steps(solution: Solution) -> tuple[Step, ...]:
 
 def _derivation(solution: Solution, steps: tuple[Step, ...]) -> dict[str, Any]:
     derivation = solution.derivation
-    leaning = [step.grade for step in steps if step.name != "numerical look"]
     parts = {
         name: formula_text(getattr(derivation, name)) for name in ("natural_parameter", "statistic", "log_normaliser")
     }
     return {
-        "grade": weakest(leaning).value,
+        "grade": derivation.footing.value,
         **parts,
         "rising": derivation.rising,
         "steps": [

@@ -37,13 +37,13 @@ def run(args: argparse.Namespace) -> int:
     from verify.memory import watched
     from verify.planning import Planner
     from verify.problem.casefile import read_case
-    from verify.report.pipeline import carries_solution, derive_case, problem_of
+    from verify.report.pipeline import derive_case
     from verify.report.planning import plan_json, plan_text
 
     case = read_case(args.case)
-    problem = problem_of(case)
+    problem = case.require_problem()
     derivation = derive_case(case, budget=args.budget)
-    if not carries_solution(derivation):
+    if not derivation.carries_numbers:
         note("the derivation does not carry a test; see sidecheck derive")
         return status.of_grade(derivation.grade) or status.UNDECIDED
     with watched(args.cache, note) as cache:

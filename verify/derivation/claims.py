@@ -13,7 +13,7 @@ from verify.derivation.affine import Affine, affine_map
 from verify.derivation.certain import sign_at
 from verify.derivation.family import LawFamily
 from verify.derivation.law_of_variance import CLOSED_FORMS
-from verify.derivation.ledger import Grade, Step, weakest
+from verify.derivation.ledger import CLAIMS, Grade, Step, weakest
 from verify.derivation.named_law import read_law
 from verify.derivation.points import parameter_points, support_points
 from verify.derivation.zero import is_zero
@@ -76,12 +76,12 @@ def _affine_step(what: str, text: str, ours: Expr, found: Affine) -> Step:
     if found.scale is not None:
         same = found.scale == 1 and found.shift == 0
         how = "is the one derived" if same else f"is {found.scale} times the derived {ours} plus {found.shift}"
-        return Step("claims", Grade.PROVED, f"the claimed {what} {text} {how}", "scale and shift are free")
+        return Step(CLAIMS, Grade.PROVED, f"the claimed {what} {text} {how}", "scale and shift are free")
     if found.witness:
         statement = f"the claimed {what} {text} is no affine function of {ours}"
-        return Step("claims", Grade.REFUTED, statement, "", found.witness)
+        return Step(CLAIMS, Grade.REFUTED, statement, "", found.witness)
     return Step(
-        "claims",
+        CLAIMS,
         Grade.UNDECIDED,
         f"whether the claimed {what} {text} is an affine function of {ours} stayed open",
     )
@@ -95,7 +95,7 @@ def _product_step(natural: Affine, statistic: Affine) -> list[Step]:
     if is_zero(product - 1):
         return []
     statement = "the claimed natural parameter and statistic do not belong together"
-    return [Step("claims", Grade.REFUTED, statement, "", f"up to shifts their product is {product} times Q T")]
+    return [Step(CLAIMS, Grade.REFUTED, statement, "", f"up to shifts their product is {product} times Q T")]
 
 
 def _law_step(text: str, derived: Derived, statistic: Affine) -> Step:
@@ -105,11 +105,11 @@ def _law_step(text: str, derived: Derived, statistic: Affine) -> Step:
     if family is None or not isinstance(family.law, CLOSED_FORMS) or statistic.scale is None:
         open_law = family is None or not isinstance(family.law, CLOSED_FORMS)
         reason = "no law in closed form was derived" if open_law else "the claimed statistic does not agree"
-        return Step("claims", Grade.UNDECIDED, f"the claimed law {text} was not compared", reason)
+        return Step(CLAIMS, Grade.UNDECIDED, f"the claimed law {text} was not compared", reason)
     ours = absorbed(family, n, statistic.scale, statistic.shift)
     if ours is None or type(ours) is not type(claimed):
         right = str(ours) if ours is not None else moved(family, statistic.scale, statistic.shift).text(n=n)
-        return Step("claims", Grade.REFUTED, f"the law of V is not {text}", "", f"it is {right}")
+        return Step(CLAIMS, Grade.REFUTED, f"the law of V is not {text}", "", f"it is {right}")
     return _compare_parameters(text, claimed, ours, derived)
 
 
@@ -124,14 +124,14 @@ def _compare_parameters(text: str, claimed: Law, ours: Law, derived: Derived) ->
             numbers = {symbol: point if symbol == t else sp.Integer(3) for symbol in difference.free_symbols}
             if sign_at(difference, numbers):
                 witness = f"{name} is {mine}, not {claimed.parameters[name]} (at {t} = {point} they differ)"
-                return Step("claims", Grade.REFUTED, f"the law of V is {ours}, not {text}", "", witness)
+                return Step(CLAIMS, Grade.REFUTED, f"the law of V is {ours}, not {text}", "", witness)
         grade = Grade.UNDECIDED
     statement = (
         f"the law of V is the claimed {text}"
         if grade is Grade.PROVED
         else f"whether V has the claimed law {text} stayed open"
     )
-    return Step("claims", weakest([grade, derived.law_grade]), statement, f"derived: {ours}")
+    return Step(CLAIMS, weakest([grade, derived.law_grade]), statement, f"derived: {ours}")
 
 
 def moved(family: LawFamily, scale: Expr, shift: Expr | None) -> LawFamily:

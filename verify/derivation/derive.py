@@ -16,7 +16,19 @@ from verify.derivation.family import LawFamily
 from verify.derivation.kernel import with_normaliser
 from verify.derivation.law_of_variance import CLOSED_FORMS
 from verify.derivation.law_step import law_step
-from verify.derivation.ledger import Grade, Step, weakest
+from verify.derivation.ledger import (
+    CLAIMS,
+    FACTORISATION,
+    LAW,
+    MONOTONICITY,
+    NONNEGATIVITY,
+    NORMALISATION,
+    NUMERICAL_LOOK,
+    SUPPORT,
+    Grade,
+    Step,
+    weakest,
+)
 from verify.derivation.monotonicity import monotonicity_step
 from verify.derivation.nonnegativity import nonnegativity_step
 from verify.derivation.normalisation import total_mass
@@ -61,9 +73,22 @@ class Derivation(Shown):
     @property
     def grade(self) -> Grade:
         """The weakest grade of all steps; the numerical look, a second opinion, counts when it fails."""
+        return weakest([self.footing, *(step.grade for step in self.steps if step.name == CLAIMS)])
+
+    @property
+    def footing(self) -> Grade:
+        """The weakest grade that numbers lean on: that of all steps but the claims."""
+        second = (CLAIMS, NUMERICAL_LOOK)
         return weakest(
-            step.grade for step in self.steps if step.name != "numerical look" or step.grade is Grade.REFUTED
+            step.grade
+            for step in self.steps
+            if step.name not in second or (step.name == NUMERICAL_LOOK and step.grade is Grade.REFUTED)
         )
+
+    @property
+    def carries_numbers(self) -> bool:
+        """Whether a solution can lean on it: the law is known and no step but the claims is refuted."""
+        return self.family is not None and self.footing is not Grade.REFUTED
 
     @property
     def law(self) -> str:
@@ -152,18 +177,18 @@ def derive(
     exact_limits = tuple(as_expr(limit) for limit in limits)
     with Worker(budget) as worker:
         ledger = _Ledger(worker)
-        ledger.run("support", support_step, density)
-        if ledger.grades("support") is Grade.REFUTED:
+        ledger.run(SUPPORT, support_step, density)
+        if ledger.grades(SUPPORT) is Grade.REFUTED:
             return _finished(density, None, None, None, ledger.steps)
-        ledger.run("nonnegativity", nonnegativity_step, density)
+        ledger.run(NONNEGATIVITY, nonnegativity_step, density)
         found = _factorised(ledger, density)
         rising = family = None
         if found is not None:
             rising, family = _law(ledger, density, found, exact_limits)
             if claim:
-                grade = ledger.grades("law")
+                grade = ledger.grades(LAW)
                 derived = Derived(density, found.statistic, found.natural_parameter, family, grade, n)
-                ledger.run("claims", _claims, dict(claim), derived)
+                ledger.run(CLAIMS, _claims, dict(claim), derived)
             if family is not None and n is not None and n > 1 and isinstance(family.law, OneObservation):
                 step = open_or_checked(family, limits, n)
                 ledger.steps.extend(() if step is None else (step,))
@@ -185,12 +210,12 @@ def _finished(
 
 def _factorised(ledger: _Ledger, density: Density) -> Factorisation | None:
     """Normalisation and factorisation; a kernel is factorised before it is summed."""
-    found: Factorisation | None = ledger.run("factorisation", factorisation_step, density)
+    found: Factorisation | None = ledger.run(FACTORISATION, factorisation_step, density)
     factorisation = ledger.steps.pop()
     if density.is_kernel:
-        found = ledger.run("normalisation", with_normaliser, density, found)
+        found = ledger.run(NORMALISATION, with_normaliser, density, found)
     else:
-        ledger.run("normalisation", total_mass, density)
+        ledger.run(NORMALISATION, total_mass, density)
     ledger.steps.append(factorisation)
     return found
 
@@ -200,7 +225,7 @@ def _law(
 ) -> tuple[bool | None, LawFamily | None]:
     points = parameter_points(density, limits)
     rising = ledger.run(
-        "monotonicity",
+        MONOTONICITY,
         monotonicity_step,
         found.natural_parameter,
         density.t,
@@ -208,12 +233,12 @@ def _law(
         points,
         limits,
     )
-    leaning = ledger.grades("support", "nonnegativity", "normalisation", "factorisation")
-    if leaning is Grade.REFUTED or ledger.grades("monotonicity") is Grade.REFUTED:
+    leaning = ledger.grades(SUPPORT, NONNEGATIVITY, NORMALISATION, FACTORISATION)
+    if leaning is Grade.REFUTED or ledger.grades(MONOTONICITY) is Grade.REFUTED:
         return rising, None
-    family = ledger.run("law", law_step, density, found, leaning)
+    family = ledger.run(LAW, law_step, density, found, leaning)
     if family is not None and isinstance(family.law, CLOSED_FORMS):
-        ledger.run("numerical look", numerical_look, density, found.statistic, family, points[0])
+        ledger.run(NUMERICAL_LOOK, numerical_look, density, found.statistic, family, points[0])
     return rising, family
 
 

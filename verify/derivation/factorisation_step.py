@@ -8,7 +8,7 @@ from verify.derivation.factorisation import (
     factorise_by_difference,
     factorise_two_points,
 )
-from verify.derivation.ledger import Grade, Step
+from verify.derivation.ledger import FACTORISATION, Grade, Step
 from verify.derivation.points import domain_of, mass_at, parameter_points, support_points
 from verify.derivation.witness import rank_witness
 from verify.errors import SidecheckError
@@ -23,7 +23,7 @@ def factorisation_step(density: Density) -> tuple[Step, Factorisation | None]:
     xs, ts = support_points(density.parsed_support), parameter_points(density)
     if not density.expr.has(t):
         statement = f"the density does not depend on the parameter {t}"
-        return Step("factorisation", Grade.REFUTED, statement, "", f"{t} does not occur in {density.expr}"), None
+        return Step(FACTORISATION, Grade.REFUTED, statement, "", f"{t} does not occur in {density.expr}"), None
     found = factorise(density.expr, x, t, domain, (xs[0], ts[0]))
     if found is None and density.parsed_support.is_finite and len(density.parsed_support.points) == 2:
         found = factorise_two_points(mass_at(density, xs[0]), mass_at(density, xs[1]), x, t, domain, (xs[0], xs[1]))
@@ -39,13 +39,13 @@ def factorisation_step(density: Density) -> tuple[Step, Factorisation | None]:
         witness, searched = "", f"no witness could be looked for: {error}"
     if witness:
         statement = "the density is not a one-parameter exponential family: D(x,t) D(x1,t1) = D(x1,t) D(x,t1) fails"
-        return Step("factorisation", Grade.REFUTED, statement, "certain in ball arithmetic", witness), None
+        return Step(FACTORISATION, Grade.REFUTED, statement, "certain in ball arithmetic", witness), None
     found = factorise_by_difference(density.expr, x, t, domain, (xs[0], ts[0]))
     if found is not None:
         return _proved(density, found)
     statement = "whether the density is a one-parameter exponential family stayed open"
     return Step(
-        "factorisation", Grade.UNDECIDED, statement, f"no form h(x) exp(Q T - A) was found, and {searched}"
+        FACTORISATION, Grade.UNDECIDED, statement, f"no form h(x) exp(Q T - A) was found, and {searched}"
     ), None
 
 
@@ -57,4 +57,4 @@ def _proved(density: Density, found: Factorisation, reason: str = REASON) -> tup
         statement = f"the kernel is h(x) exp(Q T - B) with {parts}, B({t}) = {found.log_normaliser}"
     else:
         statement = f"f = h(x) exp(Q T - A) with {parts}, A({t}) = {found.log_normaliser}"
-    return Step("factorisation", Grade.PROVED, statement, reason), found
+    return Step(FACTORISATION, Grade.PROVED, statement, reason), found

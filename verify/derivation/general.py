@@ -19,7 +19,7 @@ from verify.derivation.continuous_route import continuous_family
 from verify.derivation.factorisation import Factorisation
 from verify.derivation.family import LawFamily
 from verify.derivation.lattice_route import lattice_family
-from verify.derivation.ledger import Grade, Step
+from verify.derivation.ledger import LAW, Grade, Step
 from verify.laws.continuous import OneObservation
 from verify.problem.density import Density
 
@@ -41,8 +41,8 @@ def general_family(
     route = lattice_family if density.parsed_support.kind == "integers" else continuous_family
     answer = route(density, found)
     if isinstance(answer, str):
-        return Step("law", Grade.UNDECIDED, "the law of T stayed open", answer), None
+        return Step(LAW, Grade.UNDECIDED, "the law of T stayed open", answer), None
     family, why = answer
     whose = "T" if isinstance(family.law, OneObservation) else "the sum"
     statement = f"the law of {whose} is computed from the density itself: {family.law.name}"
-    return Step("law", leaning, statement, f"{why}; {family.law.source}"), family
+    return Step(LAW, leaning, statement, f"{why}; {family.law.source}"), family

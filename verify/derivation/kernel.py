@@ -18,7 +18,7 @@ from verify.arithmetic.ball import balls
 from verify.arithmetic.evaluate import evaluate
 from verify.derivation.certain import sign_of_ball
 from verify.derivation.factorisation import Factorisation
-from verify.derivation.ledger import Grade, Step
+from verify.derivation.ledger import NORMALISATION, Grade, Step
 from verify.derivation.points import domain_of, mass_at
 from verify.derivation.signs import sign_of
 from verify.derivation.zero import normal
@@ -36,9 +36,9 @@ def with_normaliser(density: Density, found: Factorisation | None) -> tuple[Step
     t, count = density.t, len(density.parsed_support.points)
     if not _somewhere_positive(density):
         statement = f"whether the sum of the kernel is positive for every {t} stayed open"
-        return Step("normalisation", Grade.UNDECIDED, statement), None
+        return Step(NORMALISATION, Grade.UNDECIDED, statement), None
     statement = f"the normaliser is the sum of the kernel over {count} points, finite and positive for every {t}"
-    step = Step("normalisation", Grade.PROVED, statement, "a finite sum of non-negative terms, one of them positive")
+    step = Step(NORMALISATION, Grade.PROVED, statement, "a finite sum of non-negative terms, one of them positive")
     if found is None:
         return step, None
     total = written_out(density) if count <= WRITTEN_OUT else sp.Sum(density.expr, (density.x, *_ends(density)))

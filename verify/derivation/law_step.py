@@ -9,7 +9,7 @@ from verify.derivation.family import LawFamily
 from verify.derivation.general import general_family
 from verify.derivation.kernel import kernel_certainly_another, written_out
 from verify.derivation.law_of_variance import name_law
-from verify.derivation.ledger import Grade, Step
+from verify.derivation.ledger import LAW, Grade, Step
 from verify.derivation.points import domain_of, parameter_points
 from verify.derivation.variance_function import Cube, Quadratic, variance_function
 from verify.derivation.variance_numbers import certainly_another
@@ -34,25 +34,25 @@ def law_step(density: Density, found: Factorisation, leaning: Grade) -> tuple[St
     t, points = density.t, parameter_points(density)
     if density.is_kernel and len(density.parsed_support.points) > LONGEST_KERNEL:
         statement = "the sum of so long a kernel is not searched for a law in closed form"
-        return general_law(density, found, Step("law", leaning, statement))
+        return general_law(density, found, Step(LAW, leaning, statement))
     if _certainly_another(density, found, points[1:4]):
         statement = "the variance function of T is neither quadratic nor a cube: no law in closed form is named"
-        return general_law(density, found, Step("law", leaning, statement, "certain in ball arithmetic; Morris 1982"))
+        return general_law(density, found, Step(LAW, leaning, statement, "certain in ball arithmetic; Morris 1982"))
     variance = variance_function(_written_out(density, found), found.natural_parameter, t)
     if variance is None:
         statement = "no quadratic or cubic variance function of T was found"
-        return general_law(density, found, Step("law", leaning, statement))
+        return general_law(density, found, Step(LAW, leaning, statement))
     named = name_law(variance, t, domain_of(density))
     shown = f"variance function V(m) = {_formula(variance)}"
     if named.family is None and named.word == SECANT and isinstance(variance, Quadratic):
         statement = f"T has a {SECANT} law with r = {1 / variance.v2}"
-        return general_law(density, found, Step("law", leaning, statement, f"{shown}; Morris 1982"))
+        return general_law(density, found, Step(LAW, leaning, statement, f"{shown}; Morris 1982"))
     if named.family is None:
-        return general_law(density, found, Step("law", leaning, "T has no named law", f"{shown}; {named.word}"))
+        return general_law(density, found, Step(LAW, leaning, "T has no named law", f"{shown}; {named.word}"))
     source = "Letac and Mora 1990" if isinstance(variance, Cube) else "Morris 1982"
     law = named.family.text()
     statement = f"T = {law}" if "Y of law" in law else f"T has the law {law}"
-    return Step("law", leaning, statement, f"{shown}, which determines the family: {source}"), named.family
+    return Step(LAW, leaning, statement, f"{shown}, which determines the family: {source}"), named.family
 
 
 def _certainly_another(density: Density, found: Factorisation, points: list[Expr]) -> bool:
@@ -77,7 +77,7 @@ def general_law(density: Density, found: Factorisation, step: Step) -> tuple[Ste
     """
     built, family = general_family(density, found, step.grade)
     reason = f"{step.reason}; {built.reason}" if step.reason else built.reason
-    return Step("law", built.grade, f"{step.statement}; {built.statement}", reason), family
+    return Step(LAW, built.grade, f"{step.statement}; {built.statement}", reason), family
 
 
 def _formula(variance: Quadratic | Cube) -> Expr:

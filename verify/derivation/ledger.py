@@ -1,10 +1,18 @@
-"""The ledger of a derivation: graded steps (METHODS section 6)."""
+"""The ledger of a derivation: graded steps, by name."""
 
 from __future__ import annotations
 
 from collections.abc import Iterable
 from dataclasses import dataclass
 from enum import Enum
+
+SUPPORT, NONNEGATIVITY, NORMALISATION = "support", "nonnegativity", "normalisation"
+FACTORISATION, MONOTONICITY, LAW = "factorisation", "monotonicity", "law"
+LAW_OF_THE_SUM = "law of the sum"
+CLAIMS = "claims"
+"""The steps that judge what a colleague said; nothing that is derived leans on them."""
+NUMERICAL_LOOK = "numerical look"
+"""A second opinion of the law: it counts when it fails."""
 
 
 class Grade(Enum):
@@ -45,8 +53,7 @@ class Step:
     Attributes
     ----------
     name : str
-        Short fixed name: ``normalisation``, ``support``, ``factorisation``, ``monotonicity``, ``claims``, ``law``,
-        ``numerical look``.
+        One of the short fixed names of this module; ``numbers``, the step that a solution adds.
     grade : Grade
         How firmly it stands.
     statement : str

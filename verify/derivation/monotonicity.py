@@ -17,7 +17,7 @@ from verify.arithmetic.ball import balls, to_enclosure
 from verify.arithmetic.enclosure import Enclosure
 from verify.arithmetic.evaluate import evaluate
 from verify.derivation.certain import sign_at, sign_of_ball
-from verify.derivation.ledger import Grade, Step
+from verify.derivation.ledger import MONOTONICITY, Grade, Step
 from verify.derivation.positivity import Domain, Interval
 from verify.derivation.signs import factors, sign_of
 
@@ -54,14 +54,14 @@ def monotonicity_step(
         word = "increasing" if sign > 0 else "decreasing"
         lower, upper = domain.ranges[t]
         statement = f"Q({t}) = {natural} is strictly {word} for {lower} < {t} < {upper}"
-        return Step("monotonicity", Grade.PROVED, statement, f"sign of Q'({t}) = {_short(derivative)}"), sign > 0
+        return Step(MONOTONICITY, Grade.PROVED, statement, f"sign of Q'({t}) = {_short(derivative)}"), sign > 0
     signs = {point: sign_at(derivative, {t: point}) for point in [*points, *_far_points(domain.ranges[t])]}
     up = next((point for point, s in signs.items() if s > 0), None)
     down = next((point for point, s in signs.items() if s < 0), None)
     if up is not None and down is not None:
         witness = f"Q'({t}) > 0 at {t} = {up} and Q'({t}) < 0 at {t} = {down}"
         statement = f"Q({t}) = {natural} is not monotone"
-        return Step("monotonicity", Grade.REFUTED, statement, f"Q'({t}) = {_short(derivative)}", witness), None
+        return Step(MONOTONICITY, Grade.REFUTED, statement, f"Q'({t}) = {_short(derivative)}", witness), None
     return _by_balls(natural, derivative, t, [*limits] if len(limits) > 1 else [*limits, *points])
 
 
@@ -103,11 +103,11 @@ def _by_balls(natural: Expr, derivative: Expr, t: Symbol, values: Sequence[Expr]
     if not sign:
         statement = f"whether Q({t}) = {natural} is strictly monotone stayed open"
         reason = f"no proof of the sign of Q'({t}), neither symbolic nor in {PIECES} pieces of [{lower}, {upper}]"
-        return Step("monotonicity", Grade.UNDECIDED, statement, reason), None
+        return Step(MONOTONICITY, Grade.UNDECIDED, statement, reason), None
     word = "increasing" if sign > 0 else "decreasing"
     statement = f"Q({t}) = {natural} is strictly {word} for {lower} <= {t} <= {upper}"
     reason = f"ball arithmetic: the sign of Q'({t}) is certain on this interval; beyond it nothing was shown"
-    return Step("monotonicity", Grade.ENCLOSED, statement, reason), sign > 0
+    return Step(MONOTONICITY, Grade.ENCLOSED, statement, reason), sign > 0
 
 
 def certain_sign_between(expr: Expr, t: Symbol, lower: Fraction, upper: Fraction) -> int:

@@ -6,7 +6,7 @@ import sympy as sp
 from sympy import Expr
 
 from verify.derivation.certain import sign_at, value_text
-from verify.derivation.ledger import Grade, Step
+from verify.derivation.ledger import NONNEGATIVITY, Grade, Step
 from verify.derivation.points import domain_of, mass_at, parameter_points, support_points
 from verify.derivation.positivity import Domain
 from verify.derivation.signs import factors, sign_of
@@ -27,11 +27,11 @@ def nonnegativity_step(density: Density) -> Step:
             point = {density.x: x, density.t: t}
             if sign_at(density.expr, point) < 0:
                 witness = f"f({x}; {t}) = {value_text(density.expr, point)}"
-                return Step("nonnegativity", Grade.REFUTED, "the density is negative somewhere", "", witness)
+                return Step(NONNEGATIVITY, Grade.REFUTED, "the density is negative somewhere", "", witness)
     if _point_by_point(density, domain):
         return _proved("shown for each point of the support in turn")
     return Step(
-        "nonnegativity",
+        NONNEGATIVITY,
         Grade.CHECKED,
         f"the density was not negative at any of {len(xs) * len(ts)} points (x, {density.t})",
         "no symbolic proof of its sign was found",
@@ -47,7 +47,7 @@ def _from_lower_end(density: Density) -> Expr:
 
 
 def _proved(reason: str) -> Step:
-    return Step("nonnegativity", Grade.PROVED, "the density is non-negative", reason)
+    return Step(NONNEGATIVITY, Grade.PROVED, "the density is non-negative", reason)
 
 
 def _nonnegative(factor: Expr, domain: Domain) -> bool:

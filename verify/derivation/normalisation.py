@@ -18,7 +18,7 @@ from sympy import Expr, Symbol
 from verify.derivation.certain import sign_at, value_text
 from verify.derivation.closed import Closed, is_one, normal_form
 from verify.derivation.integrals import integral
-from verify.derivation.ledger import Grade, Step
+from verify.derivation.ledger import NORMALISATION, Grade, Step
 from verify.derivation.numeric_mass import PartialMass, partial_integral, partial_sum
 from verify.derivation.positivity import Domain, Interval, points_inside
 from verify.derivation.sums import series
@@ -27,7 +27,6 @@ from verify.errors import SidecheckError
 if TYPE_CHECKING:
     from verify.problem.density import Density
 
-NAME = "normalisation"
 SAMPLES = 3
 """At so many parameter values an open question is looked at numerically."""
 LARGEST_LIST = 300
@@ -173,7 +172,7 @@ def _judge(question: Mass, found: Closed) -> TotalMass:
     reason += "; converges as " + ", ".join(told) if told else ""
     if is_one(found.value, question.domain):
         statement = f"the {question.word} of the density over its support is 1 for every {question.t}"
-        return TotalMass(Step(NAME, Grade.PROVED, statement, reason), sp.S.One)
+        return TotalMass(Step(NORMALISATION, Grade.PROVED, statement, reason), sp.S.One)
     value = shown(found.value, question.domain)
     for at in question.samples:
         if sign_at(found.value - 1, {question.t: at}):
@@ -182,12 +181,12 @@ def _judge(question: Mass, found: Closed) -> TotalMass:
             witness = f"at {question.t} = {at} it is {seen}"
             if seen.startswith(("1.000000", "0.999999")):
                 witness += f", off by {value_text(found.value - 1, {question.t: at}, 3)}"
-            return TotalMass(Step(NAME, Grade.REFUTED, statement, reason, witness), value)
+            return TotalMass(Step(NORMALISATION, Grade.REFUTED, statement, reason, witness), value)
     places = ", ".join(map(str, question.samples))
     statement = f"the {question.word} of the density is {sp.sstr(value)}, which"
     statement += f" cannot be told from 1 in balls of 512 bits at {question.t} = {places}"
     reason += "; no proof that this is identically 1"
-    return TotalMass(Step(NAME, Grade.CHECKED, statement, reason), value)
+    return TotalMass(Step(NORMALISATION, Grade.CHECKED, statement, reason), value)
 
 
 def shown(value: Expr, domain: Domain) -> Expr:
@@ -210,7 +209,7 @@ def _divergence(question: Mass, found: Closed) -> TotalMass | None:
                 statement += " for every " if everywhere else " for some "
                 witness = f"{question.t} = {at}, where {sp.sstr(condition)} is not positive"
                 reason = f"{'; '.join(found.sources)}: finite only where {sp.sstr(condition)} > 0"
-                return TotalMass(Step(NAME, Grade.REFUTED, statement + str(question.t), reason, witness))
+                return TotalMass(Step(NORMALISATION, Grade.REFUTED, statement + str(question.t), reason, witness))
     return None
 
 
@@ -227,7 +226,7 @@ def _numerically(question: Mass, why: str) -> TotalMass:
         if look.exceeds_one:
             statement = f"the {question.word} of the density is not 1: part of the support has more"
             witness = f"at {question.t} = {at} the mass is at least {look.text()}"
-            return TotalMass(Step(NAME, Grade.REFUTED, statement, "added up in ball arithmetic", witness))
+            return TotalMass(Step(NORMALISATION, Grade.REFUTED, statement, "added up in ball arithmetic", witness))
         looks.append(look)
     return _looked(question, looks, why)
 
@@ -237,7 +236,7 @@ def _looked(question: Mass, looks: list[PartialMass], why: str) -> TotalMass:
     digits = min(look.digits for look in looks)
     if digits >= 6:
         statement = f"the {question.word} of the density is 1 to {digits} digits at {question.t} = {places}"
-        return TotalMass(Step(NAME, Grade.CHECKED, statement, f"added up in ball arithmetic; {why}"))
+        return TotalMass(Step(NORMALISATION, Grade.CHECKED, statement, f"added up in ball arithmetic; {why}"))
     worst = min(looks, key=lambda look: look.digits)
     witness = f"at {question.t} = {worst.at} the mass that was found is {worst.text()}"
     return _open(question, f"{why}; added up numerically, 1 was not reached", witness)
@@ -245,7 +244,7 @@ def _looked(question: Mass, looks: list[PartialMass], why: str) -> TotalMass:
 
 def _open(question: Mass, reason: str, witness: str = "") -> TotalMass:
     statement = f"whether the {question.word} of the density is 1 was left open"
-    return TotalMass(Step(NAME, Grade.UNDECIDED, statement, reason, witness))
+    return TotalMass(Step(NORMALISATION, Grade.UNDECIDED, statement, reason, witness))
 
 
 # ---- unnormalised kernels
@@ -259,7 +258,7 @@ def normaliser(question: Mass, table: tuple[Fraction, ...] | None) -> TotalMass:
     statement = f"the weights have a finite, positive sum for every {question.t}, by which they are divided"
     if _weights_positive(question, table):
         reason = f"{int(upper - lower) + 1} weights, none negative and not all zero"
-        return TotalMass(Step(NAME, Grade.PROVED, statement, reason))
+        return TotalMass(Step(NORMALISATION, Grade.PROVED, statement, reason))
     return _open(question, "the weights were not shown to be non-negative and not all zero")
 
 
@@ -288,4 +287,4 @@ def _convergent(question: Mass) -> TotalMass:
     statement = (
         f"the kernel is divided by its {question.word}, {sp.sstr(value)}, which is finite and positive"
     )
-    return TotalMass(Step(NAME, Grade.PROVED, statement, "; ".join(found.sources)), value)
+    return TotalMass(Step(NORMALISATION, Grade.PROVED, statement, "; ".join(found.sources)), value)

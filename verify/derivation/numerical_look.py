@@ -15,7 +15,7 @@ from verify.arithmetic.high import high
 from verify.derivation.branches import inverse_branches
 from verify.derivation.certain import sign_of_ball
 from verify.derivation.family import LawFamily
-from verify.derivation.ledger import Grade, Step
+from verify.derivation.ledger import NUMERICAL_LOOK, Grade, Step
 from verify.derivation.points import mass_at, support_points
 from verify.derivation.quadrature import integral_below, integral_from_zero
 from verify.laws.base import Law
@@ -58,7 +58,7 @@ def numerical_look(density: Density, statistic: Expr, family: LawFamily, at: Exp
     where = f"{density.t} = {at}"
     if found is None:
         return Step(
-            "numerical look",
+            NUMERICAL_LOOK,
             Grade.UNDECIDED,
             f"no look at the law at {where} was possible",
             "T has no simple inverse",
@@ -67,12 +67,12 @@ def numerical_look(density: Density, statistic: Expr, family: LawFamily, at: Exp
     law = family.at(value, number)
     if digits < 0:
         statement = f"the convolution of f differs from {law} at {where}"
-        return Step("numerical look", Grade.REFUTED, statement, "finite sums in ball arithmetic", place)
+        return Step(NUMERICAL_LOOK, Grade.REFUTED, statement, "finite sums in ball arithmetic", place)
     if digits >= ENOUGH:
         statement = f"the {number}-fold convolution of f agrees with {law} to {digits} digits at {where}"
-        return Step("numerical look", Grade.CHECKED, statement, place)
+        return Step(NUMERICAL_LOOK, Grade.CHECKED, statement, place)
     statement = f"the {number}-fold convolution of f agrees with {law} to {digits} digits only at {where}"
-    return Step("numerical look", Grade.UNDECIDED, statement, place)
+    return Step(NUMERICAL_LOOK, Grade.UNDECIDED, statement, place)
 
 
 def _agreement(difference: Any, size: Any) -> int:

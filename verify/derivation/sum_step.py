@@ -6,7 +6,7 @@ from collections.abc import Sequence
 from dataclasses import replace
 from typing import TYPE_CHECKING
 
-from verify.derivation.ledger import Grade, Step
+from verify.derivation.ledger import LAW_OF_THE_SUM, Grade, Step
 from verify.errors import UndecidedError
 from verify.laws.base import Law
 from verify.laws.two_routes import LEAST_BITS, SumByTwoRoutes
@@ -16,7 +16,6 @@ if TYPE_CHECKING:
     from verify.derivation.family import LawFamily
     from verify.problem.numbers import Exact
 
-NAME = "law of the sum"
 ROUTES = (
     "two numerical inversions are compared, one of the derived log normaliser and one of the density itself, along "
     "different contours; neither bounds its error (Abate and Whitt 1992)"
@@ -39,7 +38,7 @@ def sum_step(laws: Sequence[Law], prec: int) -> Step | None:
     digits = min(law.shared_digits(prec) for law in checked)
     places = ", ".join(f"{law.one.parameter} = {law.at}" for law in checked)
     statement = f"the law of the sum of {checked[0].n} is known to the {digits} digits two routes share at {places}"
-    return Step(NAME, Grade.CHECKED, statement, f"{checked[0].why}; {ROUTES}")
+    return Step(LAW_OF_THE_SUM, Grade.CHECKED, statement, f"{checked[0].why}; {ROUTES}")
 
 
 def open_or_checked(family: LawFamily, limits: Sequence[Exact], n: int) -> Step | None:
@@ -47,12 +46,12 @@ def open_or_checked(family: LawFamily, limits: Sequence[Exact], n: int) -> Step 
     try:
         return sum_step([family.at(limit, n) for limit in limits], LEAST_BITS)
     except UndecidedError as error:
-        return Step(NAME, Grade.UNDECIDED, f"the law of the sum of {n} stayed open", str(error))
+        return Step(LAW_OF_THE_SUM, Grade.UNDECIDED, f"the law of the sum of {n} stayed open", str(error))
 
 
 def with_sum_step(derivation: Derivation, laws: Sequence[Law], prec: int) -> Derivation:
     """Return the derivation with this step at its end where one is due, and without one for another number."""
-    step, others = sum_step(laws, prec), tuple(known for known in derivation.steps if known.name != NAME)
+    step, others = sum_step(laws, prec), tuple(known for known in derivation.steps if known.name != LAW_OF_THE_SUM)
     if step is None and others == derivation.steps:
         return derivation
     return replace(derivation, steps=others if step is None else (*others, step))

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from verify.derivation.ledger import Grade, Step
+from verify.derivation.ledger import SUPPORT, Grade, Step
 from verify.derivation.points import parameter_points
 from verify.problem.density import Density
 
@@ -18,14 +18,14 @@ def support_step(density: Density) -> Step:
             continue
         first, second = parameter_points(density)[:2]
         return Step(
-            "support",
+            SUPPORT,
             Grade.REFUTED,
             f"the support {support.text} depends on {t}",
             "all laws of an exponential family have one support (Lehmann and Romano 2005, section 2.7)",
             f"its end {end} is {end.subs(t, first)} at {first} and {end.subs(t, second)} at {second}",
         )
     return Step(
-        "support",
+        SUPPORT,
         Grade.PROVED,
         f"the support {support.text} does not depend on {t}",
         "its ends are free of the parameter",

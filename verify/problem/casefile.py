@@ -66,6 +66,19 @@ class Case:
     table: dict[str, Any] = field(default_factory=dict)
     sha256: str = ""
 
+    def require_problem(self) -> Problem:
+        """Return what the case asks of the parameter.
+
+        Raises
+        ------
+        InputError
+            When it asks nothing: it has no table ``[problem]``.
+        """
+        if self.problem is None:
+            right = 'add [problem] with null = "...", alpha = "0.05", n = 10'
+            raise InputError("the case asks nothing", right, key="problem", file=self.path)
+        return self.problem
+
 
 @dataclass(frozen=True)
 class CaseText:

@@ -12,11 +12,7 @@ if TYPE_CHECKING:
     from verify.comparison.compare import Comparison
     from verify.derivation.derive import Derivation
     from verify.problem.casefile import Case
-    from verify.problem.problem import Problem
     from verify.solution.solve import Solution
-
-CLAIMS = "claims"
-"""Name of the step that judges what the case file claims; the solution does not lean on it."""
 
 
 @dataclass(frozen=True)
@@ -57,26 +53,6 @@ def derive_case(case: Case, *, budget: float = 10.0) -> Derivation:
     return derive(case.density, limits=limits, claim=case.claim, n=problem.n if problem else None, budget=budget)
 
 
-def carries_solution(derivation: Derivation) -> bool:
-    """Whether a solution can lean on it: the law is known and no step but the claims is refuted."""
-    refuted = any(step.grade is Grade.REFUTED for step in derivation.steps if step.name != CLAIMS)
-    return derivation.family is not None and not refuted
-
-
-def problem_of(case: Case) -> Problem:
-    """Return what a case asks of the parameter.
-
-    Raises
-    ------
-    InputError
-        When the case asks nothing (it has no ``[problem]``).
-    """
-    if case.problem is None:
-        raise InputError("nothing to solve", 'add [problem] with null = "...", alpha = "0.05", n = 10',
-                         key="problem", file=str(case.path))  # fmt: skip
-    return case.problem
-
-
 def solve_case(case: Case, derivation: Derivation, *, digits: int, cache: str | None = None) -> Solution:
     """Solve what a case asks, with a memory where ``cache`` names a directory; a complaint names the case's file.
 
@@ -90,7 +66,7 @@ def solve_case(case: Case, derivation: Derivation, *, digits: int, cache: str | 
     from verify.memory import solver
 
     try:
-        return solver(cache)(problem_of(case), digits, derivation)
+        return solver(cache)(case.require_problem(), digits, derivation)
     except InputError as error:
         raise error.at(file=str(case.path)) from None
 
@@ -107,9 +83,9 @@ def run_case(
     UndecidedError
         When the solution cannot be proved within its precision.
     """
-    problem_of(case)
+    case.require_problem()
     derivation = derive_case(case, budget=budget)
-    if not carries_solution(derivation):
+    if not derivation.carries_numbers:
         return CaseRun(case, derivation)
     solution = solve_case(case, derivation, digits=digits, cache=cache)
     if not with_comparison:

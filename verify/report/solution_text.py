@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from verify.derivation.ledger import Grade
+from verify.derivation.ledger import MONOTONICITY, NONNEGATIVITY, NORMALISATION, Grade
 from verify.problem.optimality import optimality
 from verify.report.equations import equation_lines
 from verify.report.layout import field, heading, number
@@ -40,7 +40,7 @@ def cutoff_lines(solution: Solution) -> list[str]:
 
 def _optimality(solution: Solution) -> str:
     optimal = str(optimality(solution.form, solution.problem.levels))
-    monotone = solution.derivation.step("monotonicity")
+    monotone = solution.derivation.step(MONOTONICITY)
     if monotone is not None and monotone.grade is not Grade.PROVED:
         return f"{optimal}, among parameter values for which Q is shown to be monotone (see above)"
     return optimal
@@ -58,7 +58,7 @@ def _direction(solution: Solution) -> list[str]:
 
 def _footing(solution: Solution) -> list[str]:
     """Say that the digits are those of the density as written, where it was not proved to be one."""
-    names = ("nonnegativity", "normalisation")
+    names = (NONNEGATIVITY, NORMALISATION)
     open_ = [step.name for step in solution.derivation.steps if step.name in names and step.grade is Grade.CHECKED]
     if not open_:
         return []

@@ -7,8 +7,7 @@ from dataclasses import dataclass, replace
 from fractions import Fraction
 
 from verify.arithmetic.enclosure import Enclosure
-from verify.derivation.ledger import Grade
-from verify.derivation.sum_step import NAME as SUM_STEP
+from verify.derivation.ledger import LAW_OF_THE_SUM, Grade
 from verify.derivation.sum_step import with_sum_step
 from verify.errors import UndecidedError
 from verify.problem.hypothesis import Form
@@ -265,6 +264,6 @@ def _leaning(verdict: Verdict) -> Verdict:
             outcome=Outcome.UNDECIDED,
             notes=(f"the derivation stayed open at: {open_steps}", *verdict.notes),
         )
-    if verdict.derivation.step(SUM_STEP) is not None:
+    if verdict.derivation.step(LAW_OF_THE_SUM) is not None:
         return replace(verdict, notes=(NOT_PROVED, *verdict.notes))
     return verdict

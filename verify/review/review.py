@@ -21,7 +21,6 @@ if TYPE_CHECKING:
     from verify.derivation.derive import Derivation
     from verify.problem.problem import Problem
 
-CLAIMS = "claims"
 DERIVATION_KEYS = ("natural_parameter", "statistic", "law")
 STYLE_KEYS = ("reported_as", "window", "region", "fractions")
 Given = str | int | Fraction | Decimal | None
@@ -106,19 +105,11 @@ def review_numbers(
 ) -> Verdict:
     """Judge printed numbers in a setting; without any, the derivation alone."""
     derivation = setting.derivation
-    if not carries_numbers(derivation):
-        return derivation_verdict(derivation, setting.problem)
-    if not numbers:
+    if not (numbers and derivation.carries_numbers):
         return derivation_verdict(derivation, setting.problem)
     style, remark = styled(style, said, derivation)
     verdict = judge(setting, read_claim(numbers, style, setting.form), options)
     return replace(verdict, notes=(*verdict.notes, remark)) if remark else verdict
-
-
-def carries_numbers(derivation: Derivation) -> bool:
-    """Whether the law is known and no step but the claims is refuted."""
-    refuted = any(step.grade is Grade.REFUTED for step in derivation.steps if step.name != CLAIMS)
-    return derivation.family is not None and not refuted
 
 
 def derivation_verdict(derivation: Derivation, problem: Problem | None) -> Verdict:

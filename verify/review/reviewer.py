@@ -9,7 +9,7 @@ from pathlib import Path
 from typing import TYPE_CHECKING
 
 from verify.derivation.derive import derive
-from verify.derivation.ledger import Grade
+from verify.derivation.ledger import MONOTONICITY, Grade
 from verify.errors import InputError, UndecidedError
 from verify.problem.casefile import SUFFIX, Case, read_case
 from verify.problem.hypothesis import Form
@@ -27,7 +27,7 @@ from verify.review.review import (
     printed_numbers,
     review_numbers,
 )
-from verify.review.setting import Cache, Setting, require_null
+from verify.review.setting import Cache, Setting
 
 if TYPE_CHECKING:
     from verify.derivation.derive import Derivation
@@ -130,7 +130,7 @@ class Reviewer:
             return derive(case.density, limits=chosen, claim=claim, n=n, budget=self.budget)
 
         found = self.derivations.get((case.path, limits), lambda: make(limits))
-        step = found.step("monotonicity")
+        step = found.step(MONOTONICITY)
         if problem is None or problem.hypothesis.limits == limits or step is None or step.grade is Grade.PROVED:
             return found
         wanted = problem.hypothesis.limits
@@ -150,7 +150,7 @@ class Reviewer:
 def problem_of(case: Case, words: Mapping[str, str]) -> Problem:
     """Return the problem of a row: the case's own, with what the row says put in its place."""
     if not {"null", "lower", "upper", "alpha", "n"} & words.keys():
-        return require_null(case.problem)
+        return case.require_problem()
     own = case.problem
     null = words.get("null") or _null_of_limits(case, words) or (own.null if own else "")
     alpha = _levels(words["alpha"]) if "alpha" in words else (own.alpha if own else "")

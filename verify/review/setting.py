@@ -13,7 +13,6 @@ from typing import TYPE_CHECKING, Any, Generic, TypeVar
 
 from verify.arithmetic.ball import balls, to_enclosure
 from verify.arithmetic.enclosure import Enclosure
-from verify.errors import InputError
 from verify.problem.hypothesis import Form
 from verify.review.engine import TwoSided
 from verify.review.numbers import Numbers, numbers_of
@@ -168,16 +167,3 @@ class Cache(Generic[K, T]):
         if len(self.kept) > self.size:
             self.kept.popitem(last=False)
         return value
-
-
-def require_null(problem: Problem | None) -> Problem:
-    """Return the problem, or say that there is none.
-
-    Raises
-    ------
-    InputError
-        Without a problem.
-    """
-    if problem is None:
-        raise InputError("nothing is asked", 'add [problem] with null = "...", alpha = "0.05", n = 10', key="problem")
-    return problem
