@@ -10,7 +10,8 @@ from dask_cluster import PATIENCE
 
 from verify.errors import InputError, UndecidedError
 from verify.parallel import run_all
-from verify.parallel.cluster import do_checked, engines
+from verify.parallel.cluster import do_checked
+from verify.versions import versions
 
 
 def test_a_killed_worker_changes_no_result_and_no_order(cluster):
@@ -70,6 +71,6 @@ def test_without_dask_the_advice_names_the_extra(monkeypatch):
 
 
 def test_a_worker_with_other_engines_is_refused():
-    other = (("sidecheck", "0.0"), *engines()[1:])
+    other = (("sidecheck", "0.0"), *versions()[1:])
     with pytest.raises(InputError, match=r"a worker of the cluster has sidecheck \S+ instead of 0\.0"):
         do_checked(other, neg, (1,))

@@ -5,10 +5,9 @@ from __future__ import annotations
 import hashlib
 import platform
 from functools import cache
-from importlib.metadata import PackageNotFoundError, version
 from pathlib import Path
 
-ENGINES = ("sympy", "mpmath", "python-flint", "scipy", "numpy")
+from verify.versions import versions as found
 
 
 @cache
@@ -23,18 +22,4 @@ def build() -> str:
 
 def versions() -> dict[str, str]:
     """Name -> version of this program, its build, Python, and the engines."""
-    from verify import __version__
-
-    return {
-        "sidecheck": __version__,
-        "build": build(),
-        "python": platform.python_version(),
-        **{name: _version(name) for name in ENGINES},
-    }
-
-
-def _version(name: str) -> str:
-    try:
-        return version(name)
-    except PackageNotFoundError:
-        return "absent"
+    return {**dict(found()), "build": build(), "python": platform.python_version()}

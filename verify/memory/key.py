@@ -7,8 +7,8 @@ import json
 from typing import TYPE_CHECKING
 
 from verify.memory.place import FORMAT
-from verify.parallel.cluster import engines
 from verify.problem.numbers import exact_text
+from verify.versions import versions
 
 if TYPE_CHECKING:
     from verify.derivation.derive import Derivation
@@ -39,6 +39,6 @@ def key_of(problem: Problem, digits: int, derivation: Derivation) -> str:
         "n": problem.n,
         "digits": digits,
         "format": FORMAT,
-        "engines": engines(),
+        "engines": versions(),
     }
     return hashlib.sha256(json.dumps(parts, sort_keys=True).encode()).hexdigest()

@@ -7,20 +7,17 @@ from collections import deque
 from collections.abc import Callable, Iterable, Iterator
 from concurrent.futures import CancelledError
 from contextlib import contextmanager, suppress
-from functools import cache
 from itertools import islice
 from typing import Any
 
 from verify.errors import InputError, UndecidedError, missing_extra
 from verify.parallel.batch import batch_text, batches, do
+from verify.versions import Versions, versions
 
 SECONDS_TO_CONNECT, SECONDS_FOR_WORKERS = 10, 30
 """How long a scheduler may take to answer, and its first worker to come."""
 AHEAD = 256
 """Batches handed out ahead of the one waited for."""
-
-ENGINES = ("sympy", "mpmath", "python-flint", "numpy", "scipy")
-Versions = tuple[tuple[str, str], ...]
 
 
 def on_cluster(function: Callable[[Any], Any], items: Iterable[Any], scheduler: str, chunk: int) -> Iterator[Any]:
@@ -30,7 +27,7 @@ def on_cluster(function: Callable[[Any], Any], items: Iterable[Any], scheduler: 
         work = batches(items, chunk)
         while True:
             for batch in islice(work, AHEAD - len(waiting)):
-                waiting.append((batch, client.submit(do_checked, engines(), function, batch, pure=False)))
+                waiting.append((batch, client.submit(do_checked, versions(), function, batch, pure=False)))
             if not waiting:
                 return
             yield from _results(client, scheduler, *waiting.popleft())
@@ -104,25 +101,9 @@ def _only_our_words() -> Iterator[None]:
         log.disabled = before
 
 
-@cache
-def engines() -> Versions:
-    """Names and versions of what a result depends on; a worker with others is refused."""
-    from importlib.metadata import PackageNotFoundError, version
-
-    import verify
-
-    def found(name: str) -> str:
-        try:
-            return version(name)
-        except PackageNotFoundError:
-            return "none"
-
-    return (("sidecheck", verify.__version__), *((name, found(name)) for name in ENGINES))
-
-
 def do_checked(wanted: Versions, function: Callable[[Any], Any], batch: tuple[Any, ...]) -> list[Any]:
     """Work on a batch on another machine, if that has the same engines."""
-    pairs = zip(engines(), wanted, strict=True)
+    pairs = zip(versions(), wanted, strict=True)
     others = [f"{name} {here} instead of {there}" for (name, here), (_, there) in pairs if here != there]
     if others:
         raise _other_software(f"a worker of the cluster has {', '.join(others)}")
