@@ -4,13 +4,12 @@ from __future__ import annotations
 
 import hashlib
 import json
-import os
-import tempfile
 from collections.abc import Mapping
 from dataclasses import dataclass
 from pathlib import Path
 
 from verify.errors import InputError
+from verify.files import write_atomically
 
 SUMS = "SHA256SUMS"
 
@@ -111,18 +110,3 @@ def _sums(directory: Path, files: Mapping[str, bytes]) -> bytes:
             known[name] = digest
     known |= {name: hashlib.sha256(data).hexdigest() for name, data in files.items()}
     return "".join(f"{known[name]}  {name}\n" for name in sorted(known) if name).encode()
-
-
-def write_atomically(path: Path, data: bytes) -> None:
-    """Write to a temporary file beside the target, flush it to the disk, and rename it: all or nothing."""
-    handle, temporary = tempfile.mkstemp(dir=path.parent, prefix=f".{path.name}.")
-    try:
-        with os.fdopen(handle, "wb") as file:
-            file.write(data)
-            file.flush()
-            os.fsync(file.fileno())
-        os.chmod(temporary, 0o644)
-        os.replace(temporary, path)
-    except BaseException:
-        os.unlink(temporary)
-        raise

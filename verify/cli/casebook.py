@@ -83,7 +83,6 @@ def _write(args: argparse.Namespace, results: Sequence[Result]) -> None:
     """Write the reports, each all or nothing."""
     from verify.casebook.junit import junit_xml
     from verify.casebook.lines import json_lines
-    from verify.certificate.write import write_atomically
     from verify.errors import InputError
 
     wanted = {"junit": junit_xml, "jsonl": json_lines}
@@ -93,6 +92,7 @@ def _write(args: argparse.Namespace, results: Sequence[Result]) -> None:
                 write_atomically(Path(place), make(results))
             except OSError as error:
                 wrong = f"cannot write: {error.strerror or error}"
+    from verify.files import write_atomically
                 raise InputError(wrong, "name a file that can be written", key=f"--{key}", file=place) from None
 
 

@@ -7,6 +7,7 @@ from fractions import Fraction
 from pathlib import Path
 
 from verify.arithmetic.enclosure import Enclosure
+from verify.files import beside
 from verify.review.cells import Table
 from verify.review.record import Record, kind_of
 
@@ -56,6 +57,5 @@ def write_annotated(table: Table, out: Path, records: Iterable[Record], numbers:
     as they are.
     """
     rows: Iterator[tuple[int, Sequence[str]]] = ((record["row"], added_cells(record, numbers)) for record in records)
-    partial = out.with_name(out.name + ".part")
-    table.annotate(partial, added_names(numbers), rows)
-    partial.replace(out)
+    with beside(out) as place:
+        table.annotate(place, added_names(numbers), rows)
