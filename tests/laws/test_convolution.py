@@ -18,7 +18,9 @@ from verify.derivation.derive import derive
 from verify.derivation.factorisation import Factorisation
 from verify.errors import UndecidedError
 from verify.laws.base import Law
+from verify.laws.continuous_sum import split
 from verify.laws.convolution import SumByConvolution
+from verify.laws.replaced import _require_falling
 from verify.problem.density import Density
 
 METHODS = ("density", "cdf", "sf", "shortfall")
@@ -158,3 +160,30 @@ def test_a_polynomial_stays_within_its_bound(pole: Fraction) -> None:
 def test_a_function_with_a_singular_end_is_refused() -> None:
     with pytest.raises(UndecidedError, match="analytic"):
         bounds_on_ellipses(lambda z, analytic: z.sqrt(analytic=analytic))
+
+
+@pytest.mark.parametrize("reach", [Fraction(1, 100), Fraction(1), Fraction(5), Fraction(60)])
+def test_a_wide_place_is_cut_beyond_all_that_it_covers(reach: Fraction) -> None:
+    """Over a ball the half-line is cut beyond its far end; the density there is that of the points inside."""
+    density = ("t*exp(-t*x)", "reals > 0", "t > 0")
+    wanted, found = laws_of(*density, Fraction(1), 2)
+    with balls(80) as A:
+        for centre in (Fraction(1, 2), Fraction(7)):
+            wide = A.real(centre - min(reach, centre / 2)).union(A.real(centre + reach))
+            middle, rest = split(A, wide)
+            cut = found._replaced(middle, 80, rest).interval  # type: ignore[attr-defined]
+            assert A.real(cut.high) > wide.upper()
+            for share in (Fraction(1, 4), Fraction(1, 2), Fraction(1)):
+                place = centre + share * reach
+                assert found.density(A, wide).overlaps(wanted.density(A, A.real(place)))
+
+
+def test_a_cut_that_does_not_enclose_the_middle_proves_nothing_of_the_tails() -> None:
+    """A log-concave density falls beyond the cuts when it is larger at a point between them, and only then."""
+    _, law = laws_of("exp(-(x-t)**2/8)/sqrt(8*pi)", "reals", "reals", Fraction(1), 2)
+    one = law.one  # type: ignore[attr-defined]
+    with balls(80) as A:
+        _require_falling(one, Fraction(1), A, Fraction(-20), Fraction(20))
+        for low, high in ((Fraction(5), Fraction(20)), (Fraction(-20), Fraction(-5)), (Fraction(20), Fraction(-20))):
+            with pytest.raises(UndecidedError, match="fall beyond a cut"):
+                _require_falling(one, Fraction(1), A, low, high)

@@ -88,15 +88,15 @@ class SumByConvolution(ContinuousSum):
         """Return a function of the sum at an exact point, with more bits until its relative accuracy suffices."""
         bits, value = A.prec + GUARD_BITS, None
         for _ in range(ROUNDS):
-            value = self._replaced(v, bits).read(v, kind, from_low=from_low, moved=moved)
+            value = self._replaced(v, bits, moved).read(v, kind, from_low=from_low, moved=moved)
             reached = value.rel_accuracy_bits()
             if reached >= A.prec - 8 or moved is not None:
                 break
             bits += min(max(A.prec - reached, 8), 4 * A.prec) + 8
         return value + A.real(0)
 
-    def _replaced(self, v: Number, bits: int) -> Replaced:
-        return replaced(self.one, self.at, self.n, bits, v)
+    def _replaced(self, v: Number, bits: int, moved: Number | None = None) -> Replaced:
+        return replaced(self.one, self.at, self.n, bits, v, moved)
 
     def _from_above(self, v: Any) -> bool:
         """Whether to read from the high end: the near one, or the only one there is."""

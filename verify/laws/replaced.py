@@ -183,8 +183,8 @@ def _bits_of(size: Number) -> int:
     return 1 << 30 if size == 0 else -int(float(size.log().mid()) / log(2))
 
 
-def replaced(one: Shape, at: Exact, n: int, bits: int, v: Number) -> Replaced:
-    """Return the replacement that serves a point at a precision; kept with the observation.
+def replaced(one: Shape, at: Exact, n: int, bits: int, v: Number, moved: Number | None = None) -> Replaced:
+    """Return the replacement that serves a point at a precision, and all that it may be moved by.
 
     Raises
     ------
@@ -196,7 +196,7 @@ def replaced(one: Shape, at: Exact, n: int, bits: int, v: Number) -> Replaced:
     if low is None and high is None:
         return Replaced(one, at, n, bits, _cut_on_both_sides(one, at, bits))
     if low is None or high is None:
-        return Replaced(one, at, n, bits, _reaching(one, at, n, v))
+        return Replaced(one, at, n, bits, _reaching(one, at, n, v, moved))
     return Replaced(one, at, n, bits, Stretch(low, high, up_to(v - v), False, False))
 
 
@@ -225,27 +225,29 @@ def _require_falling(one: Shape, at: Exact, A: Any, low: Fraction, high: Fractio
     inner = midpoint(evaluate(one.mean, A, names))
     ends = [evaluate(one.pushed, A, {**names, "v": A.real(v)}) for v in (low, high)]
     peak = evaluate(one.pushed, A, {**names, "v": inner})
-    if not (one.log_concave and all(end < peak for end in ends)):
+    between = A.real(low) < inner and inner < A.real(high)
+    if not (one.log_concave and between and all(end < peak for end in ends)):
         raise UndecidedError(
             "the density of the statistic was not shown to fall beyond a cut on both sides, so its sum is not enclosed"
         )
 
 
-def _reaching(one: Shape, at: Exact, n: int, v: Number) -> Stretch:
-    """Cut a half-line where a sum of v needs no observation beyond it: then nothing is lost below v."""
+def _reaching(one: Shape, at: Exact, n: int, v: Number, moved: Number | None) -> Stretch:
+    """Cut a half-line where a sum of v, wherever it is moved, needs no observation beyond it: then nothing is lost."""
     end = one.ends[0] if one.ends[1] is None else one.ends[1]
     with balls(BOUND_BITS) as A:
         start = A.real(end)
         variance = evaluate(one.variance, A, {one.parameter: A.real(at)})
         gap = A.real(Fraction(2) ** round(log2(float(variance)) / 2))
+        distance = abs(v - n * start) + (0 if moved is None else abs(moved))
         for _ in range(FARTHEST):
-            if abs(v - n * start) < gap:
+            if distance < gap:
                 break
             gap = 2 * gap
         else:
             raise UndecidedError("the point lies too far out in a tail of the sum")
         cut = to_fraction(midpoint(start + gap if one.ends[1] is None else start - gap))
-        if not abs(v - n * start) < abs(A.real(cut) - start):
+        if not distance < abs(A.real(cut) - start):
             raise UndecidedError("the point lies too near the cut of a tail")
     if one.ends[1] is None:
         return Stretch(end, cut, A.real(0), False, True)
