@@ -93,3 +93,25 @@ def test_accepting_at_the_ends_loses_exactly_the_end_masses():
     masses = exhaustive.binomial(12, Fraction(1, 2))
     lost = solution.gamma1.mid * masses[int(solution.c1.lower)] + solution.gamma2.mid * masses[int(solution.c2.lower)]
     assert abs(full.mid - cut.mid - lost) < Fraction(1, 10**25)
+
+
+@pytest.mark.parametrize(
+    ("null", "at"),
+    [
+        ("t <= 2", "2"),
+        ("t <= 2 or t >= 4", "1"),
+        ("t <= 2 or t >= 4", "4"),
+        ("2 <= t <= 4", "3"),
+        ("t = sqrt(2)", "2/sqrt(2)"),
+        ("t >= 2*log(3)", "log(9)"),
+    ],
+)
+def test_no_power_is_planned_in_the_null(null, at):
+    """Equality of irrational numbers is decided, not rounded."""
+    with pytest.raises(InputError, match="is in the null") as error:
+        planner("poisson", null, "0.05", at)
+    assert error.value.key == "at"
+
+
+def test_a_hair_beyond_the_null_is_an_alternative():
+    assert planner("poisson", "t <= 2", "0.05", "2 + 1e-60").at > 2

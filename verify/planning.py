@@ -76,11 +76,14 @@ class Planner:
         The alternative at which power is wanted.
     cache : str, optional
         Directory of results that were proved before.
+
+    Raises
+    ------
+    InputError
+        When the alternative lies outside the parameter space, or in the null.
     """
 
-    def __init__(
-        self, problem: Problem, derivation: Derivation, at: str | Exact, cache: str | None = None
-    ) -> None:
+    def __init__(self, problem: Problem, derivation: Derivation, at: str | Exact, cache: str | None = None) -> None:
         self.problem, self.derivation, self._solve = problem, derivation, solver(cache)
         self.at = exact(at, key="at")
         self._solutions: dict[tuple[int, int], Solution] = {}
@@ -88,6 +91,11 @@ class Planner:
             raise InputError(
                 f"{exact_text(self.at)} is outside the parameter space",
                 f"ask for power inside {problem.density.parsed_space.text}", key="at",
+            )  # fmt: skip
+        if problem.hypothesis.holds_at(self.at):
+            raise InputError(
+                f"{exact_text(self.at)} is in the null, where a test should reject seldom and power is no aim",
+                f"ask at an alternative: {problem.hypothesis.alternative_text(problem.density.parameter)}", key="at",
             )  # fmt: skip
 
     def solution(self, n: int, digits: int = PLANNING_DIGITS) -> Solution:

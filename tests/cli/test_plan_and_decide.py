@@ -42,8 +42,18 @@ def test_decide_as_text_and_json():
     assert value["after_randomisation"] == "reject"
 
 
+def test_power_inside_the_null_is_refused_in_words():
+    """lam = 7 and, at its edge, lam = 12: neither a small power nor a large one is planned there."""
+    for at, power in (("7", "0.03"), ("7", "0.06"), ("12", "0.9")):
+        done = run("plan", CASE, "--at", at, "--power", power)
+        assert (done.returncode, done.stdout) == (2, "")
+        assert f"{at} is in the null" in done.stderr
+        assert "8 < lam < 12" in done.stderr
+
+
 def test_misuse_is_one_line_and_status_2():
     for words in (("plan", CASE, "--at", "-3", "--power", "0.9"), ("plan", CASE, "--at", "10", "--power", "2"),
+                  ("plan", CASE, "--at", "8", "--power", "0.5"),
                   ("decide", CASE, "--statistic", "9.5"), ("decide", CASE, "--data", "1,2")):  # fmt: skip
         done = run(*words)
         assert done.returncode == 2

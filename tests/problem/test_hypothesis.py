@@ -7,12 +7,12 @@ from typing import Any
 
 import pytest
 import sympy
-from hypothesis import given, settings
+from hypothesis import assume, given, settings
 from hypothesis import strategies as st
 
 from verify.errors import InputError
 from verify.problem.density import Density
-from verify.problem.hypothesis import Form, parse_null
+from verify.problem.hypothesis import Form, Hypothesis, parse_null
 from verify.problem.problem import Problem
 from verify.problem.space import parse_space
 
@@ -23,9 +23,7 @@ DENSITY = Density(
 
 
 def problem(**changes: Any) -> Problem:
-    return Problem(
-        **{"density": DENSITY, "null": "lam <= 8 or lam >= 12", "alpha": "0.05", "n": 10, **changes}
-    )
+    return Problem(**{"density": DENSITY, "null": "lam <= 8 or lam >= 12", "alpha": "0.05", "n": 10, **changes})
 
 
 @pytest.mark.parametrize(
@@ -121,9 +119,7 @@ def test_what_is_not_the_complement_is_refused(alternative: str) -> None:
     st.sampled_from(Form),
     st.booleans(),
 )
-def test_a_null_printed_and_read_again_is_the_same(
-    low: Fraction, high: Fraction, form: Form, below: bool
-) -> None:
+def test_a_null_printed_and_read_again_is_the_same(low: Fraction, high: Fraction, form: Form, below: bool) -> None:
     text = {
         Form.ONE_SIDED: f"lam {'<=' if below else '>='} {low}",
         Form.OUTSIDE: f"lam <= {low} or lam >= {high}",
@@ -169,3 +165,18 @@ def test_the_number_of_observations_is_whole() -> None:
 def test_a_problem_can_be_hashed_and_compared() -> None:
     assert problem() == problem()
     assert hash(problem()) == hash(problem())
+
+
+@given(st.sampled_from(list(Form)), st.fractions(-9, 9), st.fractions(-9, 9), st.fractions(-9, 9), st.booleans())
+def test_a_value_is_in_the_null_or_in_the_alternative(form, a, b, value, null_below) -> None:
+    assume(a < b)
+    limits = (a, b) if form in (Form.OUTSIDE, Form.INTERVAL) else (a,)
+    null = Hypothesis(form, limits, null_below)
+    beyond = {
+        Form.ONE_SIDED: value > a if null_below else value < a,
+        Form.OUTSIDE: a < value < b,
+        Form.INTERVAL: not a <= value <= b,
+        Form.POINT: value != a,
+    }
+    assert null.holds_at(value) is not beyond[form]
+    assert all(null.holds_at(limit) for limit in limits)

@@ -82,6 +82,23 @@ class Hypothesis:
                 return (Interval(ends[0], ends[-1]),)
         return (Interval(upper=ends[0]), Interval(lower=ends[-1]))
 
+    def holds_at(self, value: Exact) -> bool:
+        """Whether an exact number lies in the null, which is closed.
+
+        Raises
+        ------
+        UndecidedError
+            When it cannot be told from a limit.
+
+        Examples
+        --------
+        >>> from fractions import Fraction
+        >>> null = Hypothesis(Form.OUTSIDE, (Fraction(8), Fraction(12)))
+        >>> null.holds_at(Fraction(12)), null.holds_at(Fraction(10))
+        (True, False)
+        """
+        return any(compare(part.lower, value) <= 0 <= compare(part.upper, value) for part in self.null_set)
+
     def text(self, parameter: str) -> str:
         """Write the null, e.g. "lam <= 8 or lam >= 12".
 
@@ -151,17 +168,13 @@ def _read_set(text: str, parameter: str, symbols: Mapping[str, sympy.Expr], key:
 
 
 def _equal_limits(limit: sympy.Expr, parameter: str, key: str) -> InputError:
-    return InputError(
-        "the two limits are equal", f'for one value write "{parameter} = {formula_text(limit)}"', key=key
-    )
+    return InputError("the two limits are equal", f'for one value write "{parameter} = {formula_text(limit)}"', key=key)
 
 
 def _require_closed(interval: Interval, parameter: str, key: str) -> None:
     for end, closed in ((interval.lower, interval.lower_closed), (interval.upper, interval.upper_closed)):
         if not closed and end.is_infinite is not True:
-            whole = Interval(
-                interval.lower, interval.upper, interval.lower != -sympy.oo, interval.upper != sympy.oo
-            )
+            whole = Interval(interval.lower, interval.upper, interval.lower != -sympy.oo, interval.upper != sympy.oo)
             raise InputError(
                 f"the null {interval_text(interval, parameter)} leaves out its own limit",
                 f'a null contains its limits: write "{interval_text(whole, parameter)}"',
@@ -221,9 +234,7 @@ def check_alternative(
         )
 
 
-def _read_alternative(
-    text: str, parameter: str, symbols: Mapping[str, sympy.Expr], key: str
-) -> list[Interval]:
+def _read_alternative(text: str, parameter: str, symbols: Mapping[str, sympy.Expr], key: str) -> list[Interval]:
     plain = plain_signs(require_text(text, key, RIGHT))
     if plain.count("!=") == 1 and " or " not in plain:
         (point,) = _read_set(plain.replace("!=", "=="), parameter, symbols, key)
