@@ -63,3 +63,10 @@ def test_a_cutoff_without_fraction_at_an_irrational_level(sidecheck) -> None:
     for c, verdict, status in (("13", "differs", 1), ("12", "agrees", 0)):
         done = sidecheck("review", "-", stdin=f'{case}\n[claim]\nc = "{c}"\n')
         assert (done.returncode, f"Verdict: {verdict}" in done.stdout) == (status, True)
+
+
+def test_each_level_of_an_interval_null_is_kept_for_itself(sidecheck_here) -> None:
+    case = LOT.partition("[problem]")[0] + '[problem]\nnull = "8 <= lam <= 12"\nalpha = ["0.02", "0.05"]\nn = 1\n'
+    done = sidecheck_here("review", text=f'{case}\n[claim]\nc1 = "3"\nc2 = "18"\n')
+    assert done.returncode == 0
+    assert "the level is kept" in done.stdout

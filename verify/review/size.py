@@ -15,6 +15,7 @@ from __future__ import annotations
 from contextlib import suppress
 from dataclasses import dataclass, field
 from fractions import Fraction
+from functools import cmp_to_key
 from typing import Any
 
 from verify.arithmetic.ball import Balls, balls, to_enclosure
@@ -24,6 +25,7 @@ from verify.errors import NotRational, UndecidedError
 from verify.laws import Law
 from verify.problem.hypothesis import Form
 from verify.problem.numbers import Exact, as_exact, exact_text
+from verify.problem.order import compare
 from verify.review.exact_power import exact_power
 from verify.review.setting import Setting
 from verify.solution.critical import CriticalFunction
@@ -120,6 +122,9 @@ def covariance(test: CriticalFunction, law: Law, A: Balls) -> Any:
 def sizes(curve: PowerCurve) -> tuple[Size, ...]:
     """Return the largest power of a test over each part of the null.
 
+    With another level at each limit of an interval null, each limit is a part of its own; what lies between them is a
+    third, held to the larger level, where the power may be largest there.
+
     Raises
     ------
     UndecidedError
@@ -128,6 +133,11 @@ def sizes(curve: PowerCurve) -> tuple[Size, ...]:
     parts: list[tuple[Exact | None, Exact | None]]
     hypothesis, levels = curve.setting.problem.hypothesis, curve.setting.problem.levels
     limits = hypothesis.limits
+    if hypothesis.form is Form.INTERVAL and len(set(levels)) > 1:
+        between = [(limits[0], limits[1])] if curve.test.region == "inside" else []
+        parts = [*((limit, limit) for limit in limits), *between]
+        held = (*levels, max(levels, key=cmp_to_key(compare)))
+        return tuple(_largest(curve, *part, level) for part, level in zip(parts, held, strict=False))
     match hypothesis.form:
         case Form.ONE_SIDED:
             parts = [(None, limits[0]) if hypothesis.null_below else (limits[0], None)]
@@ -144,12 +154,17 @@ def _largest(curve: PowerCurve, low: Exact | None, high: Exact | None, level: Ex
     if curve.test.region == "inside":
         return _of_a_hill(curve, low, high, level)
     if curve.test.region == "outside":
-        return max(
-            (_at_end(curve, t, other, level, up=up) for t, other, up in ((low, high, False), (high, low, True))),
-            key=lambda size: size.value.mid,
-        )
+        return _larger(_at_end(curve, low, high, level, up=False), _at_end(curve, high, low, level, up=True))
     rises = (curve.test.region == "above") == curve.setting.upward
     return _at_end(curve, high if rises else low, low if rises else high, level, up=rises)
+
+
+def _larger(first: Size, second: Size) -> Size:
+    """The larger of two powers: enclosures that overlap do not tell which it is, but both bound it from below."""
+    ends = [(size.value.lower, size.value.upper) for size in (first, second)]
+    lower, upper = map(max, zip(*ends, strict=True))
+    at = max(first, second, key=lambda size: size.value.lower).at
+    return Size(Enclosure(lower, upper), at, first.level)
 
 
 def _at_end(curve: PowerCurve, t: Exact | None, other: Exact | None, level: Exact, *, up: bool) -> Size:
