@@ -11,7 +11,7 @@ import sympy as sp
 from verify import Density, Problem, derive, solve
 from verify.arithmetic.ball import balls, to_enclosure
 from verify.arithmetic.exact import rationals
-from verify.errors import NotRational
+from verify.errors import NotRational, UndecidedError
 from verify.laws.atoms import Atoms
 from verify.laws.lattice import LatticeSum
 from verify.laws.poisson import Poisson
@@ -213,3 +213,20 @@ def test_moments_that_need_many_bits_do_not_stop_a_search() -> None:
     )
     solution = solve(Problem(density, null="theta <= 3", alpha="0.05", n=2), digits=15)
     assert (solution.c.lower, solution.c.upper) == (2 * 40**2, 2 * 40**2)
+
+
+@pytest.mark.parametrize(("first", "last"), [(2, 2), (2, None), (None, 2), (None, None)])
+def test_a_single_atom_is_undecided_and_not_searched_for_ever(first: int | None, last: int | None) -> None:
+    one = Atoms(sp.Integer(1), t**x, "x", "t", first, last, normalised=False, table={2: Fraction(1)})
+    with balls(64) as A, pytest.raises(UndecidedError, match="fewer than two atoms"):
+        one.ratio(A, Fraction(2), Fraction(3), 2)
+
+
+def test_atoms_far_apart_or_below_the_place_are_found() -> None:
+    """Masses t**y at 0 and 9000 only: their ratio for t = 2 and 3 is (2/3)**y."""
+    one = Atoms(sp.Integer(1), t**x, "x", "t", 0, 9000, normalised=False, table={0: Fraction(1), 9000: Fraction(5)})
+    with balls(64) as A:
+        for near in (0, 1, 9000):
+            C, rho = one.ratio(A, Fraction(2), Fraction(3), near)
+            assert C.overlaps(A.real(1))
+            assert rho.overlaps(A.real(Fraction(2, 3)))

@@ -90,3 +90,13 @@ def test_atoms_are_the_products_that_can_occur(first: int, last: int | None, n: 
     for v in range(first**n, end + 1):
         assert law.atom(v, -1) == max(m for m in reached if m <= v)
         assert law.atom(v, 1) == min(m for m in reached if m >= v)
+
+
+def test_a_single_atom_is_undecided_and_not_searched_for_ever() -> None:
+    """No other atom tells how the masses of two parameter values compare: on a bounded and on an endless support."""
+    alone = Atoms(sp.Integer(1), x ** (-s), "x", "s", 3, 3)
+    endless = Atoms(sp.Integer(1), x ** (-s), "x", "s", 3, None, table={3: Fraction(1)})
+    for one in (alone, endless):
+        law = MultiplicativeSum(one, Fraction(2), 2)
+        with balls(64) as A, pytest.raises(UndecidedError, match="fewer than two atoms"):
+            law._tilt(A, Fraction(3))

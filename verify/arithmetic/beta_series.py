@@ -15,6 +15,8 @@ from typing import Any
 
 from flint import arb
 
+from verify.errors import UndecidedError
+
 Ball = Any
 
 CHECK_EVERY = 8
@@ -23,8 +25,8 @@ CHECK_EVERY = 8
 MUCH = 8
 """Times as many terms that the smaller tail may need before the larger one is summed in its place."""
 
-MOST_TERMS = 20_000_000
-"""Terms after which the sum is given up (the ball returned is then not finite)."""
+MOST_TERMS = 2_000_000
+"""Terms after which the sum is given up: some seconds of work."""
 
 
 def incomplete_beta(x: Ball, a: Any, b: Any, prec: int) -> Ball:
@@ -40,6 +42,11 @@ def incomplete_beta(x: Ball, a: Any, b: Any, prec: int) -> Ball:
         Parameters; whole ones are recognised.
     prec : int
         Bits of relative accuracy aimed at.
+
+    Raises
+    ------
+    UndecidedError
+        Where the sum is too long.
     """
     y = 1 - x
     below, above = (x, y, a, b), (y, x, b, a)
@@ -98,7 +105,7 @@ def _polynomial(w: Ball, a: Any, b: int, prec: int) -> Ball:
                 if rest < total * tiny:
                     return total + rest.union(arb(0))
             if i > MOST_TERMS:
-                return arb.nan()
+                raise _too_long()
     return total
 
 
@@ -118,4 +125,8 @@ def _infinite(x: Ball, a: Ball, b: Ball, prec: int) -> Ball:
                 rest = term * ratio / (1 - ratio)
                 if rest < total * tiny:
                     return total + rest.union(arb(0))
-    return arb.nan()
+    raise _too_long()
+
+
+def _too_long() -> UndecidedError:
+    return UndecidedError(f"an incomplete beta function needs a sum of more than {MOST_TERMS} terms here")

@@ -12,14 +12,19 @@ from __future__ import annotations
 from collections.abc import Mapping
 from dataclasses import dataclass, field
 from fractions import Fraction
+from itertools import chain
 from typing import TYPE_CHECKING, Any
 
 from verify.arithmetic.evaluate import evaluate
+from verify.errors import UndecidedError
 
 if TYPE_CHECKING:
     from verify.problem.numbers import Exact
 
 Number = Any
+
+MOST_LOOKED = 4096
+"""So many places are looked at for an atom where a support has no end."""
 
 SHOWN = 12
 """So many weights of a table are named in its text."""
@@ -142,31 +147,23 @@ class Atoms:
     def ratio(self, A: Any, at: Exact, base: Exact, near: int) -> tuple[Number, Number]:
         """Return (C, rho) with mass(y; at) = C * rho**y * mass(y; base) for every y.
 
-        Two atoms at or above ``near`` are read; the form of the family does the rest.
-        """
-        found: list[tuple[int, Number]] = []
-        y = near
-        while len(found) < 2 and (self.last is None or y <= self.last):
-            below, above = self.masses(A, base, y, y)[0], self.masses(A, at, y, y)[0]
-            if above > 0 and below > 0:
-                found.append((y, above / below))
-            y += 1
-        if len(found) < 2:
-            return self._ratio_downwards(A, at, base, near, found)
-        return _solve_ratio(A, found)
+        Two atoms at or above ``near`` (or else below it) are read; the form of the family does the rest.
 
-    def _ratio_downwards(
-        self, A: Any, at: Exact, base: Exact, near: int, found: list[tuple[int, Number]]
-    ) -> tuple[Number, Number]:
-        y = near - 1
-        while len(found) < 2 and self.first is not None and y >= self.first:
+        Raises
+        ------
+        UndecidedError
+            When fewer than two atoms are found near there.
+        """
+        upwards = range(near, near + MOST_LOOKED if self.last is None else self.last + 1)
+        downwards = range(near - 1, near - MOST_LOOKED if self.first is None else self.first - 1, -1)
+        found: list[tuple[int, Number]] = []
+        for y in chain(upwards, downwards):
             below, above = self.masses(A, base, y, y)[0], self.masses(A, at, y, y)[0]
             if above > 0 and below > 0:
                 found.append((y, above / below))
-            y -= 1
-        if len(found) < 2:
-            raise ValueError("fewer than two atoms: the observation is a constant")
-        return _solve_ratio(A, sorted(found, key=lambda pair: pair[0]))
+            if len(found) == 2:
+                return _solve_ratio(A, sorted(found, key=lambda pair: pair[0]))
+        raise UndecidedError(f"fewer than two atoms of one observation were found from {near} on")
 
 
 def _solve_ratio(A: Any, found: list[tuple[int, Number]]) -> tuple[Number, Number]:

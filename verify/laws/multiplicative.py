@@ -16,7 +16,7 @@ from verify.arithmetic.ball import balls
 from verify.arithmetic.evaluate import evaluate
 from verify.arithmetic.series import product_power
 from verify.errors import NotRational, UndecidedError
-from verify.laws.atoms import Atoms
+from verify.laws.atoms import MOST_LOOKED, Atoms
 from verify.laws.base import Number
 from verify.laws.builders import GUARD_BITS, in_balls
 from verify.laws.built import BuiltLaw
@@ -209,12 +209,15 @@ class MultiplicativeSum(BuiltLaw):
         """Return (C, e) with mass(m; at) = C * m**e * mass(m; base)."""
         share = A.real(1) if self.one.normalised else self._total(A, base) / self._total(A, self.at)
         found: list[tuple[int, Number]] = []
-        m = self.one.first or 1
-        while len(found) < 2:
+        first, last = self.one.first or 1, self.one.last
+        for m in range(first, first + MOST_LOOKED if last is None else last + 1):
             low, high = self.one.masses(A, base, m, m)[0], self.one.masses(A, self.at, m, m)[0]
             if self.one.has(m) and low > 0 and high > 0:
                 found.append((m, share * high / low))
-            m += 1
+            if len(found) == 2:
+                break
+        else:
+            raise UndecidedError(f"fewer than two atoms of one observation were found from {first} on")
         (m0, r0), (m1, r1) = found
         step = A.log(A.real(m1)) - A.log(A.real(m0))
         exponent = A.log(r1 / r0) / step
