@@ -140,6 +140,7 @@ def test_a_refuted_density_gives_no_table(grid, tmp_path, capsys):
     ("extra", "message"),
     [
         (["-o", "a.txt"], "--output: a table cannot be written as a.txt; name it .csv or .parquet"),
+        (["-o", "."], "--output: a table cannot be written as .; name it"),
         (["-o", "/nowhere/a.csv"], "--output: no table can be written in /nowhere; give"),
         (["-o", "a.csv", "--workers", "0"], "argument --workers: '0' is not a number of processes from 1 to 256"),
     ],
@@ -150,3 +151,35 @@ def test_what_cannot_be_used_is_said_on_one_line(grid, extra, message, capsys, m
     error = capsys.readouterr().err
     assert message in error
     assert error.count("\n") == 1
+
+
+def test_a_folder_in_the_place_of_the_table_is_said_before_the_work(grid, tmp_path, capsys):
+    (tmp_path / "a.csv").mkdir()
+    assert main(["answers", grid(), "-o", str(tmp_path / "a.csv")]) == 2
+    assert "a.csv is a folder; name a file" in capsys.readouterr().err
+    assert not (tmp_path / "a.csv.journal").exists()
+
+
+def test_a_full_disk_is_said_and_the_run_goes_on_when_there_is_room(grid, tmp_path):
+    resource = pytest.importorskip("resource")
+    place, whole, out = grid(), tmp_path / "whole.csv", tmp_path / "a.csv"
+    assert main(["answers", place, "-o", str(whole)]) == 0
+    command = [sys.executable, "-B", "-m", "verify", "answers", place, "-o", str(out)]
+    full = subprocess.run(
+        command,
+        capture_output=True,
+        text=True,
+        check=False,
+        preexec_fn=lambda: resource.setrlimit(resource.RLIMIT_FSIZE, (8192, 8192)),
+    )
+    assert full.returncode == 2
+    assert full.stderr.count("\n") == 1
+    assert "a.csv.journal: the rows that are done cannot be kept: File too large; make room" in full.stderr
+    assert main(["answers", place, "-o", str(out)]) == 0
+    assert out.read_bytes() == whole.read_bytes()
+
+
+def test_a_journal_that_cannot_be_written_is_said_on_one_line(grid, tmp_path, capsys):
+    (tmp_path / "a.csv.journal").mkdir()
+    assert main(["answers", grid(), "-o", str(tmp_path / "a.csv")]) == 2
+    assert "a.csv.journal: the rows that are done cannot be kept: Is a directory" in capsys.readouterr().err

@@ -128,3 +128,19 @@ def test_a_whole_process_with_two_workers(sidecheck, folder: Path) -> None:
     assert done.returncode == 1
     assert "2 cases: 1 pass, 1 differs" in done.stdout
     assert "Traceback" not in done.stderr
+
+
+def test_the_table_is_shown_where_a_report_finds_no_room(folder: Path) -> None:
+    resource = pytest.importorskip("resource")
+    _spoil(folder, "bad")
+    done = subprocess.run(
+        [sys.executable, "-B", "-m", "verify", "casebook", str(folder), "--junit", str(folder / "j.xml")],
+        capture_output=True,
+        text=True,
+        check=False,
+        preexec_fn=lambda: resource.setrlimit(resource.RLIMIT_FSIZE, (16, 16)),
+    )
+    assert done.returncode == 2
+    assert "2 cases: 1 pass, 1 differs" in done.stdout
+    assert "j.xml: --junit: cannot write: File too large" in done.stderr
+    assert not (folder / "j.xml").exists()

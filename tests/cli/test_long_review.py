@@ -63,8 +63,9 @@ def wait_for_rows(out: Path) -> None:
 def test_a_killed_worker(review, alone) -> None:
     out, running = review("killed", "--workers", "2")
     wait_for_rows(out)
-    children = Path(f"/proc/{running.pid}/task/{running.pid}/children").read_text().split()
-    workers = [pid for pid in children if b"spawn_main" in Path(f"/proc/{pid}/cmdline").read_bytes()]
+    tasks = Path(f"/proc/{running.pid}/task").glob("*/children")
+    children = [pid for task in tasks for pid in task.read_text().split()]
+    workers = [pid for pid in children if b"popen_loky" in Path(f"/proc/{pid}/cmdline").read_bytes()]
     os.kill(int(workers[0]), signal.SIGKILL)
     text, error = running.communicate()
     assert (running.returncode, out.read_bytes(), text) == (1, *alone)

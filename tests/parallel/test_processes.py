@@ -12,7 +12,8 @@ from pathlib import Path
 import pytest
 from dask_cluster import wait_until
 
-from verify.parallel import run_all
+from verify.errors import InputError
+from verify.parallel import processes, run_all
 
 PROGRAM = """
 import sys
@@ -116,3 +117,12 @@ def test_a_result_that_cannot_travel_is_an_error():
 def test_an_error_that_cannot_travel_ends_the_run():
     with pytest.raises(RuntimeError, match="failed to un-serialize"):
         list(run_all(odd, range(3), 2))
+
+
+def test_a_system_that_gives_no_lock_is_named(monkeypatch):
+    def none_left(*_: object, **__: object) -> None:
+        raise OSError(24, "Too many open files")
+
+    monkeypatch.setattr(processes, "ProcessPoolExecutor", none_left)
+    with pytest.raises(InputError, match="no process can be started: Too many open files; ask for fewer workers"):
+        list(run_all(abs, [1], 2))

@@ -32,6 +32,8 @@ def require_place(path: str) -> None:
     if ending not in ENDINGS:
         raise InputError(f"a table cannot be written as {path}", f"name it {' or '.join(ENDINGS)}", key="--output")
     folder = Path(path).absolute().parent
+    if Path(path).is_dir():
+        raise InputError(f"{path} is a folder", "name a file", key="--output")
     if not os.access(folder, os.W_OK | os.X_OK):
         raise InputError(f"no table can be written in {folder}", "give a place that can be written to", key="--output")
     if ending == ".parquet":

@@ -51,6 +51,7 @@ def run(args: argparse.Namespace) -> int:
     from verify.casebook.lines import book_json, book_text
     from verify.casebook.outcome import status_of
     from verify.casebook.run import How, run_book
+    from verify.errors import InputError
     from verify.memory import watched
 
     paths = find_cases(args.places, args.only)
@@ -59,7 +60,12 @@ def run(args: argparse.Namespace) -> int:
         results = run_book(paths, How(args.digits, args.budget, cache), workers=args.workers, scheduler=args.scheduler,
                            fail_fast=args.fail_fast, progress=progress)  # fmt: skip
     left = len(paths) - len(results)
-    _write(args, results)
+    try:
+        _write(args, results)
+    except InputError:
+        if not args.json:  # one object alone, that of the complaint
+            print(book_text(results, left))
+        raise
     if args.json:
         show_json(book_json(results, left))
     else:
@@ -75,8 +81,10 @@ def _require_folders(args: argparse.Namespace) -> None:
 
     for key in ("junit", "jsonl"):
         given = getattr(args, key)
-        if given and not (Path(given).absolute().parent.is_dir() and not Path(given).is_dir()):
-            raise InputError(f"{given} cannot be written", "name a file in a folder that exists", key=f"--{key}")
+        if given and (Path(given).is_dir() or not os.access(Path(given).absolute().parent, os.W_OK | os.X_OK)):
+            raise InputError(
+                f"{given} cannot be written", "name a file in a folder that can be written to", key=f"--{key}"
+            )
 
 
 def _write(args: argparse.Namespace, results: Sequence[Result]) -> None:
@@ -84,6 +92,7 @@ def _write(args: argparse.Namespace, results: Sequence[Result]) -> None:
     from verify.casebook.junit import junit_xml
     from verify.casebook.lines import json_lines
     from verify.errors import InputError
+    from verify.files import write_atomically
 
     wanted = {"junit": junit_xml, "jsonl": json_lines}
     for key, make in wanted.items():
@@ -92,7 +101,6 @@ def _write(args: argparse.Namespace, results: Sequence[Result]) -> None:
                 write_atomically(Path(place), make(results))
             except OSError as error:
                 wrong = f"cannot write: {error.strerror or error}"
-    from verify.files import write_atomically
                 raise InputError(wrong, "name a file that can be written", key=f"--{key}", file=place) from None
 
 

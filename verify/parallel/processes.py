@@ -75,28 +75,30 @@ class _Task:
 
 
 def _pool(workers: int) -> ProcessPoolExecutor:
-    return ProcessPoolExecutor(workers, initializer=_be_a_worker, initargs=(os.getpid(),))
+    with _starting():
+        return ProcessPoolExecutor(workers, initializer=_be_a_worker, initargs=(os.getpid(),))
 
 
 def _begin(pool: ProcessPoolExecutor, function: Callable[[Any], Any], batch: tuple[Any, ...]) -> Future[list[Any]]:
-    """Hand out a batch.
-
-    Raises
-    ------
-    InputError
-        When the system starts no further process.
-    """
+    """Hand out a batch, which may start workers."""
     try:
-        with _interrupts_held():
+        with _starting(), _interrupts_held():
             answer: Future[list[Any]] = pool.submit(do, function, batch)
             return answer
     except TerminatedWorkerError as error:
         answer = Future()
         answer.set_exception(error)
         return answer
+
+
+@contextmanager
+def _starting() -> Iterator[None]:
+    """Complain where the system gives no process, no file or no lock for one."""
+    try:
+        yield
     except OSError as error:
-        right = "ask for fewer workers"
-        raise InputError(f"no process can be started: {error.strerror}", right, key="workers") from None
+        wrong = f"no process can be started: {error.strerror or error}"
+        raise InputError(wrong, "ask for fewer workers", key="workers") from None
 
 
 def _alone(function: Callable[[Any], Any], batch: tuple[Any, ...]) -> list[Any]:

@@ -7,6 +7,7 @@ from __future__ import annotations
 import json
 import os
 from collections.abc import Iterator
+from contextlib import contextmanager, suppress
 from pathlib import Path
 from typing import IO, Self
 
@@ -32,14 +33,16 @@ class Journal:
     Raises
     ------
     InputError
-        When another run is writing it.
+        When another run is writing it, or it cannot be written.
     """
 
     def __init__(self, path: Path, fingerprint: str) -> None:
         self.path, self.fingerprint = path, fingerprint
-        self._stream: IO[str] | None = open(path, "a", encoding="utf-8")  # noqa: SIM115 (kept open over the run)
+        with _told(path):
+            self._stream: IO[str] | None = open(path, "a", encoding="utf-8")  # noqa: SIM115 (kept open over the run)
         _lock(self._stream, path)
-        self.done = self._keep_whole_lines()
+        with _told(path):
+            self.done = self._keep_whole_lines()
         self._empty = not self.done
 
     def __enter__(self) -> Self:
@@ -78,14 +81,16 @@ class Journal:
         """Append records; they are in the file when this returns."""
         if self._stream is None:
             raise ValueError("the journal is closed")
-        self._stream.writelines(json.dumps(record, ensure_ascii=False) + "\n" for record in records)
-        self._stream.flush()
+        with _told(self.path):
+            self._stream.writelines(json.dumps(record, ensure_ascii=False) + "\n" for record in records)
+            self._stream.flush()
         self._empty = self._empty and not records
 
     def close(self) -> None:
         """Close the file."""
         if self._stream is not None:
-            self._stream.close()
+            with suppress(OSError):  # a full disk: what did not go into it was told when it was added
+                self._stream.close()
             self._stream = None
 
     def records(self) -> Iterator[Record]:
@@ -99,6 +104,17 @@ class Journal:
         """Delete the file."""
         self.close()
         os.unlink(self.path)
+
+
+@contextmanager
+def _told(path: Path) -> Iterator[None]:
+    """Say in our words why the journal cannot be written."""
+    try:
+        yield
+    except OSError as error:
+        wrong = f"the rows that are done cannot be kept: {error.strerror or error}"
+        right = "make room, or choose another output; the same command goes on where this one stopped"
+        raise InputError(wrong, right, file=str(path)) from None
 
 
 def _lock(stream: IO[str], path: Path) -> None:
