@@ -4,6 +4,7 @@ SidecheckError
 ├── InputError        the input cannot be used (exit status 2)
 ├── UndecidedError    a question was left open within its budget (exit status 3)
 │   └── UnknownFunction   because a formula holds a function that an arithmetic does not have
+├── NotAttempted      a way to answer declined, with its reason (an outcome)
 └── NotRational       an exact rational value was asked of a number that has none (internal)
 
 A *refuted* claim or derivation is a result, never an exception.
@@ -72,6 +73,10 @@ class UndecidedError(SidecheckError):
 
 class UnknownFunction(UndecidedError):  # noqa: N818 (a condition, not a mistake)
     """A formula holds a function of which an arithmetic has no enclosure: what needs it stays open."""
+
+
+class NotAttempted(SidecheckError):  # noqa: N818 (an outcome, not a mistake)
+    """A route does not try this problem; the text is the reason."""
 
 
 class NotRational(SidecheckError):  # noqa: N818 (a condition, not a mistake)

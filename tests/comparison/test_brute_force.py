@@ -8,8 +8,8 @@ import pytest
 import sympy
 
 from verify.comparison.brute_force import brute_force_opinion
-from verify.comparison.limits import NotAttempted
 from verify.comparison.question import Question
+from verify.errors import NotAttempted
 from verify.problem.density import Density
 
 

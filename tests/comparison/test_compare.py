@@ -9,8 +9,8 @@ from build import DENSITIES, solved
 
 from verify.comparison import compare as module
 from verify.comparison.compare import compare
-from verify.comparison.limits import NotAttempted
 from verify.comparison.question import Answer
+from verify.errors import NotAttempted
 
 UNIT = ("binomial", "bernoulli", "geometric", "geometric from 1", "negative binomial")
 FORMS = ("one-sided", "outside", "interval", "point")

@@ -15,7 +15,7 @@ from verify.arithmetic.ball import balls, to_enclosure
 from verify.arithmetic.enclosure import Enclosure
 from verify.comparison.digits import significant_digits
 from verify.comparison.flags import ENOUGH
-from verify.comparison.limits import run_limited
+from verify.killable.calls import run_limited
 from verify.comparison.scipy_laws import lost_tail_hint
 
 WRONG = {

@@ -9,7 +9,7 @@ from typing import Any
 import numpy as np
 from scipy.signal import fftconvolve
 
-from verify.comparison.limits import NotAttempted
+from verify.errors import NotAttempted
 
 MOST_ATOMS = 1 << 21
 """More atoms than this are not enumerated."""

@@ -13,10 +13,10 @@ from typing import Any
 import numpy as np
 
 from verify.comparison.atoms import Masses, atoms_that_matter, convolution_power, on_grid
-from verify.comparison.limits import NotAttempted
 from verify.comparison.question import Answer, Question
 from verify.comparison.table_search import Table, inside_ends, one_sided_end, outside_ends
 from verify.comparison.walker import log_values, values
+from verify.errors import NotAttempted
 
 Array = Any
 Numbers = dict[str, float]

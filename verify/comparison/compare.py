@@ -11,10 +11,10 @@ from typing import TYPE_CHECKING, Any
 from verify.comparison.brute_force import brute_force_opinion
 from verify.comparison.condition import sensitivity
 from verify.comparison.flags import Flag, engine_flags, flags_of
-from verify.comparison.limits import MEMORY, SECONDS, Outcome, run_limited
 from verify.comparison.opinion import Opinion, Truth, opinion_of
 from verify.comparison.question import Answer, Question, question
 from verify.comparison.scipy_route import scipy_opinion
+from verify.killable.calls import MEMORY, SECONDS, Outcome, run_limited
 from verify.solution.second_engine import second_engine
 
 if TYPE_CHECKING:

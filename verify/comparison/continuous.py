@@ -9,11 +9,11 @@ import numpy as np
 
 from verify.comparison.brute_force import ends_of_support, log_density, rejects_large_v
 from verify.comparison.inversion import EULER_DIGITS, SumOfObservations, Transform
-from verify.comparison.limits import NotAttempted
 from verify.comparison.quadrature import Nodes, OneObservation, change_of_variable, nodes, run_of_interest
 from verify.comparison.question import Answer, Question
 from verify.comparison.tail_search import Line, Measure, one_end, two_ends, two_far_ends, window
 from verify.comparison.walker import values
+from verify.errors import NotAttempted
 
 Array = Any
 Numbers = dict[str, float]

@@ -22,7 +22,7 @@ from typing import Any
 import numpy as np
 from scipy.optimize import brentq
 
-from verify.comparison.limits import NotAttempted
+from verify.errors import NotAttempted
 
 Array = Any
 _BLOCK = 64

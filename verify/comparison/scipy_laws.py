@@ -13,7 +13,7 @@ from typing import Any
 from scipy import stats
 from scipy.stats import _distn_infrastructure as generic
 
-from verify.comparison.limits import NotAttempted
+from verify.errors import NotAttempted
 
 
 @dataclass(frozen=True)

@@ -16,7 +16,7 @@ from typing import Any
 import numpy as np
 from scipy import special
 
-from verify.comparison.limits import NotAttempted
+from verify.errors import NotAttempted
 
 Array = Any
 """A NumPy array of doubles, or one double."""

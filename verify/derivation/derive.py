@@ -8,7 +8,6 @@ from typing import Any
 
 from sympy import Expr
 
-from verify.derivation.budget import Worker
 from verify.derivation.claims import Derived, claims_steps
 from verify.derivation.factorisation import Factorisation
 from verify.derivation.factorisation_step import factorisation_step
@@ -37,6 +36,7 @@ from verify.derivation.points import domain_of, parameter_points
 from verify.derivation.sum_step import open_or_checked
 from verify.derivation.support_step import support_step
 from verify.errors import InputError, UndecidedError
+from verify.killable.worker import Worker
 from verify.laws.continuous import OneObservation
 from verify.notebook import Shown
 from verify.problem.density import Density

@@ -9,8 +9,8 @@ from typing import TYPE_CHECKING
 
 import sympy as sp
 
-from verify.derivation.budget import Worker
 from verify.errors import UndecidedError
+from verify.killable.worker import Worker
 from verify.problem.numbers import Exact, as_expr
 
 if TYPE_CHECKING:

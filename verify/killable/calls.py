@@ -1,34 +1,29 @@
 """Calls that may never come back: run them in a process that can be killed, under a time and a memory limit.
 
-A C loop ignores alarms and a library may ask for all the memory there is, so a limit inside the same process
-is no limit. One forked child does all the calls in turn and reports each result; only when it dies or is
-killed is another one forked for the calls that are left.
+One forked child does all the calls in turn and reports each result; only when it dies or is killed is another one
+forked for the calls that are left.
 """
 
 from __future__ import annotations
 
 import faulthandler
 import os
-import resource
 import signal
 import sys
 import time
 import warnings
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass
-from multiprocessing.connection import Connection, Pipe
-from typing import Any, NoReturn
+from multiprocessing.connection import Connection
+from typing import Any
 
-from verify.errors import SidecheckError
+from verify.errors import NotAttempted, SidecheckError
+from verify.killable.child import ForkedChild, can_fork, limit_memory, limit_processor_time
 
 SECONDS = 5.0
 """Time one call may take."""
 MEMORY = 1 << 30
 """Bytes that the calls may take beyond what the process holds already."""
-
-
-class NotAttempted(SidecheckError):  # noqa: N818 (an outcome, not a mistake)
-    """A route does not try this problem; the text is the reason."""
 
 
 @dataclass(frozen=True)
@@ -79,7 +74,7 @@ def run_limited(
     >>> good.value, bad.failure
     (42, 'ZeroDivisionError: division by zero')
     """
-    if not hasattr(os, "fork"):  # the calls are not run at all rather than run without a limit
+    if not can_fork():  # the calls are not run at all rather than run without a limit
         return tuple(Outcome(not_attempted="this system cannot fork a process that can be killed") for _ in calls)
     outcomes: list[Outcome] = []
     while len(outcomes) < len(calls):
@@ -89,61 +84,33 @@ def run_limited(
 
 def _one_child(calls: Sequence[Callable[[], Any]], seconds: float, memory: int) -> list[Outcome]:
     """Fork a child for these calls; return the outcomes up to the first call that had to be stopped."""
-    here, there = Pipe(duplex=False)
-    with warnings.catch_warnings():  # a fork beside threads is safe here: the child only computes and leaves
-        warnings.simplefilter("ignore", DeprecationWarning)
-        child = os.fork()
-    if child == 0:
-        here.close()
-        _child(calls, seconds, memory, there)
-    there.close()
+
+    def life(connection: Connection) -> None:
+        _be_quiet()
+        limit_memory(memory)
+        limit_processor_time(seconds * len(calls))
+        for call in calls:
+            connection.send(_outcome(call))
+
+    child = ForkedChild(life)
     try:
-        return _collect(child, here, len(calls), seconds)
+        return _collect(child, len(calls), seconds)
     finally:
-        here.close()
-        _stop(child)
+        child.kill()
 
 
-def _collect(child: int, pipe: Connection, count: int, seconds: float) -> list[Outcome]:
+def _collect(child: ForkedChild, count: int, seconds: float) -> list[Outcome]:
     outcomes: list[Outcome] = []
     for _ in range(count):
         begun = time.monotonic()
-        if not pipe.poll(seconds):
+        if not child.connection.poll(seconds):
             return [*outcomes, Outcome(failure=f"stopped after {seconds:g} s", seconds=seconds)]
         try:
-            outcomes.append(pipe.recv())
-        except EOFError:
-            death = f"the process died ({_end_of(child)})"
+            outcomes.append(child.connection.recv())
+        except (EOFError, ConnectionResetError):
+            death = f"the process died ({child.how_it_ended()})"
             return [*outcomes, Outcome(failure=death, seconds=time.monotonic() - begun)]
     return outcomes
-
-
-def _end_of(child: int) -> str:
-    """Wait for a child that closed its pipe and say how it ended."""
-    _, status = os.waitpid(child, 0)
-    code = os.waitstatus_to_exitcode(status)
-    return f"signal {signal.Signals(-code).name}" if code < 0 else f"exit status {code}"
-
-
-def _stop(child: int) -> None:
-    try:
-        os.kill(child, signal.SIGKILL)
-        os.waitpid(child, 0)
-    except (ProcessLookupError, ChildProcessError):
-        pass  # it has been waited for already
-
-
-def _child(calls: Sequence[Callable[[], Any]], seconds: float, memory: int, pipe: Connection) -> NoReturn:
-    """Do the calls, send each outcome, and leave without running anything of the parent's clean-up."""
-    status = 1
-    try:
-        _be_quiet()
-        _limit(seconds * len(calls), memory)
-        for call in calls:
-            pipe.send(_outcome(call))
-        status = 0
-    finally:
-        os._exit(status)
 
 
 def _outcome(call: Callable[[], Any]) -> Outcome:
@@ -172,15 +139,3 @@ def _be_quiet() -> None:
     sys.stdout = sys.stderr = open(os.devnull, "w", encoding="utf-8")  # noqa: SIM115 (the process ends with it)
     for number in (signal.SIGINT, signal.SIGTERM, signal.SIGALRM):
         signal.signal(number, signal.SIG_DFL)
-
-
-def _limit(seconds: float, memory: int) -> None:
-    """Set the kernel's own limits, so that a child whose parent is gone ends as well."""
-    with open("/proc/self/statm", encoding="ascii") as pages:
-        held = int(pages.read().split()[0]) * resource.getpagesize()
-    _, hard = resource.getrlimit(resource.RLIMIT_AS)
-    wanted = held + memory
-    resource.setrlimit(resource.RLIMIT_AS, (wanted if hard == resource.RLIM_INFINITY else min(wanted, hard), hard))
-    _, hard = resource.getrlimit(resource.RLIMIT_CPU)
-    used = int(time.process_time() + seconds) + 2
-    resource.setrlimit(resource.RLIMIT_CPU, (used if hard == resource.RLIM_INFINITY else min(used, hard), hard))

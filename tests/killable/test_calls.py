@@ -5,7 +5,8 @@ import time
 
 import numpy as np
 
-from verify.comparison.limits import NotAttempted, run_limited
+from verify.errors import NotAttempted
+from verify.killable.calls import run_limited
 
 
 def test_values_come_back_in_order():

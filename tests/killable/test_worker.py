@@ -8,8 +8,8 @@ import time
 
 import pytest
 
-from verify.derivation.budget import Worker
 from verify.errors import InputError, UndecidedError
+from verify.killable.worker import Worker
 
 
 def _sleep_in_one_c_call(seconds):

@@ -1,15 +1,12 @@
 """Run symbolic steps in a child process that is really stopped when its time or memory is spent.
 
-Computer algebra has calls that never return (C loops ignore alarms), so a step runs where it can be killed.
-One child serves all steps of a derivation and is started anew only after a kill.
+Computer algebra has calls that never return, so a step runs where it can be killed. One child serves all steps of a
+derivation and is started anew only after a kill.
 """
 
 from __future__ import annotations
 
-import contextlib
 import multiprocessing
-import multiprocessing.connection
-import os
 import signal
 import sys
 import time
@@ -20,11 +17,14 @@ from types import TracebackType
 from typing import Any, Self
 
 from verify.errors import SidecheckError, UndecidedError
+from verify.killable.child import ForkedChild, can_fork, limit_memory
 
 MEMORY = 2 * 2**30
 """Bytes that a child may take beyond what it starts with."""
 
 Connection = Any
+
+PACKAGE = Path(__file__).resolve().parent.parent
 
 
 class Worker:
@@ -49,8 +49,8 @@ class Worker:
 
     def __init__(self, seconds: float, memory: int = MEMORY, method: str = "") -> None:
         self.seconds, self.memory = seconds, memory
-        self.method = method or ("fork" if hasattr(os, "fork") else "spawn")
-        self._child: _Forked | _Spawned | None = None
+        self.method = method or ("fork" if can_fork() else "spawn")
+        self._child: ForkedChild | _Spawned | None = None
 
     def __enter__(self) -> Self:
         return self
@@ -78,7 +78,7 @@ class Worker:
             What the function itself raised on purpose.
         """
         if self._child is None:
-            self._child = _Forked(self.memory) if self.method == "fork" else _Spawned(self.memory)
+            self._child = self._forked() if self.method == "fork" else _Spawned(self.memory)
         started = time.monotonic()
         try:
             self._child.connection.send((function, arguments))
@@ -99,29 +99,10 @@ class Worker:
             raise value
         raise UndecidedError(value)
 
-
-class _Forked:
-    """A child made by ``os.fork`` (allowed also inside daemonic processes of a cluster)."""
-
-    def __init__(self, memory: int) -> None:
-        self.connection, inner = multiprocessing.Pipe()
-        sys.stdout.flush()
+    def _forked(self) -> ForkedChild:
+        sys.stdout.flush()  # else what stands in its buffer might be printed twice
         sys.stderr.flush()
-        self.pid = os.fork()
-        if self.pid == 0:
-            try:
-                self.connection.close()
-                serve(inner, memory)
-            finally:
-                os._exit(0)
-        inner.close()
-
-    def kill(self) -> None:
-        self.connection.close()
-        with contextlib.suppress(ProcessLookupError):
-            os.kill(self.pid, signal.SIGKILL)
-        with contextlib.suppress(ChildProcessError):
-            os.waitpid(self.pid, 0)
+        return ForkedChild(lambda connection: serve(connection, self.memory))
 
 
 class _Spawned:
@@ -174,20 +155,4 @@ def _is_surrender(error: Exception) -> bool:
     if isinstance(error, (ArithmeticError, NotImplementedError, RecursionError)):
         return True
     frames = traceback.extract_tb(error.__traceback__)
-    return not frames or Path(frames[-1].filename).resolve().parent.parent != Path(__file__).resolve().parent.parent
-
-
-def limit_memory(extra: int) -> None:
-    """Let this process take at most so many bytes more than it has, where the system can limit it."""
-    try:
-        import resource
-    except ImportError:
-        return
-    try:
-        with open("/proc/self/statm", encoding="ascii") as stream:
-            now = int(stream.read().split()[0]) * os.sysconf("SC_PAGE_SIZE")
-    except OSError:
-        return
-    _, hard = resource.getrlimit(resource.RLIMIT_AS)
-    limit = now + extra
-    resource.setrlimit(resource.RLIMIT_AS, (limit if hard == resource.RLIM_INFINITY else min(limit, hard), hard))
+    return not frames or PACKAGE not in Path(frames[-1].filename).resolve().parents
