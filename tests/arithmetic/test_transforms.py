@@ -8,7 +8,7 @@ import pytest
 from flint import acb, arb
 
 from verify.arithmetic.ball import balls
-from verify.arithmetic.transforms import Bessel, GammaRatio, Secant, Transform
+from verify.arithmetic.transforms import Bessel, FallingOnLines, GammaRatio, InTerms, Secant, Transform
 
 RATIO = GammaRatio(Fraction(1, 3), Fraction(17, 6))
 SECANT = Secant(Fraction(3, 2), Fraction(1), Fraction(1, 4), Fraction(1, 5), Fraction(-1), Fraction(1))
@@ -23,7 +23,7 @@ def box_and_point(random: Random, low: int) -> tuple[Any, Any]:
 
 
 @pytest.mark.parametrize(("transform", "which"), [(Bessel(), (0, 1)), (Bessel(), (3,)), (RATIO, (0,))])
-def test_sizes_of_terms_over_boxes(transform: Transform, which: tuple[int, ...]) -> None:
+def test_sizes_of_terms_over_boxes(transform: InTerms, which: tuple[int, ...]) -> None:
     random = Random(7)
     with balls(128) as A:
         v = arb(-5) if transform is RATIO else arb(1) / 3
@@ -58,3 +58,9 @@ def test_secant_size_in_its_strip() -> None:
         box = acb(arb(0, 0.5), arb(0, 0.25))
         for k in range(-4, 5):
             assert abs(SECANT.value(A, acb(arb(k) / 8, arb(1) / 8), False)) < SECANT.size(A, box)
+
+
+@pytest.mark.parametrize("kind", [Transform, InTerms, FallingOnLines])
+def test_a_transform_without_its_parts_cannot_be_made(kind: type[Transform]) -> None:
+    with pytest.raises(TypeError, match="abstract"):
+        kind()

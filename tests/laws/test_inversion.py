@@ -12,12 +12,12 @@ from flint import acb
 
 from verify.arithmetic.ball import balls
 from verify.arithmetic.inversion import DENSITY, SHORTFALL, SLOPE, TAIL, Inversion
-from verify.arithmetic.transforms import Bessel, GammaRatio, Secant, Transform
+from verify.arithmetic.transforms import Bessel, GammaRatio, InTerms, Secant
 from verify.laws.gamma import Gamma
 
 
 @dataclass(frozen=True)
-class Interval(Transform):
+class Interval(InTerms):
     """N(z) = (exp(b z) - exp(a z)) / z: a constant weight on (a, b), such as the truncated exponential law."""
 
     a: Any

@@ -16,7 +16,7 @@ from flint import acb, arb
 
 from verify.arithmetic.ball import Balls, balls, midpoint
 from verify.arithmetic.gauss import BOUND_BITS, Panel, panels_along
-from verify.arithmetic.transforms import Transform
+from verify.arithmetic.transforms import FallingOnLines, InTerms, Transform
 from verify.errors import UndecidedError
 
 Ball = Any
@@ -168,13 +168,16 @@ def _take(transform: Transform, path: Path, leg: Leg, panel: Panel) -> None:
     path.shares.append((panel, share))
     with balls(path.prec) as A:
         for place, weight in nodes:
-            value = (
-                transform.value(A, place, False) ** path.n
-                if leg.which is None
-                else transform.terms(A, place, path.n, leg.which)
-            )
             path.places.append(place)
-            path.weights.append(weight * value)
+            path.weights.append(weight * _value(A, transform, path, leg, place))
+
+
+def _value(A: Balls, transform: Transform, path: Path, leg: Leg, z: Any) -> Any:
+    """N(z)**n, or those of its terms that are taken along a leg."""
+    if leg.which is None:
+        return transform.value(A, z, False) ** path.n
+    assert isinstance(transform, InTerms)
+    return transform.terms(A, z, path.n, leg.which)
 
 
 def _goal(A: Balls, transform: Transform, path: Path, eta: Ball) -> int:
@@ -198,6 +201,7 @@ def _bound(A: Balls, transform: Transform, path: Path, leg: Leg, eta: Ball) -> C
         if leg.which is None:
             size = transform.size(A, z) ** path.n * (-path.v * z.real).exp()
         else:
+            assert isinstance(transform, InTerms)
             size = transform.terms_size(A, z, path.n, leg.which, path.v)
         least = (eta - z).abs_lower()
         return size.upper(), (1 + gap / least) ** 2 if least > 0 else arb("inf")
@@ -207,10 +211,12 @@ def _bound(A: Balls, transform: Transform, path: Path, leg: Leg, eta: Ball) -> C
 
 def _legs(A: Balls, transform: Transform, path: Path, goal: int) -> Iterator[tuple[Leg, Ball]]:
     """The legs of a path with their lengths; what lies beyond them is added to the cuts of the path."""
-    rates, start = transform.rates(A, path.n), acb(path.c)
-    if not rates:
+    start = acb(path.c)
+    if isinstance(transform, FallingOnLines):
         yield Leg(start, acb(0, 1), None), _line_end(A, transform, path, goal)
         return
+    assert isinstance(transform, InTerms)
+    rates = transform.rates(A, path.n)
     yield Leg(start, acb(0, 1), None), arb(HEIGHT)
     left = tuple(j for j, rate in enumerate(rates) if rate > path.v)
     right = tuple(j for j, rate in enumerate(rates) if rate < path.v)
@@ -223,7 +229,7 @@ def _legs(A: Balls, transform: Transform, path: Path, goal: int) -> Iterator[tup
 
 
 def _ray_end(
-    A: Balls, transform: Transform, path: Path, rates: list[Ball], which: tuple[int, ...], side: int, goal: int
+    A: Balls, transform: InTerms, path: Path, rates: list[Ball], which: tuple[int, ...], side: int, goal: int
 ) -> Ball:
     """Length of a diagonal ray beyond which little is left."""
     wanted, length = arb(2) ** -goal, 8
@@ -239,10 +245,10 @@ def _ray_end(
     raise UndecidedError("the point lies too near a corner of the density of the sum")
 
 
-def _line_end(A: Balls, transform: Transform, path: Path, goal: int) -> Ball:
+def _line_end(A: Balls, transform: FallingOnLines, path: Path, goal: int) -> Ball:
     """Height of a vertical line beyond which little is left."""
     wanted, top = arb(2) ** -goal, 2
-    shift = (A.real(getattr(transform, "shift", 0)) * path.n * path.c).exp()
+    shift = (A.real(transform.shift) * path.n * path.c).exp()
     while top < FARTHEST:
         bound, rate = transform.vertical_bound(A, path.n, arb(top))
         cut = Cut(acb(path.c, top), bound / rate * shift, None, rate)

@@ -1,17 +1,18 @@
 """Transforms of one observation whose size is known in a half-plane, so that their inversion can be cut with
 proof.
 
-With N(z) = integral of h exp(z T) (the exponential of the log normaliser at the natural parameter z), each
-class here writes N(z)**n in the upper half-plane as a sum of terms, the term with rate r growing like exp(r
-Re z). On a ray up and to the left (or right) a term with r > v (or r < v) makes N(z)**n exp(-z v) fall
-exponentially. ``bound`` proves how small it is beyond a point:
-|term at z| <= bound(...) * exp(r Re z) for all z further out on the ray.
+With N(z) = integral of h exp(z T) (the exponential of the log normaliser at the natural parameter z), a class here
+either falls exponentially on vertical lines or writes N(z)**n in the upper half-plane as a sum of terms, the term with
+rate r growing like exp(r Re z). On a ray up and to the left (or right) a term with r > v (or r < v) makes
+N(z)**n exp(-z v) fall exponentially. ``bound`` proves how small it is beyond a point: |term at z| <=
+bound(...) * exp(r Re z) for all z further out on the ray.
 
 Constant factors of N are left out everywhere: they cancel, because laws only need N(z) / N(eta).
 """
 
 from __future__ import annotations
 
+from abc import ABC, abstractmethod
 from collections.abc import Sequence
 from dataclasses import dataclass
 from math import comb
@@ -25,16 +26,16 @@ from verify.arithmetic.bessel import k0_both
 ComplexBall = Any
 
 
-class Transform:
-    """A transform N(z), and how N(z)**n splits into terms in the upper half-plane."""
+class Transform(ABC):
+    """A transform N(z): either :class:`InTerms` or :class:`FallingOnLines`."""
 
     def domain(self) -> tuple[Any, Any]:
         """Real interval on which N is finite, None for an infinite end."""
         return None, None
 
+    @abstractmethod
     def value(self, A: Balls, z: ComplexBall, analytic: bool) -> ComplexBall:
         """N(z) off the cuts of the formula."""
-        raise NotImplementedError
 
     def size(self, A: Balls, z: ComplexBall) -> Any:
         """Bound of |N| over a ball whose real parts lie in the domain: |N(z)| <= N(Re z), which is convex."""
@@ -47,36 +48,50 @@ class Transform:
             return arb("nan")
         return ends[0].max(ends[1]).upper()
 
-    def rates(self, A: Balls, n: int) -> list[Any]:
-        """Rate of each term of N(z)**n; empty where N falls exponentially on vertical lines."""
-        raise NotImplementedError
 
+class InTerms(Transform):
+    """A transform whose power N(z)**n splits into terms in the upper half-plane."""
+
+    @abstractmethod
+    def rates(self, A: Balls, n: int) -> list[Any]:
+        """Rate of each term of N(z)**n."""
+
+    @abstractmethod
     def term_size(self, A: Balls, z: ComplexBall, n: int, which: int) -> Any:
         """Bound of |term| exp(-rate Re z) over a ball in the upper half-plane (not finite: none is known)."""
-        raise NotImplementedError
 
+    @abstractmethod
     def terms(self, A: Balls, z: ComplexBall, n: int, which: Sequence[int]) -> ComplexBall:
         """Sum of some of the terms at z."""
-        raise NotImplementedError
 
     def terms_size(self, A: Balls, z: ComplexBall, n: int, which: Sequence[int], v: Any) -> Any:
         """Bound of some of the terms times exp(-v Re z) over a box in the upper half-plane."""
         rates = self.rates(A, n)
         return sum((self.term_size(A, z, n, j) * ((rates[j] - v) * z.real).exp() for j in which), arb(0))
 
+    @abstractmethod
     def bound(self, A: Balls, n: int, which: int, x: Any, height: Any) -> Any:
         """Bound of |term| exp(-rate Re z) for all Im z >= height and Re z beyond x (on the side of x's sign)."""
-        raise NotImplementedError
 
+
+class FallingOnLines(Transform):
+    """A transform that falls exponentially on vertical lines, but for a factor exp(shift z).
+
+    Attributes
+    ----------
+    shift : Exact
+        The factor exp(shift z) has this constant.
+    """
+
+    shift: Any
+
+    @abstractmethod
     def vertical_bound(self, A: Balls, n: int, height: Any) -> tuple[Any, Any]:
-        """Return (B, k) with |N(z)|**n <= B exp(-k (Im z - height)) for Im z >= height, where rates() is
-        empty.
-        """
-        raise NotImplementedError
+        """Return (B, k) with |N(z)|**n <= B exp(-k (Im z - height)) |exp(n shift z)| for Im z >= height."""
 
 
 @dataclass(frozen=True)
-class Bessel(Transform):
+class Bessel(InTerms):
     """N(z) = I0(z): the cosine of a direction.
 
     I0(z) = (K0(-z) - K0(z)) / (pi i) in the upper half-plane (DLMF 10.34.2). For abs(ph z) <= pi, DLMF
@@ -136,7 +151,7 @@ class Bessel(Transform):
 
 
 @dataclass(frozen=True)
-class GammaRatio(Transform):
+class GammaRatio(InTerms):
     """N(z) = Gamma(z + a) / Gamma(z + b), b > a: the logarithm of a beta variable.
 
     On the left: N(z) = Gamma(w) sin pi(z + b) / (Gamma(w + d) sin pi(z + a)), w = 1 - z - b, d = b - a (DLMF
@@ -195,7 +210,7 @@ class GammaRatio(Transform):
 
 
 @dataclass(frozen=True)
-class Secant(Transform):
+class Secant(FallingOnLines):
     """N(z) = exp(shift z) / cos(omega z + phase)**r: the generalised hyperbolic secant law.
 
     |cos(x + iy)| >= sinh(abs(y)) >= exp(abs(y)) * (1 - exp(-2 abs(y))) / 2.
@@ -231,10 +246,6 @@ class Secant(Transform):
         square = x.cos().abs_lower() ** 2 + y.sinh().abs_lower() ** 2
         front = (z.real * A.real(self.shift)).exp().upper()
         return front * square ** (-A.real(self.r) / 2) if square > 0 else arb("nan")
-
-    def rates(self, A: Balls, n: int) -> list[Any]:
-        """None: N falls exponentially on vertical lines."""
-        return []
 
     def vertical_bound(self, A: Balls, n: int, height: Any) -> tuple[Any, Any]:
         """(exp(-k H) (2 / (1 - exp(-2 omega H)))**(n r), k) with k = n r omega; the factor exp(shift z)
