@@ -155,3 +155,15 @@ def test_two_levels_are_certified_under_their_own_theorem(tmp_path: Path, capsys
     said = capsys.readouterr().out
     assert "Theorem 3.6.1" in said
     assert "unbiased" not in said
+
+
+def test_a_fraction_that_is_a_decimal_is_certified_exactly(tmp_path: Path) -> None:
+    """Ten fair coins at level (11 + 45/8)/1024: gamma is 1/8, which two decimals round to neither side by digits."""
+    case = tmp_path / "coins.case.toml"
+    case.write_text(
+        '[density]\nformula = "binomial(10, x)*p**x*(1-p)**(10-x)"\nvariable = "x"\nsupport = "integers 0..10"\n'
+        'parameter = "p"\nspace = "0 < p < 1"\n[problem]\nnull = "p <= 1/2"\nalpha = "133/8192"\nn = 1\n',
+        encoding="utf-8",
+    )
+    assert certify(case, "-o", tmp_path, "--no-pdf") == 0
+    assert json.loads((tmp_path / "coins.cert.json").read_text())["predicate"]["test"]["gamma"] == "1/8"

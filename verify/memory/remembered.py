@@ -11,10 +11,11 @@ from verify.arithmetic.enclosure import Enclosure
 from verify.errors import InputError
 from verify.memory.key import key_of
 from verify.memory.place import Place
-from verify.memory.reprove import continuous_tail, continuous_window, lattice_tail, lattice_window
+from verify.memory.reprove import continuous_tail, continuous_window, lattice_tail
 from verify.memory.store import Store
 from verify.problem.hypothesis import Form
 from verify.solution.conditions import Conditions
+from verify.solution.lattice_window import prove_pair
 from verify.solution.one_sided import TailProblem
 from verify.solution.solve import Solution, family_of, rejects_above, solve, with_tail, with_window
 from verify.solution.window import rough_laws
@@ -110,7 +111,7 @@ def _proved_again(problem: Problem, digits: int, derivation: Derivation, place: 
     first: Any = place.ends[0]
     second: Any = place.ends[1]
     if lattice:
-        window = lattice_window(conditions, first, second, place.prec, digits)
+        window = prove_pair(conditions, first, second, place.prec, digits)
     else:
         window = continuous_window(conditions, first, second, place.sides, place.prec, digits)
     return None if window is None else with_window(problem, derivation, laws, digits, window)

@@ -1,7 +1,7 @@
 """Proving a remembered place again: one evaluation, and nothing of it believed before.
 
 What is remembered says only where to look. On a lattice the fractions are computed anew at the remembered precision,
-and both must lie certainly within (0, 1); for a continuous law one step of the proof (or, one-sided, a change of
+and must lie certainly within (0, 1); for a continuous law one step of the proof (or, one-sided, a change of
 sign) must show that the remembered enclosures hold the cutoffs.
 
 The exact test satisfies its side conditions exactly, so an enclosure of one is true as soon as it contains the target.
@@ -15,26 +15,13 @@ from __future__ import annotations
 from verify.arithmetic.ball import accuracy_bits, around, balls, midpoint, radius, to_enclosure
 from verify.arithmetic.enclosure import Enclosure
 from verify.laws import Law
-from verify.solution.conditions import Conditions, linear_system
+from verify.solution.conditions import Conditions
 from verify.solution.continuous_window import Expansion
 from verify.solution.one_sided import Tail, TailProblem, unit
-from verify.solution.precision import accuracy_for
+from verify.solution.precision import accuracy_for, may_be_decimal
 from verify.solution.window import Window
 
 EXTRA_BITS = 64
-
-
-def lattice_window(conditions: Conditions, c1: int, c2: int, prec: int, digits: int) -> Window | None:
-    """Return the window of a lattice law with these ends, or None where it is not proved at this precision."""
-    low, high = conditions.laws[0].support
-    if not c1 < c2 or (low is not None and c1 < low) or (high is not None and c2 > high):
-        return None
-    with balls(prec) as A:
-        system = linear_system(conditions, A, c1, c2)
-        if not all(g > 0 and g < 1 and accuracy_bits(g) >= accuracy_for(digits) for g in system.fractions):
-            return None
-        phi1, phi2 = (unit(g) for g in system.fractions)
-        return Window(c1, c2, phi1, phi2, tuple(to_enclosure(side) for side in system.left_hand_sides()), prec)
 
 
 def continuous_window(
@@ -66,7 +53,8 @@ def lattice_tail(problem: TailProblem, c: int, prec: int, digits: int) -> Tail |
         gamma = (A.real(problem.level) - beyond) / mass
         if not (gamma > 0 and gamma < 1 and accuracy_bits(gamma) >= accuracy_for(digits)):
             return None
-        return Tail(c, unit(gamma), to_enclosure(beyond + gamma * mass), prec)
+        phi = unit(gamma)
+        return None if may_be_decimal(phi, digits) else Tail(c, phi, to_enclosure(beyond + gamma * mass), prec)
 
 
 def continuous_tail(problem: TailProblem, c: Enclosure, side: Enclosure, prec: int, digits: int) -> Tail | None:

@@ -9,15 +9,14 @@ from fractions import Fraction
 from functools import cached_property
 from typing import Any
 
-from verify.arithmetic.ball import balls, to_enclosure
 from verify.laws import Law
 from verify.review.numbers import complement
-from verify.solution.conditions import end_fractions
-from verify.solution.critical import CriticalFunction
+from verify.solution.critical import CriticalFunction, Region
+from verify.solution.lattice_window import prove_pair
 from verify.solution.one_sided import TailProblem
 from verify.solution.precision import bits_for
 from verify.solution.two_sided import Search, solve_window, window_search
-from verify.solution.window import rough_laws, search_precision
+from verify.solution.window import Window, rough_laws, search_precision
 
 
 @dataclass(frozen=True)
@@ -53,9 +52,11 @@ class TwoSided:
         """
         if not self.outside and len(self.laws) == 1:
             return self._inside_at_one_point(digits)
-        window = solve_window(self.search, digits)
-        region = "outside" if self.outside else "inside"
-        return CriticalFunction(region, window.c1, window.c2, window.phi1, window.phi2)  # type: ignore[arg-type]
+        return self._critical(solve_window(self.search, digits))
+
+    def _critical(self, window: Window) -> CriticalFunction:
+        region: Region = "outside" if self.outside else "inside"
+        return CriticalFunction(region, window.c1, window.c2, window.phi1, window.phi2)
 
     def _inside_at_one_point(self, digits: int) -> CriticalFunction:
         """The limit of two close limits: the complement of the test of the point at level 1 - alpha."""
@@ -73,18 +74,9 @@ class TwoSided:
         Source: Lehmann and Romano 2005, Theorem 3.7.1: a critical function of this shape that satisfies the
         side conditions is the one.
         """
-        low, high = self.laws[0].support
-        if c1 >= c2 or (low is not None and c1 < low) or (high is not None and c2 > high):
-            return None
-        wanted = bits_for(digits)
-        with balls(wanted + self.search.prec - 56) as A:
-            first, second = end_fractions(self.search.conditions, A, c1, c2)
-            certain = first > 0 and first < 1 and second > 0 and second < 1
-            if not certain or min(first.rel_accuracy_bits(), second.rel_accuracy_bits()) < wanted - 16:
-                return None
-            region = "outside" if self.outside else "inside"
-            ends = (to_enclosure(first), to_enclosure(second))
-        return CriticalFunction(region, c1, c2, *ends)  # type: ignore[arg-type]
+        search = self.search
+        window = prove_pair(search.conditions, c1, c2, bits_for(digits) + search.prec - 56, digits)
+        return None if window is None else self._critical(window)
 
 
 def solve_tail(law: Law, level: Any, *, above: bool, digits: int) -> CriticalFunction:

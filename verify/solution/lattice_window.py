@@ -30,7 +30,7 @@ from verify.solution.conditions import (
 )
 from verify.solution.lattice_step import as_float, cells, log_float
 from verify.solution.narrow import even_point, narrow_contents
-from verify.solution.precision import bits_for
+from verify.solution.precision import accuracy_for, bits_for, may_be_decimal
 from verify.solution.sliding import slide
 from verify.solution.start import window_start
 from verify.solution.window import Window, WindowSearch
@@ -192,9 +192,9 @@ def solve_lattice_window(search: LatticeSearch, digits: int) -> Window:
             if moves == [0, 0]:
                 reached = min(accuracy_bits(g) for g in system.fractions)
                 if reached >= wanted:
-                    ends = [to_enclosure(g, low=_ZERO, high=_ONE) for g in system.fractions]
-                    sides = tuple(to_enclosure(side) for side in system.left_hand_sides())
-                    return Window(*cell, ends[0], ends[1], sides, bits)
+                    window = _enclosed(system, cell, bits)
+                    exact = _exact_tie(conditions, cell, bits) if _may_be_exact(window, digits) else None
+                    return exact if isinstance(exact, Window) else window
                 bits += wanted - reached + 8
                 continue
         if None in moves:
@@ -207,6 +207,33 @@ def solve_lattice_window(search: LatticeSearch, digits: int) -> Window:
             moves = [*exact]
         cell = _neighbour(search, cell, moves, tried, bits)
     raise UndecidedError(f"an end fraction at {cell} could not be told from 0 or 1 within {cap} bits")
+
+
+def prove_pair(conditions: Conditions, c1: int, c2: int, bits: int, digits: int) -> Window | None:
+    """Look at one pair of lattice points: where its fractions certainly lie inside (0, 1), it is the window.
+
+    Returns None where that is not shown at this precision, with too few digits, or where only exact fractions can say
+    what the numbers are.
+    """
+    low, high = conditions.laws[0].support
+    if not c1 < c2 or (low is not None and c1 < low) or (high is not None and c2 > high):
+        return None
+    with balls(bits) as A:
+        system = linear_system(conditions, A, c1, c2)
+        if not all(g > 0 and g < 1 and accuracy_bits(g) >= accuracy_for(digits) for g in system.fractions):
+            return None
+        window = _enclosed(system, (c1, c2), bits)
+    return None if _may_be_exact(window, digits) else window
+
+
+def _enclosed(system: LinearSystem, cell: Cell, bits: int) -> Window:
+    """The window of a pair whose fractions are known to lie inside (0, 1)."""
+    first, second = (to_enclosure(g, low=_ZERO, high=_ONE) for g in system.fractions)
+    return Window(*cell, first, second, tuple(to_enclosure(side) for side in system.left_hand_sides()), bits)
+
+
+def _may_be_exact(window: Window, digits: int) -> bool:
+    return any(phi is not None and may_be_decimal(phi, digits) for phi in (window.phi1, window.phi2))
 
 
 def _neighbour(search: LatticeSearch, cell: Cell, moves: list[Any], tried: set[Cell], bits: int) -> Cell:

@@ -21,7 +21,7 @@ from verify.laws import Law
 from verify.solution.conditions import MOST_EXACT_ATOMS
 from verify.solution.coordinate import Coordinate
 from verify.solution.lattice_step import as_float, cells
-from verify.solution.precision import bits_for
+from verify.solution.precision import bits_for, may_be_decimal
 from verify.solution.start import Rough, upper_point
 
 MOST_ROUNDS = 200
@@ -107,7 +107,8 @@ class TailProblem:
                 if gamma > 0 and gamma < 1:
                     reached = accuracy_bits(gamma)
                     if reached >= wanted:
-                        return Tail(c, unit(gamma), to_enclosure(beyond + gamma * mass), bits)
+                        tail = Tail(c, unit(gamma), to_enclosure(beyond + gamma * mass), bits)
+                        return (self._exact(c, bits) if may_be_decimal(unit(gamma), digits) else None) or tail
                     bits += wanted - reached + 8
                     continue
                 certain = gamma > 1 or gamma < 0

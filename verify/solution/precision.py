@@ -2,6 +2,10 @@
 
 from __future__ import annotations
 
+from math import floor
+
+from verify.arithmetic.enclosure import Enclosure
+
 BITS_PER_DIGIT = 3.3219280948873626
 GUARD_BITS = 16
 
@@ -26,3 +30,20 @@ def accuracy_for(digits: int) -> int:
     171
     """
     return int(digits * BITS_PER_DIGIT) + 1 + 4
+
+
+def may_be_decimal(number: Enclosure, digits: int) -> bool:
+    """Whether a number enclosed to so many digits may be a short decimal, with half as many places.
+
+    No digits tell such a number from its neighbours, and rounding it may be a tie: where its masses are rational,
+    exact fractions say what it is.
+
+    Examples
+    --------
+    >>> from fractions import Fraction
+    >>> third, eighth = (Enclosure(Fraction(1, k) - Fraction(1, 10**60), Fraction(1, k)) for k in (3, 8))
+    >>> may_be_decimal(third, 50), may_be_decimal(eighth, 50)
+    (False, True)
+    """
+    grid: int = 10 ** (digits // 2)
+    return floor(number.upper * grid) >= number.lower * grid
