@@ -67,7 +67,7 @@ class Expectations:
         if isinstance(self.scale, Fraction) and isinstance(self.shift, Fraction):
             try:
                 return Enclosure.of(self.scale * law.expectation(rationals()) + self.shift)
-            except (NotRational, TypeError):
+            except NotRational:
                 pass
         with balls(self.prec) as A:
             return to_enclosure(A.real(self.scale) * law.expectation(A) + A.real(self.shift))
