@@ -399,8 +399,8 @@ def opinion(values: dict[str, Any], test: dict[str, Any]) -> dict[str, Any]:
     for key, text in numbers.items():
         claim = test[key]
         ends = [Fraction(claim)] * 2 if isinstance(claim, str) else [Fraction(claim["lower"]), Fraction(claim["upper"])]
-        worst = max(abs(Fraction(text) - e) for e in ends)
-        digits[key] = max((d for d in range(18) if 2 * worst * 10**d <= min(map(abs, ends))), default=0)
+        worst = max(abs(Fraction(float(text)) - e) for e in ends)
+        digits[key] = max((d for d in range(17) if worst * 10**d <= min(map(abs, ends))), default=0)
     return {"route": "invented", "numbers": numbers, "digits": digits, "note": ""}
 
 

@@ -11,12 +11,12 @@ from math import comb
 import pytest
 from scipy import special, stats
 
+from verify.arithmetic.agreement import significant_digits
 from verify.arithmetic.ball import balls, to_enclosure
 from verify.arithmetic.enclosure import Enclosure
-from verify.comparison.digits import significant_digits
 from verify.comparison.flags import ENOUGH
-from verify.killable.calls import run_limited
 from verify.comparison.scipy_laws import lost_tail_hint
+from verify.killable.calls import run_limited
 
 WRONG = {
     "poisson.logpmf(5e15, 5e15)": (lambda: stats.poisson.logpmf(5e15, 5e15), "-18.993045686877065576"),

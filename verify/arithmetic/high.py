@@ -42,6 +42,10 @@ class High:
             return x
         return evaluate(x, self, {})
 
+    def rational(self, x: Any) -> Fraction:
+        """Return a number of this arithmetic as the rational that it is."""
+        return Fraction(*map(int, mpmath.libmp.to_rational(self.mp.mpf(x)._mpf_)))
+
     @property
     def pi(self) -> Any:
         """The number pi."""

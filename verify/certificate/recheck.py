@@ -1222,15 +1222,16 @@ def check_derivation(q: Question) -> None:
 
 
 def check_double(q: Question, opinions: list[dict[str, Any]]) -> None:
-    """Digits of agreement of a double x: the largest d <= 17 with |x - c| <= 10**-d |c| / 2 for all claimed c, or 0."""
+    """Digits of agreement of a double x: the largest d <= 16 with |x - c| <= 10**-d |c| for all claimed c, or 0."""
     for opinion in opinions:
         numbers, digits = opinion["numbers"], opinion["digits"]
         form(all(re.fullmatch("(c|gamma)[12]?", key) and key in q.test for key in numbers), "an opinion on what")
         form(set(digits) == {key for key, x in numbers.items() if x is not None}, "the agreement of each number")
         for key, stated in digits.items():
             (low, high), x = claimed(q.test[key]), decimal(numbers[key])
-            worst, size = max(abs(x - low), abs(x - high)), min(abs(low), abs(high))
-            agreed = max((d for d in range(18) if 2 * worst * 10**d <= size), default=0)
+            form(abs(x) < 2**1023, "a double that is too large")
+            worst, size = max(abs(Fraction(float(x)) - end) for end in (low, high)), min(abs(low), abs(high))
+            agreed = max((d for d in range(17) if worst * 10**d <= size), default=0)
             require(agreed == stated, f"the agreement of {key}")
 
 

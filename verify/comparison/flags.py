@@ -6,7 +6,7 @@ import math
 from dataclasses import dataclass
 from fractions import Fraction
 
-from verify.comparison.digits import DOUBLE_DIGITS
+from verify.arithmetic.agreement import DOUBLE_DIGITS
 from verify.comparison.opinion import Opinion, Truth
 
 ENOUGH = 10

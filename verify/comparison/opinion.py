@@ -6,9 +6,9 @@ import math
 from dataclasses import dataclass, field
 from fractions import Fraction
 
+from verify.arithmetic.agreement import DOUBLE_DIGITS, digits_on_scale, significant_digits
 from verify.arithmetic.enclosure import Enclosure
 from verify.comparison.condition import Sensitivity
-from verify.comparison.digits import DOUBLE_DIGITS, digits_on_scale, significant_digits
 
 
 @dataclass(frozen=True)

@@ -10,9 +10,9 @@ from fractions import Fraction
 from numbers import Rational
 from typing import Any
 
+from verify.arithmetic.agreement import whole_digits
 from verify.arithmetic.enclosure import Enclosure
 from verify.casebook.found import setting_of
-from verify.comparison.digits import DOUBLE_DIGITS
 from verify.errors import InputError
 from verify.oracle.explain import explanation, same_test
 from verify.problem.keys import NUMBER_NAMES
@@ -79,12 +79,12 @@ def _row(name: str, given: Any, true: Enclosure, solution: Solution, digits: int
         return Row(name, None, shown, true, False, "not a number")
     error = max(abs(value - true.lower), abs(value - true.upper))
     if name.startswith("gamma"):
-        right, agreed = error <= Fraction(1, 10**digits), _digits(Fraction(1), error)
+        right, agreed = error <= Fraction(1, 10**digits), whole_digits(Fraction(1), error)
         return Row(name, value, shown, true, right, f"{agreed} decimal places, {digits} asked for")
     if solution.laws[0].lattice:
         return _lattice_row(name, value, shown, true, _step(solution))
     scale = min(abs(true.lower), abs(true.upper))
-    right, agreed = error <= scale / 10**digits, _digits(scale, error)
+    right, agreed = error <= scale / 10**digits, whole_digits(scale, error)
     return Row(name, value, shown, true, right, f"{agreed} significant digits, {digits} asked for")
 
 
@@ -104,14 +104,6 @@ def _step(solution: Solution) -> Fraction:
     """Distance of neighbouring values of V; 1 where they are uneven."""
     step = setting_of(solution).step
     return step.mid if step is not None else Fraction(1)
-
-
-def _digits(scale: Fraction, error: Fraction) -> int:
-    """Whole decimal digits on a scale, as many as a double has at most."""
-    if error == 0:
-        return DOUBLE_DIGITS
-    whole = int(scale / error)
-    return min(len(str(whole)) - 1 if whole else 0, DOUBLE_DIGITS)
 
 
 def number(given: Any, key: str) -> Fraction | None:

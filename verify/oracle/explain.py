@@ -6,9 +6,9 @@ from collections.abc import Iterator, Mapping
 from decimal import Context, Decimal
 from fractions import Fraction
 
+from verify.arithmetic.agreement import DOUBLE_DIGITS
 from verify.arithmetic.enclosure import Enclosure
 from verify.casebook.found import setting_of
-from verify.comparison.digits import DOUBLE_DIGITS
 from verify.errors import InputError, UndecidedError
 from verify.problem.numbers import exact_text
 from verify.review.consequences import Consequences

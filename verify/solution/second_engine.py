@@ -11,8 +11,10 @@ Source: F. Johansson et al., mpmath: a Python library for arbitrary-precision fl
 
 from __future__ import annotations
 
+from fractions import Fraction
 from typing import Any
 
+from verify.arithmetic.agreement import digits_on_scale
 from verify.arithmetic.enclosure import Enclosure
 from verify.arithmetic.high import High
 from verify.errors import UndecidedError
@@ -60,29 +62,15 @@ def second_engine(solution: Solution) -> dict[str, int]:
     spread = abs(A.real(solution.family.scale)) * A.mp.mpf(rough_laws(solution.laws)[0][0].spread)
     ordered = found[::-1] if solution.flipped else found
     return {
-        name: agreeing_digits(A, value, enclosure, solution.digits, spread)
+        name: _agreeing_digits(A.rational(value), enclosure, solution.digits, A.rational(spread))
         for (name, enclosure), value in zip(proven.items(), ordered, strict=True)
     }
 
 
-def agreeing_digits(A: High, value: Any, enclosure: Enclosure, most: int, whole: Any = 0) -> int:
-    """Return the significant digits to which an mpmath number agrees with an enclosure, at most so many.
-
-    Where the enclosure holds 0, the digits are those of ``whole`` instead.
-
-    Examples
-    --------
-    >>> from fractions import Fraction
-    >>> known = Enclosure(Fraction(333, 1000), Fraction(334, 1000))
-    >>> agreeing_digits(High(30), High(30).real(Fraction(1, 3)), known, 20)
-    2
-    """
-    middle = A.real(enclosure.mid)
-    error = abs(value - middle) + A.real(enclosure.radius)
-    if error == 0:
-        return most
-    size = whole if enclosure.contains(0) else abs(middle)
-    return 0 if error >= size else min(most, int(-A.mp.log10(error / size)))
+def _agreeing_digits(value: Fraction, enclosure: Enclosure, most: int, whole: Fraction) -> int:
+    """Significant digits to which a number agrees with an enclosure; digits of ``whole`` where that holds 0."""
+    size = whole if enclosure.contains(0) else min(abs(enclosure.lower), abs(enclosure.upper))
+    return digits_on_scale(value, enclosure, size, most)
 
 
 def _conditions(solution: Solution) -> Conditions:

@@ -7,8 +7,8 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
+from verify.arithmetic.agreement import DOUBLE_DIGITS, digits_on_scale, significant_digits, worst_error
 from verify.arithmetic.enclosure import Enclosure
-from verify.comparison.digits import DOUBLE_DIGITS, digits_on_scale, significant_digits, worst_error
 
 doubles = st.floats(min_value=1e-200, max_value=1e200)
 rationals = st.fractions(min_value=Fraction(1, 10**6), max_value=10**6)
