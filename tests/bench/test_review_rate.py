@@ -17,12 +17,12 @@ import pytest
 from verify.arithmetic.ball import balls
 from verify.laws import Poisson
 from verify.problem.casefile import read_case
-from verify.review.cells import open_table
 from verify.review.engine import TwoSided
 from verify.review.journal import Journal
 from verify.review.mapping import map_columns
 from verify.review.run import Job, run
 from verify.review.size import covariance
+from verify.review.tables import open_table
 from verify.solution.conditions import end_fractions
 
 pytestmark = pytest.mark.bench

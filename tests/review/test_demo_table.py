@@ -19,9 +19,9 @@ SLIPS = set(SCHEMA["$defs"]["slip"]["enum"])
 @pytest.fixture(scope="module")
 def records() -> dict[str, dict]:
     from verify.problem.casefile import read_case
-    from verify.review.cells import open_table
     from verify.review.mapping import map_columns
     from verify.review.run import Job, task_of
+    from verify.review.tables import open_table
 
     case, table = read_case(ROOT / "casebook/demo/claims.case.toml"), open_table(TABLE)
     columns = map_columns(case.table, table.header, str(TABLE))

@@ -13,10 +13,11 @@ import pytest
 from verify.cli.main import main
 from verify.errors import InputError
 from verify.problem.casefile import read_case
-from verify.review.cells import Kind, open_table
+from verify.review.cells import Kind
 from verify.review.journal import Journal
 from verify.review.mapping import map_columns
 from verify.review.run import Job, fingerprint, run
+from verify.review.tables import open_table
 
 CASE = """
 title = "Invented lots"

@@ -91,10 +91,10 @@ def _claim(case: Case, args: argparse.Namespace) -> int:
 def _table(case: Case, args: argparse.Namespace) -> int:
     from verify.problem.keys import NUMBER_NAMES
     from verify.review.annotate import write_annotated
-    from verify.review.cells import open_table
     from verify.review.journal import Journal
     from verify.review.mapping import map_columns
     from verify.review.run import Job, fingerprint
+    from verify.review.tables import open_table
 
     table = open_table(args.table)
     _refuse_same_file(args)

@@ -7,15 +7,16 @@ table.
 
 from __future__ import annotations
 
-from collections.abc import Callable
 from typing import Any
 
 import numpy as np
 
 from verify.comparison.atoms import Masses, atoms_that_matter, convolution_power, on_grid
+from verify.comparison.continuous import continuous_opinion
+from verify.comparison.formula import ends_of_support, log_density, rejects_large_v
 from verify.comparison.question import Answer, Question
 from verify.comparison.table_search import Table, inside_ends, one_sided_end, outside_ends
-from verify.comparison.walker import log_values, values
+from verify.comparison.walker import values
 from verify.errors import NotAttempted
 
 Array = Any
@@ -35,21 +36,7 @@ def brute_force_opinion(ask: Question) -> Answer:
     with np.errstate(all="ignore"):
         if ask.density.parsed_support.kind == "integers":
             return _lattice(ask)
-        from verify.comparison.continuous import continuous_opinion
-
         return continuous_opinion(ask)
-
-
-def rejects_large_v(ask: Question, log_density: Callable[[Array, float], Array], x: Array) -> bool:
-    """Whether a one-sided test rejects large V: whether the likelihood ratio rises with T."""
-    t, step = ask.limits[0], 1e-4 * max(abs(ask.limits[0]), 1e-8)
-    ratio = log_density(x, t + step) - log_density(x, t - step)
-    places = values(ask.statistic, {ask.density.x.name: x}) + 0 * x
-    good = np.isfinite(ratio)
-    if not np.any(good):
-        raise ArithmeticError("the likelihood ratio near the limit is nowhere finite")
-    slope = np.polyfit(places[good] - np.mean(places[good]), ratio[good] - np.mean(ratio[good]), 1)[0]
-    return bool((slope > 0) == ask.null_below)
 
 
 # -- lattice -----------------------------------------------------------------------------------------------
@@ -76,21 +63,6 @@ def _lattice(ask: Question) -> Answer:
 def _depth(ask: Question) -> float:
     """How far below its peak, in natural logarithms, a mass still matters."""
     return 60.0 - float(np.log(min(ask.levels)))
-
-
-def log_density(ask: Question, x: Array, t: float) -> Array:
-    """Log f(x; t) of the formula, as an array; of a table's kernel h(x) t**x without its h."""
-    if ask.density.table is not None:
-        return np.asarray(x, dtype=float) * np.log(t)
-    names = {ask.density.x.name: np.asarray(x, dtype=float), ask.density.t.name: t}
-    return np.asarray(log_values(ask.density.expr, names), dtype=float) + np.zeros_like(names[ask.density.x.name])
-
-
-def ends_of_support(ask: Question, t: float) -> tuple[float, float]:
-    """Ends of the support as doubles."""
-    support = ask.density.parsed_support
-    names = {ask.density.t.name: t}
-    return float(values(support.lower, names)), float(values(support.upper, names))
 
 
 def _observations(ask: Question, t: float) -> tuple[Array, Array]:

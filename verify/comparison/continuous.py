@@ -7,7 +7,7 @@ from typing import Any
 
 import numpy as np
 
-from verify.comparison.brute_force import ends_of_support, log_density, rejects_large_v
+from verify.comparison.formula import ends_of_support, log_density, rejects_large_v
 from verify.comparison.inversion import EULER_DIGITS, SumOfObservations, Transform
 from verify.comparison.quadrature import Nodes, OneObservation, change_of_variable, nodes, run_of_interest
 from verify.comparison.question import Answer, Question

@@ -87,39 +87,6 @@ class Table(Protocol):
         """Write a copy with columns added: for each row number its further cells, in order."""
 
 
-def open_table(path: str | Path) -> Table:
-    """Return the table in a file, by its ending: .csv, .tsv, .xlsx or .json.
-
-    Raises
-    ------
-    InputError
-        For another ending, or a file that is not there.
-    """
-    from verify.review.json_table import JsonTable
-    from verify.review.text_table import TextTable
-    from verify.review.xlsx_table import XlsxTable
-
-    place = Path(path)
-    kinds: dict[str, type] = {
-        ".csv": TextTable,
-        ".tsv": TextTable,
-        ".txt": TextTable,
-        ".xlsx": XlsxTable,
-        ".json": JsonTable,
-    }
-    kind = kinds.get(place.suffix.lower())
-    if kind is None:
-        raise InputError(
-            f"a table of kind {place.suffix or 'none'} cannot be read",
-            "give .csv, .tsv, .xlsx or .json",
-            file=str(path),
-        )
-    if not place.is_file():
-        raise InputError("the table cannot be read: no such file", "give the path of a table", file=str(path))
-    table: Table = kind(place)
-    return table
-
-
 def unique_header(header: Sequence[str], file: str) -> tuple[str, ...]:
     """Return the header, refused when it is empty or names a column twice."""
     names = tuple(name.strip() for name in header)
