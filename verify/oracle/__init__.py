@@ -1,7 +1,7 @@
 """The pytest plugin: case files as tests, proven solutions as a fixture, and a comparison whose failure explains.
 
-Installed with the package and switched off with ``-p no:sidecheck``. This module imports pytest and the standard
-library only; everything else is imported when it is first used.
+Installed with the package and switched off with ``-p no:sidecheck``. It imports pytest and the standard library
+only; everything else is imported when it is first used.
 
 Examples
 --------
@@ -22,12 +22,11 @@ from typing import TYPE_CHECKING, Any
 
 import pytest
 
+from verify.oracle.settings import DIGITS, SUFFIX, digits_of
+
 if TYPE_CHECKING:
     from verify.oracle.items import CaseFile
     from verify.solution.solve import Solution
-
-SUFFIX = ".case.toml"
-DIGITS = 30
 
 __all__ = ["assert_cutoffs", "sidecheck_solution"]
 
@@ -57,14 +56,6 @@ def pytest_collect_file(file_path: Path, parent: pytest.Collector) -> CaseFile |
 
     collected: CaseFile = CaseFile.from_parent(parent, path=file_path)
     return collected
-
-
-def digits_of(config: pytest.Config) -> int:
-    """Return the digits that the command line or the ini file asks for."""
-    given = str(config.getoption("sidecheck_digits") or config.getini("sidecheck_digits")).strip()
-    if not (given.isascii() and given.isdigit() and 15 <= int(given) <= 10_000):
-        raise pytest.UsageError(f"sidecheck_digits is {given[:20]!r}: write a whole number from 15 to 10000")
-    return int(given)
 
 
 @pytest.fixture(scope="session")

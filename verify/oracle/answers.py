@@ -11,7 +11,7 @@ from verify.answers.row import holds_everywhere
 from verify.derivation.derive import Derivation, derive
 from verify.derivation.ledger import Grade
 from verify.errors import InputError, UndecidedError
-from verify.oracle import DIGITS
+from verify.oracle.settings import DIGITS
 from verify.problem.casefile import Case, read_case
 from verify.problem.density import Density
 from verify.problem.numbers import Exact

@@ -9,7 +9,7 @@ from typing import TYPE_CHECKING, Any
 
 import pytest
 
-from verify.oracle import SUFFIX, digits_of
+from verify.oracle.settings import SUFFIX, digits_of
 
 if TYPE_CHECKING:
     from verify.casebook.outcome import Result
