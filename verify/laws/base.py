@@ -1,8 +1,11 @@
-"""What every law of the statistic offers (METHODS section 7).
+"""What every law of the statistic offers: all that the side conditions and the power of a test ask of it.
 
 A law is data plus formulas. Its formulas are written once and take the arithmetic ``A`` in which they are to
 be evaluated: balls, mpmath numbers or exact fractions (``verify.arithmetic``). ``A.real(x)`` brings an exact
 number into it.
+
+Source: E. L. Lehmann and J. P. Romano, *Testing Statistical Hypotheses* (3rd ed., 2005), sections 3.4, 3.7 and 4.2 (the
+side conditions).
 """
 
 from __future__ import annotations

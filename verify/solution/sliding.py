@@ -5,7 +5,8 @@ because the likelihood ratio is monotone: G'(s) = r(right end) - r(left end) >= 
 end finds the window in O(log) evaluations, on a finite or an infinite support. This is the slow, sure search;
 it works on midpoints, and the proof that follows looks at the fractions only.
 
-Source: Lehmann and Romano 2005, Theorem 3.7.1; derivation in section 4.2.
+Source: Lehmann and Romano 2005, section 3.4 (monotone likelihood ratio), Theorem 3.7.1 and section 4.2 (the side
+conditions).
 """
 
 from __future__ import annotations
