@@ -55,6 +55,27 @@ class InputError(SidecheckError):
         return line.replace("\n", " ")
 
 
+def mistake(error: Exception) -> str:
+    """Describe a mistake of this program on one line, with the place where it happened.
+
+    Examples
+    --------
+    >>> try:
+    ...     1 / 0
+    ... except ZeroDivisionError as error:
+    ...     line = mistake(error)
+    >>> line.partition(" at ")[0], line.partition(": ")[2]
+    ('internal error (ZeroDivisionError', 'division by zero), please report it with the input')
+    """
+    import os
+    import traceback
+
+    frames = traceback.extract_tb(error.__traceback__)
+    place = f"{os.path.basename(frames[-1].filename)}:{frames[-1].lineno}" if frames else "?"
+    text = " ".join(str(error).split())[:200]
+    return f"internal error ({type(error).__name__} at {place}: {text}), please report it with the input"
+
+
 def missing_extra(needs: str, extra: str, *, otherwise: str = "", key: str = "", file: str = "") -> InputError:
     """Return the complaint that an optional library is missing, with the extra that brings it.
 

@@ -2,9 +2,7 @@
 
 from __future__ import annotations
 
-import os
 import time
-import traceback
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass, replace
 from functools import partial
@@ -15,7 +13,7 @@ from verify.casebook.expectation import expected_verdicts, judge
 from verify.casebook.find import case_name
 from verify.casebook.found import DIGITS, UNUSABLE, Found, find
 from verify.casebook.outcome import Message, Outcome, Result
-from verify.errors import InputError
+from verify.errors import InputError, mistake
 from verify.parallel import run_all
 from verify.problem.casefile import CaseText, read_case_text
 
@@ -57,7 +55,7 @@ def run_case_file(path: str, how: How | None = None) -> Result:
     except InputError as error:
         result = replace(result, outcome=Outcome.UNUSABLE, found=UNUSABLE, messages=(Message(error.key, str(error)),))
     except Exception as error:  # a mistake of this program on one case: shown as such, never green
-        result = replace(result, found=Outcome.INTERNAL.value, messages=(Message("", _mistake(error)),))
+        result = replace(result, found=Outcome.INTERNAL.value, messages=(Message("", mistake(error)),))
     messages = tuple(replace(message, line=_line_for(path, message.key)) for message in result.messages)
     return replace(result, messages=messages, seconds=time.perf_counter() - start)
 
@@ -94,12 +92,6 @@ def _shown(found: Found, digits: int) -> dict[str, Any]:
 def _require_source(text: CaseText) -> None:
     if Path(text.path).parent.name == PUBLISHED and not text.tables.get("source", "").strip():
         raise InputError("a published case names no source", 'add source = "author, title, place in it"', key="source")
-
-
-def _mistake(error: Exception) -> str:
-    frames = traceback.extract_tb(error.__traceback__)
-    place = f"{os.path.basename(frames[-1].filename)}:{frames[-1].lineno}" if frames else "?"
-    return f"internal error ({type(error).__name__} at {place}: {' '.join(str(error).split())[:200]}), please report it"
 
 
 def _line_for(path: str, key: str) -> int | None:

@@ -5,7 +5,6 @@ from __future__ import annotations
 import argparse
 import os
 import sys
-import traceback
 from collections.abc import Sequence
 from contextlib import redirect_stdout
 from importlib import import_module
@@ -16,7 +15,7 @@ import verify
 from verify.cli import status
 from verify.cli.output import Outlet, StandardOutputError, complain
 from verify.cli.registry import COMMANDS
-from verify.errors import InputError, UndecidedError
+from verify.errors import InputError, UndecidedError, mistake
 
 EPILOG = """\
 example:
@@ -114,17 +113,9 @@ def _outcome(words: list[str]) -> int:
     except (BrokenPipeError, StandardOutputError):
         raise
     except Exception as error:
-        return complain(_internal(error), status.INTERNAL, as_json)
+        return complain(mistake(error), status.INTERNAL, as_json)
 
 
 def _discard_stdout() -> None:
     """Send the rest of standard output nowhere, so that nothing is left to fail at exit."""
     os.dup2(os.open(os.devnull, os.O_WRONLY), sys.stdout.fileno())
-
-
-def _internal(error: Exception) -> str:
-    """Describe a mistake of this program on one line, with the place where it happened."""
-    frames = traceback.extract_tb(error.__traceback__)
-    place = f"{os.path.basename(frames[-1].filename)}:{frames[-1].lineno}" if frames else "?"
-    text = " ".join(str(error).split())[:200]
-    return f"internal error ({type(error).__name__} at {place}: {text}), please report it with the input"
