@@ -46,20 +46,11 @@ def write_certificate(name: str, data: bytes, directory: Path, *, force: bool = 
     return Paths(directory / f"{name}.cert.json", directory / f"{name}.cert.txt", directory / SUMS)
 
 
-def write_bundle(certificates: Mapping[str, bytes], directory: Path, *, force: bool = False) -> Path:
-    """Write many certificates and ``index.json``: name, subject, one line about the test, and SHA-256 of each.
+def bundle_index(certificates: Mapping[str, bytes]) -> bytes:
+    """Return ``index.json`` of a bundle: name, subject, one line about the test, and SHA-256 of each certificate.
 
     The index is for finding one's way; each certificate is rechecked alone.
     """
-    files = {"index.json": bundle_index(certificates)}
-    for name, data in certificates.items():
-        files |= {f"{name}.cert.json": data, f"{name}.cert.txt": data}
-    write_files(files, directory, force=force)
-    return directory / "index.json"
-
-
-def bundle_index(certificates: Mapping[str, bytes]) -> bytes:
-    """Return ``index.json`` of a bundle."""
     entries = [_index_entry(name, data) for name, data in sorted(certificates.items())]
     return json.dumps({"certificates": entries}, sort_keys=True, separators=(",", ":"), ensure_ascii=False).encode()
 

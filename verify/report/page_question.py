@@ -8,10 +8,8 @@ from verify.problem.hypothesis import Form
 from verify.problem.optimality import optimality
 from verify.report.formula_tree import read_formula
 from verify.report.math_boxes import Atom, Box, Fence, Row, Script, boxes, relation, row, symbol
-from verify.report.math_text import plain
 from verify.report.page_blocks import (
     Block,
-    Break,
     Code,
     Equation,
     Math,
@@ -228,11 +226,3 @@ def _weights(density: dict[str, Any]) -> list[Block]:
             "small",
         ),
     ]
-
-
-def headline(predicate: dict[str, Any]) -> str:
-    """Return the null in plain signs, for a list of certificates."""
-    runs = prose(predicate["problem"]["null"], names_of(predicate))
-    return "".join(
-        plain(run.box) if isinstance(run, Math) else run.text for run in runs if not isinstance(run, Break | Code)
-    )

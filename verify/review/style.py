@@ -14,7 +14,7 @@ from typing import Literal
 from verify.arithmetic.enclosure import Enclosure
 from verify.errors import InputError
 from verify.problem.numbers import exact
-from verify.review.numbers import Numbers, affine, complement, plus
+from verify.review.numbers import Numbers, affine
 
 Report = dict[str, Enclosure]
 """The numbers that are printed, by name: c1, c2, gamma1, gamma2, or c, gamma."""
@@ -106,6 +106,3 @@ class Style:
         fractions = {"gamma1": shown.gamma1, "gamma2": shown.gamma2} if shown.two_sided else {"gamma": shown.gamma1}
         cut = {name: affine(c, a / divisor, b / divisor) for name, c in places.items() if c is not None}
         return cut | {name: gamma for name, gamma in fractions.items() if gamma is not None}
-
-
-__all__ = ["Report", "Style", "complement", "plus"]
