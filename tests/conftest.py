@@ -21,7 +21,6 @@ for folder in ("tests", "tests/derivation", "tests/solution"):
 @pytest.fixture
 def cluster(tmp_path_factory: pytest.TempPathFactory) -> "Iterator[Cluster]":
     """A real Dask scheduler on this machine, on which a test starts workers and kills them."""
-    pytest.importorskip("distributed")
     from dask_cluster import Cluster
 
     made = Cluster(tmp_path_factory.mktemp("cluster"))

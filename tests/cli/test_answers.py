@@ -9,6 +9,7 @@ from fractions import Fraction
 from pathlib import Path
 
 import pytest
+from pyarrow import parquet
 
 from verify.cli.main import main
 
@@ -63,7 +64,6 @@ def test_the_rows_are_the_proved_cutoffs(grid, tmp_path, capsys):
 
 
 def test_parquet_holds_the_same_table(grid, tmp_path):
-    parquet = pytest.importorskip("pyarrow.parquet")
     assert main(["answers", grid(**GAP), "-o", str(tmp_path / "a.csv")]) == 0
     assert main(["answers", grid(**GAP), "-o", str(tmp_path / "a.parquet")]) == 0
     table = parquet.read_table(tmp_path / "a.parquet")

@@ -3,6 +3,7 @@
 from fractions import Fraction
 from itertools import pairwise
 
+import cypari
 import mpmath
 import pytest
 from hypothesis import given
@@ -125,7 +126,6 @@ PARI_CDF = {
 @pytest.mark.parametrize(("law", "v"), PARI_LAWS, ids=lambda x: str(x))
 def test_pari_agrees(law, v):
     """PARI (through cypari) evaluates the same probabilities by its own incomplete gamma and error functions."""
-    cypari = pytest.importorskip("cypari")
     pari = cypari.pari
     pari.allocatemem(64 * 10**6)
     pari.set_real_precision(40)

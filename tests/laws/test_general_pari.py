@@ -2,6 +2,7 @@
 
 from fractions import Fraction
 
+import cypari
 import pytest
 
 from verify.arithmetic.ball import balls, to_enclosure
@@ -15,7 +16,6 @@ CLOSE = Fraction(1, 10**30)
 @pytest.fixture(scope="module")
 def pari():  # type: ignore[no-untyped-def]
     """PARI at 50 digits."""
-    cypari = pytest.importorskip("cypari")
     cypari.pari.allocatemem(128 * 10**6)
     cypari.pari.set_real_precision(50)
     return cypari.pari

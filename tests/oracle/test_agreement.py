@@ -8,6 +8,8 @@ from fractions import Fraction
 from functools import cache
 from pathlib import Path
 
+import mpmath
+import numpy
 import pytest
 
 import verify
@@ -59,7 +61,6 @@ def test_numbers_that_agree(mine: object) -> None:
 
 
 def test_numbers_of_numpy() -> None:
-    numpy = pytest.importorskip("numpy")
     assert_cutoffs(numpy.array([94, 103, 0.0867146646010, 0.514744492090]), window())
     assert_cutoffs({**RIGHT, "c1": numpy.int64(94)}, window())
 
@@ -147,7 +148,6 @@ def test_answers_are_kept_by_what_is_asked() -> None:
 
 
 def test_numbers_are_taken_without_rounding() -> None:
-    numpy, mpmath = pytest.importorskip("numpy"), pytest.importorskip("mpmath")
     third = Fraction(1, 3)
     with mpmath.workdps(40):
         assert abs(number(-mpmath.mpf(1) / 3, "c1") + third) < Fraction(1, 10**39)

@@ -65,13 +65,20 @@ def test_a_case_is_read_exactly(tmp_path: Path) -> None:
 
 def test_standard_input_is_read(monkeypatch: pytest.MonkeyPatch) -> None:
     monkeypatch.setattr(sys, "stdin", io.TextIOWrapper(io.BytesIO(GOOD.encode())))
-    assert read_case("-").name == "stdin"
+    case = read_case("-")
+    assert (case.name, case.problem) == ("stdin", read_case("-", GOOD).problem)
+    assert case.problem is not None
 
 
 def test_a_byte_order_mark_and_carriage_returns_do_no_harm(tmp_path: Path) -> None:
     path = tmp_path / "lot.case.toml"
     path.write_bytes(b"\xef\xbb\xbf" + GOOD.replace("\n", "\r\n").encode())
-    assert read_case(path).problem is not None
+    plain = tmp_path / "plain.case.toml"
+    plain.write_text(GOOD, encoding="utf-8")
+    case = read_case(path)
+    assert case.problem == read_case(plain).problem is not None
+    assert case.claim == read_case(plain).claim
+    assert case.sha256 == hashlib.sha256(path.read_bytes()).hexdigest()
 
 
 def test_a_case_without_a_problem_is_for_derivation() -> None:

@@ -92,7 +92,7 @@ def test_each_mistake_in_a_null_has_its_message(text: str, message: str) -> None
     ],
 )
 def test_the_complement_is_accepted(null: str, alternative: str) -> None:
-    assert problem(null=null, alternative=alternative).hypothesis
+    assert problem(null=null, alternative=alternative).hypothesis == problem(null=null).hypothesis
 
 
 @pytest.mark.parametrize(
