@@ -10,6 +10,8 @@ import base64
 import binascii
 import hashlib
 import json
+from collections.abc import Callable
+from dataclasses import dataclass
 from typing import TYPE_CHECKING, Any
 
 from verify.errors import InputError, missing_extra
@@ -32,47 +34,87 @@ def pre_authentication_encoding(data: bytes) -> bytes:
     return b"DSSEv1 %d %b %d %b" % (len(kind), kind, len(data), data)
 
 
-def sign(data: bytes, private_key_pem: bytes, password: bytes | None = None) -> bytes:
-    """Return the envelope for a certificate's bytes, signed with an Ed25519 key in PEM form."""
+@dataclass(frozen=True)
+class Signer:
+    """A private key, read and ready.
+
+    Attributes
+    ----------
+    key : Ed25519PrivateKey
+        The key.
+    """
+
+    key: Ed25519PrivateKey
+
+    @property
+    def key_id(self) -> str:
+        """The SHA-256 of the raw public key."""
+        return key_id(self.key.public_key())
+
+    def sign(self, data: bytes) -> bytes:
+        """Return the envelope for a certificate's bytes."""
+        signature = self.key.sign(pre_authentication_encoding(data))
+        envelope = {
+            "payloadType": PAYLOAD_TYPE,
+            "payload": base64.b64encode(data).decode(),
+            "signatures": [{"keyid": self.key_id, "sig": base64.b64encode(signature).decode()}],
+        }
+        return json.dumps(envelope, sort_keys=True, separators=(",", ":")).encode()
+
+
+def read_signer(private_key_pem: bytes, ask: Callable[[], bytes]) -> Signer:
+    """Read an Ed25519 private key in PEM form; ``ask`` gives the password of one that is protected.
+
+    Raises
+    ------
+    InputError
+        When the key cannot be read, is of another kind, or the password does not open it; or without cryptography.
+    """
     serialization, ed25519 = _library()
+    password: bytes | None = None
+    if any(word in private_key_pem for word in (b"ENCRYPTED PRIVATE KEY", b"Proc-Type: 4,ENCRYPTED")):
+        password = ask()
     try:
-        key: Ed25519PrivateKey = serialization.load_pem_private_key(private_key_pem, password)
-    except (ValueError, TypeError) as error:
-        raise InputError(
-            f"the private key cannot be read: {error}", "give an Ed25519 key in PEM form", key="key"
-        ) from None
+        key: Any = serialization.load_pem_private_key(private_key_pem, password)
+    except (ValueError, TypeError, _unsupported()):
+        wrong = "the private key cannot be read" + ("" if password is None else ", or the password does not open it")
+        raise InputError(wrong, "give an Ed25519 key in PEM form", key="key") from None
     if not isinstance(key, ed25519.Ed25519PrivateKey):
         raise InputError(
             "the private key is not Ed25519", "make one with: openssl genpkey -algorithm ed25519", key="key"
         )
-    signature = key.sign(pre_authentication_encoding(data))
-    envelope = {
-        "payloadType": PAYLOAD_TYPE,
-        "payload": base64.b64encode(data).decode(),
-        "signatures": [{"keyid": key_id(key.public_key()), "sig": base64.b64encode(signature).decode()}],
-    }
-    return json.dumps(envelope, sort_keys=True, separators=(",", ":")).encode()
+    return Signer(key)
 
 
-def verify_signature(envelope: bytes, data: bytes, public_key_pem: bytes) -> bool:
+def read_public_key(public_key_pem: bytes) -> Ed25519PublicKey:
+    """Read an Ed25519 public key in PEM form.
+
+    Raises
+    ------
+    InputError
+        When it cannot be read or is of another kind; or without cryptography.
+    """
+    serialization, ed25519 = _library()
+    try:
+        key: Any = serialization.load_pem_public_key(public_key_pem)
+    except (ValueError, _unsupported()):
+        raise InputError("the public key cannot be read", "give an Ed25519 key in PEM form", key="key") from None
+    if not isinstance(key, ed25519.Ed25519PublicKey):
+        raise InputError("the public key is not Ed25519", "give the key of the signer", key="key")
+    found: Ed25519PublicKey = key
+    return found
+
+
+def verify_signature(envelope: bytes, data: bytes, key: Ed25519PublicKey) -> bool:
     """Whether an envelope holds exactly these bytes and a valid signature of this key.
 
     Raises
     ------
     InputError
-        When the envelope or the key cannot be read.
+        When the envelope cannot be read.
     """
-    serialization, ed25519 = _library()
     from cryptography.exceptions import InvalidSignature
 
-    try:
-        key: Ed25519PublicKey = serialization.load_pem_public_key(public_key_pem)
-    except ValueError as error:
-        raise InputError(
-            f"the public key cannot be read: {error}", "give an Ed25519 key in PEM form", key="key"
-        ) from None
-    if not isinstance(key, ed25519.Ed25519PublicKey):
-        raise InputError("the public key is not Ed25519", "give the key of the signer", key="key")
     payload, signatures = _open(envelope)
     if payload != data:
         return False
@@ -99,10 +141,15 @@ def _open(envelope: bytes) -> tuple[bytes, list[bytes]]:
             raise ValueError("another payload type")
         payload = base64.b64decode(content["payload"], validate=True)
         return payload, [base64.b64decode(entry["sig"], validate=True) for entry in content["signatures"]]
-    except (ValueError, KeyError, TypeError, binascii.Error) as error:
-        raise InputError(
-            f"the signature file cannot be read: {error}", "give NAME.cert.dsse.json", key="signature"
-        ) from None
+    except (ValueError, KeyError, TypeError, RecursionError, binascii.Error):
+        raise InputError("the signature file cannot be read", "give NAME.cert.dsse.json", key="signature") from None
+
+
+def _unsupported() -> type[Exception]:
+    from cryptography.exceptions import UnsupportedAlgorithm
+
+    found: type[Exception] = UnsupportedAlgorithm
+    return found
 
 
 def _library() -> tuple[Any, Any]:

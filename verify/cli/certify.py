@@ -9,10 +9,12 @@ from typing import TYPE_CHECKING, Any
 from verify.cli import status
 from verify.cli.options import add_budget, add_cache, add_json, digits
 from verify.cli.output import note, show_json
+from verify.cli.signing import PASSWORD, SIGNATURE, read_signing_key
 from verify.errors import InputError, UndecidedError
 
 if TYPE_CHECKING:
     from verify.certificate.certify import Certificate
+    from verify.certificate.sign import Signer
     from verify.derivation.derive import Derivation
     from verify.problem.casefile import Case
 
@@ -41,6 +43,10 @@ def add(parser: argparse.ArgumentParser) -> None:
         "--issued", default="", metavar="DATE", help="date or words of issue (default: SOURCE_DATE_EPOCH, if set)"
     )
     parser.add_argument("--no-pdf", action="store_true", help="leave out the PDF")
+    parser.add_argument(
+        "--sign", metavar="KEY.pem",
+        help=f"sign with this Ed25519 key; its password, if it has one, is asked for or taken from {PASSWORD}",
+    )  # fmt: skip
     parser.add_argument("--force", action="store_true", help="overwrite files that differ")
     add_cache(parser)
     add_budget(parser)
@@ -50,8 +56,8 @@ def add(parser: argparse.ArgumentParser) -> None:
 def run(args: argparse.Namespace) -> int:
     """Certify every case, recheck what was made, and write all files together; several cases make a bundle.
 
-    Nothing is written unless every case has its certificate. A certificate that the checker leaves open (its limit of
-    work) makes the exit status 3.
+    Nothing is written unless every case has its certificate, and with a key its signature. A certificate that the
+    checker leaves open (its limit of work) makes the exit status 3.
     """
     from pathlib import Path
 
@@ -60,6 +66,7 @@ def run(args: argparse.Namespace) -> int:
     from verify.report.publish import certificate_files, overview_files, require_printers
 
     require_printers(pdf=not args.no_pdf)
+    signer = None if args.sign is None else read_signing_key(args.sign)
     made: dict[str, Certificate] = {}
     files: dict[str, bytes] = {}
     outcome = status.OK
@@ -73,12 +80,14 @@ def run(args: argparse.Namespace) -> int:
             files |= certificate_files(
                 case.name, certificate.data, paper=args.paper, pdf=not args.no_pdf, family=derivation.family
             )
+    if signer is not None:
+        files |= {f"{name}{SIGNATURE}": signer.sign(certificate.data) for name, certificate in made.items()}
     if len(made) > 1:
         data = {name: certificate.data for name, certificate in made.items()}
         files |= overview_files(data, paper=args.paper, pdf=not args.no_pdf)
         files["index.json"] = bundle_index(data)
     write_files(files, Path(args.out), force=args.force)
-    _show(args, made, sorted(files))
+    _show(args, made, sorted(files), signer)
     return outcome
 
 
@@ -135,13 +144,14 @@ def _certificate(case: Case, args: argparse.Namespace, cache: str | None) -> tup
     return certificate, derivation
 
 
-def _show(args: argparse.Namespace, made: dict[str, Certificate], files: list[str]) -> None:
+def _show(args: argparse.Namespace, made: dict[str, Certificate], files: list[str], signer: Signer | None) -> None:
+    signed = {} if signer is None else {"signed_by": signer.key_id}
     if args.json:
         listed = {
             name: {"file": f"{name}.cert.json", "sha256": certificate.sha256} for name, certificate in made.items()
         }
-        show_json({"directory": args.out, "certificates": listed, "files": [*files, "SHA256SUMS"]})
+        show_json({"directory": args.out, "certificates": listed, "files": [*files, "SHA256SUMS"], **signed})
         return
     for name, certificate in made.items():
         print(f"{certificate.sha256}  {name}.cert.json")
-    print(f"{len(files) + 1} files in {args.out}")
+    print(f"{len(files) + 1} files in {args.out}" + "".join(f", signed by {key}" for key in signed.values()))

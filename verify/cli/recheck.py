@@ -5,10 +5,15 @@ from __future__ import annotations
 import argparse
 import os
 import sys
+from typing import TYPE_CHECKING
 
 from verify.cli.options import add_json
 from verify.cli.output import show_json
+from verify.cli.signing import check_signature, read_file, read_public
 from verify.errors import InputError
+
+if TYPE_CHECKING:
+    from cryptography.hazmat.primitives.asymmetric.ed25519 import Ed25519PublicKey
 
 EXAMPLE = "sidecheck recheck out/lot-release.cert.json --case casebook/demo/lot-release.case.toml"
 
@@ -34,6 +39,10 @@ def add(parser: argparse.ArgumentParser) -> None:
         help="certificates, NAME.cert.json, folders of them, or - for standard input",
     )  # fmt: skip
     parser.add_argument("--case", metavar="CASE", help="the case file that the certificate must be about")
+    parser.add_argument(
+        "--signed-by", metavar="PUBLIC.pem",
+        help="the Ed25519 key that must have signed each certificate, in NAME.cert.dsse.json beside it",
+    )  # fmt: skip
     add_json(parser)
 
 
@@ -42,7 +51,8 @@ def run(args: argparse.Namespace) -> int:
     paths = dict.fromkeys(path for place in args.certificates for path in _certificates(place))
     if args.case is not None and len(paths) > 1:
         raise InputError("one case, several certificates", "check each against its own case", key="--case")
-    found = {path: _checked(path, args.case) for path in paths}
+    key = None if args.signed_by is None else read_public(args.signed_by, paths)
+    found = {path: _checked(path, args.case, key) for path in paths}
     status = min((status for status, _ in found.values()), key=WORST.index)
     shown = {path: {"verdict": VERDICTS[code], "status": code, "lines": lines} for path, (code, lines) in found.items()}
     if args.json:
@@ -67,28 +77,22 @@ def _certificates(place: str) -> list[str]:
     return [os.path.join(place, name) for name in names]
 
 
-def _checked(path: str, case: str | None) -> tuple[int, list[str]]:
-    """Return the status and the lines of the checker."""
+def _checked(path: str, case: str | None, key: Ed25519PublicKey | None) -> tuple[int, list[str]]:
+    """Return the status and the lines of the checker; a certificate that is not signed as it must be is not checked."""
     from verify.certificate.recheck import FILE_LIMIT, verdict
 
-    data = _read(path, FILE_LIMIT + 1)
+    data = sys.stdin.buffer.read(FILE_LIMIT + 1) if path == "-" else read_file(path, FILE_LIMIT + 1)
     if case is not None:
-        _read(case, 1)
+        read_file(case, 1)
+    signed: list[str] = []
+    if key is not None:
+        status, signed = check_signature(path, data, key)
+        if status:
+            return status, signed
     before = sys.get_int_max_str_digits()
     sys.set_int_max_str_digits(0)  # the checker bounds its own work
     try:
         status, lines = verdict(data, case)
     finally:
         sys.set_int_max_str_digits(before)
-    return int(status), list(lines)
-
-
-def _read(path: str, limit: int) -> bytes:
-    if path == "-":
-        return sys.stdin.buffer.read(limit)
-    try:
-        with open(path, "rb") as file:
-            return file.read(limit)
-    except (OSError, ValueError) as error:
-        reason = getattr(error, "strerror", None) or "not a path"
-        raise InputError(f"the file cannot be read: {reason}", "give the path of a file", file=path) from None
+    return int(status), [*lines, *signed]
