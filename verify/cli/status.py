@@ -1,10 +1,11 @@
 """Exit statuses: what a shell, a make file or a CI job reads.
 
 ==== =====================================================================
-0    all agrees or is proved
+0    all agrees, or is proved, enclosed or checked numerically
 1    something differs or is refuted
 2    the input cannot be used, or standard output cannot be written (one line on stderr)
 3    undecided within the budget
+4    ``recheck`` only: accepted, but the numbers are taken on trust (laws without a closed form)
 70   an internal error: a mistake in this program (one line on stderr)
 130  interrupted from the keyboard
 141  the reader of our output went away (a broken pipe)
