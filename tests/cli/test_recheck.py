@@ -6,6 +6,8 @@ import subprocess
 import sys
 from pathlib import Path
 
+from verify.cli.recheck import VERDICTS
+
 
 def test_what_is_no_certificate_is_malformed(sidecheck_here, tmp_path) -> None:
     path = tmp_path / "x.cert.json"
@@ -60,3 +62,24 @@ def test_nothing_heavy_is_loaded() -> None:
     )
     done = subprocess.run([sys.executable, "-c", code], capture_output=True, text=True, check=True)
     assert done.stdout.splitlines()[-1] == "[]"
+
+
+def test_every_status_of_the_checker_stands_in_the_help(sidecheck) -> None:
+    text = sidecheck("recheck", "--help").stdout.partition("exit status")[2]
+    for code, meaning in VERDICTS.items():
+        assert f"  {code} {meaning}" in text
+    assert "4 of recheck alone" in sidecheck("--help").stdout
+
+
+def test_numbers_on_trust_are_status_4(sidecheck, tmp_path) -> None:
+    """An exponential density cut off at 1: its sums have no law of the list."""
+    case = tmp_path / "tilt.case.toml"
+    case.write_text(
+        '[density]\nformula = "t*exp(t*x)/(exp(t) - 1)"\nvariable = "x"\nsupport = "reals in (0, 1)"\n'
+        'parameter = "t"\nspace = "t > 0"\n'
+        '[problem]\nnull = "t <= 1"\nalpha = "0.05"\nn = 1\n'
+    )
+    done = sidecheck("certify", str(case), "-o", str(tmp_path), "--no-pdf", "--digits", "15")
+    assert done.returncode == 0, done.stderr
+    done = sidecheck("recheck", str(tmp_path / "tilt.cert.json"))
+    assert (done.returncode, done.stdout.partition(" under")[0]) == (4, "ACCEPTED, WITH THE NUMBERS TAKEN ON TRUST,")

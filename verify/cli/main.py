@@ -24,6 +24,7 @@ example:
 exit status:
   0 all agrees or is proved      1 something differs or is refuted
   2 the input cannot be used     3 undecided within the budget
+  4 of recheck alone: accepted, but the numbers are taken on trust
 
 'sidecheck COMMAND --help' shows the options of a command and an example."""
 

@@ -15,8 +15,6 @@ from verify.errors import InputError
 if TYPE_CHECKING:
     from cryptography.hazmat.primitives.asymmetric.ed25519 import Ed25519PublicKey
 
-EXAMPLE = "sidecheck recheck out/lot-release.cert.json --case casebook/demo/lot-release.case.toml"
-
 VERDICTS = {
     0: "accepted",
     1: "rejected",
@@ -26,6 +24,8 @@ VERDICTS = {
 }
 """What each exit status of the checker means."""
 
+EXAMPLE = "sidecheck recheck out/lot-release.cert.json --case casebook/demo/lot-release.case.toml"
+MEANINGS = "\n".join(f"  {code} {meaning}" for code, meaning in VERDICTS.items())
 
 ENDING = ".cert.json"
 WORST = (1, 2, 3, 4, 0)
@@ -33,7 +33,8 @@ WORST = (1, 2, 3, 4, 0)
 
 
 def add(parser: argparse.ArgumentParser) -> None:
-    """Add the arguments of the command."""
+    """Add the arguments of the command, and the exit statuses to its help."""
+    parser.epilog = f"{parser.epilog}\n\nexit status, of several certificates that of the worst:\n{MEANINGS}"
     parser.add_argument(
         "certificates", nargs="+", metavar="CERTIFICATE",
         help="certificates, NAME.cert.json, folders of them, or - for standard input",
