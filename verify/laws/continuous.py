@@ -19,7 +19,7 @@ from verify.laws.base import Law, Number
 from verify.laws.convolution import SumByConvolution
 from verify.laws.integrals import Integrals
 from verify.laws.inversion import SumByInversion
-from verify.laws.pushed import density_of_statistic, position
+from verify.laws.pushed import ACROSS, INSIDE, density_of_statistic, position
 from verify.laws.shape import SINGULAR, Piece, Shape
 from verify.laws.two_routes import SumByTwoRoutes
 
@@ -145,7 +145,7 @@ class OneObservation(Law):
                 place = position(B, piece, v)
                 if place == ("below" if upper else "above"):
                     total = total + integrals.whole(piece)
-                elif place == "inside":
+                elif place in (INSIDE, ACROSS):  # the part is a continuous function of v, also over an end
                     x = evaluate(piece.inverse, B, {"v": B.real(v)})
                     total = total + integrals.part(piece, x, to_high=piece.rising == upper)
         return A.real(total) + 0
@@ -153,6 +153,6 @@ class OneObservation(Law):
 
 def _ends_touched(piece: Piece, place: str, *, upper: bool) -> tuple[bool, ...]:
     """Which ends (False: low, True: high) the integral over one side would have to touch."""
-    if place != "inside":
+    if place not in (INSIDE, ACROSS):
         return (False, True) if place == ("below" if upper else "above") else ()
     return (piece.rising == upper,)

@@ -21,25 +21,35 @@ MOST_CELLS = 12
 """Most cells into which the support is cut for its breaks to lie at ends of cells."""
 
 
+INSIDE, ACROSS = "inside", "across"
+"""Certainly strictly between the values at the ends of a piece; or this is open, since a ball reaches over an end."""
+
+
 def position(A: Any, piece: Piece, v: Any) -> str:
-    """Whether v lies certainly below or above the values of a piece, else "inside"."""
+    """Whether v lies certainly below or above the values of a piece, certainly inside, or perhaps across an end."""
     low, high = (piece.at_low, piece.at_high) if piece.rising else (piece.at_high, piece.at_low)
     v = A.real(v)
     if low is not None and v <= A.real(low):
         return "below"
     if high is not None and v >= A.real(high):
         return "above"
-    return "inside"
+    certain = (low is None or v > A.real(low)) and (high is None or v < A.real(high))
+    return INSIDE if certain else ACROSS
 
 
 def density_of_statistic(one: Shape, at: Exact, A: Any, v: Any) -> Number:
-    """Density of T(X): f / abs(T') summed over the points where T = v."""
+    """Density of T(X): f / abs(T') summed over the points where T = v.
+
+    A ball that reaches over an end of a piece has values there to which the piece adds nothing.
+    """
     total = A.real(0)
     for piece in one.pieces:
-        if position(A, piece, v) == "inside":
+        place = position(A, piece, v)
+        if place in (INSIDE, ACROSS):
             x = evaluate(piece.inverse, A, {"v": A.real(v)})
             slope = evaluate(one.slope, A, {one.variable: x})
-            total = total + one.density(A, at, x) / abs(slope)
+            term = one.density(A, at, x) / abs(slope)
+            total = total + (term if place == INSIDE else term.union(A.real(0)))
     return total
 
 

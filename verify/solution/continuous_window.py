@@ -28,6 +28,16 @@ from verify.solution.precision import accuracy_for
 from verify.solution.window import SEARCH_BITS, Window
 
 MOST_ROUNDS = 30
+"""Rounds, before every further one must gain something."""
+
+MOST_BITS = 4
+"""Times the bits that the search and the digits ask for, at which a proof is given up."""
+
+LEAST_GAIN = 8
+"""Bits that a round gains, unless a density jumps at an end."""
+
+TRIAL_WIDTHS = (2, 4, 8, 16)
+"""Half widths of the first box, in first-order steps to the ends: an end at a jump may lie further than that step."""
 
 
 def solve_continuous_window(search: ContinuousSearch, digits: int) -> Window:
@@ -48,19 +58,24 @@ def solve_continuous_window(search: ContinuousSearch, digits: int) -> Window:
     centre, wanted = search.ends(), accuracy_for(digits)
     bits = max(search.prec, min(2 * search.prec, wanted + search.prec - SEARCH_BITS[False] + 16))
     box: Ends | None = None
-    for _ in range(MOST_ROUNDS):
+    reached = 0
+    for tried in range(MOST_ROUNDS + wanted):
         with balls(bits) as A:
             here = Expansion.around(search.conditions, A, centre)
-            stretch = here.trial() if box is None else here.stretch(box)
+            width = TRIAL_WIDTHS[tried % len(TRIAL_WIDTHS)]
+            stretch = here.trial(width) if box is None else here.stretch(box)
             slopes = here.slopes(stretch)
             box = here.sharpen(stretch, slopes, box)
-            reached = _reached(box) if box is not None else 0
+            before, reached = reached, _reached(box) if box is not None else 0
             if box is not None:
                 if reached >= wanted:
                     sides = here.left_hand_sides(box, slopes)
                     return Window(to_enclosure(box[0]), to_enclosure(box[1]), None, None, sides, bits)
                 centre = midpoint(box[0]), midpoint(box[1])
-        bits = _next_bits(bits, reached, wanted)
+        if not 0 < before < reached < before + LEAST_GAIN:  # it shrinks, but slowly: no want of precision
+            bits = _next_bits(bits, reached, wanted)
+        if bits > MOST_BITS * (wanted + search.prec) or (tried >= MOST_ROUNDS and reached <= before):
+            break
     raise UndecidedError("no box around the cutoffs could be proved to contain them")
 
 
@@ -101,12 +116,12 @@ class Expansion:
         wanted = (-lack[0], -lack[1]) if conditions.outside else lack
         return cls(conditions, A, centre, whole, wanted, conditions.unit(A, centre[0]), conditions.unit(A, centre[1]))
 
-    def trial(self) -> Ends:
-        """Box around the centre, twice as wide as the first-order step to the ends."""
+    def trial(self, width: int) -> Ends:
+        """Box around the centre, so many times as wide as the first-order step to the ends."""
         step = solve_two_by_two(self.left, self.right, self.wanted)
         grain = self.A.power(self.A.real(2), 8 - self.A.prec)
-        first, second = (around(c, 2 * abs(e).upper() + abs(c) * grain) for c, e in zip(self.centre, step, strict=True))
-        return first, second
+        reach = [width * abs(e).upper() + abs(c) * grain for c, e in zip(self.centre, step, strict=True)]
+        return around(self.centre[0], reach[0]), around(self.centre[1], reach[1])
 
     def stretch(self, box: Ends) -> Ends:
         """All places between the centre and a box."""

@@ -20,6 +20,7 @@ from verify.errors import NotRational, UndecidedError
 from verify.laws import Law
 from verify.solution.conditions import MOST_EXACT_ATOMS
 from verify.solution.coordinate import Coordinate
+from verify.solution.crossing import crossing
 from verify.solution.lattice_step import as_float, cells
 from verify.solution.precision import bits_for, may_be_decimal
 from verify.solution.start import Rough, upper_point
@@ -28,6 +29,10 @@ MOST_ROUNDS = 200
 BISECTIONS = 60
 MOST_STEPS = 40
 """Steps of Newton's method on a lattice before bracket and bisection."""
+NEWTON_ROUNDS = 5
+"""Rounds of interval Newton before the sure way takes over."""
+LEAST_GAIN = 8
+"""Bits that a round of interval Newton gains, where it works as it should."""
 NEWTON_EVERY = 6
 """Bisections between two attempts of Newton's method, which an expensive law needs soon."""
 
@@ -199,7 +204,7 @@ class TailProblem:
             points = range(c + 1, high + 1) if self.above and inside else range(low, c + self.above)
             [total] = summed(((self.law.density(A, k),) for k in points), 1)
             mass = quotient(self.law.density(A, c))
-        except (NotRational, TypeError):
+        except NotRational:
             return None
         gamma = (quotient(level) - (total if inside else 1 - total)) / mass
         if gamma == 0:
@@ -207,21 +212,47 @@ class TailProblem:
         return Tail(c, enclosure_of(gamma, bits), Enclosure.of(level), 0) if 0 < gamma <= 1 else None
 
     def _continuous(self, digits: int) -> Tail:
-        """Bisect in the coordinate of the support, then interval Newton in one dimension."""
+        """Bisect in the coordinate of the support, then interval Newton in one dimension, else certain signs."""
         wanted = bits_for(digits)
         with balls(self.prec) as A:
             centre = self.continuous_cutoff(A)
-        bits, box = max(self.prec, min(2 * self.prec, wanted + self.prec - 64)), None
-        for _ in range(40):
+        bits, box, previous = max(self.prec, min(2 * self.prec, wanted + self.prec - 64)), None, 0
+        for _ in range(NEWTON_ROUNDS):
             with balls(bits) as A:
                 box = self._sharpen(A, centre, box)
                 reached = self._reached(box, wanted) if box is not None else 0
                 if box is not None:
                     if reached >= wanted:
-                        return Tail(to_enclosure(box), None, to_enclosure(self.beyond(A, box)), bits)
-                    centre = midpoint(box)
+                        return self._around(A, box)
+                    if previous > 0 and reached < previous + LEAST_GAIN:
+                        break
+                    centre, previous = midpoint(box), reached
             bits = min(2 * bits, wanted + (bits - reached) + 32) if reached > 0 else bits + bits // 4 + 64
-        raise UndecidedError("no interval around the cutoff could be proved to contain it")
+        with balls(wanted + 2 * self.prec) as A:
+            return self._around(A, self._crossed(A, centre, wanted))
+
+    def _around(self, A: Any, box: Any) -> Tail:
+        return Tail(to_enclosure(box), None, to_enclosure(self.beyond(A, box)), A.prec)
+
+    def _crossed(self, A: Any, centre: Any, wanted: int) -> Any:
+        """Enclose the cutoff by certain signs of what lies beyond, less the level.
+
+        Raises
+        ------
+        UndecidedError
+            When the signs stay open.
+        """
+        level = A.real(self.level)
+
+        def side(c: Any) -> int:
+            lack = level - self.beyond(A, c)
+            return 0 if not (lack < 0 or lack > 0) else self.outward if lack < 0 else -self.outward
+
+        width = max(abs(centre), A.real(Fraction(self.rough.spread))) * A.power(A.real(2), -wanted - 2)
+        found = crossing(side, centre, width, lambda box: self._reached(box, wanted) >= wanted, 4 * A.prec)
+        if found is None:
+            raise UndecidedError("no interval around the cutoff could be proved to contain it")
+        return found
 
     def _reached(self, box: Any, wanted: int) -> int:
         """Bits to which the cutoff is known: of its own size, or, where it may be 0, far below the law's spread."""

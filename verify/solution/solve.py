@@ -330,7 +330,7 @@ def with_window(
     derivation = with_sum_step(derivation, laws, window.prec)
     critical = CriticalFunction("outside" if outside else "inside", window.c1, window.c2, window.phi1, window.phi2)
     return Solution(
-        problem, derivation, digits, critical, laws, _two_conditions(problem, window),
+        problem, derivation, digits, critical, laws, _held(_two_conditions(problem, window), window.prec),
         (*derivation.steps, _numbers_step(problem, laws, window.prec)), window.prec,
     )  # fmt: skip
 
@@ -348,6 +348,23 @@ def _two_conditions(problem: Problem, window: Window) -> tuple[SideCondition, ..
     )
 
 
+def _held(conditions: tuple[SideCondition, ...], prec: int) -> tuple[SideCondition, ...]:
+    """Return the side conditions, none of which may exclude its target: what is handed out is looked at once more.
+
+    Raises
+    ------
+    UndecidedError
+        When one does.
+    """
+    with balls(prec + 64) as A:
+        for condition in conditions:
+            target, found = to_enclosure(A.real(condition.target)), condition.expectation
+            if target.upper < found.lower or found.upper < target.lower:
+                wrong = f"E[{condition.of}] = {found.text(15)} at the cutoffs found, which misses {condition.target}"
+                raise UndecidedError(f"the proof contradicts itself: {wrong}")
+    return conditions
+
+
 def _solve_one_sided(problem: Problem, derivation: Derivation, laws: tuple[Law, ...], digits: int) -> Solution:
     rough, _, _ = rough_laws(laws)
     above = rejects_above(problem, derivation)
@@ -363,7 +380,7 @@ def with_tail(problem: Problem, derivation: Derivation, laws: tuple[Law, ...], d
     critical = CriticalFunction("above" if above else "below", tail.c, tail.c, tail.phi, tail.phi)
     condition = SideCondition(problem.hypothesis.limits[0], problem.levels[0], tail.condition, "phi")
     return Solution(
-        problem, derivation, digits, critical, laws, (condition,),
+        problem, derivation, digits, critical, laws, _held((condition,), tail.prec),
         (*derivation.steps, _numbers_step(problem, laws, tail.prec)), tail.prec,
     )  # fmt: skip
 
