@@ -66,9 +66,13 @@ CONTINUOUS = [
     (DELAY, "1000000 <= t <= 101000000", "1e-42", 5),
     (DELAY, "t <= 1/1000000 or t >= 11/1000000", "99999999/100000000", 10_000_000),
     (SPREAD, "t >= 1", "1e-186", 10_000_000),
+    (SPREAD, "10/3 <= t <= 101/30", "6e-160", 1),
+    (SPREAD, "t >= 1/10*sqrt(2)/2", "1e-196", 1),
+    (SPREAD, "100*sqrt(2)/2 <= t <= 110*sqrt(2)/2", "2e-196", 1),
+    (SPREAD, "t = 1/10", "5e-169", 1),
     (DELAY, "397/20 <= t <= 397/10", f"{10**26 - 1}/{10**26}", 4),
 ]
-"""Windows that accept almost nothing, and ends that are each far out under one law."""
+"""Windows that accept almost nothing, ends below the smallest double, and ends that are each far out under one law."""
 
 NEXT_TO_ONE = [
     (

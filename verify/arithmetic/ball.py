@@ -142,8 +142,10 @@ class Balls:
         terms = terms_needed(a, x, self.prec)
         if terms > FEW_TERMS:
             value = 1 - self.gamma_q(a, x)
+            if terms > MANY_TERMS or not value.is_finite():
+                return value
             usual = (self.prec + (magnitude(value) or 0)) // 2 - 32
-            if terms > MANY_TERMS or value.rel_accuracy_bits() > max(8, usual):
+            if value.rel_accuracy_bits() > max(8, usual):
                 return value
         return lower_gamma(a, x, self.prec)
 

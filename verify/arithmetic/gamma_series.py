@@ -27,13 +27,13 @@ def terms_needed(a: Ball, x: Ball, prec: int) -> float:
 
     Examples
     --------
-    >>> 40 < terms_needed(arb(100), arb(50), 64) < 60
-    True
+    >>> 40 < terms_needed(arb(100), arb(50), 64) < 60, terms_needed(arb(1) / 2, arb(10) ** -400, 64) < 2
+    (True, True)
     """
-    shape, place = float(a.mid()), float(x.mid())
-    if not 0.0 < place < shape < math.inf:
+    shape, place = float(a.mid()), x.mid()
+    if not (0 < place < a.mid() and shape < math.inf):
         return math.inf
-    far = shape * math.log(shape / place)
+    far = shape * float((a.mid() / place).log().mid())  # the place itself may be no double
     wanted = 2 * shape * prec * math.log(2)
     return wanted / (far + math.sqrt(far * far + wanted))
 

@@ -11,7 +11,7 @@ from fractions import Fraction
 from functools import cached_property
 from typing import Any
 
-from verify.arithmetic.ball import balls, midpoint
+from verify.arithmetic.ball import balls, midpoint, min_abs
 from verify.errors import UndecidedError
 from verify.solution.conditions import Conditions, improved_start, linear_system, solve_two_by_two
 from verify.solution.coordinate import Coordinate
@@ -99,12 +99,12 @@ class ContinuousSearch(WindowSearch):
         settled, noise = 2.0 ** -(self.prec // 6), 2.0**-NOISE_BITS
         for _ in range(MOST_STEPS):
             step, curved = outward_steps(self.conditions, A, c1, c2)
-            width = abs(float((c2 - c1).mid()))
-            speeds = [abs(self.coordinate.speed_roughly(A, c)) for c in (c1, c2)]
+            width = abs(midpoint(c2 - c1))
+            speeds = [abs(midpoint(self.coordinate.speed(A, c))) for c in (c1, c2)]
             e1, e2 = (midpoint(e) for e in step)
-            if not (e1.is_finite() and e2.is_finite() and all(0.0 < v < math.inf for v in speeds)):
+            if not all(x.is_finite() for x in (e1, e2, *speeds)) or 0 in speeds:
                 return None
-            sizes = [min(width, speed) for speed in speeds]
+            sizes = [min_abs(width, speed) for speed in speeds]
             if all(_settled(e, size * settled, size * noise) for e, size in zip(step, sizes, strict=True)):
                 return midpoint(c1 - e1), midpoint(c2 + e2)
             places = midpoint(c1 - e1), midpoint(c2 + e2)
@@ -114,10 +114,10 @@ class ContinuousSearch(WindowSearch):
                 c1, c2 = self._moved(A, c1, e1, -1, speeds[0]), self._moved(A, c2, e2, +1, speeds[1])
         return None
 
-    def _moved(self, A: Any, c: Any, e: Any, side: int, speed: float) -> Any:
+    def _moved(self, A: Any, c: Any, e: Any, side: int, speed: Any) -> Any:
         """Move an end outward by e, gathering mass geometrically where e is not small."""
-        u = float(e) / speed
-        few = max(4.0 * self.spread / speed, 1e-12)
+        u = float(midpoint(e / speed))
+        few = max(float(midpoint(A.real(Fraction(4.0 * self.spread)) / speed)), 1e-12)
         few = few if self.coordinate.free else min(few, 2.0)
         if abs(u) < 1e-3 * min(few, 1.0):
             return midpoint(c + side * e)
@@ -150,10 +150,10 @@ def _log(density: Any) -> float:
     return float(density.log().mid()) if density > 0 else -math.inf
 
 
-def _settled(step: Any, small: float, noise: float) -> bool:
+def _settled(step: Any, small: Any, noise: Any) -> bool:
     """Whether a step is small, or no longer to be told from 0 at this precision."""
-    size = abs(float(step.mid()))
-    return size <= small or (size < noise and bool(step.contains(0)))
+    size = abs(midpoint(step))
+    return bool(size <= small) or bool(size < noise and step.contains(0))
 
 
 def outward_steps(conditions: Conditions, A: Any, c1: Any, c2: Any) -> tuple[Ends, bool]:

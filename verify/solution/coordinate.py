@@ -71,10 +71,6 @@ class Coordinate:
         """Return the same in floating point, for a search."""
         return u if self.free else float(self.place(A, A.real(Fraction(u))).mid())
 
-    def speed_roughly(self, A: Any, c: Any) -> float:
-        """Return dc/du in floating point, for a search."""
-        return 1.0 if self.free else float(self.speed(A, c).mid())
-
     def rough(self, A: Any, law: Rough) -> Rough:
         """Return rough moments in the coordinate.
 
