@@ -405,7 +405,10 @@ def opinion(values: dict[str, Any], test: dict[str, Any]) -> dict[str, Any]:
 
 
 def assumptions(case: Case) -> list[str]:
-    out = [f"theorem: {THEOREMS[case.form if len(set(case.alpha)) == 1 else 'two levels']}", *(f"derivation, step {s}: proved" for s in STEPS)]
+    out = [
+        f"theorem: {THEOREMS[case.form if len(set(case.alpha)) == 1 else 'two levels']}",
+        *(f"derivation, step {s}: proved" for s in STEPS),
+    ]
     if "total" in case.law["parameters"]:
         out.append("the table of weights: its normaliser, and its mean where one is stated")
     return [
