@@ -51,6 +51,8 @@ def monotone_pieces(statistic: Expr, x: Symbol, low: Expr, high: Expr) -> tuple[
 
 
 def _pieces_of_smooth(statistic: Expr, x: Symbol, low: Expr, high: Expr) -> list[Piece] | str:
+    if not statistic.has(x):
+        return f"T = {statistic} all over ({low}, {high}): a law with a density and an atom is not worked out here"
     slope = sp.diff(statistic, x)
     turning, poles = (zeros_between(part, x, low, high) for part in (slope, sp.fraction(sp.together(slope))[1]))
     if turning is None:
