@@ -29,8 +29,8 @@ MOST_ROUNDS = 200
 BISECTIONS = 60
 MOST_STEPS = 40
 """Steps of Newton's method on a lattice before bracket and bisection."""
-NEWTON_ROUNDS = 5
-"""Rounds of interval Newton before the sure way takes over."""
+MOST_VAIN = 5
+"""Rounds of interval Newton in a row that may gain nothing, before the sure way takes over."""
 LEAST_GAIN = 8
 """Bits that a round of interval Newton gains, where it works as it should."""
 NEWTON_EVERY = 6
@@ -216,19 +216,18 @@ class TailProblem:
         wanted = bits_for(digits)
         with balls(self.prec) as A:
             centre = self.continuous_cutoff(A)
-        bits, box, previous = max(self.prec, min(2 * self.prec, wanted + self.prec - 64)), None, 0
-        for _ in range(NEWTON_ROUNDS):
+        bits, box, reached = max(self.prec, min(2 * self.prec, wanted + self.prec - 64)), None, 0
+        vain = 0
+        while vain < MOST_VAIN:
             with balls(bits) as A:
                 box = self._sharpen(A, centre, box)
-                reached = self._reached(box, wanted) if box is not None else 0
-                if box is not None:
-                    if reached >= wanted:
-                        return self._around(A, box)
-                    if previous > 0 and reached < previous + LEAST_GAIN:
-                        break
-                    centre, previous = midpoint(box), reached
+                before, reached = reached, self._reached(box, wanted) if box is not None else 0
+                if reached >= wanted:
+                    return self._around(A, box)
+                centre = centre if box is None else midpoint(box)
+            vain = 0 if reached >= before + LEAST_GAIN else vain + 1
             bits = min(2 * bits, wanted + (bits - reached) + 32) if reached > 0 else bits + bits // 4 + 64
-        with balls(wanted + 2 * self.prec) as A:
+        with balls(2 * (wanted + self.prec)) as A:  # a cutoff at 0 is told from it to the square of the accuracy
             return self._around(A, self._crossed(A, centre, wanted))
 
     def _around(self, A: Any, box: Any) -> Tail:
