@@ -7,7 +7,7 @@ from typing import TYPE_CHECKING, Any
 
 from verify.answers.grid import Design, problem_of_design
 from verify.derivation.derive import Derivation, derive
-from verify.derivation.ledger import MONOTONICITY, Grade, Step
+from verify.derivation.ledger import Grade, Step
 from verify.errors import InputError, UndecidedError
 from verify.memory import solver
 from verify.problem.casefile import Case, read_case
@@ -79,8 +79,7 @@ class Asker:
 
     def _derivation_for(self, problem: Problem) -> Derivation:
         """Return the one derivation where it holds for all parameter values, else one that covers these limits."""
-        monotone = self.derivation.step(MONOTONICITY)
-        if monotone is not None and monotone.grade is Grade.PROVED:
+        if self.derivation.covers(problem.hypothesis.limits):
             return self.derivation
         return _derived(problem.density, problem.hypothesis.limits, self.budget)
 

@@ -41,6 +41,7 @@ from verify.laws.continuous import OneObservation
 from verify.notebook import Shown
 from verify.problem.density import Density
 from verify.problem.numbers import Exact, as_expr
+from verify.problem.problem import Problem
 
 
 @dataclass(frozen=True)
@@ -59,6 +60,8 @@ class Derivation(Shown):
         The law of T in closed form, when there is one.
     steps : tuple of Step
         The ledger, in order.
+    limits : tuple of Exact
+        Limits of hypotheses at which the direction of Q was looked at, at least.
     """
 
     density: Density
@@ -69,6 +72,12 @@ class Derivation(Shown):
     rising: bool | None
     family: LawFamily | None
     steps: tuple[Step, ...]
+    limits: tuple[Exact, ...] = ()
+
+    def covers(self, limits: tuple[Exact, ...]) -> bool:
+        """Whether it holds at these limits: the direction of Q is proved everywhere, or was looked at there."""
+        monotone = self.step(MONOTONICITY)
+        return (monotone is not None and monotone.grade is Grade.PROVED) or set(limits) <= set(self.limits)
 
     @property
     def grade(self) -> Grade:
@@ -179,7 +188,7 @@ def derive(
         ledger = _Ledger(worker)
         ledger.run(SUPPORT, support_step, density)
         if ledger.grades(SUPPORT) is Grade.REFUTED:
-            return _finished(density, None, None, None, ledger.steps)
+            return _finished(density, None, None, None, ledger.steps, limits)
         ledger.run(NONNEGATIVITY, nonnegativity_step, density)
         found = _factorised(ledger, density)
         rising = family = None
@@ -192,7 +201,7 @@ def derive(
             if family is not None and n is not None and n > 1 and isinstance(family.law, OneObservation):
                 step = open_or_checked(family, limits, n)
                 ledger.steps.extend(() if step is None else (step,))
-    return _finished(density, found, rising, family, ledger.steps)
+    return _finished(density, found, rising, family, ledger.steps, limits)
 
 
 def _finished(
@@ -201,11 +210,27 @@ def _finished(
     rising: bool | None,
     family: LawFamily | None,
     steps: list[Step],
+    limits: tuple[Exact, ...],
 ) -> Derivation:
     if found is None:
-        return Derivation(density, None, None, None, None, rising, family, tuple(steps))
+        return Derivation(density, None, None, None, None, rising, family, tuple(steps), limits)
     parts = found.natural_parameter, found.statistic, found.log_normaliser, found.base
-    return Derivation(density, *parts, rising, family, tuple(steps))
+    return Derivation(density, *parts, rising, family, tuple(steps), limits)
+
+
+def derivation_for(problem: Problem, known: Derivation | None = None) -> Derivation:
+    """Return a derivation of a problem's density that covers its limits: the known one, if it does.
+
+    Raises
+    ------
+    InputError
+        When the known one is of another density.
+    """
+    if known is not None and known.density != problem.density:
+        raise InputError("the derivation is of another density", "derive the density of the problem", key="derivation")
+    if known is not None and known.covers(problem.hypothesis.limits):
+        return known
+    return derive(problem.density, limits=problem.hypothesis.limits, n=problem.n)
 
 
 def _factorised(ledger: _Ledger, density: Density) -> Factorisation | None:

@@ -8,6 +8,7 @@ from functools import cache
 from typing import TYPE_CHECKING, Any
 
 from verify.arithmetic.enclosure import Enclosure
+from verify.derivation.derive import Derivation, derivation_for
 from verify.errors import InputError
 from verify.memory.key import key_of
 from verify.memory.place import Place
@@ -21,7 +22,6 @@ from verify.solution.solve import Solution, family_of, rejects_above, solve, wit
 from verify.solution.window import rough_laws
 
 if TYPE_CHECKING:
-    from verify.derivation.derive import Derivation
     from verify.laws import Law
     from verify.problem.problem import Problem
 
@@ -67,7 +67,7 @@ class Remembered:
         A result that cannot be proved again is solved afresh and replaced. Ties, which are decided in exact
         fractions, and windows of a single point are not remembered.
         """
-        family_of(derivation)
+        derivation = derivation_for(problem, derivation)
         key = key_of(problem, digits, derivation)
         known = self._known(key, problem, digits, derivation)
         if known is not None:

@@ -14,7 +14,8 @@ from verify.solution.conditions import interior
 
 if TYPE_CHECKING:
     from verify.laws.base import Law
-    from verify.solution.solve import SideCondition, Solution
+    from verify.solution.side_conditions import SideCondition
+    from verify.solution.solve import Solution
 
 SHOWN = 8
 """Digits of the numbers in an equation; the closeness of the two sides is stated separately, in full."""

@@ -5,10 +5,11 @@ from __future__ import annotations
 from dataclasses import dataclass
 from fractions import Fraction
 from functools import cached_property, partial
-from typing import TYPE_CHECKING, Any, Literal
+from typing import TYPE_CHECKING, Any
 
 from verify.arithmetic.ball import balls, to_enclosure
 from verify.arithmetic.enclosure import Enclosure
+from verify.derivation.derive import Derivation, derivation_for
 from verify.derivation.ledger import Grade, Step, weakest
 from verify.derivation.sum_step import sum_step, with_sum_step
 from verify.errors import InputError, UndecidedError
@@ -22,38 +23,16 @@ from verify.solution.checked import within_shared_digits
 from verify.solution.critical import CriticalFunction, Region
 from verify.solution.one_sided import Tail, TailProblem
 from verify.solution.precision import bits_for
+from verify.solution.side_conditions import SideCondition, held
 from verify.solution.two_sided import solve_window, window_search
 from verify.solution.window import Window, rough_laws, search_precision
 
 if TYPE_CHECKING:
-    from verify.derivation.derive import Derivation
     from verify.derivation.family import LawFamily
     from verify.laws import Law
     from verify.problem.problem import Problem
 
 LEAST_DIGITS, MOST_DIGITS = 15, 10_000
-
-
-@dataclass(frozen=True)
-class SideCondition:
-    """One equation that the test satisfies.
-
-    Attributes
-    ----------
-    at : Exact
-        Parameter value under which the expectation is taken.
-    target : Exact
-        What it must be. For the moment condition of a point null: 0, the target of E[(V - E V) phi].
-    expectation : Enclosure
-        What it is, enclosed.
-    of : {"phi", "(V - E V) phi"}
-        Whose expectation.
-    """
-
-    at: Exact
-    target: Exact
-    expectation: Enclosure
-    of: Literal["phi", "(V - E V) phi"]
 
 
 @dataclass(frozen=True)
@@ -265,7 +244,7 @@ def solve(problem: Problem, digits: int = 50, derivation: Derivation | None = No
     digits : int
         Significant digits, 15 to 10 000.
     derivation : Derivation, optional
-        A derivation of the same density, when known.
+        A derivation of the same density, when known; one that does not cover the limits is made anew.
 
     Returns
     -------
@@ -274,7 +253,7 @@ def solve(problem: Problem, digits: int = 50, derivation: Derivation | None = No
     Raises
     ------
     InputError
-        For digits out of range, or two levels that no test has.
+        For digits out of range, two levels that no test has, or the derivation of another density.
     UndecidedError
         When the law is not known or a tie cannot be decided.
 
@@ -293,10 +272,7 @@ def solve(problem: Problem, digits: int = 50, derivation: Derivation | None = No
     """
     if not isinstance(digits, int) or not LEAST_DIGITS <= digits <= MOST_DIGITS:
         raise InputError(f"{digits} digits", f"ask for {LEAST_DIGITS} to {MOST_DIGITS}", key="digits")
-    if derivation is None:
-        from verify.derivation.derive import derive
-
-        derivation = derive(problem.density, limits=problem.hypothesis.limits, n=problem.n)
+    derivation = derivation_for(problem, derivation)
     family = family_of(derivation)
     laws = tuple(family.at(limit, problem.n) for limit in problem.hypothesis.limits)
     route = _solve_one_sided if problem.hypothesis.form is Form.ONE_SIDED else _solve_two_sided
@@ -330,7 +306,7 @@ def with_window(
     derivation = with_sum_step(derivation, laws, window.prec)
     critical = CriticalFunction("outside" if outside else "inside", window.c1, window.c2, window.phi1, window.phi2)
     return Solution(
-        problem, derivation, digits, critical, laws, _held(_two_conditions(problem, window), window.prec),
+        problem, derivation, digits, critical, laws, held(_two_conditions(problem, window), window.prec),
         (*derivation.steps, _numbers_step(problem, laws, window.prec)), window.prec,
     )  # fmt: skip
 
@@ -348,23 +324,6 @@ def _two_conditions(problem: Problem, window: Window) -> tuple[SideCondition, ..
     )
 
 
-def _held(conditions: tuple[SideCondition, ...], prec: int) -> tuple[SideCondition, ...]:
-    """Return the side conditions, none of which may exclude its target: what is handed out is looked at once more.
-
-    Raises
-    ------
-    UndecidedError
-        When one does.
-    """
-    with balls(prec + 64) as A:
-        for condition in conditions:
-            target, found = to_enclosure(A.real(condition.target)), condition.expectation
-            if target.upper < found.lower or found.upper < target.lower:
-                wrong = f"E[{condition.of}] = {found.text(15)} at the cutoffs found, which misses {condition.target}"
-                raise UndecidedError(f"the proof contradicts itself: {wrong}")
-    return conditions
-
-
 def _solve_one_sided(problem: Problem, derivation: Derivation, laws: tuple[Law, ...], digits: int) -> Solution:
     rough, _, _ = rough_laws(laws)
     above = rejects_above(problem, derivation)
@@ -380,7 +339,7 @@ def with_tail(problem: Problem, derivation: Derivation, laws: tuple[Law, ...], d
     critical = CriticalFunction("above" if above else "below", tail.c, tail.c, tail.phi, tail.phi)
     condition = SideCondition(problem.hypothesis.limits[0], problem.levels[0], tail.condition, "phi")
     return Solution(
-        problem, derivation, digits, critical, laws, _held((condition,), tail.prec),
+        problem, derivation, digits, critical, laws, held((condition,), tail.prec),
         (*derivation.steps, _numbers_step(problem, laws, tail.prec)), tail.prec,
     )  # fmt: skip
 
