@@ -18,10 +18,12 @@ from multiprocessing.connection import Connection
 from typing import Any
 
 from verify.errors import NotAttempted, SidecheckError
-from verify.killable.child import ForkedChild, can_fork, limit_memory, limit_processor_time
+from verify.killable.child import OVER_TIME, ForkedChild, can_fork, limit_memory, limit_processor_time
 
 SECONDS = 5.0
-"""Time one call may take."""
+"""Processor time one call may take, so that a busy machine changes no outcome."""
+PATIENCE = 6
+"""Times as long as that a call may take by the clock: one that computes nothing ends, too."""
 MEMORY = 1 << 30
 """Bytes that the calls may take beyond what the process holds already."""
 
@@ -52,7 +54,7 @@ class Outcome:
 def run_limited(
     calls: Sequence[Callable[[], Any]], seconds: float = SECONDS, memory: int = MEMORY
 ) -> tuple[Outcome, ...]:
-    """Run each call in a child process, for at most so many seconds and bytes, and say what became of it.
+    """Run each call in a child process, for at most so many seconds of its processor and bytes; say what became of it.
 
     Parameters
     ----------
@@ -88,8 +90,8 @@ def _one_child(calls: Sequence[Callable[[], Any]], seconds: float, memory: int) 
     def life(connection: Connection) -> None:
         _be_quiet()
         limit_memory(memory)
-        limit_processor_time(seconds * len(calls))
         for call in calls:
+            limit_processor_time(seconds)
             connection.send(_outcome(call))
 
     child = ForkedChild(life)
@@ -103,13 +105,15 @@ def _collect(child: ForkedChild, count: int, seconds: float) -> list[Outcome]:
     outcomes: list[Outcome] = []
     for _ in range(count):
         begun = time.monotonic()
-        if not child.connection.poll(seconds):
-            return [*outcomes, Outcome(failure=f"stopped after {seconds:g} s", seconds=seconds)]
+        stopped = Outcome(failure=f"stopped after {seconds:g} s", seconds=seconds)
+        if not child.connection.poll(PATIENCE * seconds):
+            return [*outcomes, stopped]
         try:
             outcomes.append(child.connection.recv())
         except (EOFError, ConnectionResetError):
-            death = f"the process died ({child.how_it_ended()})"
-            return [*outcomes, Outcome(failure=death, seconds=time.monotonic() - begun)]
+            death = child.how_it_ended()
+            died = Outcome(failure=f"the process died ({death})", seconds=time.monotonic() - begun)
+            return [*outcomes, stopped if death == OVER_TIME else died]
     return outcomes
 
 

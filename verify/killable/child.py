@@ -8,6 +8,7 @@ whoever waits for the child always holds.
 from __future__ import annotations
 
 import contextlib
+import math
 import os
 import signal
 import time
@@ -20,6 +21,9 @@ try:
     import resource
 except ImportError:  # not on every system
     resource = None  # type: ignore[assignment]
+
+OVER_TIME = "signal SIGXCPU"
+"""How a child ended that computed for longer than it may."""
 
 HELD = "/proc/self/statm"
 """Where Linux says how many pages of memory a process holds."""
@@ -94,9 +98,9 @@ def limit_memory(extra: int) -> None:
 
 
 def limit_processor_time(seconds: float) -> None:
-    """Let this process compute for about so many seconds more, so that it ends although its parent is gone."""
+    """Let this process compute for so many seconds more, in whole ones of its life; then it dies of OVER_TIME."""
     if resource is not None:
-        _lower(resource.RLIMIT_CPU, int(time.process_time() + seconds) + 2)
+        _lower(resource.RLIMIT_CPU, math.ceil(time.process_time() + seconds))
 
 
 def _lower(which: int, wanted: int) -> None:
