@@ -28,7 +28,7 @@ def test_nine_and_how_many_more(count: int, lines: int) -> None:
         assert f"::{count - 9} more" in shown[-1]
 
 
-@given(st.text(max_size=60), st.text(st.characters(exclude_characters="\0"), max_size=20))
+@given(st.text(max_size=60), st.text(st.characters(codec="utf-8", exclude_characters="\0"), max_size=20))
 def test_any_text_stays_in_its_place(text: str, name: str) -> None:
     result = Result(name, f"x/{name}.case.toml", Outcome.UNDECIDED, messages=(Message("", text, 1),))
     (line,) = annotation_lines([result])

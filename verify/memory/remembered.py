@@ -68,6 +68,7 @@ class Remembered:
         fractions, and windows of a single point are not remembered.
         """
         derivation = derivation_for(problem, derivation)
+        family_of(derivation)
         key = key_of(problem, digits, derivation)
         known = self._known(key, problem, digits, derivation)
         if known is not None:
