@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 import os
+import signal
 import time
 from collections.abc import Callable
 from pathlib import Path
@@ -71,6 +72,24 @@ def test_workers_change_nothing(mixed: Path, ran: list[Result]) -> None:
     side_by_side = run.run_book(find_cases([mixed]), workers=2)
     assert json_lines(side_by_side) == json_lines(ran)
     assert side_by_side == ran
+
+
+def deadly(path: str, how: run.How) -> Result:
+    """Run a case; one of them takes its process down every time."""
+    if "c-claim" in path:
+        os.kill(os.getpid(), signal.SIGKILL)
+    return run.run_case_file(path, how)
+
+
+def test_a_case_that_no_worker_survives_is_undecided_and_the_others_are_run(mixed: Path, ran, monkeypatch) -> None:
+    with monkeypatch.context() as patched:
+        patched.setattr(run, "run_case_file", deadly)
+        results = run.run_book(find_cases([mixed]), workers=2)
+    assert [result.name for result in results] == [result.name for result in ran]
+    [given_up] = [result for result in results if result not in ran]
+    assert (given_up.name.rpartition("/")[2], given_up.outcome) == ("c-claim-differs", Outcome.UNDECIDED)
+    assert "3 worker processes died over one piece of work" in str(given_up.messages[0])
+    assert status_of(results) != 0
 
 
 @pytest.mark.parametrize("workers", [1, 2])

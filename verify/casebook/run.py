@@ -13,7 +13,7 @@ from verify.casebook.expectation import expected_verdicts, judge
 from verify.casebook.find import case_name
 from verify.casebook.found import DIGITS, UNUSABLE, Found, find
 from verify.casebook.outcome import Message, Outcome, Result
-from verify.errors import InputError, mistake
+from verify.errors import InputError, UndecidedError, mistake
 from verify.parallel import run_all
 from verify.problem.casefile import CaseText, read_case_text
 
@@ -121,6 +121,12 @@ def line_of(path: str, key: str) -> int | None:
     return found
 
 
+def _given_up(path: str, error: UndecidedError) -> Result:
+    """What stands for a case over which worker after worker died, out of memory perhaps."""
+    found = Outcome.UNDECIDED.value
+    return Result(case_name(path), path, Outcome.UNDECIDED, found=found, messages=(Message("", str(error)),))
+
+
 def run_book(
     paths: Sequence[str],
     how: How | None = None,
@@ -148,7 +154,7 @@ def run_book(
         Called with the number of cases done so far.
     """
     results = []
-    for result in run_all(partial(run_case_file, how=how or How()), paths, workers, scheduler):
+    for result in run_all(partial(run_case_file, how=how or How()), paths, workers, scheduler, lost=_given_up):
         results.append(result)
         if progress is not None:
             progress(len(results))

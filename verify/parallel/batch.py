@@ -7,6 +7,8 @@ from collections.abc import Callable, Iterable, Iterator
 from itertools import islice
 from typing import Any, TypeVar
 
+from verify.errors import UndecidedError
+
 Item = TypeVar("Item")
 
 _one_at_a_time = threading.Lock()
@@ -30,6 +32,24 @@ def do(function: Callable[[Any], Any], batch: tuple[Any, ...]) -> list[Any]:
     """Work on a batch, alone in this process."""
     with _one_at_a_time:
         return [function(item) for item in batch]
+
+
+Lost = Callable[[Any, UndecidedError], Any]
+"""What stands for the result of an item over which worker after worker died."""
+
+
+def given_up(batch: tuple[Any, ...], died: str, lost: Lost | None) -> list[Any]:
+    """Return what stands for the results of a batch that took down every worker that tried it.
+
+    Raises
+    ------
+    UndecidedError
+        Where nothing stands for them.
+    """
+    error = UndecidedError(f"{died} died over one piece of work: {batch_text(batch)}")
+    if lost is None:
+        raise error
+    return [lost(item, error) for item in batch]
 
 
 def batch_text(batch: tuple[Any, ...]) -> str:

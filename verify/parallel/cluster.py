@@ -11,7 +11,7 @@ from itertools import islice
 from typing import Any
 
 from verify.errors import InputError, UndecidedError, missing_extra
-from verify.parallel.batch import batch_text, batches, do
+from verify.parallel.batch import Lost, batches, do, given_up
 from verify.versions import Versions, versions
 
 SECONDS_TO_CONNECT, SECONDS_FOR_WORKERS = 10, 30
@@ -20,7 +20,9 @@ AHEAD = 256
 """Batches handed out ahead of the one waited for."""
 
 
-def on_cluster(function: Callable[[Any], Any], items: Iterable[Any], scheduler: str, chunk: int) -> Iterator[Any]:
+def on_cluster(
+    function: Callable[[Any], Any], items: Iterable[Any], scheduler: str, chunk: int, lost: Lost | None
+) -> Iterator[Any]:
     """Yield the results in order; Dask itself gives the work of a lost worker to another one."""
     with _connect(scheduler) as client, _only_our_words():
         waiting: deque[tuple[Any, Any]] = deque()
@@ -30,10 +32,10 @@ def on_cluster(function: Callable[[Any], Any], items: Iterable[Any], scheduler: 
                 waiting.append((batch, client.submit(do_checked, versions(), function, batch, pure=False)))
             if not waiting:
                 return
-            yield from _results(client, scheduler, *waiting.popleft())
+            yield from _results(client, scheduler, *waiting.popleft(), lost)
 
 
-def _results(client: Any, scheduler: str, batch: tuple[Any, ...], answer: Any) -> list[Any]:
+def _results(client: Any, scheduler: str, batch: tuple[Any, ...], answer: Any, lost: Lost | None) -> list[Any]:
     """Wait for the results of a batch, as long as there are workers."""
     from distributed import KilledWorker
     from distributed.comm.core import CommClosedError
@@ -47,7 +49,7 @@ def _results(client: Any, scheduler: str, batch: tuple[Any, ...], answer: Any) -
         results: list[Any] = answer.result()
         return results
     except KilledWorker:
-        raise UndecidedError(f"worker after worker died over one piece of work: {batch_text(batch)}") from None
+        return given_up(batch, "worker after worker", lost)
     except (CommClosedError, CancelledError):
         raise UndecidedError(f"the scheduler at {scheduler} was lost") from None
 

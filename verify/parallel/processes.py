@@ -18,8 +18,8 @@ from typing import Any
 from loky import ProcessPoolExecutor
 from loky.process_executor import TerminatedWorkerError
 
-from verify.errors import InputError, UndecidedError
-from verify.parallel.batch import batch_text, batches, do
+from verify.errors import InputError
+from verify.parallel.batch import Lost, batches, do, given_up
 
 MOST_LOSSES = 3
 """Workers that may die over one batch before it is given up."""
@@ -31,7 +31,9 @@ SECONDS_A_LOOK = 0.5
 """How often a worker looks whether its parent lives."""
 
 
-def in_processes(function: Callable[[Any], Any], items: Iterable[Any], workers: int, chunk: int) -> Iterator[Any]:
+def in_processes(
+    function: Callable[[Any], Any], items: Iterable[Any], workers: int, chunk: int, lost: Lost | None
+) -> Iterator[Any]:
     """Yield the results in order; a bounded number of batches is handed out ahead of the one waited for.
 
     A pool whose worker died does not say over which batch. So the batch waited for is then done alone, where a
@@ -50,7 +52,7 @@ def in_processes(function: Callable[[Any], Any], items: Iterable[Any], workers: 
                 results = waiting[0].answer.result()
             except TerminatedWorkerError:
                 pool.shutdown(kill_workers=True)
-                results = _alone(function, waiting[0].batch)
+                results = _alone(function, waiting[0].batch, lost)
                 pool = _pool(workers)
                 for task in islice(waiting, 1, None):
                     if task.lost:
@@ -101,14 +103,8 @@ def _starting() -> Iterator[None]:
         raise InputError(wrong, "ask for fewer workers", key="workers") from None
 
 
-def _alone(function: Callable[[Any], Any], batch: tuple[Any, ...]) -> list[Any]:
-    """Do a batch in a process of its own, again and again.
-
-    Raises
-    ------
-    UndecidedError
-        When every one of these processes died.
-    """
+def _alone(function: Callable[[Any], Any], batch: tuple[Any, ...], lost: Lost | None) -> list[Any]:
+    """Do a batch in a process of its own, again and again until it is given up."""
     for _ in range(MOST_LOSSES):
         pool = _pool(1)
         try:
@@ -117,7 +113,7 @@ def _alone(function: Callable[[Any], Any], batch: tuple[Any, ...]) -> list[Any]:
             continue
         finally:
             pool.shutdown(kill_workers=True)
-    raise UndecidedError(f"{MOST_LOSSES} worker processes died over one piece of work: {batch_text(batch)}")
+    return given_up(batch, f"{MOST_LOSSES} worker processes", lost)
 
 
 def _be_a_worker(parent: int) -> None:

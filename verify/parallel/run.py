@@ -10,7 +10,7 @@ from __future__ import annotations
 from collections.abc import Callable, Iterable, Iterator
 from typing import TypeVar
 
-from verify.errors import InputError
+from verify.errors import InputError, UndecidedError
 
 Item = TypeVar("Item")
 Result = TypeVar("Result")
@@ -24,6 +24,7 @@ def run_all(
     workers: int = 1,
     scheduler: str | None = None,
     chunk: int = 1,
+    lost: Callable[[Item, UndecidedError], Result] | None = None,
 ) -> Iterator[Result]:
     """Yield ``function(item)`` for every item, in the order of the items.
 
@@ -40,13 +41,15 @@ def run_all(
         Address of a running Dask scheduler, ``tcp://host:port``; then ``workers`` is not looked at.
     chunk : int
         Items handed out at a time; more than one where an item takes milliseconds.
+    lost : callable, optional
+        (item, error) -> what stands for its result, where its batch took down every worker that tried it.
 
     Raises
     ------
     InputError
         For a number of workers or a scheduler that cannot be used.
     UndecidedError
-        When a batch took down every worker that tried it.
+        When a batch took down every worker that tried it, and ``lost`` was not given.
     Exception
         Whatever ``function`` raises, at the place of its item.
 
@@ -60,9 +63,9 @@ def run_all(
     if scheduler is not None:
         from verify.parallel.cluster import on_cluster
 
-        return on_cluster(function, items, scheduler, chunk)
+        return on_cluster(function, items, scheduler, chunk, lost)
     if workers == 1:
         return map(function, items)
     from verify.parallel.processes import in_processes
 
-    return in_processes(function, items, workers, chunk)
+    return in_processes(function, items, workers, chunk, lost)
