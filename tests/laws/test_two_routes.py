@@ -141,7 +141,7 @@ def test_parts_fit_together(density: tuple[str, str, str], place: Fraction) -> N
         assert ratio.overlaps(A.exp((eta[1] - eta[0]) * v) * (front[1] / front[0]) ** n)
         step = A.power(A.real(2), -24)
         rise = (first.cdf(A, v + step) - first.cdf(A, v - step)) / (2 * step)
-        assert abs(rise - first.density(A, v)) < A.power(A.real(10), -9)
+        assert abs(rise - first.density(A, v)) < A.power(A.real(10), -7)  # the quotient is known to about 1e-8
         assert first.shortfall(A, v) > 0
 
 
