@@ -24,7 +24,7 @@ from verify.arithmetic.enclosure import Enclosure
 from verify.errors import UndecidedError
 from verify.solution.conditions import Conditions, Row, solve_two_by_two
 from verify.solution.continuous_search import ContinuousSearch, Ends
-from verify.solution.precision import accuracy_for
+from verify.solution.precision import LEAST_GAIN, accuracy_for
 from verify.solution.window import SEARCH_BITS, Window
 
 MOST_ROUNDS = 30
@@ -32,9 +32,6 @@ MOST_ROUNDS = 30
 
 MOST_BITS = 4
 """Times the bits that the search and the digits ask for, at which a proof is given up."""
-
-LEAST_GAIN = 8
-"""Bits that a round gains, unless a density jumps at an end."""
 
 TRIAL_WIDTHS = (2, 4, 8, 16)
 """Half widths of the first box, in first-order steps to the ends: an end at a jump may lie further than that step."""

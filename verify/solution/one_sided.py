@@ -22,7 +22,7 @@ from verify.solution.conditions import MOST_EXACT_ATOMS
 from verify.solution.coordinate import Coordinate
 from verify.solution.crossing import crossing
 from verify.solution.lattice_step import as_float, cells
-from verify.solution.precision import bits_for, may_be_decimal
+from verify.solution.precision import LEAST_GAIN, bits_for, may_be_decimal
 from verify.solution.start import Rough, upper_point
 
 MOST_ROUNDS = 200
@@ -31,8 +31,6 @@ MOST_STEPS = 40
 """Steps of Newton's method on a lattice before bracket and bisection."""
 MOST_VAIN = 5
 """Rounds of interval Newton in a row that may gain nothing, before the sure way takes over."""
-LEAST_GAIN = 8
-"""Bits that a round of interval Newton gains, where it works as it should."""
 NEWTON_EVERY = 6
 """Bisections between two attempts of Newton's method, which an expensive law needs soon."""
 

@@ -9,6 +9,9 @@ from verify.arithmetic.enclosure import Enclosure
 BITS_PER_DIGIT = 3.3219280948873626
 GUARD_BITS = 16
 
+LEAST_GAIN = 8
+"""Bits that a round of a proof for a continuous law gains, unless a density jumps or vanishes at a cutoff."""
+
 
 def bits_for(digits: int) -> int:
     """Bits that hold so many decimal digits, with a guard.
